@@ -1,0 +1,80 @@
+// Starts the page's program, and starts it once more where it traps. Everything else is Rust.
+(function () {
+  "use strict";
+  const glue = document.getElementById("glue").textContent;
+  let compiled;
+  let life; // ends the listeners of the instance that runs
+  let traps = 0;
+
+  // atob and a loop: the newer ways to decode are not in every browser that runs the program.
+  function decode(text) {
+    const letters = atob(text.trim());
+    const bytes = new Uint8Array(letters.length);
+    for (let i = 0; i < letters.length; i += 1) bytes[i] = letters.charCodeAt(i);
+    return bytes;
+  }
+
+  // An instance of its own: the glue keeps its state in itself, so its text has to run again. The policy knows the text.
+  function freshGlue() {
+    if (traps === 0) return; // the page's own element has just run
+    const script = document.createElement("script");
+    script.textContent = glue;
+    document.head.append(script);
+    script.remove();
+  }
+
+  function start(text) {
+    life = new AbortController();
+    freshGlue();
+    window.wasm_bindgen = wasm_bindgen;
+    wasm_bindgen.initSync({ module: compiled });
+    try {
+      wasm_bindgen.start(life.signal, text);
+    } catch (error) {
+      recover(error);
+    }
+  }
+
+  // A program that trapped cannot be trusted with another call: keep the text, drop the rest.
+  function recover(error) {
+    traps += 1;
+    life.abort();
+    console.error(error);
+    const text = window.aftercountText;
+    if (traps > 1) give(text);
+    else start(text);
+  }
+
+  function give(text) {
+    delete document.documentElement.dataset.settled;
+    const notice = document.getElementById("no-engine");
+    const says = notice.querySelector("p");
+    says.textContent = "Aftercount stopped on this text, and again after a fresh start: nothing more is worked out. " +
+      "What stands below may be older than the text. Copy the text before you close or reload the page.";
+    const box = document.createElement("textarea");
+    box.readOnly = true;
+    box.rows = 4;
+    box.value = text || "";
+    box.setAttribute("aria-label", "The text of the engagement");
+    says.after(box);
+    notice.hidden = false;
+    notice.scrollIntoView();
+  }
+
+  function trapped(event, error) {
+    if (window.WebAssembly && error instanceof WebAssembly.RuntimeError && traps < 2) recover(error);
+  }
+  window.addEventListener("error", (event) => trapped(event, event.error));
+  window.addEventListener("unhandledrejection", (event) => trapped(event, event.reason));
+
+  Promise.resolve()
+    .then(() => WebAssembly.compile(decode(document.getElementById("wasm").textContent)))
+    .then((module) => {
+      compiled = module;
+      start(undefined);
+    })
+    .catch((error) => {
+      document.getElementById("no-engine").hidden = false;
+      console.error(error);
+    });
+})();

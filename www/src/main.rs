@@ -1,0 +1,162 @@
+//! Builds Aftercount's page into one file.
+//!
+//! `cargo run -p aftercount-www` compiles the web crate to WebAssembly, puts it with its glue, the boot script, the
+//! style sheet and the licence notices into `www/page/index.html`, and writes `aftercount.html` and an example wiki
+//! page that frames it to `page/` in Cargo's target directory. `--no-open` keeps the result from being opened.
+
+mod inline;
+mod licences;
+mod open;
+mod policy;
+mod sizes;
+mod toolchain;
+mod wasm;
+mod workspace;
+
+use std::fs;
+use std::path::{Path, PathBuf};
+use std::process::ExitCode;
+
+use anyhow::{Context, Result, bail};
+use base64::Engine as _;
+use base64::engine::general_purpose::STANDARD as BASE64;
+use sha2::{Digest, Sha256};
+
+use crate::sizes::{Limits, Sizes};
+use crate::workspace::Workspace;
+
+/// What the page may weigh: it is mailed, and carried over on discs.
+const LIMITS: Limits = Limits {
+    raw: 700_000,
+    gzipped: 300_000,
+};
+
+const USAGE: &str = "cargo run -p aftercount-www [-- --no-open]\n\n\
+    Builds the page into one file. --no-open: do not show it afterwards.";
+
+fn main() -> ExitCode {
+    match run() {
+        Ok(()) => ExitCode::SUCCESS,
+        Err(error) => {
+            eprintln!("error: {error:#}");
+            ExitCode::FAILURE
+        }
+    }
+}
+
+fn run() -> Result<()> {
+    let mut show = true;
+    for argument in std::env::args().skip(1) {
+        match argument.as_str() {
+            "--no-open" => show = false,
+            "--help" | "-h" => {
+                println!("{USAGE}");
+                return Ok(());
+            }
+            other => bail!("`{other}` is not understood\n\n{USAGE}"),
+        }
+    }
+    let workspace = Workspace::find()?;
+    let page = build(&workspace)?;
+    let written = write(&workspace, &page)?;
+    let sizes = Sizes::of(page.as_bytes())?;
+    println!("{}  {sizes}", written.page.display());
+    println!("{}", written.wiki.display());
+    sizes.check(LIMITS)?;
+    if show {
+        open::show(&written.page);
+    }
+    Ok(())
+}
+
+/// The finished page as text.
+fn build(workspace: &Workspace) -> Result<String> {
+    toolchain::ensure_wasm_target()?;
+    let built = wasm::build(workspace)?;
+    let bound = wasm::bind(&built.wasm)?;
+    let licences = licences::notices(workspace, &built.packages)?;
+
+    let template = read(&workspace.page_source("index.html"))?;
+    let style = read(&workspace.page_source("style.css"))?;
+    let boot = read(&workspace.page_source("boot.js"))?;
+    inline::check("style.css", &style)?;
+    inline::check("boot.js", &boot)?;
+    inline::check("the glue", &bound.glue)?;
+
+    let encoded = BASE64.encode(&bound.wasm);
+    let version = version(&[
+        template.as_bytes(),
+        style.as_bytes(),
+        boot.as_bytes(),
+        bound.glue.as_bytes(),
+        &bound.wasm,
+    ]);
+    let filled = inline::fill(
+        &template,
+        &[
+            ("style", &style),
+            ("wasm", &encoded),
+            ("glue", &bound.glue),
+            ("boot", &boot),
+            ("version", &version),
+            ("licences", &licences),
+            // Stands until the rest is in place, since the policy is a digest of it.
+            ("policy", "{{policy}}"),
+        ],
+    )?;
+    let policy = policy::policy(&filled)?;
+    // Only once: the text above is free to contain the same letters.
+    Ok(filled.replacen("{{policy}}", &policy, 1))
+}
+
+struct Written {
+    page: PathBuf,
+    wiki: PathBuf,
+}
+
+fn write(workspace: &Workspace, page: &str) -> Result<Written> {
+    let folder = workspace.target.join("page");
+    fs::create_dir_all(&folder).with_context(|| format!("cannot make {}", folder.display()))?;
+    let written = Written {
+        page: folder.join("aftercount.html"),
+        wiki: folder.join("wiki.html"),
+    };
+    let put = |path: &Path, text: &str| {
+        fs::write(path, text).with_context(|| format!("cannot write {}", path.display()))
+    };
+    put(&written.page, page)?;
+    put(&written.wiki, &read(&workspace.page_source("wiki.html"))?)?;
+    Ok(written)
+}
+
+fn read(path: &Path) -> Result<String> {
+    fs::read_to_string(path).with_context(|| format!("cannot read {}", path.display()))
+}
+
+/// The crate's version and a short fingerprint of everything inside, so that two copies can be told apart.
+fn version(parts: &[&[u8]]) -> String {
+    let mut digest = Sha256::new();
+    for part in parts {
+        digest.update((part.len() as u64).to_le_bytes());
+        digest.update(part);
+    }
+    let fingerprint: String = digest
+        .finalize()
+        .iter()
+        .take(4)
+        .map(|byte| format!("{byte:02x}"))
+        .collect();
+    format!("{}-{fingerprint}", env!("CARGO_PKG_VERSION"))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::version;
+
+    #[test]
+    fn version_tells_builds_apart() {
+        assert_eq!(version(&[b"one", b"two"]), version(&[b"one", b"two"]));
+        assert_ne!(version(&[b"one", b"two"]), version(&[b"onet", b"wo"]));
+        assert!(version(&[]).starts_with(concat!(env!("CARGO_PKG_VERSION"), "-")));
+    }
+}

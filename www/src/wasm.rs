@@ -1,0 +1,195 @@
+//! Compiles the web crate to WebAssembly and makes its JavaScript glue.
+
+use std::ffi::OsString;
+use std::io::BufReader;
+use std::path::{Path, PathBuf};
+use std::process::{Child, Stdio};
+
+use anyhow::{Context, Result, bail, ensure};
+use cargo_metadata::{Artifact, Message, PackageId};
+use wasm_bindgen_cli_support::Bindgen;
+
+use crate::toolchain::{TARGET, rustc_prints};
+use crate::workspace::{Workspace, cargo};
+
+/// The crate that becomes the page's program.
+const PACKAGE: &str = "aftercount-web";
+
+/// Settings from outside that would change the program. The page must be the same whoever builds it.
+const DEAF_TO: [&str; 7] = [
+    "RUSTFLAGS",
+    "CARGO_BUILD_RUSTFLAGS",
+    "CARGO_BUILD_TARGET",
+    "CARGO_TARGET_WASM32_UNKNOWN_UNKNOWN_RUSTFLAGS",
+    "CARGO_INCREMENTAL",
+    "RUSTC_WORKSPACE_WRAPPER",
+    "RUSTDOCFLAGS",
+];
+
+/// What the compiler left.
+pub(crate) struct Built {
+    /// The program, not yet bound to JavaScript.
+    pub(crate) wasm: PathBuf,
+    /// Every package that was compiled into it.
+    pub(crate) packages: Vec<PackageId>,
+}
+
+/// The program and the script that ties it to the browser.
+pub(crate) struct Bound {
+    /// The program's bytes.
+    pub(crate) wasm: Vec<u8>,
+    /// The script; it declares the variable `wasm_bindgen`.
+    pub(crate) glue: String,
+}
+
+/// Compiles the web crate with the profile `page`.
+pub(crate) fn build(workspace: &Workspace) -> Result<Built> {
+    let mut command = cargo();
+    // A target directory of its own: Cargo would otherwise fill the folder of the finished page, named like the profile.
+    command
+        .current_dir(&workspace.root)
+        .args([
+            "build",
+            "--package",
+            PACKAGE,
+            "--lib",
+            "--target",
+            TARGET,
+            "--profile",
+            "page",
+        ])
+        .args(["--message-format", "json-render-diagnostics", "--target-dir"])
+        .arg(workspace.target.join("wasm"))
+        .stdout(Stdio::piped());
+    for name in DEAF_TO {
+        command.env_remove(name);
+    }
+    for (name, _) in std::env::vars_os() {
+        if name.to_string_lossy().starts_with("CARGO_PROFILE_") {
+            command.env_remove(name);
+        }
+    }
+    // This one takes the place of every other setting, those of Cargo's own files among them.
+    command.env("CARGO_ENCODED_RUSTFLAGS", flags(workspace)?);
+    let mut child = command.spawn().context("cargo did not start")?;
+    let artifacts = artifacts(&mut child)?;
+    let status = child.wait()?;
+    ensure!(status.success(), "the web crate did not compile ({status})");
+    gather(artifacts)
+}
+
+/// simd128 is in every current browser. The paths of the machine that built it have no place in the page.
+fn flags(workspace: &Workspace) -> Result<OsString> {
+    let mut flags = OsString::from("-Ctarget-feature=+simd128");
+    let sysroot = rustc_prints(&["--print", "sysroot"])?;
+    for (from, to) in [
+        (sysroot.into(), "rust"),
+        (cargo_home().unwrap_or_default(), "cargo"),
+        (workspace.root.clone().into_os_string(), "aftercount"),
+    ] {
+        if !from.is_empty() {
+            flags.push("\x1f--remap-path-prefix=");
+            flags.push(from);
+            flags.push("=");
+            flags.push(to);
+        }
+    }
+    Ok(flags)
+}
+
+fn cargo_home() -> Option<OsString> {
+    std::env::var_os("CARGO_HOME")
+        .or_else(|| std::env::home_dir().map(|home| home.join(".cargo").into_os_string()))
+}
+
+/// Reads Cargo's messages to their end.
+fn artifacts(child: &mut Child) -> Result<Vec<Artifact>> {
+    let output = child.stdout.take().context("cargo's output is not to be had")?;
+    let mut artifacts = Vec::new();
+    for message in Message::parse_stream(BufReader::new(output)) {
+        if let Message::CompilerArtifact(artifact) = message.context("cargo's messages cannot be read")? {
+            artifacts.push(artifact);
+        }
+    }
+    Ok(artifacts)
+}
+
+/// Tells the program and its parts from what only helped to build it, which was compiled for this machine.
+fn gather(artifacts: Vec<Artifact>) -> Result<Built> {
+    let mut wasm = None;
+    let mut packages = Vec::new();
+    for artifact in artifacts {
+        let Some(file) = artifact
+            .filenames
+            .iter()
+            .find(|file| file.components().any(|part| part.as_str() == TARGET))
+        else {
+            continue;
+        };
+        if let Some(found) = artifact
+            .filenames
+            .iter()
+            .find(|file| file.extension() == Some("wasm"))
+        {
+            wasm = Some(found.clone().into_std_path_buf());
+        }
+        if file.extension().is_some() {
+            packages.push(artifact.package_id);
+        }
+    }
+    let Some(wasm) = wasm else {
+        bail!("cargo named no .wasm file among what it built");
+    };
+    Ok(Built { wasm, packages })
+}
+
+/// Makes the glue for a page without modules, which a file opened from disc cannot load.
+pub(crate) fn bind(input: &Path) -> Result<Bound> {
+    let mut output = Bindgen::new()
+        .input_path(input)
+        .no_modules(true)?
+        .typescript(false)
+        .remove_name_section(true)
+        .remove_producers_section(true)
+        .generate_output()
+        .context("wasm-bindgen failed")?;
+    for (package, snippets) in output.snippets() {
+        ensure!(
+            snippets.is_empty(),
+            "{package} brings JavaScript of its own, which the page has no place for"
+        );
+    }
+    Ok(Bound {
+        glue: redeclarable(output.js())?,
+        wasm: output.wasm_mut().emit_wasm(),
+    })
+}
+
+/// Turns `let wasm_bindgen` into `var wasm_bindgen`.
+///
+/// After a trap the boot script runs the glue's text once more to get an instance with a state of its own; a second
+/// `let` of one name would be a syntax error.
+fn redeclarable(glue: &str) -> Result<String> {
+    const FROM: &str = "let wasm_bindgen =";
+    match glue.trim_start().strip_prefix(FROM) {
+        Some(rest) => Ok(format!("var wasm_bindgen ={rest}")),
+        None => bail!(
+            "the glue no longer begins with `{FROM}`: {:?}",
+            glue.chars().take(60).collect::<String>()
+        ),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::redeclarable;
+
+    #[test]
+    fn glue_can_run_twice() {
+        assert_eq!(
+            redeclarable("\n  let wasm_bindgen = 1;").expect("begins so"),
+            "var wasm_bindgen = 1;"
+        );
+        assert!(redeclarable("const other = 1;").is_err());
+    }
+}
