@@ -1,0 +1,103 @@
+//! Aimed fire: each shooter picks a target and shifts to the next when it is out of the fight.
+//!
+//! Losses of y: b·x (Lanchester, *Aircraft in Warfare*, 1916; Osipov 1915). Against aimed fire it gives the square law:
+//! with x' = −a·y, y' = −b·x the difference b·x² − a·y² is constant.
+
+use super::{Law, NO_POWER, Power, RateMeaning};
+use crate::orbit_point::OrbitPoint;
+use crate::sides::{Both, Side};
+use twofloat::TwoFloat;
+
+/// The law of aimed fire.
+pub static AIMED: Law = Law {
+    word: "aimed",
+    label: "Aimed: shooters pick their targets",
+    formula: "b·S",
+    source: "Lanchester 1916; Osipov 1915",
+    rate: RateMeaning::TargetsPerShooter,
+    shooters: |_| 1.0,
+    per_target: |_| {
+        [
+            Power {
+                coefficient: 1.0,
+                exponent: 0.0,
+            },
+            NO_POWER,
+        ]
+    },
+};
+
+/// Aimed fire against aimed fire, in time.
+///
+/// u = √b·x + √a·y decays as e^(−αt) and v = √b·x − √a·y grows as e^(αt), with α = √(ab). Both rates are above 0.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Square {
+    start: Both<f64>,
+    alpha: f64,
+    /// √b and √a: the square roots of the rates at which x and y fire.
+    root: Both<f64>,
+    u: f64,
+    v: f64,
+}
+
+impl Square {
+    /// The motion from the strengths `start`, where x fires at the rate `rate.x` and y at `rate.y`.
+    ///
+    /// `margin` is b·x² − a·y² at the start, which near parity has more digits than its terms.
+    pub fn new(start: Both<f64>, rate: Both<f64>, margin: TwoFloat) -> Square {
+        let root = Both {
+            x: libm::sqrt(rate.x),
+            y: libm::sqrt(rate.y),
+        };
+        let u = root.x * start.x + root.y * start.y;
+        Square {
+            start,
+            alpha: root.x * root.y,
+            root,
+            u,
+            v: f64::from(margin) / u,
+        }
+    }
+
+    /// The time at which the fight is at `point`, which lies on its orbit.
+    ///
+    /// t = ln(u₀/u)/α, written with the fallen so that a short fight keeps its digits; endless where nothing is left.
+    pub fn time_to(&self, point: &OrbitPoint) -> f64 {
+        let now = self.root.x * point.left.x + self.root.y * point.left.y;
+        let gone = self.root.x * point.fallen.x + self.root.y * point.fallen.y;
+        libm::log1p(gone / now) / self.alpha
+    }
+
+    /// Where the fight is at the time `t` after the start.
+    pub fn point_at(&self, t: f64) -> OrbitPoint {
+        let angle = self.alpha * t;
+        let decayed = self.u * libm::exp(-angle);
+        // At parity v stays 0 however long it grows.
+        let grown = if self.v == 0.0 {
+            0.0
+        } else {
+            self.v * libm::exp(angle)
+        };
+        let root = self.root;
+        let left = Both {
+            x: (decayed + grown) / (2.0 * root.x),
+            y: (decayed - grown) / (2.0 * root.y),
+        };
+        OrbitPoint {
+            left,
+            fallen: Both::of(|side| self.fallen(side, angle, left)),
+        }
+    }
+
+    /// y₀·√(a/b)·sinh αt − x₀·(cosh αt − 1) for x: while little has fallen, it has more digits than x₀ − x.
+    fn fallen(&self, side: Side, angle: f64, left: Both<f64>) -> f64 {
+        let start = self.start[side];
+        if angle > 1.0 {
+            return start - left[side];
+        }
+        let enemy = side.enemy();
+        let sine = libm::sinh(angle / 2.0);
+        let drawn = self.start[enemy] * self.root[enemy] / self.root[side];
+        drawn * libm::sinh(angle) - start * 2.0 * sine * sine
+    }
+}

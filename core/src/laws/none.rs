@@ -1,0 +1,22 @@
+//! No fire at all: the side is shot at, and does not shoot.
+
+use super::{Law, NO_POWER, Power, RateMeaning};
+
+/// The law of a side that does not fire.
+pub static NONE: Law = Law {
+    word: "none",
+    label: "None",
+    formula: "0",
+    source: "no fire",
+    rate: RateMeaning::NoRate,
+    shooters: |_| 0.0,
+    per_target: |_| {
+        [
+            Power {
+                coefficient: 1.0,
+                exponent: 0.0,
+            },
+            NO_POWER,
+        ]
+    },
+};

@@ -1,0 +1,26 @@
+//! Attrition equations, from a line of text to an outcome.
+//!
+//! `text → Pairs → Statement → Engagement → Trajectory → Outcome → words and pictures`, with no step back. Pure: no
+//! browser, no clock, no files, no threads; the same link gives the same bits on every machine.
+
+pub mod answer;
+pub mod caution;
+pub mod demo;
+pub mod fight;
+pub mod golden;
+pub mod keys;
+pub mod laws;
+pub mod mark;
+pub mod number;
+pub mod orbit_point;
+pub mod outcome;
+pub mod pairs;
+pub mod picture;
+pub mod problem;
+pub mod quantity;
+pub mod sides;
+pub mod state;
+pub mod statement;
+pub mod terms;
+pub mod trajectory;
+pub mod words;

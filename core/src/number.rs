@@ -1,0 +1,172 @@
+//! Numbers as the link writes them, and how to write what is not one.
+//!
+//! `number = [ "-" ] digits [ "." digits ] [ ( "e" | "E" ) [ "-" ] digits ]`
+
+/// Reads a number of the link's grammar; the error says how to write it instead.
+///
+/// # Errors
+/// A hint in words, without a full stop, for texts outside the grammar and for numbers beyond the range of a double.
+pub fn read(text: &str) -> Result<f64, String> {
+    if !is_number(text) {
+        return Err(hint(text));
+    }
+    match text.parse::<f64>() {
+        Ok(value) if value.is_infinite() => Err("is too large".into()),
+        Ok(0.0)
+            if text
+                .split(['e', 'E'])
+                .next()
+                .is_some_and(|digits| digits.contains(|c| ('1'..='9').contains(&c))) =>
+        {
+            Err("is too small to be told from 0: write 0".into())
+        }
+        // A zero has one sign only, or two links of the same meaning would differ.
+        Ok(value) => Ok(value + 0.0),
+        Err(_) => Err(hint(text)),
+    }
+}
+
+/// Whether `text` is a number of the grammar.
+fn is_number(text: &str) -> bool {
+    let text = text.strip_prefix('-').unwrap_or(text);
+    let (mantissa, exponent) = match text.split_once(['e', 'E']) {
+        Some((mantissa, exponent)) => (mantissa, Some(exponent)),
+        None => (text, None),
+    };
+    let (whole, fraction) = match mantissa.split_once('.') {
+        Some((whole, fraction)) => (whole, Some(fraction)),
+        None => (mantissa, None),
+    };
+    digits(whole)
+        && fraction.is_none_or(digits)
+        && exponent.is_none_or(|exponent| digits(exponent.strip_prefix('-').unwrap_or(exponent)))
+}
+
+fn digits(text: &str) -> bool {
+    !text.is_empty() && text.bytes().all(|byte| byte.is_ascii_digit())
+}
+
+/// How to write what `text` seems to mean.
+fn hint(text: &str) -> String {
+    let instead = |written: String, why: &str| {
+        if is_number(&written) {
+            Some(format!("write {written}, {why}"))
+        } else {
+            None
+        }
+    };
+    thousands(text)
+        .and_then(|plain| instead(plain, "without marks for thousands"))
+        .or_else(|| {
+            one(text, ',')
+                .then(|| instead(text.replace(',', "."), "with a point"))
+                .flatten()
+        })
+        .or_else(|| {
+            text.strip_suffix('.')
+                .and_then(|whole| instead(whole.into(), "without the point at the end"))
+        })
+        .or_else(|| {
+            let (sign, rest) = text.strip_prefix('-').map_or(("", text), |rest| ("-", rest));
+            rest.starts_with('.')
+                .then(|| instead(format!("{sign}0{rest}"), "with a 0 before the point"))
+                .flatten()
+        })
+        .or_else(|| {
+            text.contains('+')
+                .then(|| instead(text.replace('+', ""), "without the plus sign"))
+                .flatten()
+        })
+        .or_else(|| {
+            instead(
+                text.replace(['\u{2212}', '\u{2013}', '\u{2010}', '\u{2011}'], "-"),
+                "with a plain hyphen for the minus",
+            )
+        })
+        .or_else(|| instead(text.replace(char::is_whitespace, ""), "without blanks"))
+        .or_else(|| per_cent(text))
+        .or_else(|| with_unit(text))
+        .unwrap_or_else(|| "write a number, such as 600 or 0.04".into())
+}
+
+fn one(text: &str, mark: char) -> bool {
+    text.matches(mark).count() == 1
+}
+
+/// `1,000` and `1'000` without their marks, where every group but the first has three digits.
+fn thousands(text: &str) -> Option<String> {
+    for mark in [',', '\'', '\u{2019}', '_', '.', ' ', '\u{a0}', '\u{202f}'] {
+        let (body, fraction) = match text.split_once('.') {
+            Some((body, fraction)) if mark != '.' => (body, Some(fraction)),
+            _ => (text, None),
+        };
+        let groups: Vec<&str> = body.trim_start_matches('-').split(mark).collect();
+        let first = groups[0];
+        let grouped = groups.len() > 1 + usize::from(mark == '.')
+            && (1..=3).contains(&first.len())
+            && !first.starts_with('0')
+            && groups[1..].iter().all(|group| group.len() == 3);
+        if grouped {
+            let plain = body.replace(mark, "");
+            return Some(fraction.map_or(plain.clone(), |fraction| format!("{plain}.{fraction}")));
+        }
+    }
+    None
+}
+
+fn per_cent(text: &str) -> Option<String> {
+    let number = text.strip_suffix('%')?.trim_end();
+    let value = number.parse::<f64>().ok().filter(|_| is_number(number))?;
+    Some(format!("write {}, without the per-cent sign", value / 100.0))
+}
+
+/// A number with letters behind it, `4h`.
+fn with_unit(text: &str) -> Option<String> {
+    let end = text.trim_end_matches(char::is_alphabetic).trim_end();
+    (end.len() < text.len() && is_number(end)).then(|| format!("write {end} alone, without a unit"))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn numbers_of_the_grammar_are_read() {
+        for (text, value) in [
+            ("0", 0.0),
+            ("-3", -3.0),
+            ("0.04", 0.04),
+            ("1e-9", 1e-9),
+            ("1E9", 1e9),
+            ("007", 7.0),
+        ] {
+            assert_eq!(read(text), Ok(value), "{text}");
+        }
+        assert!(read("-0").is_ok_and(|zero| zero.is_sign_positive()));
+    }
+
+    #[test]
+    fn a_hint_says_how_to_write_it() {
+        for (text, part) in [
+            ("1,000", "write 1000, without marks for thousands"),
+            ("1,000.5", "write 1000.5, without marks for thousands"),
+            ("1.000.000", "write 1000000, without marks for thousands"),
+            ("1 000", "write 1000, without marks for thousands"),
+            ("0,04", "write 0.04, with a point"),
+            ("5.", "write 5, without the point at the end"),
+            (".5", "write 0.5, with a 0 before the point"),
+            ("1e+5", "write 1e5, without the plus sign"),
+            ("\u{2212}3", "write -3, with a plain hyphen for the minus"),
+            ("1 2", "write 12, without blanks"),
+            ("30 %", "write 0.3, without the per-cent sign"),
+            ("4 h", "write 4 alone, without a unit"),
+            ("NaN", "write a number"),
+            ("inf", "write a number"),
+            ("1e999", "too large"),
+            ("1e-999", "too small"),
+        ] {
+            let hint = read(text).expect_err(text);
+            assert!(hint.contains(part), "{text}: {hint}");
+        }
+    }
+}

@@ -1,0 +1,143 @@
+//! What a fight leaves: the outcome, as the batch door, the page and its attributes give it.
+
+use crate::sides::Both;
+use serde::Serialize;
+
+/// Who breaks first.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize)]
+#[serde(rename_all = "lowercase")]
+pub enum Breaks {
+    /// Side X.
+    X,
+    /// Side Y.
+    Y,
+    /// Both at the same moment, to the rounding of the inputs.
+    Both,
+    /// Nobody in finite time, or before the clock.
+    Neither,
+}
+
+/// How the engagement ended.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize)]
+#[serde(rename_all = "lowercase")]
+pub enum Ended {
+    /// A side reached its break line.
+    Break,
+    /// The clock.
+    Clock,
+    /// It never ends; the strengths tend to a limit.
+    Limit,
+    /// Nothing changes.
+    Equilibrium,
+}
+
+/// Who would be left if no side broke and no clock ran.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize)]
+#[serde(rename_all = "lowercase")]
+pub enum ToTheLast {
+    /// Side X.
+    X,
+    /// Side Y.
+    Y,
+    /// Neither: the two wear each other out.
+    Parity,
+}
+
+/// How a piece of the fight was solved, the strongest first.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Serialize)]
+pub enum Method {
+    /// By a formula in time.
+    #[serde(rename = "closed form")]
+    ClosedForm,
+}
+
+/// Losses of one side since time 0, by cause.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Serialize)]
+pub struct Losses {
+    /// By the enemy's fire.
+    pub fire: f64,
+    /// By the enemy's supporting arms.
+    pub support: f64,
+    /// By causes other than the enemy.
+    pub wastage: f64,
+    /// All of them.
+    pub all: f64,
+}
+
+/// What became of one side.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Serialize)]
+pub struct SideOutcome {
+    /// Strength at time 0.
+    pub start: f64,
+    /// What joined after time 0.
+    pub joined: f64,
+    /// What was withdrawn.
+    pub withdrawn: f64,
+    /// Start, lost before, and all arrivals.
+    pub committed: f64,
+    /// Strength at the break, at the clock, or the limit; `None` where it grows without bound.
+    pub end: Option<f64>,
+    /// What it lost since time 0.
+    pub losses: Losses,
+}
+
+/// A stretch of time solved by one method.
+#[derive(Clone, Copy, Debug, PartialEq, Serialize)]
+pub struct PieceOutcome {
+    /// When it begins.
+    pub from: f64,
+    /// When it ends; `None` where it does not.
+    pub to: Option<f64>,
+    /// How it was solved.
+    pub method: Method,
+}
+
+/// What a fight leaves.
+#[derive(Clone, Debug, PartialEq, Serialize)]
+pub struct Outcome {
+    /// Who breaks first.
+    pub breaks: Breaks,
+    /// When, in the link's unit of time; `None` where nobody breaks.
+    pub time: Option<f64>,
+    /// How it ended.
+    pub ended: Ended,
+    /// Who would be left if no side broke and no clock ran; `None` where nothing decides it.
+    pub to_the_last: Option<ToTheLast>,
+    /// When a loser that never reaches 0 falls below one.
+    pub below_one: Option<f64>,
+    /// Side X.
+    pub x: SideOutcome,
+    /// Side Y.
+    pub y: SideOutcome,
+    /// Y's losses by fire and support over X's; `None` over 0.
+    pub loss_exchange_ratio: Option<f64>,
+    /// The same, each over what its side had committed.
+    pub fractional_exchange_ratio: Option<f64>,
+    /// The weakest method used.
+    pub method: Method,
+    /// The stretches of time, in order.
+    pub pieces: Vec<PieceOutcome>,
+    /// The caution that travels with every result.
+    pub caution: &'static str,
+}
+
+impl Outcome {
+    /// What became of each side.
+    pub fn sides(&self) -> Both<&SideOutcome> {
+        Both {
+            x: &self.x,
+            y: &self.y,
+        }
+    }
+
+    /// The ratio of Y's losses to X's, and the ratio of the fractions that they are.
+    pub(crate) fn exchange_ratios(sides: &Both<SideOutcome>) -> (Option<f64>, Option<f64>) {
+        let by_enemy = Both::of(|side| sides[side].losses.fire + sides[side].losses.support);
+        let fraction = Both {
+            x: by_enemy.x / sides.x.committed,
+            y: by_enemy.y / sides.y.committed,
+        };
+        let ratio = |lost: Both<f64>| (lost.x > 0.0).then(|| lost.y / lost.x);
+        (ratio(by_enemy), ratio(fraction))
+    }
+}

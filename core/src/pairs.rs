@@ -1,0 +1,262 @@
+//! The ordered keys and texts of a link, lossless also where they are wrong.
+//!
+//! `link = pair *( "&" pair )`, `pair = key "=" text`: split at the first `=`, then `%XX` decoded as UTF-8 and `+` a
+//! blank. A leading address, `#` or `?` is dropped.
+
+use crate::problem::Problem;
+use percent_encoding::{AsciiSet, NON_ALPHANUMERIC, percent_decode_str, utf8_percent_encode};
+use std::borrow::Cow;
+
+/// The most bytes of encoded text that are read.
+pub const LONGEST_LINK: usize = 16 * 1024;
+
+/// What the writer leaves as it is beside letters and digits: all of it is plain text to mailers and wikis.
+const ESCAPED: &AsciiSet = &NON_ALPHANUMERIC
+    .remove(b'-')
+    .remove(b'.')
+    .remove(b'_')
+    .remove(b',')
+    .remove(b':')
+    .remove(b'@')
+    .remove(b'?')
+    .remove(b'/');
+
+/// One `key=text`, as it was written.
+#[derive(Clone, Debug, PartialEq, Eq)]
+struct Pair {
+    key: String,
+    text: String,
+    /// Where the pair could not be decoded: it is kept, and written again, as it stood.
+    raw: Option<Undecoded>,
+}
+
+#[derive(Clone, Debug, PartialEq, Eq)]
+struct Undecoded {
+    written: String,
+    problem: &'static str,
+}
+
+/// A link's pairs: the state of the page.
+#[derive(Clone, Debug, Default, PartialEq, Eq)]
+pub struct Pairs {
+    pairs: Vec<Pair>,
+    /// The length of a text that was too long to be read.
+    too_long: Option<usize>,
+}
+
+impl Pairs {
+    /// Reads a link. It never fails: what is wrong is kept, and named by [`Pairs::problems`].
+    pub fn parse(link: &str) -> Pairs {
+        let link = without_address(link.trim());
+        if link.len() > LONGEST_LINK {
+            return Pairs {
+                pairs: Vec::new(),
+                too_long: Some(link.len()),
+            };
+        }
+        let pairs = link
+            .split('&')
+            .filter(|piece| !piece.is_empty())
+            .map(Pair::parse)
+            .collect();
+        Pairs {
+            pairs,
+            too_long: None,
+        }
+    }
+
+    /// The text of `key`, decoded, as it was written; `None` where the key is absent.
+    pub fn get(&self, key: &str) -> Option<&str> {
+        self.pairs
+            .iter()
+            .find(|pair| pair.key == key)
+            .map(|pair| pair.text.as_str())
+    }
+
+    /// Gives `key` a text, in its place or at the end; an empty text takes the key away.
+    pub fn set(&mut self, key: &str, text: &str) {
+        self.too_long = None;
+        if text.is_empty() {
+            self.pairs.retain(|pair| pair.key != key);
+            return;
+        }
+        let new = Pair {
+            key: key.into(),
+            text: text.into(),
+            raw: None,
+        };
+        match self.pairs.iter_mut().find(|pair| pair.key == key) {
+            Some(pair) => *pair = new,
+            None => self.pairs.push(new),
+        }
+    }
+
+    /// The keys and their decoded texts, in order.
+    pub fn iter(&self) -> impl Iterator<Item = (&str, &str)> {
+        self.pairs
+            .iter()
+            .map(|pair| (pair.key.as_str(), pair.text.as_str()))
+    }
+
+    /// Whether no pair stands.
+    pub fn is_empty(&self) -> bool {
+        self.pairs.is_empty()
+    }
+
+    /// The link, encoded, with `v=1` last so that it never ends in a mark that a mailer cuts off.
+    pub fn link(&self) -> String {
+        let mut written: Vec<String> = self
+            .pairs
+            .iter()
+            .filter(|pair| pair.key != "v")
+            .map(Pair::written)
+            .collect();
+        let versions: Vec<String> = self
+            .pairs
+            .iter()
+            .filter(|pair| pair.key == "v")
+            .map(Pair::written)
+            .collect();
+        if versions.is_empty() {
+            written.push("v=1".into());
+        }
+        written.extend(versions);
+        written.join("&")
+    }
+
+    /// The length of the encoded text in bytes, also where it was too long to be read.
+    pub fn length(&self) -> usize {
+        self.too_long.unwrap_or_else(|| self.link().len())
+    }
+
+    /// What is wrong with the text as text: its escapes, pieces without `=`; by their place in the link.
+    pub(crate) fn problems(&self) -> Vec<(usize, Problem)> {
+        let undecoded = |(place, pair): (usize, &Pair)| {
+            let raw = pair.raw.as_ref()?;
+            let key = raw.written.contains('=').then(|| pair.key.clone());
+            let problem = raw.problem.into();
+            Some((
+                place,
+                Problem {
+                    key,
+                    item: None,
+                    found: Some(pair.text.clone()),
+                    problem,
+                },
+            ))
+        };
+        self.pairs.iter().enumerate().filter_map(undecoded).collect()
+    }
+}
+
+impl Pair {
+    fn parse(piece: &str) -> Pair {
+        let undecoded = |key: &str, text: &str, problem| Pair {
+            key: key.into(),
+            text: text.into(),
+            raw: Some(Undecoded {
+                written: piece.into(),
+                problem,
+            }),
+        };
+        let Some((key, text)) = piece.split_once('=') else {
+            return undecoded("", piece, "write it as key=value");
+        };
+        match (decode(key), decode(text)) {
+            (Ok(key), Ok(text)) => Pair { key, text, raw: None },
+            (Ok(key), Err(problem)) => undecoded(&key, text, problem),
+            (Err(problem), _) => undecoded(key, text, problem),
+        }
+    }
+
+    fn written(&self) -> String {
+        match &self.raw {
+            Some(raw) => raw.written.clone(),
+            None => format!("{}={}", encode(&self.key), encode(&self.text)),
+        }
+    }
+}
+
+/// Escapes all but what the writer leaves as it is.
+pub fn encode(text: &str) -> Cow<'_, str> {
+    utf8_percent_encode(text, ESCAPED).into()
+}
+
+fn decode(written: &str) -> Result<String, &'static str> {
+    let escapes_hold = written.split('%').skip(1).all(|rest| {
+        let digits = rest.as_bytes().get(..2);
+        digits.is_some_and(|digits| digits.iter().all(u8::is_ascii_hexdigit))
+    });
+    if !escapes_hold {
+        return Err("a % must be followed by two hexadecimal digits: write %25 for the sign itself");
+    }
+    let blanks = written.replace('+', " ");
+    match percent_decode_str(&blanks).decode_utf8() {
+        Ok(text) => Ok(text.into_owned()),
+        Err(_) => Err("the escapes are not UTF-8"),
+    }
+}
+
+/// The part of `link` behind a leading address, `#` or `?`.
+///
+/// An address shows by a `#` or `?` before the first `=`; its fragment counts where that holds a key, else its query.
+fn without_address(link: &str) -> &str {
+    let head = link.split('=').next().unwrap_or(link);
+    match head.find(['#', '?']) {
+        Some(at) if head.as_bytes()[at] == b'#' => &link[at + 1..],
+        Some(at) => {
+            let query = &link[at + 1..];
+            match query.split_once('#') {
+                Some((_, fragment)) if fragment.contains('=') => fragment,
+                Some((query, _)) => query,
+                None => query,
+            }
+        }
+        None if head == link && link.contains("://") => "",
+        None => link,
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn an_address_is_dropped() {
+        for link in [
+            "x.start=6",
+            "#x.start=6",
+            "?x.start=6",
+            "file:///a/b.html#x.start=6",
+            "page.html?theme=1#x.start=6",
+            "https://wiki.example/page?x.start=6#top",
+        ] {
+            assert_eq!(Pairs::parse(link).get("x.start"), Some("6"), "{link}");
+        }
+        assert!(Pairs::parse("file:///a/b.html").is_empty());
+    }
+
+    #[test]
+    fn a_question_is_no_address() {
+        let pairs = Pairs::parse("x.start=600?400..900&title=a#b");
+        assert_eq!(pairs.get("x.start"), Some("600?400..900"));
+        assert_eq!(pairs.get("title"), Some("a#b"));
+    }
+
+    #[test]
+    fn what_is_wrong_is_kept_as_it_stood() {
+        let link = "title=%ZZ&note=%FF&bare&x.start=1%2C000&v=1";
+        let pairs = Pairs::parse(link);
+        assert_eq!(pairs.link(), "title=%ZZ&note=%FF&bare&x.start=1,000&v=1");
+        assert_eq!(pairs.problems().len(), 3);
+        assert_eq!(Pairs::parse(&pairs.link()), pairs);
+    }
+
+    #[test]
+    fn an_empty_text_takes_the_key_away() {
+        let mut pairs = Pairs::parse("x.start=600&y.start=4");
+        pairs.set("x.start", "");
+        pairs.set("title", "a & b=c");
+        assert_eq!(pairs.link(), "y.start=4&title=a%20%26%20b%3Dc&v=1");
+    }
+}

@@ -1,0 +1,93 @@
+//! What the two pictures show, in the units of the engagement: the shell draws it on canvas and as SVG.
+
+mod axis;
+mod orbit;
+mod strength;
+
+pub use axis::{Axis, Tick};
+pub use orbit::orbit;
+pub use strength::strength;
+
+use crate::sides::{Both, Side};
+
+/// What a line stands for.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Role {
+    /// The strength of a side over time.
+    Strength(Side),
+    /// The engagement, one side against the other.
+    Fight,
+    /// How it would go on if both fought to the last.
+    ToTheLast,
+    /// An engagement from other strengths under the same rates.
+    Neighbour,
+    /// Where neither side would be left.
+    Parity,
+    /// The strength at which a side breaks.
+    BreakLine(Side),
+    /// The moment at which a side breaks, or both do.
+    Defeat,
+    /// The moment at which the engagement is cut off.
+    Clock,
+}
+
+/// A line through points, all within the axes.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Line {
+    /// What it stands for.
+    pub role: Role,
+    /// Its points, across and up.
+    pub points: Vec<(f64, f64)>,
+    /// Its words; empty where it needs none.
+    pub label: String,
+}
+
+/// A point that stands for something.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Spot {
+    /// The side whose point it is; `None` for both.
+    pub side: Option<Side>,
+    /// Where, across and up.
+    pub at: (f64, f64),
+    /// Its words.
+    pub label: String,
+}
+
+/// The same picture as a table.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Table {
+    /// The heads of the columns, with their units.
+    pub heads: Vec<String>,
+    /// The rows of cells.
+    pub rows: Vec<Vec<String>>,
+}
+
+/// A picture.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Picture {
+    /// The axis across.
+    pub across: Axis,
+    /// The axis up.
+    pub up: Axis,
+    /// The lines, those in the background first.
+    pub lines: Vec<Line>,
+    /// The spots.
+    pub spots: Vec<Spot>,
+    /// What it shows, in one sentence.
+    pub summary: String,
+    /// The same as a table.
+    pub table: Table,
+    /// The names of the sides, for labels.
+    pub names: Both<String>,
+}
+
+/// How many points a curve is drawn through.
+const POINTS: usize = 320;
+
+/// How many steps a table has.
+const STEPS: usize = 10;
+
+/// `count` + 1 even steps from 0 to 1.
+fn steps(count: usize) -> impl Iterator<Item = f64> {
+    (0..=count).map(move |step| step as f64 / count as f64)
+}

@@ -1,0 +1,150 @@
+//! A number, a number in doubt, or a number in question.
+//!
+//! `quantity = number | number ".." number [ ".." number ] | [ number ] "?" [ number ".." number ]`
+
+use crate::number;
+
+/// What may stand wherever the link has a number.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Quantity {
+    /// A plain number.
+    Number(f64),
+    /// A number known to lie between two values, with a likeliest one where three are written.
+    Interval {
+        /// The least value.
+        low: f64,
+        /// The likeliest value, for a triangular distribution.
+        likely: Option<f64>,
+        /// The greatest value.
+        high: f64,
+    },
+    /// A number that is asked for.
+    Question {
+        /// The number it has now.
+        now: Option<f64>,
+        /// Where to look.
+        between: Option<(f64, f64)>,
+    },
+}
+
+impl Quantity {
+    /// Reads a quantity; outer blanks are ignored.
+    ///
+    /// # Errors
+    /// A hint in words, without a full stop.
+    pub fn read(text: &str) -> Result<Quantity, String> {
+        let text = text.trim();
+        if let Some((now, between)) = text.split_once('?') {
+            let now = if now.is_empty() {
+                None
+            } else {
+                Some(number::read(now)?)
+            };
+            let between = if between.is_empty() {
+                None
+            } else {
+                Some(range(between)?)
+            };
+            return Ok(Quantity::Question { now, between });
+        }
+        match text.split("..").collect::<Vec<_>>()[..] {
+            [one] => number::read(one).map(Quantity::Number),
+            [low, high] => ordered(&[number::read(low)?, number::read(high)?], None),
+            [low, likely, high] => {
+                let likely = number::read(likely)?;
+                ordered(&[number::read(low)?, likely, number::read(high)?], Some(likely))
+            }
+            _ => Err("write low..high or low..likely..high".into()),
+        }
+    }
+
+    /// The numbers that the quantity is written with, each of which must keep the key's limits.
+    pub fn numbers(&self) -> impl Iterator<Item = f64> {
+        let written = match *self {
+            Quantity::Number(value) => [Some(value), None, None],
+            Quantity::Interval { low, likely, high } => [Some(low), likely, Some(high)],
+            Quantity::Question { now, between } => [now, between.map(|b| b.0), between.map(|b| b.1)],
+        };
+        written.into_iter().flatten()
+    }
+}
+
+fn range(text: &str) -> Result<(f64, f64), String> {
+    let Some((low, high)) = text.split_once("..") else {
+        return Err("write the range of a question as low..high".into());
+    };
+    let (low, high) = (number::read(low)?, number::read(high)?);
+    if low < high {
+        Ok((low, high))
+    } else {
+        Err("write the smaller end first".into())
+    }
+}
+
+fn ordered(values: &[f64], likely: Option<f64>) -> Result<Quantity, String> {
+    let (low, high) = (values[0], values[values.len() - 1]);
+    if low == high || values.is_sorted() {
+        if low < high {
+            return Ok(Quantity::Interval { low, likely, high });
+        }
+        return Err("the two ends are the same: write one number".into());
+    }
+    Err("write the smallest value first".into())
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn the_three_kinds_are_told_apart() {
+        assert_eq!(Quantity::read(" 0.04 "), Ok(Quantity::Number(0.04)));
+        assert_eq!(
+            Quantity::read("1..2"),
+            Ok(Quantity::Interval {
+                low: 1.0,
+                likely: None,
+                high: 2.0
+            })
+        );
+        assert_eq!(
+            Quantity::read("1..1..2"),
+            Ok(Quantity::Interval {
+                low: 1.0,
+                likely: Some(1.0),
+                high: 2.0
+            })
+        );
+        assert_eq!(
+            Quantity::read("?"),
+            Ok(Quantity::Question {
+                now: None,
+                between: None
+            })
+        );
+        assert_eq!(
+            Quantity::read("6?4..9"),
+            Ok(Quantity::Question {
+                now: Some(6.0),
+                between: Some((4.0, 9.0))
+            })
+        );
+    }
+
+    #[test]
+    fn disorder_is_a_problem() {
+        for text in [
+            "2..1",
+            "1..3..2",
+            "1..1",
+            "1...2",
+            "1..2..3..4",
+            "?5",
+            "?5..4",
+            "6??",
+            "2..1..1",
+        ] {
+            assert!(Quantity::read(text).is_err(), "{text}");
+        }
+    }
+}

@@ -1,0 +1,104 @@
+//! The outcome in one sentence.
+
+use super::format::{strength, time};
+use crate::outcome::{Breaks, Ended, Outcome, ToTheLast};
+use crate::sides::Side;
+use crate::statement::{Statement, Values};
+
+/// The outcome in words. It begins "In this model", so that it stays true when it is copied alone.
+pub fn sentence(statement: &Statement, outcome: &Outcome) -> String {
+    let names = &statement.names;
+    let left = format!(
+        "left: {}, {}",
+        left(statement, outcome, Side::X),
+        left(statement, outcome, Side::Y)
+    );
+    let what = match (outcome.breaks, outcome.ended) {
+        (Breaks::X, _) => broken(statement, outcome, Side::X),
+        (Breaks::Y, _) => broken(statement, outcome, Side::Y),
+        (Breaks::Both, _) => both_broken(statement, outcome),
+        (Breaks::Neither, Ended::Clock) => {
+            let clock = outcome.pieces.last().and_then(|piece| piece.to).unwrap_or(0.0);
+            format!(
+                "neither side breaks by the clock, at {}",
+                time(clock, statement.unit)
+            )
+        }
+        (Breaks::Neither, Ended::Equilibrium) => {
+            return format!(
+                "In this model nothing changes: neither {}'s fire nor {}'s has any effect.",
+                names.x, names.y
+            );
+        }
+        (Breaks::Neither, _) => return endless(statement, outcome),
+    };
+    format!("In this model {what}; {left}.")
+}
+
+fn left(statement: &Statement, outcome: &Outcome, side: Side) -> String {
+    let outcome = outcome.sides()[side];
+    let end = outcome.end.unwrap_or(f64::INFINITY);
+    format!(
+        "{} {} of {}",
+        statement.names[side],
+        strength(end),
+        strength(outcome.committed)
+    )
+}
+
+/// Whether the side fights to the last: its break point is 1.
+fn to_the_last(statement: &Statement, side: Side) -> bool {
+    statement.engagement(&Values::new()).sides[side].break_point == 1.0
+}
+
+fn broken(statement: &Statement, outcome: &Outcome, side: Side) -> String {
+    let name = &statement.names[side];
+    let at = outcome.time.unwrap_or(0.0);
+    if at == 0.0 {
+        return format!("{name} is past its break point at the start already");
+    }
+    let after = time(at, statement.unit);
+    if to_the_last(statement, side) {
+        format!("{name} is brought to 0 first, after {after}")
+    } else {
+        format!("{name} breaks first, after {after}")
+    }
+}
+
+fn both_broken(statement: &Statement, outcome: &Outcome) -> String {
+    match outcome.time.unwrap_or(0.0) {
+        0.0 => "both sides are past their break points at the start already".into(),
+        at => format!(
+            "both sides break at the same moment, after {}",
+            time(at, statement.unit)
+        ),
+    }
+}
+
+/// Nobody breaks in finite time.
+fn endless(statement: &Statement, outcome: &Outcome) -> String {
+    let names = &statement.names;
+    let below = |fading: &str| match outcome.below_one {
+        Some(at) if at > 0.0 => format!(" {fading} falls below one at {}.", time(at, statement.unit)),
+        _ => String::new(),
+    };
+    let loser = match outcome.to_the_last {
+        Some(ToTheLast::X) => Side::Y,
+        Some(ToTheLast::Y) => Side::X,
+        _ => {
+            return format!(
+                "In this model neither side breaks: {} and {} are at parity and wear each other out without end.{}",
+                names.x,
+                names.y,
+                below("The first of them")
+            );
+        }
+    };
+    format!(
+        "In this model {} fades but never reaches 0; {} tends to {}.{}",
+        names[loser],
+        names[loser.enemy()],
+        strength(outcome.sides()[loser.enemy()].end.unwrap_or(f64::INFINITY)),
+        below("It")
+    )
+}
