@@ -1,0 +1,194 @@
+//! The built page in Chromium, for the tests that look at it as a reader would.
+//!
+//! Each [`Browser`] has a driver and a profile of its own, on a port that the system picked, and leaves nothing behind
+//! when it is dropped, also by a test that panics. It blocks, so that a test reads from top to bottom, and it waits
+//! on what the page says of itself, never for a length of time.
+
+mod command;
+mod driver;
+mod files;
+mod input;
+mod sheet;
+mod watch;
+
+use std::path::PathBuf;
+use std::time::Duration;
+
+use fantoccini::{Client, ClientBuilder};
+use hyper_util::client::legacy::connect::HttpConnector;
+use serde_json::{Value, json};
+use tokio::runtime::Runtime;
+
+use command::Command;
+use driver::Driver;
+pub use files::{page_url, wiki_url};
+pub use input::Key;
+pub use sheet::Shown;
+
+/// How long anything may take before a test gives up on it. Far beyond what it takes, for a busy machine.
+pub const PATIENCE: Duration = Duration::from_secs(20);
+
+/// A window's size in CSS pixels, and how many device pixels stand for one of them.
+#[derive(Clone, Copy, Debug)]
+pub struct Screen {
+    /// In CSS pixels.
+    pub width: u32,
+    /// In CSS pixels.
+    pub height: u32,
+    /// Device pixels for a CSS pixel.
+    pub ratio: f64,
+}
+
+impl Screen {
+    /// A desk.
+    pub const DESK: Self = Self {
+        width: 1280,
+        height: 900,
+        ratio: 1.0,
+    };
+    /// A small telephone.
+    pub const SMALL: Self = Self {
+        width: 320,
+        height: 640,
+        ratio: 2.0,
+    };
+    /// A wiki's frame, upright.
+    pub const FRAME_UPRIGHT: Self = Self {
+        width: 360,
+        height: 480,
+        ratio: 2.0,
+    };
+    /// A wiki's frame, lying.
+    pub const FRAME_LYING: Self = Self {
+        width: 800,
+        height: 420,
+        ratio: 1.0,
+    };
+}
+
+/// A browser with one window.
+pub struct Browser {
+    // Dropped in this order: the driver may only go once the session is closed.
+    client: Option<Client>,
+    runtime: Runtime,
+    driver: Driver,
+}
+
+impl Browser {
+    /// Starts a browser that shows an empty page.
+    ///
+    /// # Panics
+    /// Where Chromium or its driver is not installed or does not start.
+    pub fn start() -> Self {
+        let driver = Driver::start();
+        let runtime = tokio::runtime::Builder::new_current_thread()
+            .enable_all()
+            .build()
+            .expect("a runtime for one thread");
+        let mut builder = ClientBuilder::new(HttpConnector::new());
+        builder.capabilities(driver.capabilities());
+        let client = runtime
+            .block_on(builder.connect(&driver.address()))
+            .expect("chromedriver starts Chromium");
+        let browser = Self {
+            client: Some(client),
+            runtime,
+            driver,
+        };
+        browser.watch();
+        browser.screen(Screen::DESK);
+        browser
+    }
+
+    /// The folder of everything that this browser and its driver write.
+    pub fn folder(&self) -> PathBuf {
+        self.driver.folder().to_owned()
+    }
+
+    /// Runs something of the driver's to its end.
+    fn run<T, E: std::fmt::Display>(&self, what: &str, doing: impl Future<Output = Result<T, E>>) -> T {
+        match self
+            .runtime
+            .block_on(async { tokio::time::timeout(3 * PATIENCE, doing).await })
+        {
+            Ok(Ok(done)) => done,
+            Ok(Err(error)) => panic!("{what}: {error}"),
+            Err(_) => panic!("{what}: no answer; the page hangs"),
+        }
+    }
+
+    fn client(&self) -> &Client {
+        self.client.as_ref().expect("only taken when dropped")
+    }
+
+    /// A command of Chromium's own protocol.
+    pub fn devtools(&self, method: &'static str, parameters: Value) -> Value {
+        self.run(
+            method,
+            self.client().issue_cmd(Command::devtools(method, parameters)),
+        )
+    }
+
+    /// The value of a script's `return`. Not subject to the page's policy.
+    pub fn script(&self, text: &str, arguments: Vec<Value>) -> Value {
+        self.run(text, self.client().execute(text, arguments))
+    }
+
+    /// Waits until a script's body returns something true, and hands that back.
+    ///
+    /// # Panics
+    /// Where it does not within [`PATIENCE`]; says what the page showed then.
+    #[track_caller]
+    pub fn wait(&self, what: &str, body: &str) -> Value {
+        // Looked at from within the page, so that neither side spins.
+        let text = format!(
+            "const [patience, done] = arguments; const end = performance.now() + patience;
+             const look = () => {{ {body} }};
+             (function again() {{
+               let found = null; try {{ found = look(); }} catch (error) {{ found = null; }}
+               if (found) done(found);
+               else if (performance.now() > end) done(null);
+               else setTimeout(again, 5);
+             }})();"
+        );
+        let patience = json!(PATIENCE.as_millis() as u64);
+        let found = self.run(what, self.client().execute_async(&text, vec![patience]));
+        assert!(!found.is_null(), "waited in vain: {what}\n{}", self.summary());
+        found
+    }
+
+    /// Gives the window's content another size.
+    pub fn screen(&self, screen: Screen) {
+        let Screen { width, height, ratio } = screen;
+        let metrics = json!({"width": width, "height": height, "deviceScaleFactor": ratio, "mobile": false});
+        self.devtools("Emulation.setDeviceMetricsOverride", metrics);
+    }
+
+    /// Sets what the system prefers, for example `prefers-color-scheme` to `dark`.
+    pub fn prefers(&self, feature: &str, value: &str) {
+        self.devtools(
+            "Emulation.setEmulatedMedia",
+            json!({"features": [{"name": feature, "value": value}]}),
+        );
+    }
+
+    /// Takes the whole page's picture to `screens/NAME.png` in the target directory, for a person to look at.
+    pub fn picture(&self, name: &str) {
+        let taken = self.devtools(
+            "Page.captureScreenshot",
+            json!({"format": "png", "captureBeyondViewport": true}),
+        );
+        files::write_picture(name, taken["data"].as_str().expect("a picture in base64"));
+    }
+}
+
+impl Drop for Browser {
+    fn drop(&mut self) {
+        if let Some(client) = self.client.take() {
+            // Whatever is left is ended with the driver.
+            let _ = self
+                .runtime
+                .block_on(async { tokio::time::timeout(Duration::from_secs(5), client.close()).await });
+        }
+    }
+}

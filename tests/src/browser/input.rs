@@ -1,0 +1,149 @@
+//! What a reader's hands do.
+
+use fantoccini::Locator;
+use fantoccini::elements::Element;
+use serde_json::json;
+
+use super::Browser;
+
+/// Keys that type no letter, as WebDriver writes them.
+#[derive(Clone, Copy, Debug)]
+pub enum Key {
+    /// One character back.
+    Backspace,
+    /// To the next control.
+    Tab,
+    /// Done.
+    Enter,
+    /// To the far end.
+    End,
+    /// To the near end.
+    Home,
+    /// A step back.
+    Left,
+    /// A step on.
+    Right,
+    /// A large step back.
+    PageUp,
+    /// A large step on.
+    PageDown,
+}
+
+impl Key {
+    fn code(self) -> char {
+        match self {
+            Self::Backspace => '\u{e003}',
+            Self::Tab => '\u{e004}',
+            Self::Enter => '\u{e007}',
+            Self::PageUp => '\u{e00e}',
+            Self::PageDown => '\u{e00f}',
+            Self::End => '\u{e010}',
+            Self::Home => '\u{e011}',
+            Self::Left => '\u{e012}',
+            Self::Right => '\u{e014}',
+        }
+    }
+}
+
+impl Browser {
+    /// Writes into a field in place of what stands there, key by key. An empty text clears it.
+    #[track_caller]
+    pub fn write(&self, name: &str, text: &str) {
+        let field = self.field(name);
+        // Control and A choose all that stands there.
+        let keys = if text.is_empty() {
+            Key::Backspace.code().to_string()
+        } else {
+            text.to_owned()
+        };
+        self.run(name, field.send_keys(&format!("\u{e009}a\u{e000}{keys}")));
+    }
+
+    /// Writes on after what stands in a field.
+    #[track_caller]
+    pub fn write_on(&self, name: &str, text: &str) {
+        self.run(
+            name,
+            self.field(name).send_keys(&format!("{}{text}", Key::End.code())),
+        );
+    }
+
+    /// Chooses a value of a list.
+    #[track_caller]
+    pub fn choose(&self, name: &str, value: &str) {
+        self.run(value, self.field(name).select_by_value(value));
+    }
+
+    /// Presses a key where the focus is, or at an element.
+    #[track_caller]
+    pub fn press(&self, selector: &str, key: Key) {
+        self.run(
+            selector,
+            self.element(selector).send_keys(&key.code().to_string()),
+        );
+    }
+
+    /// Goes on from where the focus is to the next control.
+    #[track_caller]
+    pub fn leave(&self) {
+        let active = self.run("the focus", self.client().active_element());
+        self.run("the focus", active.send_keys(&Key::Tab.code().to_string()));
+    }
+
+    /// Clicks.
+    #[track_caller]
+    pub fn click(&self, selector: &str) {
+        self.run(selector, self.element(selector).click());
+    }
+
+    /// Moves the mouse to a place in an element, in parts of its width and height, without pressing.
+    #[track_caller]
+    pub fn hover(&self, selector: &str, across: f64, down: f64) {
+        let (x, y) = self.place(selector, across, down);
+        self.devtools(
+            "Input.dispatchMouseEvent",
+            json!({"type": "mouseMoved", "x": x, "y": y}),
+        );
+    }
+
+    /// Touches an element at a place, in parts of its width and height, and moves the finger to another.
+    #[track_caller]
+    pub fn swipe(&self, selector: &str, from: (f64, f64), to: (f64, f64)) {
+        let point = |(across, down)| {
+            let (x, y) = self.place(selector, across, down);
+            json!([{"x": x, "y": y}])
+        };
+        let (from, to) = (point(from), point(to));
+        self.devtools("Emulation.setTouchEmulationEnabled", json!({"enabled": true}));
+        self.devtools(
+            "Input.dispatchTouchEvent",
+            json!({"type": "touchStart", "touchPoints": from}),
+        );
+        self.devtools(
+            "Input.dispatchTouchEvent",
+            json!({"type": "touchMove", "touchPoints": to}),
+        );
+        self.devtools(
+            "Input.dispatchTouchEvent",
+            json!({"type": "touchEnd", "touchPoints": []}),
+        );
+    }
+
+    fn place(&self, selector: &str, across: f64, down: f64) -> (f64, f64) {
+        let script = "const e = document.querySelector(arguments[0]); e.scrollIntoView({block: 'center'});
+                      const r = e.getBoundingClientRect(); return [r.left, r.top, r.width, r.height];";
+        let found = self.script(script, vec![json!(selector)]);
+        let number = |index: usize| found[index].as_f64().expect("a rectangle has four numbers");
+        (number(0) + across * number(2), number(1) + down * number(3))
+    }
+
+    #[track_caller]
+    fn field(&self, name: &str) -> Element {
+        self.element(&format!("[name='{name}']"))
+    }
+
+    #[track_caller]
+    pub(super) fn element(&self, selector: &str) -> Element {
+        self.run(selector, self.client().find(Locator::Css(selector)))
+    }
+}
