@@ -57,6 +57,7 @@ pub fn fight(engagement: &Engagement, effort: Effort) -> Fight {
         start,
         equation,
         motion: Motion::new(start, &fire, margin),
+        parity: settled,
     };
 
     let end = broken_at_start(engagement, &lines)

@@ -56,7 +56,7 @@ impl Pairs {
         }
         let pairs = link
             .split('&')
-            .filter(|piece| !piece.is_empty())
+            .filter(|piece| !piece.trim().is_empty())
             .map(Pair::parse)
             .collect();
         Pairs {
@@ -105,23 +105,28 @@ impl Pairs {
 
     /// The link, encoded, with `v=1` last so that it never ends in a mark that a mailer cuts off.
     pub fn link(&self) -> String {
-        let mut written: Vec<String> = self
+        let written: Vec<String> = self
             .pairs
             .iter()
             .filter(|pair| pair.key != "v")
             .map(Pair::written)
             .collect();
-        let versions: Vec<String> = self
+        let mut versions: Vec<String> = self
             .pairs
             .iter()
             .filter(|pair| pair.key == "v")
             .map(Pair::written)
             .collect();
         if versions.is_empty() {
-            written.push("v=1".into());
+            versions.push("v=1".into());
         }
-        written.extend(versions);
-        written.join("&")
+        let link = [&written[..], &versions].concat().join("&");
+        // A stray mark of an address before the first `=` would cut off what stands before it.
+        if without_address(&link) == link {
+            link
+        } else {
+            [versions, written].concat().join("&")
+        }
     }
 
     /// The length of the encoded text in bytes, also where it was too long to be read.
@@ -151,6 +156,7 @@ impl Pairs {
 
 impl Pair {
     fn parse(piece: &str) -> Pair {
+        let piece = piece.trim();
         let undecoded = |key: &str, text: &str, problem| Pair {
             key: key.into(),
             text: text.into(),

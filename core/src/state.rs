@@ -74,6 +74,32 @@ impl StateEquation {
         if left > 0.0 { left } else { TwoFloat::from(0.0) }
     }
 
+    /// What has fallen of `side`, brought down from `from` to `left` at the cost `cost`: also where that is so little of
+    /// `from` that the difference of the strengths would have no digits.
+    pub fn fallen(&self, side: Side, from: TwoFloat, left: TwoFloat, cost: TwoFloat) -> TwoFloat {
+        if left <= 0.0 {
+            return from;
+        }
+        let power = self.integrand[side][0];
+        let area = cost / self.rate[side] / power.coefficient;
+        if power.exponent == 0.0 {
+            area
+        } else {
+            area * 2.0 / (from + left)
+        }
+    }
+
+    /// The strength of `side` that it would cost `cost` to bring down to the last.
+    pub fn worth(&self, side: Side, cost: TwoFloat) -> TwoFloat {
+        let power = self.integrand[side][0];
+        let area = cost / self.rate[side] / power.coefficient;
+        if power.exponent == 0.0 {
+            area
+        } else {
+            (area * 2.0).sqrt()
+        }
+    }
+
     /// Whether two costs are the same to the rounding of the inputs.
     pub fn tie(cost: Both<TwoFloat>) -> bool {
         let larger = if cost.x > cost.y { cost.x } else { cost.y };

@@ -103,6 +103,8 @@ pub struct Piece {
     pub equation: StateEquation,
     /// How the strengths move.
     pub motion: Motion,
+    /// Whether the sides stand at parity to the rounding of the inputs, and so wear each other out together.
+    pub parity: bool,
 }
 
 impl Piece {
@@ -112,14 +114,23 @@ impl Piece {
     pub fn point_with(&self, side: Side, strength: TwoFloat) -> OrbitPoint {
         let enemy = side.enemy();
         let cost = self.equation.cost(side, self.start[side].into(), strength);
+        let from = Both::of(|side| TwoFloat::from(self.start[side]));
         let mut left = Both {
             x: strength,
             y: strength,
         };
-        left[enemy] = self.equation.left(enemy, self.start[enemy].into(), cost);
+        let mut fallen = Both::of(|side| from[side] - strength);
+        if self.parity {
+            let rest = self.equation.cost(side, strength, TwoFloat::from(0.0));
+            left[enemy] = self.equation.worth(enemy, rest);
+            fallen[enemy] = from[enemy] - left[enemy];
+        } else {
+            left[enemy] = self.equation.left(enemy, from[enemy], cost);
+            fallen[enemy] = self.equation.fallen(enemy, from[enemy], left[enemy], cost);
+        }
         OrbitPoint {
             left: Both::of(|side| left[side].into()),
-            fallen: Both::of(|side| (TwoFloat::from(self.start[side]) - left[side]).into()),
+            fallen: Both::of(|side| fallen[side].into()),
         }
     }
 

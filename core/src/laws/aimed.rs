@@ -78,23 +78,23 @@ impl Square {
         } else {
             self.v * libm::exp(angle)
         };
-        let root = self.root;
-        let left = Both {
-            x: (decayed + grown) / (2.0 * root.x),
-            y: (decayed - grown) / (2.0 * root.y),
-        };
-        OrbitPoint {
-            left,
-            fallen: Both::of(|side| self.fallen(side, angle, left)),
+        let (mut left, mut fallen) = (Both::default(), Both::default());
+        for (side, sum) in [(Side::X, decayed + grown), (Side::Y, decayed - grown)] {
+            let spread = (decayed + grown.abs()) / (2.0 * self.root[side]);
+            left[side] = sum / (2.0 * self.root[side]);
+            fallen[side] = self.start[side] - left[side];
+            // Early on, and where the enemy is far the stronger, the two exponentials are large and nearly cancel.
+            if angle <= 1.0 && self.start[side] <= 2.0 * spread {
+                fallen[side] = self.fallen(side, angle);
+                left[side] = self.start[side] - fallen[side];
+            }
         }
+        OrbitPoint { left, fallen }
     }
 
     /// y₀·√(a/b)·sinh αt − x₀·(cosh αt − 1) for x: while little has fallen, it has more digits than x₀ − x.
-    fn fallen(&self, side: Side, angle: f64, left: Both<f64>) -> f64 {
+    fn fallen(&self, side: Side, angle: f64) -> f64 {
         let start = self.start[side];
-        if angle > 1.0 {
-            return start - left[side];
-        }
         let enemy = side.enemy();
         let sine = libm::sinh(angle / 2.0);
         let drawn = self.start[enemy] * self.root[enemy] / self.root[side];

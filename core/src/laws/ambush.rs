@@ -80,7 +80,7 @@ impl Ambush {
     ///
     /// With φ = a·c·t/2 and τ = tan φ (K > 0) or tanh φ (K < 0): o = (o₀ ∓ c·τ)/(1 + o₀·τ/c) and
     /// h = h₀·(1 ± τ²)/(1 + o₀·τ/c)². What has fallen follows without cancelling: of the open side
-    /// (c² ± o₀²)·(τ/c)/(1 + o₀·τ/c), of the hidden one by the state equation.
+    /// (c² ± o₀²)·(τ/c)/(1 + o₀·τ/c), where c² ± o₀² is 2·b·h₀/a, of the hidden one by the state equation.
     pub fn point_at(&self, t: f64) -> OrbitPoint {
         let (hidden, open) = (self.hidden, self.hidden.enemy());
         let (first, half) = (self.start[open], self.area_rate * t / 2.0);
@@ -97,7 +97,7 @@ impl Ambush {
         let (mut left, mut fallen) = (self.start, self.start);
         left[open] = (first - self.square * slope) / divisor;
         left[hidden] = self.start[hidden] * (secant / divisor) * (secant / divisor);
-        fallen[open] = (self.square + first * first) * slope / divisor;
+        fallen[open] = 2.0 * self.aimed_rate / self.area_rate * self.start[hidden] * slope / divisor;
         fallen[hidden] = fallen[open] * (first + left[open]) * self.area_rate / (2.0 * self.aimed_rate);
         OrbitPoint { left, fallen }
     }
