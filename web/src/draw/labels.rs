@@ -1,0 +1,240 @@
+//! Where words stand in a picture: at the place, of some that would do, where they cover least.
+
+use super::axes::{is_orbit, side_colour};
+use super::layout::Layout;
+use super::pen::{Drawn, Pen, Point, Set};
+use aftercount_core::picture::{Line, Picture, Role, Spot};
+use aftercount_core::sides::Side;
+use plotters::prelude::{DrawingBackend, RGBColor};
+use plotters::style::text_anchor::{HPos, VPos};
+
+/// The size of words in the field, in CSS pixels.
+const WORDS: f64 = 13.0;
+
+type Box = (f64, f64, f64, f64);
+
+/// The words of a picture being set: what is taken already.
+pub(crate) struct Labels {
+    field: Layout,
+    taken: Vec<Box>,
+    /// Points that words should not cover, and how much it matters.
+    curves: Vec<(Point, f64)>,
+}
+
+impl Labels {
+    pub(crate) fn of(field: &Layout, picture: &Picture) -> Labels {
+        let mut curves = Vec::new();
+        for line in &picture.lines {
+            let weight = match line.role {
+                Role::Strength(_) | Role::Fight => 3.0,
+                Role::Neighbour => 0.1,
+                _ => 1.0,
+            };
+            let points: Vec<Point> = line.points.iter().map(|point| field.place(*point)).collect();
+            curves.extend(finely(&points).into_iter().map(|point| (point, weight)));
+        }
+        Labels {
+            field: *field,
+            taken: Vec::new(),
+            curves,
+        }
+    }
+
+    /// Sets every label of the picture, those that have the least choice first.
+    pub(crate) fn draw<B: DrawingBackend>(mut self, pen: &mut Pen<'_, B>, picture: &Picture) -> Drawn<B> {
+        for (index, spot) in picture.spots.iter().enumerate() {
+            self.spot(pen, picture, spot, index)?;
+        }
+        for line in picture.lines.iter().filter(|line| !line.label.is_empty()) {
+            match line.role {
+                Role::Defeat | Role::Clock => self.moment(pen, line)?,
+                Role::BreakLine(side) => self.break_line(pen, line, side)?,
+                Role::Parity => self.along(pen, line, pen.ink.ink, true)?,
+                _ => {}
+            }
+        }
+        for line in picture.lines.iter().filter(|line| !line.label.is_empty()) {
+            if let Role::Strength(side) = line.role {
+                self.along(pen, line, side_colour(pen, side), false)?;
+            }
+        }
+        Ok(())
+    }
+
+    fn spot<B: DrawingBackend>(
+        &mut self,
+        pen: &mut Pen<'_, B>,
+        picture: &Picture,
+        spot: &Spot,
+        index: usize,
+    ) -> Drawn<B> {
+        let (x, y) = self.field.place(spot.at);
+        let colour = spot.side.map_or(pen.ink.ink, |side| side_colour(pen, side));
+        let around = [
+            ((x + 9.0, y), HPos::Left, VPos::Center),
+            ((x + 7.0, y - 5.0), HPos::Left, VPos::Bottom),
+            ((x + 7.0, y + 5.0), HPos::Left, VPos::Top),
+            ((x - 9.0, y), HPos::Right, VPos::Center),
+            ((x - 7.0, y - 5.0), HPos::Right, VPos::Bottom),
+            ((x - 7.0, y + 5.0), HPos::Right, VPos::Top),
+            ((x, y - 9.0), HPos::Center, VPos::Bottom),
+            ((x, y + 9.0), HPos::Center, VPos::Top),
+        ];
+        // On the strength picture the numbers stand behind the end, in the margin.
+        let places = if is_orbit(picture) {
+            &around[..]
+        } else {
+            &around[..3]
+        };
+        let italic = is_orbit(picture) && index > 0;
+        self.set(pen, &spot.label, colour, italic, places)
+    }
+
+    fn moment<B: DrawingBackend>(&mut self, pen: &mut Pen<'_, B>, line: &Line) -> Drawn<B> {
+        let Some(&(at, _)) = line.points.first() else {
+            return Ok(());
+        };
+        let (x, top, foot) = (self.field.x(at), self.field.top, self.field.foot);
+        let heights = [0.0, 0.12, 0.25, 0.4, 0.55, 0.7, 0.85].map(|part| top + 2.0 + (foot - top) * part);
+        let behind = heights.map(|y| ((x - 6.0, y), HPos::Right, VPos::Top));
+        let before = heights.map(|y| ((x + 8.0, y), HPos::Left, VPos::Top));
+        let places: Vec<_> = behind.into_iter().chain(before).collect();
+        self.set(pen, &line.label, pen.ink.ink, true, &places)
+    }
+
+    fn break_line<B: DrawingBackend>(&mut self, pen: &mut Pen<'_, B>, line: &Line, side: Side) -> Drawn<B> {
+        let (Some(&first), Some(&last)) = (line.points.first(), line.points.last()) else {
+            return Ok(());
+        };
+        let (from, to) = (self.field.place(first), self.field.place(last));
+        let mut places = Vec::new();
+        if from.1 == to.1 {
+            for part in [0.02, 0.3, 0.55, 0.75] {
+                let x = from.0 + (to.0 - from.0) * part;
+                places.push(((x, from.1 - 3.0), HPos::Left, VPos::Bottom));
+                places.push(((x, from.1 + 3.0), HPos::Left, VPos::Top));
+            }
+        } else {
+            for part in [0.96, 0.8, 0.6, 0.4, 0.2, 0.06] {
+                let y = from.1 + (to.1 - from.1) * part;
+                places.push(((from.0 + 5.0, y), HPos::Left, VPos::Center));
+                places.push(((from.0 - 5.0, y), HPos::Right, VPos::Center));
+            }
+        }
+        let colour = side_colour(pen, side);
+        self.set(pen, &line.label, colour, true, &places)
+    }
+
+    /// Words beside a curve: its name.
+    fn along<B: DrawingBackend>(
+        &mut self,
+        pen: &mut Pen<'_, B>,
+        line: &Line,
+        colour: RGBColor,
+        italic: bool,
+    ) -> Drawn<B> {
+        let mut places = Vec::new();
+        for part in [0.4, 0.3, 0.5, 0.2, 0.6, 0.1, 0.75, 0.88] {
+            let Some(point) = line.points.get((part * line.points.len() as f64) as usize) else {
+                continue;
+            };
+            let (x, y) = self.field.place(*point);
+            places.push(((x + 4.0, y - 9.0), HPos::Left, VPos::Bottom));
+            places.push(((x - 4.0, y + 9.0), HPos::Right, VPos::Top));
+            places.push(((x - 4.0, y - 9.0), HPos::Right, VPos::Bottom));
+            places.push(((x + 4.0, y + 9.0), HPos::Left, VPos::Top));
+        }
+        self.set(pen, &line.label, colour, italic, &places)
+    }
+
+    fn set<B: DrawingBackend>(
+        &mut self,
+        pen: &mut Pen<'_, B>,
+        text: &str,
+        colour: RGBColor,
+        italic: bool,
+        places: &[(Point, HPos, VPos)],
+    ) -> Drawn<B> {
+        let room = pen.size().0 - 6.0;
+        let text = fitting(
+            pen,
+            text,
+            italic,
+            room.min((self.field.right - self.field.left) * 0.8),
+        );
+        let mut best: Option<(f64, Point, Set, Box)> = None;
+        for &(at, across, up) in places {
+            let set = Set {
+                size: WORDS,
+                italic,
+                colour,
+                across,
+                up,
+            };
+            let extent = pen.extent(&text, at, set);
+            let cost = self.cost(extent, pen.size());
+            if best.as_ref().is_none_or(|(least, ..)| cost < *least) {
+                best = Some((cost, at, set, extent));
+            }
+        }
+        let Some((cost, at, set, extent)) = best else {
+            return Ok(());
+        };
+        self.taken.push(extent);
+        if cost >= 1.0 {
+            pen.label_on_paper(&text, at, set)
+        } else {
+            pen.label(&text, at, set)
+        }
+    }
+
+    /// How much words in this box would cover.
+    fn cost(&self, (left, top, right, foot): Box, (width, height): (f64, f64)) -> f64 {
+        let inside = left >= 0.0 && top >= 0.0 && right <= width && foot <= height.min(self.field.foot);
+        let taken = self.taken.iter().filter(|other| {
+            left < other.2 + 3.0 && other.0 < right + 3.0 && top < other.3 + 1.0 && other.1 < foot + 1.0
+        });
+        let covered = self
+            .curves
+            .iter()
+            .filter(|((x, y), _)| (left - 2.0..=right + 2.0).contains(x) && (top..=foot).contains(y));
+        let curves: f64 = covered.map(|(_, weight)| weight).sum();
+        (if inside { 0.0 } else { 1e4 }) + 1e3 * taken.count() as f64 + curves
+    }
+}
+
+/// The text, shortened with an ellipsis where it is wider than its room.
+fn fitting<B: DrawingBackend>(pen: &Pen<'_, B>, text: &str, italic: bool, room: f64) -> String {
+    let set = Set {
+        size: WORDS,
+        italic,
+        colour: pen.ink.ink,
+        across: HPos::Left,
+        up: VPos::Top,
+    };
+    if pen.width(text, set) <= room {
+        return text.to_owned();
+    }
+    let letters: Vec<char> = text.chars().collect();
+    let shortened = |count: usize| letters[..count].iter().chain(['…'].iter()).collect::<String>();
+    let count = (1..letters.len())
+        .rev()
+        .find(|count| pen.width(&shortened(*count), set) <= room);
+    shortened(count.unwrap_or(1))
+}
+
+/// Points along a line at most some pixels apart, so that a long straight stroke is not missed.
+fn finely(points: &[Point]) -> Vec<Point> {
+    let mut fine: Vec<Point> = points.first().copied().into_iter().collect();
+    for pair in points.windows(2) {
+        let (from, to) = (pair[0], pair[1]);
+        let pieces = ((to.0 - from.0).hypot(to.1 - from.1) / 5.0)
+            .ceil()
+            .clamp(1.0, 1000.0) as usize;
+        for piece in 1..=pieces {
+            let part = piece as f64 / pieces as f64;
+            fine.push((from.0 + (to.0 - from.0) * part, from.1 + (to.1 - from.1) * part));
+        }
+    }
+    fine
+}

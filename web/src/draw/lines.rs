@@ -1,0 +1,171 @@
+//! The lines and spots of a picture, each role in its own hand.
+
+use super::axes::{is_orbit, side_colour};
+use super::layout::Layout;
+use super::pen::{Dash, Drawn, Pen, Point, SOLID};
+use aftercount_core::picture::{Line, Picture, Role, Spot};
+use aftercount_core::sides::Side;
+use plotters::prelude::{DrawingBackend, RGBColor};
+
+/// Side Y's stroke, as in the form's and the legend's signs.
+const LONG_DASH: Dash = &[14.0, 6.0];
+const DOTS: Dash = &[2.0, 3.5];
+const DASH_DOT: Dash = &[9.0, 3.0, 2.0, 3.0];
+const SHORT_DASH: Dash = &[5.0, 4.0];
+
+/// Half the height of a mark, in CSS pixels.
+const MARK: f64 = 4.2;
+
+/// Every line, the background first, then the marks.
+pub(crate) fn draw<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, picture: &Picture) -> Drawn<B> {
+    for line in &picture.lines {
+        let points: Vec<Point> = line.points.iter().map(|point| field.place(*point)).collect();
+        let (colour, width, dash) = hand(pen, line.role);
+        pen.line(&points, colour, width, dash)?;
+        if line.role == Role::Clock {
+            // The clock is a double line: the engagement is cut there, and goes on behind it.
+            let beside: Vec<Point> = points.iter().map(|(x, y)| (x + 3.0, *y)).collect();
+            pen.line(&beside, colour, width, dash)?;
+        }
+    }
+    for line in &picture.lines {
+        match line.role {
+            Role::Strength(side) => marks_along(pen, field, picture, line, side)?,
+            Role::Fight => direction(pen, field, line)?,
+            _ => {}
+        }
+    }
+    for (index, spot) in picture.spots.iter().enumerate() {
+        draw_spot(pen, field, spot, is_orbit(picture) && index == 0)?;
+    }
+    Ok(())
+}
+
+/// Colour, width in CSS pixels and dash of a role.
+fn hand<B: DrawingBackend>(pen: &Pen<'_, B>, role: Role) -> (RGBColor, f64, Dash) {
+    match role {
+        Role::Strength(Side::X) => (pen.ink.x, 2.2, SOLID),
+        Role::Strength(Side::Y) => (pen.ink.y, 2.2, LONG_DASH),
+        Role::Fight => (pen.ink.ink, 2.4, SOLID),
+        Role::ToTheLast => (pen.ink.ink, 1.2, SHORT_DASH),
+        Role::Neighbour => (pen.ink.faint, 1.0, SOLID),
+        Role::Parity => (pen.ink.ink, 1.0, DASH_DOT),
+        Role::BreakLine(side) => (side_colour(pen, side), 1.2, DOTS),
+        Role::Defeat | Role::Clock => (pen.ink.ink, 1.0, SOLID),
+    }
+}
+
+/// Marks where the ticks of the axis meet the curve, so that the sides are told apart without colour.
+fn marks_along<B: DrawingBackend>(
+    pen: &mut Pen<'_, B>,
+    field: &Layout,
+    picture: &Picture,
+    line: &Line,
+    side: Side,
+) -> Drawn<B> {
+    let colour = side_colour(pen, side);
+    let ends = line.points.last().map_or(0.0, |last| last.0);
+    for tick in picture.across.ticks.iter().filter(|tick| tick.at < ends * 0.97) {
+        if let Some(up) = height_at(&line.points, tick.at) {
+            mark(pen, field.place((tick.at, up)), side, colour)?;
+        }
+    }
+    Ok(())
+}
+
+/// The height of a curve over `at`, between its points.
+fn height_at(points: &[(f64, f64)], at: f64) -> Option<f64> {
+    let after = points.iter().position(|point| point.0 >= at)?;
+    let (to, from) = (points[after], points[after.saturating_sub(1)]);
+    if to.0 == from.0 {
+        return Some(to.1);
+    }
+    Some(from.1 + (to.1 - from.1) * (at - from.0) / (to.0 - from.0))
+}
+
+fn mark<B: DrawingBackend>(pen: &mut Pen<'_, B>, (x, y): Point, side: Side, colour: RGBColor) -> Drawn<B> {
+    match side {
+        Side::X => {
+            let corners = [
+                (x - MARK, y - MARK),
+                (x + MARK, y - MARK),
+                (x + MARK, y + MARK),
+                (x - MARK, y + MARK),
+            ];
+            pen.figure(&corners, colour, false)
+        }
+        Side::Y => {
+            let corners = [
+                (x, y - MARK * 1.3),
+                (x + MARK * 1.2, y + MARK * 0.8),
+                (x - MARK * 1.2, y + MARK * 0.8),
+            ];
+            pen.figure(&corners, colour, true)
+        }
+    }
+}
+
+fn draw_spot<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, spot: &Spot, begins: bool) -> Drawn<B> {
+    let at = field.place(spot.at);
+    match spot.side {
+        Some(side) => mark(pen, at, side, side_colour(pen, side)),
+        None => pen.dot(at, MARK, pen.ink.ink, !begins),
+    }
+}
+
+/// An open arrow head half-way, for the way the engagement goes.
+fn direction<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, line: &Line) -> Drawn<B> {
+    let points: Vec<Point> = line.points.iter().map(|point| field.place(*point)).collect();
+    let Some((from, to)) = around_middle(&points) else {
+        return Ok(());
+    };
+    let (dx, dy) = (to.0 - from.0, to.1 - from.1);
+    let length = dx.hypot(dy);
+    let (dx, dy) = (dx / length * 8.0, dy / length * 8.0);
+    let left = (to.0 - dx - dy * 0.55, to.1 - dy + dx * 0.55);
+    let right = (to.0 - dx + dy * 0.55, to.1 - dy - dx * 0.55);
+    pen.line(&[left, to, right], pen.ink.ink, 1.8, SOLID)
+}
+
+/// Two points some pixels apart about half-way along; `None` on a path too short to have a direction.
+fn around_middle(points: &[Point]) -> Option<(Point, Point)> {
+    let gap = |from: Point, to: Point| (to.0 - from.0).hypot(to.1 - from.1);
+    let length: f64 = points.windows(2).map(|pair| gap(pair[0], pair[1])).sum();
+    if length <= 40.0 {
+        return None;
+    }
+    let mut walked = 0.0;
+    let mut from = None;
+    for pair in points.windows(2) {
+        walked += gap(pair[0], pair[1]);
+        if walked > length / 2.0 && from.is_none() {
+            from = Some(pair[0]);
+        }
+        if let Some(from) = from
+            && gap(from, pair[1]) > 4.0
+        {
+            return Some((from, pair[1]));
+        }
+    }
+    None
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn a_curve_is_read_between_its_points() {
+        let points = [(0.0, 10.0), (2.0, 6.0), (4.0, 6.0)];
+        assert_eq!(height_at(&points, 0.0), Some(10.0));
+        assert_eq!(height_at(&points, 1.0), Some(8.0));
+        assert_eq!(height_at(&points, 5.0), None);
+    }
+
+    #[test]
+    fn a_path_that_stays_has_no_direction() {
+        assert_eq!(around_middle(&[(5.0, 5.0)]), None);
+        assert_eq!(around_middle(&[(5.0, 5.0), (6.0, 5.0)]), None);
+        assert!(around_middle(&[(0.0, 0.0), (30.0, 0.0), (60.0, 0.0)]).is_some());
+    }
+}

@@ -1,0 +1,201 @@
+//! Strokes, marks and labels in CSS pixels, on any backend of plotters.
+
+use super::ink::Ink;
+use plotters::prelude::{Color, DrawingBackend, RGBColor, ShapeStyle, TextStyle};
+use plotters::style::text_anchor::{HPos, Pos, VPos};
+use plotters::style::{FontDesc, FontFamily, FontStyle};
+use plotters_backend::{BackendCoord, DrawingErrorKind};
+
+/// What drawing gives back.
+pub type Drawn<B> = Result<(), DrawingErrorKind<<B as DrawingBackend>::ErrorType>>;
+
+/// A point in CSS pixels, from the top left.
+pub(crate) type Point = (f64, f64);
+
+/// Dash lengths in CSS pixels: drawn, left out, and so on; none for a solid line.
+pub(crate) type Dash = &'static [f64];
+
+/// No gaps.
+pub(crate) const SOLID: Dash = &[];
+
+/// How a label is set.
+#[derive(Clone, Copy)]
+pub(crate) struct Set {
+    pub(crate) size: f64,
+    pub(crate) italic: bool,
+    pub(crate) colour: RGBColor,
+    pub(crate) across: HPos,
+    pub(crate) up: VPos,
+}
+
+/// Draws in CSS pixels on a backend that has `scale` times as many.
+pub(crate) struct Pen<'a, B: DrawingBackend> {
+    backend: &'a mut B,
+    scale: f64,
+    pub(crate) ink: &'a Ink,
+}
+
+impl<'a, B: DrawingBackend> Pen<'a, B> {
+    pub(crate) fn new(backend: &'a mut B, scale: f64, ink: &'a Ink) -> Pen<'a, B> {
+        Pen { backend, scale, ink }
+    }
+
+    /// Width and height in CSS pixels.
+    pub(crate) fn size(&self) -> (f64, f64) {
+        let (width, height) = self.backend.get_size();
+        (f64::from(width) / self.scale, f64::from(height) / self.scale)
+    }
+
+    fn coord(&self, (x, y): Point) -> BackendCoord {
+        ((x * self.scale).round() as i32, (y * self.scale).round() as i32)
+    }
+
+    fn stroke(&self, colour: RGBColor, width: f64) -> ShapeStyle {
+        ShapeStyle::from(&colour).stroke_width((width * self.scale).round().max(1.0) as u32)
+    }
+
+    /// A line through points, dashed where a dash is given.
+    pub(crate) fn line(&mut self, points: &[Point], colour: RGBColor, width: f64, dash: Dash) -> Drawn<B> {
+        let style = self.stroke(colour, width);
+        let strokes = if dash.is_empty() {
+            vec![points.to_vec()]
+        } else {
+            dashes(points, dash)
+        };
+        for stroke in strokes.iter().filter(|stroke| stroke.len() > 1) {
+            let path: Vec<BackendCoord> = stroke.iter().map(|point| self.coord(*point)).collect();
+            self.backend.draw_path(path, &style)?;
+        }
+        Ok(())
+    }
+
+    /// A closed figure: filled, or open so that the paper shows through.
+    pub(crate) fn figure(&mut self, corners: &[Point], colour: RGBColor, filled: bool) -> Drawn<B> {
+        let path: Vec<BackendCoord> = corners.iter().map(|point| self.coord(*point)).collect();
+        let ground = if filled { colour } else { self.ink.paper };
+        self.backend
+            .fill_polygon(path.clone(), &ShapeStyle::from(&ground).filled())?;
+        let style = self.stroke(colour, 1.6);
+        // The first stroke again at the end, so that every corner is mitred.
+        self.backend
+            .draw_path(path.iter().chain(path.iter().take(2)).copied(), &style)
+    }
+
+    /// A round mark.
+    pub(crate) fn dot(&mut self, at: Point, radius: f64, colour: RGBColor, filled: bool) -> Drawn<B> {
+        let radius = (radius * self.scale).round() as u32;
+        let ground = if filled { colour } else { self.ink.paper };
+        let at = self.coord(at);
+        self.backend
+            .draw_circle(at, radius, &ShapeStyle::from(&ground).filled(), true)?;
+        let style = self.stroke(colour, 1.6);
+        self.backend.draw_circle(at, radius, &style, false)
+    }
+
+    /// A label with its anchor at a point.
+    pub(crate) fn label(&mut self, text: &str, at: Point, set: Set) -> Drawn<B> {
+        let face = self.ink.face.clone();
+        let style = self.text_style(&face, set);
+        let at = self.coord(at);
+        self.backend.draw_text(text, &style, at)
+    }
+
+    /// The same on a piece of blank paper, so that lines behind it do not run through the letters.
+    pub(crate) fn label_on_paper(&mut self, text: &str, at: Point, set: Set) -> Drawn<B> {
+        let (left, top, right, foot) = self.extent(text, at, set);
+        let corners = ((left - 2.0, top), (right + 2.0, foot));
+        let paper = ShapeStyle::from(&self.ink.paper).filled();
+        let (upper_left, lower_right) = (self.coord(corners.0), self.coord(corners.1));
+        self.backend.draw_rect(upper_left, lower_right, &paper, true)?;
+        self.label(text, at, set)
+    }
+
+    /// The width of a label in CSS pixels.
+    pub(crate) fn width(&self, text: &str, set: Set) -> f64 {
+        let style = self.text_style(&self.ink.face, set);
+        // A backend that cannot measure is taken to set half an em a letter.
+        let guess = || text.chars().count() as f64 * set.size / 2.0;
+        self.backend
+            .estimate_text_size(text, &style)
+            .map_or_else(|_| guess(), |size| f64::from(size.0) / self.scale)
+    }
+
+    /// Left, top, right and foot of a label.
+    pub(crate) fn extent(&self, text: &str, (x, y): Point, set: Set) -> (f64, f64, f64, f64) {
+        let width = self.width(text, set);
+        let left = match set.across {
+            HPos::Left => x,
+            HPos::Center => x - width / 2.0,
+            HPos::Right => x - width,
+        };
+        let top = match set.up {
+            VPos::Top => y,
+            VPos::Center => y - set.size / 2.0,
+            VPos::Bottom => y - set.size,
+        };
+        (left, top, left + width, top + set.size)
+    }
+
+    fn text_style<'b>(&self, face: &'b str, set: Set) -> TextStyle<'b> {
+        let style = if set.italic {
+            FontStyle::Italic
+        } else {
+            FontStyle::Normal
+        };
+        let font: FontDesc<'b> = FontDesc::new(FontFamily::Name(face), set.size * self.scale, style);
+        TextStyle {
+            font,
+            color: set.colour.to_backend_color(),
+            pos: Pos::new(set.across, set.up),
+        }
+    }
+}
+
+/// Cuts a line into dashes by length, so that a curve keeps its rhythm however finely it is sampled.
+fn dashes(points: &[Point], dash: Dash) -> Vec<Vec<Point>> {
+    let mut strokes = Vec::new();
+    let mut stroke: Vec<Point> = points.first().copied().into_iter().collect();
+    let (mut index, mut rest) = (0, dash[0]);
+    for pair in points.windows(2) {
+        let (mut from, to) = (pair[0], pair[1]);
+        loop {
+            let length = (to.0 - from.0).hypot(to.1 - from.1);
+            if length < rest || !length.is_finite() {
+                rest -= length;
+                stroke.push(to);
+                break;
+            }
+            let part = rest / length;
+            from = (from.0 + (to.0 - from.0) * part, from.1 + (to.1 - from.1) * part);
+            stroke.push(from);
+            if index % 2 == 0 {
+                strokes.push(std::mem::take(&mut stroke));
+            }
+            stroke = vec![from];
+            index = (index + 1) % dash.len();
+            rest = dash[index];
+        }
+    }
+    if index % 2 == 0 {
+        strokes.push(stroke);
+    }
+    strokes
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn dashes_keep_their_lengths_around_a_corner() {
+        let strokes = dashes(&[(0.0, 0.0), (5.0, 0.0), (5.0, 10.0)], &[4.0, 2.0]);
+        assert_eq!(strokes[0], [(0.0, 0.0), (4.0, 0.0)]);
+        assert_eq!(strokes[1], [(5.0, 1.0), (5.0, 5.0)]);
+        assert_eq!(strokes[2], [(5.0, 7.0), (5.0, 10.0)]);
+    }
+
+    #[test]
+    fn a_line_of_no_length_makes_no_dashes_for_ever() {
+        assert_eq!(dashes(&[(1.0, 1.0), (1.0, 1.0)], &[4.0, 2.0]).len(), 1);
+    }
+}

@@ -1,0 +1,231 @@
+//! One delegated listener an event kind, all of which end with the page's signal.
+
+use crate::dom::Dom;
+use crate::page::Page;
+use crate::reading::Pointer;
+use std::cell::RefCell;
+use std::rc::Rc;
+use wasm_bindgen::closure::Closure;
+use wasm_bindgen::{JsCast, JsValue};
+use web_sys::{
+    AbortSignal, AddEventListenerOptions, Element, Event, EventTarget, KeyboardEvent, MouseEvent,
+    PointerEvent, ResizeObserver,
+};
+
+type Shared = Rc<RefCell<Page>>;
+
+/// What is left to do once the page is no longer borrowed: these calls send events of their own.
+pub(crate) enum After {
+    /// Nothing.
+    Nothing,
+    /// Moves the focus.
+    GoTo(String),
+    /// Selects the text and offers it to the clipboard.
+    Copy,
+}
+
+/// Sets up every listener.
+pub(crate) fn all(dom: &Dom, page: &Shared, signal: &AbortSignal) -> Result<(), JsValue> {
+    let document: &EventTarget = dom.document.as_ref();
+    let window: &EventTarget = dom.window.as_ref();
+    let on = |target: &EventTarget, kind: &str, act: fn(&mut Page, &Event) -> After| {
+        listen(target, kind, signal, page, act)
+    };
+    on(document, "input", input)?;
+    on(document, "change", left)?;
+    on(document, "focusout", left)?;
+    on(document, "focusin", focused)?;
+    on(document, "click", click)?;
+    on(document, "keydown", key)?;
+    on(document, "submit", submit)?;
+    on(document, "pointerdown", pointer)?;
+    on(document, "pointermove", pointer)?;
+    on(document, "visibilitychange", hide)?;
+    on(window, "pagehide", hide)?;
+    on(window, "popstate", moved)?;
+    on(window, "hashchange", moved)?;
+    on(window, "resize", resized)?;
+    for query in ["(prefers-color-scheme: dark)", "(forced-colors: active)"] {
+        if let Ok(Some(media)) = dom.window.match_media(query) {
+            on(media.as_ref(), "change", resized)?;
+        }
+    }
+    watch_sizes(dom, page, signal)
+}
+
+fn listen(
+    target: &EventTarget,
+    kind: &str,
+    signal: &AbortSignal,
+    page: &Shared,
+    act: fn(&mut Page, &Event) -> After,
+) -> Result<(), JsValue> {
+    let page = page.clone();
+    let call = Closure::<dyn FnMut(Event)>::new(move |event: Event| {
+        // An event inside another one is an echo of what the page itself does.
+        let Ok(mut borrowed) = page.try_borrow_mut() else {
+            return;
+        };
+        let after = act(&mut borrowed, &event);
+        drop(borrowed);
+        do_after(&page, after);
+    });
+    let options = AddEventListenerOptions::new();
+    options.set_signal(signal);
+    let call = call.into_js_value();
+    target.add_event_listener_with_callback_and_add_event_listener_options(
+        kind,
+        call.unchecked_ref(),
+        &options,
+    )
+}
+
+fn do_after(page: &Shared, after: After) {
+    let Ok(borrowed) = page.try_borrow() else { return };
+    let dom = borrowed.dom().clone();
+    drop(borrowed);
+    match after {
+        After::Nothing => {}
+        After::GoTo(id) => dom.go_to(&id),
+        After::Copy => crate::copy::copy(&dom),
+    }
+}
+
+fn element(event: &Event) -> Option<Element> {
+    event.target()?.dyn_into().ok()
+}
+
+fn input(page: &mut Page, event: &Event) -> After {
+    if let Some((key, text)) = element(event).and_then(|element| crate::form::changed_field(&element)) {
+        page.typed(&key, &text);
+    }
+    After::Nothing
+}
+
+fn left(page: &mut Page, event: &Event) -> After {
+    if element(event).is_some_and(|element| element.has_attribute("name")) {
+        page.field_left();
+    }
+    After::Nothing
+}
+
+/// The box with the text offers itself whole.
+fn focused(_page: &mut Page, event: &Event) -> After {
+    if let Some(element) = element(event)
+        && element.id() == "text"
+        && let Some(area) = element.dyn_ref::<web_sys::HtmlTextAreaElement>()
+    {
+        area.select();
+    }
+    After::Nothing
+}
+
+fn click(page: &mut Page, event: &Event) -> After {
+    let Some(element) = element(event) else {
+        return After::Nothing;
+    };
+    if let Ok(Some(link)) = element.closest("a[href^='#']:not([target])") {
+        // Followed by the browser, the fragment would replace the engagement in the address.
+        event.prevent_default();
+        let href = link.get_attribute("href").unwrap_or_default();
+        return After::GoTo(href.trim_start_matches('#').to_owned());
+    }
+    let Ok(Some(button)) = element.closest("button") else {
+        return After::Nothing;
+    };
+    if let Some(key) = button.get_attribute("data-take-out") {
+        page.take_out(&key);
+        return After::Nothing;
+    }
+    match button.id().as_str() {
+        "blank" => {
+            page.start_from_blank();
+            After::GoTo("x.name".into())
+        }
+        "undo" => page.step(false),
+        "redo" => page.step(true),
+        "copy" => {
+            page.field_left();
+            After::Copy
+        }
+        _ => After::Nothing,
+    }
+}
+
+fn key(page: &mut Page, event: &Event) -> After {
+    let (Some(element), Some(event)) = (element(event), event.dyn_ref::<KeyboardEvent>()) else {
+        return After::Nothing;
+    };
+    if element.id() == "reading" {
+        if !event.ctrl_key() && !event.alt_key() && !event.meta_key() && page.reading_key(&event.key()) {
+            event.prevent_default();
+        }
+    } else if event.key() == "Enter" && !event.is_composing() && element.has_attribute("name") {
+        // A field of one line ends here; a line break in the note would be a problem of the text.
+        if !element.tag_name().eq_ignore_ascii_case("select") {
+            event.prevent_default();
+        }
+        page.field_left();
+    }
+    After::Nothing
+}
+
+fn submit(_page: &mut Page, event: &Event) -> After {
+    event.prevent_default();
+    After::Nothing
+}
+
+fn pointer(page: &mut Page, event: &Event) -> After {
+    let Some(element) = element(event) else {
+        return After::Nothing;
+    };
+    let (Ok(Some(print)), Some(pointer)) = (element.closest(".print"), event.dyn_ref::<PointerEvent>())
+    else {
+        return After::Nothing;
+    };
+    let place = print.get_bounding_client_rect();
+    let mouse: &MouseEvent = pointer.as_ref();
+    page.pointed(&Pointer {
+        on_strength: print
+            .query_selector("#strength")
+            .is_ok_and(|canvas| canvas.is_some()),
+        x: f64::from(mouse.client_x()) - place.left(),
+        y: f64::from(mouse.client_y()) - place.top(),
+    });
+    After::Nothing
+}
+
+fn hide(page: &mut Page, _event: &Event) -> After {
+    page.write_address();
+    After::Nothing
+}
+
+fn moved(page: &mut Page, _event: &Event) -> After {
+    page.address_moved();
+    After::Nothing
+}
+
+fn resized(page: &mut Page, _event: &Event) -> After {
+    page.draw_soon();
+    After::Nothing
+}
+
+/// Draws anew where a picture's own size changes, as when a panel beside it opens.
+fn watch_sizes(dom: &Dom, page: &Shared, signal: &AbortSignal) -> Result<(), JsValue> {
+    let watching = page.clone();
+    let call = Closure::<dyn FnMut()>::new(move || {
+        if let Ok(mut page) = watching.try_borrow_mut()
+            && !page.is_over()
+        {
+            page.draw_soon();
+        }
+    });
+    let observer = ResizeObserver::new(call.into_js_value().unchecked_ref())?;
+    for id in ["strength", "orbit"] {
+        if let Some(canvas) = dom.element(id) {
+            observer.observe(&canvas);
+        }
+    }
+    let end = Closure::<dyn FnMut()>::new(move || observer.disconnect());
+    signal.add_event_listener_with_callback("abort", end.into_js_value().unchecked_ref())
+}

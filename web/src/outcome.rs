@@ -1,0 +1,241 @@
+//! What the model leaves, put on the page: the sentence, the figures, the echoes, the tables, the data attributes.
+
+use crate::dom::{Dom, append, set};
+use crate::form;
+use aftercount_core::fight::{Effort, Fight, fight};
+use aftercount_core::laws::FireLaw;
+use aftercount_core::outcome::Breaks;
+use aftercount_core::pairs::Pairs;
+use aftercount_core::picture::{self, Picture, Table};
+use aftercount_core::sides::{Both, Side};
+use aftercount_core::statement::{Statement, TimeUnit, Values};
+use aftercount_core::words::figures::{Figures, figures};
+use aftercount_core::words::{meaning, reading, sentence};
+use web_sys::Element;
+
+/// The last text that could be worked out, and what it led to.
+pub(crate) struct Good {
+    pub(crate) statement: Statement,
+    pub(crate) fight: Fight,
+    pub(crate) strength: Option<Picture>,
+    pub(crate) orbit: Option<Picture>,
+}
+
+impl Good {
+    /// Works a statement out.
+    pub(crate) fn new(statement: Statement) -> Good {
+        let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+        let strength = picture::strength(&statement, &fight);
+        let orbit = picture::orbit(&statement, &fight);
+        Good {
+            statement,
+            fight,
+            strength,
+            orbit,
+        }
+    }
+
+    /// The outcome in one sentence.
+    pub(crate) fn sentence(&self) -> String {
+        sentence::sentence(&self.statement, &self.fight.outcome)
+    }
+
+    /// Both strengths at a time; `None` without a trajectory, which is always asked for.
+    pub(crate) fn strengths_at(&self, t: f64) -> Option<Both<f64>> {
+        self.fight
+            .trajectory
+            .as_ref()
+            .map(|trajectory| trajectory.strengths_at(t))
+    }
+
+    /// What the reading line says at a time.
+    pub(crate) fn reading(&self, t: f64) -> String {
+        self.fight
+            .trajectory
+            .as_ref()
+            .map(|path| reading::reading(&self.statement, path, t))
+            .unwrap_or_default()
+    }
+}
+
+/// Shows everything that is text or number.
+pub(crate) fn show(dom: &Dom, good: &Good) {
+    dom.set_text("sentence", &good.sentence());
+    let long = good.sentence().chars().count() > 180;
+    dom.set_attribute("sentence", "class", if long { "long" } else { "" });
+    show_figures(dom, &figures(&good.statement, &good.fight.outcome));
+    for side in Side::BOTH {
+        let letter = side.letter();
+        dom.set_text(
+            &format!("{letter}.rate.echo"),
+            &meaning::rate(&good.statement, side),
+        );
+        dom.set_text(
+            &format!("{letter}.break.echo"),
+            &meaning::break_point(&good.statement, side),
+        );
+    }
+    for (name, picture) in [("strength", &good.strength), ("orbit", &good.orbit)] {
+        let Some(picture) = picture else { continue };
+        dom.set_text(&format!("{name}-words"), &picture.summary);
+        show_table(dom, &format!("{name}-table"), &picture.table);
+    }
+    if let Some(orbit) = &good.orbit {
+        let parity = orbit.lines.iter().any(|line| line.role == picture::Role::Parity);
+        dom.set_shown("parity-key", parity);
+    }
+    show_attributes(dom, good);
+}
+
+/// Takes off what no longer follows from any text.
+pub(crate) fn clear(dom: &Dom) {
+    for id in [
+        "sentence",
+        "figures",
+        "strength-words",
+        "orbit-words",
+        "strength-table",
+        "orbit-table",
+        "reading-words",
+    ] {
+        dom.set_text(id, "");
+    }
+    for letter in ["x", "y"] {
+        dom.set_text(&format!("{letter}.rate.echo"), "");
+        dom.set_text(&format!("{letter}.break.echo"), "");
+    }
+    for name in ["data-breaks", "data-time", "data-x-end", "data-y-end"] {
+        dom.mark_root(name, None);
+    }
+}
+
+/// The outcome at full precision, for the tests: the shortest digits that read back the same.
+fn show_attributes(dom: &Dom, good: &Good) {
+    let outcome = &good.fight.outcome;
+    let breaks = match outcome.breaks {
+        Breaks::X => "x",
+        Breaks::Y => "y",
+        Breaks::Both => "both",
+        Breaks::Neither => "neither",
+    };
+    let number = |value: Option<f64>| value.map(|value| value.to_string()).unwrap_or_default();
+    dom.mark_root("data-breaks", Some(breaks));
+    dom.mark_root("data-time", Some(&number(outcome.time)));
+    dom.mark_root("data-x-end", Some(&number(outcome.x.end)));
+    dom.mark_root("data-y-end", Some(&number(outcome.y.end)));
+}
+
+/// Names, directions and units: what is read from the text alone, so that it is right beside a problem too.
+pub(crate) fn show_names(dom: &Dom, pairs: &Pairs) {
+    let names = Both::of(|side| form::name_of(pairs, side.letter()));
+    let word = |key: &str, default: &'static str| {
+        pairs
+            .get(key)
+            .map(str::trim)
+            .filter(|word| !word.is_empty())
+            .unwrap_or(default)
+            .to_owned()
+    };
+    let counted = word("counted", "combatants");
+    let unit = TimeUnit::of_word(&word("unit", "h")).unwrap_or_default();
+    for side in Side::BOTH {
+        let (letter, name, enemy) = (side.letter(), &names[side], &names[side.enemy()]);
+        dom.set_text(&format!("{letter}.who"), name);
+        dom.set_text(&format!("{letter}.direction"), &meaning::direction(name, enemy));
+        let law = FireLaw::of_word(&word(&format!("{letter}.fire"), "aimed"));
+        let rate_unit = law
+            .map(|law| meaning::rate_unit(law, name, enemy, unit))
+            .unwrap_or_default();
+        dom.set_text(&format!("{letter}.rate.unit"), &rate_unit);
+        for key in ["start", "lost"] {
+            dom.set_text(&format!("{letter}.{key}.unit"), &counted);
+        }
+        if let Ok(Some(legend)) = dom.document.query_selector(&format!("[data-name={letter}]")) {
+            legend.set_text_content(Some(name));
+        }
+    }
+    dom.set_text("until.unit", unit.symbol());
+}
+
+fn show_figures(dom: &Dom, figures: &Figures) {
+    let Some(table) = dom.element("figures") else {
+        return;
+    };
+    table.set_text_content(None);
+    let mut build = Build { dom, row: None };
+    if let Some(head) = build.part(&table, "thead") {
+        build.row_in(&head);
+        build.cell("td", "", &[]);
+        for side in Side::BOTH {
+            build.cell(
+                "th",
+                &figures.names[side],
+                &[("scope", "col"), ("class", side.letter())],
+            );
+        }
+    }
+    let Some(body) = build.part(&table, "tbody") else {
+        return;
+    };
+    for row in &figures.rows {
+        build.row_in(&body);
+        build.cell("th", &row.label, &[("scope", "row")]);
+        for side in Side::BOTH {
+            build.cell("td", &row.values[side], &[("data-side", &figures.names[side])]);
+        }
+    }
+    for (label, text) in &figures.both {
+        build.row_in(&body);
+        build.cell("th", label, &[("scope", "row")]);
+        build.cell("td", text, &[("colspan", "2"), ("class", "both")]);
+    }
+}
+
+fn show_table(dom: &Dom, id: &str, content: &Table) {
+    let Some(table) = dom.element(id) else { return };
+    table.set_text_content(None);
+    let mut build = Build { dom, row: None };
+    if let Some(head) = build.part(&table, "thead") {
+        build.row_in(&head);
+        for text in &content.heads {
+            build.cell("th", text, &[("scope", "col")]);
+        }
+    }
+    let Some(body) = build.part(&table, "tbody") else {
+        return;
+    };
+    for row in &content.rows {
+        build.row_in(&body);
+        for text in row {
+            build.cell("td", text, &[]);
+        }
+    }
+}
+
+/// Builds a table cell by cell, each filled as text.
+struct Build<'a> {
+    dom: &'a Dom,
+    row: Option<Element>,
+}
+
+impl Build<'_> {
+    fn part(&self, table: &Element, tag: &str) -> Option<Element> {
+        let part = self.dom.make(tag, "")?;
+        append(table, &part);
+        Some(part)
+    }
+
+    fn row_in(&mut self, part: &Element) {
+        self.row = self.part(part, "tr");
+    }
+
+    fn cell(&self, tag: &str, text: &str, attributes: &[(&str, &str)]) {
+        let (Some(row), Some(cell)) = (&self.row, self.dom.make(tag, text)) else {
+            return;
+        };
+        for (name, value) in attributes {
+            set(&cell, name, value);
+        }
+        append(row, &cell);
+    }
+}
