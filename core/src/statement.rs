@@ -48,7 +48,8 @@ pub struct Statement {
 }
 
 impl TimeUnit {
-    fn of_word(word: &str) -> Option<TimeUnit> {
+    /// The unit of a word of the link.
+    pub fn of_word(word: &str) -> Option<TimeUnit> {
         match word {
             "s" => Some(TimeUnit::Second),
             "min" => Some(TimeUnit::Minute),
@@ -185,8 +186,11 @@ impl<'a> Reader<'a> {
             }
         });
         let until = self.quantity("until");
-        for key in ["view", "paper", "losses", "v"] {
+        for key in ["view", "paper", "v"] {
             self.choice(key);
+        }
+        if self.choice("losses") == Some("whole") {
+            self.report("losses", "`whole` losses are known, but not yet worked out by this copy");
         }
         let x = self.side(Side::X);
         let y = self.side(Side::Y);

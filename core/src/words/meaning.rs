@@ -2,9 +2,9 @@
 
 use super::format::{per_cent, strength, three};
 use crate::fight::break_line;
-use crate::laws::RateMeaning;
+use crate::laws::{FireLaw, RateMeaning};
 use crate::sides::Side;
-use crate::statement::{Statement, Values};
+use crate::statement::{Statement, TimeUnit, Values};
 
 /// What `side`'s rate means: "Each of Ondrel's combatants puts 0.04 of Vessary's out of the fight per h, one every 25 h.
 /// At the start: 24 per h, 6.0 % of Vessary."
@@ -54,11 +54,18 @@ pub fn break_point(statement: &Statement, side: Side) -> String {
     )
 }
 
-/// The direction of `side`'s fire: "Ondrel's fire: what it does to Vessary".
-pub fn direction(statement: &Statement, side: Side) -> String {
-    format!(
-        "{}'s fire: what it does to {}",
-        statement.names[side],
-        statement.names[side.enemy()]
-    )
+/// The direction of a side's fire: "Ondrel's fire: what it does to Vessary". By names alone, since a legend also stands
+/// over figures that cannot be worked out.
+pub fn direction(shooter: &str, target: &str) -> String {
+    format!("{shooter}'s fire: what it does to {target}")
+}
+
+/// What the rate of a law is measured in: "number of Vessary lost, per one of Ondrel, per h"; empty where it has none.
+pub fn rate_unit(law: FireLaw, shooter: &str, target: &str, unit: TimeUnit) -> String {
+    let unit = unit.symbol();
+    match law.law().rate {
+        RateMeaning::TargetsPerShooter => format!("number of {target} lost, per one of {shooter}, per {unit}"),
+        RateMeaning::FractionPerShooter => format!("fraction of {target} lost, per one of {shooter}, per {unit}"),
+        RateMeaning::NoRate => String::new(),
+    }
 }
