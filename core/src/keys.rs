@@ -1,5 +1,7 @@
 //! The one table of keys: the parser, the form's labels, the README's table and the tests all come from it.
 
+use std::cmp::Reverse;
+
 /// Where a key may stand.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Place {
@@ -380,7 +382,16 @@ pub fn nearest(name: &str) -> Option<String> {
             Place::Side => vec![key.on("x"), key.on("y")],
         })
         .map(|known| (strsim::osa_distance(&lower, &known), known))
-        .filter(|(distance, known)| *distance <= 1 + known.len() / 3)
-        .min_by_key(|(distance, _)| *distance)
+        .filter(|(distance, known)| *distance < known.len() && *distance <= 1 + known.len() / 3)
+        // Of two that are as near, the one that begins as `name` does.
+        .min_by_key(|(distance, known)| (*distance, Reverse(alike_at_first(&lower, known))))
         .map(|(_, known)| known)
+}
+
+/// How many letters two names begin with in common.
+fn alike_at_first(one: &str, other: &str) -> usize {
+    one.bytes()
+        .zip(other.bytes())
+        .take_while(|(one, other)| one == other)
+        .count()
 }

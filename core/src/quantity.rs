@@ -4,6 +4,8 @@
 
 use crate::number;
 
+const RANGE_HINT: &str = "write low..high or low..likely..high";
+
 /// What may stand wherever the link has a number.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub enum Quantity {
@@ -47,6 +49,9 @@ impl Quantity {
             };
             return Ok(Quantity::Question { now, between });
         }
+        if text.contains("...") {
+            return Err(RANGE_HINT.into());
+        }
         match text.split("..").collect::<Vec<_>>()[..] {
             [one] => number::read(one).map(Quantity::Number),
             [low, high] => ordered(&[number::read(low)?, number::read(high)?], None),
@@ -54,7 +59,7 @@ impl Quantity {
                 let likely = number::read(likely)?;
                 ordered(&[number::read(low)?, likely, number::read(high)?], Some(likely))
             }
-            _ => Err("write low..high or low..likely..high".into()),
+            _ => Err(RANGE_HINT.into()),
         }
     }
 
