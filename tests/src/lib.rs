@@ -1,0 +1,5 @@
+//! What the tests share.
+
+#[cfg(feature = "browser")]
+pub mod browser;
+pub mod tables;

@@ -1,0 +1,186 @@
+//! The door for batches, as a user opens it: one link a line in, one object of JSON a line out.
+
+use aftercount_tests::tables::{self, project};
+use serde_json::Value;
+use std::io::Write;
+use std::process::{Command, Stdio};
+
+/// Every key of an outcome, the inner ones behind a point.
+const KEYS: &[&str] = &[
+    "ok",
+    "breaks",
+    "time",
+    "ended",
+    "to_the_last",
+    "below_one",
+    "x",
+    "y",
+    "x.start",
+    "x.joined",
+    "x.withdrawn",
+    "x.committed",
+    "x.end",
+    "x.losses.fire",
+    "x.losses.support",
+    "x.losses.wastage",
+    "x.losses.all",
+    "y.start",
+    "y.joined",
+    "y.withdrawn",
+    "y.committed",
+    "y.end",
+    "y.losses.fire",
+    "y.losses.support",
+    "y.losses.wastage",
+    "y.losses.all",
+    "loss_exchange_ratio",
+    "fractional_exchange_ratio",
+    "method",
+    "pieces",
+    "caution",
+];
+
+/// What the batch door prints for these bytes.
+fn batch(input: &[u8]) -> Vec<Value> {
+    let mut door = Command::new(env!("CARGO"))
+        .args(["run", "-q", "-p", "aftercount-core", "--example", "outcome"])
+        .current_dir(project())
+        .stdin(Stdio::piped())
+        .stdout(Stdio::piped())
+        .spawn()
+        .expect("cargo runs");
+    door.stdin
+        .take()
+        .expect("a pipe")
+        .write_all(input)
+        .expect("the door reads");
+    let output = door.wait_with_output().expect("the door ends");
+    assert!(output.status.success(), "{}", output.status);
+    let text = String::from_utf8(output.stdout).expect("the door writes UTF-8");
+    assert!(
+        text.is_empty() || text.ends_with('\n'),
+        "the last line ends as the others do"
+    );
+    text.lines()
+        .map(|line| serde_json::from_str(line).expect(line))
+        .collect()
+}
+
+const GOOD: &str = "x.start=600&y.start=400&x.rate=0.04&y.rate=0.05";
+
+#[test]
+fn every_line_is_answered_in_its_place() {
+    let long = format!("title={}", "a".repeat(20_000));
+    let input = format!("{GOOD}\n\nx.start=1,000\n \r\n{GOOD}&until=3\r\n{long}\nnonsense\n{GOOD}");
+    let answers = batch(input.as_bytes());
+    let good: Vec<bool> = answers
+        .iter()
+        .map(|answer| answer["ok"].as_bool().expect("ok"))
+        .collect();
+    assert_eq!(good, [true, false, false, false, true, false, false, true]);
+    assert_eq!(answers[4]["ended"], "clock");
+    assert_eq!(answers[0], answers[7], "a last line needs no line break");
+    for bad in answers.iter().filter(|answer| answer["ok"] == false) {
+        let problems = bad["problems"].as_array().expect("problems");
+        assert!(!problems.is_empty(), "{bad}");
+        for problem in problems {
+            let keys: Vec<&String> = problem.as_object().expect("an object").keys().collect();
+            assert_eq!(keys.len(), 4, "key, item, found, problem: {problem}");
+            assert!(
+                problem["problem"].as_str().is_some_and(|words| !words.is_empty()),
+                "{problem}"
+            );
+        }
+    }
+}
+
+#[test]
+fn nothing_in_nothing_out_and_no_line_stops_it() {
+    assert_eq!(batch(b""), Vec::<Value>::new());
+    let answers = batch(&[b"x.start=\xff\xfe&y.start=1\n", GOOD.as_bytes()].concat());
+    assert_eq!(answers.len(), 2);
+    assert_eq!(answers[0]["ok"], false);
+    assert_eq!(answers[1]["ok"], true);
+}
+
+#[test]
+fn an_outcome_has_every_key_and_no_other() {
+    let answer = &batch(GOOD.as_bytes())[0];
+    for key in KEYS {
+        let found = key.split('.').try_fold(answer, |value, part| value.get(part));
+        assert!(found.is_some(), "{key} is missing");
+    }
+    let outer = KEYS.iter().filter(|key| !key.contains('.')).count();
+    assert_eq!(answer.as_object().expect("an object").len(), outer, "{answer}");
+    let inner = KEYS
+        .iter()
+        .filter(|key| key.starts_with("x.") && !key.contains("losses"))
+        .count()
+        + 1;
+    assert_eq!(
+        answer["x"].as_object().expect("an object").len(),
+        inner,
+        "{answer}"
+    );
+    assert_eq!(
+        answer["pieces"][0].as_object().expect("a piece").len(),
+        3,
+        "{answer}"
+    );
+    assert!(
+        answer["caution"]
+            .as_str()
+            .is_some_and(|words| words.contains("study")),
+        "{answer}"
+    );
+}
+
+#[test]
+fn the_door_says_what_the_library_says() {
+    for (link, answer) in [GOOD, "x.start=NaN"]
+        .iter()
+        .zip(batch(format!("{GOOD}\nx.start=NaN\n").as_bytes()))
+    {
+        assert_eq!(answer, tables::answer(link));
+    }
+}
+
+#[test]
+fn losses_and_ratios_add_up() {
+    let answer = tables::outcome(&format!("{GOOD}&x.lost=50&y.break=0.5"));
+    let number = |path: &str| tables::number(&answer, path).unwrap_or_else(|| panic!("{path} is null"));
+    for side in ["x", "y"] {
+        let of = |path: &str| number(&format!("{side}.{path}"));
+        let lost = of("start") - of("end");
+        tables::assert_close(
+            of("losses.fire"),
+            lost,
+            1e-14,
+            "losses are what is no longer there",
+        );
+        assert_eq!(of("losses.fire"), of("losses.all"));
+        assert_eq!(
+            of("losses.support") + of("losses.wastage") + of("joined") + of("withdrawn"),
+            0.0
+        );
+    }
+    assert_eq!(
+        number("x.committed"),
+        650.0,
+        "committed counts what was lost before"
+    );
+    let exchange = number("y.losses.fire") / number("x.losses.fire");
+    tables::assert_close(
+        number("loss_exchange_ratio"),
+        exchange,
+        1e-14,
+        "y's losses for one of x's",
+    );
+    let fractional = exchange * number("x.committed") / number("y.committed");
+    tables::assert_close(
+        number("fractional_exchange_ratio"),
+        fractional,
+        1e-14,
+        "each over its committed",
+    );
+}
