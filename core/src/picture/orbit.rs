@@ -41,7 +41,8 @@ pub fn orbit(statement: &Statement, fight: &Fight) -> Option<Picture> {
     }
     for side in Side::BOTH {
         let line = f64::from(break_line(&engagement, side));
-        if line > 0.0 {
+        // A side that had lost more than that before the start has its line outside the picture.
+        if line > 0.0 && line <= corner[side] {
             let points = match side {
                 Side::X => vec![(line, 0.0), (line, up.to)],
                 Side::Y => vec![(0.0, line), (across.to, line)],

@@ -25,7 +25,8 @@ pub fn strength(statement: &Statement, fight: &Fight) -> Option<Picture> {
     let mut lines = Vec::new();
     for side in Side::BOTH {
         let line = f64::from(break_line(&engagement, side));
-        if line > 0.0 {
+        // A side that had lost more than that before the start has its line above the picture.
+        if line > 0.0 && line <= up.to {
             let label = format!("{} breaks at {}", statement.names[side], in_words(line));
             lines.push(Line {
                 role: Role::BreakLine(side),

@@ -80,14 +80,9 @@ impl Labels {
             ((x, y - 9.0), HPos::Center, VPos::Bottom),
             ((x, y + 9.0), HPos::Center, VPos::Top),
         ];
-        // On the strength picture the numbers stand behind the end, in the margin.
-        let places = if is_orbit(picture) {
-            &around[..]
-        } else {
-            &around[..3]
-        };
         let italic = is_orbit(picture) && index > 0;
-        self.set(pen, &spot.label, colour, italic, places)
+        // On the strength picture the first of them stand behind the end, in the margin, where a number is not too wide.
+        self.set(pen, &spot.label, colour, italic, &around)
     }
 
     fn moment<B: DrawingBackend>(&mut self, pen: &mut Pen<'_, B>, line: &Line) -> Drawn<B> {
