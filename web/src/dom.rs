@@ -86,9 +86,8 @@ impl Dom {
         if let Ok(Some(details)) = element.closest("details") {
             set(&details, "open", "");
         }
-        // Where the focus cannot be set, the view still moves.
+        // The browser scrolls to what it gives the focus; where it refuses, everything stays as it was.
         let _ = element.focus();
-        element.scroll_into_view();
     }
 
     /// Whether the page stands in a frame of another page.
@@ -111,6 +110,16 @@ pub(crate) fn set(element: &Element, name: &str, value: &str) {
 pub(crate) fn append(parent: &Element, child: &Element) {
     // It fails where a node would contain itself, which a fresh child cannot.
     let _ = parent.append_child(child);
+}
+
+/// Appends words to an element, what stands between grave accents as code.
+pub(crate) fn append_words(dom: &Dom, parent: &Element, words: &str) {
+    for (index, part) in words.split('`').enumerate().filter(|(_, part)| !part.is_empty()) {
+        match dom.make(if index % 2 == 1 { "code" } else { "span" }, part) {
+            Some(piece) => append(parent, &piece),
+            None => return,
+        }
+    }
 }
 
 /// What a form control holds now; `None` where the element is no control of ours.

@@ -6,7 +6,7 @@ use aftercount_core::fight::{Effort, Fight, fight};
 use aftercount_core::laws::FireLaw;
 use aftercount_core::outcome::Breaks;
 use aftercount_core::pairs::Pairs;
-use aftercount_core::picture::{self, Picture, Table};
+use aftercount_core::picture::{self, Picture, Role, Table};
 use aftercount_core::sides::{Both, Side};
 use aftercount_core::statement::{Statement, TimeUnit, Values};
 use aftercount_core::words::figures::{Figures, figures};
@@ -80,10 +80,18 @@ pub(crate) fn show(dom: &Dom, good: &Good) {
         dom.set_text(&format!("{name}-words"), &picture.summary);
         show_table(dom, &format!("{name}-table"), &picture.table);
     }
-    if let Some(orbit) = &good.orbit {
-        let parity = orbit.lines.iter().any(|line| line.role == picture::Role::Parity);
-        dom.set_shown("parity-key", parity);
-    }
+    // A key to what is not there would send the eye searching.
+    let lines = || {
+        good.strength
+            .iter()
+            .chain(&good.orbit)
+            .flat_map(|picture| &picture.lines)
+    };
+    dom.set_shown("parity-key", lines().any(|line| line.role == Role::Parity));
+    dom.set_shown(
+        "break-key",
+        lines().any(|line| matches!(line.role, Role::BreakLine(_))),
+    );
     show_attributes(dom, good);
 }
 

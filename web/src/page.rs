@@ -237,7 +237,7 @@ impl Page {
 
     fn work_out_bad(&mut self, mut problems: Vec<Problem>, cause: Cause) {
         if self.filling {
-            problems.retain(|problem| problem.found.is_some() || problem.key.is_none());
+            problems.retain(|problem| problem.found.is_some());
         }
         self.waiting = problems;
         if self.good.is_none() {

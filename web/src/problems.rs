@@ -1,11 +1,12 @@
 //! What is wrong with the text, shown beside the fields and as a list.
 
-use crate::dom::{Dom, append, set};
+use crate::dom::{Dom, append, append_words, set};
 use crate::form;
 use aftercount_core::keys;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::problem::Problem;
 use std::collections::BTreeSet;
+use web_sys::Element;
 
 /// How long a problem waits while somebody is typing, in milliseconds: `0.` on the way to `0.04` is none.
 pub(crate) const PATIENCE: i32 = 600;
@@ -36,6 +37,8 @@ impl Problems {
             }
         }
         self.dom.set_shown("problems", false);
+        self.dom.set_shown("nothing", false);
+        self.dom.set_shown("empty-words", true);
         self.dom.set_text("problem-list", "");
     }
 
@@ -49,6 +52,8 @@ impl Problems {
             self.list(pairs, problem);
         }
         self.dom.set_shown("problems", !problems.is_empty());
+        self.dom.set_shown("nothing", !problems.is_empty());
+        self.dom.set_shown("empty-words", problems.is_empty());
     }
 
     /// Whether `key` has a field in which it can be put right.
@@ -58,18 +63,13 @@ impl Problems {
 
     fn mark(&mut self, key: &str, problem: &Problem) {
         let id = format!("{key}.problem");
-        // A field may have two problems, as where its key stands twice.
-        let before = self
-            .dom
-            .element(&id)
-            .and_then(|element| element.text_content())
-            .unwrap_or_default();
-        let both = if before.is_empty() {
-            problem.line()
-        } else {
-            format!("{before} {}", problem.line())
-        };
-        self.dom.set_text(&id, &both);
+        if let Some(beside) = self.dom.element(&id) {
+            // A field may have two problems, as where its key stands twice.
+            if beside.has_child_nodes() {
+                self.say(&beside, " ");
+            }
+            self.tell(&beside, problem);
+        }
         self.dom.set_shown(&id, true);
         self.dom.set_attribute(key, "aria-invalid", "true");
         self.dom.set_text(&format!("{key}.echo"), "");
@@ -92,7 +92,7 @@ impl Problems {
             }
             self.say(&line, ": ");
         }
-        self.say(&line, &problem.line());
+        self.tell(&line, problem);
         if let Some(key) = problem
             .key
             .as_deref()
@@ -107,7 +107,19 @@ impl Problems {
         append(&list, &line);
     }
 
-    fn say(&self, line: &web_sys::Element, text: &str) {
+    /// The words of [`Problem::line`], with what was found, and every key, set as code.
+    fn tell(&self, parent: &Element, problem: &Problem) {
+        // What was found may hold any sign, so it is never searched for marks.
+        if let Some(found) = problem.found.as_deref().filter(|found| !found.is_empty())
+            && let Some(code) = self.dom.make("code", found)
+        {
+            append(parent, &code);
+            self.say(parent, ": ");
+        }
+        append_words(&self.dom, parent, &format!("{}.", problem.problem));
+    }
+
+    fn say(&self, line: &Element, text: &str) {
         // Text can always be appended to an element of our own.
         let _ = line.append_with_str_1(text);
     }

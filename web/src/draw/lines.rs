@@ -13,6 +13,9 @@ const DOTS: Dash = &[2.0, 3.5];
 const DASH_DOT: Dash = &[9.0, 3.0, 2.0, 3.0];
 const SHORT_DASH: Dash = &[5.0, 4.0];
 
+/// Where along the path its direction is shown: not half-way, where the reading line waits.
+const ON_THE_WAY: f64 = 0.35;
+
 /// Half the height of a mark, in CSS pixels.
 const MARK: f64 = 4.2;
 
@@ -113,10 +116,10 @@ fn draw_spot<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, spot: &Spo
     }
 }
 
-/// An open arrow head half-way, for the way the engagement goes.
+/// An open arrow head, for the way the engagement goes.
 fn direction<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, line: &Line) -> Drawn<B> {
     let points: Vec<Point> = line.points.iter().map(|point| field.place(*point)).collect();
-    let Some((from, to)) = around_middle(&points) else {
+    let Some((from, to)) = on_the_way(&points) else {
         return Ok(());
     };
     let (dx, dy) = (to.0 - from.0, to.1 - from.1);
@@ -127,8 +130,8 @@ fn direction<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, line: &Lin
     pen.line(&[left, to, right], pen.ink.ink, 1.8, SOLID)
 }
 
-/// Two points some pixels apart about half-way along; `None` on a path too short to have a direction.
-fn around_middle(points: &[Point]) -> Option<(Point, Point)> {
+/// Two points some pixels apart on the way; `None` on a path too short to have a direction.
+fn on_the_way(points: &[Point]) -> Option<(Point, Point)> {
     let gap = |from: Point, to: Point| (to.0 - from.0).hypot(to.1 - from.1);
     let length: f64 = points.windows(2).map(|pair| gap(pair[0], pair[1])).sum();
     if length <= 40.0 {
@@ -138,7 +141,7 @@ fn around_middle(points: &[Point]) -> Option<(Point, Point)> {
     let mut from = None;
     for pair in points.windows(2) {
         walked += gap(pair[0], pair[1]);
-        if walked > length / 2.0 && from.is_none() {
+        if walked > length * ON_THE_WAY && from.is_none() {
             from = Some(pair[0]);
         }
         if let Some(from) = from
@@ -164,8 +167,8 @@ mod tests {
 
     #[test]
     fn a_path_that_stays_has_no_direction() {
-        assert_eq!(around_middle(&[(5.0, 5.0)]), None);
-        assert_eq!(around_middle(&[(5.0, 5.0), (6.0, 5.0)]), None);
-        assert!(around_middle(&[(0.0, 0.0), (30.0, 0.0), (60.0, 0.0)]).is_some());
+        assert_eq!(on_the_way(&[(5.0, 5.0)]), None);
+        assert_eq!(on_the_way(&[(5.0, 5.0), (6.0, 5.0)]), None);
+        assert!(on_the_way(&[(0.0, 0.0), (30.0, 0.0), (60.0, 0.0)]).is_some());
     }
 }

@@ -18,6 +18,9 @@ pub(crate) type Dash = &'static [f64];
 /// No gaps.
 pub(crate) const SOLID: Dash = &[];
 
+/// How far a drawn line may be from its points, in CSS pixels: less than is seen.
+const TOLERANCE: f64 = 0.15;
+
 /// How a label is set.
 #[derive(Clone, Copy)]
 pub(crate) struct Set {
@@ -151,6 +154,46 @@ impl<'a, B: DrawingBackend> Pen<'a, B> {
     }
 }
 
+/// Leaves out points that lie within `tolerance` of the line without them (Ramer 1972; Douglas and Peucker 1973).
+///
+/// The backend counts in whole pixels: a fine curve through many points would be a staircase, and look beaded.
+fn simplified(points: &[Point], tolerance: f64) -> Vec<Point> {
+    let Some(last) = points.len().checked_sub(1) else {
+        return Vec::new();
+    };
+    let mut kept = vec![false; points.len()];
+    (kept[0], kept[last]) = (true, true);
+    let mut spans = vec![(0, last)];
+    while let Some((from, to)) = spans.pop() {
+        let offs = (from + 1..to).map(|index| (index, off_line(points[index], points[from], points[to])));
+        if let Some((index, off)) = offs.max_by(|a, b| a.1.total_cmp(&b.1))
+            && off > tolerance
+        {
+            kept[index] = true;
+            spans.extend([(from, index), (index, to)]);
+        }
+    }
+    points
+        .iter()
+        .zip(kept)
+        .filter(|(_, kept)| *kept)
+        .map(|(point, _)| *point)
+        .collect()
+}
+
+/// How far a point is from the stretch between two others.
+fn off_line(point: Point, from: Point, to: Point) -> f64 {
+    let (dx, dy) = (to.0 - from.0, to.1 - from.1);
+    let square = dx * dx + dy * dy;
+    let along = if square == 0.0 {
+        0.0
+    } else {
+        ((point.0 - from.0) * dx + (point.1 - from.1) * dy) / square
+    };
+    let along = along.clamp(0.0, 1.0);
+    (point.0 - from.0 - dx * along).hypot(point.1 - from.1 - dy * along)
+}
+
 /// Cuts a line into dashes by length, so that a curve keeps its rhythm however finely it is sampled.
 fn dashes(points: &[Point], dash: Dash) -> Vec<Vec<Point>> {
     let mut strokes = Vec::new();
@@ -192,6 +235,18 @@ mod tests {
         assert_eq!(strokes[0], [(0.0, 0.0), (4.0, 0.0)]);
         assert_eq!(strokes[1], [(5.0, 1.0), (5.0, 5.0)]);
         assert_eq!(strokes[2], [(5.0, 7.0), (5.0, 10.0)]);
+    }
+
+    #[test]
+    fn straight_stretches_need_their_ends_only() {
+        let steps = |from: i32, to: i32| (from..=to).map(f64::from);
+        let bent: Vec<Point> = steps(0, 50)
+            .map(|x| (x, 0.0))
+            .chain(steps(1, 50).map(|y| (50.0, y)))
+            .collect();
+        assert_eq!(simplified(&bent, 0.1), [(0.0, 0.0), (50.0, 0.0), (50.0, 50.0)]);
+        assert_eq!(simplified(&[], 0.1), []);
+        assert_eq!(simplified(&[(1.0, 1.0)], 0.1), [(1.0, 1.0)]);
     }
 
     #[test]
