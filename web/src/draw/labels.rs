@@ -11,6 +11,9 @@ use plotters::style::text_anchor::{HPos, VPos};
 /// The size of words in the field, in CSS pixels.
 const WORDS: f64 = 13.0;
 
+/// What it costs to stand on other words.
+const OTHER_WORDS: f64 = 1e3;
+
 type Box = (f64, f64, f64, f64);
 
 /// The words of a picture being set: what is taken already.
@@ -175,6 +178,10 @@ impl Labels {
         let Some((cost, at, set, extent)) = best else {
             return Ok(());
         };
+        // In a low picture there is no room for everything: the names of the sides stay, and words on words help nobody.
+        if cost >= OTHER_WORDS && italic {
+            return Ok(());
+        }
         self.taken.push(extent);
         if cost >= 1.0 {
             pen.label_on_paper(&text, at, set)
@@ -185,7 +192,10 @@ impl Labels {
 
     /// How much words in this box would cover.
     fn cost(&self, (left, top, right, foot): Box, (width, height): (f64, f64)) -> f64 {
-        let inside = left >= 0.0 && top >= 0.0 && right <= width && foot <= height.min(self.field.foot);
+        let inside = left >= self.field.left.min(width * 0.2)
+            && top >= 0.0
+            && right <= width
+            && foot <= height.min(self.field.foot);
         let taken = self.taken.iter().filter(|other| {
             left < other.2 + 3.0 && other.0 < right + 3.0 && top < other.3 + 1.0 && other.1 < foot + 1.0
         });
@@ -194,7 +204,7 @@ impl Labels {
             .iter()
             .filter(|((x, y), _)| (left - 2.0..=right + 2.0).contains(x) && (top..=foot).contains(y));
         let curves: f64 = covered.map(|(_, weight)| weight).sum();
-        (if inside { 0.0 } else { 1e4 }) + 1e3 * taken.count() as f64 + curves
+        (if inside { 0.0 } else { 1e4 }) + OTHER_WORDS * taken.count() as f64 + curves
     }
 }
 

@@ -60,10 +60,11 @@ impl<'a, B: DrawingBackend> Pen<'a, B> {
     /// A line through points, dashed where a dash is given.
     pub(crate) fn line(&mut self, points: &[Point], colour: RGBColor, width: f64, dash: Dash) -> Drawn<B> {
         let style = self.stroke(colour, width);
+        let points = simplified(points, TOLERANCE);
         let strokes = if dash.is_empty() {
-            vec![points.to_vec()]
+            vec![points]
         } else {
-            dashes(points, dash)
+            dashes(&points, dash)
         };
         for stroke in strokes.iter().filter(|stroke| stroke.len() > 1) {
             let path: Vec<BackendCoord> = stroke.iter().map(|point| self.coord(*point)).collect();
