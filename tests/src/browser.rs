@@ -8,6 +8,7 @@ mod command;
 mod driver;
 mod files;
 mod input;
+mod native;
 mod sheet;
 mod watch;
 
@@ -23,6 +24,7 @@ use command::Command;
 use driver::Driver;
 pub use files::{page_url, wiki_url};
 pub use input::Key;
+pub use native::{changed, native, native_sentence};
 pub use sheet::Shown;
 
 /// How long anything may take before a test gives up on it. Far beyond what it takes, for a busy machine.
@@ -155,6 +157,11 @@ impl Browser {
         let found = self.run(what, self.client().execute_async(&text, vec![patience]));
         assert!(!found.is_null(), "waited in vain: {what}\n{}", self.summary());
         found
+    }
+
+    /// A script that runs at the beginning of every document from now on, before any of its own.
+    pub fn before_each_page(&self, script: &str) {
+        self.devtools("Page.addScriptToEvaluateOnNewDocument", json!({"source": script}));
     }
 
     /// Gives the window's content another size.

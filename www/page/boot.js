@@ -47,10 +47,11 @@
 
   function give(text) {
     delete document.documentElement.dataset.settled;
+    document.documentElement.dataset.state = "stale";
     const notice = document.getElementById("no-engine");
     const says = notice.querySelector("p");
     says.textContent = "Aftercount stopped on this text, and again after a fresh start: nothing more is worked out. " +
-      "What stands below may be older than the text. Copy the text before you close or reload the page.";
+      "The figures below may be older than the text. Copy the text before you close or reload the page.";
     const box = document.createElement("textarea");
     box.readOnly = true;
     box.rows = 4;
@@ -61,11 +62,11 @@
     notice.scrollIntoView();
   }
 
-  function trapped(event, error) {
+  function look(error) {
     if (window.WebAssembly && error instanceof WebAssembly.RuntimeError && traps < 2) recover(error);
   }
-  window.addEventListener("error", (event) => trapped(event, event.error));
-  window.addEventListener("unhandledrejection", (event) => trapped(event, event.reason));
+  window.addEventListener("error", (event) => look(event.error));
+  window.addEventListener("unhandledrejection", (event) => look(event.reason));
 
   Promise.resolve()
     .then(() => WebAssembly.compile(decode(document.getElementById("wasm").textContent)))

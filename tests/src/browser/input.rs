@@ -19,6 +19,10 @@ pub enum Key {
     End,
     /// To the near end.
     Home,
+    /// A line up.
+    Up,
+    /// A line down.
+    Down,
     /// A step back.
     Left,
     /// A step on.
@@ -40,6 +44,8 @@ impl Key {
             Self::End => '\u{e010}',
             Self::Home => '\u{e011}',
             Self::Left => '\u{e012}',
+            Self::Up => '\u{e013}',
+            Self::Down => '\u{e015}',
             Self::Right => '\u{e014}',
         }
     }
@@ -68,10 +74,22 @@ impl Browser {
         );
     }
 
-    /// Chooses a value of a list.
+    /// Chooses a value of a list with the arrow keys. The driver's own way sends no `input` event, as a hand would.
     #[track_caller]
     pub fn choose(&self, name: &str, value: &str) {
-        self.run(value, self.field(name).select_by_value(value));
+        let script = "const list = document.getElementsByName(arguments[0])[0];
+                      return [...list.options].findIndex((o) => o.value === arguments[1]) - list.selectedIndex;";
+        let steps = self
+            .script(script, vec![json!(name), json!(value)])
+            .as_i64()
+            .expect("a list has places");
+        let key = if steps < 0 { Key::Up } else { Key::Down };
+        self.run(
+            name,
+            self.field(name)
+                .send_keys(&key.code().to_string().repeat(steps.unsigned_abs() as usize)),
+        );
+        assert_eq!(self.value(name), value, "the list {name} has no {value}");
     }
 
     /// Presses a key where the focus is, or at an element.

@@ -64,6 +64,11 @@ impl Browser {
         self.run("the frame", self.client().enter_frame(0));
     }
 
+    /// Goes back to the page around the frame.
+    pub fn leave_frame(&self) {
+        self.run("the page around", self.client().enter_parent_frame());
+    }
+
     /// Waits until the pictures match a text.
     #[track_caller]
     pub fn settle(&self, text: &str) -> Shown {

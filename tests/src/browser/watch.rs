@@ -1,6 +1,6 @@
 //! Nothing may go wrong unseen: errors of the console and the page, breaches of the policy, loads from a network.
 
-use serde_json::{Value, json};
+use serde_json::Value;
 
 use super::Browser;
 use super::command::Command;
@@ -17,10 +17,7 @@ const LOCAL: [&str; 5] = ["file:", "data:", "blob:", "about:", "chrome:"];
 impl Browser {
     /// Listens to every document from now on.
     pub(super) fn watch(&self) {
-        self.devtools(
-            "Page.addScriptToEvaluateOnNewDocument",
-            json!({"source": LISTENERS}),
-        );
+        self.before_each_page(LISTENERS);
     }
 
     /// All that went wrong since this was last asked.

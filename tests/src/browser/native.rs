@@ -1,0 +1,52 @@
+//! What the core, on this machine, says to the text that a page is given.
+
+use aftercount_core::answer::{Answer, answer};
+use aftercount_core::fight::{Effort, fight};
+use aftercount_core::mark::text_mark;
+use aftercount_core::pairs::Pairs;
+use aftercount_core::statement::{Statement, Values};
+use aftercount_core::words::sentence::sentence;
+
+use super::Shown;
+
+/// What a settled page must state for a text that can be worked out.
+///
+/// # Panics
+/// Where the text has problems.
+#[track_caller]
+pub fn native(link: &str) -> Shown {
+    let outcome = match answer(link) {
+        Answer::Outcome(outcome) => outcome,
+        Answer::Problems(problems) => panic!("{link:?} cannot be worked out: {problems:?}"),
+    };
+    let breaks = serde_json::to_value(outcome.breaks).expect("an outcome can be written");
+    Shown {
+        state: "good".to_owned(),
+        settled: Some(text_mark(&Pairs::parse(link))),
+        breaks: breaks.as_str().unwrap_or_default().to_owned(),
+        time: outcome.time,
+        x_end: outcome.x.end,
+        y_end: outcome.y.end,
+    }
+}
+
+/// The sentence for a text that can be worked out.
+///
+/// # Panics
+/// Where the text has problems.
+#[track_caller]
+pub fn native_sentence(link: &str) -> String {
+    let statement =
+        Statement::read(&Pairs::parse(link)).unwrap_or_else(|problems| panic!("{link:?}: {problems:?}"));
+    sentence(
+        &statement,
+        &fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome,
+    )
+}
+
+/// The text with one key changed.
+pub fn changed(link: &str, key: &str, text: &str) -> String {
+    let mut pairs = Pairs::parse(link);
+    pairs.set(key, text);
+    pairs.link()
+}

@@ -1,0 +1,183 @@
+//! In a wiki's frame, without scripts, without WebAssembly, and after a trap.
+
+use aftercount_tests::browser::{Browser, Screen, changed, native, native_sentence, page_url, wiki_url};
+use serde_json::json;
+
+const LINK: &str =
+    "x.name=Ondrel&x.start=600&x.rate=0.04&x.break=0.3&y.name=Vessary&y.start=464&y.rate=0.05&v=1";
+const CAUTION: &str = "study, teaching and exercises";
+
+/// The engagement that a frame shows, as its address has it.
+fn framed_link(browser: &Browser) -> String {
+    let fragment = browser.script("return location.hash;", vec![]);
+    fragment.as_str().expect("an address has a fragment").to_owned()
+}
+
+#[test]
+fn a_wiki_s_frame_works_with_an_opaque_origin() {
+    for screen in [Screen::DESK, Screen::FRAME_UPRIGHT] {
+        let browser = Browser::start();
+        browser.screen(screen);
+        browser.open_address(wiki_url().as_str());
+        browser.picture(&format!("wiki-{}", screen.width));
+        let said = browser.text("#said");
+        let entries = browser.script("return history.length;", vec![]);
+        browser.enter_frame();
+        let link = framed_link(&browser);
+        assert_eq!(browser.settle(&link), native(&link));
+        assert_eq!(
+            browser.script("return self.origin;", vec![]),
+            "null",
+            "the sandbox gives no origin"
+        );
+        assert_eq!(browser.text("#sentence"), native_sentence(&link));
+        assert_eq!(
+            browser.text("#sentence"),
+            said,
+            "the wiki's own words, for print and search"
+        );
+        assert!(browser.text("#short-caution").contains(CAUTION));
+        assert!(!browser.text("#text-mark").is_empty());
+        assert!(!browser.text("#open-sheet").is_empty());
+        assert_eq!(browser.text("[name='x.start']"), "", "a frame has no form");
+        assert_eq!(
+            browser.script("return document.activeElement === document.body;", vec![]),
+            true,
+            "it takes no focus"
+        );
+        assert_eq!(
+            browser.script("return history.length;", vec![]),
+            entries,
+            "a frame adds nothing to the history"
+        );
+
+        // The page around it may change the frame's fragment; a frame of no origin may not, not even its own.
+        let other = changed(&link, "x.start", "900");
+        browser.leave_frame();
+        let script = "const frame = document.querySelector('iframe'); frame.src = frame.src.split('#')[0] + '#' + arguments[0];";
+        browser.script(script, vec![other.clone().into()]);
+        browser.enter_frame();
+        assert_eq!(browser.settle(&other), native(&other));
+        browser.assert_clean();
+    }
+}
+
+#[test]
+fn a_frame_is_whole_without_scrolling() {
+    let browser = Browser::start();
+    let link = format!("{}&view=frame", LINK.trim_end_matches("&v=1"));
+    for screen in [Screen::FRAME_UPRIGHT, Screen::FRAME_LYING] {
+        for paper in ["light", "dark"] {
+            browser.screen(screen);
+            let link = changed(&link, "paper", paper);
+            browser.open(&link);
+            assert_eq!(browser.settle(&link), native(&link));
+            let script = "const r = document.documentElement; return [r.scrollWidth, r.scrollHeight];";
+            let size = browser.script(script, vec![]);
+            browser.picture(&format!("frame-{}-{paper}", screen.width));
+            assert_eq!(size, json!([screen.width, screen.height]), "content and frame");
+            for part in [
+                "#sentence",
+                "#short-caution",
+                "#strength",
+                "#text-mark",
+                "#open-sheet",
+            ] {
+                let script = "const r = document.querySelector(arguments[0]).getBoundingClientRect();
+                    return r.width > 0 && r.top >= 0 && r.left >= 0 && r.right <= innerWidth && r.bottom <= innerHeight;";
+                assert_eq!(
+                    browser.script(script, vec![part.into()]),
+                    true,
+                    "{part} is not whole at {screen:?}"
+                );
+            }
+        }
+    }
+    browser.assert_clean();
+}
+
+#[test]
+fn without_scripts_the_page_says_so_with_the_caution() {
+    let browser = Browser::start();
+    browser.devtools("Emulation.setScriptExecutionDisabled", json!({"value": true}));
+    browser.open(LINK);
+    browser.picture("no-scripts");
+    let shown = browser.script("return document.body.innerText;", vec![]);
+    let shown = shown.as_str().expect("a page has text");
+    assert!(shown.contains("Scripts are switched off"), "{shown}");
+    assert!(shown.contains(CAUTION), "{shown}");
+    assert_eq!(browser.shown().settled, None);
+    browser.assert_clean();
+}
+
+#[test]
+fn a_frame_that_allows_no_scripts_says_so_with_the_caution() {
+    let browser = Browser::start();
+    // An address of the same kind as the page's, since nothing else may frame a file.
+    browser.open_address(wiki_url().as_str());
+    let script =
+        "const frame = document.querySelector('iframe'); const fresh = document.createElement('iframe');
+        fresh.setAttribute('sandbox', ''); fresh.src = arguments[0]; fresh.width = 360; fresh.height = 480;
+        fresh.onload = () => { window.framed = true; }; frame.replaceWith(fresh);";
+    browser.script(script, vec![format!("{}#{LINK}", page_url()).into()]);
+    browser.wait("the frame", "return window.framed;");
+    browser.enter_frame();
+    let shown = browser.script("return document.body.innerText;", vec![]);
+    let shown = shown.as_str().expect("a page has text");
+    assert!(
+        shown.contains("Scripts are switched off") && shown.contains(CAUTION),
+        "{shown}"
+    );
+}
+
+#[test]
+fn without_webassembly_the_page_says_so_with_the_caution() {
+    let browser = Browser::start();
+    browser.before_each_page("delete window.WebAssembly;");
+    browser.open(LINK);
+    browser.wait_text("#no-engine", "cannot run WebAssembly");
+    assert!(browser.text("#no-engine").contains(CAUTION));
+    browser.picture("no-engine");
+}
+
+#[test]
+fn after_a_trap_the_text_lives_on_and_after_a_second_it_can_be_copied() {
+    let browser = Browser::start();
+    browser.open(LINK);
+    browser.settle(LINK);
+    browser.write("x.start", "700");
+    let link = changed(LINK, "x.start", "700");
+    browser.settle(&link);
+    let trap = "delete document.documentElement.dataset.settled;
+        dispatchEvent(new ErrorEvent('error', {error: new WebAssembly.RuntimeError('on purpose')}));";
+    browser.script(trap, vec![]);
+    assert_eq!(
+        browser.settle(&link),
+        native(&link),
+        "a fresh instance takes the text over"
+    );
+    browser.write("x.start", "800");
+    let link = changed(LINK, "x.start", "800");
+    assert_eq!(browser.settle(&link), native(&link), "and goes on with it");
+    assert_eq!(browser.text("#no-engine"), "");
+
+    browser.script(trap, vec![]);
+    browser.wait_text("#no-engine", "Copy the text");
+    assert_eq!(
+        browser.script(
+            "return document.querySelector('#no-engine textarea').value;",
+            vec![]
+        ),
+        link
+    );
+    assert!(browser.text("#no-engine").contains(CAUTION));
+    assert_eq!(browser.shown().settled, None);
+    browser.picture("trapped");
+    let complaints = browser.complaints();
+    assert!(
+        complaints
+            .iter()
+            .all(|complaint| complaint.contains("on purpose")),
+        "{complaints:?}"
+    );
+}
