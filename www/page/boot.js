@@ -25,10 +25,10 @@
 
   function start(text) {
     life = new AbortController();
-    freshGlue();
-    window.wasm_bindgen = wasm_bindgen;
-    wasm_bindgen.initSync({ module: compiled });
     try {
+      freshGlue();
+      window.wasm_bindgen = wasm_bindgen;
+      wasm_bindgen.initSync({ module: compiled });
       wasm_bindgen.start(life.signal, text);
     } catch (error) {
       recover(error);
@@ -40,9 +40,8 @@
     traps += 1;
     life.abort();
     console.error(error);
-    const text = window.aftercountText;
-    if (traps > 1) give(text);
-    else start(text);
+    if (traps > 1) give(window.aftercountText);
+    else start(window.aftercountText);
   }
 
   function give(text) {

@@ -154,6 +154,13 @@ mod tests {
     use super::version;
 
     #[test]
+    fn boot_script_stays_small() {
+        // All that the page does beyond starting is Rust.
+        let lines = include_str!("../page/boot.js").lines().count();
+        assert!(lines <= 80, "{lines} lines");
+    }
+
+    #[test]
     fn version_tells_builds_apart() {
         assert_eq!(version(&[b"one", b"two"]), version(&[b"one", b"two"]));
         assert_ne!(version(&[b"one", b"two"]), version(&[b"onet", b"wo"]));
