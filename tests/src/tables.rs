@@ -153,7 +153,7 @@ impl Errors {
         self.count += 1;
         self.sum += error;
         // A NaN counts as the worst of all.
-        if self.worst.is_empty() || !(error <= self.largest) {
+        if self.worst.is_empty() || error > self.largest || error.is_nan() {
             self.largest = error;
             self.worst = row();
         }

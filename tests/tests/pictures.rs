@@ -136,7 +136,7 @@ fn hex(colour: RGBColor) -> String {
 }
 
 /// The strokes of one colour and width, in CSS pixels.
-fn strokes<'a>(shapes: &'a [Shape], colour: RGBColor, width: f64) -> Vec<&'a Shape> {
+fn strokes(shapes: &[Shape], colour: RGBColor, width: f64) -> Vec<&Shape> {
     let is_it =
         |shape: &&Shape| shape.name == "polyline" && shape.stroke == hex(colour) && shape.width == width;
     shapes.iter().filter(is_it).collect()

@@ -139,7 +139,7 @@ fn error_of(row: &Row, answer: &Value) -> (f64, &'static str) {
             continue;
         };
         let error = relative_error(found, known);
-        if !(error <= worst.0) {
+        if error > worst.0 || error.is_nan() {
             worst = (error, column);
         }
     }
