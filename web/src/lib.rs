@@ -9,6 +9,7 @@ mod copy;
 mod dom;
 pub mod draw;
 mod form;
+mod kept_rates;
 mod listen;
 mod live;
 mod outcome;

@@ -45,7 +45,13 @@ pub(crate) fn all(dom: &Dom, page: &Shared, signal: &AbortSignal) -> Result<(), 
     on(window, "popstate", moved)?;
     on(window, "hashchange", moved)?;
     on(window, "resize", resized)?;
-    for query in ["(prefers-color-scheme: dark)", "(forced-colors: active)"] {
+    let queries = [
+        "(prefers-color-scheme: dark)",
+        "(forced-colors: active)",
+        "(min-resolution: 1.5dppx)",
+        "(min-resolution: 2.5dppx)",
+    ];
+    for query in queries {
         if let Ok(Some(media)) = dom.window.match_media(query) {
             on(media.as_ref(), "change", resized)?;
         }

@@ -3,6 +3,7 @@
 use crate::address::{Address, Step};
 use crate::dom::Dom;
 use crate::form;
+use crate::kept_rates::KeptRates;
 use crate::listen::After;
 use crate::live::{Live, QUIET};
 use crate::outcome::{self, Good};
@@ -34,6 +35,7 @@ pub(crate) struct Page {
     /// Whether `good` is of the text as it stands.
     current: bool,
     problems: Problems,
+    kept_rates: KeptRates,
     address: Address,
     live: Live,
     plates: Plates,
@@ -66,6 +68,7 @@ impl Page {
                 waiting: Vec::new(),
                 current: false,
                 problems: Problems::new(dom),
+                kept_rates: KeptRates::new(dom),
                 address: Address::new(dom),
                 live: Live::new(dom),
                 plates: Plates::new(dom),
@@ -76,6 +79,8 @@ impl Page {
             })
         });
         let mut borrowed = page.borrow_mut();
+        // An instance before this one may have shown the demo: then it is the demo still.
+        let kept = kept.filter(|text| *text != Pairs::parse(DEMO).link());
         let text = kept.or_else(|| borrowed.address.received());
         borrowed.address.begin(text.clone().unwrap_or_default());
         borrowed.show(text);
@@ -101,6 +106,7 @@ impl Page {
         }
         self.demo = false;
         self.pairs.set(key, text);
+        self.kept_rates.typed(&self.pairs, key);
         self.changed(Cause::Typed);
     }
 
@@ -134,6 +140,7 @@ impl Page {
         self.good = None;
         self.filling = true;
         form::fill(&self.dom, &self.pairs);
+        self.kept_rates.start(&self.pairs);
         self.changed(Cause::Whole);
         self.address.close();
     }
@@ -199,6 +206,7 @@ impl Page {
         self.pairs = Pairs::parse(text.as_deref().unwrap_or(DEMO));
         form::fill(&self.dom, &self.pairs);
         self.open_what_holds_values();
+        self.kept_rates.start(&self.pairs);
         self.work_out(Cause::Whole);
     }
 

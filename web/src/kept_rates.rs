@@ -1,0 +1,56 @@
+//! Rates that were kept when the law of fire changed: their unit is another one now, and the page says so.
+
+use crate::dom::Dom;
+use aftercount_core::laws::{FireLaw, RateMeaning};
+use aftercount_core::pairs::Pairs;
+use aftercount_core::sides::{Both, Side};
+
+/// For each side, what its rate was measured in when it was written.
+pub(crate) struct KeptRates {
+    dom: Dom,
+    written_as: Both<Option<RateMeaning>>,
+}
+
+impl KeptRates {
+    pub(crate) fn new(dom: &Dom) -> KeptRates {
+        KeptRates {
+            dom: dom.clone(),
+            written_as: Both::default(),
+        }
+    }
+
+    /// A whole text came in: whoever wrote it chose law and rate together.
+    pub(crate) fn start(&mut self, pairs: &Pairs) {
+        for side in Side::BOTH {
+            self.written_as[side] = meaning(pairs, side);
+            self.show(pairs, side);
+        }
+    }
+
+    /// A field was typed in.
+    pub(crate) fn typed(&mut self, pairs: &Pairs, key: &str) {
+        for side in Side::BOTH {
+            if key == format!("{}.rate", side.letter()) {
+                self.written_as[side] = meaning(pairs, side);
+            }
+            self.show(pairs, side);
+        }
+    }
+
+    fn show(&self, pairs: &Pairs, side: Side) {
+        let (now, then) = (meaning(pairs, side), self.written_as[side]);
+        let written = pairs.get(&format!("{}.rate", side.letter())).is_some();
+        let changed = written && now.is_some() && then.is_some() && now != then;
+        self.dom
+            .set_shown(&format!("{}.rate.kept", side.letter()), changed);
+    }
+}
+
+/// What the side's rate is measured in; `None` where its law has none, or is not known.
+fn meaning(pairs: &Pairs, side: Side) -> Option<RateMeaning> {
+    let word = pairs
+        .get(&format!("{}.fire", side.letter()))
+        .map_or("aimed", str::trim);
+    let rate = FireLaw::of_word(word)?.law().rate;
+    (rate != RateMeaning::NoRate).then_some(rate)
+}

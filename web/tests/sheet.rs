@@ -1,0 +1,145 @@
+//! The page's static text against the core's tables: what is written twice must say the same.
+
+use aftercount_core::keys::{KEYS, Kind, Place};
+use aftercount_core::laws::FireLaw;
+use aftercount_core::{caution, words};
+use aftercount_web::draw::Ink;
+
+const SHEET: &str = include_str!("../../www/page/index.html");
+const STYLE: &str = include_str!("../../www/page/style.css");
+
+/// Keys that the page reads and that have no field: the frame is asked for by a link, losses have one choice as yet, and
+/// the version is written for one.
+const WITHOUT_FIELD: [&str; 3] = ["view", "losses", "v"];
+
+/// The text of the first element whose opening tag begins so.
+fn text_of(opening: &str) -> Option<&'static str> {
+    let rest = &SHEET[SHEET.find(opening)? + opening.len()..];
+    let (_, inside) = rest.split_once('>')?;
+    inside.split('<').next()
+}
+
+/// Every key that has a field, with the label of its row.
+fn fields() -> Vec<(String, &'static str, Kind)> {
+    let rows = KEYS
+        .iter()
+        .filter(|key| key.worked_out && !WITHOUT_FIELD.contains(&key.name));
+    rows.flat_map(|key| {
+        let letters: &[&str] = if key.place == Place::Side {
+            &["x", "y"]
+        } else {
+            &[""]
+        };
+        letters.iter().map(|letter| (key.on(letter), key.label, key.kind))
+    })
+    .collect()
+}
+
+#[test]
+fn every_field_has_the_label_of_its_key_and_the_key_beside_it() {
+    for (key, label, _) in fields() {
+        assert_eq!(text_of(&format!("<label for=\"{key}\"")), Some(label), "{key}");
+        assert!(
+            SHEET.contains(&format!("</label> <code>{key}</code>")),
+            "{key} stands beside its label"
+        );
+        assert!(
+            SHEET.contains(&format!("id=\"{key}\" name=\"{key}\"")),
+            "{key} has a control"
+        );
+        assert!(
+            SHEET.contains(&format!("id=\"{key}.problem\"")),
+            "{key} has a place for its problems"
+        );
+    }
+}
+
+#[test]
+fn every_choice_of_a_key_is_offered_once() {
+    for (key, _, kind) in fields() {
+        let Kind::Choice(words) = kind else { continue };
+        let select = SHEET.split_once(&format!("<select id=\"{key}\"")).expect(&key).1;
+        let select = select.split_once("</select>").expect("it ends").0;
+        for word in words {
+            let known = !key.ends_with(".fire") || FireLaw::of_word(word).is_some();
+            let count = select.matches(&format!("<option value=\"{word}\">")).count();
+            assert_eq!(count, usize::from(known), "{key}={word}");
+        }
+    }
+}
+
+#[test]
+fn the_laws_of_fire_have_the_labels_of_the_core() {
+    for word in ["aimed", "area", "none"] {
+        let label = FireLaw::of_word(word).expect(word).law().label;
+        let option = format!("<option value=\"{word}\">{label}</option>");
+        assert_eq!(SHEET.matches(&option).count(), 2, "{option}");
+    }
+}
+
+#[test]
+fn fixed_words_are_those_of_the_core() {
+    for (id, text) in [
+        ("short-caution", caution::SHORT),
+        ("stale", words::STALE),
+        ("empty-words", words::BLANK),
+        ("text-care", words::HANDLE),
+        ("x.break.aside", words::BREAK_POINT_DOUBT),
+        ("y.break.aside", words::BREAK_POINT_DOUBT),
+        ("continuous", words::CONTINUOUS),
+    ] {
+        assert!(SHEET.contains(&format!("id=\"{id}\">{text}</p>")), "{id}: {text}");
+    }
+    assert!(SHEET.contains(&format!("<p class=\"caution\">{}</p>", caution::FULL)));
+}
+
+#[test]
+fn the_caution_stands_where_nothing_runs() {
+    for (from, to) in [("<noscript>", "</noscript>"), ("id=\"no-engine\"", "</section>")] {
+        let notice = SHEET.split_once(from).expect(from).1.split_once(to).expect(to).0;
+        assert!(
+            notice.contains("The umpire, doctrine and the law decide."),
+            "{from}"
+        );
+    }
+}
+
+#[test]
+fn the_light_ink_is_that_of_the_style_sheet() {
+    let root = STYLE
+        .split_once(":root {")
+        .expect("colours")
+        .1
+        .split_once('}')
+        .expect("it ends")
+        .0;
+    let ink = Ink::light();
+    for (name, colour) in [
+        ("paper", ink.paper),
+        ("ink", ink.ink),
+        ("faint", ink.faint),
+        ("x", ink.x),
+        ("y", ink.y),
+    ] {
+        let written = format!("--{name}: #{:02x}{:02x}{:02x};", colour.0, colour.1, colour.2);
+        assert!(root.contains(&written), "{written}");
+    }
+}
+
+#[test]
+fn both_dark_themes_are_the_same() {
+    let block = |head: &str| {
+        let body = STYLE
+            .split_once(head)
+            .expect(head)
+            .1
+            .split_once('}')
+            .expect("it ends")
+            .0;
+        body.split_whitespace().collect::<Vec<_>>().join(" ")
+    };
+    assert_eq!(
+        block(":root[data-paper=\"auto\"] {"),
+        block("\n:root[data-paper=\"dark\"] {")
+    );
+}
