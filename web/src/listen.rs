@@ -45,6 +45,8 @@ pub(crate) fn all(dom: &Dom, page: &Shared, signal: &AbortSignal) -> Result<(), 
     on(window, "popstate", moved)?;
     on(window, "hashchange", moved)?;
     on(window, "resize", resized)?;
+    on(window, "beforeprint", print)?;
+    on(window, "afterprint", resized)?;
     let queries = [
         "(prefers-color-scheme: dark)",
         "(forced-colors: active)",
@@ -208,6 +210,11 @@ fn hide(page: &mut Page, _event: &Event) -> After {
 
 fn moved(page: &mut Page, _event: &Event) -> After {
     page.address_moved();
+    After::Nothing
+}
+
+fn print(page: &mut Page, _event: &Event) -> After {
+    page.draw_for_print();
     After::Nothing
 }
 

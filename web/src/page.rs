@@ -198,6 +198,15 @@ impl Page {
         self.frame.ask();
     }
 
+    /// The printer is about to look.
+    pub(crate) fn draw_for_print(&mut self) {
+        if let Some(good) = &self.good
+            && let Err(error) = self.plates.draw_for_print(good)
+        {
+            web_sys::console::error_1(&error.into());
+        }
+    }
+
     /// Shows a whole text in place of the one before; the demo where there is none.
     fn show(&mut self, text: Option<String>) {
         self.demo = text.is_none();
