@@ -308,7 +308,8 @@ pub const KEYS: &[Key] = &[
         Kind::Choice(&["smooth", "whole"]),
         "`smooth`: losses flow evenly, chance left out; `whole`: one at a time, by chance",
     )
-    .or("smooth"),
+    .or("smooth")
+    .later(),
     whole(
         "view",
         "View",

@@ -190,7 +190,10 @@ impl<'a> Reader<'a> {
             self.choice(key);
         }
         if self.choice("losses") == Some("whole") {
-            self.report("losses", "`whole` losses are known, but not yet worked out by this copy");
+            self.report(
+                "losses",
+                "`whole` losses are known, but not yet worked out by this copy",
+            );
         }
         let x = self.side(Side::X);
         let y = self.side(Side::Y);

@@ -64,8 +64,12 @@ pub fn direction(shooter: &str, target: &str) -> String {
 pub fn rate_unit(law: FireLaw, shooter: &str, target: &str, unit: TimeUnit) -> String {
     let unit = unit.symbol();
     match law.law().rate {
-        RateMeaning::TargetsPerShooter => format!("number of {target} lost, per one of {shooter}, per {unit}"),
-        RateMeaning::FractionPerShooter => format!("fraction of {target} lost, per one of {shooter}, per {unit}"),
+        RateMeaning::TargetsPerShooter => {
+            format!("number of {target} lost, per one of {shooter}, per {unit}")
+        }
+        RateMeaning::FractionPerShooter => {
+            format!("fraction of {target} lost, per one of {shooter}, per {unit}")
+        }
         RateMeaning::NoRate => String::new(),
     }
 }
