@@ -35,7 +35,7 @@ fn says(dom: &Dom, text: &'static str) -> Closure<dyn FnMut(JsValue)> {
     Closure::new(move |_| dom.set_text("copied", text))
 }
 
-/// The canvas or box under an id, where scripts of a harness look for the text after a trap.
+/// Leaves the text where the boot script finds it after a trap.
 pub(crate) fn keep(dom: &Dom, text: &str) {
     // A frozen window is no reason to stop: then a trap loses the last change only.
     let _ = js_sys::Reflect::set(dom.window.unchecked_ref(), &"aftercountText".into(), &text.into());
