@@ -45,7 +45,7 @@ pub struct Pairs {
 }
 
 impl Pairs {
-    /// Reads a link. It never fails: what is wrong is kept, and named by [`Pairs::problems`].
+    /// Reads a link. It never fails: what is wrong is kept, and a problem of the [`Statement`](crate::statement::Statement).
     pub fn parse(link: &str) -> Pairs {
         let link = without_address(link.trim());
         if link.len() > LONGEST_LINK {
