@@ -282,6 +282,19 @@ proptest! {
     }
 
     #[test]
+    fn a_line_reached_at_the_clock_is_reached(engagement in engagement()) {
+        let whole = solved(&engagement).outcome;
+        let Some(time) = whole.time else { return Ok(()) };
+        prop_assume!(time > 0.0);
+        for until in [time, time * 1.5] {
+            let clocked = solved(&Engagement { until: Some(until), ..engagement }).outcome;
+            prop_assert_eq!(&clocked, &whole, "a clock at {:e}", until);
+        }
+        let before = solved(&Engagement { until: Some(time * 0.999_999), ..engagement }).outcome;
+        prop_assert_eq!((before.breaks, before.ended, before.time), (Breaks::Neither, Ended::Clock, None));
+    }
+
+    #[test]
     fn the_time_to_a_strength_turns_the_strength_at_a_time_round(engagement in engagement()) {
         let fight = solved(&engagement);
         let trajectory = fight.trajectory.as_ref().expect("asked for");
