@@ -248,8 +248,8 @@ fn the_page_names_no_address() {
     }
 }
 
-/// Keys that no field is for: the version, the view that a frame asks for, and a choice that has one value yet.
-const WITHOUT_FIELD: &[&str] = &["v", "view", "losses"];
+/// Keys that no field is for: the version, and the view that a frame asks for.
+const WITHOUT_FIELD: &[&str] = &["v", "view"];
 
 /// The field of every key that is worked out bears the key's name, and the label of the table of keys.
 #[test]
