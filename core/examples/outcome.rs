@@ -1,23 +1,91 @@
-//! The batch door: one link a line in, one JSON object a line out, blank and bad lines answered in place.
+//! The batch door: one link a line in, one JSON object a line out, blank and bad lines answered in place, in order.
+//!
+//! With `--working` each outcome also has its working, as the lines of plain text that the page shows. The lines are
+//! worked out on all cores, a block at a time, so that memory stays flat however many there are.
 
-use aftercount_core::answer::answer;
+use aftercount_core::answer::{Answer, answer, answer_with_working};
 use std::io::{self, BufRead, BufReader, BufWriter, Write};
+use std::process::ExitCode;
+use std::thread;
 
-fn main() -> io::Result<()> {
+/// Lines that one core is given at a time.
+const BLOCK: usize = 512;
+
+fn main() -> ExitCode {
+    let options: Vec<String> = std::env::args().skip(1).collect();
+    let solve: fn(&str) -> Answer = match options.iter().map(String::as_str).collect::<Vec<_>>()[..] {
+        [] => answer,
+        ["--working"] => answer_with_working,
+        _ => {
+            eprintln!("outcome: links on standard input, one a line; the one option is --working");
+            return ExitCode::from(2);
+        }
+    };
+    match run(solve) {
+        Ok(()) => ExitCode::SUCCESS,
+        // Whoever reads the answers has enough of them.
+        Err(error) if error.kind() == io::ErrorKind::BrokenPipe => ExitCode::SUCCESS,
+        Err(error) => {
+            eprintln!("outcome: {error}");
+            ExitCode::FAILURE
+        }
+    }
+}
+
+fn run(solve: fn(&str) -> Answer) -> io::Result<()> {
+    let cores = thread::available_parallelism().map_or(1, usize::from);
     let mut out = BufWriter::new(io::stdout().lock());
-    let mut line = Vec::new();
-    let mut input = BufReader::new(io::stdin().lock());
+    let mut input = BufReader::with_capacity(1 << 20, io::stdin());
     loop {
-        line.clear();
-        if input.read_until(b'\n', &mut line)? == 0 {
+        let lines = read_lines(&mut input, cores * BLOCK)?;
+        if lines.is_empty() {
             return out.flush();
         }
-        // A byte that is no UTF-8 becomes a mark that no key or number holds, and so a problem of that line.
-        let link = String::from_utf8_lossy(&line);
-        writeln!(out, "{}", answer(&link).to_json())?;
+        for answer in answers(&lines, cores, solve) {
+            writeln!(out, "{answer}")?;
+        }
         // A pipe that asks line by line is answered line by line.
         if input.buffer().is_empty() {
             out.flush()?;
         }
     }
+}
+
+/// The lines that are there, at least one unless the input has ended, at most `most`.
+fn read_lines(input: &mut BufReader<io::Stdin>, most: usize) -> io::Result<Vec<String>> {
+    let mut lines = Vec::new();
+    loop {
+        let mut line = Vec::new();
+        if input.read_until(b'\n', &mut line)? == 0 {
+            return Ok(lines);
+        }
+        // A byte that is no UTF-8 becomes a mark that no key or number holds, and so a problem of that line.
+        lines.push(String::from_utf8_lossy(&line).into_owned());
+        if lines.len() == most || !input.buffer().contains(&b'\n') {
+            return Ok(lines);
+        }
+    }
+}
+
+/// The answers in the order of the lines.
+fn answers(lines: &[String], cores: usize, solve: fn(&str) -> Answer) -> Vec<String> {
+    let share = lines.len().div_ceil(cores);
+    let work = |lines: &[String]| -> Vec<String> { lines.iter().map(|line| solve(line).to_json()).collect() };
+    if lines.len() < 2 * cores {
+        return work(lines);
+    }
+    thread::scope(|scope| {
+        let shares: Vec<_> = lines
+            .chunks(share)
+            .map(|lines| scope.spawn(move || work(lines)))
+            .collect();
+        shares
+            .into_iter()
+            .flat_map(|share| {
+                share
+                    .join()
+                    .unwrap_or_else(|panic| std::panic::resume_unwind(panic))
+            })
+            .collect()
+    })
 }

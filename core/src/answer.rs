@@ -5,13 +5,19 @@ use crate::outcome::Outcome;
 use crate::pairs::Pairs;
 use crate::problem::Problem;
 use crate::statement::{Statement, Values};
+use crate::words::working::{WorkingLine, working};
 use serde::Serialize;
 
 /// The answer to one link.
 #[derive(Clone, Debug, PartialEq)]
 pub enum Answer {
     /// It was worked out.
-    Outcome(Box<Outcome>),
+    Outcome {
+        /// What the fight leaves.
+        outcome: Box<Outcome>,
+        /// How, line by line, where that was asked for.
+        working: Option<Vec<String>>,
+    },
     /// It was not, for these reasons.
     Problems(Vec<Problem>),
 }
@@ -23,6 +29,8 @@ enum Written<'a> {
         ok: bool,
         #[serde(flatten)]
         outcome: &'a Outcome,
+        #[serde(skip_serializing_if = "Option::is_none")]
+        working: Option<&'a [String]>,
     },
     Problems {
         ok: bool,
@@ -32,10 +40,30 @@ enum Written<'a> {
 
 /// Works out what `link` states.
 pub fn answer(link: &str) -> Answer {
+    read_and_fight(link, false)
+}
+
+/// Works out what `link` states, and shows how.
+pub fn answer_with_working(link: &str) -> Answer {
+    read_and_fight(link, true)
+}
+
+fn read_and_fight(link: &str, shown: bool) -> Answer {
     match Statement::read(&Pairs::parse(link)) {
-        Ok(statement) => Answer::Outcome(Box::new(
-            fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome,
-        )),
+        Ok(statement) => {
+            let outcome = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
+            let lines = || {
+                working(&statement, &outcome)
+                    .iter()
+                    .map(WorkingLine::text)
+                    .collect()
+            };
+            let working = shown.then(lines);
+            Answer::Outcome {
+                outcome: Box::new(outcome),
+                working,
+            }
+        }
         Err(problems) => Answer::Problems(problems),
     }
 }
@@ -43,7 +71,12 @@ pub fn answer(link: &str) -> Answer {
 impl Serialize for Answer {
     fn serialize<S: serde::Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
         match self {
-            Answer::Outcome(outcome) => Written::Outcome { ok: true, outcome }.serialize(serializer),
+            Answer::Outcome { outcome, working } => Written::Outcome {
+                ok: true,
+                outcome,
+                working: working.as_deref(),
+            }
+            .serialize(serializer),
             Answer::Problems(problems) => Written::Problems { ok: false, problems }.serialize(serializer),
         }
     }

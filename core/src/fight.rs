@@ -1,13 +1,13 @@
 //! From an engagement to its outcome: the one function through which all questions go.
 
 use crate::caution;
+use crate::double::Double;
 use crate::orbit_point::OrbitPoint;
 use crate::outcome::{Breaks, Ended, Losses, Outcome, PieceOutcome, SideOutcome, ToTheLast};
 use crate::sides::{Both, Side};
-use crate::state::{StateEquation, TIE};
+use crate::state::{Descent, StateEquation, TIE, is_endless};
 use crate::terms::Engagement;
-use crate::trajectory::{Motion, Piece, Trajectory};
-use twofloat::TwoFloat;
+use crate::trajectory::{Motion, Piece, Trajectory, Work};
 
 /// How much is asked of a fight.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -19,12 +19,14 @@ pub enum Effort {
 }
 
 /// A fight worked out.
-#[derive(Clone, Debug, PartialEq)]
+#[derive(Clone, Debug)]
 pub struct Fight {
     /// What it leaves.
     pub outcome: Outcome,
     /// Strength over time, where it was asked for.
     pub trajectory: Option<Trajectory>,
+    /// What it took.
+    pub work: Work,
 }
 
 /// Where a fight ends.
@@ -41,78 +43,110 @@ struct End {
 /// Its numbers keep the limits of their keys: `Statement::read` sees to that.
 pub fn fight(engagement: &Engagement, effort: Effort) -> Fight {
     let start = Both::of(|side| engagement.sides[side].start);
-    let lines = Both::of(|side| break_line(engagement, side));
+    let descents = Both::of(|side| descent(engagement, side));
     let fire = Both::of(|side| engagement.sides[side].fire);
-    let equation = StateEquation::of(&fire);
-    let ahead = Lead::of(&equation, &start);
-    let settled = lines.x == 0.0 && lines.y == 0.0 && ahead.tie;
-    let margin = if settled {
-        TwoFloat::from(0.0)
-    } else {
-        ahead.margin
-    };
-    let mut piece = Piece {
-        from: 0.0,
-        to: None,
-        start,
-        equation,
-        motion: Motion::new(start, &fire, margin),
-        parity: settled,
-    };
+    let lead = Lead::of(engagement);
+    let mut piece = Piece::new(0.0, start, fire, ahead_by(engagement, &lead));
 
-    let end = broken_at_start(engagement, &lines)
-        .unwrap_or_else(|| first_break(&piece, &lines))
+    let end = broken_at_start(engagement, &descents)
+        .unwrap_or_else(|| first_break(&piece, &descents))
         .cut_by(engagement.until, &piece);
     piece.to = end.time;
-    let outcome = outcome(engagement, &piece, &end, &ahead);
-    let trajectory = (effort == Effort::Trajectory).then(|| Trajectory {
-        pieces: vec![piece],
-        end: end.time.map(|_| end.point.left),
-    });
-    Fight { outcome, trajectory }
+    let outcome = outcome(engagement, &piece, &end, &lead);
+    let work = piece.work();
+    let trajectory =
+        (effort == Effort::Trajectory).then(|| Trajectory::of(piece, end.time.map(|_| end.point.left)));
+    Fight {
+        outcome,
+        trajectory,
+        work,
+    }
 }
 
 /// The strength at which `side` breaks: (1 − break point) of what it has committed.
-pub fn break_line(engagement: &Engagement, side: Side) -> TwoFloat {
+pub fn break_line(engagement: &Engagement, side: Side) -> Double {
     let terms = &engagement.sides[side];
-    TwoFloat::new_add(terms.start, terms.lost) * TwoFloat::new_sub(1.0, terms.break_point)
+    Double::sum(terms.start, terms.lost) * Double::difference(1.0, terms.break_point)
 }
 
-/// Who is ahead when both fight to the last.
+/// The way of `side` from its start down to the strength at which it breaks; a descent of 0 or less is behind it.
+pub fn descent(engagement: &Engagement, side: Side) -> Descent {
+    let terms = &engagement.sides[side];
+    if terms.break_point == 1.0 {
+        return Descent {
+            to: Double::from(0.0),
+            by: Double::from(terms.start),
+        };
+    }
+    let by = Double::sum(terms.start, terms.lost) * terms.break_point - terms.lost;
+    Descent {
+        to: break_line(engagement, side),
+        by,
+    }
+}
+
+/// X's lead when both fight to the last: the cost of bringing it down less that of bringing Y down. `None` where both do
+/// fight to the last and are at parity: a tie then stays one however long it goes on.
+pub fn ahead(engagement: &Engagement) -> Option<Double> {
+    ahead_by(engagement, &Lead::of(engagement))
+}
+
+fn ahead_by(engagement: &Engagement, lead: &Lead) -> Option<Double> {
+    let to_the_last = Side::BOTH.iter().all(|side| break_line(engagement, *side) == 0.0);
+    (!(to_the_last && lead.is_tie())).then(|| lead.margin())
+}
+
+/// Who is ahead when both fight to the last: what it costs to bring each side down.
 struct Lead {
-    /// The cost of bringing X down to the last, less that of bringing Y down.
-    margin: TwoFloat,
-    tie: bool,
-    /// Whether any fire takes effect.
-    decided: bool,
+    cost: Both<Double>,
 }
 
 impl Lead {
-    fn of(equation: &StateEquation, start: &Both<f64>) -> Lead {
-        let cost = Both::of(|side| equation.cost(side, start[side].into(), TwoFloat::from(0.0)));
+    fn of(engagement: &Engagement) -> Lead {
+        let equation = StateEquation::of(&Both::of(|side| engagement.sides[side].fire));
+        let start = |side: Side| Double::from(engagement.sides[side].start);
         Lead {
-            margin: cost.x - cost.y,
-            tie: StateEquation::tie(cost),
-            decided: cost.x > 0.0 || cost.y > 0.0,
+            cost: Both::of(|side| equation.cost(side, start(side), Double::from(0.0))),
         }
     }
 
-    fn to_the_last(&self) -> Option<ToTheLast> {
-        let prevails = if self.margin > 0.0 {
-            ToTheLast::X
+    fn is_tie(&self) -> bool {
+        StateEquation::tie(self.cost)
+    }
+
+    /// X's cost less Y's; 0 where either is without bound, since no closed form needs it there.
+    fn margin(&self) -> Double {
+        let endless = is_endless(self.cost.x) || is_endless(self.cost.y);
+        if endless {
+            Double::from(0.0)
         } else {
-            ToTheLast::Y
-        };
-        self.decided
-            .then_some(if self.tie { ToTheLast::Parity } else { prevails })
+            self.cost.x - self.cost.y
+        }
+    }
+
+    /// `None` where no fire takes effect, and where both sides fade to nothing whatever their strengths.
+    fn to_the_last(&self) -> Option<ToTheLast> {
+        let cost = self.cost;
+        match (is_endless(cost.x), is_endless(cost.y)) {
+            (true, true) => None,
+            (true, false) => Some(ToTheLast::X),
+            (false, true) => Some(ToTheLast::Y),
+            _ if cost.x == 0.0 && cost.y == 0.0 => None,
+            _ if self.is_tie() => Some(ToTheLast::Parity),
+            _ => Some(if cost.x > cost.y {
+                ToTheLast::X
+            } else {
+                ToTheLast::Y
+            }),
+        }
     }
 }
 
 /// The end of an engagement whose losses before time 0 have already reached a break line.
-fn broken_at_start(engagement: &Engagement, lines: &Both<TwoFloat>) -> Option<End> {
+fn broken_at_start(engagement: &Engagement, descents: &Both<Descent>) -> Option<End> {
     let broken = Both::of(|side| {
         let rounding = engagement.committed_at_start(side) * TIE;
-        TwoFloat::from(engagement.sides[side].start) - lines[side] <= rounding
+        descents[side].by <= rounding
     });
     let breaks = match (broken.x, broken.y) {
         (false, false) => return None,
@@ -134,23 +168,33 @@ fn broken_at_start(engagement: &Engagement, lines: &Both<TwoFloat>) -> Option<En
 }
 
 /// Which side of `piece` reaches its line first, by the state equation, and when.
-fn first_break(piece: &Piece, lines: &Both<TwoFloat>) -> End {
+fn first_break(piece: &Piece, descents: &Both<Descent>) -> End {
     let endless = |point| End {
         breaks: Breaks::Neither,
         ended: Ended::Limit,
         time: None,
         point,
     };
-    let cost = Both::of(|side| piece.equation.cost(side, piece.start[side].into(), lines[side]));
-    if let Motion::Still(start) = piece.motion {
+    let cost = Both::of(|side| {
+        piece
+            .equation
+            .cost_of(side, piece.start[side].into(), descents[side])
+    });
+    if piece.motion == Motion::Still {
         let point = OrbitPoint {
-            left: start,
+            left: piece.start,
             fallen: Both::default(),
         };
         return End {
             ended: Ended::Equilibrium,
             ..endless(point)
         };
+    }
+    if is_endless(cost.x) && is_endless(cost.y) {
+        return endless(OrbitPoint {
+            left: Both::default(),
+            fallen: piece.start,
+        });
     }
     let (breaks, loser) = if StateEquation::tie(cost) {
         (Breaks::Both, Side::X)
@@ -159,19 +203,30 @@ fn first_break(piece: &Piece, lines: &Both<TwoFloat>) -> End {
     } else {
         (Breaks::X, Side::X)
     };
-    let mut point = piece.point_with(loser, lines[loser]);
+    let mut point = piece.point_down(loser, descents[loser]);
     if breaks == Breaks::Both {
-        point.left.y = lines.y.into();
-        point.fallen.y = (TwoFloat::from(piece.start.y) - lines.y).into();
+        point.left.y = descents.y.to.into();
+        point.fallen.y = descents.y.by.into();
     }
-    match piece.motion.time_to(&point) {
-        time if time.is_finite() => End {
+    // What is left of the winner may be too little for a double, and is not nothing.
+    let mut left = point.left;
+    if breaks != Breaks::Both {
+        left[loser.enemy()] = left[loser.enemy()].max(f64::MIN_POSITIVE);
+    }
+    let time = if piece.equation.is_reached(left) {
+        piece.time_to(&point)
+    } else {
+        f64::INFINITY
+    };
+    if time.is_finite() {
+        End {
             breaks,
             ended: Ended::Break,
             time: Some(time),
             point,
-        },
-        _ => endless(point),
+        }
+    } else {
+        endless(point)
     }
 }
 
@@ -180,7 +235,7 @@ impl End {
     fn cut_by(self, until: Option<f64>, piece: &Piece) -> End {
         match until {
             Some(until) if self.time.is_none_or(|time| time > until * (1.0 + TIE)) => {
-                let point = piece.motion.point_at(until);
+                let point = piece.point_at(until);
                 End {
                     breaks: Breaks::Neither,
                     ended: Ended::Clock,
@@ -193,7 +248,7 @@ impl End {
     }
 }
 
-fn outcome(engagement: &Engagement, piece: &Piece, end: &End, ahead: &Lead) -> Outcome {
+fn outcome(engagement: &Engagement, piece: &Piece, end: &End, lead: &Lead) -> Outcome {
     let sides = Both::of(|side| {
         let fallen = end.point.fallen[side];
         SideOutcome {
@@ -216,7 +271,7 @@ fn outcome(engagement: &Engagement, piece: &Piece, end: &End, ahead: &Lead) -> O
         breaks: end.breaks,
         time: if end.ended == Ended::Break { end.time } else { None },
         ended: end.ended,
-        to_the_last: ahead.to_the_last(),
+        to_the_last: lead.to_the_last(),
         below_one: below_one(piece, end),
         x: sides.x,
         y: sides.y,
@@ -234,15 +289,18 @@ fn outcome(engagement: &Engagement, piece: &Piece, end: &End, ahead: &Lead) -> O
 
 /// When a side that fades without ever reaching 0 falls below one, if it does before the end.
 fn below_one(piece: &Piece, end: &End) -> Option<f64> {
+    let zero = Double::from(0.0);
     let fades = |side: Side| {
-        let zero = TwoFloat::from(0.0);
-        if !piece.lasts_until(side, zero) || piece.motion.time_to(&piece.point_with(side, zero)).is_finite() {
+        let fades = piece.equation.rate[side.enemy()] > 0.0
+            && piece.lasts_until(side, zero)
+            && !piece.equation.is_reached(piece.point_with(side, zero).left);
+        if !fades {
             return None;
         }
         if piece.start[side] <= 1.0 {
             return Some(0.0);
         }
-        let time = piece.motion.time_to(&piece.point_with(side, TwoFloat::from(1.0)));
+        let time = piece.time_to(&piece.point_with(side, Double::from(1.0)));
         (time.is_finite() && end.time.is_none_or(|end| time <= end)).then_some(time)
     };
     if end.ended == Ended::Break {

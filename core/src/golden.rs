@@ -16,12 +16,18 @@ pub fn link(index: u32) -> String {
         state ^= state << 17;
         (state >> 32) as u32 % most
     };
-    let fires = ["aimed", "area", "none"];
+    let fires = ["aimed", "area", "logarithmic", "search", "power", "none"];
     let mut link = String::new();
     for side in ["x", "y"] {
-        let fire = fires[if draw(10) == 0 { 2 } else { draw(2) } as usize];
+        let fire = fires[if draw(12) == 0 { 5 } else { draw(5) } as usize];
         let (start, digits, decade) = (1 + draw(2000), 1 + draw(9999), 3 + draw(6));
         link += &format!("{side}.start={start}&{side}.fire={fire}&{side}.rate={digits}e-{decade}&");
+        link += &format!(
+            "{side}.half={}&{side}.p=0.{}&{side}.q=1.{}&",
+            draw(300),
+            1 + draw(99),
+            draw(40)
+        );
         if draw(2) == 0 {
             link += &format!("{side}.break=0.{}&", 1 + draw(9));
         }

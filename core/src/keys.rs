@@ -213,8 +213,7 @@ pub const KEYS: &[Key] = &[
         UP_TO_LARGEST,
         Unit::EnemyStrength,
         "for `search`: the number of targets at which the shooters spend half their time searching",
-    )
-    .later(),
+    ),
     side(
         "p",
         "Exponent on the shooters",
@@ -225,8 +224,7 @@ pub const KEYS: &[Key] = &[
         },
         Unit::Exponent,
         "for `power`: exponent on the shooters",
-    )
-    .later(),
+    ),
     side(
         "q",
         "Exponent on the targets",
@@ -237,8 +235,7 @@ pub const KEYS: &[Key] = &[
         },
         Unit::Exponent,
         "for `power`: exponent on the targets",
-    )
-    .later(),
+    ),
     side(
         "break",
         "Break point",

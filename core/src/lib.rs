@@ -5,7 +5,9 @@
 
 pub mod answer;
 pub mod caution;
+pub mod course;
 pub mod demo;
+pub mod double;
 pub mod fight;
 pub mod golden;
 pub mod keys;
@@ -17,6 +19,7 @@ pub mod outcome;
 pub mod pairs;
 pub mod picture;
 pub mod problem;
+pub mod quadrature;
 pub mod quantity;
 pub mod sides;
 pub mod state;

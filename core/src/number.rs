@@ -18,7 +18,7 @@ pub fn read(text: &str) -> Result<f64, String> {
                 .next()
                 .is_some_and(|digits| digits.contains(|c| ('1'..='9').contains(&c))) =>
         {
-            Err("is too small to be told from 0: write 0".into())
+            Err("is too small to be told from 0".into())
         }
         // A zero has one sign only, or two links of the same meaning would differ.
         Ok(value) => Ok(value + 0.0),
@@ -117,7 +117,15 @@ fn thousands(text: &str) -> Option<String> {
 fn per_cent(text: &str) -> Option<String> {
     let number = text.strip_suffix('%')?.trim_end();
     let value = number.parse::<f64>().ok().filter(|_| is_number(number))?;
-    Some(format!("write {}, without the per-cent sign", value / 100.0))
+    Some(format!(
+        "write {}, without the per-cent sign",
+        hundredth(number, value)
+    ))
+}
+
+/// A hundredth of `value`, which is written `text`, in the digits that a hundredth of the text has: 0.7 gives 0.007.
+pub(crate) fn hundredth(text: &str, value: f64) -> f64 {
+    format!("{text}e-2").parse().unwrap_or(value / 100.0)
 }
 
 /// A number with letters behind it, `4h`.
@@ -159,6 +167,7 @@ mod tests {
             ("\u{2212}3", "write -3, with a plain hyphen for the minus"),
             ("1 2", "write 12, without blanks"),
             ("30 %", "write 0.3, without the per-cent sign"),
+            ("0.7%", "write 0.007, without the per-cent sign"),
             ("4 h", "write 4 alone, without a unit"),
             ("NaN", "write a number"),
             ("inf", "write a number"),

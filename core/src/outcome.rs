@@ -49,6 +49,9 @@ pub enum Method {
     /// By a formula in time.
     #[serde(rename = "closed form")]
     ClosedForm,
+    /// Who breaks and what is left by the state equation, the time by an integral.
+    #[serde(rename = "quadrature")]
+    Quadrature,
 }
 
 /// Losses of one side since time 0, by cause.

@@ -7,8 +7,11 @@ use crate::problem::Problem;
 use percent_encoding::{AsciiSet, NON_ALPHANUMERIC, percent_decode_str, utf8_percent_encode};
 use std::borrow::Cow;
 
-/// The most bytes of encoded text that are read.
+/// The most bytes of encoded text that are worked out.
 pub const LONGEST_LINK: usize = 16 * 1024;
+
+/// The most bytes that are taken apart at all, so that a text that is only somewhat too long is not lost.
+const LONGEST_TAKEN_APART: usize = 256 * 1024;
 
 /// What the writer leaves as it is beside letters and digits: all of it is plain text to mailers and wikis.
 const ESCAPED: &AsciiSet = &NON_ALPHANUMERIC
@@ -40,18 +43,22 @@ struct Undecoded {
 #[derive(Clone, Debug, Default, PartialEq, Eq)]
 pub struct Pairs {
     pairs: Vec<Pair>,
-    /// The length of a text that was too long to be read.
+    /// The length of a text as it came in, where that is more than is worked out.
     too_long: Option<usize>,
+    /// A text so long that it is not even taken apart, as it came in.
+    untouched: Option<String>,
 }
 
 impl Pairs {
     /// Reads a link. It never fails: what is wrong is kept, and a problem of the [`Statement`](crate::statement::Statement).
     pub fn parse(link: &str) -> Pairs {
         let link = without_address(link.trim());
-        if link.len() > LONGEST_LINK {
+        let too_long = (link.len() > LONGEST_LINK).then_some(link.len());
+        if link.len() > LONGEST_TAKEN_APART {
             return Pairs {
                 pairs: Vec::new(),
-                too_long: Some(link.len()),
+                too_long,
+                untouched: Some(link.into()),
             };
         }
         let pairs = link
@@ -61,7 +68,8 @@ impl Pairs {
             .collect();
         Pairs {
             pairs,
-            too_long: None,
+            too_long,
+            untouched: None,
         }
     }
 
@@ -76,6 +84,7 @@ impl Pairs {
     /// Gives `key` a text, in its place or at the end; an empty text takes the key away.
     pub fn set(&mut self, key: &str, text: &str) {
         self.too_long = None;
+        self.untouched = None;
         if text.is_empty() {
             self.pairs.retain(|pair| pair.key != key);
             return;
@@ -100,11 +109,15 @@ impl Pairs {
 
     /// Whether no pair stands.
     pub fn is_empty(&self) -> bool {
-        self.pairs.is_empty()
+        self.pairs.is_empty() && self.untouched.is_none()
     }
 
-    /// The link, encoded, with `v=1` last so that it never ends in a mark that a mailer cuts off.
+    /// The link, encoded, with `v=1` last so that it never ends in a mark that a mailer cuts off; a text that was not
+    /// taken apart as it came in.
     pub fn link(&self) -> String {
+        if let Some(text) = &self.untouched {
+            return text.clone();
+        }
         let written: Vec<String> = self
             .pairs
             .iter()

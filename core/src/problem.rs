@@ -49,8 +49,42 @@ impl Problem {
     /// The line that stands beside the field: "`1,000`: write 1000, without marks for thousands."
     pub fn line(&self) -> String {
         match &self.found {
-            Some(found) if !found.is_empty() => format!("`{found}`: {}.", self.problem),
-            _ => format!("{}.", self.problem),
+            Some(found) if !found.is_empty() => format!("`{}`: {}.", seen(found), seen(&self.problem)),
+            _ => format!("{}.", seen(&self.problem)),
         }
+    }
+}
+
+/// A text with every control and direction character written out as ‹U+202E›: shown as it is, it would turn the words
+/// around it, or not be seen at all.
+pub fn seen(text: &str) -> String {
+    let mut shown = String::with_capacity(text.len());
+    for letter in text.chars() {
+        if is_hidden(letter) {
+            shown.push_str(&format!("‹U+{:04X}›", u32::from(letter)));
+        } else {
+            shown.push(letter);
+        }
+    }
+    shown
+}
+
+/// Control characters, and those that change the direction of a line or are not seen.
+pub fn is_hidden(letter: char) -> bool {
+    letter.is_control()
+        || matches!(letter, '\u{61c}' | '\u{200b}'..='\u{200f}' | '\u{2028}'..='\u{202e}' | '\u{2060}'..='\u{2069}' | '\u{feff}')
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn what_is_hidden_is_written_out() {
+        let problem = Problem::at("x.name", "On\u{202e}drel\n", "holds what it should not");
+        assert_eq!(
+            problem.line(),
+            "`On‹U+202E›drel‹U+000A›`: holds what it should not."
+        );
     }
 }

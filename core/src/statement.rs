@@ -1,9 +1,10 @@
 //! What the pairs say, or the list of what is wrong with them.
 
-use crate::keys::{self, Key, Kind, Place, Unit};
+use crate::keys::{self, Key, Kind, Unit};
 use crate::laws::FireLaw;
+use crate::number;
 use crate::pairs::{LONGEST_LINK, Pairs};
-use crate::problem::Problem;
+use crate::problem::{Problem, is_hidden};
 use crate::quantity::Quantity;
 use crate::sides::{Both, Side};
 use crate::terms::{Engagement, Fire, SideTerms, Terms};
@@ -189,12 +190,6 @@ impl<'a> Reader<'a> {
         for key in ["view", "paper", "v"] {
             self.choice(key);
         }
-        if self.choice("losses") == Some("whole") {
-            self.report(
-                "losses",
-                "`whole` losses are known, but not yet worked out by this copy",
-            );
-        }
         let x = self.side(Side::X);
         let y = self.side(Side::Y);
         let terms = Terms {
@@ -223,13 +218,28 @@ impl<'a> Reader<'a> {
         };
         let lost = self.quantity(&key("lost")).unwrap_or(Quantity::Number(0.0));
         let break_point = self.quantity(&key("break")).unwrap_or(Quantity::Number(1.0));
+        let law = law?;
+        let mut needed = |name: &str, what: &str| {
+            if law.law().needs.contains(&name) {
+                self.required(&key(name), what).map(Some)
+            } else {
+                Some(None)
+            }
+        };
+        let half = needed("half", "the number of targets at which half the time is search");
+        let p = needed("p", "the exponent on the shooters");
+        let q = needed("q", "the exponent on the targets");
+        let fire = Fire {
+            law,
+            rate: rate?,
+            half: half?,
+            p: p?,
+            q: q?,
+        };
         Some(SideTerms {
             start: start?,
             lost,
-            fire: Fire {
-                law: law?,
-                rate: rate?,
-            },
+            fire,
             break_point,
         })
     }
@@ -240,14 +250,7 @@ impl<'a> Reader<'a> {
             None if self.pairs.get(key).is_some_and(|text| !text.trim().is_empty()) => return None,
             None => "aimed",
         };
-        let law = FireLaw::of_word(word);
-        if law.is_none() {
-            self.report(
-                key,
-                format!("`{word}` fire is known, but not yet worked out by this copy"),
-            );
-        }
-        law
+        FireLaw::of_word(word)
     }
 
     /// A problem at `key`, in its place.
@@ -277,10 +280,7 @@ impl<'a> Reader<'a> {
         }
         let length = text.chars().count();
         if length > *most {
-            self.report(
-                key,
-                format!("is {length} characters long; at most {most} are kept"),
-            );
+            self.report(key, format!("is {length} characters long; write at most {most}"));
         }
         text.into()
     }
@@ -376,7 +376,7 @@ fn key_problem(key: &str, text: &str) -> Option<Problem> {
     match keys::find(key) {
         Some(row) => {
             let at_default = text.trim().is_empty() || row.default == Some(text.trim());
-            let used = row.worked_out || at_default || is_of_a_law(row);
+            let used = row.worked_out || at_default;
             (!used).then(not_yet)
         }
         None if keys::is_numbered(key) => Some(not_yet()),
@@ -393,11 +393,6 @@ fn key_problem(key: &str, text: &str) -> Option<Problem> {
     }
 }
 
-/// Whether the key belongs to a law of fire, whose keys are kept and ignored where another law stands.
-fn is_of_a_law(row: &Key) -> bool {
-    row.place == Place::Side && matches!(row.name, "half" | "p" | "q")
-}
-
 fn within_limits(row: &Key, quantity: Quantity) -> Result<Quantity, String> {
     let Kind::Quantity { low, above, high } = row.kind else {
         return Ok(quantity);
@@ -412,7 +407,10 @@ fn within_limits(row: &Key, quantity: Quantity) -> Result<Quantity, String> {
         if value > high {
             let fraction = row.unit == Unit::Fraction && value <= 100.0;
             let hint = if fraction {
-                format!(": for {value} % write {}", value / 100.0)
+                format!(
+                    ": for {value} % write {}",
+                    number::hundredth(&value.to_string(), value)
+                )
             } else {
                 String::new()
             };
@@ -428,10 +426,4 @@ fn plain(limit: f64) -> String {
     } else {
         format!("{limit}")
     }
-}
-
-/// Control characters, and those that change the direction of a line or are not seen.
-fn is_hidden(letter: char) -> bool {
-    letter.is_control()
-        || matches!(letter, '\u{61c}' | '\u{200b}'..='\u{200f}' | '\u{2028}'..='\u{202e}' | '\u{2060}'..='\u{2069}' | '\u{feff}')
 }

@@ -10,6 +10,12 @@ pub struct Fire<N> {
     pub law: FireLaw,
     /// Its attrition-rate coefficient, in the unit of the law; 0 for no fire.
     pub rate: N,
+    /// For `search`: the number of targets at which its shooters spend half their time searching.
+    pub half: Option<N>,
+    /// For `power`: the exponent on the shooters.
+    pub p: Option<N>,
+    /// For `power`: the exponent on the targets.
+    pub q: Option<N>,
 }
 
 /// What is stated of one side.
@@ -50,6 +56,9 @@ impl<N> Terms<N> {
                 fire: Fire {
                     law: terms.fire.law,
                     rate: on(side, "rate", &terms.fire.rate),
+                    half: terms.fire.half.as_ref().map(|half| on(side, "half", half)),
+                    p: terms.fire.p.as_ref().map(|p| on(side, "p", p)),
+                    q: terms.fire.q.as_ref().map(|q| on(side, "q", q)),
                 },
                 break_point: on(side, "break", &terms.break_point),
             }

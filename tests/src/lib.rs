@@ -2,4 +2,5 @@
 
 #[cfg(feature = "browser")]
 pub mod browser;
+pub mod budgets;
 pub mod tables;

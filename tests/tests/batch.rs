@@ -1,9 +1,12 @@
 //! The door for batches, as a user opens it: one link a line in, one object of JSON a line out.
 
+use aftercount_core::answer::answer_with_working;
+use aftercount_core::golden;
 use aftercount_tests::tables::{self, project};
 use serde_json::Value;
 use std::io::Write;
-use std::process::{Command, Stdio};
+use std::process::{Command, Output, Stdio};
+use std::thread;
 
 /// Every key of an outcome, the inner ones behind a point.
 const KEYS: &[&str] = &[
@@ -40,21 +43,30 @@ const KEYS: &[&str] = &[
     "caution",
 ];
 
-/// What the batch door prints for these bytes.
-fn batch(input: &[u8]) -> Vec<Value> {
+/// The batch door with these options, these bytes on its standard input.
+fn door(options: &[&str], input: &[u8]) -> Output {
     let mut door = Command::new(env!("CARGO"))
-        .args(["run", "-q", "-p", "aftercount-core", "--example", "outcome"])
+        .args(["run", "-q", "-p", "aftercount-core", "--example", "outcome", "--"])
+        .args(options)
         .current_dir(project())
         .stdin(Stdio::piped())
         .stdout(Stdio::piped())
+        .stderr(Stdio::piped())
         .spawn()
         .expect("cargo runs");
-    door.stdin
-        .take()
-        .expect("a pipe")
-        .write_all(input)
-        .expect("the door reads");
+    let mut pipe = door.stdin.take().expect("a pipe");
+    let bytes = input.to_owned();
+    // From a thread of its own: many answers fill the other pipe before all is written. A door that refuses reads none.
+    let writer = thread::spawn(move || pipe.write_all(&bytes));
     let output = door.wait_with_output().expect("the door ends");
+    let written = writer.join().expect("the writer ends");
+    assert!(written.is_ok() || !output.status.success(), "{written:?}");
+    output
+}
+
+/// What the batch door prints, line by line.
+fn answers(options: &[&str], input: &[u8]) -> Vec<Value> {
+    let output = door(options, input);
     assert!(output.status.success(), "{}", output.status);
     let text = String::from_utf8(output.stdout).expect("the door writes UTF-8");
     assert!(
@@ -64,6 +76,11 @@ fn batch(input: &[u8]) -> Vec<Value> {
     text.lines()
         .map(|line| serde_json::from_str(line).expect(line))
         .collect()
+}
+
+/// What the batch door prints for these bytes.
+fn batch(input: &[u8]) -> Vec<Value> {
+    answers(&[], input)
 }
 
 const GOOD: &str = "x.start=600&y.start=400&x.rate=0.04&y.rate=0.05";
@@ -183,4 +200,60 @@ fn losses_and_ratios_add_up() {
         1e-14,
         "each over its committed",
     );
+}
+
+/// All cores work on the lines, and yet the answers come in their order: more lines than any block of them holds, of
+/// every law, with a bad one now and then.
+#[test]
+fn many_lines_are_answered_in_order() {
+    let link = |index: u32| match index % 97 {
+        0 => format!("x.start=nonsense{index}"),
+        _ => format!("{}&title={index}", golden::link(index)),
+    };
+    let links: Vec<String> = (0..5000).map(link).collect();
+    let found = batch(links.join("\n").as_bytes());
+    assert_eq!(found.len(), links.len());
+    for (link, answer) in links.iter().zip(&found) {
+        assert_eq!(answer, &tables::answer(link), "{link}");
+    }
+}
+
+/// With `--working` an outcome has one key more: the lines that the page shows, as plain text. Problems have none.
+#[test]
+fn working_is_shown_where_it_is_asked_for() {
+    let brackney =
+        "x.start=120&x.fire=search&x.rate=0.05&x.half=40&y.start=90&y.fire=search&y.rate=0.08&y.half=15";
+    let found = answers(
+        &["--working"],
+        format!("{GOOD}\nx.start=NaN\n{brackney}\n").as_bytes(),
+    );
+    let plain = batch(GOOD.as_bytes());
+    assert_eq!(found.len(), 3);
+    for (answer, link) in [(&found[0], GOOD), (&found[2], brackney)] {
+        let lines = answer["working"].as_array().expect("lines");
+        assert!(lines.len() >= 4, "{lines:?}");
+        assert!(
+            lines.iter().all(|line| line
+                .as_str()
+                .is_some_and(|line| !line.trim().is_empty() && !line.contains('<'))),
+            "{lines:?}"
+        );
+        let known: Value = serde_json::from_str(&answer_with_working(link).to_json()).expect("JSON");
+        assert_eq!(answer, &known);
+    }
+    assert!(found[1].get("working").is_none(), "{}", found[1]);
+    let mut without = found[0].clone();
+    without.as_object_mut().expect("an object").remove("working");
+    assert_eq!(without, plain[0], "and all else is the same");
+}
+
+#[test]
+fn an_option_it_does_not_know_is_refused() {
+    for options in [&["--workings"][..], &["--working", "--working"], &["links.txt"]] {
+        let output = door(options, GOOD.as_bytes());
+        assert_eq!(output.status.code(), Some(2), "{options:?}");
+        assert!(output.stdout.is_empty(), "{options:?}");
+        let said = String::from_utf8_lossy(&output.stderr);
+        assert!(said.contains("--working"), "{said}");
+    }
 }

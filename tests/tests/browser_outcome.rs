@@ -131,3 +131,47 @@ fn both_pictures_are_drawn_sharp() {
         browser.assert_clean();
     }
 }
+
+/// Every figure that is a link leads to its line of the working, which opens and takes the focus; the address stays.
+#[test]
+fn figures_lead_to_their_lines_of_the_working() {
+    let browser = Browser::start();
+    for link in LINKS.into_iter().chain([DEMO]) {
+        browser.open(link);
+        browser.settle_on_any();
+        let script = "const before = location.href, led = [];
+            for (const a of document.querySelectorAll('#figures a')) {
+              document.getElementById('working-details').open = false;
+              a.click();
+              led.push(document.activeElement.id === a.getAttribute('href').slice(1)
+                && document.activeElement.checkVisibility() && location.href === before);
+            }
+            return [led.length, led.every(Boolean)];";
+        let led = browser.script(script, vec![]);
+        assert!(led[0].as_u64().is_some_and(|count| count >= 3), "{link}: {led}");
+        assert_eq!(led[1], true, "{link}: {led}");
+        let text = browser.script("return document.getElementById('working-text').value;", vec![]);
+        assert!(
+            text.as_str().is_some_and(|text| text.contains("loses by")),
+            "{link}: {text}"
+        );
+    }
+    browser.assert_clean();
+}
+
+/// Where more of a side can hurt it, that stands beside its strength; elsewhere nothing does.
+#[test]
+fn more_that_hurts_is_said_beside_the_strength() {
+    let browser = Browser::start();
+    let power = "x.start=200&x.fire=power&x.p=0.5&x.q=0&x.rate=25&y.start=100&y.fire=power&y.p=1&y.q=2&y.rate=0.0005&v=1";
+    for (link, shown) in [(power, [true, false]), (LINKS[0], [false, false])] {
+        browser.open(link);
+        browser.settle_on_any();
+        for (letter, shown) in ["x", "y"].into_iter().zip(shown) {
+            let script = "return document.getElementById(arguments[0]).checkVisibility();";
+            let id = format!("{letter}.more-hurts");
+            assert_eq!(browser.script(script, vec![id.into()]), shown, "{link}: {letter}");
+        }
+    }
+    browser.assert_clean();
+}

@@ -231,3 +231,46 @@ fn the_reading_line_answers_keys_mouse_and_finger() {
     browser.wait("the finger", &earlier);
     browser.assert_clean();
 }
+
+/// What only some laws need is in sight only then, or where it has a problem; the text keeps it all the while.
+#[test]
+fn fields_of_a_law_come_and_go_and_keep_their_text() {
+    let browser = opened();
+    let in_sight = |name: &str| {
+        let script = "return document.getElementsByName(arguments[0])[0].checkVisibility();";
+        browser.script(script, vec![name.into()]) == true
+    };
+    assert!(!in_sight("x.half") && !in_sight("x.p") && !in_sight("x.q"));
+    browser.choose("x.fire", "search");
+    assert!(in_sight("x.half") && !in_sight("x.p") && !in_sight("y.half"));
+    browser.write("x.half", "80");
+    let search = changed(&changed(LINK, "x.fire", "search"), "x.half", "80");
+    assert_eq!(browser.settle(&search), native(&search));
+    let kept = "return !document.getElementById('x.rate.kept').hidden;";
+    assert_eq!(
+        browser.script(kept, vec![]),
+        true,
+        "the rate was written for aimed fire"
+    );
+    browser.choose("x.fire", "power");
+    assert!(!in_sight("x.half") && in_sight("x.p") && in_sight("x.q"));
+    browser.write("x.p", "0.7");
+    browser.write("x.q", "0.2");
+    let power = changed(
+        &changed(&changed(&search, "x.fire", "power"), "x.p", "0.7"),
+        "x.q",
+        "0.2",
+    );
+    assert_eq!(browser.settle(&power), native(&power));
+    assert_eq!(browser.value("x.half"), "80");
+    assert_eq!(browser.link(), power);
+    browser.assert_clean();
+}
+
+#[test]
+fn a_hidden_field_with_a_problem_comes_into_sight() {
+    let browser = Browser::start();
+    browser.open("x.start=600&x.rate=0.04&x.half=%ZZ&y.start=400&y.rate=0.05&v=1");
+    browser.wait_text("[id='x.half.problem']", "%25");
+    browser.assert_clean();
+}

@@ -26,8 +26,11 @@ fn the_golden_links_are_good_and_of_every_kind() {
         let link = golden::link(index);
         let answer: Value = serde_json::from_str(&answer(&link).to_json()).expect("JSON");
         assert_eq!(answer["ok"], true, "{link}: {answer}");
-        for kind in ["ended", "breaks", "to_the_last"] {
+        for kind in ["ended", "breaks", "to_the_last", "method"] {
             *kinds.entry(format!("{kind} {}", answer[kind])).or_default() += 1;
+        }
+        for pair in link.split('&').filter(|pair| pair.contains(".fire=")) {
+            *kinds.entry(pair.to_owned()).or_default() += 1;
         }
     }
     for kind in [
@@ -36,6 +39,14 @@ fn the_golden_links_are_good_and_of_every_kind() {
         "ended \"limit\"",
         "breaks \"x\"",
         "breaks \"y\"",
+        "method \"closed form\"",
+        "method \"quadrature\"",
+        "x.fire=aimed",
+        "x.fire=area",
+        "x.fire=logarithmic",
+        "x.fire=search",
+        "x.fire=power",
+        "x.fire=none",
     ] {
         assert!(
             kinds.get(kind).is_some_and(|count| *count >= 20),

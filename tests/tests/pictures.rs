@@ -50,6 +50,15 @@ fn links() -> Vec<String> {
         "x.start=600&x.fire=area&x.rate=0.0001&y.start=400&y.fire=area&y.rate=0.0001&until=1e9",
         "x.start=600&x.rate=1e-300&y.start=400&y.rate=1e-300",
         "x.start=600&x.rate=0.04&x.break=1e-9&y.start=400&y.rate=0.05&y.break=0.999999",
+        "x.start=600&x.fire=logarithmic&x.rate=0.04&y.start=400&y.fire=logarithmic&y.rate=0.05",
+        "x.start=600&x.fire=logarithmic&x.rate=1e9&y.start=1e9&y.fire=area&y.rate=1e-9",
+        "x.start=100&x.fire=power&x.p=0.5&x.q=0&x.rate=1&y.start=100&y.fire=power&y.p=0.5&y.q=0&y.rate=1",
+        "x.start=200&x.fire=power&x.p=0.5&x.q=0&x.rate=25&x.break=0.5&y.start=100&y.fire=power&y.p=1&y.q=2&y.rate=0.0005",
+        "x.start=1e9&x.fire=power&x.p=3&x.q=3&x.rate=1e9&y.start=1e9&y.fire=power&y.p=3&y.q=3&y.rate=1e9",
+        "x.start=1&x.fire=power&x.p=0&x.q=3&x.rate=1e-9&y.start=1e9&y.fire=power&y.p=3&y.q=0&y.rate=1e-9",
+        "x.start=1e9&x.fire=search&x.rate=1e-9&x.half=1e9&y.start=1&y.fire=search&y.rate=1e9&y.half=0",
+        "x.start=500&x.fire=search&x.rate=1&x.half=1e-12&y.start=500&y.fire=search&y.rate=1&y.half=1e-12",
+        "x.start=600&x.fire=none&y.start=400&y.fire=power&y.p=0&y.q=2.9&y.rate=1e-3",
     ];
     absurd
         .into_iter()
@@ -304,8 +313,8 @@ fn the_moment_and_the_break_lines_stand_where_they_should() {
     for known in [
         "Ondrel",
         "Vessary",
-        "Ondrel breaks at 420",
-        "Vessary breaks at 240",
+        "420: Ondrel breaks",
+        "240: Vessary breaks",
         "time (h)",
         "combatants",
     ] {
@@ -391,6 +400,108 @@ fn the_orbit_has_its_parts() {
         .filter(|shape| shape.name == "circle")
         .count();
     assert!(circles >= 1, "the start has its mark");
+}
+
+/// The state equation of one pairing: the link of its fires, and what is constant of the strengths along an orbit.
+type Constant = (&'static str, fn(f64, f64) -> f64);
+
+/// Worked out by hand from the sources of the laws: b·∫S(x)/T(x)dx − a·∫S(y)/T(y)dy.
+const CONSTANTS: &[Constant] = &[
+    (
+        "x.fire=search&x.rate=0.05&x.half=40&y.fire=search&y.rate=0.08&y.half=15",
+        |x, y| 0.05 * (x * x / 2.0 + 15.0 * x) - 0.08 * (y * y / 2.0 + 40.0 * y),
+    ),
+    (
+        "x.fire=power&x.rate=0.01&x.p=1.2&x.q=0.5&y.fire=power&y.rate=0.02&y.p=0.9&y.q=0.3",
+        |x, y| 0.01 * x.powf(1.9) / 1.9 - 0.02 * y.powf(1.4) / 1.4,
+    ),
+    ("x.rate=0.05&y.fire=search&y.rate=0.08&y.half=15", |x, y| {
+        0.05 * (x * x / 2.0 + 15.0 * x) - 0.08 * y * y / 2.0
+    }),
+    (
+        "x.fire=area&x.rate=0.0006&y.fire=power&y.rate=0.02&y.p=0.5&y.q=0.5",
+        |x, y| 0.0006 * x.powf(1.5) / 1.5 - 0.02 * y.powf(0.5) / 0.5,
+    ),
+];
+
+/// Every orbit of every pairing keeps its state equation, and parity is where neither is left.
+#[test]
+fn orbits_of_every_pairing_keep_their_state_equation() {
+    for (fires, constant) in CONSTANTS {
+        let worked = worked(&format!("x.start=120&y.start=90&{fires}"));
+        let scale = constant(worked.orbit.across.to, 0.0).abs();
+        let mut kinds = Vec::new();
+        for line in &worked.orbit.lines {
+            if matches!(line.role, Role::BreakLine(_)) {
+                continue;
+            }
+            let first = constant(line.points[0].0, line.points[0].1);
+            let off = line
+                .points
+                .iter()
+                .map(|(x, y)| (constant(*x, *y) - first).abs())
+                .fold(0.0, f64::max);
+            assert!(
+                off <= 1e-11 * scale,
+                "{fires}: {:?} leaves its orbit by {off:e}",
+                line.role
+            );
+            if line.role == Role::Parity {
+                assert!(
+                    first.abs() <= 1e-11 * scale,
+                    "{fires}: parity is where neither is left: {first:e}"
+                );
+            }
+            kinds.push(line.role);
+        }
+        assert!(
+            kinds.contains(&Role::Parity) && kinds.contains(&Role::Fight),
+            "{fires}: {kinds:?}"
+        );
+    }
+}
+
+/// No strength stands at parity with fire that only ever takes a part of what is left: no curve is made up for it.
+#[test]
+fn no_parity_is_drawn_where_there_is_none() {
+    for fires in [
+        "x.fire=logarithmic&x.rate=0.05&y.fire=logarithmic&y.rate=0.04",
+        "x.fire=logarithmic&x.rate=0.05&y.fire=area&y.rate=0.0004",
+        "x.fire=power&x.p=0.5&x.q=0&x.rate=25&y.fire=power&y.p=1&y.q=2&y.rate=0.0005",
+        "x.rate=0.05&y.fire=none",
+    ] {
+        let worked = worked(&format!("x.start=120&y.start=90&{fires}"));
+        let roles: Vec<Role> = worked.orbit.lines.iter().map(|line| line.role).collect();
+        assert!(!roles.contains(&Role::Parity), "{fires}: {roles:?}");
+        assert!(roles.contains(&Role::Fight), "{fires}: {roles:?}");
+    }
+}
+
+/// An endless fight is shown for as long as it takes to see where it tends: the side that fades has faded, or at least
+/// halved a few times over, and the axis reaches no further than that.
+#[test]
+fn endless_fights_are_shown_on_a_scale_that_shows_them() {
+    for fires in [
+        "x.fire=logarithmic&x.rate=0.05&y.fire=area&y.rate=0.0004",
+        "x.fire=area&x.rate=0.002&y.fire=area&y.rate=0.001",
+        "x.fire=search&x.rate=0.5&x.half=40&y.fire=search&y.rate=0.08&y.half=15",
+        "x.fire=power&x.p=1&x.q=2&x.rate=0.001&y.rate=0.01",
+    ] {
+        let worked = worked(&format!("x.start=120&y.start=90&{fires}"));
+        assert_eq!(worked.fight.outcome.time, None, "{fires}");
+        let trajectory = worked.fight.trajectory.as_ref().expect("asked for");
+        let shown = trajectory.shown;
+        let last = trajectory.strengths_at(shown);
+        assert!(
+            last.y <= 0.5 * 90.0 || last.x <= 0.5 * 120.0,
+            "{fires}: {last:?} at {shown}"
+        );
+        let across = worked.strength.across.to;
+        assert!(
+            (shown..=2.0 * shown).contains(&across),
+            "{fires}: an axis to {across} for {shown}"
+        );
+    }
 }
 
 /// The table beside a picture says what the curve shows, from its start to its end.

@@ -224,3 +224,181 @@ fn parity_of_the_square_law() {
         "the end",
     );
 }
+
+/// The strengths at the clock of a fight, or at its end, within twelve digits.
+fn assert_both(link: &str, x: f64, y: f64) {
+    let fight = outcome(link);
+    assert_left(&fight, "x", x, TWELVE_DIGITS);
+    assert_left(&fight, "y", y, TWELVE_DIGITS);
+}
+
+/// Osipov (1915), his three-halves law A^1.5 − A'^1.5 = B^1.5 − B'^1.5: the state equation of losses that go as the root
+/// of the shooters. Identity: 1,000 against 800, B brought to 0, and to a loss of 20 %.
+#[test]
+fn osipov_three_halves_law() {
+    let link =
+        "x.start=1000&x.fire=power&x.p=0.5&x.q=0&x.rate=1&y.start=800&y.fire=power&y.p=0.5&y.q=0&y.rate=1";
+    let last = outcome(link);
+    assert_eq!(
+        (&last["breaks"], &last["ended"]),
+        (&Value::from("y"), &Value::from("break"))
+    );
+    assert_left(&last, "x", 432.526133652, TWELVE_DIGITS);
+    assert_left(
+        &outcome(&format!("{link}&y.break=0.2")),
+        "x",
+        859.228503858,
+        TWELVE_DIGITS,
+    );
+    // And all along: what each side has lost of its number to the power of 3/2 is the same.
+    let midway = outcome(&format!("{link}&until=9"));
+    let lost = |side: &str, start: f64| start.powf(1.5) - left(&midway, side).powf(1.5);
+    assert_close(lost("x", 1000.0), lost("y", 800.0), 1e-12, "the three-halves law");
+}
+
+/// Helmbold, Operations Research 13 (1965) 857–859: x' = −a·(x/y)^(1−W)·y, here the power law with W on the shooters
+/// and 1 − W on the targets. Identity: a = 0.05 (y's rate), b = 0.03, 100 against 70, at t = 8. W = 1 is the square law.
+#[test]
+fn helmbold_ratio_of_forces() {
+    for (w, x, y) in [
+        (0.5, 71.2372937679, 52.7423762608),
+        (0.75, 73.704529192, 51.1033008106),
+        (1.0, 76.3883677692, 49.001118745),
+    ] {
+        let q = 1.0 - w;
+        let power = |side: &str, rate: f64| {
+            format!("{side}.fire=power&{side}.p={w}&{side}.q={q}&{side}.rate={rate}&")
+        };
+        let link = format!(
+            "x.start=100&{}y.start=70&{}until=8",
+            power("x", 0.03),
+            power("y", 0.05)
+        );
+        let fight = outcome(&link);
+        // Printed to twelve digits with the noughts at their ends left out.
+        assert_left(&fight, "x", x, TWELVE_DIGITS);
+        assert_left(&fight, "y", y, 2.0 * TWELVE_DIGITS);
+        assert_eq!(
+            fight["method"], "closed form",
+            "it comes to the square law of powers"
+        );
+    }
+}
+
+/// Bracken, Naval Research Logistics 42 (1995) 559–577: x' = −a·y^p·x^q and the same the other way. Identity: p = 1.2,
+/// q = 0.5, a = 0.01, b = 0.008, 100 against 90, at t = 1.
+#[test]
+fn bracken_general_exponents() {
+    assert_both(
+        "x.start=100&x.fire=power&x.p=1.2&x.q=0.5&x.rate=0.008&y.start=90&y.fire=power&y.p=1.2&y.q=0.5&y.rate=0.01&until=1",
+        81.3039153305,
+        73.9525159141,
+    );
+}
+
+/// Brackney, Operations Research 7 (1959) 30–44: with x' = −x·y/(s₁ + c₁·x) and y' likewise,
+/// s₁(x₀ − x) + c₁(x₀² − x²)/2 = s₂(y₀ − y) + c₂(y₀² − y²)/2. In the keys of the link c₁ = 1/`y.rate` and
+/// s₁ = `y.half`/`y.rate`.
+#[test]
+fn brackney_state_equation() {
+    let (x, y) = (120.0, 90.0);
+    let (x_rate, x_half, y_rate, y_half) = (0.05, 40.0, 0.08, 15.0);
+    let link = format!(
+        "x.start={x}&x.fire=search&x.rate={x_rate}&x.half={x_half}&y.start={y}&y.fire=search&y.rate={y_rate}&y.half={y_half}"
+    );
+    let spent = |c: f64, s: f64, from: f64, to: f64| s * (from - to) + c * (from * from - to * to) / 2.0;
+    for clock in [0.5, 2.0, 7.0, 30.0] {
+        let fight = outcome(&format!("{link}&until={clock}"));
+        let of_x = spent(1.0 / y_rate, y_half / y_rate, x, left(&fight, "x"));
+        let of_y = spent(1.0 / x_rate, x_half / x_rate, y, left(&fight, "y"));
+        assert_close(of_x, of_y, 1e-12, &format!("at {clock}"));
+    }
+    let last = outcome(&link);
+    assert_eq!(
+        (&last["breaks"], &last["ended"]),
+        (&Value::from("neither"), &Value::from("limit")),
+        "the last of a side is never found"
+    );
+    assert_eq!(left(&last, "x"), 0.0);
+    let of_x = spent(1.0 / y_rate, y_half / y_rate, x, 0.0);
+    let of_y = spent(1.0 / x_rate, x_half / x_rate, y, left(&last, "y"));
+    assert_close(of_x, of_y, 1e-14, "in the limit");
+}
+
+/// Identity, with the state equation of the power laws: two sides of 100, each losing the root of the other's number in a
+/// unit of time, shrink as (10 − t/2)² and are both at nothing at 20; so are 100 whose aimed fire at 0.1 is met by a
+/// steady loss of 5 a unit of time.
+#[test]
+fn power_laws_end_together_in_finite_time() {
+    let root =
+        "x.start=100&x.fire=power&x.p=0.5&x.q=0&x.rate=1&y.start=100&y.fire=power&y.p=0.5&y.q=0&y.rate=1";
+    let steady = "x.start=100&x.rate=0.1&y.start=100&y.fire=power&y.p=0&y.q=0&y.rate=5";
+    for link in [root, steady] {
+        let fight = outcome(link);
+        assert_eq!(
+            [&fight["breaks"], &fight["ended"], &fight["to_the_last"]],
+            ["both", "break", "parity"]
+        );
+        assert_close(
+            number(&fight, "time").expect("a time"),
+            20.0,
+            1e-14,
+            "both at nothing",
+        );
+        assert_eq!((left(&fight, "x"), left(&fight, "y")), (0.0, 0.0));
+    }
+    let midway = outcome(&format!("{root}&until=10"));
+    assert_left(&midway, "x", 25.0, 1e-13);
+    assert_left(&midway, "y", 25.0, 1e-13);
+}
+
+/// Identity: where y's fire feeds on x's number squared, 100 win and 200 break first.
+#[test]
+fn more_of_a_side_can_hurt_it() {
+    let against = |x: &str| {
+        outcome(&format!(
+            "x.start={x}&x.fire=power&x.p=0.5&x.q=0&x.rate=25&x.break=0.5&y.start=100&y.fire=power&y.p=1&y.q=2&y.rate=0.0005&y.break=0.5"
+        ))
+    };
+    assert_eq!(against("100")["breaks"], "y");
+    assert_eq!(against("200")["breaks"], "x");
+}
+
+/// Peterson, Operations Research 15 (1967) 557–558, against Lanchester's area fire. Identity: with x's fire logarithmic
+/// at b and y's area fire at a, y = y₀·e^(−b·t) and x = x₀·exp(−(a·y₀/b)·(1 − e^(−b·t))); the logarithmic side always
+/// prevails in the limit, left with x₀·e^(−a·y₀/b).
+#[test]
+fn logarithmic_against_area() {
+    let (b, a, x, y) = (0.05f64, 0.0004f64, 300.0, 500.0);
+    let link = format!("x.start={x}&x.fire=logarithmic&x.rate={b}&y.start={y}&y.fire=area&y.rate={a}");
+    for clock in [1.0, 20.0, 90.0] {
+        let fight = outcome(&format!("{link}&until={clock}"));
+        let gone = -(-b * clock).exp_m1();
+        assert_left(&fight, "y", y * (-b * clock).exp(), 1e-14);
+        assert_left(&fight, "x", x * (-a * y / b * gone).exp(), 1e-14);
+    }
+    let limit = outcome(&link);
+    assert_eq!(
+        [&limit["breaks"], &limit["ended"], &limit["to_the_last"]],
+        ["neither", "limit", "x"]
+    );
+    assert_left(&limit, "x", x * (-a * y / b).exp(), 1e-14);
+    assert_eq!(left(&limit, "y"), 0.0);
+    // However strong the other side is.
+    let outnumbered = outcome(&link.replace("y.start=500", "y.start=50000"));
+    assert_eq!(outnumbered["to_the_last"], "x");
+}
+
+/// Peterson 1967: logarithmic fire both ways wears both sides out, whatever their strengths: x₀·e^(−a·t) and y₀·e^(−b·t).
+#[test]
+fn logarithmic_both_ways_has_no_winner() {
+    let link = "x.start=600&x.fire=logarithmic&x.rate=0.04&y.start=400&y.fire=logarithmic&y.rate=0.05";
+    let fight = outcome(link);
+    assert_eq!(
+        [&fight["breaks"], &fight["ended"], &fight["to_the_last"]],
+        [&Value::from("neither"), &Value::from("limit"), &Value::Null]
+    );
+    let midway = outcome(&format!("{link}&until=10"));
+    assert_left(&midway, "x", 600.0 * (-0.5f64).exp(), 1e-15);
+    assert_left(&midway, "y", 400.0 * (-0.4f64).exp(), 1e-15);
+}

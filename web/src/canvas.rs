@@ -74,6 +74,10 @@ pub(crate) fn ink(dom: &Dom) -> Ink {
     read(&mut ink.faint, "#inks .faint", "color");
     read(&mut ink.x, "#inks .x", "color");
     read(&mut ink.y, "#inks .y", "color");
+    if dom.matches("(forced-colors: active)") {
+        // What only guides the eye would come in the same colour as the text, or in one as loud.
+        ink.faint = ink.between();
+    }
     if let Some(body) = dom.document.body()
         && let Ok(Some(style)) = dom.window.get_computed_style(&body)
         && let Ok(face) = style.get_property_value("font-family")

@@ -90,6 +90,11 @@ impl Dom {
         let _ = element.focus();
     }
 
+    /// Whether a media query holds.
+    pub(crate) fn matches(&self, query: &str) -> bool {
+        matches!(self.window.match_media(query), Ok(Some(media)) if media.matches())
+    }
+
     /// Whether the page stands in a frame of another page.
     pub(crate) fn is_framed(&self) -> bool {
         match self.window.top() {

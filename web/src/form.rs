@@ -3,6 +3,7 @@
 use crate::dom::{Dom, control_value, set};
 use aftercount_core::keys::{KEYS, Key};
 use aftercount_core::pairs::Pairs;
+use aftercount_core::problem::seen;
 use wasm_bindgen::JsCast;
 use web_sys::{Element, HtmlInputElement, HtmlSelectElement, HtmlTextAreaElement};
 
@@ -44,7 +45,7 @@ fn choose(dom: &Dom, select: &HtmlSelectElement, text: Option<&str>, default: &s
     let word = text.map_or(default, str::trim);
     select.set_value(word);
     if select.value() != word
-        && let Some(option) = dom.make("option", word)
+        && let Some(option) = dom.make("option", &seen(word))
     {
         set(&option, "value", word);
         set(&option, "data-foreign", "");
@@ -60,7 +61,7 @@ pub(crate) fn name_of(pairs: &Pairs, letter: &str) -> String {
         .map(str::trim)
         .filter(|name| !name.is_empty());
     match written {
-        Some(name) => name.to_owned(),
+        Some(name) => seen(name),
         None => format!("Side {}", letter.to_uppercase()),
     }
 }

@@ -1,7 +1,8 @@
 //! Rates that were kept when the law of fire changed: their unit is another one now, and the page says so.
 
 use crate::dom::Dom;
-use aftercount_core::laws::{FireLaw, RateMeaning};
+use crate::law_fields::law_of;
+use aftercount_core::laws::RateMeaning;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::sides::{Both, Side};
 
@@ -48,9 +49,6 @@ impl KeptRates {
 
 /// What the side's rate is measured in; `None` where its law has none, or is not known.
 fn meaning(pairs: &Pairs, side: Side) -> Option<RateMeaning> {
-    let word = pairs
-        .get(&format!("{}.fire", side.letter()))
-        .map_or("aimed", str::trim);
-    let rate = FireLaw::of_word(word)?.law().rate;
+    let rate = law_of(pairs, side)?.law().rate;
     (rate != RateMeaning::NoRate).then_some(rate)
 }

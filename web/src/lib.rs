@@ -10,6 +10,7 @@ mod dom;
 pub mod draw;
 mod form;
 mod kept_rates;
+mod law_fields;
 mod listen;
 mod live;
 mod outcome;
@@ -18,6 +19,7 @@ mod plates;
 mod problems;
 mod reading;
 mod timer;
+mod working;
 
 use wasm_bindgen::JsValue;
 use wasm_bindgen::prelude::wasm_bindgen;

@@ -20,8 +20,8 @@ pub(crate) enum After {
     Nothing,
     /// Moves the focus.
     GoTo(String),
-    /// Selects the text and offers it to the clipboard.
-    Copy,
+    /// Selects a text and offers it to the clipboard.
+    Copy(crate::copy::Source),
 }
 
 /// Sets up every listener.
@@ -46,7 +46,7 @@ pub(crate) fn all(dom: &Dom, page: &Shared, signal: &AbortSignal) -> Result<(), 
     on(window, "hashchange", moved)?;
     on(window, "resize", resized)?;
     on(window, "beforeprint", print)?;
-    on(window, "afterprint", resized)?;
+    on(window, "afterprint", printed)?;
     let queries = [
         "(prefers-color-scheme: dark)",
         "(forced-colors: active)",
@@ -95,7 +95,7 @@ fn do_after(page: &Shared, after: After) {
     match after {
         After::Nothing => {}
         After::GoTo(id) => dom.go_to(&id),
-        After::Copy => crate::copy::copy(&dom),
+        After::Copy(source) => crate::copy::copy(&dom, &source),
     }
 }
 
@@ -117,11 +117,11 @@ fn left(page: &mut Page, event: &Event) -> After {
     After::Nothing
 }
 
-/// The box with the text offers itself whole.
+/// A box with a text to copy offers itself whole.
 fn focused(_page: &mut Page, event: &Event) -> After {
     if let Some(element) = element(event)
-        && element.id() == "text"
         && let Some(area) = element.dyn_ref::<web_sys::HtmlTextAreaElement>()
+        && area.read_only()
     {
         area.select();
     }
@@ -154,8 +154,9 @@ fn click(page: &mut Page, event: &Event) -> After {
         "redo" => page.step(true),
         "copy" => {
             page.field_left();
-            After::Copy
+            After::Copy(crate::copy::TEXT)
         }
+        "copy-working" => After::Copy(crate::copy::WORKING),
         _ => After::Nothing,
     }
 }
@@ -215,6 +216,11 @@ fn moved(page: &mut Page, _event: &Event) -> After {
 
 fn print(page: &mut Page, _event: &Event) -> After {
     page.draw_for_print();
+    After::Nothing
+}
+
+fn printed(page: &mut Page, _event: &Event) -> After {
+    page.printed();
     After::Nothing
 }
 

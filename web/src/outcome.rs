@@ -2,8 +2,9 @@
 
 use crate::dom::{Dom, append, set};
 use crate::form;
+use crate::law_fields::{self, law_of};
+use crate::working;
 use aftercount_core::fight::{Effort, Fight, fight};
-use aftercount_core::laws::FireLaw;
 use aftercount_core::outcome::Breaks;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::picture::{self, Picture, Role, Table};
@@ -74,6 +75,8 @@ pub(crate) fn show(dom: &Dom, good: &Good) {
             &format!("{letter}.break.echo"),
             &meaning::break_point(&good.statement, side),
         );
+        let warning = meaning::more_hurts(&good.statement, side);
+        show_warning(dom, side, warning.as_deref());
     }
     for (name, picture) in [("strength", &good.strength), ("orbit", &good.orbit)] {
         let Some(picture) = picture else { continue };
@@ -112,9 +115,19 @@ pub(crate) fn clear(dom: &Dom) {
         dom.set_text(&format!("{letter}.rate.echo"), "");
         dom.set_text(&format!("{letter}.break.echo"), "");
     }
+    for side in Side::BOTH {
+        show_warning(dom, side, None);
+    }
     for name in ["data-breaks", "data-time", "data-x-end", "data-y-end"] {
         dom.mark_root(name, None);
     }
+}
+
+/// The note beside a strength of which more can hurt.
+fn show_warning(dom: &Dom, side: Side, warning: Option<&str>) {
+    let id = format!("{}.more-hurts", side.letter());
+    dom.set_text(&id, warning.unwrap_or_default());
+    dom.set_shown(&id, warning.is_some());
 }
 
 /// The outcome at full precision, for the tests: the shortest digits that read back the same.
@@ -150,11 +163,14 @@ pub(crate) fn show_names(dom: &Dom, pairs: &Pairs) {
         let (letter, name, enemy) = (side.letter(), &names[side], &names[side.enemy()]);
         dom.set_text(&format!("{letter}.who"), name);
         dom.set_text(&format!("{letter}.direction"), &meaning::direction(name, enemy));
-        let law = FireLaw::of_word(&word(&format!("{letter}.fire"), "aimed"));
-        let rate_unit = law
+        let rate_unit = law_of(pairs, side)
             .map(|law| meaning::rate_unit(law, name, enemy, unit))
             .unwrap_or_default();
         dom.set_text(&format!("{letter}.rate.unit"), &rate_unit);
+        for key in law_fields::names() {
+            let unit = meaning::parameter_unit(key, name, enemy);
+            dom.set_text(&format!("{letter}.{key}.unit"), &unit);
+        }
         for key in ["start", "lost"] {
             dom.set_text(&format!("{letter}.{key}.unit"), &counted);
         }
@@ -189,13 +205,14 @@ fn show_figures(dom: &Dom, figures: &Figures) {
         build.row_in(&body);
         build.cell("th", &row.label, &[("scope", "row")]);
         for side in Side::BOTH {
-            build.cell("td", &row.values[side], &[("data-side", &figures.names[side])]);
+            let attributes = [("data-side", figures.names[side].as_str())];
+            build.figure(&row.values[side], row.lines[side], &attributes);
         }
     }
-    for (label, text) in &figures.both {
+    for row in &figures.both {
         build.row_in(&body);
-        build.cell("th", label, &[("scope", "row")]);
-        build.cell("td", text, &[("colspan", "2"), ("class", "both")]);
+        build.cell("th", &row.label, &[("scope", "row")]);
+        build.figure(&row.value, row.line, &[("colspan", "2"), ("class", "both")]);
     }
 }
 
@@ -237,13 +254,24 @@ impl Build<'_> {
         self.row = self.part(part, "tr");
     }
 
-    fn cell(&self, tag: &str, text: &str, attributes: &[(&str, &str)]) {
-        let (Some(row), Some(cell)) = (&self.row, self.dom.make(tag, text)) else {
-            return;
-        };
+    fn cell(&self, tag: &str, text: &str, attributes: &[(&str, &str)]) -> Option<Element> {
+        let (row, cell) = (self.row.as_ref()?, self.dom.make(tag, text)?);
         for (name, value) in attributes {
             set(&cell, name, value);
         }
         append(row, &cell);
+        Some(cell)
+    }
+
+    /// A figure, as a link to the line of the working that it comes from.
+    fn figure(&self, text: &str, line: Option<&str>, attributes: &[(&str, &str)]) {
+        let words = if line.is_some() { "" } else { text };
+        if let Some(cell) = self.cell("td", words, attributes)
+            && let Some(line) = line
+            && let Some(link) = self.dom.make("a", text)
+        {
+            set(&link, "href", &format!("#{}", working::id(line)));
+            append(&cell, &link);
+        }
     }
 }

@@ -4,6 +4,7 @@ use crate::address::{Address, Step};
 use crate::dom::Dom;
 use crate::form;
 use crate::kept_rates::KeptRates;
+use crate::law_fields::LawFields;
 use crate::listen::After;
 use crate::live::{Live, QUIET};
 use crate::outcome::{self, Good};
@@ -11,14 +12,15 @@ use crate::plates::Plates;
 use crate::problems::{PATIENCE, Problems};
 use crate::reading::Pointer;
 use crate::timer::{NextFrame, Timer};
+use crate::working;
 use aftercount_core::demo::DEMO;
 use aftercount_core::mark::text_mark;
 use aftercount_core::pairs::Pairs;
-use aftercount_core::problem::Problem;
+use aftercount_core::problem::{Problem, seen};
 use aftercount_core::statement::Statement;
 use std::cell::RefCell;
 use std::rc::Rc;
-use web_sys::AbortSignal;
+use web_sys::{AbortSignal, HtmlDetailsElement};
 
 /// The life of one instance of the program on the page.
 pub(crate) struct Page {
@@ -36,6 +38,7 @@ pub(crate) struct Page {
     current: bool,
     problems: Problems,
     kept_rates: KeptRates,
+    law_fields: LawFields,
     address: Address,
     live: Live,
     plates: Plates,
@@ -43,6 +46,8 @@ pub(crate) struct Page {
     write: Timer,
     speak: Timer,
     frame: NextFrame,
+    /// Whether the working was opened for the printer alone.
+    opened_for_print: bool,
 }
 
 /// Why the text changed.
@@ -69,6 +74,7 @@ impl Page {
                 current: false,
                 problems: Problems::new(dom),
                 kept_rates: KeptRates::new(dom),
+                law_fields: LawFields::new(dom),
                 address: Address::new(dom),
                 live: Live::new(dom),
                 plates: Plates::new(dom),
@@ -76,6 +82,7 @@ impl Page {
                 write: Timer::new(&dom.window, page, Page::write_address),
                 speak: Timer::new(&dom.window, page, Page::speak_now),
                 frame: NextFrame::new(&dom.window, page, Page::draw_now),
+                opened_for_print: false,
             })
         });
         let mut borrowed = page.borrow_mut();
@@ -114,6 +121,7 @@ impl Page {
     pub(crate) fn field_left(&mut self) {
         self.write.stop();
         self.address.close();
+        self.law_fields.show_again(&self.pairs);
         if !self.waiting.is_empty() {
             self.show_waiting();
         }
@@ -193,18 +201,35 @@ impl Page {
         }
     }
 
-    /// Draws before the next paint.
+    /// Draws before the next paint, unless it is the printer's layout that gave a picture another size: what the printer
+    /// gets was drawn before, and a canvas of another size would be cleared under it.
     pub(crate) fn draw_soon(&mut self) {
-        self.frame.ask();
+        if !self.dom.matches("print") {
+            self.frame.ask();
+        }
     }
 
-    /// The printer is about to look.
+    /// The printer is about to look: the working is opened, so that it is on the paper.
     pub(crate) fn draw_for_print(&mut self) {
+        if let Some(details) = self.dom.typed::<HtmlDetailsElement>("working-details") {
+            self.opened_for_print = !details.open();
+            details.set_open(true);
+        }
         if let Some(good) = &self.good
             && let Err(error) = self.plates.draw_for_print(good)
         {
             web_sys::console::error_1(&error.into());
         }
+    }
+
+    /// The printer has looked.
+    pub(crate) fn printed(&mut self) {
+        if let Some(details) = self.dom.typed::<HtmlDetailsElement>("working-details")
+            && std::mem::take(&mut self.opened_for_print)
+        {
+            details.set_open(false);
+        }
+        self.frame.ask();
     }
 
     /// Shows a whole text in place of the one before; the demo where there is none.
@@ -243,9 +268,11 @@ impl Page {
 
     fn work_out_good(&mut self, statement: Statement) {
         self.problems.clear();
+        self.law_fields.show(&self.pairs, &[]);
         self.filling = false;
         let good = Good::new(statement);
         outcome::show(&self.dom, &good);
+        working::show(&self.dom, &good, &text_mark(&self.pairs));
         self.good = Some(good);
         self.current = true;
         self.dom.mark_root("data-state", Some("good"));
@@ -256,9 +283,11 @@ impl Page {
         if self.filling {
             problems.retain(|problem| problem.found.is_some());
         }
+        self.law_fields.show(&self.pairs, &problems);
         self.waiting = problems;
         if self.good.is_none() {
             outcome::clear(&self.dom);
+            working::clear(&self.dom);
             self.dom.mark_root("data-state", Some("empty"));
         }
         match cause {
@@ -284,15 +313,17 @@ impl Page {
             area.set_value(&link);
         }
         self.dom.set_text("copied", "");
+        self.dom.set_text("working-copied", "");
         self.dom.set_text("text-mark", &text_mark(&self.pairs));
         let trimmed = |key| self.pairs.get(key).unwrap_or_default().trim();
-        let title = trimmed("title");
-        self.dom.set_text("shown-title", title);
+        let title = seen(trimmed("title"));
+        self.dom.set_text("shown-title", &title);
         self.dom
             .document
-            .set_title(if title.is_empty() { "Aftercount" } else { title });
-        self.dom.set_text("shown-marking", trimmed("marking"));
-        self.dom.set_text("foot-marking", trimmed("marking"));
+            .set_title(if title.is_empty() { "Aftercount" } else { &title });
+        let marking = seen(trimmed("marking"));
+        self.dom.set_text("shown-marking", &marking);
+        self.dom.set_text("foot-marking", &marking);
         self.dom.set_shown("demo", self.demo);
         self.dom.mark_root(
             "data-view",

@@ -4,7 +4,7 @@ use crate::dom::{Dom, append, append_words, set};
 use crate::form;
 use aftercount_core::keys;
 use aftercount_core::pairs::Pairs;
-use aftercount_core::problem::Problem;
+use aftercount_core::problem::{Problem, seen};
 use std::collections::BTreeSet;
 use web_sys::Element;
 
@@ -87,7 +87,7 @@ impl Problems {
                     set(&link, "href", &format!("#{key}"));
                     append(&line, &link);
                 }
-            } else if let Some(code) = self.dom.make("code", key) {
+            } else if let Some(code) = self.dom.make("code", &seen(key)) {
                 append(&line, &code);
             }
             self.say(&line, ": ");
@@ -111,12 +111,12 @@ impl Problems {
     fn tell(&self, parent: &Element, problem: &Problem) {
         // What was found may hold any sign, so it is never searched for marks.
         if let Some(found) = problem.found.as_deref().filter(|found| !found.is_empty())
-            && let Some(code) = self.dom.make("code", found)
+            && let Some(code) = self.dom.make("code", &seen(found))
         {
             append(parent, &code);
             self.say(parent, ": ");
         }
-        append_words(&self.dom, parent, &format!("{}.", problem.problem));
+        append_words(&self.dom, parent, &format!("{}.", seen(&problem.problem)));
     }
 
     fn say(&self, line: &Element, text: &str) {

@@ -1,7 +1,13 @@
 //! The page's static text against the core's tables: what is written twice must say the same.
 
+use aftercount_core::fight::{Effort, fight};
+use aftercount_core::golden;
 use aftercount_core::keys::{KEYS, Kind, Place};
 use aftercount_core::laws::FireLaw;
+use aftercount_core::pairs::Pairs;
+use aftercount_core::statement::{Statement, Values};
+use aftercount_core::words::math::Math;
+use aftercount_core::words::working::working;
 use aftercount_core::{caution, words};
 use aftercount_web::draw::Ink;
 
@@ -61,19 +67,69 @@ fn every_choice_of_a_key_is_offered_once() {
         let select = SHEET.split_once(&format!("<select id=\"{key}\"")).expect(&key).1;
         let select = select.split_once("</select>").expect("it ends").0;
         for word in words {
-            let known = !key.ends_with(".fire") || FireLaw::of_word(word).is_some();
             let count = select.matches(&format!("<option value=\"{word}\">")).count();
-            assert_eq!(count, usize::from(known), "{key}={word}");
+            assert_eq!(count, 1, "{key}={word}");
         }
     }
 }
 
 #[test]
 fn the_laws_of_fire_have_the_labels_of_the_core() {
-    for word in ["aimed", "area", "none"] {
-        let label = FireLaw::of_word(word).expect(word).law().label;
-        let option = format!("<option value=\"{word}\">{label}</option>");
+    for law in FireLaw::ALL.map(FireLaw::law) {
+        let option = format!("<option value=\"{}\">{}</option>", law.word, law.label);
         assert_eq!(SHEET.matches(&option).count(), 2, "{option}");
+    }
+}
+
+/// What a law needs beside its rate has a field that the page shows and hides as a whole, with its unit in words.
+#[test]
+fn what_a_law_needs_has_a_field_that_can_be_hidden() {
+    for key in FireLaw::ALL.iter().flat_map(|law| law.law().needs) {
+        for letter in ["x", "y"] {
+            let key = format!("{letter}.{key}");
+            assert!(
+                SHEET.contains(&format!("<div class=\"law\" id=\"{key}.field\" hidden>")),
+                "{key}"
+            );
+            for part in ["unit", "problem"] {
+                assert!(SHEET.contains(&format!("id=\"{key}.{part}\"")), "{key}.{part}");
+            }
+        }
+    }
+}
+
+/// The markup of a formula is set as it is: so it holds known elements, and letters, signs and numbers of the core's own,
+/// whatever the names are.
+#[test]
+fn formulas_are_markup_of_the_core_alone() {
+    const ELEMENTS: [&str; 12] = [
+        "math", "mrow", "mi", "mn", "mo", "mfrac", "msub", "msup", "msubsup", "msqrt", "mspace", "mtext",
+    ];
+    let hostile = "<img src=q onerror=alert(1)>";
+    for number in 0..300 {
+        let mut pairs = Pairs::parse(&golden::link(number));
+        for key in ["x.name", "y.name", "counted", "title", "note", "marking"] {
+            pairs.set(key, hostile);
+        }
+        let statement = Statement::read(&pairs).unwrap_or_else(|why| panic!("{number}: {why:?}"));
+        let outcome = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
+        let lines = working(&statement, &outcome);
+        assert!(lines.iter().any(|line| line.words.contains(hostile)));
+        for mathml in lines
+            .iter()
+            .filter_map(|line| line.math.as_ref())
+            .map(Math::to_mathml)
+        {
+            for piece in mathml.split('<').skip(1) {
+                let (tag, text) = piece.split_once('>').unwrap_or_else(|| panic!("{mathml}"));
+                let name = tag.trim_start_matches('/').trim_end_matches('/');
+                let attributes = ["mspace width=\"1em\"", "mi mathvariant=\"normal\""];
+                let known = ELEMENTS.contains(&name) || attributes.contains(&name);
+                assert!(known, "{tag} in {mathml}");
+                let text = text.replace("&#x2061;", "");
+                assert!(!text.contains(['&', '"', '\'']), "{text} in {mathml}");
+            }
+        }
     }
 }
 
@@ -84,6 +140,7 @@ fn fixed_words_are_those_of_the_core() {
         ("stale", words::STALE),
         ("empty-words", words::BLANK),
         ("text-care", words::HANDLE),
+        ("working-care", words::HANDLE),
         ("x.break.aside", words::BREAK_POINT_DOUBT),
         ("y.break.aside", words::BREAK_POINT_DOUBT),
         ("continuous", words::CONTINUOUS),

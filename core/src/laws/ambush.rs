@@ -5,9 +5,9 @@
 //! difference b·h − a·o²/2 = K is constant, so o' = −(K + a·o²/2): a tangent, a hyperbolic tangent, or at K = 0 a
 //! fraction.
 
+use crate::double::Double;
 use crate::orbit_point::OrbitPoint;
 use crate::sides::{Both, Side};
-use twofloat::TwoFloat;
 
 /// Aimed fire against area fire, in time. Both rates are above 0.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -27,7 +27,7 @@ impl Ambush {
     /// The motion from the strengths `start`; `hidden` is the side whose fire is aimed.
     ///
     /// `margin` is K at the start, which near parity has more digits than its terms.
-    pub fn new(hidden: Side, start: Both<f64>, rate: Both<f64>, margin: TwoFloat) -> Ambush {
+    pub fn new(hidden: Side, start: Both<f64>, rate: Both<f64>, margin: Double) -> Ambush {
         let area_rate = rate[hidden.enemy()];
         let square = 2.0 * f64::from(margin) / area_rate;
         Ambush {

@@ -4,9 +4,9 @@
 //! difference b·x − a·y is constant.
 
 use super::{Law, NO_POWER, Power, RateMeaning};
+use crate::double::Double;
 use crate::orbit_point::OrbitPoint;
 use crate::sides::Both;
-use twofloat::TwoFloat;
 
 /// The law of area fire.
 pub static AREA: Law = Law {
@@ -15,6 +15,7 @@ pub static AREA: Law = Law {
     formula: "b·S·T",
     source: "Lanchester 1916",
     rate: RateMeaning::FractionPerShooter,
+    needs: &[],
     shooters: |_| 1.0,
     per_target: |_| {
         [
@@ -39,7 +40,7 @@ impl Linear {
     /// The motion from the strengths `start`, where x fires at the rate `rate.x` and y at `rate.y`.
     ///
     /// `margin` is K = b·x − a·y at the start, which near parity has more digits than its terms.
-    pub fn new(start: Both<f64>, rate: Both<f64>, margin: TwoFloat) -> Linear {
+    pub fn new(start: Both<f64>, rate: Both<f64>, margin: Double) -> Linear {
         Linear {
             start,
             rate,

@@ -9,6 +9,7 @@ pub static NONE: Law = Law {
     formula: "0",
     source: "no fire",
     rate: RateMeaning::NoRate,
+    needs: &[],
     shooters: |_| 0.0,
     per_target: |_| {
         [

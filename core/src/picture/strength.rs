@@ -6,10 +6,8 @@ use crate::outcome::{Breaks, Ended};
 use crate::sides::{Both, Side};
 use crate::statement::{Statement, Values};
 use crate::trajectory::Trajectory;
-use crate::words::format::{six, strength as in_words, three, time};
-
-/// An endless fight is shown until the side that fades is down to this part of its start.
-const SHOWN_DOWN_TO: f64 = 0.02;
+use crate::words::format::{six, strength as in_words, time, with_unit};
+use crate::words::sentence::breaks;
 
 /// Strength over time: both curves, the break lines, the time of defeat and the clock.
 ///
@@ -17,7 +15,7 @@ const SHOWN_DOWN_TO: f64 = 0.02;
 pub fn strength(statement: &Statement, fight: &Fight) -> Option<Picture> {
     let trajectory = fight.trajectory.as_ref()?;
     let engagement = statement.engagement(&Values::new());
-    let shown = shown_until(trajectory);
+    let shown = trajectory.shown;
     let across = Axis::new(format!("time ({})", statement.unit.symbol()), shown * 1.06, 6);
     let highest = trajectory.strengths_at(0.0);
     let up = Axis::new(statement.counted.clone(), highest.x.max(highest.y) * 1.08, 5);
@@ -27,7 +25,7 @@ pub fn strength(statement: &Statement, fight: &Fight) -> Option<Picture> {
         let line = f64::from(break_line(&engagement, side));
         // A side that had lost more than that before the start has its line above the picture.
         if line > 0.0 && line <= up.to {
-            let label = format!("{} breaks at {}", statement.names[side], in_words(line));
+            let label = format!("{}: {} breaks", in_words(line), statement.names[side]);
             lines.push(Line {
                 role: Role::BreakLine(side),
                 points: vec![(0.0, line), (across.to, line)],
@@ -70,36 +68,18 @@ pub fn strength(statement: &Statement, fight: &Fight) -> Option<Picture> {
     })
 }
 
-/// The time up to which the curves are shown: the end, or long enough to see where an endless fight tends.
-fn shown_until(trajectory: &Trajectory) -> f64 {
-    let faded = |side: Side| {
-        let start = trajectory.strengths_at(0.0)[side];
-        trajectory.time_to_strength(side, start * SHOWN_DOWN_TO)
-    };
-    match trajectory.ends() {
-        Some(end) if end > 0.0 => end,
-        // An engagement that is over at the start, or in which nothing moves, is shown for one unit of time.
-        Some(_) => 1.0,
-        None => Side::BOTH
-            .into_iter()
-            .filter_map(faded)
-            .reduce(f64::min)
-            .filter(|time| *time > 0.0)
-            .unwrap_or(1.0),
-    }
-}
-
 /// The upright line at the end.
 fn moment(statement: &Statement, fight: &Fight, top: f64) -> Option<Line> {
     let at = fight.outcome.pieces.last()?.to?;
+    let broken = |side: Side| format!("{} {}", statement.names[side], breaks(statement, side));
     let (role, what) = match (fight.outcome.breaks, fight.outcome.ended) {
-        (Breaks::X, _) => (Role::Defeat, format!("{} breaks", statement.names.x)),
-        (Breaks::Y, _) => (Role::Defeat, format!("{} breaks", statement.names.y)),
+        (Breaks::X, _) => (Role::Defeat, broken(Side::X)),
+        (Breaks::Y, _) => (Role::Defeat, broken(Side::Y)),
         (Breaks::Both, _) => (Role::Defeat, "both break".into()),
         (Breaks::Neither, Ended::Clock) => (Role::Clock, "clock".into()),
         (Breaks::Neither, _) => return None,
     };
-    let label = format!("{what}, {} {}", three(at), statement.unit.symbol());
+    let label = format!("{what}, {}", with_unit(at, statement.unit));
     Some(Line {
         role,
         points: vec![(at, 0.0), (at, top)],
@@ -111,8 +91,8 @@ fn table(statement: &Statement, trajectory: &Trajectory, shown: f64) -> Table {
     let names = &statement.names;
     let heads = vec![
         format!("time ({})", statement.unit.symbol()),
-        names.x.clone(),
-        names.y.clone(),
+        format!("{} ({})", names.x, statement.counted),
+        format!("{} ({})", names.y, statement.counted),
     ];
     let row = |part: f64| {
         let at = trajectory.strengths_at(shown * part);

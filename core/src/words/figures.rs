@@ -1,10 +1,11 @@
 //! The figures under the sentence, to six significant digits.
 
-use super::format::{per_cent, six, three};
+use super::format::{six, three};
 use crate::fight::break_line;
-use crate::outcome::{Ended, Method, Outcome, ToTheLast};
+use crate::outcome::{Breaks, Ended, Method, Outcome, ToTheLast};
 use crate::sides::{Both, Side};
 use crate::statement::{Statement, Values};
+use crate::terms::Engagement;
 
 /// A figure of each side.
 #[derive(Clone, Debug, PartialEq)]
@@ -13,6 +14,19 @@ pub struct Row {
     pub label: String,
     /// Its text for each side.
     pub values: Both<String>,
+    /// The name of the line of the working that each comes from.
+    pub lines: Both<Option<&'static str>>,
+}
+
+/// A figure of both sides.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Figure {
+    /// What it is.
+    pub label: String,
+    /// Its text.
+    pub value: String,
+    /// The name of the line of the working that it comes from.
+    pub line: Option<&'static str>,
 }
 
 /// The figures of an outcome.
@@ -22,8 +36,8 @@ pub struct Figures {
     pub names: Both<String>,
     /// A figure of each side a row.
     pub rows: Vec<Row>,
-    /// What concerns both, as label and text.
-    pub both: Vec<(String, String)>,
+    /// What concerns both.
+    pub both: Vec<Figure>,
 }
 
 /// The figures of `outcome`.
@@ -34,10 +48,14 @@ pub fn figures(statement: &Statement, outcome: &Outcome) -> Figures {
     let row = |label: String, value: &dyn Fn(Side) -> String| Row {
         label,
         values: Both::of(value),
+        lines: Both::default(),
     };
     let mut rows = vec![row(format!("At the start ({counted})"), &|side| {
         six(sides[side].start)
     })];
+    let still = is_still(&engagement, outcome);
+    let line = Both::of(|side| (!still).then_some(line_of_break(side)));
+    let end = Both::of(|side| line_of_end(outcome, still, side));
     if Side::BOTH.iter().any(|side| engagement.sides[*side].lost > 0.0) {
         rows.push(row(format!("Lost before ({counted})"), &|side| {
             six(engagement.sides[side].lost)
@@ -46,61 +64,142 @@ pub fn figures(statement: &Statement, outcome: &Outcome) -> Figures {
             six(sides[side].committed)
         }));
     }
-    rows.push(row(
-        format!("Breaks at ({counted} left)"),
-        &|side| match f64::from(break_line(&engagement, side)) {
-            0.0 => "to the last".into(),
-            line => six(line),
-        },
-    ));
-    let end = if outcome.ended == Ended::Limit {
+    rows.push(
+        row(
+            format!("Breaks at ({counted} left)"),
+            &|side| match f64::from(break_line(&engagement, side)) {
+                0.0 => "to the last".into(),
+                line => six(line),
+            },
+        )
+        .from(line),
+    );
+    let left = if outcome.ended == Ended::Limit {
         "Tends to"
     } else {
         "Left at the end"
     };
-    rows.push(row(format!("{end} ({counted})"), &|side| {
-        sides[side].end.map_or("without bound".into(), six)
-    }));
-    rows.push(row(format!("Losses ({counted})"), &|side| {
-        six(sides[side].losses.all)
-    }));
-    rows.push(row("Lost, of all committed".into(), &|side| {
-        per_cent((sides[side].losses.all + engagement.sides[side].lost) / sides[side].committed)
-    }));
+    let ends = [
+        row(format!("{left} ({counted})"), &|side| {
+            sides[side].end.map_or("without bound".into(), six)
+        }),
+        row(format!("Losses ({counted})"), &|side| six(sides[side].losses.all)),
+        row("Lost, of all committed".into(), &|side| {
+            let part = (sides[side].losses.all + engagement.sides[side].lost) / sides[side].committed;
+            format!("{}\u{202f}%", six(100.0 * part))
+        }),
+    ];
+    rows.extend(ends.map(|row| row.from(end)));
     Figures {
         names: statement.names.clone(),
         rows,
-        both: both(statement, outcome),
+        both: both(statement, outcome, still),
     }
 }
 
-fn both(statement: &Statement, outcome: &Outcome) -> Vec<(String, String)> {
+impl Row {
+    fn from(mut self, lines: Both<Option<&'static str>>) -> Row {
+        self.lines = lines;
+        self
+    }
+}
+
+/// The line of the working with the strength at which `side` breaks.
+fn line_of_break(side: Side) -> &'static str {
+    match side {
+        Side::X => "line.x",
+        Side::Y => "line.y",
+    }
+}
+
+/// The line of the working with what is left of `side`.
+fn line_of_end(outcome: &Outcome, still: bool, side: Side) -> Option<&'static str> {
+    let sides = outcome.sides();
+    let broken = match outcome.breaks {
+        Breaks::X => side == Side::X,
+        Breaks::Y => side == Side::Y,
+        Breaks::Both => true,
+        Breaks::Neither => sides[side].end == Some(0.0),
+    };
+    Some(match outcome.ended {
+        Ended::Clock => "clock",
+        _ if still => "breaks",
+        // Both fade to nothing: that is said where it is said that nobody breaks.
+        Ended::Limit if sides.x.end == sides.y.end => "breaks",
+        // A side that had broken before the start keeps what it has, which is less than its line.
+        _ if broken && sides[side].losses.all > 0.0 => line_of_break(side),
+        _ => "left",
+    })
+}
+
+/// Whether nothing changes, so that nobody comes to a line and the working has none.
+fn is_still(engagement: &Engagement, outcome: &Outcome) -> bool {
+    let any_effect = Side::BOTH
+        .iter()
+        .any(|side| engagement.sides[*side].fire.takes_effect());
+    !any_effect && outcome.ended != Ended::Break
+}
+
+fn both(statement: &Statement, outcome: &Outcome, still: bool) -> Vec<Figure> {
+    let engagement = statement.engagement(&Values::new());
+    let fires = Side::BOTH
+        .iter()
+        .any(|side| engagement.sides[*side].fire.takes_effect());
     let unit = statement.unit.symbol();
     let names = &statement.names;
     let mut lines = Vec::new();
-    let mut line = |label: &str, text: String| lines.push((label.to_owned(), text));
+    let mut figure = |label: &str, value: String, line: Option<&'static str>| {
+        lines.push(Figure {
+            label: label.to_owned(),
+            value,
+            line,
+        });
+    };
+    let first = match outcome.breaks {
+        Breaks::X => names.x.clone(),
+        Breaks::Y => names.y.clone(),
+        Breaks::Both => "both, at the same moment".into(),
+        Breaks::Neither => "neither".into(),
+    };
+    figure("Breaks first", first, Some("breaks"));
     if let Some(time) = outcome.time {
-        line("Time of the break", format!("{} {unit}", six(time)));
+        figure("Time of the break", format!("{} {unit}", six(time)), Some("time"));
     } else if let Some(clock) = outcome.pieces.last().and_then(|piece| piece.to) {
-        line("Cut off by the clock at", format!("{} {unit}", six(clock)));
+        let at = format!("{} {unit}", six(clock));
+        figure("Cut off by the clock at", at, Some("clock"));
     }
     if let Some(below) = outcome.below_one {
-        line("A side falls below one at", format!("{} {unit}", six(below)));
+        let who = match outcome.to_the_last {
+            Some(ToTheLast::X) => &names.y,
+            Some(ToTheLast::Y) => &names.x,
+            _ => "The first of both",
+        };
+        let label = format!("{who} falls below one at");
+        figure(&label, format!("{} {unit}", six(below)), None);
     }
     if let Some(ratio) = outcome.loss_exchange_ratio {
-        line("Loss exchange ratio", exchange(names, ratio, ""));
+        figure(
+            "Loss exchange ratio",
+            exchange(names, ratio, ""),
+            Some("exchange"),
+        );
     }
     if let Some(ratio) = outcome.fractional_exchange_ratio {
-        line("Fractional exchange ratio", exchange(names, ratio, " %"));
+        let words = exchange(names, ratio, "\u{202f}%");
+        figure("Fractional exchange ratio", words, Some("exchange.fraction"));
     }
     let last = match outcome.to_the_last {
         Some(ToTheLast::X) => format!("{} would be left", names.x),
         Some(ToTheLast::Y) => format!("{} would be left", names.y),
         Some(ToTheLast::Parity) => "neither: the two are at parity".into(),
-        None => "undecided: nothing takes effect".into(),
+        // Where any fire takes effect and nobody would be left, both fade.
+        None if fires => "neither: both fade to nothing".into(),
+        None => "both: no fire takes effect".into(),
     };
-    line("If both fought to the last", last);
-    line("Solved by", method(outcome.method).into());
+    // A fight that is over before it begins, or in which nothing changes, has no such line.
+    let fought = !still && outcome.time != Some(0.0);
+    figure("If both fought to the last", last, fought.then_some("last"));
+    figure("Solved by", method(outcome.method).into(), None);
     lines
 }
 
@@ -128,5 +227,45 @@ fn exchange(names: &Both<String>, ratio: f64, unit: &str) -> String {
 fn method(method: Method) -> &'static str {
     match method {
         Method::ClosedForm => "closed form",
+        Method::Quadrature => "state equation, and a quadrature for the time",
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::fight::{Effort, fight};
+    use crate::golden;
+    use crate::pairs::Pairs;
+    use crate::words::working::working;
+
+    /// Every figure that names a line of the working names one that is there.
+    #[test]
+    fn figures_come_from_lines_that_are_there() {
+        let special = [
+            "x.start=600&x.fire=none&y.start=400&y.fire=none",
+            "x.start=600&x.fire=none&y.start=400&y.fire=none&until=3",
+            "x.start=600&x.fire=none&y.start=400&y.fire=area&y.rate=0.001",
+            "x.start=60&x.lost=40&x.break=0.3&x.rate=1&y.start=400&y.rate=0.1",
+            "x.start=60&x.lost=40&x.break=0.3&x.fire=none&y.start=400&y.fire=none",
+            "x.start=600&x.fire=logarithmic&x.rate=0.1&y.start=400&y.fire=logarithmic&y.rate=0.1&until=2",
+            "x.start=600&x.fire=logarithmic&x.rate=0.1&y.start=400&y.fire=logarithmic&y.rate=0.1",
+            "x.start=600&x.rate=0.04&y.start=400&y.rate=0.09",
+            "x.start=600&x.fire=area&x.rate=0.001&y.start=400&y.fire=area&y.rate=0.001",
+            "x.start=100&x.fire=power&x.p=0.5&x.q=0&x.rate=1&y.start=100&y.fire=power&y.p=0.5&y.q=0&y.rate=1",
+        ];
+        let drawn = (0..500).map(golden::link);
+        for link in special.into_iter().map(str::to_owned).chain(drawn) {
+            let Ok(statement) = Statement::read(&Pairs::parse(&link)) else {
+                panic!("{link}");
+            };
+            let outcome = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
+            let lines = working(&statement, &outcome);
+            let found = figures(&statement, &outcome);
+            let rows = found.rows.iter().flat_map(|row| [row.lines.x, row.lines.y]);
+            for name in rows.chain(found.both.iter().map(|figure| figure.line)).flatten() {
+                assert!(lines.iter().any(|line| line.name == name), "{link}: {name}");
+            }
+        }
     }
 }

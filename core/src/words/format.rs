@@ -5,6 +5,9 @@ use crate::statement::TimeUnit;
 /// The narrow space between thousands, which does not break a line.
 pub const NARROW: char = '\u{202f}';
 
+/// The space between a number and its unit, which does not break a line either.
+pub const NO_BREAK: char = '\u{a0}';
+
 /// A number to so many significant digits, without zeros at the end, thousands set apart.
 ///
 /// Beyond a billion billion and below a millionth it is written with a power of ten.
@@ -57,7 +60,7 @@ pub fn per_cent(fraction: f64) -> String {
     let value = fraction * 100.0;
     match value {
         0.0 => format!("0{NARROW}%"),
-        _ if value < 0.001 => format!("{}{NARROW}%", significant(value, 2)),
+        _ if value < 0.0095 => format!("{}{NARROW}%", significant(value, 2)),
         _ if value < 0.095 => format!("{value:.3}{NARROW}%"),
         _ if value < 0.995 => format!("{value:.2}{NARROW}%"),
         _ if value < 9.95 => format!("{value:.1}{NARROW}%"),
@@ -67,11 +70,16 @@ pub fn per_cent(fraction: f64) -> String {
 
 /// A time in a sentence, with its parts where it has a smaller unit: `8.81 h (8 h 49 min)`.
 pub fn time(value: f64, unit: TimeUnit) -> String {
-    let short = format!("{} {}", three(value), unit.symbol());
+    let short = with_unit(value, unit);
     match in_parts(value, unit) {
-        Some(parts) => format!("{short} ({parts})"),
-        None => short,
+        Some(parts) if parts != short => format!("{short} ({parts})"),
+        _ => short,
     }
+}
+
+/// A time to three significant digits with its unit: `8.81 h`.
+pub fn with_unit(value: f64, unit: TimeUnit) -> String {
+    format!("{}{NO_BREAK}{}", three(value), unit.symbol())
 }
 
 /// `8 h 49 min`; `None` for seconds, and where the value has no use for a smaller unit.
@@ -89,17 +97,17 @@ fn in_parts(value: f64, unit: TimeUnit) -> Option<String> {
     }
     let whole = (parts / count).floor();
     let rest = parts - whole * count;
-    let part = |number: f64, unit: TimeUnit| format!("{number} {}", unit.symbol());
+    let part = |number: f64, unit: TimeUnit| format!("{number}{NO_BREAK}{}", unit.symbol());
     Some(match (whole, rest) {
         (0.0, _) => part(rest, smaller),
         (_, 0.0) => part(whole, unit),
-        _ => format!("{} {}", part(whole, unit), part(rest, smaller)),
+        _ => format!("{}{NO_BREAK}{}", part(whole, unit), part(rest, smaller)),
     })
 }
 
-/// The same text with plain digits, as it is copied.
+/// The same text with plain digits and plain blanks, as it is copied.
 pub fn plain(text: &str) -> String {
-    text.replace(NARROW, "")
+    text.replace(NARROW, "").replace(NO_BREAK, " ")
 }
 
 fn without_trailing_zeros(digits: &str) -> &str {
@@ -165,6 +173,7 @@ mod tests {
             (0.3, "30 %"),
             (1.0, "100 %"),
             (0.00321, "0.32 %"),
+            (0.000012, "0.0012 %"),
             (0.0, "0 %"),
         ] {
             assert_eq!(per_cent(fraction).replace(NARROW, " "), text);
@@ -173,10 +182,11 @@ mod tests {
 
     #[test]
     fn times_have_parts() {
+        let time = |value, unit| plain(&time(value, unit));
         assert_eq!(time(8.814, TimeUnit::Hour), "8.81 h (8 h 49 min)");
         assert_eq!(time(0.25, TimeUnit::Hour), "0.25 h (15 min)");
         assert_eq!(time(4.0, TimeUnit::Hour), "4 h");
-        assert_eq!(time(1.999, TimeUnit::Hour), "2 h (2 h)");
+        assert_eq!(time(1.999, TimeUnit::Hour), "2 h");
         assert_eq!(time(2.5, TimeUnit::Week), "2.5 wk (2 wk 4 d)");
         assert_eq!(time(30.2, TimeUnit::Second), "30.2 s");
         assert_eq!(time(1e-7, TimeUnit::Hour), "1 × 10⁻⁷ h");

@@ -3,7 +3,8 @@
 use super::format::{per_cent, strength, three};
 use crate::fight::break_line;
 use crate::laws::{FireLaw, RateMeaning};
-use crate::sides::Side;
+use crate::sides::{Both, Side};
+use crate::state::StateEquation;
 use crate::statement::{Statement, TimeUnit, Values};
 
 /// What `side`'s rate means: "Each of Ondrel's combatants puts 0.04 of Vessary's out of the fight per h, one every 25 h.
@@ -17,23 +18,40 @@ pub fn rate(statement: &Statement, side: Side) -> String {
         return format!("{name}'s fire has no effect on {enemy}.");
     }
     let each = format!("Each of {name}'s {counted} puts");
+    let number = three(fire.rate);
     let what = match fire.law.law().rate {
         RateMeaning::FractionPerShooter => {
+            let part = per_cent(fire.rate);
+            format!("{each} {part} of what is left of {enemy} out of the fight per\u{a0}{unit}")
+        }
+        RateMeaning::Fraction => {
+            let part = per_cent(fire.rate);
+            format!("{enemy} loses {part} of what is left of it per\u{a0}{unit}, however many of {name} fire")
+        }
+        RateMeaning::TargetsPerShooterInPlenty => {
+            let half = three(fire.half.unwrap_or(0.0));
             format!(
-                "{each} {} of what is left of {enemy} out of the fight per {unit}",
-                per_cent(fire.rate)
+                "{each} {number} of {enemy}'s out of the fight per\u{a0}{unit} while targets are in plenty, and half as \
+                 many once {half} are left"
             )
         }
-        _ => format!(
-            "{each} {} of {enemy}'s out of the fight per {unit}, one every {} {unit}",
-            three(fire.rate),
-            three(1.0 / fire.rate)
-        ),
+        RateMeaning::PerPowers => {
+            let (p, q) = (three(fire.p.unwrap_or(0.0)), three(fire.q.unwrap_or(0.0)));
+            format!(
+                "{enemy} loses {number} per\u{a0}{unit}, times {name} to the power {p}, times {enemy} to the power {q}"
+            )
+        }
+        RateMeaning::TargetsPerShooter | RateMeaning::NoRate => {
+            let one_every = three(1.0 / fire.rate);
+            format!(
+                "{each} {number} of {enemy}'s out of the fight per\u{a0}{unit}, one every {one_every}\u{a0}{unit}"
+            )
+        }
     };
     let targets = engagement.sides[side.enemy()].start;
     let at_start = fire.losses_per_time(engagement.sides[side].start, targets);
     format!(
-        "{what}. At the start: {} per {unit}, {} of {enemy}.",
+        "{what}. At the start: {} per\u{a0}{unit}, {} of {enemy}.",
         three(at_start),
         per_cent(at_start / targets)
     )
@@ -65,11 +83,43 @@ pub fn rate_unit(law: FireLaw, shooter: &str, target: &str, unit: TimeUnit) -> S
     let unit = unit.symbol();
     match law.law().rate {
         RateMeaning::TargetsPerShooter => {
-            format!("number of {target} lost, per one of {shooter}, per {unit}")
+            format!("number of {target} lost, per one of {shooter}, per\u{a0}{unit}")
         }
         RateMeaning::FractionPerShooter => {
-            format!("fraction of {target} lost, per one of {shooter}, per {unit}")
+            format!("fraction of {target} lost, per one of {shooter}, per\u{a0}{unit}")
+        }
+        RateMeaning::Fraction => format!("fraction of {target} lost, per\u{a0}{unit}"),
+        RateMeaning::TargetsPerShooterInPlenty => {
+            format!("number of {target} lost, per one of {shooter}, per\u{a0}{unit}, with targets in plenty")
+        }
+        RateMeaning::PerPowers => {
+            format!(
+                "number of {target} lost per\u{a0}{unit}, for {shooter} and {target} raised to their exponents"
+            )
         }
         RateMeaning::NoRate => String::new(),
     }
+}
+
+/// What `key`, which a law of fire needs beside its rate, is measured in: "number of Vessary"; empty for another key.
+pub fn parameter_unit(key: &str, shooter: &str, target: &str) -> String {
+    match key {
+        "half" => format!("number of {target}"),
+        "p" => format!("power of {shooter}'s strength"),
+        "q" => format!("power of {target}'s strength"),
+        _ => String::new(),
+    }
+}
+
+/// A warning where more of `side` makes it easier to break, since the enemy's fire feeds on its number; `None` elsewhere.
+pub fn more_hurts(statement: &Statement, side: Side) -> Option<String> {
+    let engagement = statement.engagement(&Values::new());
+    let equation = StateEquation::of(&Both::of(|side| engagement.sides[side].fire));
+    equation.more_hurts(side).then(|| {
+        let (name, enemy) = (&statement.names[side], &statement.names[side.enemy()]);
+        format!(
+            "More of {name} can hurt it here: {enemy}'s fire feeds on {name}'s number more than {name}'s own fire gains \
+             by it."
+        )
+    })
 }

@@ -2,9 +2,12 @@
 
 pub mod figures;
 pub mod format;
+pub mod math;
 pub mod meaning;
 pub mod reading;
 pub mod sentence;
+mod times;
+pub mod working;
 
 /// Stands beside the figures while what is typed cannot be worked out.
 pub const STALE: &str = "For the last complete figures, not for what is typed now.";

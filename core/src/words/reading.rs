@@ -1,6 +1,6 @@
 //! What the reading line reads.
 
-use super::format::{strength, three};
+use super::format::{strength, with_unit};
 use crate::statement::Statement;
 use crate::trajectory::Trajectory;
 
@@ -8,9 +8,8 @@ use crate::trajectory::Trajectory;
 pub fn reading(statement: &Statement, trajectory: &Trajectory, t: f64) -> String {
     let at = trajectory.strengths_at(t);
     format!(
-        "at {} {}: {} {}, {} {}",
-        three(t),
-        statement.unit.symbol(),
+        "at {}: {} {}, {} {}",
+        with_unit(t, statement.unit),
         statement.names.x,
         strength(at.x),
         statement.names.y,

@@ -58,10 +58,15 @@ fn broken(statement: &Statement, outcome: &Outcome, side: Side) -> String {
         return format!("{name} is past its break point at the start already");
     }
     let after = time(at, statement.unit);
+    format!("{name} {} first, after {after}", breaks(statement, side))
+}
+
+/// What becomes of a side at its line: it "breaks", or fighting to the last "is brought to 0".
+pub fn breaks(statement: &Statement, side: Side) -> &'static str {
     if to_the_last(statement, side) {
-        format!("{name} is brought to 0 first, after {after}")
+        "is brought to 0"
     } else {
-        format!("{name} breaks first, after {after}")
+        "breaks"
     }
 }
 
@@ -85,9 +90,17 @@ fn endless(statement: &Statement, outcome: &Outcome) -> String {
     let loser = match outcome.to_the_last {
         Some(ToTheLast::X) => Side::Y,
         Some(ToTheLast::Y) => Side::X,
-        _ => {
+        Some(ToTheLast::Parity) => {
             return format!(
                 "In this model neither side breaks: {} and {} are at parity and wear each other out without end.{}",
+                names.x,
+                names.y,
+                below("The first of them")
+            );
+        }
+        None => {
+            return format!(
+                "In this model neither side breaks: {} and {} both fade, and neither ever reaches 0.{}",
                 names.x,
                 names.y,
                 below("The first of them")
@@ -99,6 +112,6 @@ fn endless(statement: &Statement, outcome: &Outcome) -> String {
         names[loser],
         names[loser.enemy()],
         strength(outcome.sides()[loser.enemy()].end.unwrap_or(f64::INFINITY)),
-        below("It")
+        below(&names[loser])
     )
 }

@@ -16,7 +16,7 @@ use super::Shown;
 #[track_caller]
 pub fn native(link: &str) -> Shown {
     let outcome = match answer(link) {
-        Answer::Outcome(outcome) => outcome,
+        Answer::Outcome { outcome, .. } => outcome,
         Answer::Problems(problems) => panic!("{link:?} cannot be worked out: {problems:?}"),
     };
     let breaks = serde_json::to_value(outcome.breaks).expect("an outcome can be written");

@@ -33,6 +33,15 @@ impl Ink {
     }
 }
 
+impl Ink {
+    /// A quiet colour between the ink and the paper, nearer to the paper.
+    pub fn between(&self) -> RGBColor {
+        let mix = |ink: u8, paper: u8| ((4 * u16::from(ink) + 6 * u16::from(paper)) / 10) as u8;
+        let (ink, paper) = (self.ink, self.paper);
+        RGBColor(mix(ink.0, paper.0), mix(ink.1, paper.1), mix(ink.2, paper.2))
+    }
+}
+
 /// Reads a computed colour: `rgb(122, 36, 88)` or `rgba(122, 36, 88, 0.5)`.
 pub fn parse_colour(css: &str) -> Option<RGBColor> {
     let inside = css.trim().strip_prefix("rgb")?.trim_start_matches('a');
@@ -58,5 +67,15 @@ mod tests {
         assert_eq!(parse_colour("rgba(0, 0, 0, 0)"), Some(RGBColor(0, 0, 0)));
         assert_eq!(parse_colour("rgb(1 2 3 / 50%)"), Some(RGBColor(1, 2, 3)));
         assert_eq!(parse_colour("CanvasText"), None);
+    }
+
+    #[test]
+    fn the_quiet_colour_is_neither_ink_nor_paper() {
+        let ink = Ink {
+            paper: RGBColor(255, 255, 255),
+            ink: RGBColor(0, 0, 0),
+            ..Ink::light()
+        };
+        assert_eq!(ink.between(), RGBColor(153, 153, 153));
     }
 }

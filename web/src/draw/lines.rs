@@ -127,6 +127,12 @@ fn direction<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, line: &Lin
     let (dx, dy) = (dx / length * 8.0, dy / length * 8.0);
     let left = (to.0 - dx - dy * 0.55, to.1 - dy + dx * 0.55);
     let right = (to.0 - dx + dy * 0.55, to.1 - dy - dx * 0.55);
+    // Along an axis it would hang over the edge.
+    let inside =
+        |(x, y): Point| (field.left..=field.right).contains(&x) && (field.top..=field.foot).contains(&y);
+    if !inside(left) || !inside(right) {
+        return Ok(());
+    }
     pen.line(&[left, to, right], pen.ink.ink, 1.8, SOLID)
 }
 
