@@ -44,6 +44,8 @@ fn values(key: &Key) -> String {
 fn unit(unit: Unit) -> &'static str {
     match unit {
         Unit::None | Unit::Fraction | Unit::Exponent => "",
+        Unit::Length => ", length",
+        Unit::LengthPerTime => ", length per time",
         Unit::Strength => ", strength",
         Unit::EnemyStrength => ", the enemy's strength",
         Unit::Time => ", time",

@@ -6,7 +6,7 @@ use crate::pairs::Pairs;
 use crate::problem::Problem;
 use crate::statement::{Statement, Values};
 use crate::words::working::{WorkingLine, working};
-use serde::Serialize;
+use serde::ser::{Serialize, SerializeStruct, Serializer};
 
 /// The answer to one link.
 #[derive(Clone, Debug, PartialEq)]
@@ -22,21 +22,8 @@ pub enum Answer {
     Problems(Vec<Problem>),
 }
 
-#[derive(Serialize)]
-#[serde(untagged)]
-enum Written<'a> {
-    Outcome {
-        ok: bool,
-        #[serde(flatten)]
-        outcome: &'a Outcome,
-        #[serde(skip_serializing_if = "Option::is_none")]
-        working: Option<&'a [String]>,
-    },
-    Problems {
-        ok: bool,
-        problems: &'a [Problem],
-    },
-}
+/// The most bytes that the outcome of a short link usually takes.
+const USUAL_LENGTH: usize = 1024;
 
 /// Works out what `link` states.
 pub fn answer(link: &str) -> Answer {
@@ -69,23 +56,68 @@ fn read_and_fight(link: &str, shown: bool) -> Answer {
 }
 
 impl Serialize for Answer {
-    fn serialize<S: serde::Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
+    fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
         match self {
-            Answer::Outcome { outcome, working } => Written::Outcome {
-                ok: true,
-                outcome,
-                working: working.as_deref(),
+            Answer::Outcome { outcome, working } => write_outcome(outcome, working.as_deref(), serializer),
+            Answer::Problems(problems) => {
+                let mut answer = serializer.serialize_struct("Answer", 2)?;
+                answer.serialize_field("ok", &false)?;
+                answer.serialize_field("problems", problems)?;
+                answer.end()
             }
-            .serialize(serializer),
-            Answer::Problems(problems) => Written::Problems { ok: false, problems }.serialize(serializer),
         }
     }
+}
+
+/// The fields of an outcome between `ok` and its working: by name, as serde's `flatten` is slower.
+fn write_outcome<S: Serializer>(
+    outcome: &Outcome,
+    working: Option<&[String]>,
+    serializer: S,
+) -> Result<S::Ok, S::Error> {
+    // Taken apart in full, so that none can be forgotten.
+    let Outcome {
+        breaks,
+        time,
+        ended,
+        to_the_last,
+        below_one,
+        x,
+        y,
+        loss_exchange_ratio,
+        fractional_exchange_ratio,
+        method,
+        pieces,
+        caution,
+    } = outcome;
+    let mut answer = serializer.serialize_struct("Answer", 13 + usize::from(working.is_some()))?;
+    answer.serialize_field("ok", &true)?;
+    answer.serialize_field("breaks", breaks)?;
+    answer.serialize_field("time", time)?;
+    answer.serialize_field("ended", ended)?;
+    answer.serialize_field("to_the_last", to_the_last)?;
+    answer.serialize_field("below_one", below_one)?;
+    answer.serialize_field("x", x)?;
+    answer.serialize_field("y", y)?;
+    answer.serialize_field("loss_exchange_ratio", loss_exchange_ratio)?;
+    answer.serialize_field("fractional_exchange_ratio", fractional_exchange_ratio)?;
+    answer.serialize_field("method", method)?;
+    answer.serialize_field("pieces", pieces)?;
+    answer.serialize_field("caution", caution)?;
+    if let Some(working) = working {
+        answer.serialize_field("working", working)?;
+    }
+    answer.end()
 }
 
 impl Answer {
     /// The answer as one line of JSON, numbers in the shortest digits that read back the same.
     pub fn to_json(&self) -> String {
         // Nothing in it can fail to be written: no maps with other keys than texts, no numbers but finite ones.
-        serde_json::to_string(self).unwrap_or_default()
+        let mut json = Vec::with_capacity(USUAL_LENGTH);
+        serde_json::to_writer(&mut json, self)
+            .ok()
+            .and_then(|()| String::from_utf8(json).ok())
+            .unwrap_or_default()
     }
 }

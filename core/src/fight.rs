@@ -1,13 +1,17 @@
 //! From an engagement to its outcome: the one function through which all questions go.
 
 use crate::caution;
+use crate::conditions::Conditions;
 use crate::double::Double;
-use crate::orbit_point::OrbitPoint;
+use crate::ledger::Ledger;
 use crate::outcome::{Breaks, Ended, Losses, Outcome, PieceOutcome, SideOutcome, ToTheLast};
+use crate::piece::{Piece, Work};
+use crate::schedule::{Instant, instants};
 use crate::sides::{Both, Side};
-use crate::state::{Descent, StateEquation, TIE, is_endless};
+use crate::state::{Descent, StateEquation, TIE};
+use crate::stretch::{FirstBreak, Standing, Stretch, WayDown};
 use crate::terms::Engagement;
-use crate::trajectory::{Motion, Piece, Trajectory, Work};
+use crate::trajectory::Trajectory;
 
 /// How much is asked of a fight.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -29,33 +33,18 @@ pub struct Fight {
     pub work: Work,
 }
 
-/// Where a fight ends.
-struct End {
-    breaks: Breaks,
-    ended: Ended,
-    /// `None` where it never ends.
-    time: Option<f64>,
-    point: OrbitPoint,
-}
-
 /// Works out what `engagement` leaves.
 ///
 /// Its numbers keep the limits of their keys: `Statement::read` sees to that.
 pub fn fight(engagement: &Engagement, effort: Effort) -> Fight {
-    let start = Both::of(|side| engagement.sides[side].start);
-    let descents = Both::of(|side| descent(engagement, side));
-    let fire = Both::of(|side| engagement.sides[side].fire);
-    let lead = Lead::of(engagement);
-    let mut piece = Piece::new(0.0, start, fire, ahead_by(engagement, &lead));
-
-    let end = broken_at_start(engagement, &descents)
-        .unwrap_or_else(|| first_break(&piece, &descents))
-        .cut_by(engagement.until, &piece);
-    piece.to = end.time;
-    let outcome = outcome(engagement, &piece, &end, &lead);
-    let work = piece.work();
-    let trajectory =
-        (effort == Effort::Trajectory).then(|| Trajectory::of(piece, end.time.map(|_| end.point.left)));
+    let run = Run::of(engagement);
+    let outcome = run.outcome(engagement);
+    let work = run
+        .stretches
+        .iter()
+        .map(Stretch::work)
+        .fold(Work::default(), Work::and);
+    let trajectory = (effort == Effort::Trajectory).then(|| run.into_trajectory());
     Fight {
         outcome,
         trajectory,
@@ -63,248 +52,429 @@ pub fn fight(engagement: &Engagement, effort: Effort) -> Fight {
     }
 }
 
-/// The strength at which `side` breaks: (1 − break point) of what it has committed.
-pub fn break_line(engagement: &Engagement, side: Side) -> Double {
-    let terms = &engagement.sides[side];
-    Double::sum(terms.start, terms.lost) * Double::difference(1.0, terms.break_point)
+/// A fight in the making.
+struct Run {
+    stretches: Vec<Stretch>,
+    instants: Vec<Instant>,
+    left: Both<f64>,
+    end: Both<Option<f64>>,
+    ledger: Both<Ledger>,
+    /// The sides that reach their lines at the next instant, to rounding, unless something arrives then.
+    due: Both<bool>,
+    breaks: Breaks,
+    ended: Ended,
+    /// When it ended; `None` where it never does.
+    time: Option<f64>,
+}
+
+impl Run {
+    fn of(engagement: &Engagement) -> Run {
+        let left = Both::of(|side| engagement.sides[side].start);
+        let ledger = Both::of(|side| Ledger {
+            committed: Double::sum(engagement.sides[side].start, engagement.sides[side].lost),
+            lost_before: engagement.sides[side].lost,
+            ..Ledger::default()
+        });
+        let mut run = Run {
+            stretches: Vec::new(),
+            instants: instants(engagement),
+            left,
+            end: Both::default(),
+            ledger,
+            // Losses before time 0 may have reached a line already.
+            due: Both { x: true, y: true },
+            breaks: Breaks::Neither,
+            ended: Ended::Limit,
+            time: None,
+        };
+        run.go(engagement, 0);
+        run
+    }
+
+    /// Goes through the instants from the one at `first` on.
+    fn go(&mut self, engagement: &Engagement, first: usize) {
+        let clock = engagement.until.unwrap_or(f64::INFINITY);
+        for place in first..self.instants.len() {
+            let at = self.instants[place].time;
+            if at > clock {
+                break;
+            }
+            self.arrive(place);
+            if self.break_at_instant(engagement, at) {
+                return;
+            }
+            let next = self.instants.get(place + 1).map(|instant| instant.time);
+            if at == clock || self.gone_with(place) {
+                let ended = if at == clock {
+                    Ended::Clock
+                } else {
+                    Ended::Withdrawn
+                };
+                return self.finish(Breaks::Neither, ended, at);
+            }
+            if self.run_stretch(engagement, place, at, next, clock) {
+                return;
+            }
+        }
+        // The clock stands between two instants, or behind the last.
+        if self.time.is_none() && clock.is_finite() {
+            self.finish(Breaks::Neither, Ended::Clock, clock);
+        }
+    }
+
+    /// What happens at an instant, arrivals first.
+    fn arrive(&mut self, place: usize) {
+        let instant = &self.instants[place];
+        for side in Side::BOTH {
+            let ledger = &mut self.ledger[side];
+            self.left[side] += instant.arrivals[side];
+            ledger.committed += Double::from(instant.arrivals[side]);
+            ledger.joined += instant.arrivals[side];
+            // No more can go than are there.
+            let going = instant.withdrawals[side].min(self.left[side]);
+            self.left[side] -= going;
+            ledger.withdrawn += going;
+        }
+    }
+
+    fn break_at_instant(&mut self, engagement: &Engagement, at: f64) -> bool {
+        let broken =
+            Both::of(|side| self.ledger[side].has_broken(engagement.sides[side].break_point, self.due[side]));
+        let breaks = Breaks::of(broken);
+        if let Some(breaks) = breaks {
+            self.finish(breaks, Ended::Break, at);
+        }
+        breaks.is_some()
+    }
+
+    /// Whether a side has been withdrawn to the last, with nobody to come.
+    fn gone_with(&self, place: usize) -> bool {
+        let rest = &self.instants[place..];
+        Side::BOTH.into_iter().any(|side| {
+            let comes = rest[1..].iter().any(|instant| instant.arrivals[side] > 0.0)
+                || rest.iter().any(|instant| instant.conditions.flow[side] > 0.0);
+            self.left[side] == 0.0 && !comes && self.ledger[side].withdrawn > 0.0
+        })
+    }
+
+    fn finish(&mut self, breaks: Breaks, ended: Ended, time: f64) {
+        self.breaks = breaks;
+        self.ended = ended;
+        self.time = Some(time);
+        self.end = Both::of(|side| Some(self.left[side]));
+    }
+
+    /// Solves from the time `from`, at an instant or behind it, to the next, the clock or the end; says whether the fight is over.
+    fn run_stretch(
+        &mut self,
+        engagement: &Engagement,
+        place: usize,
+        from: f64,
+        next: Option<f64>,
+        clock: f64,
+    ) -> bool {
+        let conditions = self.instants[place].conditions;
+        let mut at = from;
+        let until = next.unwrap_or(f64::INFINITY).min(clock);
+        // A reserve that comes at the very moment is in time; a line reached at the clock is reached.
+        let before_arrivals = next.is_some_and(|next| next <= clock);
+        let limit = if before_arrivals {
+            until * (1.0 - TIE)
+        } else {
+            until * (1.0 + TIE)
+        };
+        loop {
+            let ways = Both::of(|side| {
+                let break_point = engagement.sides[side].break_point;
+                self.ledger[side].way_down(self.left[side], break_point, conditions.flow[side])
+            });
+            if let Some(over) = self.pinned(place, &ways, at, until) {
+                return over;
+            }
+            let length = until - at;
+            // Below 0 a line does not count: the way there is to nothing.
+            let level = Both::of(|side| {
+                let way = ways[side];
+                if way.sunk > 0.0 {
+                    WayDown { rising: 0.0, ..way }
+                } else {
+                    way
+                }
+            });
+            let mut stretch = Stretch::new(at, length, self.left, conditions, &level, next.is_none());
+            stretch.ledger = self.ledger;
+            let first = stretch.first_break(&level, length);
+            let on_time = |first: &FirstBreak| {
+                if before_arrivals {
+                    at + first.time < limit
+                } else {
+                    at + first.time <= limit
+                }
+            };
+            let reaches = |side: Side| first.as_ref().is_some_and(|first| first.breaks.includes(side));
+            self.due = Both::of(|side| reaches(side) && ways[side].sunk == 0.0);
+            let first = first.filter(on_time);
+            let Some(first) = first else {
+                return self.run_out(stretch, &conditions, until);
+            };
+            self.book(&conditions, first.time, &first.standing);
+            at += first.time;
+            stretch.to = Some(at);
+            self.stretches.push(stretch);
+            let broken = Both::of(|side| first.breaks.includes(side) && ways[side].sunk == 0.0);
+            if let Some(breaks) = Breaks::of(broken) {
+                self.finish(breaks, Ended::Break, at);
+                return true;
+            }
+            if self.gone_with(place) {
+                self.finish(Breaks::Neither, Ended::Withdrawn, at);
+                return true;
+            }
+        }
+    }
+
+    /// A side with nobody left, unbroken since some were withdrawn, whose reinforcement is lost as fast as it comes:
+    /// says whether the fight is over then, `None` where no side is so.
+    fn pinned(&mut self, place: usize, ways: &Both<WayDown>, at: f64, until: f64) -> Option<bool> {
+        let conditions = self.instants[place].conditions;
+        let lost = |side: Side| {
+            let enemy = side.enemy();
+            conditions.fire[enemy].losses_per_time(self.left[enemy], 0.0) + conditions.steadily_lost(side)
+        };
+        let side = Side::BOTH.into_iter().find(|side| {
+            let flow = conditions.flow[*side];
+            self.left[*side] == 0.0 && flow > 0.0 && ways[*side].sunk > 0.0 && lost(*side) >= flow
+        })?;
+        // It breaks once what it has lost so has brought its line up to 0.
+        let breaks = at + ways[side].sunk / ways[side].rising;
+        let end = breaks.min(until);
+        let mut alone = conditions;
+        alone.flow[side] = 0.0;
+        let mut stretch = Stretch::new(at, end - at, self.left, alone, ways, false);
+        stretch.ledger = self.ledger;
+        if !end.is_finite() {
+            self.run_out(stretch, &alone, end);
+            return Some(true);
+        }
+        self.run_out(stretch, &alone, end);
+        let came = conditions.flow[side] * (end - at);
+        let ledger = &mut self.ledger[side];
+        ledger.committed += Double::from(came);
+        ledger.joined += came;
+        ledger.add(&Losses {
+            fire: came,
+            all: came,
+            ..Losses::default()
+        });
+        if breaks <= until {
+            self.finish(
+                if side == Side::X { Breaks::X } else { Breaks::Y },
+                Ended::Break,
+                end,
+            );
+        }
+        Some(breaks <= until)
+    }
+
+    /// Follows a stretch in which nobody breaks, up to `until` or for ever; says whether the fight is over.
+    fn run_out(&mut self, mut stretch: Stretch, conditions: &Conditions, until: f64) -> bool {
+        if until.is_finite() {
+            let length = until - stretch.from;
+            let standing = stretch.at(length);
+            self.book(conditions, length, &standing);
+            stretch.to = Some(until);
+            self.stretches.push(stretch);
+            return false;
+        }
+        let (ended, end, losses) = stretch.endless();
+        for side in Side::BOTH {
+            self.ledger[side].add(&losses[side]);
+        }
+        self.stretches.push(stretch);
+        (self.ended, self.end) = (ended, end);
+        true
+    }
+
+    /// Enters what a stretch has done into the ledgers.
+    fn book(&mut self, conditions: &Conditions, length: f64, standing: &Standing) {
+        for side in Side::BOTH {
+            let came = conditions.flow[side] * length;
+            let ledger = &mut self.ledger[side];
+            ledger.committed += Double::from(came);
+            ledger.joined += came;
+            ledger.add(&standing.losses[side]);
+            self.left[side] = standing.left[side].max(0.0);
+        }
+    }
+
+    fn outcome(&self, engagement: &Engagement) -> Outcome {
+        let sides = Both::of(|side| {
+            let ledger = &self.ledger[side];
+            SideOutcome {
+                start: engagement.sides[side].start,
+                joined: ledger.joined,
+                withdrawn: ledger.withdrawn,
+                committed: ledger.committed.into(),
+                end: self.end[side],
+                losses: ledger.losses,
+            }
+        });
+        let (loss_exchange_ratio, fractional_exchange_ratio) = Outcome::exchange_ratios(&sides);
+        let pieces: Vec<PieceOutcome> = self
+            .stretches
+            .iter()
+            .map(|stretch| PieceOutcome {
+                from: stretch.from,
+                to: stretch.to,
+                method: stretch.method(),
+            })
+            .collect();
+        Outcome {
+            breaks: self.breaks,
+            time: if self.ended == Ended::Break {
+                self.time
+            } else {
+                None
+            },
+            ended: self.ended,
+            to_the_last: self.to_the_last(engagement),
+            below_one: self.below_one(),
+            x: sides.x,
+            y: sides.y,
+            loss_exchange_ratio,
+            fractional_exchange_ratio,
+            method: pieces
+                .iter()
+                .map(|piece| piece.method)
+                .max()
+                .unwrap_or(crate::outcome::Method::ClosedForm),
+            pieces,
+            caution: caution::SHORT,
+        }
+    }
+
+    /// When a side that fades without ever reaching 0 falls below one, if it does before the end.
+    fn below_one(&self) -> Option<f64> {
+        if self.ended == Ended::Break {
+            return None;
+        }
+        let last = self.stretches.last()?;
+        let time = last.from + last.below_one()?;
+        self.time.is_none_or(|end| time <= end).then_some(time)
+    }
+
+    /// Who would be left if no side broke and no clock ran.
+    fn to_the_last(&self, engagement: &Engagement) -> Option<ToTheLast> {
+        // Where nothing else happens the costs say it, without another fight.
+        if let ([_], Some(piece)) = (
+            &self.instants[..],
+            self.stretches.first().and_then(Stretch::piece),
+        ) {
+            return piece.to_the_last();
+        }
+        let unbroken = |side: Side| engagement.sides[side].break_point == 1.0;
+        let cut = if unbroken(Side::X) && unbroken(Side::Y) && self.ended != Ended::Clock {
+            None
+        } else {
+            self.time
+        };
+        match cut {
+            Some(time) => self.fought_on(engagement, time).left_in_the_end(),
+            None => self.left_in_the_end(),
+        }
+    }
+
+    /// The same fight going on from the time `time` where it was cut short, to the last and without a clock.
+    fn fought_on(&self, engagement: &Engagement, time: f64) -> Run {
+        let mut engagement = engagement.clone();
+        engagement.until = None;
+        for side in Side::BOTH {
+            engagement.sides[side].break_point = 1.0;
+        }
+        let mut run = Run {
+            stretches: Vec::new(),
+            instants: self.instants.clone(),
+            left: self.left,
+            end: Both::default(),
+            ledger: self.ledger,
+            due: Both::default(),
+            breaks: Breaks::Neither,
+            ended: Ended::Limit,
+            time: None,
+        };
+        let place = run
+            .instants
+            .iter()
+            .rposition(|instant| instant.time <= time)
+            .unwrap_or(0);
+        let next = run.instants.get(place + 1).map(|instant| instant.time);
+        let over = run.gone_with(place) || run.run_stretch(&engagement, place, time, next, f64::INFINITY);
+        if !over {
+            run.go(&engagement, place + 1);
+        }
+        run
+    }
+
+    fn left_in_the_end(&self) -> Option<ToTheLast> {
+        let some = |side: Side| self.end[side].is_none_or(|end| end > 0.0);
+        match (self.breaks, self.ended) {
+            (Breaks::X, _) => Some(ToTheLast::Y),
+            (Breaks::Y, _) => Some(ToTheLast::X),
+            (Breaks::Both, _) => Some(ToTheLast::Parity),
+            (Breaks::Neither, Ended::Limit) => match (some(Side::X), some(Side::Y)) {
+                (true, false) => Some(ToTheLast::X),
+                (false, true) => Some(ToTheLast::Y),
+                (false, false) if self.ends_at_parity() => Some(ToTheLast::Parity),
+                _ => None,
+            },
+            _ => None,
+        }
+    }
+
+    /// Whether both fade together because they are at parity, and not whatever their strengths.
+    fn ends_at_parity(&self) -> bool {
+        self.stretches
+            .last()
+            .and_then(Stretch::piece)
+            .is_some_and(|piece| !piece.cost.x.is_infinite())
+    }
+
+    fn into_trajectory(self) -> Trajectory {
+        let end = self.time.map(|_| self.left);
+        Trajectory::of(self.stretches, self.instants, self.time, end, self.left)
+    }
+}
+
+/// The engagement as a single piece under its two fires; `None` where it is more: where something arrives or changes, or
+/// something besides the fires is lost, or the range counts.
+pub fn plain_piece(engagement: &Engagement) -> Option<Piece> {
+    let instants = instants(engagement);
+    let conditions = instants[0].conditions;
+    if instants.len() > 1 || !conditions.are_plain() || conditions.shared_growth() != Some(None) {
+        return None;
+    }
+    let start = Both::of(|side| engagement.sides[side].start);
+    let to_the_last = Side::BOTH.iter().all(|side| descent(engagement, *side).to == 0.0);
+    Piece::new(start, &conditions, |cost| to_the_last && StateEquation::tie(cost))
 }
 
 /// The way of `side` from its start down to the strength at which it breaks; a descent of 0 or less is behind it.
 pub fn descent(engagement: &Engagement, side: Side) -> Descent {
-    let terms = &engagement.sides[side];
-    if terms.break_point == 1.0 {
-        return Descent {
-            to: Double::from(0.0),
-            by: Double::from(terms.start),
-        };
-    }
-    let by = Double::sum(terms.start, terms.lost) * terms.break_point - terms.lost;
-    Descent {
-        to: break_line(engagement, side),
-        by,
-    }
-}
-
-/// X's lead when both fight to the last: the cost of bringing it down less that of bringing Y down. `None` where both do
-/// fight to the last and are at parity: a tie then stays one however long it goes on.
-pub fn ahead(engagement: &Engagement) -> Option<Double> {
-    ahead_by(engagement, &Lead::of(engagement))
-}
-
-fn ahead_by(engagement: &Engagement, lead: &Lead) -> Option<Double> {
-    let to_the_last = Side::BOTH.iter().all(|side| break_line(engagement, *side) == 0.0);
-    (!(to_the_last && lead.is_tie())).then(|| lead.margin())
-}
-
-/// Who is ahead when both fight to the last: what it costs to bring each side down.
-struct Lead {
-    cost: Both<Double>,
-}
-
-impl Lead {
-    fn of(engagement: &Engagement) -> Lead {
-        let equation = StateEquation::of(&Both::of(|side| engagement.sides[side].fire));
-        let start = |side: Side| Double::from(engagement.sides[side].start);
-        Lead {
-            cost: Both::of(|side| equation.cost(side, start(side), Double::from(0.0))),
-        }
-    }
-
-    fn is_tie(&self) -> bool {
-        StateEquation::tie(self.cost)
-    }
-
-    /// X's cost less Y's; 0 where either is without bound, since no closed form needs it there.
-    fn margin(&self) -> Double {
-        let endless = is_endless(self.cost.x) || is_endless(self.cost.y);
-        if endless {
-            Double::from(0.0)
-        } else {
-            self.cost.x - self.cost.y
-        }
-    }
-
-    /// `None` where no fire takes effect, and where both sides fade to nothing whatever their strengths.
-    fn to_the_last(&self) -> Option<ToTheLast> {
-        let cost = self.cost;
-        match (is_endless(cost.x), is_endless(cost.y)) {
-            (true, true) => None,
-            (true, false) => Some(ToTheLast::X),
-            (false, true) => Some(ToTheLast::Y),
-            _ if cost.x == 0.0 && cost.y == 0.0 => None,
-            _ if self.is_tie() => Some(ToTheLast::Parity),
-            _ => Some(if cost.x > cost.y {
-                ToTheLast::X
-            } else {
-                ToTheLast::Y
-            }),
-        }
-    }
-}
-
-/// The end of an engagement whose losses before time 0 have already reached a break line.
-fn broken_at_start(engagement: &Engagement, descents: &Both<Descent>) -> Option<End> {
-    let broken = Both::of(|side| {
-        let rounding = engagement.committed_at_start(side) * TIE;
-        descents[side].by <= rounding
-    });
-    let breaks = match (broken.x, broken.y) {
-        (false, false) => return None,
-        (true, false) => Breaks::X,
-        (false, true) => Breaks::Y,
-        (true, true) => Breaks::Both,
+    let ledger = Ledger {
+        committed: Double::sum(engagement.sides[side].start, engagement.sides[side].lost),
+        lost_before: engagement.sides[side].lost,
+        ..Ledger::default()
     };
-    let left = Both::of(|side| engagement.sides[side].start);
-    let point = OrbitPoint {
-        left,
-        fallen: Both::default(),
-    };
-    Some(End {
-        breaks,
-        ended: Ended::Break,
-        time: Some(0.0),
-        point,
-    })
+    ledger
+        .way_down(
+            engagement.sides[side].start,
+            engagement.sides[side].break_point,
+            0.0,
+        )
+        .descent
 }
 
-/// Which side of `piece` reaches its line first, by the state equation, and when.
-fn first_break(piece: &Piece, descents: &Both<Descent>) -> End {
-    let endless = |point| End {
-        breaks: Breaks::Neither,
-        ended: Ended::Limit,
-        time: None,
-        point,
-    };
-    let cost = Both::of(|side| {
-        piece
-            .equation
-            .cost_of(side, piece.start[side].into(), descents[side])
-    });
-    if piece.motion == Motion::Still {
-        let point = OrbitPoint {
-            left: piece.start,
-            fallen: Both::default(),
-        };
-        return End {
-            ended: Ended::Equilibrium,
-            ..endless(point)
-        };
-    }
-    if is_endless(cost.x) && is_endless(cost.y) {
-        return endless(OrbitPoint {
-            left: Both::default(),
-            fallen: piece.start,
-        });
-    }
-    let (breaks, loser) = if StateEquation::tie(cost) {
-        (Breaks::Both, Side::X)
-    } else if cost.x > cost.y {
-        (Breaks::Y, Side::Y)
-    } else {
-        (Breaks::X, Side::X)
-    };
-    let mut point = piece.point_down(loser, descents[loser]);
-    if breaks == Breaks::Both {
-        point.left.y = descents.y.to.into();
-        point.fallen.y = descents.y.by.into();
-    }
-    // What is left of the winner may be too little for a double, and is not nothing.
-    let mut left = point.left;
-    if breaks != Breaks::Both {
-        left[loser.enemy()] = left[loser.enemy()].max(f64::MIN_POSITIVE);
-    }
-    let time = if piece.equation.is_reached(left) {
-        piece.time_to(&point)
-    } else {
-        f64::INFINITY
-    };
-    if time.is_finite() {
-        End {
-            breaks,
-            ended: Ended::Break,
-            time: Some(time),
-            point,
-        }
-    } else {
-        endless(point)
-    }
-}
-
-impl End {
-    /// The same, or the clock where that comes first; a line reached at the clock is reached.
-    fn cut_by(self, until: Option<f64>, piece: &Piece) -> End {
-        match until {
-            Some(until) if self.time.is_none_or(|time| time > until * (1.0 + TIE)) => {
-                let point = piece.point_at(until);
-                End {
-                    breaks: Breaks::Neither,
-                    ended: Ended::Clock,
-                    time: Some(until),
-                    point,
-                }
-            }
-            _ => self,
-        }
-    }
-}
-
-fn outcome(engagement: &Engagement, piece: &Piece, end: &End, lead: &Lead) -> Outcome {
-    let sides = Both::of(|side| {
-        let fallen = end.point.fallen[side];
-        SideOutcome {
-            start: engagement.sides[side].start,
-            joined: 0.0,
-            withdrawn: 0.0,
-            committed: engagement.committed_at_start(side),
-            end: Some(end.point.left[side].max(0.0)),
-            losses: Losses {
-                fire: fallen,
-                support: 0.0,
-                wastage: 0.0,
-                all: fallen,
-            },
-        }
-    });
-    let (loss_exchange_ratio, fractional_exchange_ratio) = Outcome::exchange_ratios(&sides);
-    let method = piece.motion.method();
-    Outcome {
-        breaks: end.breaks,
-        time: if end.ended == Ended::Break { end.time } else { None },
-        ended: end.ended,
-        to_the_last: lead.to_the_last(),
-        below_one: below_one(piece, end),
-        x: sides.x,
-        y: sides.y,
-        loss_exchange_ratio,
-        fractional_exchange_ratio,
-        method,
-        pieces: vec![PieceOutcome {
-            from: piece.from,
-            to: piece.to,
-            method,
-        }],
-        caution: caution::SHORT,
-    }
-}
-
-/// When a side that fades without ever reaching 0 falls below one, if it does before the end.
-fn below_one(piece: &Piece, end: &End) -> Option<f64> {
-    let zero = Double::from(0.0);
-    let fades = |side: Side| {
-        let fades = piece.equation.rate[side.enemy()] > 0.0
-            && piece.lasts_until(side, zero)
-            && !piece.equation.is_reached(piece.point_with(side, zero).left);
-        if !fades {
-            return None;
-        }
-        if piece.start[side] <= 1.0 {
-            return Some(0.0);
-        }
-        let time = piece.time_to(&piece.point_with(side, Double::from(1.0)));
-        (time.is_finite() && end.time.is_none_or(|end| time <= end)).then_some(time)
-    };
-    if end.ended == Ended::Break {
-        return None;
-    }
-    Side::BOTH.into_iter().filter_map(fades).reduce(f64::min)
+/// The strength at which `side` breaks at the start: (1 − break point) of what it has committed.
+pub fn break_line(engagement: &Engagement, side: Side) -> Double {
+    descent(engagement, side).to
 }

@@ -35,6 +35,35 @@ pub fn link(index: u32) -> String {
             link += &format!("{side}.lost={}&", draw(50));
         }
     }
+    // Reserves, losses besides the fires, and a phase for some.
+    for side in ["x", "y"] {
+        if draw(5) == 0 {
+            link += &format!(
+                "{side}.join={}@{},-{}@{}&",
+                1 + draw(90),
+                draw(9),
+                draw(20),
+                draw(20)
+            );
+        }
+        if draw(6) == 0 {
+            link += &format!(
+                "{side}.wastage=0.00{}&{side}.support.aimed=0.{}&",
+                1 + draw(9),
+                draw(10)
+            );
+        }
+        if draw(8) == 0 {
+            link += &format!("{side}.flow={}@{}/{}&", 1 + draw(9), draw(5), 6 + draw(9));
+        }
+    }
+    if draw(8) == 0 {
+        link += &format!(
+            "phase1.from={}&phase1.x.support.area=0.0{}&",
+            1 + draw(9),
+            1 + draw(9)
+        );
+    }
     if draw(3) == 0 {
         link += &format!("until={}&", 1 + draw(100));
     }

@@ -1,5 +1,6 @@
 //! The one table of keys: the parser, the form's labels, the README's table and the tests all come from it.
 
+use crate::sides::Side;
 use std::cmp::Reverse;
 
 /// Where a key may stand.
@@ -32,6 +33,10 @@ pub enum Unit {
     Fraction,
     /// An exponent.
     Exponent,
+    /// A length, in a unit of the user's own.
+    Length,
+    /// A length for each unit of time.
+    LengthPerTime,
     /// As the law of fire says.
     PerLaw,
 }
@@ -180,9 +185,9 @@ pub const KEYS: &[Key] = &[
     side(
         "start",
         "Strength at the start",
-        ABOVE_ZERO,
+        UP_TO_LARGEST,
         Unit::Strength,
-        "strength at time 0",
+        "strength at time 0; 0 only where reserves or a flow bring strength later",
     ),
     side(
         "lost",
@@ -255,8 +260,7 @@ pub const KEYS: &[Key] = &[
         Unit::FractionPerTime,
         "operational losses, those that the enemy does not cause",
     )
-    .or("0")
-    .later(),
+    .or("0"),
     side(
         "support.area",
         "Supporting arms, at an area",
@@ -264,8 +268,7 @@ pub const KEYS: &[Key] = &[
         Unit::EnemyFractionPerTime,
         "losses on the enemy by supporting arms that are not attrited, firing at an area",
     )
-    .or("0")
-    .later(),
+    .or("0"),
     side(
         "support.aimed",
         "Supporting arms, aimed",
@@ -273,24 +276,63 @@ pub const KEYS: &[Key] = &[
         Unit::EnemyPerTime,
         "the same, at targets they can pick",
     )
-    .or("0")
-    .later(),
+    .or("0"),
     side(
         "join",
         "Reserves",
         Kind::List,
         Unit::Strength,
         "reserves that join: size@time, with a comma between; a size below zero withdraws",
-    )
-    .later(),
+    ),
     side(
         "flow",
         "Steady reinforcement",
         Kind::List,
         Unit::Strength,
         "so many for each unit of time: rate@from/to, with a comma between",
+    ),
+    whole(
+        "range",
+        "Range at the start",
+        UP_TO_LARGEST,
+        "the range between the sides at time 0, in one unit of length for all; it counts where a side has a reach",
     )
-    .later(),
+    .measured_in(Unit::Length),
+    whole(
+        "range.closing",
+        "Closing speed",
+        UP_TO_LARGEST,
+        "by how much the range closes per unit of time",
+    )
+    .measured_in(Unit::LengthPerTime)
+    .or("0"),
+    whole(
+        "range.least",
+        "Least range",
+        UP_TO_LARGEST,
+        "the range at which the closing stops",
+    )
+    .measured_in(Unit::Length)
+    .or("0"),
+    side(
+        "reach",
+        "Reach",
+        ABOVE_ZERO,
+        Unit::Length,
+        "the range from which on this side's fire takes effect; nearer, its rate is multiplied by (1 − range/reach)^shape",
+    ),
+    side(
+        "reach.shape",
+        "Shape of the reach",
+        Kind::Quantity {
+            low: 0.0,
+            above: false,
+            high: 10.0,
+        },
+        Unit::Exponent,
+        "the exponent of that factor",
+    )
+    .or("1"),
     whole(
         "until",
         "Clock",
@@ -330,13 +372,67 @@ pub const KEYS: &[Key] = &[
     .or("1"),
 ];
 
+/// How many slots the keys have, those without side or phase too: two for each row.
+pub(crate) const SLOTS: usize = 2 * KEYS.len();
+
+/// No row.
+const FREE: u8 = u8::MAX;
+
+/// The rows by their names, so that one is found at once: each at its name's bucket, or at the next that was free.
+static BUCKETS: [u8; 128] = {
+    let mut buckets = [FREE; 128];
+    let mut row = 0;
+    while row < KEYS.len() {
+        let mut at = bucket(KEYS[row].name);
+        while buckets[at] != FREE {
+            at = (at + 1) % buckets.len();
+        }
+        buckets[at] = row as u8;
+        row += 1;
+    }
+    buckets
+};
+
+const fn bucket(name: &str) -> usize {
+    let bytes = name.as_bytes();
+    if bytes.is_empty() {
+        return 0;
+    }
+    let (first, last) = (bytes[0] as usize, bytes[bytes.len() - 1] as usize);
+    (first + 5 * last + 11 * bytes.len()) % 128
+}
+
+/// The slot of a key by its side and its name without the side's letter.
+pub(crate) fn slot_of(side: Option<Side>, bare: &str) -> Option<usize> {
+    let place = if side.is_some() { Place::Side } else { Place::Whole };
+    let mut at = bucket(bare);
+    loop {
+        let row = usize::from(BUCKETS[at]);
+        let key = KEYS.get(row)?;
+        if key.place == place && key.name == bare {
+            return Some(2 * row + usize::from(side == Some(Side::Y)));
+        }
+        at = (at + 1) % BUCKETS.len();
+    }
+}
+
+/// The slot of a key of the link without number.
+pub(crate) fn slot(name: &str) -> Option<usize> {
+    match name.as_bytes() {
+        [b'x', b'.', ..] => slot_of(Some(Side::X), &name[2..]),
+        [b'y', b'.', ..] => slot_of(Some(Side::Y), &name[2..]),
+        _ => slot_of(None, name),
+    }
+}
+
+/// The row of a slot.
+pub(crate) fn row(slot: usize) -> &'static Key {
+    &KEYS[slot / 2]
+}
+
 /// The row of a key of the link without number, `x.start` or `until`.
 pub fn find(name: &str) -> Option<&'static Key> {
-    let (place, bare) = match name.strip_prefix("x.").or_else(|| name.strip_prefix("y.")) {
-        Some(bare) => (Place::Side, bare),
-        None => (Place::Whole, name),
-    };
-    KEYS.iter().find(|key| key.place == place && key.name == bare)
+    slot(name).map(row)
 }
 
 /// Whether `name` is `phaseN.KEY` or `alsoN.KEY` with a key that may stand there.

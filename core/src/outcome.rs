@@ -1,6 +1,6 @@
 //! What a fight leaves: the outcome, as the batch door, the page and its attributes give it.
 
-use crate::sides::Both;
+use crate::sides::{Both, Side};
 use serde::Serialize;
 
 /// Who breaks first.
@@ -17,6 +17,28 @@ pub enum Breaks {
     Neither,
 }
 
+impl Breaks {
+    /// The sides that have broken; `None` where neither has.
+    pub fn of(broken: Both<bool>) -> Option<Breaks> {
+        match (broken.x, broken.y) {
+            (false, false) => None,
+            (true, false) => Some(Breaks::X),
+            (false, true) => Some(Breaks::Y),
+            (true, true) => Some(Breaks::Both),
+        }
+    }
+
+    /// Whether `side` is among those that break.
+    pub fn includes(self, side: Side) -> bool {
+        match self {
+            Breaks::X => side == Side::X,
+            Breaks::Y => side == Side::Y,
+            Breaks::Both => true,
+            Breaks::Neither => false,
+        }
+    }
+}
+
 /// How the engagement ended.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize)]
 #[serde(rename_all = "lowercase")]
@@ -27,8 +49,12 @@ pub enum Ended {
     Clock,
     /// It never ends; the strengths tend to a limit.
     Limit,
-    /// Nothing changes.
+    /// Nothing changes, or what comes in and what is lost come to balance.
     Equilibrium,
+    /// It never ends, and a side grows without bound.
+    Growth,
+    /// A side was withdrawn to the last, unbroken, with nobody to come.
+    Withdrawn,
 }
 
 /// Who would be left if no side broke and no clock ran.
@@ -52,6 +78,9 @@ pub enum Method {
     /// Who breaks and what is left by the state equation, the time by an integral.
     #[serde(rename = "quadrature")]
     Quadrature,
+    /// Step by step, by the integrator.
+    #[serde(rename = "integration")]
+    Integration,
 }
 
 /// Losses of one side since time 0, by cause.

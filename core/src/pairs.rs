@@ -13,6 +13,9 @@ pub const LONGEST_LINK: usize = 16 * 1024;
 /// The most bytes that are taken apart at all, so that a text that is only somewhat too long is not lost.
 const LONGEST_TAKEN_APART: usize = 256 * 1024;
 
+/// How many pairs a link usually has at most.
+const USUAL_PAIRS: usize = 16;
+
 /// What the writer leaves as it is beside letters and digits: all of it is plain text to mailers and wikis.
 const ESCAPED: &AsciiSet = &NON_ALPHANUMERIC
     .remove(b'-')
@@ -27,10 +30,12 @@ const ESCAPED: &AsciiSet = &NON_ALPHANUMERIC
 /// One `key=text`, as it was written.
 #[derive(Clone, Debug, PartialEq, Eq)]
 struct Pair {
-    key: String,
-    text: String,
+    /// The key, and behind it the text: in one string, since nearly all the time to read a short link is memory's.
+    both: String,
+    /// Where the text begins.
+    cut: usize,
     /// Where the pair could not be decoded: it is kept, and written again, as it stood.
-    raw: Option<Undecoded>,
+    raw: Option<Box<Undecoded>>,
 }
 
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -61,11 +66,13 @@ impl Pairs {
                 untouched: Some(link.into()),
             };
         }
-        let pairs = link
-            .split('&')
-            .filter(|piece| !piece.trim().is_empty())
-            .map(Pair::parse)
-            .collect();
+        let mut pairs = Vec::with_capacity(USUAL_PAIRS);
+        pairs.extend(
+            link.split('&')
+                .map(str::trim)
+                .filter(|piece| !piece.is_empty())
+                .map(Pair::parse),
+        );
         Pairs {
             pairs,
             too_long,
@@ -77,8 +84,8 @@ impl Pairs {
     pub fn get(&self, key: &str) -> Option<&str> {
         self.pairs
             .iter()
-            .find(|pair| pair.key == key)
-            .map(|pair| pair.text.as_str())
+            .find(|pair| pair.key() == key)
+            .map(|pair| pair.text())
     }
 
     /// Gives `key` a text, in its place or at the end; an empty text takes the key away.
@@ -86,25 +93,37 @@ impl Pairs {
         self.too_long = None;
         self.untouched = None;
         if text.is_empty() {
-            self.pairs.retain(|pair| pair.key != key);
+            self.pairs.retain(|pair| pair.key() != key);
             return;
         }
-        let new = Pair {
-            key: key.into(),
-            text: text.into(),
-            raw: None,
-        };
-        match self.pairs.iter_mut().find(|pair| pair.key == key) {
+        let new = Pair::new(key, text, None);
+        match self.pairs.iter_mut().find(|pair| pair.key() == key) {
             Some(pair) => *pair = new,
             None => self.pairs.push(new),
         }
     }
 
+    /// Takes away every pair of `key` but the first.
+    pub fn keep_first(&mut self, key: &str) {
+        let mut stood = false;
+        self.pairs
+            .retain(|pair| pair.key() != key || !std::mem::replace(&mut stood, true));
+    }
+
+    /// Whether more than one pair has this key.
+    pub fn stands_twice(&self, key: &str) -> bool {
+        self.pairs.iter().filter(|pair| pair.key() == key).count() > 1
+    }
+
     /// The keys and their decoded texts, in order.
     pub fn iter(&self) -> impl Iterator<Item = (&str, &str)> {
-        self.pairs
-            .iter()
-            .map(|pair| (pair.key.as_str(), pair.text.as_str()))
+        self.pairs.iter().map(|pair| (pair.key(), pair.text()))
+    }
+
+    /// The key and the decoded text at a place of [`Pairs::iter`].
+    pub(crate) fn at(&self, place: usize) -> (&str, &str) {
+        let pair = &self.pairs[place];
+        (pair.key(), pair.text())
     }
 
     /// Whether no pair stands.
@@ -121,13 +140,13 @@ impl Pairs {
         let written: Vec<String> = self
             .pairs
             .iter()
-            .filter(|pair| pair.key != "v")
+            .filter(|pair| pair.key() != "v")
             .map(Pair::written)
             .collect();
         let mut versions: Vec<String> = self
             .pairs
             .iter()
-            .filter(|pair| pair.key == "v")
+            .filter(|pair| pair.key() == "v")
             .map(Pair::written)
             .collect();
         if versions.is_empty() {
@@ -147,18 +166,28 @@ impl Pairs {
         self.too_long.unwrap_or_else(|| self.link().len())
     }
 
+    /// The length where that is more than is worked out.
+    pub(crate) fn too_long(&self) -> Option<usize> {
+        // No byte takes more than the three of an escape, so that a short link need not be written to be measured.
+        let at_most: usize = "&v=1".len() + self.pairs.iter().map(Pair::longest).sum::<usize>();
+        if self.too_long.is_none() && self.untouched.is_none() && at_most <= LONGEST_LINK {
+            return None;
+        }
+        Some(self.length()).filter(|length| *length > LONGEST_LINK)
+    }
+
     /// What is wrong with the text as text: its escapes, pieces without `=`; by their place in the link.
     pub(crate) fn problems(&self) -> Vec<(usize, Problem)> {
         let undecoded = |(place, pair): (usize, &Pair)| {
             let raw = pair.raw.as_ref()?;
-            let key = raw.written.contains('=').then(|| pair.key.clone());
+            let key = raw.written.contains('=').then(|| pair.key().into());
             let problem = raw.problem.into();
             Some((
                 place,
                 Problem {
                     key,
                     item: None,
-                    found: Some(pair.text.clone()),
+                    found: Some(pair.text().into()),
                     problem,
                 },
             ))
@@ -168,30 +197,47 @@ impl Pairs {
 }
 
 impl Pair {
+    fn new(key: &str, text: &str, raw: Option<Box<Undecoded>>) -> Pair {
+        Pair {
+            both: [key, text].concat(),
+            cut: key.len(),
+            raw,
+        }
+    }
+
+    fn key(&self) -> &str {
+        &self.both[..self.cut]
+    }
+
+    fn text(&self) -> &str {
+        &self.both[self.cut..]
+    }
+
     fn parse(piece: &str) -> Pair {
-        let piece = piece.trim();
-        let undecoded = |key: &str, text: &str, problem| Pair {
-            key: key.into(),
-            text: text.into(),
-            raw: Some(Undecoded {
-                written: piece.into(),
-                problem,
-            }),
+        let undecoded = |key: &str, text: &str, problem| {
+            let written = piece.into();
+            Pair::new(key, text, Some(Box::new(Undecoded { written, problem })))
         };
         let Some((key, text)) = piece.split_once('=') else {
             return undecoded("", piece, "write it as key=value");
         };
         match (decode(key), decode(text)) {
-            (Ok(key), Ok(text)) => Pair { key, text, raw: None },
+            (Ok(key), Ok(text)) => Pair::new(&key, &text, None),
             (Ok(key), Err(problem)) => undecoded(&key, text, problem),
             (Err(problem), _) => undecoded(key, text, problem),
         }
     }
 
+    /// The most bytes that it is written with, and the `&` before it.
+    fn longest(&self) -> usize {
+        let raw = self.raw.as_ref().map_or(0, |raw| raw.written.len());
+        3 * self.both.len() + "&=".len() + raw
+    }
+
     fn written(&self) -> String {
         match &self.raw {
             Some(raw) => raw.written.clone(),
-            None => format!("{}={}", encode(&self.key), encode(&self.text)),
+            None => format!("{}={}", encode(self.key()), encode(self.text())),
         }
     }
 }
@@ -201,7 +247,10 @@ pub fn encode(text: &str) -> Cow<'_, str> {
     utf8_percent_encode(text, ESCAPED).into()
 }
 
-fn decode(written: &str) -> Result<String, &'static str> {
+fn decode(written: &str) -> Result<Cow<'_, str>, &'static str> {
+    if !written.bytes().any(|byte| byte == b'%' || byte == b'+') {
+        return Ok(written.into());
+    }
     let escapes_hold = written.split('%').skip(1).all(|rest| {
         let digits = rest.as_bytes().get(..2);
         digits.is_some_and(|digits| digits.iter().all(u8::is_ascii_hexdigit))
@@ -211,7 +260,7 @@ fn decode(written: &str) -> Result<String, &'static str> {
     }
     let blanks = written.replace('+', " ");
     match percent_decode_str(&blanks).decode_utf8() {
-        Ok(text) => Ok(text.into_owned()),
+        Ok(text) => Ok(Cow::Owned(text.into_owned())),
         Err(_) => Err("the escapes are not UTF-8"),
     }
 }
@@ -277,5 +326,20 @@ mod tests {
         pairs.set("x.start", "");
         pairs.set("title", "a & b=c");
         assert_eq!(pairs.link(), "y.start=4&title=a%20%26%20b%3Dc&v=1");
+    }
+
+    #[test]
+    fn of_a_key_that_stands_twice_the_first_is_kept() {
+        let mut pairs = Pairs::parse("x.start=6&y.start=4&x.start=5&x.start=%ZZ");
+        assert!(pairs.stands_twice("x.start") && !pairs.stands_twice("y.start"));
+        pairs.keep_first("x.start");
+        assert_eq!(pairs.link(), "x.start=6&y.start=4&v=1");
+    }
+
+    #[test]
+    fn pieces_without_a_key_are_taken_away_by_the_empty_key() {
+        let mut pairs = Pairs::parse("bare&x.start=6&another");
+        pairs.set("", "");
+        assert_eq!(pairs.link(), "x.start=6&v=1");
     }
 }

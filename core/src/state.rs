@@ -4,6 +4,10 @@
 //! out of dy/dx, and b·∫S(x)/T(x)dx − a·∫S(y)/T(y)dy is constant. S/T is a sum of powers, so its integrals are
 //! elementary: powers and logarithms. It says who is brought down first, and what is left, without any step in time.
 //!
+//! Losses that do not depend on the enemy's number keep this form where they go by the same factor T: with wastage, or
+//! supporting arms firing at an area, beside fire at an area, or with aimed support beside aimed fire,
+//! x' = −(a·S(y) + w)·T(x), and each side of the equation has a second sum of powers.
+//!
 //! All of it is worked out in double-double arithmetic from the numbers as they were read, taken as exact: near parity
 //! the terms agree in all digits of a double.
 
@@ -16,16 +20,16 @@ use crate::terms::Fire;
 pub const TIE: f64 = 4.0 * f64::EPSILON / 2.0;
 
 /// The least strength that a root-find goes down to: double-double arithmetic divides by no less.
-const LEAST: f64 = 1e-290;
+pub(crate) const LEAST: f64 = 1e-290;
 
 /// Steps at most in plain doubles; where they do not do, halving takes over.
 const MOST_STEPS: usize = 50;
 
-/// A term c·n^(k−1) of S/T, by the order k of its integral c·nᵏ/k.
-#[derive(Clone, Copy, Debug, PartialEq)]
+/// A term c·n^(k−1) of what a side costs, by the order k of its integral c·nᵏ/k.
+#[derive(Clone, Copy, Debug, Default, PartialEq)]
 pub struct Term {
-    /// c; a zero ends the sum.
-    pub coefficient: f64,
+    /// c, with the rate in it; 0 where there is no term.
+    pub weight: Double,
     /// k, exact in double-double: 0 is the logarithm.
     pub order: Double,
 }
@@ -34,7 +38,7 @@ impl Term {
     /// The value at `strength`.
     fn at(&self, strength: f64) -> f64 {
         Power {
-            coefficient: self.coefficient,
+            coefficient: self.weight.into(),
             exponent: f64::from(self.order - 1.0),
         }
         .at(strength)
@@ -61,38 +65,32 @@ impl Descent {
     }
 }
 
+/// The most terms of a side: two powers in 1/T, each for the fire and for what is lost besides.
+pub const MOST_TERMS: usize = 4;
+
 /// The state equation of a pairing.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct StateEquation {
     /// The rate of each side's fire; 0 where it has no effect.
     pub rate: Both<f64>,
-    /// S/T of each side, over its own strength.
-    pub terms: Both<[Term; 2]>,
-    /// The exponent of each side's factor as shooters.
+    /// What each side costs its enemy as it is brought down, over its own strength; the terms that count come first.
+    pub terms: Both<[Term; MOST_TERMS]>,
+    /// The exponent of what each side does to its enemy, next to 0.
     shooters: Both<f64>,
     /// The largest exponent of each side's own factor as targets next to 0: T(n) falls as n to that power.
     vanishing: Both<f64>,
 }
 
 impl StateEquation {
-    /// The state equation of `fire`, the fire of each side.
+    /// The state equation of `fire`, the fire of each side, and nothing else.
     pub fn of(fire: &Both<Fire<f64>>) -> StateEquation {
-        let shooters = Both::of(|side| fire[side].shooters().exponent);
-        // The factor T of a side as targets belongs to the law of its enemy.
-        let terms = Both::of(|side: Side| {
-            fire[side.enemy()].per_target().map(|power| Term {
-                coefficient: power.coefficient,
-                order: Double::sum(shooters[side], power.exponent) + 1.0,
-            })
-        });
-        let vanishing = Both::of(|side: Side| {
-            let powers = fire[side.enemy()].per_target();
-            powers
-                .iter()
-                .filter(|power| power.coefficient > 0.0)
-                .map(|power| -power.exponent)
-                .fold(0.0, f64::max)
-        });
+        let per_target = Both::of(|side: Side| fire[side.enemy()].per_target());
+        StateEquation::with(fire, &per_target, &Both::default())
+    }
+
+    /// The state equation of `fire` where each side also loses `besides`·T(n) whatever the enemy's number; `per_target`
+    /// is 1/T of each side.
+    pub fn with(fire: &Both<Fire<f64>>, per_target: &Both<[Power; 2]>, besides: &Both<f64>) -> StateEquation {
         let rate = Both::of(|side| {
             if fire[side].takes_effect() {
                 fire[side].rate
@@ -100,12 +98,50 @@ impl StateEquation {
                 0.0
             }
         });
+        let terms = Both::of(|side: Side| {
+            let shooters = fire[side].shooters().exponent;
+            let mut terms = [Term::default(); MOST_TERMS];
+            let mut count = 0;
+            for (weight, exponent) in [(rate[side], shooters), (besides[side.enemy()], 0.0)] {
+                for power in per_target[side]
+                    .iter()
+                    .filter(|power| weight > 0.0 && power.coefficient > 0.0)
+                {
+                    terms[count] = Term {
+                        weight: Double::product(weight, power.coefficient),
+                        order: Double::sum(exponent, power.exponent) + 1.0,
+                    };
+                    count += 1;
+                }
+            }
+            terms
+        });
+        let shooters = Both::of(|side: Side| {
+            if besides[side.enemy()] > 0.0 {
+                0.0
+            } else {
+                fire[side].shooters().exponent
+            }
+        });
+        let vanishing = Both::of(|side: Side| {
+            let powers = per_target[side].iter().filter(|power| power.coefficient > 0.0);
+            powers.map(|power| -power.exponent).fold(0.0, f64::max)
+        });
         StateEquation {
             rate,
             terms,
             shooters,
             vanishing,
         }
+    }
+
+    /// The terms of a side that count.
+    pub fn active(&self, side: Side) -> &[Term] {
+        let count = self.terms[side]
+            .iter()
+            .take_while(|term| term.weight > 0.0)
+            .count();
+        &self.terms[side][..count]
     }
 
     /// What it takes to bring `side` from one strength to another: rate × ∫ S/T, 0 or more, infinite where the enemy
@@ -118,18 +154,15 @@ impl StateEquation {
 
     /// The same for a descent whose height is known with all its digits.
     pub fn cost_of(&self, side: Side, from: Double, down: Descent) -> Double {
-        if self.rate[side] == 0.0 {
-            return Double::from(0.0);
-        }
         let mut sum = Double::from(0.0);
-        for term in self.terms[side].iter().filter(|term| term.coefficient > 0.0) {
+        for term in self.active(side) {
             let area = integral(term.order, from, down);
             if is_endless(area) {
                 return area;
             }
-            sum += area * term.coefficient;
+            sum += area * term.weight;
         }
-        sum * self.rate[side]
+        sum
     }
 
     /// What is left of `side`, brought down from `from` at the cost `cost`; 0 where that is more than all of it.
@@ -141,23 +174,24 @@ impl StateEquation {
         if is_endless(cost) {
             return zero;
         }
-        let area = cost / self.rate[side];
-        let [first, second] = self.terms[side];
-        let left = if self.needs_root(side) {
-            left_of_two(&self.terms[side], from, area)
-        } else if second.coefficient == 0.0 {
-            left_of_one(first, from, area)
-        } else {
-            left_of_quadratic(first, second, from, area)
+        let left = match self.active(side) {
+            [] => from,
+            [one] => left_of_one(one, from, cost),
+            [first, second] if first.order == 2.0 && second.order == 1.0 => {
+                left_of_quadratic(first, second, from, cost)
+            }
+            terms => left_of_many(terms, from, cost),
         };
         if left > 0.0 { left } else { zero }
     }
 
-    /// Whether what is left of `side` at a cost has no formula, and is found by a search for the root; true of one side
-    /// at most, since both would have to be shot at by fire that searches, and then each sum is a quadratic.
+    /// Whether what is left of `side` at a cost has no formula, and is found by a search for the root.
     pub fn needs_root(&self, side: Side) -> bool {
-        let [first, second] = self.terms[side];
-        second.coefficient > 0.0 && !(first.order == 2.0 && second.order == 1.0)
+        match self.active(side) {
+            [] | [_] => false,
+            [first, second] => !(first.order == 2.0 && second.order == 1.0),
+            _ => true,
+        }
     }
 
     /// What has fallen of `side`, brought down from `from` to `left` at the cost `cost`: also where that is so little of
@@ -169,33 +203,26 @@ impl StateEquation {
         }
         // The integrand in the middle of so short a stretch is its mean to a part of 1e-20.
         let middle = f64::from(from + left) * 0.5;
-        let active = self.terms[side].iter().filter(|term| term.coefficient > 0.0);
-        let mean: f64 = active.map(|term| term.at(middle)).sum();
-        if mean > 0.0 && self.rate[side] > 0.0 {
-            cost / self.rate[side] / mean
-        } else {
-            difference
-        }
+        let mean: f64 = self.active(side).iter().map(|term| term.at(middle)).sum();
+        if mean > 0.0 { cost / mean } else { difference }
     }
 
     /// The strength of `side` that it costs `cost` to bring down to the last, where that cost is finite; it is no more
     /// than `most`.
     pub fn worth(&self, side: Side, cost: Double, most: Double) -> Double {
-        let [first, second] = self.terms[side];
-        let area = cost / self.rate[side];
-        if area <= 0.0 {
+        if cost <= 0.0 {
             return Double::from(0.0);
         }
-        if second.coefficient > 0.0 {
+        let [one] = self.active(side) else {
             return self.left(side, most, self.cost(side, most, Double::from(0.0)) - cost);
-        }
-        let area = area / first.coefficient * first.order;
-        if first.order == 1.0 {
+        };
+        let area = cost / one.weight * one.order;
+        if one.order == 1.0 {
             area
-        } else if first.order == 2.0 {
+        } else if one.order == 2.0 {
             area.sqrt()
         } else {
-            area.pow(Double::from(1.0) / first.order)
+            area.pow(Double::from(1.0) / one.order)
         }
     }
 
@@ -244,8 +271,8 @@ impl StateEquation {
 
     /// The order that decides next to 0.
     fn lowest_order(&self, side: Side) -> f64 {
-        let terms = self.terms[side].iter().filter(|term| term.coefficient > 0.0);
-        terms
+        self.active(side)
+            .iter()
             .map(|term| f64::from(term.order))
             .fold(f64::INFINITY, f64::min)
     }
@@ -290,8 +317,8 @@ fn integral(order: Double, from: Double, down: Descent) -> Double {
 }
 
 /// What is left where S/T is a single power and ∫ S/T is `area`.
-fn left_of_one(term: Term, from: Double, area: Double) -> Double {
-    let area = area / term.coefficient;
+fn left_of_one(term: &Term, from: Double, area: Double) -> Double {
+    let area = area / term.weight;
     if term.order == 1.0 {
         return from - area;
     }
@@ -320,21 +347,21 @@ fn left_of_one(term: Term, from: Double, area: Double) -> Double {
 }
 
 /// What is left where S/T is c·n + d: the positive root of c·n²/2 + d·n = rest, written so that nothing cancels.
-fn left_of_quadratic(first: Term, second: Term, from: Double, area: Double) -> Double {
-    let (c, d) = (first.coefficient, second.coefficient);
-    let rest = from * (from * (c * 0.5) + d) - area;
+fn left_of_quadratic(first: &Term, second: &Term, from: Double, area: Double) -> Double {
+    let (c, d) = (first.weight, second.weight);
+    let rest = from * (from * c * 0.5 + d) - area;
     if rest > 0.0 {
-        rest * 2.0 / ((rest * (2.0 * c) + Double::product(d, d)).sqrt() + d)
+        rest * 2.0 / ((rest * c * 2.0 + d * d).sqrt() + d)
     } else {
         rest
     }
 }
 
-/// What is left where S/T is a sum of two powers: one root-find, in λ = ln(from/left).
+/// What is left where S/T is a sum of powers: one root-find.
 ///
 /// The sum grows with λ; Newton's steps are kept within a bracket, then one from a residual in double-double carries the
 /// root to all digits.
-fn left_of_two(terms: &[Term; 2], from: Double, area: Double) -> Double {
+fn left_of_many(terms: &[Term], from: Double, area: Double) -> Double {
     let down = |left: f64| Descent {
         to: left.into(),
         by: from - left,
@@ -342,13 +369,13 @@ fn left_of_two(terms: &[Term; 2], from: Double, area: Double) -> Double {
     let short = |left: f64| {
         let spent = terms
             .iter()
-            .map(|term| integral(term.order, from, down(left)) * term.coefficient);
+            .map(|term| integral(term.order, from, down(left)) * term.weight);
         spent.fold(-area, |sum, one| sum + one)
     };
     let slope = |left: f64| -> f64 { terms.iter().map(|term| term.at(left)).sum() };
     let start = f64::from(from);
     let (mut low, mut high) = (0.0, libm::log(start / LEAST));
-    let mut span = span_of_two(terms, start, f64::from(area));
+    let mut span = span_of_many(terms, start, f64::from(area));
     if !(0.0..20.0).contains(&span) {
         if short(LEAST) <= 0.0 {
             return Double::from(0.0);
@@ -380,11 +407,14 @@ fn left_of_two(terms: &[Term; 2], from: Double, area: Double) -> Double {
 }
 
 /// The same λ in plain doubles, which next to the end lose its last digits: where the search begins.
-fn span_of_two(terms: &[Term; 2], start: f64, area: f64) -> f64 {
-    let scaled = terms.map(|term| {
-        let order = f64::from(term.order);
-        (term.coefficient * libm::pow(start, order), order)
-    });
+fn span_of_many(terms: &[Term], start: f64, area: f64) -> f64 {
+    let scaled: Vec<(f64, f64)> = terms
+        .iter()
+        .map(|term| {
+            let order = f64::from(term.order);
+            (f64::from(term.weight) * libm::pow(start, order), order)
+        })
+        .collect();
     // The sum is concave in λ, as its orders are 0 or more: Newton's steps from 0 never go past the root.
     let mut span = 0.0;
     for _ in 0..MOST_STEPS {

@@ -1,7 +1,7 @@
 //! The address holds the engagement: it is kept, walked and moved out of the query.
 
 use aftercount_core::demo::DEMO;
-use aftercount_tests::browser::{Browser, changed, native, page_url};
+use aftercount_tests::browser::{Browser, Key, changed, native, page_url};
 
 const LINK: &str = "x.start=600&x.rate=0.04&y.start=400&y.rate=0.05&v=1";
 
@@ -133,5 +133,67 @@ fn nothing_is_stored() {
         vec![],
     );
     assert_eq!(stored, serde_json::json!([0, 0, ""]));
+    browser.assert_clean();
+}
+
+#[test]
+fn a_reloaded_blank_form_is_blank_and_undo_keeps_the_focus() {
+    let browser = opened();
+    browser.click("#blank");
+    browser.wait_state("empty");
+    let blank = "return document.getElementById('problems').hidden
+        && document.getElementById('empty-words').checkVisibility();";
+    browser.wait(
+        "the blank form in the address",
+        "return location.hash === '#v=1';",
+    );
+    browser.reload();
+    browser.wait_state("empty");
+    assert_eq!(browser.script(blank, vec![]), true, "after a reload");
+    browser.click("#undo");
+    assert_eq!(browser.settle(LINK), native(LINK));
+    let focused = "return document.activeElement.id + ' ' + document.activeElement.ariaDisabled;";
+    assert_eq!(browser.script(focused, vec![]), "undo true");
+    browser.click("#redo");
+    browser.wait_state("empty");
+    assert_eq!(browser.script(blank, vec![]), true, "after Redo");
+    browser.assert_clean();
+}
+
+#[test]
+fn pieces_without_a_key_and_second_texts_can_be_taken_out() {
+    let browser = Browser::start();
+    browser.open(&format!("bare&{LINK}&x.start=5"));
+    browser.wait_state("empty");
+    browser.press("[data-take-out='']", Key::Enter);
+    browser.press("[data-keep-first='x.start']", Key::Enter);
+    assert_eq!(browser.settle(LINK), native(LINK));
+    let focused = "return document.activeElement.id;";
+    assert_eq!(browser.script(focused, vec![]), "x.start");
+    browser.assert_clean();
+}
+
+#[test]
+fn a_refused_write_of_the_address_is_tried_again() {
+    let browser = opened();
+    browser.write("x.start", "65");
+    browser.settle(&changed(LINK, "x.start", "65"));
+    let refuse = "window.refused = 0;
+        history.replaceState = function (...all) {
+          if (window.refused < 2) { window.refused += 1; throw new DOMException('too often', 'SecurityError'); }
+          return History.prototype.replaceState.apply(this, all);
+        };";
+    browser.script(refuse, vec![]);
+    browser.write("x.start", "650");
+    let link = changed(LINK, "x.start", "650");
+    browser.wait(
+        "the write after two refusals",
+        &format!(
+            "return window.refused === 2 && location.hash === {};",
+            serde_json::json!(format!("#{link}"))
+        ),
+    );
+    browser.click("#undo");
+    assert_eq!(browser.settle(LINK), native(LINK));
     browser.assert_clean();
 }

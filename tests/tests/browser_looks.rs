@@ -68,7 +68,7 @@ fn text_stands_out_from_its_ground() {
             const weak = [];
             for (const e of document.querySelectorAll('body *')) {
               const own = [...e.childNodes].some((n) => n.nodeType === 3 && n.data.trim());
-              if (!own || !e.checkVisibility() || e.closest('svg, canvas, button:disabled, .unseen, .skip')) continue;
+              if (!own || !e.checkVisibility() || e.closest('svg, canvas, button:disabled, button[aria-disabled=true], .unseen, .skip')) continue;
               const a = light(rgba(getComputedStyle(e).color)), b = light(ground(e));
               const contrast = (Math.max(a, b) + 0.05) / (Math.min(a, b) + 0.05);
               if (contrast < 4.5) weak.push(e.tagName + '#' + e.id + '.' + e.className + ' ' + contrast.toFixed(2));

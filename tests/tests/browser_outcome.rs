@@ -152,7 +152,8 @@ fn figures_lead_to_their_lines_of_the_working() {
         assert_eq!(led[1], true, "{link}: {led}");
         let text = browser.script("return document.getElementById('working-text').value;", vec![]);
         assert!(
-            text.as_str().is_some_and(|text| text.contains("loses by")),
+            text.as_str()
+                .is_some_and(|text| text.contains("loses by") || text.contains("hands over")),
             "{link}: {text}"
         );
     }

@@ -6,14 +6,14 @@
 
 use aftercount_core::course::Course;
 use aftercount_core::double::Double;
-use aftercount_core::fight::{Effort, Fight, ahead, break_line, fight};
+use aftercount_core::fight::{Effort, Fight, break_line, fight, plain_piece};
 use aftercount_core::laws::along_orbit::AlongOrbit;
 use aftercount_core::outcome::{Breaks, Ended, Method};
 use aftercount_core::pairs::Pairs;
+use aftercount_core::piece::Piece;
 use aftercount_core::sides::{Both, Side};
 use aftercount_core::statement::{Statement, Values};
 use aftercount_core::terms::Engagement;
-use aftercount_core::trajectory::Piece;
 use aftercount_tests::tables::{self, relative_error};
 
 /// How nearly the ways of solving agree.
@@ -27,12 +27,7 @@ struct Problem {
 
 impl Problem {
     fn piece(&self) -> Piece {
-        let sides = &self.engagement.sides;
-        let (start, fire) = (
-            Both::of(|side| sides[side].start),
-            Both::of(|side| sides[side].fire),
-        );
-        Piece::new(0.0, start, fire, ahead(&self.engagement))
+        plain_piece(&self.engagement).expect("a fight of two fires alone")
     }
 
     fn solved(&self) -> Fight {
@@ -178,13 +173,13 @@ fn taken_up_at(engagement: &Engagement, t: f64) -> (Fight, Engagement) {
     let cut = fight(
         &Engagement {
             until: Some(t),
-            ..*engagement
+            ..engagement.clone()
         },
         Effort::Trajectory,
     );
     let mut rest = Engagement {
         until: engagement.until.map(|until| until - t),
-        ..*engagement
+        ..engagement.clone()
     };
     for side in Side::BOTH {
         let left = *cut.outcome.sides()[side];

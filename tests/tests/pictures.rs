@@ -215,10 +215,14 @@ fn check_places(link: &str, shapes: &[Shape], layout: &Layout, (width, height): 
     }
 }
 
+/// The demo's two forces without its reserve: curves that do not step.
+const PLAIN: &str =
+    "x.name=Ondrel&x.start=600&x.rate=0.04&x.break=0.3&y.name=Vessary&y.start=400&y.rate=0.06&y.break=0.39";
+
 /// Side X's curve is one solid stroke, side Y's is dashed, and every point of both is where the core says.
 #[test]
 fn the_curves_are_those_of_the_core() {
-    let worked = worked(DEMO);
+    let worked = worked(PLAIN);
     let (layout, svg) = drawn(&worked.strength, 640, 400, 2);
     let (shapes, ink) = (shapes(&svg), Ink::light());
     let trajectory = worked.fight.trajectory.as_ref().expect("asked for");
@@ -254,7 +258,7 @@ fn the_curves_are_those_of_the_core() {
 /// Open squares on X's curve and filled triangles on Y's, so that the sides are told apart without colour.
 #[test]
 fn marks_tell_the_sides_apart_in_grey() {
-    let worked = worked(DEMO);
+    let worked = worked(PLAIN);
     let (layout, svg) = drawn(&worked.strength, 640, 400, 2);
     let (shapes, ink) = (shapes(&svg), Ink::light());
     let trajectory = worked.fight.trajectory.as_ref().expect("asked for");
@@ -548,7 +552,7 @@ fn hostile_names_are_only_words() {
 /// The reading line: upright at the time, with a point on each curve.
 #[test]
 fn the_reading_line_reads_the_curves() {
-    let worked = worked(DEMO);
+    let worked = worked(PLAIN);
     let trajectory = worked.fight.trajectory.as_ref().expect("asked for");
     let (layout, _) = drawn(&worked.strength, 640, 400, 1);
     let (t, strengths) = (2.5, trajectory.strengths_at(2.5));

@@ -3,13 +3,13 @@
 //! Half of the fights are near the degenerate: planted ties, neighbours of a tie in their last digits, ratios of rates
 //! and strengths of many powers of ten. The seed is fixed: the same cases come on every machine and every run.
 
-use aftercount_core::fight::{Effort, Fight, ahead, fight};
+use aftercount_core::fight::{Effort, Fight, fight, plain_piece};
 use aftercount_core::laws::FireLaw;
 use aftercount_core::outcome::{Breaks, Ended, Method, ToTheLast};
 use aftercount_core::pairs::Pairs;
+use aftercount_core::piece::Piece;
 use aftercount_core::sides::{Both, Side};
 use aftercount_core::terms::{Engagement, Fire, SideTerms};
-use aftercount_core::trajectory::Piece;
 use aftercount_tests::tables::relative_error;
 use proptest::prelude::*;
 use proptest::test_runner::{Config, RngSeed};
@@ -80,12 +80,7 @@ fn side() -> impl Strategy<Value = SideTerms<f64>> {
         } else {
             start
         };
-        SideTerms {
-            start,
-            lost: share * most,
-            fire,
-            break_point,
-        }
+        SideTerms::of_fire(start, share * most, fire, break_point)
     })
 }
 
@@ -180,7 +175,10 @@ fn planted() -> impl Strategy<Value = Planted> {
 
 fn engagement() -> impl Strategy<Value = Engagement> {
     (side(), side(), planted()).prop_map(|(x, y, planted)| {
-        let mut sides = Both { x, y };
+        let mut sides = Both {
+            x: x.clone(),
+            y: y.clone(),
+        };
         let tied = cost(&x, &y, line(&x)) / (cost(&y, &x, line(&y)) / y.fire.rate);
         if tied.is_finite() && tied > 0.0 {
             sides.y.fire.rate = match planted {
@@ -189,7 +187,7 @@ fn engagement() -> impl Strategy<Value = Engagement> {
                 Planted::Ratio(ratio) => tied * ratio,
             };
         }
-        Engagement { sides, until: None }
+        Engagement::of_sides(sides)
     })
 }
 
@@ -221,7 +219,7 @@ fn first_losses(engagement: &Engagement, side: Side) -> f64 {
 fn rounding(fight: &Fight) -> f64 {
     match fight.outcome.method {
         Method::ClosedForm => 4e-14,
-        Method::Quadrature => 1e-11,
+        Method::Quadrature | Method::Integration => 1e-11,
     }
 }
 
@@ -242,10 +240,10 @@ fn twenty_times(engagement: &Engagement, fight: &Fight) -> Vec<f64> {
 fn swapped(engagement: &Engagement) -> Engagement {
     Engagement {
         sides: Both {
-            x: engagement.sides.y,
-            y: engagement.sides.x,
+            x: engagement.sides.y.clone(),
+            y: engagement.sides.x.clone(),
         },
-        ..*engagement
+        ..engagement.clone()
     }
 }
 
@@ -330,7 +328,7 @@ proptest! {
     #[test]
     fn rates_four_times_as_high_take_a_quarter_of_the_time(engagement in engagement(), twice in -5i32..=5) {
         let factor = 4f64.powi(twice);
-        let mut faster = engagement;
+        let mut faster = engagement.clone();
         faster.sides.x.fire.rate *= factor;
         faster.sides.y.fire.rate *= factor;
         let (slow, fast) = (solved(&engagement).outcome, solved(&faster).outcome);
@@ -345,7 +343,7 @@ proptest! {
     #[test]
     fn strengths_in_another_unit_change_nothing(engagement in engagement(), doubled in -8i32..=8) {
         let factor = 2f64.powi(doubled);
-        let mut other = engagement;
+        let mut other = engagement.clone();
         let mut exact = true;
         for side in Side::BOTH {
             let terms = &mut other.sides[side];
@@ -379,13 +377,13 @@ proptest! {
         prop_assume!(distance_from_tie(&engagement) > 0.01);
         let Some(time) = whole.outcome.time else { return Ok(()) };
         prop_assume!(time > 0.0);
-        let cut = Engagement { until: Some(time * share), ..engagement };
+        let cut = Engagement { until: Some(time * share), ..engagement.clone() };
         let first = solved(&cut);
         prop_assert_eq!((first.outcome.breaks, first.outcome.ended), (Breaks::Neither, Ended::Clock));
         // What is left to a rounding of all that was there counts as nothing left.
         let lasts = |side: Side| first.outcome.sides()[side].end > Some(1e-14 * engagement.sides[side].start);
         prop_assume!(Side::BOTH.into_iter().all(lasts));
-        let mut rest = engagement;
+        let mut rest = engagement.clone();
         for (side, end) in Side::BOTH.into_iter().zip(ends(&first)) {
             rest.sides[side].lost += first.outcome.sides()[side].losses.all;
             rest.sides[side].start = end;
@@ -406,10 +404,10 @@ proptest! {
         let Some(time) = whole.time else { return Ok(()) };
         prop_assume!(time > 0.0);
         for until in [time, time * 1.5] {
-            let clocked = solved(&Engagement { until: Some(until), ..engagement }).outcome;
+            let clocked = solved(&Engagement { until: Some(until), ..engagement.clone() }).outcome;
             prop_assert_eq!(&clocked, &whole, "a clock at {:e}", until);
         }
-        let before = solved(&Engagement { until: Some(time * 0.999_999), ..engagement }).outcome;
+        let before = solved(&Engagement { until: Some(time * 0.999_999), ..engagement.clone() }).outcome;
         prop_assert_eq!((before.breaks, before.ended, before.time), (Breaks::Neither, Ended::Clock, None));
     }
 
@@ -435,9 +433,7 @@ proptest! {
 
 /// The fight as a piece.
 fn piece(engagement: &Engagement) -> Piece {
-    let start = Both::of(|side| engagement.sides[side].start);
-    let fire = Both::of(|side| engagement.sides[side].fire);
-    Piece::new(0.0, start, fire, ahead(engagement))
+    plain_piece(engagement).expect("a fight of two fires alone")
 }
 
 /// Whether `side` can be brought to nothing in finite time by what the exponents say: next to nothing its losses go as
@@ -512,7 +508,7 @@ proptest! {
             engagement.sides[side].break_point = 1.0;
             engagement.sides[side].lost = 0.0;
         }
-        let Both { x, y } = engagement.sides;
+        let Both { x, y } = engagement.sides.clone();
         let tied = cost(&x, &y, 0.0) / (cost(&y, &x, 0.0) / y.fire.rate);
         prop_assume!(tied.is_finite() && tied > 0.0);
         engagement.sides.y.fire.rate = tied;

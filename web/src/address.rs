@@ -12,6 +12,10 @@ use web_sys::History;
 /// The least time between two writes, in milliseconds.
 pub(crate) const WRITE_APART: f64 = 300.0;
 
+/// How many refusals in a row are answered by another try without a change; the waits between them double. Browsers
+/// that throttle forget within half a minute; a sandbox never gives way.
+const MOST_REFUSALS: u32 = 8;
+
 /// The entries of the history that this page knows, and what is still to be written.
 pub(crate) struct Address {
     dom: Dom,
@@ -24,7 +28,10 @@ pub(crate) struct Address {
     /// Whether the browser's own history holds these entries.
     kept_by_browser: bool,
     unwritten: Option<String>,
+    /// When a write was last tried.
     written_at: f64,
+    /// How many writes were refused since the last that held.
+    refusals: u32,
 }
 
 /// What a step through the history needs.
@@ -54,6 +61,7 @@ impl Address {
             kept_by_browser: true,
             unwritten: None,
             written_at: f64::NEG_INFINITY,
+            refusals: 0,
         }
     }
 
@@ -62,8 +70,8 @@ impl Address {
         self.entries[self.at] = Some(text);
     }
 
-    /// A text that the user has just changed. Returns the milliseconds after which [`Address::write`] is due.
-    pub(crate) fn edited(&mut self, text: String) -> Option<i32> {
+    /// A text that the user has just changed.
+    pub(crate) fn edited(&mut self, text: String) {
         if !self.open {
             self.open = true;
             self.entries.truncate(self.at + 1);
@@ -71,17 +79,23 @@ impl Address {
             self.at += 1;
             if !self.framed && self.push(&text) {
                 self.unwritten = None;
-                return None;
+                return;
             }
         }
         self.entries[self.at] = Some(text.clone());
         self.unwritten = Some(text);
-        let wait = self.written_at + WRITE_APART - self.now();
-        if wait <= 0.0 {
+        if self.written_at + WRITE_APART <= self.now() {
             self.write();
-            return None;
         }
-        Some(wait.ceil() as i32)
+    }
+
+    /// The milliseconds after which [`Address::write`] is due; `None` where nothing waits, or trying is of no use.
+    pub(crate) fn due(&self) -> Option<i32> {
+        self.unwritten
+            .as_ref()
+            .filter(|_| self.refusals <= MOST_REFUSALS)?;
+        let apart = WRITE_APART * 2_f64.powi(self.refusals as i32);
+        Some((self.written_at + apart - self.now()).ceil().max(0.0) as i32)
     }
 
     /// A field was left or a button pressed: the next change begins a new entry.
@@ -90,10 +104,14 @@ impl Address {
         self.open = false;
     }
 
-    /// Writes what is still to be written.
+    /// Writes what is still to be written; what is refused waits on.
     pub(crate) fn write(&mut self) {
-        if let Some(text) = self.unwritten.take() {
-            self.replace(&text);
+        let Some(text) = self.unwritten.take() else { return };
+        if self.replace(&format!("#{text}")) {
+            self.refusals = 0;
+        } else {
+            self.refusals = self.refusals.saturating_add(1);
+            self.unwritten = Some(text);
         }
     }
 
@@ -111,7 +129,7 @@ impl Address {
             .strip_prefix('?')
             .filter(|text| text.split('&').any(|pair| pair == "v=1"))?;
         let path = location.pathname().unwrap_or_default();
-        self.replace_with(&format!("{path}#{text}"));
+        self.replace(&format!("{path}#{text}"));
         Some(text.to_owned())
     }
 
@@ -190,18 +208,14 @@ impl Address {
         pushed
     }
 
-    fn replace(&mut self, text: &str) {
-        self.replace_with(&format!("#{text}"));
-    }
-
-    fn replace_with(&mut self, address: &str) {
-        let replaced = history(&self.dom).is_some_and(|history| {
+    /// Whether the browser took it: one that throttles refuses now and takes it later.
+    fn replace(&mut self, address: &str) -> bool {
+        self.written_at = self.now();
+        history(&self.dom).is_some_and(|history| {
             history
                 .replace_state_with_url(&JsValue::from(self.at as f64), "", Some(address))
                 .is_ok()
-        });
-        self.kept_by_browser &= replaced;
-        self.written_at = self.now();
+        })
     }
 
     fn now(&self) -> f64 {

@@ -1,6 +1,7 @@
 //! The fields and the pairs. A field shows exactly what stands in the text, and an empty field is the key's absence.
 
 use crate::dom::{Dom, control_value, set};
+use crate::phases::is_phase_key;
 use aftercount_core::keys::{KEYS, Key};
 use aftercount_core::pairs::Pairs;
 use aftercount_core::problem::seen;
@@ -11,7 +12,7 @@ use web_sys::{Element, HtmlInputElement, HtmlSelectElement, HtmlTextAreaElement}
 pub(crate) fn changed_field(element: &Element) -> Option<(String, String)> {
     let key = element
         .get_attribute("name")
-        .filter(|name| names().any(|known| known == *name))?;
+        .filter(|name| names().any(|known| known == *name) || is_phase_key(name))?;
     Some((key, control_value(element)?))
 }
 
@@ -38,7 +39,7 @@ pub(crate) fn fill(dom: &Dom, pairs: &Pairs) {
 
 /// Shows a choice. A word that is not among the choices is shown as it stands, marked as not one of ours: a choice that
 /// fell back to the first would contradict the text.
-fn choose(dom: &Dom, select: &HtmlSelectElement, text: Option<&str>, default: &str) {
+pub(crate) fn choose(dom: &Dom, select: &HtmlSelectElement, text: Option<&str>, default: &str) {
     if let Ok(Some(foreign)) = select.query_selector("option[data-foreign]") {
         foreign.remove();
     }

@@ -6,6 +6,8 @@ use aftercount_core::laws::RateMeaning;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::sides::{Both, Side};
 
+const KEPT: &str = "Kept from another law of fire: the number is the same, its unit is not.";
+
 /// For each side, what its rate was measured in when it was written.
 pub(crate) struct KeptRates {
     dom: Dom,
@@ -42,8 +44,10 @@ impl KeptRates {
         let (now, then) = (meaning(pairs, side), self.written_as[side]);
         let written = pairs.get(&format!("{}.rate", side.letter())).is_some();
         let changed = written && now.is_some() && then.is_some() && now != then;
-        self.dom
-            .set_shown(&format!("{}.rate.kept", side.letter()), changed);
+        let id = format!("{}.rate.kept", side.letter());
+        // The field's description names this element, and would be read out with its words also while it is hidden.
+        self.dom.set_text(&id, if changed { KEPT } else { "" });
+        self.dom.set_shown(&id, changed);
     }
 }
 

@@ -11,13 +11,18 @@ pub mod draw;
 mod form;
 mod kept_rates;
 mod law_fields;
+mod list_text;
 mod listen;
+mod lists;
 mod live;
 mod outcome;
 mod page;
+mod phases;
 mod plates;
 mod problems;
 mod reading;
+mod stopwatch;
+mod timeline;
 mod timer;
 mod working;
 

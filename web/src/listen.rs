@@ -1,7 +1,9 @@
 //! One delegated listener an event kind, all of which end with the page's signal.
 
-use crate::dom::Dom;
+use crate::dom::{Dom, control_value};
+use crate::lists::{Act, Cell};
 use crate::page::Page;
+use crate::phases::Ask;
 use crate::reading::Pointer;
 use std::cell::RefCell;
 use std::rc::Rc;
@@ -104,17 +106,33 @@ fn element(event: &Event) -> Option<Element> {
 }
 
 fn input(page: &mut Page, event: &Event) -> After {
-    if let Some((key, text)) = element(event).and_then(|element| crate::form::changed_field(&element)) {
+    let Some(target) = element(event) else {
+        return After::Nothing;
+    };
+    if let (Some(cell), true, Some(text)) = (
+        Cell::of(&target),
+        target.has_attribute("data-part"),
+        control_value(&target),
+    ) {
+        page.cell_typed(&cell, &text);
+    } else if let (Some(old), Some(change)) = (target.get_attribute("data-change"), control_value(&target)) {
+        return page.exchange_change(&old, &change);
+    } else if let Some((key, text)) = crate::form::changed_field(&target) {
         page.typed(&key, &text);
     }
     After::Nothing
 }
 
 fn left(page: &mut Page, event: &Event) -> After {
-    if element(event).is_some_and(|element| element.has_attribute("name")) {
+    if element(event).is_some_and(|element| is_field(&element)) {
         page.field_left();
     }
     After::Nothing
+}
+
+/// Whether an element holds a part of the text: a field, or a cell of a table.
+fn is_field(element: &Element) -> bool {
+    element.has_attribute("name") || element.has_attribute("data-part")
 }
 
 /// A box with a text to copy offers itself whole.
@@ -145,7 +163,22 @@ fn click(page: &mut Page, event: &Event) -> After {
         page.take_out(&key);
         return After::Nothing;
     }
+    if let Some(key) = button.get_attribute("data-keep-first") {
+        page.keep_first(&key);
+        return After::GoTo(key);
+    }
+    if let (Some(cell), Some(act)) = (Cell::of(&button), act_of(&button)) {
+        return page.act_on_list(&cell, act, None);
+    }
+    if let Some(ask) = Ask::of(&button) {
+        return page.ask_of_phases(&ask);
+    }
+    // Such a button keeps the focus when its own press leaves it nothing more to do.
+    if button.get_attribute("aria-disabled").as_deref() == Some("true") {
+        return After::Nothing;
+    }
     match button.id().as_str() {
+        "continue" => page.continue_from_here(),
         "blank" => {
             page.start_from_blank();
             After::GoTo("x.name".into())
@@ -169,7 +202,10 @@ fn key(page: &mut Page, event: &Event) -> After {
         if !event.ctrl_key() && !event.alt_key() && !event.meta_key() && page.reading_key(&event.key()) {
             event.prevent_default();
         }
-    } else if event.key() == "Enter" && !event.is_composing() && element.has_attribute("name") {
+    } else if let (true, Some(cell), Some(act)) = (event.alt_key(), Cell::of(&element), arrow(&event.key())) {
+        event.prevent_default();
+        return page.act_on_list(&cell, act, Some(act));
+    } else if event.key() == "Enter" && !event.is_composing() && is_field(&element) {
         // A field of one line ends here; a line break in the note would be a problem of the text.
         if !element.tag_name().eq_ignore_ascii_case("select") {
             event.prevent_default();
@@ -177,6 +213,19 @@ fn key(page: &mut Page, event: &Event) -> After {
         page.field_left();
     }
     After::Nothing
+}
+
+fn act_of(button: &Element) -> Option<Act> {
+    Act::of_word(&button.get_attribute("data-act")?)
+}
+
+/// With Alt, the arrows up and down move the row that is being filled.
+fn arrow(key: &str) -> Option<Act> {
+    match key {
+        "ArrowUp" => Some(Act::Up),
+        "ArrowDown" => Some(Act::Down),
+        _ => None,
+    }
 }
 
 fn submit(_page: &mut Page, event: &Event) -> After {

@@ -4,12 +4,14 @@ use crate::dom::{Dom, append, set};
 use crate::form;
 use crate::law_fields::{self, law_of};
 use crate::working;
+use aftercount_core::continued::continued;
 use aftercount_core::fight::{Effort, Fight, fight};
 use aftercount_core::outcome::Breaks;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::picture::{self, Picture, Role, Table};
 use aftercount_core::sides::{Both, Side};
 use aftercount_core::statement::{Statement, TimeUnit, Values};
+use aftercount_core::words::decided::decided;
 use aftercount_core::words::figures::{Figures, figures};
 use aftercount_core::words::{meaning, reading, sentence};
 use web_sys::Element;
@@ -49,6 +51,24 @@ impl Good {
             .map(|trajectory| trajectory.strengths_at(t))
     }
 
+    /// Whether there is an engagement that goes on from a time: after the start, and before the end.
+    pub(crate) fn goes_on_from(&self, t: f64) -> bool {
+        let trajectory = self.fight.trajectory.as_ref();
+        trajectory.is_some_and(|trajectory| t > 0.0 && trajectory.ends().is_none_or(|end| t < end))
+    }
+
+    /// The text of the engagement that goes on from a time, where `pairs` is that of this one.
+    pub(crate) fn continued(&self, pairs: &Pairs, t: f64) -> Option<Pairs> {
+        let trajectory = self.fight.trajectory.as_ref()?;
+        self.goes_on_from(t)
+            .then(|| continued(pairs, &self.statement, trajectory, t))
+    }
+
+    /// What decided it, where a computation shows it. Takes many fights.
+    pub(crate) fn decided(&self) -> Option<String> {
+        decided(&self.statement, &self.fight.outcome)
+    }
+
     /// What the reading line says at a time.
     pub(crate) fn reading(&self, t: f64) -> String {
         self.fight
@@ -58,6 +78,9 @@ impl Good {
             .unwrap_or_default()
     }
 }
+
+/// The keys behind "more" that have a unit beside them.
+pub(crate) const MORE: [&str; 5] = ["wastage", "support.area", "support.aimed", "reach", "reach.shape"];
 
 /// Shows everything that is text or number.
 pub(crate) fn show(dom: &Dom, good: &Good) {
@@ -108,6 +131,7 @@ pub(crate) fn clear(dom: &Dom) {
         "strength-table",
         "orbit-table",
         "reading-words",
+        "decided",
     ] {
         dom.set_text(id, "");
     }
@@ -167,8 +191,8 @@ pub(crate) fn show_names(dom: &Dom, pairs: &Pairs) {
             .map(|law| meaning::rate_unit(law, name, enemy, unit))
             .unwrap_or_default();
         dom.set_text(&format!("{letter}.rate.unit"), &rate_unit);
-        for key in law_fields::names() {
-            let unit = meaning::parameter_unit(key, name, enemy);
+        for key in law_fields::names().chain(MORE) {
+            let unit = meaning::parameter_unit(key, name, enemy, unit);
             dom.set_text(&format!("{letter}.{key}.unit"), &unit);
         }
         for key in ["start", "lost"] {
@@ -178,7 +202,22 @@ pub(crate) fn show_names(dom: &Dom, pairs: &Pairs) {
             legend.set_text_content(Some(name));
         }
     }
+    for side in Side::BOTH {
+        for (list, part, words) in [
+            ("join", "size", counted.clone()),
+            ("join", "time", unit.symbol().to_owned()),
+            ("flow", "rate", format!("{counted} per\u{a0}{}", unit.symbol())),
+            ("flow", "from", unit.symbol().to_owned()),
+            ("flow", "to", unit.symbol().to_owned()),
+        ] {
+            dom.set_text(&format!("{}.{list}.{part}.unit", side.letter()), &words);
+        }
+    }
     dom.set_text("until.unit", unit.symbol());
+    dom.set_text(
+        "range.closing.unit",
+        &format!("length per\u{a0}{}", unit.symbol()),
+    );
 }
 
 fn show_figures(dom: &Dom, figures: &Figures) {

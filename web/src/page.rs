@@ -6,11 +6,15 @@ use crate::form;
 use crate::kept_rates::KeptRates;
 use crate::law_fields::LawFields;
 use crate::listen::After;
+use crate::lists::{self, Act, Cell};
 use crate::live::{Live, QUIET};
 use crate::outcome::{self, Good};
+use crate::phases::{Ask, Phases};
 use crate::plates::Plates;
 use crate::problems::{PATIENCE, Problems};
 use crate::reading::Pointer;
+use crate::stopwatch::{DRAW, Stopwatch, WORK};
+use crate::timeline;
 use crate::timer::{NextFrame, Timer};
 use crate::working;
 use aftercount_core::demo::DEMO;
@@ -18,6 +22,7 @@ use aftercount_core::mark::text_mark;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::problem::{Problem, seen};
 use aftercount_core::statement::Statement;
+use aftercount_core::words::format::three;
 use std::cell::RefCell;
 use std::rc::Rc;
 use web_sys::{AbortSignal, HtmlDetailsElement};
@@ -39,16 +44,21 @@ pub(crate) struct Page {
     problems: Problems,
     kept_rates: KeptRates,
     law_fields: LawFields,
+    phases: Phases,
     address: Address,
     live: Live,
     plates: Plates,
     show_problems: Timer,
     write: Timer,
     speak: Timer,
+    decide: Timer,
     frame: NextFrame,
     /// Whether the working was opened for the printer alone.
     opened_for_print: bool,
 }
+
+/// How long the page is at rest before it works out what decided an engagement, in milliseconds: that takes many fights.
+const SETTLED: i32 = 250;
 
 /// Why the text changed.
 #[derive(Clone, Copy, PartialEq, Eq)]
@@ -75,12 +85,14 @@ impl Page {
                 problems: Problems::new(dom),
                 kept_rates: KeptRates::new(dom),
                 law_fields: LawFields::new(dom),
+                phases: Phases::new(dom),
                 address: Address::new(dom),
                 live: Live::new(dom),
                 plates: Plates::new(dom),
                 show_problems: Timer::new(&dom.window, page, Page::show_waiting),
                 write: Timer::new(&dom.window, page, Page::write_address),
                 speak: Timer::new(&dom.window, page, Page::speak_now),
+                decide: Timer::new(&dom.window, page, Page::decide_now),
                 frame: NextFrame::new(&dom.window, page, Page::draw_now),
                 opened_for_print: false,
             })
@@ -114,14 +126,90 @@ impl Page {
         self.demo = false;
         self.pairs.set(key, text);
         self.kept_rates.typed(&self.pairs, key);
+        self.phases.typed(key, text);
         self.changed(Cause::Typed);
+    }
+
+    /// A cell of a table of reserves or flows was typed in.
+    pub(crate) fn cell_typed(&mut self, cell: &Cell, text: &str) {
+        if let Some(list) = cell.rewritten(&self.pairs, text) {
+            self.typed(&cell.key, &list);
+        }
+    }
+
+    /// A button of such a table, or the arrows in a row, which then stay in it.
+    pub(crate) fn act_on_list(&mut self, cell: &Cell, act: Act, stays: Option<Act>) -> After {
+        let Some((list, next)) = cell.acted(&self.pairs, act) else {
+            return After::Nothing;
+        };
+        self.change_at_once(|pairs| pairs.set(&cell.key, &list));
+        let row = match stays {
+            Some(Act::Up) => cell.row.checked_sub(1),
+            Some(Act::Down) => Some(cell.row + 1),
+            _ => None,
+        };
+        After::GoTo(row.and_then(|row| cell.id_in(row)).unwrap_or(next))
+    }
+
+    /// A button of the phases. A new phase begins at the moment that is read.
+    pub(crate) fn ask_of_phases(&mut self, ask: &Ask) -> After {
+        let now = self.good.as_ref().map_or(1.0, |good| self.plates.time(good));
+        let now = if now > 0.0 { three(now) } else { "1".into() };
+        let mut pairs = self.pairs.clone();
+        let next = self.phases.ask(&mut pairs, ask, &now);
+        self.change_at_once(|old| *old = pairs);
+        next.map_or(After::Nothing, After::GoTo)
+    }
+
+    /// Another key was chosen for a change of a phase.
+    pub(crate) fn exchange_change(&mut self, old: &str, change: &str) -> After {
+        let mut pairs = self.pairs.clone();
+        let next = self.phases.exchange(&mut pairs, old, change);
+        self.change_at_once(|old| *old = pairs);
+        next.map_or(After::Nothing, After::GoTo)
+    }
+
+    /// Makes the engagement that goes on from the moment that is read.
+    pub(crate) fn continue_from_here(&mut self) -> After {
+        let good = self.good.as_ref().filter(|_| self.current);
+        let rest = good.and_then(|good| good.continued(&self.pairs, self.plates.time(good)));
+        if let Some(rest) = rest {
+            self.plates.forget_reading();
+            self.change_at_once(|pairs| *pairs = rest);
+            form::fill(&self.dom, &self.pairs);
+            self.kept_rates.start(&self.pairs);
+            self.open_what_holds_values();
+        }
+        After::Nothing
+    }
+
+    /// A change that is complete as it is made: one entry of the history.
+    fn change_at_once(&mut self, change: impl FnOnce(&mut Pairs)) {
+        self.address.close();
+        self.demo = false;
+        change(&mut self.pairs);
+        self.changed(Cause::Whole);
+        self.close_entry();
+    }
+
+    fn close_entry(&mut self) {
+        self.address.close();
+        self.write_later();
+    }
+
+    /// Waits until the address may be written, where it is behind.
+    fn write_later(&mut self) {
+        self.write.stop();
+        if let Some(wait) = self.address.due() {
+            self.write.start(wait);
+        }
     }
 
     /// A field was left: its entry in the history is complete, and its problem no longer waits.
     pub(crate) fn field_left(&mut self) {
-        self.write.stop();
-        self.address.close();
+        self.close_entry();
         self.law_fields.show_again(&self.pairs);
+        self.phases.left(&self.pairs);
         if !self.waiting.is_empty() {
             self.show_waiting();
         }
@@ -129,11 +217,12 @@ impl Page {
 
     /// Takes a key out of the text that no field can put right.
     pub(crate) fn take_out(&mut self, key: &str) {
-        self.address.close();
-        self.demo = false;
-        self.pairs.set(key, "");
-        self.changed(Cause::Whole);
-        self.address.close();
+        self.change_at_once(|pairs| pairs.set(key, ""));
+    }
+
+    /// Takes out of the text all that stands of a key beside its first text, which is what its field shows.
+    pub(crate) fn keep_first(&mut self, key: &str) {
+        self.change_at_once(|pairs| pairs.keep_first(key));
     }
 
     /// Clears everything.
@@ -150,15 +239,19 @@ impl Page {
         form::fill(&self.dom, &self.pairs);
         self.kept_rates.start(&self.pairs);
         self.changed(Cause::Whole);
-        self.address.close();
+        self.close_entry();
     }
 
     /// Undo or Redo.
     pub(crate) fn step(&mut self, forward: bool) -> After {
         match self.address.step(forward) {
-            Step::Show(text) => self.show(Some(text).filter(|text| !text.is_empty())),
+            Step::Show(text) => {
+                self.show(Some(text).filter(|text| !text.is_empty()));
+                self.speak.start(QUIET);
+            }
             Step::Browser | Step::Nowhere => {}
         }
+        self.write_later();
         After::Nothing
     }
 
@@ -173,13 +266,14 @@ impl Page {
             self.show_steps();
         } else {
             self.show(text);
+            self.speak.start(QUIET);
         }
     }
 
     /// Writes the address where a write waits.
     pub(crate) fn write_address(&mut self) {
-        self.write.stop();
         self.address.write();
+        self.write_later();
     }
 
     /// A key on the reading line; whether it was one of its keys.
@@ -235,9 +329,9 @@ impl Page {
     /// Shows a whole text in place of the one before; the demo where there is none.
     fn show(&mut self, text: Option<String>) {
         self.demo = text.is_none();
-        self.filling = false;
         self.good = None;
         self.pairs = Pairs::parse(text.as_deref().unwrap_or(DEMO));
+        self.filling = is_blank(&self.pairs);
         form::fill(&self.dom, &self.pairs);
         self.open_what_holds_values();
         self.kept_rates.start(&self.pairs);
@@ -245,17 +339,25 @@ impl Page {
     }
 
     fn changed(&mut self, cause: Cause) {
-        if let Some(wait) = self.address.edited(self.pairs.link()) {
-            self.write.start(wait);
-        }
+        let link = self.pairs.link();
+        // Before all that may stop the program: a fresh start goes on from here.
+        crate::copy::keep(&self.dom, &link);
+        self.address.edited(link);
+        self.write_later();
         self.work_out(cause);
         self.speak.start(QUIET);
     }
 
     /// From the pairs to everything that follows from them.
     fn work_out(&mut self, cause: Cause) {
+        let _watch = Stopwatch::start(&self.dom, WORK);
         self.show_steps();
         self.show_text();
+        lists::show(&self.dom, &self.pairs);
+        self.phases.show(&self.pairs);
+        self.decide.stop();
+        self.dom.set_text("decided", "");
+        self.dom.set_shown("decided", false);
         self.dom.mark_root("data-settled", None);
         self.show_problems.stop();
         self.waiting.clear();
@@ -272,6 +374,7 @@ impl Page {
         self.filling = false;
         let good = Good::new(statement);
         outcome::show(&self.dom, &good);
+        timeline::show(&self.dom, &good);
         working::show(&self.dom, &good, &text_mark(&self.pairs));
         self.good = Some(good);
         self.current = true;
@@ -287,6 +390,7 @@ impl Page {
         self.waiting = problems;
         if self.good.is_none() {
             outcome::clear(&self.dom);
+            timeline::clear(&self.dom);
             working::clear(&self.dom);
             self.dom.mark_root("data-state", Some("empty"));
         }
@@ -352,18 +456,23 @@ impl Page {
     fn show_steps(&self) {
         let (back, on) = self.address.can_step();
         for (id, can) in [("undo", back), ("redo", on)] {
-            if let Some(button) = self.dom.typed::<web_sys::HtmlButtonElement>(id) {
-                button.set_disabled(!can);
-            }
+            // A disabled button would throw the focus away that its own press gave it.
+            self.dom
+                .set_attribute(id, "aria-disabled", if can { "false" } else { "true" });
         }
     }
 
     /// A value behind a closed panel would be one that nobody sees.
     fn open_what_holds_values(&self) {
+        let stands = |key: &str| self.pairs.get(key).is_some();
         for letter in ["x", "y"] {
-            if self.pairs.get(&format!("{letter}.lost")).is_some() {
+            let more = outcome::MORE.into_iter().chain(["lost", "flow"]);
+            if more.map(|key| format!("{letter}.{key}")).any(|key| stands(&key)) {
                 self.dom.set_attribute(&format!("{letter}.more"), "open", "");
             }
+        }
+        if ["range", "range.closing", "range.least"].into_iter().any(stands) {
+            self.dom.set_attribute("range.more", "open", "");
         }
     }
 
@@ -379,16 +488,52 @@ impl Page {
         }
     }
 
+    /// Says what decided the engagement, once nobody is waiting for the pictures.
+    fn decide_now(&mut self) {
+        let decided = self
+            .good
+            .as_ref()
+            .filter(|_| self.current)
+            .and_then(Good::decided);
+        self.dom
+            .set_text("decided", decided.as_deref().unwrap_or_default());
+        self.dom.set_shown("decided", decided.is_some());
+    }
+
     /// Draws both pictures, and says that they match the text where they do.
     fn draw_now(&mut self) {
         self.frame.came();
         let Some(good) = &self.good else { return };
+        let _watch = Stopwatch::start(&self.dom, DRAW);
         if let Err(error) = self.plates.draw(good) {
             web_sys::console::error_1(&error.into());
             return;
         }
         if self.current {
             self.dom.mark_root("data-settled", Some(&text_mark(&self.pairs)));
+            self.decide.start(SETTLED);
+        }
+    }
+}
+
+/// Whether a text is that of a blank form, which "Start from blank" leaves: only keys that say how it is shown.
+fn is_blank(pairs: &Pairs) -> bool {
+    let mut keys = pairs.iter().map(|(key, _)| key).peekable();
+    keys.peek().is_some() && keys.all(|key| matches!(key, "v" | "view" | "paper"))
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn a_form_is_blank_until_it_says_something_of_an_engagement() {
+        for blank in ["v=1", "view=frame&paper=dark&v=1"] {
+            assert!(is_blank(&Pairs::parse(blank)), "{blank}");
+        }
+        let longer_than_is_taken_apart = "x".repeat(300_000);
+        for other in ["x.start=6&v=1", "bare&v=1", "", &longer_than_is_taken_apart] {
+            assert!(!is_blank(&Pairs::parse(other)));
         }
     }
 }

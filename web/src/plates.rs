@@ -6,8 +6,9 @@ use crate::draw::{self, Ink, Layout};
 use crate::outcome::Good;
 use crate::reading::{Pointer, Reading};
 use aftercount_core::picture::Picture;
+use aftercount_core::words::reading;
 use std::fmt::Debug;
-use web_sys::HtmlElement;
+use web_sys::{HtmlButtonElement, HtmlElement};
 
 /// The pictures as they were drawn last.
 pub(crate) struct Plates {
@@ -68,6 +69,16 @@ impl Plates {
         self.reading.key(good, key)
     }
 
+    /// The moment that is read.
+    pub(crate) fn time(&self, good: &Good) -> f64 {
+        self.reading.time(good)
+    }
+
+    /// Forgets the moment that was chosen.
+    pub(crate) fn forget_reading(&mut self) {
+        self.reading.forget();
+    }
+
     /// The pointer is over a picture; whether the reading moved.
     pub(crate) fn pointed(&mut self, good: &Good, pointer: &Pointer) -> bool {
         match (pointer.on_strength, self.strength, self.orbit) {
@@ -82,6 +93,11 @@ impl Plates {
         let t = self.reading.time(good);
         let words = good.reading(t);
         self.dom.set_text("reading-words", &words);
+        self.dom
+            .set_text("continue", &reading::continue_from(&good.statement, t));
+        if let Some(button) = self.dom.typed::<HtmlButtonElement>("continue") {
+            button.set_disabled(!good.goes_on_from(t));
+        }
         self.dom.set_attribute("reading", "aria-valuetext", &words);
         self.dom.set_attribute("reading", "aria-valuenow", &t.to_string());
         self.dom

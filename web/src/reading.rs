@@ -39,6 +39,11 @@ impl Reading {
         self.chosen.unwrap_or_else(half).clamp(0.0, last)
     }
 
+    /// Forgets the chosen moment: another engagement has another course.
+    pub(crate) fn forget(&mut self) {
+        self.chosen = None;
+    }
+
     /// After a change of the engagement the chosen moment stays, where the engagement still has it.
     pub(crate) fn keep_within(&mut self, good: &Good) {
         if self.chosen.is_some() {

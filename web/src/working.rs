@@ -37,9 +37,11 @@ fn show_line(dom: &Dom, list: &Element, line: &WorkingLine) {
     ) else {
         return;
     };
-    set(&item, "id", &id(line.name));
-    // A figure that links here moves the focus with it.
-    set(&item, "tabindex", "-1");
+    if !line.name.is_empty() {
+        set(&item, "id", &id(line.name));
+        // A figure that links here moves the focus with it.
+        set(&item, "tabindex", "-1");
+    }
     append(&item, &words);
     if let Some(formula) = line.math.as_ref().and_then(|math| formula(dom, math)) {
         append(&item, &formula);

@@ -7,16 +7,13 @@
 use super::{Power, growth};
 use crate::double::Double;
 use crate::orbit_point::OrbitPoint;
+use crate::piece::Piece;
 use crate::quadrature::{Integral, integrate};
 use crate::sides::{Both, Side};
-use crate::state::Term;
-use crate::trajectory::Piece;
+use crate::state::{LEAST, Term};
 
 /// Steps at most from the integrator's strengths to the root; two or three where those are near it, as they mostly are.
 const MOST_POLISHING: usize = 60;
-
-/// The least strength that double-double arithmetic still divides by.
-const LEAST: f64 = 1e-290;
 
 /// So many times as far in the logarithm the end of a stretch no longer counts: e^−600.
 const FAR: f64 = 600.0;
@@ -37,25 +34,25 @@ pub struct AlongOrbit<'a> {
 struct Stretch<'a> {
     piece: &'a Piece,
     along: Side,
+    /// How far the side followed falls, in the logarithm.
+    span: f64,
     /// Strengths where the stretch ends.
     end: Both<f64>,
     /// Whether the other side is measured from its start: more of a side that more hurts takes less to bring down, and it
     /// is the start, then, that must not cancel.
     from_start: bool,
-    /// S/T of the side followed, and of the other.
-    own: [Summand; 2],
-    other: [Summand; 2],
-    /// The rate of the side followed over that of the other.
-    ratio: f64,
+    /// The costs of the side followed, and of the other, as sums over their strengths.
+    own: Vec<Summand>,
+    other: Vec<Summand>,
     /// The exponent of the other side's fire on the side followed, and the strength it is measured from raised to that.
     shooters: Power,
     raised: f64,
 }
 
-/// A term of S/T with the powers that do not change along the stretch.
+/// A term of a cost with the powers that do not change along the stretch.
 #[derive(Clone, Copy)]
 struct Summand {
-    coefficient: f64,
+    weight: f64,
     order: f64,
     /// The strengths at the start and at the end raised to the order.
     start: f64,
@@ -73,17 +70,52 @@ impl AlongOrbit<'_> {
         if !self.piece.equation.is_reached(point.left) {
             return exact(f64::INFINITY);
         }
+        if point.left.x == 0.0 && point.left.y == 0.0 {
+            return exact(self.time_to_parity(Side::Y));
+        }
+        let stretch = self.stretch(point);
+        let (rate, besides) = self.losses(stretch.along);
+        self.along(&stretch, |_, fallen, above| {
+            1.0 / (rate * stretch.shooters_at(fallen, above) + besides)
+        })
+    }
+
+    /// A rate of loss, which depends on the strengths alone, summed over time up to `point`, which is reached with at
+    /// least one side left.
+    pub fn summed(&self, point: &OrbitPoint, rate_of: impl Fn(Both<f64>) -> f64) -> Integral {
+        let stretch = self.stretch(point);
+        let (rate, besides) = self.losses(stretch.along);
+        let shooters = self.piece.fire[stretch.along.enemy()].shooters();
+        self.along(&stretch, |own, fallen, above| {
+            let other = stretch.other_at(fallen, above);
+            let mut strengths = Both { x: own, y: own };
+            strengths[stretch.along.enemy()] = other;
+            rate_of(strengths) / (rate * shooters.at(other) + besides)
+        })
+    }
+
+    fn stretch(&self, point: &OrbitPoint) -> Stretch<'_> {
         let span = Both::of(|side| libm::log1p(point.fallen[side] / point.left[side]));
         let along = self.to_follow(span);
-        let other = along.enemy();
-        let stretch = Stretch::new(self.piece, along, point.left);
-        if point.left[along] > 0.0 {
-            return self.by_logarithm(&stretch, span[along]);
+        Stretch {
+            span: span[along],
+            ..Stretch::new(self.piece, along, point.left)
         }
-        if point.left[other] > 0.0 {
-            self.time_to_nothing(&stretch)
+    }
+
+    /// The rate of the fire on `side`, 0 where it has no effect, and what it loses besides by its factor as targets.
+    fn losses(&self, side: Side) -> (f64, f64) {
+        (self.piece.equation.rate[side.enemy()], self.piece.besides[side])
+    }
+
+    /// ∫ of `inner` dn/T(n) along a stretch; it is told the strength of the side followed, how far that has fallen from
+    /// its start and how far it is above its end, in the logarithm.
+    fn along(&self, stretch: &Stretch, inner: impl Fn(f64, f64, f64) -> f64) -> Integral {
+        let along = stretch.along;
+        if stretch.end[along] > 0.0 {
+            self.by_logarithm(stretch, stretch.span, inner)
         } else {
-            exact(self.time_to_parity(along))
+            self.to_nothing(stretch, inner)
         }
     }
 
@@ -104,9 +136,7 @@ impl AlongOrbit<'_> {
     fn time_to_parity(&self, along: Side) -> f64 {
         let other = along.enemy();
         let order = Both::of(|side| f64::from(self.piece.equation.terms[side][0].order));
-        let scale = Both::of(|side| {
-            self.piece.equation.rate[side] * self.piece.equation.terms[side][0].coefficient / order[side]
-        });
+        let scale = Both::of(|side| f64::from(self.piece.equation.terms[side][0].weight) / order[side]);
         let fire = &self.piece.fire[other];
         let per_target = fire.per_target()[0];
         // other = (scale ratio · along^order)^(1/order of the other), taken to the exponent of its fire.
@@ -119,12 +149,10 @@ impl AlongOrbit<'_> {
         integrand.integral(0.0, self.piece.start[along])
     }
 
-    /// In the logarithm of the side followed: dt = n·dw/(b·S·T(n)), with w = ln(n/end).
-    fn by_logarithm(&self, stretch: &Stretch, span: f64) -> Integral {
-        let fire = &self.piece.fire[stretch.along.enemy()];
-        let per_target = fire.per_target();
+    /// In the logarithm of the side followed: dn/T(n) = n·dw/T(n), with w = ln(n/end).
+    fn by_logarithm(&self, stretch: &Stretch, span: f64, inner: impl Fn(f64, f64, f64) -> f64) -> Integral {
         let end = stretch.end[stretch.along];
-        let powers = per_target.map(|power| {
+        let powers = self.piece.per_target[stretch.along].map(|power| {
             let exponent = power.exponent + 1.0;
             (Power { exponent, ..power }.at(end), exponent)
         });
@@ -134,14 +162,13 @@ impl AlongOrbit<'_> {
                 .filter(|(scale, _)| *scale > 0.0)
                 .map(|(scale, order)| scale * raised_by(*order, above))
                 .sum();
-            volume / (fire.rate * stretch.shooters_at(fallen, above))
+            volume * inner(end * libm::exp(above), fallen, above)
         })
     }
 
     /// Down to nothing: in z = n^(1−q), in which the target's factor n^q drops out.
-    fn time_to_nothing(&self, stretch: &Stretch) -> Integral {
-        let fire = &self.piece.fire[stretch.along.enemy()];
-        let power = fire.per_target()[0];
+    fn to_nothing(&self, stretch: &Stretch, inner: impl Fn(f64, f64, f64) -> f64) -> Integral {
+        let power = self.piece.per_target[stretch.along][0];
         let order = power.exponent + 1.0;
         let start = self.piece.start[stretch.along];
         let length = libm::pow(start, order);
@@ -151,9 +178,10 @@ impl AlongOrbit<'_> {
             } else {
                 libm::log(length / above)
             };
-            1.0 / stretch.shooters_at(fallen / order, f64::INFINITY)
+            let fallen = fallen / order;
+            inner(start * libm::exp(-fallen), fallen, f64::INFINITY)
         });
-        let scale = power.coefficient / (order * fire.rate);
+        let scale = power.coefficient / order;
         integral.value *= scale;
         integral.error *= scale;
         integral
@@ -169,7 +197,7 @@ impl AlongOrbit<'_> {
         let part = Both::of(|side: Side| near[side] / piece.start[side]);
         let along = if part.x < part.y { Side::X } else { Side::Y };
         let (start, enemy) = (piece.start[along], along.enemy());
-        let share = |left: Both<f64>| piece.fire[enemy].share_per_time(left[enemy], left[along]);
+        let share = |left: Both<f64>| piece.share_per_time(along, left);
         let at = |span: f64| piece.point_with(along, left_after(start, span));
         // The end of the orbit, or as near to it as a double can be.
         let nothing = Double::from(0.0);
@@ -234,34 +262,38 @@ impl Stretch<'_> {
         let other = along.enemy();
         let equation = &piece.equation;
         let summands = |side: Side| {
-            equation.terms[side].map(|term| {
-                let order = f64::from(term.order);
-                let raised = |strength: f64| {
-                    Power {
-                        coefficient: 1.0,
-                        exponent: order,
+            equation
+                .active(side)
+                .iter()
+                .map(|term| {
+                    let order = f64::from(term.order);
+                    let raised = |strength: f64| {
+                        Power {
+                            coefficient: 1.0,
+                            exponent: order,
+                        }
+                        .at(strength)
+                    };
+                    Summand {
+                        weight: term.weight.into(),
+                        order,
+                        start: raised(piece.start[side]),
+                        end: raised(end[side]),
                     }
-                    .at(strength)
-                };
-                Summand {
-                    coefficient: term.coefficient,
-                    order,
-                    start: raised(piece.start[side]),
-                    end: raised(end[side]),
-                }
-            })
+                })
+                .collect::<Vec<Summand>>()
         };
         let (own, others) = (summands(along), summands(other));
-        let from_start = others[0].order < 0.0;
+        let from_start = others.first().is_some_and(|term| term.order < 0.0);
         let shooters = piece.fire[other].shooters();
         Stretch {
             piece,
             along,
+            span: 0.0,
             end,
             from_start,
             own,
             other: others,
-            ratio: equation.rate[along] / equation.rate[other],
             shooters,
             raised: shooters.at(if from_start {
                 piece.start[other]
@@ -274,27 +306,41 @@ impl Stretch<'_> {
     /// The factor of the other side's fire where the side followed has fallen by e^`fallen` from its start, and stands
     /// `above` its end in the same measure; infinitely far where it ends with nothing.
     fn shooters_at(&self, fallen: f64, above: f64) -> f64 {
-        let own = self.own.iter().filter(|term| term.coefficient > 0.0);
-        let cost: f64 = own
-            .map(|term| term.coefficient * self.integral(term, fallen, above))
-            .sum();
-        let area = cost * self.ratio;
-        let [first, second] = &self.other;
-        if second.coefficient == 0.0 {
-            self.of_single(first, area)
-        } else if first.order == 2.0 && second.order == 1.0 {
-            let (c, d, end) = (
-                first.coefficient,
-                second.coefficient,
-                self.end[self.along.enemy()],
-            );
-            // c·(n² − end²)/2 + d·(n − end) = area, for n − end: no difference in it.
-            let slope = c * end + d;
-            self.shooters
-                .at(end + 2.0 * area / (slope + libm::sqrt(slope * slope + 2.0 * c * area)))
-        } else {
-            self.shooters.at(self.before(area))
+        match &self.other[..] {
+            // A side that costs nothing stays as it is.
+            [] => self.raised,
+            [single] => self.of_single(single, self.area(fallen, above)),
+            _ => self.shooters.at(self.other_at(fallen, above)),
         }
+    }
+
+    /// What the other side has there.
+    fn other_at(&self, fallen: f64, above: f64) -> f64 {
+        let other = self.along.enemy();
+        let terms = self.piece.equation.active(other);
+        let end = self.end[other];
+        match (terms, &self.other[..]) {
+            ([], _) => end,
+            ([single], _) if self.from_start => {
+                after(single, self.piece.start[other], -self.area(fallen, above))
+            }
+            ([single], _) => after(single, end, self.area(fallen, above)),
+            (_, [first, second]) if first.order == 2.0 && second.order == 1.0 => {
+                let (c, d, area) = (first.weight, second.weight, self.area(fallen, above));
+                // c·(n² − end²)/2 + d·(n − end) = area, for n − end: no difference in it.
+                let slope = c * end + d;
+                end + 2.0 * area / (slope + libm::sqrt(slope * slope + 2.0 * c * area))
+            }
+            _ => self.before(self.area(fallen, above)),
+        }
+    }
+
+    /// What the side followed costs from there to its end, or from its start to there.
+    fn area(&self, fallen: f64, above: f64) -> f64 {
+        self.own
+            .iter()
+            .map(|term| term.weight * self.integral(term, fallen, above))
+            .sum()
     }
 
     /// ∫ n^(k−1) of the side followed between a place on the stretch and its end, or its start.
@@ -315,9 +361,9 @@ impl Stretch<'_> {
     fn of_single(&self, term: &Summand, area: f64) -> f64 {
         let (order, exponent) = (term.order, self.shooters.exponent);
         let (from, area) = if self.from_start {
-            (term.start, -area / term.coefficient)
+            (term.start, -area / term.weight)
         } else {
-            (term.end, area / term.coefficient)
+            (term.end, area / term.weight)
         };
         let part = area / from;
         if from == 0.0 || part.is_infinite() {
@@ -335,16 +381,16 @@ impl Stretch<'_> {
         self.raised * libm::exp(exponent * span)
     }
 
-    /// What the other side had before it came down to its end at the cost `area`, where its S/T is a sum of two powers.
+    /// What the other side had before it came down to its end at the cost `area`, where that is a sum of several powers.
     fn before(&self, area: f64) -> f64 {
         let other = self.along.enemy();
-        let (terms, end) = (&self.piece.equation.terms[other], self.end[other]);
+        let (terms, end) = (self.piece.equation.active(other), self.end[other]);
         // Each term alone would have taken more to make up the whole.
         let most = terms
             .iter()
             .map(|term| after(term, end, area))
             .fold(f64::INFINITY, f64::min);
-        end * libm::exp(span_of_two(terms, end, area, most))
+        end * libm::exp(span_of_many(terms, end, area, most))
     }
 }
 
@@ -359,7 +405,10 @@ fn raised_by(order: f64, span: f64) -> f64 {
 
 /// The strength n above `from` with nᵏ = fromᵏ + k·area/c.
 fn after(term: &Term, from: f64, area: f64) -> f64 {
-    let (order, area) = (f64::from(term.order), area / term.coefficient);
+    let (order, area) = (f64::from(term.order), area / f64::from(term.weight));
+    if from == 0.0 {
+        return libm::pow(area * order, 1.0 / order);
+    }
     let part = area / libm::pow(from, order);
     if part.is_infinite() {
         return libm::pow(area * order, 1.0 / order);
@@ -371,13 +420,16 @@ fn after(term: &Term, from: f64, area: f64) -> f64 {
     })
 }
 
-/// ln(n/end) where both terms together make up `area`: Newton's steps from `most` down. The sum is convex in the
+/// ln(n/end) where the terms together make up `area`: Newton's steps from `most` down. The sum is convex in the
 /// logarithm, so that no step goes past the root.
-fn span_of_two(terms: &[Term; 2], end: f64, area: f64, most: f64) -> f64 {
-    let scaled = terms.map(|term| {
-        let order = f64::from(term.order);
-        (term.coefficient * libm::pow(end, order), order)
-    });
+fn span_of_many(terms: &[Term], end: f64, area: f64, most: f64) -> f64 {
+    let scaled: Vec<(f64, f64)> = terms
+        .iter()
+        .map(|term| {
+            let order = f64::from(term.order);
+            (f64::from(term.weight) * libm::pow(end, order), order)
+        })
+        .collect();
     let mut span = libm::log(most / end);
     for _ in 0..MOST_STEPS {
         let made_up: f64 = scaled

@@ -35,7 +35,7 @@ pub enum FireLaw {
 }
 
 /// A power `coefficient · n^exponent`.
-#[derive(Clone, Copy, Debug, PartialEq)]
+#[derive(Clone, Copy, Debug, Default, PartialEq)]
 pub struct Power {
     /// The factor before the power.
     pub coefficient: f64,

@@ -2,6 +2,7 @@
 
 mod axis;
 mod orbit;
+mod paths;
 mod strength;
 
 pub use axis::{Axis, Tick};
@@ -29,6 +30,8 @@ pub enum Role {
     Defeat,
     /// The moment at which the engagement is cut off.
     Clock,
+    /// A moment at which something joins, leaves or changes.
+    Instant,
 }
 
 /// A line through points, all within the axes.

@@ -1,95 +1,76 @@
 //! One side against the other: the parametric curve of the engagement among its neighbours.
 
+use super::paths::{POINTS, along_orbit, larger, lost, neighbours, parity, path, to_the_last};
 use super::{Axis, Line, Picture, Role, STEPS, Spot, Table, steps};
-use crate::double::Double;
 use crate::fight::{Fight, break_line};
 use crate::outcome::{Breaks, Ended, ToTheLast};
+use crate::piece::Piece;
 use crate::sides::{Both, Side};
-use crate::state::{StateEquation, is_endless};
 use crate::statement::{Statement, Values};
+use crate::stretch::Stretch;
 use crate::trajectory::Trajectory;
 use crate::words::format::{six, strength as in_words, with_unit};
 use crate::words::sentence::breaks;
+use crate::words::timeline::{Moment, timeline};
 
-/// Where on the two far edges of the picture neighbouring engagements begin, as parts of the edge.
-const NEIGHBOURS: [f64; 4] = [0.2, 0.4, 0.6, 0.8];
-
-/// Points of a curve. Each takes double-double powers or a root, and these curves are smooth: more would not be seen.
-const POINTS: usize = 160;
-
-/// Points of a neighbouring engagement, which is drawn thin and for comparison.
-const NEIGHBOUR_POINTS: usize = 40;
-
-/// One side against the other: the engagement from start to end, how it would go on to the last, the break lines, the
-/// parity line and neighbouring engagements, all by the state equation.
+/// One side against the other: the engagement from start to end, how it would go on to the last, the break lines, and by
+/// the state equation of its last stretch, where that has one, the parity line and neighbouring engagements.
 ///
 /// `None` where the fight was worked out without its trajectory.
 pub fn orbit(statement: &Statement, fight: &Fight) -> Option<Picture> {
     let trajectory = fight.trajectory.as_ref()?;
-    let engagement = statement.engagement(&Values::new());
-    let piece = trajectory.pieces.first()?;
-    let (equation, start) = (&piece.equation, piece.start);
     let counted = &statement.counted;
     let names = &statement.names;
-    let across = Axis::new(format!("{} ({counted})", names.x), start.x * 1.12, 5);
-    let up = Axis::new(format!("{} ({counted})", names.y), start.y * 1.12, 5);
+    let end = Both::of(|side| fight.outcome.sides()[side].end.unwrap_or(0.0));
+    let fight_line = fight_path(trajectory, end, POINTS);
+    let highest = |of: fn(&(f64, f64)) -> f64| {
+        let highest = fight_line.iter().map(of).fold(0.0, f64::max);
+        if highest > 0.0 { highest } else { 1.0 }
+    };
+    let across = Axis::new(format!("{} ({counted})", names.x), highest(|at| at.0) * 1.12, 5);
+    let up = Axis::new(format!("{} ({counted})", names.y), highest(|at| at.1) * 1.12, 5);
     let corner = Both {
         x: across.to,
         y: up.to,
     };
 
-    let mut lines = neighbours(equation, corner);
-    let parity = parity(equation, corner);
+    let last = trajectory.stretches.last().and_then(Stretch::piece);
+    let mut lines = last.map_or(Vec::new(), |piece| neighbours(&piece.equation, corner));
+    let parity = last.and_then(|piece| parity(&piece.equation, corner));
     let has_parity = parity.is_some();
-    if let Some(points) = parity {
-        lines.push(Line {
-            role: Role::Parity,
-            points,
-            label: "parity".into(),
-        });
-    }
-    for side in Side::BOTH {
-        let line = f64::from(break_line(&engagement, side));
-        // A side that had lost more than that before the start has its line outside the picture.
-        if line > 0.0 && line <= corner[side] {
-            let points = match side {
-                Side::X => vec![(line, 0.0), (line, up.to)],
-                Side::Y => vec![(0.0, line), (across.to, line)],
-            };
-            let label = format!("{}: {} breaks", in_words(line), names[side]);
-            lines.push(Line {
-                role: Role::BreakLine(side),
-                points,
-                label,
-            });
-        }
-    }
-    let end = Both::of(|side| fight.outcome.sides()[side].end.unwrap_or(0.0));
-    lines.push(Line {
+    lines.extend(parity.map(|points| Line {
+        role: Role::Parity,
+        points,
+        label: "parity".into(),
+    }));
+    lines.extend(break_lines(statement, trajectory, corner));
+    let to_nothing = |piece: &Piece| to_the_last(&piece.equation, end, POINTS);
+    lines.extend(last.map(|piece| Line {
         role: Role::ToTheLast,
-        points: to_the_last(equation, end, POINTS),
+        points: to_nothing(piece),
         label: String::new(),
-    });
-    let path = path(equation, start, end, POINTS);
+    }));
     lines.push(Line {
         role: Role::Fight,
-        points: path,
+        points: fight_line,
         label: String::new(),
     });
-    let spots = vec![
-        Spot {
-            side: None,
-            at: (start.x, start.y),
-            label: "start".into(),
-        },
-        Spot {
-            side: breaker(fight.outcome.breaks),
-            at: (end.x, end.y),
-            label: end_label(statement, fight),
-        },
-    ];
-    let table = table(statement, trajectory, equation, end);
-    let summary = summary(statement, fight, has_parity, start, end);
+
+    let start = trajectory.strengths_before(0);
+    let mut spots = vec![Spot {
+        side: None,
+        at: (start.x, start.y),
+        label: "start".into(),
+    }];
+    spots.extend(instants(statement, fight, trajectory));
+    spots.push(Spot {
+        side: breaker(fight.outcome.breaks),
+        at: (end.x, end.y),
+        label: end_label(statement, fight),
+    });
+    let table = table(statement, trajectory, end);
+    let scheduled = trajectory.instants.len() > 1;
+    let summary = summary(statement, fight, has_parity, scheduled, start, end);
     Some(Picture {
         across,
         up,
@@ -107,126 +88,6 @@ fn breaker(breaks: Breaks) -> Option<Side> {
         Breaks::Y => Some(Side::Y),
         Breaks::Both | Breaks::Neither => None,
     }
-}
-
-/// What each side costs to bring down from `from` to `to`.
-fn costs(equation: &StateEquation, from: Both<f64>, to: Both<f64>) -> Both<Double> {
-    Both::of(|side| equation.cost(side, from[side].into(), to[side].into()))
-}
-
-/// The engagement from `start` until one side is down to the last.
-fn to_the_last(equation: &StateEquation, start: Both<f64>, count: usize) -> Vec<(f64, f64)> {
-    let cost = costs(equation, start, Both::default());
-    if cost.x == 0.0 && cost.y == 0.0 {
-        // No fire takes effect: it stays where it is.
-        return vec![(start.x, start.y)];
-    }
-    let loser = if cost.x > cost.y { Side::Y } else { Side::X };
-    let mut end = Both::default();
-    if !StateEquation::tie(cost) && !is_endless(cost[loser]) {
-        let enemy = loser.enemy();
-        end[enemy] = equation.left(enemy, start[enemy].into(), cost[loser]).into();
-    }
-    path(equation, start, end, count)
-}
-
-/// A part lost that is known well enough to follow a side by it.
-const LEAST_FOLLOWED: f64 = 1e-9;
-
-/// The orbit between two of its points as a curve, through `count` + 1 points that are closer together at both ends:
-/// there it may come in along an axis.
-///
-/// A side whose strength would need a root-find at each point is the one that is followed, where it falls at all.
-fn path(equation: &StateEquation, start: Both<f64>, end: Both<f64>, count: usize) -> Vec<(f64, f64)> {
-    let lost = lost(start, end);
-    let costly = Side::BOTH
-        .into_iter()
-        .find(|side| equation.needs_root(*side) && lost[*side] > LEAST_FOLLOWED);
-    let along = costly.unwrap_or(larger(lost));
-    let eased = |part: f64| part * part * (3.0 - 2.0 * part);
-    along_orbit(equation, start, end, along, steps(count).map(eased))
-}
-
-/// The parts of both sides that are lost.
-fn lost(start: Both<f64>, end: Both<f64>) -> Both<f64> {
-    Both::of(|side| {
-        if start[side] > 0.0 {
-            1.0 - end[side] / start[side]
-        } else {
-            0.0
-        }
-    })
-}
-
-fn larger(lost: Both<f64>) -> Side {
-    if lost.x >= lost.y { Side::X } else { Side::Y }
-}
-
-/// Points of the orbit from `start` to `end`, at these parts of the way of the side `along`.
-fn along_orbit(
-    equation: &StateEquation,
-    start: Both<f64>,
-    end: Both<f64>,
-    along: Side,
-    parts: impl Iterator<Item = f64>,
-) -> Vec<(f64, f64)> {
-    let other = along.enemy();
-    if start[along] == end[along] {
-        return vec![(start.x, start.y)];
-    }
-    let point = |part: f64| {
-        let strength = start[along] + (end[along] - start[along]) * part;
-        let cost = equation.cost(along, start[along].into(), strength.into());
-        let mut at = end;
-        at[along] = strength;
-        if part < 1.0 {
-            // A side whose fire has no effect never makes the other pay.
-            at[other] = equation.left(other, start[other].into(), cost).into();
-        }
-        (at.x, at.y)
-    };
-    parts.map(point).collect()
-}
-
-/// Engagements that begin on the two far edges of the picture.
-fn neighbours(equation: &StateEquation, corner: Both<f64>) -> Vec<Line> {
-    let on_top = NEIGHBOURS.iter().map(|part| Both {
-        x: corner.x * part,
-        ..corner
-    });
-    let at_right = NEIGHBOURS.iter().map(|part| Both {
-        y: corner.y * part,
-        ..corner
-    });
-    on_top
-        .chain([corner])
-        .chain(at_right)
-        .filter(|start| {
-            let cost = costs(equation, *start, Both::default());
-            cost.x > 0.0 || cost.y > 0.0
-        })
-        .map(|start| Line {
-            role: Role::Neighbour,
-            points: to_the_last(equation, start, NEIGHBOUR_POINTS),
-            label: String::new(),
-        })
-        .collect()
-}
-
-/// Where both sides cost the same to bring down to the last; `None` where no strengths do: where one of them never pays,
-/// and where one cannot be brought down at any cost.
-fn parity(equation: &StateEquation, corner: Both<f64>) -> Option<Vec<(f64, f64)>> {
-    let cost = costs(equation, corner, Both::default());
-    if !(cost.x > 0.0 && cost.y > 0.0) || is_endless(cost.x) || is_endless(cost.y) {
-        return None;
-    }
-    // It leaves the picture through the edge of the side that is worth less there.
-    let over = if cost.x > cost.y { Side::X } else { Side::Y };
-    let mut edge = corner;
-    edge[over] = equation
-        .left(over, corner[over].into(), cost[over] - cost[over.enemy()])
-        .into();
-    Some(path(equation, edge, Both::default(), POINTS))
 }
 
 fn end_label(statement: &Statement, fight: &Fight) -> String {
@@ -250,11 +111,90 @@ fn end_label(statement: &Statement, fight: &Fight) -> String {
     }
 }
 
-fn table(statement: &Statement, trajectory: &Trajectory, equation: &StateEquation, end: Both<f64>) -> Table {
+/// The engagement itself: by the state equation where it is one stretch, else as the trajectory has it, with a straight
+/// step where something arrives or leaves.
+fn fight_path(trajectory: &Trajectory, end: Both<f64>, points: usize) -> Vec<(f64, f64)> {
+    if let [stretch] = &trajectory.stretches[..]
+        && let Some(piece) = stretch.piece()
+    {
+        return path(&piece.equation, piece.start, end, points);
+    }
+    let mut curve = Vec::new();
+    for stretch in &trajectory.stretches {
+        let length = stretch.to.unwrap_or(trajectory.shown.max(stretch.from)) - stretch.from;
+        let point = |part: f64| {
+            let at = stretch.strengths_at(length * part);
+            (at.x, at.y)
+        };
+        curve.extend(steps(points / trajectory.stretches.len() + 8).map(point));
+    }
+    curve.push((end.x, end.y));
+    curve
+}
+
+/// Upright and level lines at the strengths at which the sides break in the end.
+fn break_lines(statement: &Statement, trajectory: &Trajectory, corner: Both<f64>) -> Vec<Line> {
+    let engagement = statement.engagement(&Values::new());
+    let line = |side: Side| {
+        let at_end = |stretch: &Stretch| {
+            let end = stretch.to.unwrap_or(trajectory.shown.max(stretch.from));
+            stretch.break_line(side, end - stretch.from)
+        };
+        let line = match trajectory.stretches.last() {
+            Some(stretch) => at_end(stretch)?,
+            None => f64::from(break_line(&engagement, side)),
+        };
+        // A side that had lost more than that before the start has its line outside the picture.
+        if line <= 0.0 || line > corner[side] {
+            return None;
+        }
+        let points = match side {
+            Side::X => vec![(line, 0.0), (line, corner.y)],
+            Side::Y => vec![(0.0, line), (corner.x, line)],
+        };
+        let label = format!("{}: {} breaks", in_words(line), statement.names[side]);
+        Some(Line {
+            role: Role::BreakLine(side),
+            points,
+            label,
+        })
+    };
+    Side::BOTH.into_iter().filter_map(line).collect()
+}
+
+/// Where something arrives, leaves or changes on the way.
+fn instants(statement: &Statement, fight: &Fight, trajectory: &Trajectory) -> Vec<Spot> {
+    let moments = timeline(statement, fight)
+        .into_iter()
+        .filter(|moment| !moment.mark.is_empty());
+    let spot = |moment: Moment| {
+        let at = trajectory.strengths_at(moment.time);
+        Spot {
+            side: None,
+            at: (at.x, at.y),
+            label: moment.mark,
+        }
+    };
+    moments.map(spot).collect()
+}
+
+fn table(statement: &Statement, trajectory: &Trajectory, end: Both<f64>) -> Table {
     let names = &statement.names;
     let start = trajectory.strengths_at(0.0);
-    // Even steps of the side that loses the larger part.
-    let points = along_orbit(equation, start, end, larger(lost(start, end)), steps(STEPS));
+    let points = match &trajectory.stretches[..] {
+        [stretch] if stretch.piece().is_some() => {
+            let equation = &stretch.piece().map(|piece| piece.equation);
+            // Even steps of the side that loses the larger part.
+            let along = larger(lost(start, end));
+            equation
+                .map(|equation| along_orbit(&equation, start, end, along, steps(STEPS)))
+                .unwrap_or_default()
+        }
+        _ => {
+            let at = |part: f64| trajectory.strengths_at(trajectory.shown * part);
+            steps(STEPS).map(at).map(|at| (at.x, at.y)).collect()
+        }
+    };
     let row = |at: &(f64, f64)| vec![six(at.0), six(at.1)];
     let rows = points.iter().map(row).collect();
     Table {
@@ -270,6 +210,7 @@ fn summary(
     statement: &Statement,
     fight: &Fight,
     has_parity: bool,
+    scheduled: bool,
     start: Both<f64>,
     end: Both<f64>,
 ) -> String {
@@ -313,8 +254,13 @@ fn summary(
             _ => "there is no parity line: both fade to nothing whatever their strengths,".into(),
         }
     };
+    let last = if scheduled {
+        "with what arrives, leaves and changes on the way".into()
+    } else {
+        format!("{last} if both fight to the last")
+    };
     format!(
-        "One side against the other: from {} to {}; {last} if both fight to the last.",
+        "One side against the other: from {} to {}; {last}.",
         pair(start),
         pair(end)
     )

@@ -1,43 +1,32 @@
 //! Strength over time.
 
 use super::{Axis, Line, POINTS, Picture, Role, STEPS, Spot, Table, steps};
-use crate::fight::{Fight, break_line};
+use crate::fight::{Fight, break_line as break_line_at_start};
 use crate::outcome::{Breaks, Ended};
 use crate::sides::{Both, Side};
 use crate::statement::{Statement, Values};
 use crate::trajectory::Trajectory;
 use crate::words::format::{six, strength as in_words, time, with_unit};
 use crate::words::sentence::breaks;
+use crate::words::timeline::{Moment, timeline};
 
 /// Strength over time: both curves, the break lines, the time of defeat and the clock.
 ///
 /// `None` where the fight was worked out without its trajectory.
 pub fn strength(statement: &Statement, fight: &Fight) -> Option<Picture> {
     let trajectory = fight.trajectory.as_ref()?;
-    let engagement = statement.engagement(&Values::new());
     let shown = trajectory.shown;
     let across = Axis::new(format!("time ({})", statement.unit.symbol()), shown * 1.06, 6);
-    let highest = trajectory.strengths_at(0.0);
-    let up = Axis::new(statement.counted.clone(), highest.x.max(highest.y) * 1.08, 5);
+    let up = Axis::new(statement.counted.clone(), highest(trajectory) * 1.08, 5);
 
-    let mut lines = Vec::new();
-    for side in Side::BOTH {
-        let line = f64::from(break_line(&engagement, side));
-        // A side that had lost more than that before the start has its line above the picture.
-        if line > 0.0 && line <= up.to {
-            let label = format!("{}: {} breaks", in_words(line), statement.names[side]);
-            lines.push(Line {
-                role: Role::BreakLine(side),
-                points: vec![(0.0, line), (across.to, line)],
-                label,
-            });
-        }
-    }
+    let mut lines: Vec<Line> = Side::BOTH
+        .into_iter()
+        .filter_map(|side| break_line(statement, trajectory, side, across.to, up.to))
+        .collect();
+    lines.extend(instants(statement, fight, up.to));
     lines.extend(moment(statement, fight, up.to));
     for side in Side::BOTH {
-        let points = steps(POINTS)
-            .map(|part| (shown * part, trajectory.strengths_at(shown * part)[side]))
-            .collect();
+        let points = curve(trajectory, |at| at[side]);
         lines.push(Line {
             role: Role::Strength(side),
             points,
@@ -66,6 +55,84 @@ pub fn strength(statement: &Statement, fight: &Fight) -> Option<Picture> {
         table,
         names: statement.names.clone(),
     })
+}
+
+/// The highest strength of either side; never 0.
+fn highest(trajectory: &Trajectory) -> f64 {
+    let strengths = curve(trajectory, |at| at.x.max(at.y));
+    let highest = strengths.into_iter().map(|point| point.1).fold(0.0, f64::max);
+    if highest > 0.0 { highest } else { 1.0 }
+}
+
+/// A strength over the time that is shown, with a step at each instant where something arrives or leaves.
+fn curve(trajectory: &Trajectory, of: impl Fn(Both<f64>) -> f64) -> Vec<(f64, f64)> {
+    let shown = trajectory.shown;
+    let mut points = Vec::new();
+    for stretch in trajectory.stretches.iter().filter(|stretch| stretch.from < shown) {
+        let length = stretch.to.unwrap_or(shown).min(shown) - stretch.from;
+        // A short stretch needs fewer points than a long one, and is still a curve.
+        let count = ((POINTS as f64 * length / shown) as usize).max(12);
+        let point = |part: f64| {
+            (
+                stretch.from + length * part,
+                of(stretch.strengths_at(length * part)),
+            )
+        };
+        points.extend(steps(count).map(point));
+    }
+    if points.is_empty() {
+        let at = of(trajectory.strengths_at(0.0));
+        points.extend([(0.0, at), (shown, at)]);
+    }
+    if let (Some(end), Some(last)) = (trajectory.end, points.last_mut()) {
+        // A break line is exact.
+        last.1 = of(end);
+    }
+    points
+}
+
+/// The break line of a side, which moves with what arrives; `None` where none of it is in the picture.
+fn break_line(
+    statement: &Statement,
+    trajectory: &Trajectory,
+    side: Side,
+    right: f64,
+    top: f64,
+) -> Option<Line> {
+    let mut points: Vec<(f64, f64)> = Vec::new();
+    for stretch in &trajectory.stretches {
+        let to = stretch.to.unwrap_or(right).min(right);
+        for t in [stretch.from, to] {
+            points.extend(stretch.break_line(side, t - stretch.from).map(|line| (t, line)));
+        }
+    }
+    if points.is_empty() {
+        let line = f64::from(break_line_at_start(&statement.engagement(&Values::new()), side));
+        points.extend((line > 0.0).then_some((0.0, line)));
+    }
+    let last = *points.last()?;
+    points.push((right, last.1));
+    // A side that had lost more than that before the start has its line above the picture.
+    let inside = points.iter().all(|point| point.1 <= top);
+    let label = format!("{}: {} breaks", in_words(last.1), statement.names[side]);
+    inside.then_some(Line {
+        role: Role::BreakLine(side),
+        points,
+        label,
+    })
+}
+
+/// Upright lines where something joins, leaves or changes.
+fn instants(statement: &Statement, fight: &Fight, top: f64) -> Vec<Line> {
+    let moments = timeline(statement, fight)
+        .into_iter()
+        .filter(|moment| !moment.mark.is_empty());
+    let line = |moment: Moment| Line {
+        role: Role::Instant,
+        points: vec![(moment.time, 0.0), (moment.time, top)],
+        label: moment.mark,
+    };
+    moments.map(line).collect()
 }
 
 /// The upright line at the end.
@@ -118,7 +185,8 @@ fn summary(statement: &Statement, fight: &Fight, shown: f64) -> String {
     let parts = Both::of(part);
     let span = match fight.outcome.ended {
         Ended::Break | Ended::Clock => format!("in {}", time(shown, statement.unit)),
-        Ended::Limit => "in the limit of endless time".into(),
+        Ended::Withdrawn => format!("in {}", time(shown, statement.unit)),
+        Ended::Limit | Ended::Growth => "in the limit of endless time".into(),
         Ended::Equilibrium => "at all times".into(),
     };
     format!("Strength over time: {} and {}, {span}.", parts.x, parts.y)

@@ -1,10 +1,11 @@
 //! The figures under the sentence, to six significant digits.
 
-use super::format::{six, three};
-use crate::fight::break_line;
+use super::format::{per_cent, six, three};
+use crate::double::Double;
+use crate::fight::{break_line, plain_piece};
 use crate::outcome::{Breaks, Ended, Method, Outcome, ToTheLast};
 use crate::sides::{Both, Side};
-use crate::statement::{Statement, Values};
+use crate::statement::{Statement, TimeUnit, Values};
 use crate::terms::Engagement;
 
 /// A figure of each side.
@@ -56,20 +57,13 @@ pub fn figures(statement: &Statement, outcome: &Outcome) -> Figures {
     let still = is_still(&engagement, outcome);
     let line = Both::of(|side| (!still).then_some(line_of_break(side)));
     let end = Both::of(|side| line_of_end(outcome, still, side));
-    if Side::BOTH.iter().any(|side| engagement.sides[*side].lost > 0.0) {
-        rows.push(row(format!("Lost before ({counted})"), &|side| {
-            six(engagement.sides[side].lost)
-        }));
-        rows.push(row(format!("Committed in all ({counted})"), &|side| {
-            six(sides[side].committed)
-        }));
-    }
+    rows.extend(brought_in(&engagement, outcome, counted));
     rows.push(
         row(
             format!("Breaks at ({counted} left)"),
-            &|side| match f64::from(break_line(&engagement, side)) {
-                0.0 => "to the last".into(),
-                line => six(line),
+            &|side| match line_in_the_end(&engagement, outcome, side) {
+                line if line > 0.0 => six(line),
+                _ => "to the last".into(),
             },
         )
         .from(line),
@@ -85,16 +79,123 @@ pub fn figures(statement: &Statement, outcome: &Outcome) -> Figures {
         }),
         row(format!("Losses ({counted})"), &|side| six(sides[side].losses.all)),
         row("Lost, of all committed".into(), &|side| {
-            let part = (sides[side].losses.all + engagement.sides[side].lost) / sides[side].committed;
-            format!("{}\u{202f}%", six(100.0 * part))
+            let lost = sides[side].losses.all + engagement.sides[side].lost;
+            format!("{}\u{202f}%", six(100.0 * fraction(lost, sides[side].committed)))
         }),
     ];
     rows.extend(ends.map(|row| row.from(end)));
+    rows.extend(losses_by_cause(outcome, counted));
+    rows.extend(pace(statement, outcome));
+    let mut both = both(statement, outcome, still);
+    if plain_piece(&engagement).is_none() {
+        lead_to_pieces(outcome, &mut rows, &mut both);
+    }
     Figures {
         names: statement.names.clone(),
         rows,
-        both: both(statement, outcome, still),
+        both,
     }
+}
+
+/// The working of an engagement of several pieces has other lines: what the last one hands over, the time, the ratios.
+fn lead_to_pieces(outcome: &Outcome, rows: &mut [Row], both: &mut [Figure]) {
+    let hands_over = !outcome.pieces.is_empty() && outcome.time != Some(0.0);
+    for row in rows {
+        let ends = !row.label.starts_with("Breaks at") && hands_over;
+        row.lines = Both::of(|side| row.lines[side].filter(|_| ends).map(|_| "left"));
+    }
+    for figure in both {
+        figure.line = match figure.line {
+            Some("breaks") => outcome.time.map(|_| "time"),
+            Some("last") => None,
+            line => line,
+        };
+    }
+}
+
+/// What came and went besides the strengths at the start, where anything did.
+fn brought_in(engagement: &Engagement, outcome: &Outcome, counted: &str) -> Vec<Row> {
+    let sides = outcome.sides();
+    let parts = [
+        ("Lost before", Both::of(|side| engagement.sides[side].lost)),
+        ("Joined", Both::of(|side| sides[side].joined)),
+        ("Withdrawn", Both::of(|side| sides[side].withdrawn)),
+        ("Committed in all", Both::of(|side| sides[side].committed)),
+    ];
+    let more = |side: Side| engagement.sides[side].lost > 0.0 || sides[side].joined > 0.0;
+    let shown = |label: &str, values: &Both<f64>| match label {
+        "Committed in all" => more(Side::X) || more(Side::Y),
+        _ => values.x > 0.0 || values.y > 0.0,
+    };
+    let rows = parts.into_iter().filter(|(label, values)| shown(label, values));
+    rows.map(|(label, values)| Row {
+        label: format!("{label} ({counted})"),
+        values: Both::of(|side| six(values[side])),
+        lines: Both::default(),
+    })
+    .collect()
+}
+
+/// The strength at which `side` breaks once all that came and went is counted: (1 − break) × committed − withdrawn.
+fn line_in_the_end(engagement: &Engagement, outcome: &Outcome, side: Side) -> f64 {
+    let totals = outcome.sides()[side];
+    if totals.committed == engagement.committed_at_start(side) && totals.withdrawn == 0.0 {
+        return break_line(engagement, side).into();
+    }
+    let held = Double::difference(1.0, engagement.sides[side].break_point) * totals.committed;
+    (held - totals.withdrawn).into()
+}
+
+/// Losses by what caused them, where more than fire did.
+fn losses_by_cause(outcome: &Outcome, counted: &str) -> Vec<Row> {
+    let losses = Both::of(|side| outcome.sides()[side].losses);
+    let parts = [
+        ("by fire", Both::of(|side| losses[side].fire)),
+        ("by supporting arms", Both::of(|side| losses[side].support)),
+        ("by wastage", Both::of(|side| losses[side].wastage)),
+    ];
+    let any = |values: &Both<f64>| values.x != 0.0 || values.y != 0.0;
+    if !any(&parts[1].1) && !any(&parts[2].1) {
+        return Vec::new();
+    }
+    let rows = parts.into_iter().filter(|(_, values)| any(values));
+    rows.map(|(label, values)| Row {
+        label: format!("Losses {label} ({counted})"),
+        values: Both::of(|side| six(values[side])),
+        lines: Both::default(),
+    })
+    .collect()
+}
+
+/// What part of all it committed a side loses per unit of time, on the average from the start to the end; and per day,
+/// where it lasts that long.
+fn pace(statement: &Statement, outcome: &Outcome) -> Vec<Row> {
+    let end = outcome.pieces.last().and_then(|piece| piece.to);
+    let Some(end) = end.filter(|end| *end > 0.0) else {
+        return Vec::new();
+    };
+    let sides = outcome.sides();
+    let row = |unit: &str, units: f64| Row {
+        label: format!("Lost on the average, of all committed, per\u{a0}{unit}"),
+        values: Both::of(|side| {
+            per_cent(fraction(
+                sides[side].losses.all / end * units,
+                sides[side].committed,
+            ))
+        }),
+        lines: Both::default(),
+    };
+    let unit = statement.unit;
+    let mut rows = vec![row(unit.symbol(), 1.0)];
+    if unit != TimeUnit::Day && end >= unit.in_a_day() {
+        rows.push(row("d", unit.in_a_day()));
+    }
+    rows
+}
+
+/// A part of a whole; nothing of nothing is nothing.
+fn fraction(part: f64, whole: f64) -> f64 {
+    if whole > 0.0 { part / whole } else { 0.0 }
 }
 
 impl Row {
@@ -227,6 +328,7 @@ fn exchange(names: &Both<String>, ratio: f64, unit: &str) -> String {
 fn method(method: Method) -> &'static str {
     match method {
         Method::ClosedForm => "closed form",
+        Method::Integration => "integration, step by step",
         Method::Quadrature => "state equation, and a quadrature for the time",
     }
 }
@@ -252,6 +354,10 @@ mod tests {
             "x.start=600&x.fire=logarithmic&x.rate=0.1&y.start=400&y.fire=logarithmic&y.rate=0.1",
             "x.start=600&x.rate=0.04&y.start=400&y.rate=0.09",
             "x.start=600&x.fire=area&x.rate=0.001&y.start=400&y.fire=area&y.rate=0.001",
+            "x.start=600&x.rate=0.04&y.start=400&y.rate=0.06&y.join=64@4,-20@5&until=3",
+            "x.start=600&x.rate=0.04&x.break=0.3&y.start=400&y.rate=0.06&y.break=0.4&y.join=64@4,-20@5",
+            "x.start=60&x.lost=40&x.break=0.3&x.rate=1&x.wastage=0.1&y.start=400&y.rate=0.1&phase1.from=2",
+            "x.start=600&x.fire=none&x.flow=5@1/&y.start=400&y.fire=none&y.wastage=0.1",
             "x.start=100&x.fire=power&x.p=0.5&x.q=0&x.rate=1&y.start=100&y.fire=power&y.p=0.5&y.q=0&y.rate=1",
         ];
         let drawn = (0..500).map(golden::link);

@@ -101,12 +101,19 @@ pub fn rate_unit(law: FireLaw, shooter: &str, target: &str, unit: TimeUnit) -> S
     }
 }
 
-/// What `key`, which a law of fire needs beside its rate, is measured in: "number of Vessary"; empty for another key.
-pub fn parameter_unit(key: &str, shooter: &str, target: &str) -> String {
+/// What `key` of a side is measured in, without its letter: "number of Vessary" for `half`, "fraction of Ondrel lost, per
+/// h" for `wastage`; empty for a key whose unit is said elsewhere, or that has none.
+pub fn parameter_unit(key: &str, name: &str, enemy: &str, unit: TimeUnit) -> String {
+    let unit = unit.symbol();
     match key {
-        "half" => format!("number of {target}"),
-        "p" => format!("power of {shooter}'s strength"),
-        "q" => format!("power of {target}'s strength"),
+        "half" => format!("number of {enemy}"),
+        "p" => format!("power of {name}'s strength"),
+        "q" => format!("power of {enemy}'s strength"),
+        "wastage" => format!("fraction of {name} lost, per\u{a0}{unit}"),
+        "support.area" => format!("fraction of {enemy} lost, per\u{a0}{unit}"),
+        "support.aimed" => format!("number of {enemy} lost, per\u{a0}{unit}"),
+        "reach" => "in the unit of the range".into(),
+        "reach.shape" => "exponent".into(),
         _ => String::new(),
     }
 }

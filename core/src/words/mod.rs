@@ -1,13 +1,16 @@
 //! All wording of results: the page, the batch door and the tests say the same.
 
+pub mod decided;
 pub mod figures;
 pub mod format;
 pub mod math;
 pub mod meaning;
 pub mod reading;
 pub mod sentence;
+pub mod timeline;
 mod times;
 pub mod working;
+mod working_pieces;
 
 /// Stands beside the figures while what is typed cannot be worked out.
 pub const STALE: &str = "For the last complete figures, not for what is typed now.";

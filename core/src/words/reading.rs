@@ -16,3 +16,8 @@ pub fn reading(statement: &Statement, trajectory: &Trajectory, t: f64) -> String
         strength(at.y)
     )
 }
+
+/// What the button says that makes the engagement that goes on from the time `t`: "Continue from 2.5 h".
+pub fn continue_from(statement: &Statement, t: f64) -> String {
+    format!("Continue from {}", with_unit(t, statement.unit))
+}

@@ -24,11 +24,23 @@ pub fn sentence(statement: &Statement, outcome: &Outcome) -> String {
                 time(clock, statement.unit)
             )
         }
+        (Breaks::Neither, Ended::Equilibrium) if changes(outcome) => {
+            "neither side breaks: what comes in and what is lost come to balance".into()
+        }
         (Breaks::Neither, Ended::Equilibrium) => {
             return format!(
                 "In this model nothing changes: neither {}'s fire nor {}'s has any effect.",
                 names.x, names.y
             );
+        }
+        (Breaks::Neither, Ended::Growth) => "neither side breaks, and strength grows without bound".into(),
+        (Breaks::Neither, Ended::Withdrawn) => {
+            let gone = if outcome.x.end == Some(0.0) {
+                &names.x
+            } else {
+                &names.y
+            };
+            format!("neither side breaks: {gone} has nobody left there, some of them withdrawn")
         }
         (Breaks::Neither, _) => return endless(statement, outcome),
     };
@@ -44,6 +56,13 @@ fn left(statement: &Statement, outcome: &Outcome, side: Side) -> String {
         strength(end),
         strength(outcome.committed)
     )
+}
+
+/// Whether anything was lost or came in.
+fn changes(outcome: &Outcome) -> bool {
+    outcome.sides().x.losses.all > 0.0
+        || outcome.sides().y.losses.all > 0.0
+        || outcome.x.joined + outcome.y.joined > 0.0
 }
 
 /// Whether the side fights to the last: its break point is 1.

@@ -3,9 +3,9 @@
 use super::math::*;
 use crate::laws::Power;
 use crate::orbit_point::OrbitPoint;
+use crate::piece::{Motion, Piece};
 use crate::sides::{Both, Side};
 use crate::terms::Engagement;
-use crate::trajectory::{Motion, Piece};
 
 /// The time at which `piece` is at `point`, where `loser` is at its line.
 pub(super) fn formula(piece: &Piece, engagement: &Engagement, point: &OrbitPoint, loser: Side) -> Math {

@@ -3,14 +3,15 @@
 use super::format::{plain, time as time_in_words};
 use super::math::*;
 use crate::double::Double;
-use crate::fight::{ahead, break_line, descent};
+use crate::fight::{break_line, descent, plain_piece};
 use crate::laws::Law;
 use crate::outcome::{Breaks, Ended, Outcome, ToTheLast};
+use crate::piece::{Motion, Piece};
+
 use crate::sides::{Both, Side};
 use crate::state::{StateEquation, Term, is_endless};
 use crate::statement::{Statement, Values};
 use crate::terms::Engagement;
-use crate::trajectory::{Motion, Piece};
 
 /// One line of the working.
 #[derive(Clone, Debug, PartialEq)]
@@ -53,7 +54,10 @@ const LETTERS: Both<Letters> = Both {
 /// The working of `outcome`, which is that of `statement`.
 pub fn working(statement: &Statement, outcome: &Outcome) -> Vec<WorkingLine> {
     let engagement = statement.engagement(&Values::new());
-    Writer::new(statement, engagement, outcome).lines()
+    match Writer::new(statement, engagement, outcome) {
+        Some(writer) => writer.lines(),
+        None => super::working_pieces::lines(statement, outcome),
+    }
 }
 
 struct Writer<'a> {
@@ -65,17 +69,15 @@ struct Writer<'a> {
 }
 
 impl<'a> Writer<'a> {
-    fn new(statement: &'a Statement, engagement: Engagement, outcome: &'a Outcome) -> Writer<'a> {
-        let fire = Both::of(|side| engagement.sides[side].fire);
-        let start = Both::of(|side| engagement.sides[side].start);
-        let piece = Piece::new(0.0, start, fire, ahead(&engagement));
-        Writer {
+    fn new(statement: &'a Statement, engagement: Engagement, outcome: &'a Outcome) -> Option<Writer<'a>> {
+        let piece = plain_piece(&engagement)?;
+        Some(Writer {
             statement,
             engagement,
             outcome,
             piece,
             lines: Vec::new(),
-        }
+        })
     }
 
     fn line(&mut self, name: &'static str, words: impl Into<String>, math: Option<Math>) {
@@ -204,9 +206,9 @@ impl<'a> Writer<'a> {
 
     /// rate × ∫ S/T from `to` to `from`, in letters or numbers.
     fn cost(&self, side: Side, rate: &Math, from: &Math, to: Option<&Math>) -> Math {
-        let terms = self.piece.equation.terms[side];
-        let active: Vec<&Term> = terms.iter().filter(|term| term.coefficient > 0.0).collect();
-        let sums: Vec<Math> = active.iter().map(|term| area(term, from, to)).collect();
+        let rate_of = self.piece.equation.rate[side];
+        let active = self.piece.equation.active(side);
+        let sums: Vec<Math> = active.iter().map(|term| area(term, rate_of, from, to)).collect();
         times(&[rate.clone(), plus(&sums)])
     }
 
@@ -352,7 +354,7 @@ impl<'a> Writer<'a> {
         );
         let start = self.piece.start[winner];
         let spent = |rate: Math, cost: Math| over(&cost, &rate);
-        let math = if terms[1].coefficient > 0.0 {
+        let math = if terms[1].weight > 0.0 {
             let sum = self.cost(
                 winner,
                 &number(rate),
@@ -369,7 +371,7 @@ impl<'a> Writer<'a> {
             equal(&[letter(letters.strength), numbers, number(left)])
         };
         self.line("left", words.clone(), Some(math));
-        if terms[1].coefficient > 0.0 {
+        if terms[1].weight > 0.0 {
             let solved = equal(&[letter(letters.strength), number(left)]);
             self.line("left.root", "which holds at", Some(solved));
         }
@@ -417,6 +419,7 @@ impl<'a> Writer<'a> {
         let math = times_apart(&end(Side::X), &end(Side::Y));
         let how = match self.piece.motion.method() {
             crate::outcome::Method::ClosedForm => "the formula of the time, turned round",
+            crate::outcome::Method::Integration => "the integrator",
             crate::outcome::Method::Quadrature => "the integral of the time, turned round by Newton's steps",
         };
         let words = format!(
@@ -489,7 +492,7 @@ impl<'a> Writer<'a> {
 }
 
 /// (fromᵏ − toᵏ)/k, or ln(from/to), times its coefficient; without `to` down to nothing.
-fn area(term: &Term, from: &Math, to: Option<&Math>) -> Math {
+pub(super) fn area(term: &Term, rate: f64, from: &Math, to: Option<&Math>) -> Math {
     let order = f64::from(term.order);
     let area = match to {
         Some(to) if order == 0.0 => function("ln", &over(from, to)),
@@ -498,10 +501,11 @@ fn area(term: &Term, from: &Math, to: Option<&Math>) -> Math {
         None if order == 1.0 => from.clone(),
         None => over(&power(from, order), &number(order)),
     };
-    if term.coefficient == 1.0 {
+    let coefficient = f64::from(term.weight / rate);
+    if coefficient == 1.0 {
         area
     } else {
-        times(&[number(term.coefficient), area])
+        times(&[number(coefficient), area])
     }
 }
 

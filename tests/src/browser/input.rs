@@ -108,6 +108,21 @@ impl Browser {
         self.run("the focus", active.send_keys(&Key::Tab.code().to_string()));
     }
 
+    /// Types at an element, in place of what is chosen there.
+    #[track_caller]
+    pub fn type_at(&self, selector: &str, text: &str) {
+        self.run(selector, self.element(selector).send_keys(text));
+    }
+
+    /// Chooses a value of a list that is built anew by the choice, as a hand does with a list that is open.
+    #[track_caller]
+    pub fn choose_value(&self, name: &str, value: &str) {
+        let script = "const list = document.getElementsByName(arguments[0])[0];
+                      list.focus(); list.value = arguments[1];
+                      list.dispatchEvent(new Event('input', {bubbles: true}));";
+        self.script(script, vec![json!(name), json!(value)]);
+    }
+
     /// Clicks.
     #[track_caller]
     pub fn click(&self, selector: &str) {

@@ -10,11 +10,46 @@ use plotters::style::text_anchor::{HPos, VPos};
 
 /// The size of words in the field, in CSS pixels.
 const WORDS: f64 = 13.0;
+/// The size of the words at what happens on the way.
+const SMALL: f64 = 11.5;
 
 /// What it costs to stand on other words.
 const OTHER_WORDS: f64 = 1e3;
 
 type Box = (f64, f64, f64, f64);
+
+/// How words are written, wherever they stand.
+#[derive(Clone, Copy)]
+struct Hand {
+    colour: RGBColor,
+    italic: bool,
+    size: f64,
+}
+
+impl Hand {
+    fn italic(colour: RGBColor) -> Hand {
+        Hand {
+            colour,
+            italic: true,
+            size: WORDS,
+        }
+    }
+
+    fn at(self, across: HPos, up: VPos) -> Set {
+        Set {
+            size: self.size,
+            italic: self.italic,
+            colour: self.colour,
+            across,
+            up,
+        }
+    }
+}
+
+/// Whether a spot is neither the start nor the end of the path of one side against the other.
+pub(crate) fn is_on_the_way(picture: &Picture, index: usize) -> bool {
+    is_orbit(picture) && index > 0 && index + 1 < picture.spots.len()
+}
 
 /// The words of a picture being set: what is taken already.
 pub(crate) struct Labels {
@@ -51,10 +86,13 @@ impl Labels {
         for line in picture.lines.iter().filter(|line| !line.label.is_empty()) {
             match line.role {
                 Role::Defeat | Role::Clock => self.moment(pen, line)?,
-                Role::BreakLine(side) => self.break_line(pen, line, side)?,
+                Role::BreakLine(side) => self.break_line(pen, picture, line, side)?,
                 Role::Parity => self.along(pen, line, pen.ink.ink, true)?,
                 _ => {}
             }
+        }
+        for line in picture.lines.iter().filter(|line| line.role == Role::Instant) {
+            self.instant(pen, line)?;
         }
         for line in picture.lines.iter().filter(|line| !line.label.is_empty()) {
             if let Role::Strength(side) = line.role {
@@ -83,9 +121,17 @@ impl Labels {
             ((x, y - 9.0), HPos::Center, VPos::Bottom),
             ((x, y + 9.0), HPos::Center, VPos::Top),
         ];
-        let italic = is_orbit(picture) && index > 0;
+        let hand = Hand {
+            colour,
+            italic: is_orbit(picture) && index > 0,
+            size: if is_on_the_way(picture, index) {
+                SMALL
+            } else {
+                WORDS
+            },
+        };
         // On the strength picture the first of them stand behind the end, in the margin, where a number is not too wide.
-        self.set(pen, &spot.label, colour, italic, &around)
+        self.set(pen, &spot.label, hand, &around)
     }
 
     fn moment<B: DrawingBackend>(&mut self, pen: &mut Pen<'_, B>, line: &Line) -> Drawn<B> {
@@ -97,12 +143,50 @@ impl Labels {
         let behind = heights.map(|y| ((x - 6.0, y), HPos::Right, VPos::Top));
         let before = heights.map(|y| ((x + 8.0, y), HPos::Left, VPos::Top));
         let places: Vec<_> = behind.into_iter().chain(before).collect();
-        self.set(pen, &line.label, pen.ink.ink, true, &places)
+        self.set(pen, &line.label, Hand::italic(pen.ink.ink), &places)
     }
 
-    fn break_line<B: DrawingBackend>(&mut self, pen: &mut Pen<'_, B>, line: &Line, side: Side) -> Drawn<B> {
-        let (Some(&first), Some(&last)) = (line.points.first(), line.points.last()) else {
+    /// What happens on the way, near the top of its upright line.
+    fn instant<B: DrawingBackend>(&mut self, pen: &mut Pen<'_, B>, line: &Line) -> Drawn<B> {
+        let Some(&(at, _)) = line.points.first() else {
             return Ok(());
+        };
+        let (x, top) = (self.field.x(at), self.field.top);
+        let rows = [0.0, 1.0, 2.0, 3.0, 4.0, 5.0].map(|row| top + row * (SMALL + 2.0));
+        let sides = |y: f64| {
+            [
+                ((x + 3.0, y), HPos::Left, VPos::Top),
+                ((x - 3.0, y), HPos::Right, VPos::Top),
+            ]
+        };
+        let places: Vec<_> = rows.into_iter().flat_map(sides).collect();
+        let hand = Hand {
+            size: SMALL,
+            ..Hand::italic(pen.ink.ink)
+        };
+        self.set(pen, &line.label, hand, &places)
+    }
+
+    fn break_line<B: DrawingBackend>(
+        &mut self,
+        pen: &mut Pen<'_, B>,
+        picture: &Picture,
+        line: &Line,
+        side: Side,
+    ) -> Drawn<B> {
+        let Some(&last) = line.points.last() else {
+            return Ok(());
+        };
+        // A line that moves with what arrives is named where it has come to.
+        let level = line
+            .points
+            .iter()
+            .rev()
+            .take_while(|point| point.1 == last.1)
+            .last();
+        let first = match (is_orbit(picture), level) {
+            (false, Some(level)) => *level,
+            _ => line.points[0],
         };
         let (from, to) = (self.field.place(first), self.field.place(last));
         let mut places = Vec::new();
@@ -119,8 +203,7 @@ impl Labels {
                 places.push(((from.0 - 5.0, y), HPos::Right, VPos::Center));
             }
         }
-        let colour = side_colour(pen, side);
-        self.set(pen, &line.label, colour, true, &places)
+        self.set(pen, &line.label, Hand::italic(side_colour(pen, side)), &places)
     }
 
     /// Words beside a curve: its name.
@@ -142,34 +225,33 @@ impl Labels {
             places.push(((x - 4.0, y - 9.0), HPos::Right, VPos::Bottom));
             places.push(((x + 4.0, y + 9.0), HPos::Left, VPos::Top));
         }
-        self.set(pen, &line.label, colour, italic, &places)
+        let hand = Hand {
+            italic,
+            ..Hand::italic(colour)
+        };
+        self.set(pen, &line.label, hand, &places)
     }
 
     fn set<B: DrawingBackend>(
         &mut self,
         pen: &mut Pen<'_, B>,
         text: &str,
-        colour: RGBColor,
-        italic: bool,
+        hand: Hand,
         places: &[(Point, HPos, VPos)],
     ) -> Drawn<B> {
         let room = pen.size().0 - 6.0;
         let text = fitting(
             pen,
             text,
-            italic,
+            hand,
             room.min((self.field.right - self.field.left) * 0.8),
         );
+        // Measured once: a canvas takes its time over it.
+        let width = pen.width(&text, hand.at(HPos::Left, VPos::Top));
         let mut best: Option<(f64, Point, Set, Box)> = None;
         for &(at, across, up) in places {
-            let set = Set {
-                size: WORDS,
-                italic,
-                colour,
-                across,
-                up,
-            };
-            let extent = pen.extent(&text, at, set);
+            let set = hand.at(across, up);
+            let extent = set.extent(width, at);
             let cost = self.cost(extent, pen.size());
             if best.as_ref().is_none_or(|(least, ..)| cost < *least) {
                 best = Some((cost, at, set, extent));
@@ -179,7 +261,7 @@ impl Labels {
             return Ok(());
         };
         // In a low picture there is no room for everything: the names of the sides stay, and words on words help nobody.
-        if cost >= OTHER_WORDS && italic {
+        if cost >= OTHER_WORDS && hand.italic {
             return Ok(());
         }
         self.taken.push(extent);
@@ -209,14 +291,8 @@ impl Labels {
 }
 
 /// The text, shortened with an ellipsis where it is wider than its room.
-fn fitting<B: DrawingBackend>(pen: &Pen<'_, B>, text: &str, italic: bool, room: f64) -> String {
-    let set = Set {
-        size: WORDS,
-        italic,
-        colour: pen.ink.ink,
-        across: HPos::Left,
-        up: VPos::Top,
-    };
+fn fitting<B: DrawingBackend>(pen: &Pen<'_, B>, text: &str, hand: Hand, room: f64) -> String {
+    let set = hand.at(HPos::Left, VPos::Top);
     if pen.width(text, set) <= room {
         return text.to_owned();
     }

@@ -1,6 +1,7 @@
 //! The lines and spots of a picture, each role in its own hand.
 
 use super::axes::{is_orbit, side_colour};
+use super::labels::is_on_the_way;
 use super::layout::Layout;
 use super::pen::{Dash, Drawn, Pen, Point, SOLID};
 use aftercount_core::picture::{Line, Picture, Role, Spot};
@@ -18,6 +19,9 @@ const ON_THE_WAY: f64 = 0.35;
 
 /// Half the height of a mark, in CSS pixels.
 const MARK: f64 = 4.2;
+
+/// The same of what happens on the way.
+const SMALL_MARK: f64 = 3.0;
 
 /// Every line, the background first, then the marks.
 pub(crate) fn draw<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, picture: &Picture) -> Drawn<B> {
@@ -39,7 +43,11 @@ pub(crate) fn draw<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, pict
         }
     }
     for (index, spot) in picture.spots.iter().enumerate() {
-        draw_spot(pen, field, spot, is_orbit(picture) && index == 0)?;
+        if is_on_the_way(picture, index) {
+            pen.dot(field.place(spot.at), SMALL_MARK, pen.ink.ink, false)?;
+        } else {
+            draw_spot(pen, field, spot, is_orbit(picture) && index == 0)?;
+        }
     }
     Ok(())
 }
@@ -55,6 +63,7 @@ fn hand<B: DrawingBackend>(pen: &Pen<'_, B>, role: Role) -> (RGBColor, f64, Dash
         Role::Parity => (pen.ink.ink, 1.0, DASH_DOT),
         Role::BreakLine(side) => (side_colour(pen, side), 1.2, DOTS),
         Role::Defeat | Role::Clock => (pen.ink.ink, 1.0, SOLID),
+        Role::Instant => (pen.ink.between(), 0.8, SOLID),
     }
 }
 

@@ -31,6 +31,23 @@ pub(crate) struct Set {
     pub(crate) up: VPos,
 }
 
+impl Set {
+    /// Left, top, right and foot of a label of this width.
+    pub(crate) fn extent(self, width: f64, (x, y): Point) -> (f64, f64, f64, f64) {
+        let left = match self.across {
+            HPos::Left => x,
+            HPos::Center => x - width / 2.0,
+            HPos::Right => x - width,
+        };
+        let top = match self.up {
+            VPos::Top => y,
+            VPos::Center => y - self.size / 2.0,
+            VPos::Bottom => y - self.size,
+        };
+        (left, top, left + width, top + self.size)
+    }
+}
+
 /// Draws in CSS pixels on a backend that has `scale` times as many.
 pub(crate) struct Pen<'a, B: DrawingBackend> {
     backend: &'a mut B,
@@ -125,19 +142,8 @@ impl<'a, B: DrawingBackend> Pen<'a, B> {
     }
 
     /// Left, top, right and foot of a label.
-    pub(crate) fn extent(&self, text: &str, (x, y): Point, set: Set) -> (f64, f64, f64, f64) {
-        let width = self.width(text, set);
-        let left = match set.across {
-            HPos::Left => x,
-            HPos::Center => x - width / 2.0,
-            HPos::Right => x - width,
-        };
-        let top = match set.up {
-            VPos::Top => y,
-            VPos::Center => y - set.size / 2.0,
-            VPos::Bottom => y - set.size,
-        };
-        (left, top, left + width, top + set.size)
+    pub(crate) fn extent(&self, text: &str, at: Point, set: Set) -> (f64, f64, f64, f64) {
+        set.extent(self.width(text, set), at)
     }
 
     fn text_style<'b>(&self, face: &'b str, set: Set) -> TextStyle<'b> {

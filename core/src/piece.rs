@@ -1,0 +1,427 @@
+//! A stretch of a fight under the two fires alone, or with losses that go by the same factors: its state equation, and
+//! its motion in time.
+
+use crate::conditions::Conditions;
+use crate::course::{Course, TOLERANCE};
+use crate::double::Double;
+use crate::laws::Power;
+use crate::laws::aimed::Square;
+use crate::laws::alone::Alone;
+use crate::laws::along_orbit::AlongOrbit;
+use crate::laws::ambush::Ambush;
+use crate::laws::area::Linear;
+use crate::orbit_point::OrbitPoint;
+use crate::outcome::{Losses, Method, ToTheLast};
+use crate::sides::{Both, Side};
+use crate::state::{Descent, StateEquation};
+use crate::terms::Fire;
+use std::cell::Cell;
+
+/// How strengths move from the start of a piece on.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub enum Motion {
+    /// Neither side's fire has any effect.
+    Still,
+    /// One side fades by itself.
+    Alone(Alone),
+    /// Aimed against aimed, or powers that come to it.
+    Square(Square),
+    /// Area against area.
+    Linear(Linear),
+    /// Aimed against area.
+    Ambush(Ambush),
+    /// Any other pairing.
+    AlongOrbit,
+}
+
+impl Motion {
+    /// The motion of a piece that starts at `start`.
+    ///
+    /// `ahead` is the difference of the costs of bringing each side down to the last: X's less Y's.
+    fn new(start: Both<f64>, fire: &Both<Fire<f64>>, equation: &StateEquation, ahead: Double) -> Motion {
+        let rate = equation.rate;
+        let shooters = Both::of(|side| fire[side].shooters().exponent);
+        // A target fades by itself where its enemy is not shot at, or does not count.
+        let alone = |target: Side| {
+            let enemy = target.enemy();
+            rate[enemy] > 0.0 && (rate[target] == 0.0 || shooters[enemy] == 0.0)
+        };
+        if rate.x == 0.0 && rate.y == 0.0 {
+            return Motion::Still;
+        }
+        // Of two that fade by themselves: one that is gone in finite time ends the fight, and of two that never are the
+        // slower still has digits when the other has none.
+        let share = |side: Side| fire[side.enemy()].share_per_time(start[side.enemy()], start[side]);
+        let to_follow = |one: Side, other: Side| {
+            let lasts = |side: Side| {
+                if equation.is_last_reached(side) {
+                    f64::INFINITY
+                } else {
+                    equation.vanishing(side)
+                }
+            };
+            let slower =
+                lasts(other) > lasts(one) || (lasts(other) == lasts(one) && share(other) < share(one));
+            if slower { other } else { one }
+        };
+        if let Some(target) = [Side::Y, Side::X]
+            .into_iter()
+            .filter(|side| alone(*side))
+            .reduce(to_follow)
+        {
+            let fire = &fire[target.enemy()];
+            let steady = fire.rate * fire.shooters().at(start[target.enemy()]);
+            return Motion::Alone(Alone::new(target, start[target], steady, fire.per_target()));
+        }
+        // The exponent of a side as targets, where that is a single power.
+        let single = |side: Side| {
+            let [first, second]: [Power; 2] = fire[side.enemy()].per_target();
+            (second.coefficient == 0.0).then_some(-first.exponent)
+        };
+        let (Some(x), Some(y)) = (single(Side::X), single(Side::Y)) else {
+            return Motion::AlongOrbit;
+        };
+        let linear = shooters.x == 1.0 && shooters.y == 1.0;
+        if shooters.x == 1.0 - x && shooters.y == 1.0 - y {
+            Motion::Square(Square::new(start, shooters, rate, ahead))
+        } else if linear && x == 1.0 && y == 1.0 {
+            Motion::Linear(Linear::new(start, rate, ahead))
+        } else if linear && x == 1.0 && y == 0.0 {
+            Motion::Ambush(Ambush::new(Side::X, start, rate, ahead))
+        } else if linear && x == 0.0 && y == 1.0 {
+            Motion::Ambush(Ambush::new(Side::Y, start, rate, -ahead))
+        } else {
+            Motion::AlongOrbit
+        }
+    }
+
+    /// How it is solved.
+    pub fn method(&self) -> Method {
+        match self {
+            Motion::AlongOrbit => Method::Quadrature,
+            _ => Method::ClosedForm,
+        }
+    }
+}
+
+/// What it took to solve a piece: for tests that a change has not made it dearer, without a clock.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub struct Work {
+    /// Evaluations of integrands.
+    pub evaluations: u32,
+    /// Steps of the integrator.
+    pub steps: u32,
+}
+
+impl Work {
+    /// Both together.
+    pub fn and(self, other: Work) -> Work {
+        Work {
+            evaluations: self.evaluations + other.evaluations,
+            steps: self.steps + other.steps,
+        }
+    }
+}
+
+/// How nearly the integrator finds strengths that are polished afterwards.
+const GUESS: f64 = 1e-9;
+
+/// A stretch of time in which nothing is added and no rate changes.
+#[derive(Clone, Debug)]
+pub struct Piece {
+    /// The strengths at its beginning.
+    pub start: Both<f64>,
+    /// What holds along it.
+    conditions: Conditions,
+    /// The fire of each side along it.
+    pub fire: Both<Fire<f64>>,
+    /// What stays constant along it.
+    pub equation: StateEquation,
+    /// How the strengths move.
+    pub motion: Motion,
+    /// 1 over the factor of each side as targets.
+    pub(crate) per_target: Both<[Power; 2]>,
+    /// What each side loses besides the enemy's fire, per unit of time and of its factor as targets.
+    pub(crate) besides: Both<f64>,
+    /// What it costs to bring each side down to the last.
+    pub cost: Both<Double>,
+    /// Whether the sides stand at parity to the rounding of the inputs, and so wear each other out together.
+    parity: bool,
+    /// Strength over time by the integrator, where the motion has no formula and the trajectory was asked for.
+    course: Option<Course>,
+    work: Cell<Work>,
+}
+
+impl Piece {
+    /// The piece that begins with the strengths `start`; `None` where the losses under `conditions` do not separate.
+    ///
+    /// Fire is taken at its full rate; a growth that both sides share is a change of the time, and the caller's.
+    /// `ahead` is the difference of the costs of bringing X and Y down to the last; `None` where they are at parity to
+    /// the rounding of the inputs, and stay so.
+    pub fn new(
+        start: Both<f64>,
+        conditions: &Conditions,
+        parity: impl Fn(Both<Double>) -> bool,
+    ) -> Option<Piece> {
+        let conditions = Conditions {
+            growth: Both::default(),
+            ..*conditions
+        };
+        let fire = conditions.fire;
+        let (per_target, besides) = conditions.separated()?;
+        let equation = StateEquation::with(&fire, &per_target, &besides);
+        let cost = Both::of(|side| equation.cost(side, start[side].into(), Double::from(0.0)));
+        let parity = parity(cost);
+        let ahead = if parity || cost.x.is_infinite() || cost.y.is_infinite() {
+            Double::from(0.0)
+        } else {
+            cost.x - cost.y
+        };
+        let motion = if besides.x > 0.0 || besides.y > 0.0 {
+            Motion::AlongOrbit
+        } else {
+            Motion::new(start, &fire, &equation, ahead)
+        };
+        let work = Cell::default();
+        Some(Piece {
+            start,
+            conditions,
+            fire,
+            equation,
+            motion,
+            per_target,
+            besides,
+            cost,
+            parity,
+            course: None,
+            work,
+        })
+    }
+
+    /// The place on the orbit of this piece where `side` is left with `strength`, of what it had at the beginning.
+    ///
+    /// Where the other side would be gone before, it stands at 0 there.
+    pub fn point_with(&self, side: Side, strength: Double) -> OrbitPoint {
+        self.point_down(side, Descent::between(self.start[side], strength))
+    }
+
+    /// The same for a descent whose height is known with all its digits.
+    pub fn point_down(&self, side: Side, down: Descent) -> OrbitPoint {
+        let enemy = side.enemy();
+        let cost = self.equation.cost_of(side, self.start[side].into(), down);
+        let from = Double::from(self.start[enemy]);
+        let (left, fallen) = if self.parity {
+            let rest = self.equation.cost(side, down.to, Double::from(0.0));
+            let left = self.equation.worth(enemy, rest, from);
+            (left, from - left)
+        } else {
+            let left = self.equation.left(enemy, from, cost);
+            (left, self.equation.fallen(enemy, from, left, cost))
+        };
+        let of = |on: Side, own: Double, others: Double| f64::from(if on == side { own } else { others });
+        OrbitPoint {
+            left: Both::of(|on| of(on, down.to, left)),
+            fallen: Both::of(|on| of(on, down.by, fallen)),
+        }
+    }
+
+    /// Whether the other side lasts until `side` is down to `strength`.
+    pub fn lasts_until(&self, side: Side, strength: Double) -> bool {
+        let enemy = side.enemy();
+        let cost = self.equation.cost(side, self.start[side].into(), strength);
+        let of_enemy = self
+            .equation
+            .cost(enemy, self.start[enemy].into(), Double::from(0.0));
+        cost <= of_enemy || StateEquation::tie(Both { x: cost, y: of_enemy })
+    }
+
+    /// The time since the beginning of the piece at which it is at `point`, which lies on its orbit; infinite where
+    /// never.
+    pub fn time_to(&self, point: &OrbitPoint) -> f64 {
+        match &self.motion {
+            Motion::Still => f64::INFINITY,
+            Motion::Alone(motion) => motion.time_to(point),
+            Motion::Square(motion) => motion.time_to(point),
+            Motion::Linear(motion) => motion.time_to(point),
+            Motion::Ambush(motion) => motion.time_to(point),
+            Motion::AlongOrbit => {
+                let time = AlongOrbit { piece: self }.time_to(point);
+                self.count(Work {
+                    evaluations: time.evaluations,
+                    steps: 0,
+                });
+                time.value
+            }
+        }
+    }
+
+    /// Where the piece is at the time `t` after its beginning, no later than its end.
+    ///
+    /// Where there is no formula: the inverse of the integral of the time. It starts from the integrator's strengths,
+    /// which next to a tie lose digits as a fight goes on, and ends with those of the state equation.
+    pub fn point_at(&self, t: f64) -> OrbitPoint {
+        let start = OrbitPoint {
+            left: self.start,
+            fallen: Both::default(),
+        };
+        // To the digit, also at parity to a rounding, which is followed as parity.
+        if t == 0.0 {
+            return start;
+        }
+        match &self.motion {
+            Motion::Still => start,
+            Motion::Alone(motion) => self.point_with(motion.target, motion.left_at(t)),
+            Motion::Square(motion) => motion.point_at(t),
+            Motion::Linear(motion) => motion.point_at(t),
+            Motion::Ambush(motion) => motion.point_at(t),
+            Motion::AlongOrbit => {
+                let course = Course::under(self.start, &self.conditions, t, GUESS, |_| false);
+                self.count(Work {
+                    evaluations: 0,
+                    steps: course.steps(),
+                });
+                let near = course.strengths_at(t.min(course.until()));
+                AlongOrbit { piece: self }.point_at(t, near)
+            }
+        }
+    }
+
+    fn follow(&self, until: f64) -> Course {
+        let onto_orbit = |now: Both<f64>| {
+            let side = if now.x / self.start.x < now.y / self.start.y {
+                Side::X
+            } else {
+                Side::Y
+            };
+            if now[side] > 0.0 {
+                self.point_with(side, now[side].into()).left
+            } else {
+                now
+            }
+        };
+        let course = Course::along(
+            self.start,
+            &self.conditions,
+            until,
+            TOLERANCE,
+            |_| false,
+            onto_orbit,
+        );
+        self.count(Work {
+            evaluations: 0,
+            steps: course.steps(),
+        });
+        course
+    }
+
+    /// The part of `side` lost per unit of time at these strengths.
+    pub(crate) fn share_per_time(&self, side: Side, left: Both<f64>) -> f64 {
+        let enemy = side.enemy();
+        let steady = self.conditions.steadily_lost(side);
+        let besides = self.conditions.part_lost(side) + if steady > 0.0 { steady / left[side] } else { 0.0 };
+        self.fire[enemy].share_per_time(left[enemy], left[side]) + besides
+    }
+
+    /// The losses by the time `t`, when the piece is at `point`, by their causes; each summed on its own.
+    pub fn losses(&self, point: &OrbitPoint, t: f64) -> Both<Losses> {
+        let orbit = AlongOrbit { piece: self };
+        Both::of(|side: Side| {
+            let enemy = side.enemy();
+            if self.besides[side] == 0.0 {
+                let fire = point.fallen[side];
+                return Losses {
+                    fire,
+                    support: 0.0,
+                    wastage: 0.0,
+                    all: fire,
+                };
+            }
+            if t == 0.0 {
+                return Losses::default();
+            }
+            let summed = |rate: &dyn Fn(Both<f64>) -> f64| {
+                let integral = orbit.summed(point, rate);
+                self.count(Work {
+                    evaluations: integral.evaluations,
+                    steps: 0,
+                });
+                integral.value
+            };
+            let fire = &self.fire[enemy];
+            let by_fire = if fire.takes_effect() {
+                summed(&|at| fire.losses_per_time(at[enemy], at[side]))
+            } else {
+                0.0
+            };
+            let part = self.conditions.part_lost(side);
+            let exposure = if part > 0.0 { summed(&|at| at[side]) } else { 0.0 };
+            let support = self.conditions.support[enemy];
+            let support = support.area * exposure + support.aimed * t;
+            let wastage = self.conditions.wastage[side] * exposure;
+            Losses {
+                fire: by_fire,
+                support,
+                wastage,
+                all: by_fire + support + wastage,
+            }
+        })
+    }
+
+    /// Prepares strengths at any time up to `until`, counted from the beginning of the piece.
+    pub(crate) fn prepare(&mut self, until: f64) {
+        let sought = match &self.motion {
+            Motion::AlongOrbit => true,
+            // The side that fades by itself has a formula; the other may take a root-find each time.
+            Motion::Alone(motion) => self.equation.needs_root(motion.target.enemy()),
+            _ => false,
+        };
+        if sought {
+            self.course = Some(self.follow(until));
+        }
+    }
+
+    /// The strengths at the time `t` after its beginning, to a part of 1e-11: from the integrator's dense output where
+    /// there is no formula, since a picture asks for hundreds of them and each inverse takes several integrals.
+    pub fn strengths_at(&self, t: f64) -> Both<f64> {
+        match &self.course {
+            Some(course) if t <= course.until() => course.strengths_at(t),
+            _ => self.point_at(t).left,
+        }
+    }
+
+    /// Who is left when both fight to the last: whoever costs more to bring down. `None` where nothing has any effect,
+    /// and where both sides fade to nothing whatever their strengths.
+    pub fn to_the_last(&self) -> Option<ToTheLast> {
+        let cost = self.cost;
+        match (cost.x.is_infinite(), cost.y.is_infinite()) {
+            (true, true) => None,
+            (true, false) => Some(ToTheLast::X),
+            (false, true) => Some(ToTheLast::Y),
+            _ if cost.x == 0.0 && cost.y == 0.0 => None,
+            _ if StateEquation::tie(cost) => Some(ToTheLast::Parity),
+            _ => Some(if cost.x > cost.y {
+                ToTheLast::X
+            } else {
+                ToTheLast::Y
+            }),
+        }
+    }
+
+    /// What holds along it, with every fire at its full rate.
+    pub fn conditions(&self) -> &Conditions {
+        &self.conditions
+    }
+
+    /// What it took so far.
+    pub fn work(&self) -> Work {
+        self.work.get()
+    }
+
+    fn count(&self, more: Work) {
+        let work = self.work.get();
+        self.work.set(Work {
+            evaluations: work.evaluations + more.evaluations,
+            steps: work.steps + more.steps,
+        });
+    }
+}

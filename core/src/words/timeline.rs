@@ -1,0 +1,170 @@
+//! What happens when, in words: the timeline under the picture of strength over time.
+
+use super::format::{strength, three, with_unit};
+use crate::fight::Fight;
+use crate::outcome::{Breaks, Ended};
+use crate::schedule::Instant;
+use crate::sides::{Both, Side};
+use crate::statement::Statement;
+use crate::trajectory::Trajectory;
+
+/// A moment of a fight.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Moment {
+    /// When.
+    pub time: f64,
+    /// When, in words.
+    pub at: String,
+    /// What happens.
+    pub what: String,
+    /// A few letters for a mark in the picture: "+64", "phase 2".
+    pub mark: String,
+    /// How matters stand after it: the force ratio, and what each side loses per unit of time.
+    pub standing: String,
+}
+
+/// The moments of `fight` from its start to its end, in order.
+pub fn timeline(statement: &Statement, fight: &Fight) -> Vec<Moment> {
+    let Some(trajectory) = &fight.trajectory else {
+        return Vec::new();
+    };
+    let mut moments = vec![moment(
+        statement,
+        trajectory,
+        0.0,
+        "the start".into(),
+        String::new(),
+    )];
+    let end = trajectory.ends().unwrap_or(f64::INFINITY);
+    for (place, instant) in trajectory
+        .instants
+        .iter()
+        .enumerate()
+        .filter(|(_, instant)| instant.time <= end)
+    {
+        let before = place.checked_sub(1).map(|before| &trajectory.instants[before]);
+        let parts = happenings(statement, trajectory, instant, before);
+        if !parts.is_empty() {
+            let what = parts
+                .iter()
+                .map(|part| part.0.as_str())
+                .collect::<Vec<_>>()
+                .join("; ");
+            let mark = parts
+                .iter()
+                .map(|part| part.1.as_str())
+                .filter(|mark| !mark.is_empty());
+            let mark = mark.collect::<Vec<_>>().join(" ");
+            moments.push(moment(statement, trajectory, instant.time, what, mark));
+        }
+    }
+    if let Some(what) = ending(statement, fight) {
+        moments.push(moment(statement, trajectory, end, what, String::new()));
+    }
+    moments
+}
+
+fn moment(statement: &Statement, trajectory: &Trajectory, time: f64, what: String, mark: String) -> Moment {
+    let at = with_unit(time, statement.unit);
+    Moment {
+        time,
+        at,
+        what,
+        mark,
+        standing: standing(statement, trajectory, time),
+    }
+}
+
+/// Each thing that happens at an instant, in words and as a mark.
+fn happenings(
+    statement: &Statement,
+    trajectory: &Trajectory,
+    instant: &Instant,
+    before: Option<&Instant>,
+) -> Vec<(String, String)> {
+    let mut parts = Vec::new();
+    let flow_before = before.map_or(Both::default(), |before| before.conditions.flow);
+    for side in Side::BOTH {
+        let name = &statement.names[side];
+        let unit = statement.unit.symbol();
+        if instant.arrivals[side] > 0.0 {
+            let size = strength(instant.arrivals[side]);
+            parts.push((format!("{size} join {name}"), format!("+{size}")));
+        }
+        let flow = instant.conditions.flow[side];
+        if flow != flow_before[side] {
+            let what = match flow {
+                0.0 => format!("nothing more flows to {name}"),
+                _ => format!("from now on {} per\u{a0}{unit} flow to {name}", three(flow)),
+            };
+            parts.push((what, String::new()));
+        }
+    }
+    for phase in &instant.phases {
+        parts.push((format!("phase {phase} begins"), format!("phase {phase}")));
+    }
+    for side in Side::BOTH {
+        let asked = instant.withdrawals[side];
+        if asked > 0.0 {
+            let name = &statement.names[side];
+            let there = withdrawn_at(trajectory, instant.time, side);
+            let short = if there < asked * (1.0 - 1e-12) {
+                format!(", of {} that were to go: no more were there", strength(asked))
+            } else {
+                String::new()
+            };
+            parts.push((
+                format!("{} leave {name}{short}", strength(there)),
+                format!("−{}", strength(there)),
+            ));
+        }
+    }
+    parts
+}
+
+/// How many of `side` went at the time `time`.
+fn withdrawn_at(trajectory: &Trajectory, time: f64, side: Side) -> f64 {
+    let place = trajectory
+        .stretches
+        .iter()
+        .position(|stretch| stretch.from == time);
+    let after = place.map_or(0.0, |place| trajectory.stretches[place].ledger[side].withdrawn);
+    let before = place
+        .and_then(|place| place.checked_sub(1))
+        .map(|place| &trajectory.stretches[place]);
+    after - before.map_or(0.0, |stretch| stretch.ledger[side].withdrawn)
+}
+
+/// The force ratio, and what each side loses per unit of time.
+fn standing(statement: &Statement, trajectory: &Trajectory, time: f64) -> String {
+    let names = &statement.names;
+    let unit = statement.unit.symbol();
+    let at = trajectory.strengths_at(time);
+    let there = format!("{} {}, {} {}", names.x, strength(at.x), names.y, strength(at.y));
+    let ratio = if at.x > 0.0 && at.y > 0.0 {
+        format!(", {} to 1", three(at.x / at.y))
+    } else {
+        String::new()
+    };
+    let losing = trajectory.losses_per_time(time);
+    let loss = |side: Side| format!("{} loses {} per\u{a0}{unit}", names[side], three(losing[side]));
+    format!("{there}{ratio}; {}, {}", loss(Side::X), loss(Side::Y))
+}
+
+fn ending(statement: &Statement, fight: &Fight) -> Option<String> {
+    let breaks = |side: Side| {
+        format!(
+            "{} {}",
+            statement.names[side],
+            super::sentence::breaks(statement, side)
+        )
+    };
+    Some(match (fight.outcome.breaks, fight.outcome.ended) {
+        (Breaks::X, _) => breaks(Side::X),
+        (Breaks::Y, _) => breaks(Side::Y),
+        (Breaks::Both, _) => "both break".into(),
+        (Breaks::Neither, Ended::Clock) => "the clock".into(),
+        (Breaks::Neither, Ended::Withdrawn) => "a side has nobody left, some of them withdrawn".into(),
+        (Breaks::Neither, _) => return None,
+    })
+}

@@ -1,0 +1,336 @@
+//! The working of an engagement with a schedule: each stretch with its equations, its method, the formula with numbers,
+//! and what it hands over to the next.
+
+use super::format::{time as time_in_words, with_unit};
+use super::math::*;
+use super::timeline::timeline;
+use super::working::{WorkingLine, area};
+use crate::conditions::Conditions;
+use crate::fight::{Effort, fight};
+use crate::linear_system::LinearSystem;
+use crate::outcome::{Method, Outcome};
+use crate::piece::{Motion, Piece};
+use crate::sides::{Both, Side};
+use crate::statement::{Statement, Values};
+use crate::stretch::Stretch;
+use crate::terms::{Engagement, SideTerms};
+use crate::trajectory::Trajectory;
+
+const NAMES: Both<&str> = Both { x: "x", y: "y" };
+
+/// The lines of the working, stretch by stretch.
+pub(super) fn lines(statement: &Statement, outcome: &Outcome) -> Vec<WorkingLine> {
+    let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+    let mut lines = vec![line("letters", letters(statement), None)];
+    let Some(trajectory) = &fight.trajectory else {
+        return lines;
+    };
+    let moments = timeline(statement, &fight);
+    for (place, stretch) in trajectory.stretches.iter().enumerate() {
+        if let Some(moment) = moments
+            .iter()
+            .find(|moment| moment.time == stretch.from && place > 0)
+        {
+            lines.push(line("", format!("At {}: {}", moment.at, moment.what), None));
+        }
+        lines.extend(stretch_lines(statement, trajectory, stretch, place));
+    }
+    lines.extend(end_lines(statement, trajectory, outcome));
+    lines
+}
+
+fn line(name: &'static str, words: impl Into<String>, math: Option<Math>) -> WorkingLine {
+    WorkingLine {
+        name,
+        words: words.into(),
+        math,
+    }
+}
+
+fn letters(statement: &Statement) -> String {
+    let names = &statement.names;
+    format!(
+        "x is the strength of {} and y that of {}, in {}; t is the time in {} since the beginning of each stretch; \
+         numbers to six significant digits",
+        names.x,
+        names.y,
+        statement.counted,
+        statement.unit.symbol()
+    )
+}
+
+fn stretch_lines(
+    statement: &Statement,
+    trajectory: &Trajectory,
+    stretch: &Stretch,
+    place: usize,
+) -> Vec<WorkingLine> {
+    let unit = statement.unit;
+    let until = match stretch.to {
+        Some(to) => format!("to {}", with_unit(to, unit)),
+        None => "on".into(),
+    };
+    let begins = both(|side| equal(&[marked(NAMES[side], "0"), number(stretch.start[side])]));
+    let number_of = place + 1;
+    let words = format!(
+        "Stretch {number_of}, from {} {until}, begins with",
+        with_unit(stretch.from, unit)
+    );
+    let mut lines = vec![line("", words, Some(begins))];
+    for side in Side::BOTH {
+        let words = format!("{} changes by", statement.names[side]);
+        lines.push(line("", words, Some(equation(&stretch.conditions, side))));
+    }
+    lines.extend(ways(statement, stretch));
+    lines.extend(method(statement, stretch));
+    if let Some(to) = stretch.to {
+        let length = to - stretch.from;
+        let last = place + 1 == trajectory.stretches.len();
+        let end = if last {
+            trajectory.end.unwrap_or_default()
+        } else {
+            stretch.strengths_at(length)
+        };
+        let hands = both(|side| equal(&[letter(NAMES[side]), number(end[side])]));
+        let words = format!("At its end, t = {}, it hands over", number(length).text);
+        lines.push(line(if last { "left" } else { "" }, words, Some(hands)));
+    }
+    lines
+}
+
+/// Two statements side by side.
+fn both(of: impl Fn(Side) -> Math) -> Math {
+    let (x, y) = (of(Side::X), of(Side::Y));
+    let mut both = x.clone();
+    both.mathml = format!("{}<mo>,</mo><mspace width=\"1em\"/>{}", x.mathml, y.mathml);
+    both.text = format!("{}, {}", x.text, y.text);
+    both
+}
+
+/// dx/dt with this stretch's numbers.
+fn equation(conditions: &Conditions, side: Side) -> Math {
+    let enemy = side.enemy();
+    let (own, other) = (letter(NAMES[side]), letter(NAMES[enemy]));
+    let mut gains = Vec::new();
+    let mut losses = Vec::new();
+    if conditions.flow[side] > 0.0 {
+        gains.push(number(conditions.flow[side]));
+    }
+    let fire = &conditions.fire[enemy];
+    if fire.takes_effect() {
+        let mut factors = vec![number(fire.rate)];
+        if let Some(growth) = conditions.growth[enemy] {
+            let open = plus(&[number(growth.value), times(&[number(growth.slope), letter("t")])]);
+            factors.push(power(&open, growth.power));
+        }
+        let shooters = fire.shooters().exponent;
+        if shooters != 0.0 {
+            factors.push(power(&other, shooters));
+        }
+        let [first, second] = fire.per_target();
+        if second.coefficient > 0.0 {
+            factors.push(over(&own, &plus(&[own.clone(), number(second.coefficient)])));
+        } else if first.exponent != 0.0 {
+            factors.push(power(&own, -first.exponent));
+        }
+        losses.push(times(&factors));
+    }
+    let part = conditions.part_lost(side);
+    if part > 0.0 {
+        losses.push(times(&[number(part), own]));
+    }
+    let steady = conditions.steadily_lost(side);
+    if steady > 0.0 {
+        losses.push(number(steady));
+    }
+    let right = match (gains.first(), losses.is_empty()) {
+        (None, true) => number(0.0),
+        (Some(gain), true) => gain.clone(),
+        (None, false) => negative(&plus(&losses)),
+        (Some(gain), false) => minus(gain, &plus(&losses)),
+    };
+    equal(&[derivative(NAMES[side]), right])
+}
+
+/// How far each side is from its break line.
+fn ways(statement: &Statement, stretch: &Stretch) -> Vec<WorkingLine> {
+    let engagement = statement.engagement(&Values::new());
+    let way = |side: Side| {
+        let ledger = &stretch.ledger[side];
+        let break_point = engagement.sides[side].break_point;
+        let lost = ledger.lost_before + ledger.losses.all;
+        let committed = times(&[number(break_point), number(ledger.committed.into())]);
+        let rest = number(f64::from(ledger.committed * break_point - lost));
+        let words = format!(
+            "{} breaks at {} of what it has committed; it may still lose",
+            statement.names[side],
+            number(break_point).text
+        );
+        line("", words, Some(equal(&[minus(&committed, &number(lost)), rest])))
+    };
+    Side::BOTH.into_iter().map(way).collect()
+}
+
+/// The method of a stretch, and its formula with numbers.
+fn method(statement: &Statement, stretch: &Stretch) -> Vec<WorkingLine> {
+    if let Some(system) = stretch.linear() {
+        return linear(system);
+    }
+    let words = match stretch.method() {
+        Method::ClosedForm => {
+            "It is solved by the state equation, which is constant along it, and a formula in time"
+        }
+        Method::Quadrature => {
+            "Who breaks and what is left come from the state equation, which is constant along it, the time from an \
+             integral"
+        }
+        Method::Integration => {
+            "It is integrated by Taylor series of order 20, each step good to the rounding of the strengths"
+        }
+    };
+    let constant = stretch.piece().and_then(|piece| state_equation(piece, stretch));
+    let mut lines = vec![line("", words, constant)];
+    lines.extend(
+        stretch
+            .piece()
+            .and_then(|piece| time_formula(statement, piece, stretch)),
+    );
+    lines
+}
+
+/// What X costs less what Y costs, from the beginning of the stretch down to x and y: 0 all along it.
+fn state_equation(piece: &Piece, stretch: &Stretch) -> Option<Math> {
+    let cost = |side: Side| {
+        let (from, to) = (number(stretch.start[side]), letter(NAMES[side]));
+        let terms: Vec<Math> = piece
+            .equation
+            .active(side)
+            .iter()
+            .map(|term| area(term, 1.0, &from, Some(&to)))
+            .collect();
+        (!terms.is_empty()).then(|| plus(&terms))
+    };
+    Some(equal(&[cost(Side::X)?, cost(Side::Y)?]))
+}
+
+/// How long the stretch is, from the strengths at both its ends, where it ends with a break at full rates.
+fn time_formula(statement: &Statement, piece: &Piece, stretch: &Stretch) -> Option<WorkingLine> {
+    let length = stretch.to? - stretch.from;
+    let plain = stretch.conditions.are_plain() && stretch.conditions.shared_growth() == Some(None);
+    if !plain || piece.motion == Motion::Still {
+        return None;
+    }
+    let engagement = Engagement {
+        sides: Both::of(|side| {
+            let terms = &statement.engagement(&Values::new()).sides[side];
+            SideTerms {
+                fire: stretch.conditions.fire[side],
+                ..terms.clone()
+            }
+        }),
+        ..statement.engagement(&Values::new())
+    };
+    let point = piece.point_at(length);
+    let loser = if point.fallen.x / stretch.start.x > point.fallen.y / stretch.start.y {
+        Side::X
+    } else {
+        Side::Y
+    };
+    let formula = super::times::formula(piece, &engagement, &point, loser);
+    Some(line(
+        "",
+        "From its first strengths to its last it takes",
+        Some(equal(&[letter("t"), formula, number(length)])),
+    ))
+}
+
+/// The eigenvalues of a linear system, and its strengths as sums of exponentials.
+fn linear(system: &LinearSystem) -> Vec<WorkingLine> {
+    let [high, low] = system.eigenvalues();
+    let mut math = equal(&[letter("λ"), number(high)]);
+    math.mathml += "<mo>,</mo>";
+    math.mathml += &number(low).mathml;
+    math.text += &format!(", {}", number(low).text);
+    let words = "It is linear, and solved in closed form by the exponentials of its eigenvalues";
+    let mut lines = vec![line("", words, Some(math))];
+    if let Some(parts) = system.exponentials() {
+        let strength = |side: Side| {
+            let term = |part: f64, value: f64| {
+                times(&[
+                    number(part),
+                    function("exp", &times(&[number(value), letter("t")])),
+                ])
+            };
+            let [steady, rising, falling] = parts[side];
+            let sum = plus(&[number(steady), term(rising, high), term(falling, low)]);
+            equal(&[letter(NAMES[side]), sum])
+        };
+        lines.push(line("", "Its strengths are", Some(both(strength))));
+    }
+    lines
+}
+
+fn end_lines(statement: &Statement, trajectory: &Trajectory, outcome: &Outcome) -> Vec<WorkingLine> {
+    let mut lines = Vec::new();
+    match (trajectory.ends(), outcome.time) {
+        (Some(_), Some(time)) => {
+            let words = format!(
+                "{}, after {}",
+                who(statement, outcome),
+                time_in_words(time, statement.unit)
+            );
+            lines.push(line("time", words, Some(equal(&[letter("t"), number(time)]))));
+        }
+        (Some(end), None) => {
+            let words = format!(
+                "Neither side has broken by {}",
+                time_in_words(end, statement.unit)
+            );
+            lines.push(line("clock", words, None));
+        }
+        (None, _) => {
+            let end = |side: Side| match outcome.sides()[side].end {
+                Some(end) => number(end).text,
+                None => "without bound".into(),
+            };
+            let words = format!(
+                "Neither side ever breaks; in the end x tends to {}, y to {}",
+                end(Side::X),
+                end(Side::Y)
+            );
+            lines.push(line("left", words, None));
+        }
+    }
+    for (name, ratio) in [
+        ("exchange", outcome.loss_exchange_ratio),
+        ("exchange.fraction", outcome.fractional_exchange_ratio),
+    ] {
+        let Some(ratio) = ratio else { continue };
+        let sides = outcome.sides();
+        let lost = Both::of(|side| number(sides[side].losses.fire + sides[side].losses.support));
+        let names = &statement.names;
+        let (words, math) = if name == "exchange" {
+            let words = format!(
+                "The loss exchange ratio, {}'s losses by fire and support over {}'s",
+                names.y, names.x
+            );
+            (words, over(&lost.y, &lost.x))
+        } else {
+            let part = Both::of(|side| over(&lost[side], &number(sides[side].committed)));
+            (
+                "The same, each over what its side committed".to_owned(),
+                over(&part.y, &part.x),
+            )
+        };
+        lines.push(line(name, words, Some(equal(&[math, number(ratio)]))));
+    }
+    lines
+}
+
+fn who(statement: &Statement, outcome: &Outcome) -> String {
+    match outcome.breaks {
+        crate::outcome::Breaks::X => format!("{} breaks first", statement.names.x),
+        crate::outcome::Breaks::Y => format!("{} breaks first", statement.names.y),
+        _ => "Both break at the same moment".into(),
+    }
+}

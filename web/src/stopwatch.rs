@@ -1,0 +1,36 @@
+//! The page's own measure of how long it keeps the browser from its other work, in the browser's list of measures.
+
+use crate::dom::Dom;
+use web_sys::Performance;
+
+/// Reading, working out and showing a text.
+pub(crate) const WORK: &str = "aftercount.work";
+/// Drawing both pictures.
+pub(crate) const DRAW: &str = "aftercount.draw";
+
+/// Measures from its start until it is dropped. Only the last measure of a name is kept.
+pub(crate) struct Stopwatch {
+    clock: Option<Performance>,
+    name: &'static str,
+}
+
+impl Stopwatch {
+    pub(crate) fn start(dom: &Dom, name: &'static str) -> Stopwatch {
+        let clock = dom.window.performance();
+        if let Some(clock) = &clock {
+            clock.clear_marks_with_mark_name(name);
+            clock.clear_measures_with_measure_name(name);
+            // A browser that keeps no marks measures nothing, and loses nothing.
+            let _ = clock.mark(name);
+        }
+        Stopwatch { clock, name }
+    }
+}
+
+impl Drop for Stopwatch {
+    fn drop(&mut self) {
+        if let Some(clock) = &self.clock {
+            let _ = clock.measure_with_start_mark(self.name, self.name);
+        }
+    }
+}
