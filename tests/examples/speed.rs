@@ -6,16 +6,14 @@
 
 use aftercount_core::answer::answer;
 use aftercount_core::course::Course;
-use aftercount_core::fight::{Effort, break_line};
-use aftercount_core::fight::{ahead, fight};
+use aftercount_core::fight::{Effort, break_line, fight, plain_piece};
 use aftercount_core::golden;
 use aftercount_core::laws::along_orbit::AlongOrbit;
 use aftercount_core::outcome::{Breaks, Method};
 use aftercount_core::pairs::Pairs;
-use aftercount_core::sides::{Both, Side};
+use aftercount_core::sides::Side;
 use aftercount_core::statement::{Statement, Values};
 use aftercount_core::terms::Engagement;
-use aftercount_core::trajectory::Piece;
 use serde_json::{Value, json};
 use std::hint::black_box;
 use std::io::{BufWriter, Write};
@@ -78,16 +76,14 @@ fn ways(engagement: &Engagement) -> Option<(f64, f64, f64)> {
     if outcome.method != Method::Quadrature {
         return None;
     }
-    let start = Both::of(|side| engagement.sides[side].start);
-    let fire = Both::of(|side| engagement.sides[side].fire);
-    let piece = Piece::new(0.0, start, fire, ahead(engagement));
+    let piece = plain_piece(engagement)?;
     let line = break_line(engagement, loser);
     let point = piece.point_with(loser, line);
     let by_quadrature = || AlongOrbit { piece: &piece }.time_to(&point).value;
     // The integrator is told when to stop, which it would have to find out.
     let horizon = 1.01 * by_quadrature();
     let by_integrator = || {
-        Course::follow(start, &fire, horizon, f64::EPSILON)
+        Course::follow(piece.start, &piece.fire, horizon, f64::EPSILON)
             .time_to(loser, f64::from(line))
             .unwrap_or(f64::NAN)
     };
