@@ -68,11 +68,10 @@
   window.addEventListener("unhandledrejection", (event) => look(event.reason));
 
   Promise.resolve()
-    .then(() => WebAssembly.compile(decode(document.getElementById("wasm").textContent)))
-    .then((module) => {
-      compiled = module;
-      start(undefined);
-    })
+    .then(() => new Blob([decode(document.getElementById("wasm").textContent)]).stream())
+    .then((packed) => new Response(packed.pipeThrough(new DecompressionStream("gzip"))).arrayBuffer())
+    .then((bytes) => WebAssembly.compile(bytes))
+    .then((module) => { compiled = module; start(undefined); })
     .catch((error) => {
       document.getElementById("no-engine").hidden = false;
       console.error(error);

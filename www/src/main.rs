@@ -27,8 +27,8 @@ use crate::workspace::Workspace;
 
 /// What the page may weigh: it is mailed, and carried over on discs.
 const LIMITS: Limits = Limits {
-    raw: 900_000,
-    gzipped: 350_000,
+    raw: 700_000,
+    gzipped: 300_000,
 };
 
 const USAGE: &str = "cargo run -p aftercount-www [-- --no-open]\n\n\
@@ -83,7 +83,8 @@ fn build(workspace: &Workspace) -> Result<String> {
     inline::check("boot.js", &boot)?;
     inline::check("the glue", &bound.glue)?;
 
-    let encoded = BASE64.encode(&bound.wasm);
+    // Packed, since base64 makes it a third larger again; every browser that runs the program unpacks it.
+    let encoded = BASE64.encode(sizes::packed(&bound.wasm)?);
     let version = version(&[
         template.as_bytes(),
         style.as_bytes(),

@@ -22,14 +22,19 @@ pub(crate) struct Sizes {
     gzipped: usize,
 }
 
+/// The bytes through gzip at its best, the same ones each time.
+pub(crate) fn packed(bytes: &[u8]) -> Result<Vec<u8>> {
+    let mut packed = GzEncoder::new(Vec::new(), Compression::best());
+    packed.write_all(bytes)?;
+    Ok(packed.finish()?)
+}
+
 impl Sizes {
     /// Weighs a page.
     pub(crate) fn of(page: &[u8]) -> Result<Self> {
-        let mut packed = GzEncoder::new(Vec::new(), Compression::best());
-        packed.write_all(page)?;
         Ok(Self {
             raw: page.len(),
-            gzipped: packed.finish()?.len(),
+            gzipped: packed(page)?.len(),
         })
     }
 

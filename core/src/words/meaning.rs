@@ -64,11 +64,13 @@ pub fn break_point(statement: &Statement, side: Side) -> String {
     if point == 1.0 {
         return "Fights to the last.".into();
     }
+    let moves = !engagement.sides[side].joins.is_empty() || !engagement.sides[side].flows.is_empty();
     format!(
-        "Breaks at {} lost: {} left of {}.",
+        "Breaks at {} lost: {} left of {}{}.",
         per_cent(point),
         strength(break_line(&engagement, side).into()),
-        strength(engagement.committed_at_start(side))
+        strength(engagement.committed_at_start(side)),
+        if moves { ", until somebody joins" } else { "" }
     )
 }
 

@@ -149,7 +149,7 @@ impl<'a> Writer<'a> {
         let counted = &self.statement.counted;
         let words = format!(
             "x is the strength of {} and y that of {}, in {counted}; t is the time in {unit}; b is the rate of {}'s \
-             fire and a that of {}'s; numbers to six significant digits",
+             fire and a that of {}'s; numbers to six significant digits, worked out in full: by hand the last may differ",
             names.x, names.y, names.x, names.y
         );
         self.line("letters", words, None);

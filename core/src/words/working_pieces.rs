@@ -51,7 +51,7 @@ fn letters(statement: &Statement) -> String {
     let names = &statement.names;
     format!(
         "x is the strength of {} and y that of {}, in {}; t is the time in {} since the beginning of each stretch; \
-         numbers to six significant digits",
+         numbers to six significant digits, worked out in full: by hand the last may differ",
         names.x,
         names.y,
         statement.counted,
