@@ -52,6 +52,9 @@ pub fn fight(engagement: &Engagement, effort: Effort) -> Fight {
     }
 }
 
+/// How often between two instants a side is found gone, at most; each side can be so once, and once more with what flows in.
+const MOST_ROUNDS: u32 = 4;
+
 /// A fight in the making.
 struct Run {
     stretches: Vec<Stretch>,
@@ -183,6 +186,7 @@ impl Run {
         } else {
             until * (1.0 + TIE)
         };
+        let mut rounds = 0;
         loop {
             let ways = Both::of(|side| {
                 let break_point = engagement.sides[side].break_point;
@@ -217,11 +221,19 @@ impl Run {
             let Some(first) = first else {
                 return self.run_out(stretch, &conditions, until);
             };
+            let broken = Both::of(|side| first.breaks.includes(side) && ways[side].sunk == 0.0);
+            if Breaks::of(broken).is_none() {
+                // A side with nobody left may have somebody the next moment, and none the one after: it is not asked for
+                // ever whether it is gone.
+                rounds += 1;
+                if rounds > MOST_ROUNDS {
+                    return self.run_out(stretch, &conditions, until);
+                }
+            }
             self.book(&conditions, first.time, &first.standing);
             at += first.time;
             stretch.to = Some(at);
             self.stretches.push(stretch);
-            let broken = Both::of(|side| first.breaks.includes(side) && ways[side].sunk == 0.0);
             if let Some(breaks) = Breaks::of(broken) {
                 self.finish(breaks, Ended::Break, at);
                 return true;
@@ -477,4 +489,21 @@ pub fn descent(engagement: &Engagement, side: Side) -> Descent {
 /// The strength at which `side` breaks at the start: (1 − break point) of what it has committed.
 pub fn break_line(engagement: &Engagement, side: Side) -> Double {
     descent(engagement, side).to
+}
+
+#[cfg(test)]
+mod tests {
+    use crate::answer::{Answer, answer};
+
+    /// A side that was withdrawn to the last while a flow kept bringing some: it was found gone again and again, without
+    /// end.
+    #[test]
+    fn a_side_that_only_its_flow_keeps_alive_is_not_asked_for_ever() {
+        let link = "x.start=493&x.fire=none&x.break=0.5&y.start=142&y.fire=area&y.rate=9216e-3&y.lost=9&x.join=65@0,-11@5\
+                    &x.flow=7@0/7&y.join=42@1,-15@4&phase1.from=2&phase1.x.support.area=0.06";
+        let Answer::Outcome { outcome, .. } = answer(link) else {
+            panic!("it is worked out")
+        };
+        assert!(outcome.pieces.len() < 40, "{} pieces", outcome.pieces.len());
+    }
 }
