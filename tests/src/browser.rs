@@ -77,6 +77,14 @@ pub struct Browser {
 }
 
 impl Browser {
+    /// A browser that has opened `link` and shows what it says.
+    pub fn opened(link: &str) -> Browser {
+        let browser = Browser::start();
+        browser.open(link);
+        browser.settle(link);
+        browser
+    }
+
     /// Starts a browser that shows an empty page.
     ///
     /// # Panics

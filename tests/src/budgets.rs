@@ -37,7 +37,7 @@ pub fn hold(name: &str, budgets: &[Budget]) {
     for row in tables::read(name) {
         let answer = outcome(row.text("link"));
         wrong.extend(wrong_words(&row, &answer));
-        let (error, column) = error_of(&row, &answer);
+        let (error, column) = error_of(&row, &answer, &COLUMNS);
         let words = || format!("line {}, {column}: {}", row.line, row.text("link"));
         if error > hard_limit(&answer) || error.is_nan() {
             wrong.push(format!("off by {error:.2e}, {}", words()));
@@ -97,10 +97,10 @@ fn wrong_words(row: &Row, answer: &Value) -> Vec<String> {
     words.chain(numbers).collect()
 }
 
-/// The largest relative error of a row, and the column that has it.
-fn error_of(row: &Row, answer: &Value) -> (f64, &'static str) {
+/// The largest relative error of a row over these columns and their places in the answer, and the column that has it.
+pub fn error_of(row: &Row, answer: &Value, columns: &[(&'static str, &'static str)]) -> (f64, &'static str) {
     let mut worst = (0.0, "time");
-    for (column, path) in COLUMNS {
+    for &(column, path) in columns {
         let (Some(found), Some(known)) = (number(answer, path), row.number(column)) else {
             continue;
         };

@@ -5,16 +5,9 @@ use aftercount_tests::browser::{Browser, Key, changed, native, page_url};
 
 const LINK: &str = "x.start=600&x.rate=0.04&y.start=400&y.rate=0.05&v=1";
 
-fn opened() -> Browser {
-    let browser = Browser::start();
-    browser.open(LINK);
-    browser.settle(LINK);
-    browser
-}
-
 #[test]
 fn reload_keeps_what_was_typed() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     browser.write("x.start", "650");
     browser.write("x.name", "Tarn & <Sons>, 100 %");
     let link = changed(&changed(LINK, "x.start", "650"), "x.name", "Tarn & <Sons>, 100 %");
@@ -37,7 +30,7 @@ fn reload_keeps_what_was_typed() {
 
 #[test]
 fn back_forward_undo_and_redo_walk_from_field_to_field() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     browser.write("x.start", "700");
     browser.leave();
     let first = changed(LINK, "x.start", "700");
@@ -71,7 +64,7 @@ fn back_forward_undo_and_redo_walk_from_field_to_field() {
 
 #[test]
 fn a_step_back_undoes_a_blank_form() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     browser.click("#blank");
     browser.wait_state("empty");
     browser.click("#undo");
@@ -113,7 +106,7 @@ fn a_query_of_somebody_else_s_is_left_alone() {
 
 #[test]
 fn another_fragment_is_another_engagement() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     let other = changed(LINK, "x.start", "123");
     browser.script("location.hash = arguments[0];", vec![other.clone().into()]);
     assert_eq!(browser.settle(&other), native(&other));
@@ -125,7 +118,7 @@ fn another_fragment_is_another_engagement() {
 
 #[test]
 fn nothing_is_stored() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     browser.write("x.start", "700");
     browser.settle(&changed(LINK, "x.start", "700"));
     let stored = browser.script(
@@ -138,7 +131,7 @@ fn nothing_is_stored() {
 
 #[test]
 fn a_reloaded_blank_form_is_blank_and_undo_keeps_the_focus() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     browser.click("#blank");
     browser.wait_state("empty");
     let blank = "return document.getElementById('problems').hidden
@@ -175,7 +168,7 @@ fn pieces_without_a_key_and_second_texts_can_be_taken_out() {
 
 #[test]
 fn a_refused_write_of_the_address_is_tried_again() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     browser.write("x.start", "65");
     browser.settle(&changed(LINK, "x.start", "65"));
     let refuse = "window.refused = 0;

@@ -6,13 +6,6 @@ use aftercount_tests::browser::{Browser, Key, changed, native, native_sentence};
 const LINK: &str = "x.name=Ondrel&x.start=600&x.rate=0.04&x.break=0.3&y.name=Vessary&y.start=400&y.rate=0.06&y.break=0.4\
 &y.join=64@4,%2020@6&v=1";
 
-fn opened() -> Browser {
-    let browser = Browser::start();
-    browser.open(LINK);
-    browser.settle(LINK);
-    browser
-}
-
 /// The id of what has the focus.
 fn focused(browser: &Browser) -> String {
     let id = browser.script("return document.activeElement.id;", vec![]);
@@ -37,7 +30,7 @@ fn write_cell(browser: &Browser, id: &str, text: &str) {
 
 #[test]
 fn rows_and_text_are_one() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     assert_eq!(browser.value("y.join"), "64@4, 20@6");
     assert_eq!(cell(&browser, "y.join.2.size"), "20");
     write_cell(&browser, "y.join.1.time", "3.5");
@@ -60,7 +53,7 @@ fn rows_and_text_are_one() {
 
 #[test]
 fn rows_are_added_moved_and_removed_by_keyboard() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     let settled = |text: &str| {
         let link = changed(LINK, "y.join", text);
         assert_eq!(browser.settle(&link), native(&link), "{text}");
@@ -117,7 +110,7 @@ fn every_item_with_a_problem_is_marked_and_stays_as_typed() {
 
 #[test]
 fn phases_are_edited_in_fields_that_bear_the_links_keys() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     browser.press("#reading", Key::Home);
     browser.press("#reading", Key::PageUp);
     browser.click("#add-phase");
@@ -189,7 +182,7 @@ fn the_timeline_and_what_decided_it_are_said() {
 
 #[test]
 fn continue_from_here_is_one_step_that_undo_takes_back() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     let whole = native(LINK);
     browser.press("#reading", Key::Home);
     browser.press("#reading", Key::PageUp);

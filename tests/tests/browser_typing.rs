@@ -4,16 +4,9 @@ use aftercount_tests::browser::{Browser, Key, changed, native, native_sentence};
 
 const LINK: &str = "x.name=Ondrel&x.start=600&x.rate=0.04&x.break=0.3&y.name=Vessary&y.start=464&y.rate=0.05&y.break=0.5&v=1";
 
-fn opened() -> Browser {
-    let browser = Browser::start();
-    browser.open(LINK);
-    browser.settle(LINK);
-    browser
-}
-
 #[test]
 fn every_field_changes_the_answer() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     let mut link = LINK.to_owned();
     let fields = [
         ("x.start", "700"),
@@ -50,7 +43,7 @@ fn every_field_changes_the_answer() {
 
 #[test]
 fn every_keystroke_counts() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     // 6, 60, 600, 6000: each is an engagement of its own, and the last one stands.
     browser.write("x.start", "6");
     let mut link = changed(LINK, "x.start", "6");
@@ -68,7 +61,7 @@ fn every_keystroke_counts() {
 
 #[test]
 fn a_problem_stands_beside_its_field_and_the_last_figures_stay() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     // When it was typed, and when the problem was first seen.
     browser.script(
         "const seen = document.getElementById('y.rate.problem');
@@ -123,7 +116,7 @@ fn a_problem_stands_beside_its_field_and_the_last_figures_stay() {
 
 #[test]
 fn leaving_a_field_shows_its_problem_at_once_and_enter_submits_nothing() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     browser.write("x.start", "1,000");
     browser.leave();
     browser.wait_text("[id='x.start.problem']", "write 1000");
@@ -141,7 +134,7 @@ fn leaving_a_field_shows_its_problem_at_once_and_enter_submits_nothing() {
 
 #[test]
 fn blank_form_asks_for_what_is_missing_and_nothing_more() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     browser.click("#blank");
     let empty = browser.wait_state("empty");
     assert_eq!((empty.settled, empty.time), (None, None));
@@ -168,7 +161,7 @@ fn blank_form_asks_for_what_is_missing_and_nothing_more() {
 
 #[test]
 fn the_reading_line_answers_keys_mouse_and_finger() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     let reading = || {
         let script = "const r = document.getElementById('reading');
             return [r.ariaValueNow, r.ariaValueMin, r.ariaValueMax, r.ariaValueText];";
@@ -235,7 +228,7 @@ fn the_reading_line_answers_keys_mouse_and_finger() {
 /// What only some laws need is in sight only then, or where it has a problem; the text keeps it all the while.
 #[test]
 fn fields_of_a_law_come_and_go_and_keep_their_text() {
-    let browser = opened();
+    let browser = Browser::opened(LINK);
     let in_sight = |name: &str| {
         let script = "return document.getElementsByName(arguments[0])[0].checkVisibility();";
         browser.script(script, vec![name.into()]) == true

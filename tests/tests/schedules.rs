@@ -2,7 +2,8 @@
 //!
 //! `reference/schedules.py` made the table, by Taylor series in decimal arithmetic.
 
-use aftercount_tests::tables::{self, Errors, Row, number, outcome, relative_error};
+use aftercount_tests::budgets::error_of;
+use aftercount_tests::tables::{self, Errors, Row, number, outcome};
 use serde_json::Value;
 use std::collections::{BTreeMap, BTreeSet};
 
@@ -54,7 +55,7 @@ fn every_kind_keeps_its_budget() {
     for row in tables::read("schedules.tsv") {
         let answer = outcome(row.text("link"));
         wrong.extend(wrong_words(&row, &answer));
-        let (error, column) = error_of(&row, &answer);
+        let (error, column) = error_of(&row, &answer, &COLUMNS);
         let words = || format!("line {}, {column}: {}", row.line, row.text("link"));
         if error > hard_limit(&answer) || error.is_nan() {
             wrong.push(format!("off by {error:.2e}, {}", words()));
@@ -112,21 +113,6 @@ fn wrong_words(row: &Row, answer: &Value) -> Vec<String> {
         .filter(|(column, path)| number(answer, path).is_some() != row.number(column).is_some())
         .map(|(column, path)| said(column, format!("{:?}", number(answer, path))));
     words.chain(numbers).collect()
-}
-
-/// The largest relative error of a row, and the column that has it.
-fn error_of(row: &Row, answer: &Value) -> (f64, &'static str) {
-    let mut worst = (0.0, "time");
-    for (column, path) in COLUMNS {
-        let (Some(found), Some(known)) = (number(answer, path), row.number(column)) else {
-            continue;
-        };
-        let error = relative_error(found, known);
-        if error > worst.0 || error.is_nan() {
-            worst = (error, column);
-        }
-    }
-    worst
 }
 
 #[test]

@@ -12,7 +12,6 @@ use crate::sides::{Both, Side};
 pub static AIMED: Law = Law {
     word: "aimed",
     label: "Aimed: shooters pick their targets",
-    formula: "b·S",
     source: "Lanchester 1916; Osipov 1915",
     rate: RateMeaning::TargetsPerShooter,
     needs: &[],

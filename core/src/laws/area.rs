@@ -12,7 +12,6 @@ use crate::sides::Both;
 pub static AREA: Law = Law {
     word: "area",
     label: "Area: fire covers the ground they are on",
-    formula: "b·S·T",
     source: "Lanchester 1916",
     rate: RateMeaning::FractionPerShooter,
     needs: &[],

@@ -10,7 +10,6 @@ use super::{Law, NO_POWER, Power, RateMeaning};
 pub static LOGARITHMIC: Law = Law {
     word: "logarithmic",
     label: "Logarithmic: losses follow the targets alone",
-    formula: "b·T",
     source: "Peterson 1953/1967",
     rate: RateMeaning::Fraction,
     needs: &[],

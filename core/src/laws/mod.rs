@@ -66,8 +66,6 @@ pub struct Law {
     pub word: &'static str,
     /// The words of the form.
     pub label: &'static str,
-    /// The losses it causes per unit of time, for `b` the rate, `S` shooters, `T` targets.
-    pub formula: &'static str,
     /// Where it was published.
     pub source: &'static str,
     /// What its rate is measured in.

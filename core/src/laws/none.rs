@@ -6,7 +6,6 @@ use super::{Law, NO_POWER, Power, RateMeaning};
 pub static NONE: Law = Law {
     word: "none",
     label: "None",
-    formula: "0",
     source: "no fire",
     rate: RateMeaning::NoRate,
     needs: &[],

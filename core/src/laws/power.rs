@@ -9,7 +9,6 @@ use super::{Law, NO_POWER, Power, RateMeaning};
 pub static POWER: Law = Law {
     word: "power",
     label: "Power: exponents of your own",
-    formula: "b·S^p·T^q",
     source: "Helmbold 1965; Bracken 1995",
     rate: RateMeaning::PerPowers,
     needs: &["p", "q"],

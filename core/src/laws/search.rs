@@ -10,7 +10,6 @@ use super::{Law, Power, RateMeaning};
 pub static SEARCH: Law = Law {
     word: "search",
     label: "Search: aimed, once a target is found",
-    formula: "b·S·T/(T + s)",
     source: "Brackney 1959",
     rate: RateMeaning::TargetsPerShooterInPlenty,
     needs: &["half"],
