@@ -1,0 +1,125 @@
+//! Lists of reserves and of flows.
+
+use super::name::Name;
+use super::reader::Reader;
+use super::wrong::{plain, read_quantity};
+use crate::keys::LARGEST;
+use crate::problem::Problem;
+use crate::quantity::Quantity;
+use crate::terms::{Flow, Join};
+
+/// Items of a list that are worked out at most.
+const LONGEST_LIST: usize = 20;
+
+impl<'a> Reader<'a> {
+    /// The items of a list, split after decoding, each with its number.
+    fn items(&self, key: Name) -> Vec<(u32, &'a str)> {
+        let Some((_, text)) = self.text(key) else {
+            return Vec::new();
+        };
+        (1..).zip(text.split(',').map(str::trim)).collect()
+    }
+
+    fn report_item(&mut self, key: Name, item: u32, found: &str, problem: impl Into<String>) {
+        // Not by its text: that is no longer to be had once an item before it is in trouble, and each is reported.
+        if let Some(place) = self.place(key) {
+            let problem = Problem {
+                item: Some(item),
+                ..Problem::at(&key.to_string(), found, problem)
+            };
+            self.problems.push((place, problem));
+        }
+    }
+
+    /// A quantity of an item, which must be a number for now, from `low` to the largest.
+    fn part(&mut self, key: Name, item: (u32, &str), text: &str, low: f64) -> Option<Quantity> {
+        let problem = match read_quantity(text) {
+            Ok(Quantity::Number(value)) if value < low => format!("`{}` must be {low} or more", text.trim()),
+            Ok(Quantity::Number(value)) if value.abs() > LARGEST => {
+                format!("`{}` must be at most {}", text.trim(), plain(LARGEST))
+            }
+            Ok(quantity @ Quantity::Number(_)) => return Some(quantity),
+            Ok(_) => {
+                "an interval or a question is known, but not yet worked out by this copy: write one number"
+                    .into()
+            }
+            Err(problem) => format!("`{}`: {problem}", text.trim()),
+        };
+        self.report_item(key, item.0, item.1, problem);
+        None
+    }
+
+    /// Whether a list is short enough to be worked out.
+    fn is_short(&mut self, key: Name, items: &[(u32, &str)]) -> bool {
+        let short = items.len() <= LONGEST_LIST;
+        if !short {
+            self.report(
+                key,
+                format!("has {} items; at most {LONGEST_LIST} are worked out", items.len()),
+            );
+        }
+        short
+    }
+
+    pub(super) fn joins(&mut self, key: Name) -> Vec<Join<Quantity>> {
+        let items = self.items(key);
+        if !self.is_short(key, &items) {
+            return Vec::new();
+        }
+        let mut joins = Vec::new();
+        for item in items {
+            let Some((size, time)) = item.1.split_once('@') else {
+                self.report_item(key, item.0, item.1, "write it as size@time, such as 64@4");
+                continue;
+            };
+            let size = self.part(key, item, size, -LARGEST);
+            let time = self.part(key, item, time, 0.0);
+            joins.extend(size.zip(time).map(|(size, time)| Join { size, time }));
+        }
+        joins
+    }
+
+    pub(super) fn flows(&mut self, key: Name) -> Vec<Flow<Quantity>> {
+        let items = self.items(key);
+        if !self.is_short(key, &items) {
+            return Vec::new();
+        }
+        let mut flows = Vec::new();
+        for item in items {
+            let parts = item
+                .1
+                .split_once('@')
+                .and_then(|(rate, when)| Some((rate, when.split_once('/')?)));
+            let Some((rate, (from, to))) = parts else {
+                self.report_item(
+                    key,
+                    item.0,
+                    item.1,
+                    "write it as rate@from/to, such as 5@2/8, or 5@2/ without an end",
+                );
+                continue;
+            };
+            let rate = self.part(key, item, rate, 0.0);
+            let from = self.part(key, item, from, 0.0);
+            let endless = to.trim().is_empty();
+            let to = if endless {
+                None
+            } else {
+                self.part(key, item, to, 0.0)
+            };
+            let (Some(rate), Some(from)) = (rate, from) else {
+                continue;
+            };
+            if let (Quantity::Number(from), Some(Quantity::Number(to))) = (from, to)
+                && to <= from
+            {
+                self.report_item(key, item.0, item.1, "must end after it begins");
+                continue;
+            }
+            if endless || to.is_some() {
+                flows.push(Flow { rate, from, to });
+            }
+        }
+        flows
+    }
+}

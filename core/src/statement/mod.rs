@@ -1,0 +1,79 @@
+//! What the pairs say, or the list of what is wrong with them.
+
+mod lists;
+mod name;
+mod phases;
+mod reader;
+mod time_unit;
+mod whole;
+mod wrong;
+
+pub use time_unit::TimeUnit;
+
+use crate::pairs::Pairs;
+use crate::problem::Problem;
+use crate::quantity::Quantity;
+use crate::sides::Both;
+use crate::terms::{Engagement, Terms};
+use reader::Reader;
+use std::collections::BTreeMap;
+use wrong::whole_problem;
+
+/// Numbers for slots, in place of those of the statement.
+pub type Values = BTreeMap<String, f64>;
+
+/// What a link says, in order.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Statement {
+    /// A name for the engagement; empty where none is given, as the other free texts.
+    pub title: String,
+    /// Assumptions and sources.
+    pub note: String,
+    /// A handling marking.
+    pub marking: String,
+    /// The unit of time.
+    pub unit: TimeUnit,
+    /// What strength counts, in the plural.
+    pub counted: String,
+    /// What the sides are called.
+    pub names: Both<String>,
+    /// Its quantities.
+    pub terms: Terms<Quantity>,
+}
+
+impl Statement {
+    /// Reads what `pairs` say.
+    ///
+    /// # Errors
+    /// Every problem at once, in the order of the link, then the missing keys; never an empty list.
+    pub fn read(pairs: &Pairs) -> Result<Statement, Vec<Problem>> {
+        if let Some(problem) = whole_problem(pairs) {
+            return Err(vec![problem]);
+        }
+        let mut reader = Reader::new(pairs);
+        reader.check_keys();
+        let statement = reader.statement();
+        let problems = reader.into_problems();
+        match statement {
+            Some(statement) if problems.is_empty() => Ok(statement),
+            _ => Err(problems),
+        }
+    }
+
+    /// The engagement in plain numbers: those of `values` in their slots, the statement's own in the others.
+    ///
+    /// This version reads plain numbers only, so every slot has one; an interval counts as its likeliest or middle
+    /// value and a question without a number as 0 until they are worked out.
+    pub fn engagement(&self, values: &Values) -> Engagement {
+        let own = |quantity: &Quantity| match quantity {
+            Quantity::Number(value) => *value,
+            Quantity::Interval { low, likely, high } => likely.unwrap_or(low / 2.0 + high / 2.0),
+            Quantity::Question { now, .. } => now.unwrap_or(0.0),
+        };
+        if values.is_empty() {
+            return self.terms.map_unnamed(own);
+        }
+        self.terms
+            .map(|slot, quantity| values.get(slot).copied().unwrap_or_else(|| own(quantity)))
+    }
+}

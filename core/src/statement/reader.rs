@@ -1,0 +1,196 @@
+//! Collects what the pairs say, key by key, and their problems by place.
+
+use super::name::Name;
+use super::wrong::{key_problem, read_quantity, within_limits};
+use crate::keys::{self, Key, Kind};
+use crate::pairs::Pairs;
+use crate::problem::{Problem, is_hidden};
+use crate::quantity::Quantity;
+
+/// Collects what the pairs say, and their problems by place.
+pub(super) struct Reader<'a> {
+    pub(super) pairs: &'a Pairs,
+    /// Where each key without a phase stands first, by its slot.
+    places: [usize; keys::SLOTS],
+    /// Where keys that begin with `phase` stand.
+    pub(super) phased: Vec<usize>,
+    /// Problems with their place in the link; missing keys come behind them all.
+    pub(super) problems: Vec<(usize, Problem)>,
+}
+
+/// The place of what does not stand in the link.
+pub(super) const MISSING: usize = usize::MAX;
+
+impl<'a> Reader<'a> {
+    pub(super) fn new(pairs: &'a Pairs) -> Reader<'a> {
+        Reader {
+            pairs,
+            places: [MISSING; keys::SLOTS],
+            phased: Vec::new(),
+            problems: pairs.problems(),
+        }
+    }
+
+    pub(super) fn into_problems(mut self) -> Vec<Problem> {
+        self.problems.sort_by_key(|(place, _)| *place);
+        self.problems.into_iter().map(|(_, problem)| problem).collect()
+    }
+
+    /// Whether the text as text is right at `place`.
+    pub(super) fn is_decoded(&self, place: usize) -> bool {
+        !self.problems.iter().any(|(at, _)| *at == place)
+    }
+
+    /// Finds where each key stands: it is known, worked out, and stands once.
+    pub(super) fn check_keys(&mut self) {
+        let pairs = self.pairs;
+        for (place, (key, text)) in pairs.iter().enumerate() {
+            let slot = keys::slot(key);
+            let twice = self.stands_before(place, key, slot);
+            if !self.is_decoded(place) {
+                continue;
+            }
+            if let Some(problem) = key_problem(slot.map(keys::row), key, text) {
+                self.problems.push((place, problem));
+            } else if twice {
+                self.problems.push((
+                    place,
+                    Problem::at(key, text, format!("`{key}` stands twice: keep one")),
+                ));
+            }
+        }
+    }
+
+    /// Whether the key at `place` already stands before it; notes the place. An unknown key is in trouble anyway.
+    fn stands_before(&mut self, place: usize, key: &str, slot: Option<usize>) -> bool {
+        if let Some(slot) = slot {
+            let before = self.places[slot] != MISSING;
+            if !before {
+                self.places[slot] = place;
+            }
+            return before;
+        }
+        let phased = key.starts_with("phase");
+        let before = phased && self.phased.iter().any(|at| self.pairs.at(*at).0 == key);
+        if phased {
+            self.phased.push(place);
+        }
+        before
+    }
+
+    /// Where a key stands first.
+    pub(super) fn place(&self, name: Name) -> Option<usize> {
+        let Some(number) = name.phase else {
+            return Some(self.places[name.slot()?]).filter(|place| *place != MISSING);
+        };
+        let is_it = |place: &usize| name.is_in_phase(number, self.pairs.at(*place).0);
+        self.phased.iter().copied().find(is_it)
+    }
+
+    /// Whether a key is absent or its text empty.
+    pub(super) fn is_blank(&self, name: Name) -> bool {
+        self.place(name)
+            .is_none_or(|place| self.pairs.at(place).1.trim().is_empty())
+    }
+
+    /// The text of a key with its outer blanks gone, and its place; `None` where it is empty, absent, or already in
+    /// trouble.
+    pub(super) fn text(&self, name: Name) -> Option<(usize, &'a str)> {
+        let place = self.place(name)?;
+        let text = self.pairs.at(place).1.trim();
+        (!text.is_empty() && self.is_decoded(place)).then_some((place, text))
+    }
+
+    /// A problem at `key`, in its place.
+    pub(super) fn report(&mut self, key: Name, problem: impl Into<String>) {
+        if let Some((place, text)) = self.text(key) {
+            self.problems
+                .push((place, Problem::at(&key.to_string(), text, problem)));
+        }
+    }
+
+    pub(super) fn free_text(&mut self, key: Name) -> String {
+        let Some((_, text)) = self.text(key) else {
+            return String::new();
+        };
+        let Some(Key {
+            kind: Kind::Text(most),
+            ..
+        }) = key.row()
+        else {
+            return String::new();
+        };
+        if let Some(hidden) = text.chars().find(|letter| is_hidden(*letter)) {
+            let code = u32::from(hidden);
+            self.report(
+                key,
+                format!("holds a control or direction character (U+{code:04X}): leave it out"),
+            );
+        }
+        let length = text.chars().count();
+        if length > *most {
+            self.report(key, format!("is {length} characters long; write at most {most}"));
+        }
+        text.into()
+    }
+
+    pub(super) fn choice(&mut self, key: Name) -> Option<&'static str> {
+        let (_, text) = self.text(key)?;
+        let Some(Key {
+            kind: Kind::Choice(words),
+            ..
+        }) = key.row()
+        else {
+            return None;
+        };
+        let word = words.iter().find(|word| **word == text).copied();
+        if word.is_none() {
+            self.report(
+                key,
+                match key.key {
+                    "v" => "this copy reads version 1 of the link only: write 1".into(),
+                    _ => format!("write one of {}", words.join(", ")),
+                },
+            );
+        }
+        word
+    }
+
+    /// The items of a list, split after decoding, each with its number.
+    /// A quantity within its key's limits; `None` where it is absent or in trouble.
+    pub(super) fn quantity(&mut self, key: Name) -> Option<Quantity> {
+        let (_, text) = self.text(key)?;
+        let row = key.row()?;
+        match read_quantity(text).and_then(|quantity| within_limits(row, quantity)) {
+            Ok(quantity @ Quantity::Number(_)) => Some(quantity),
+            Ok(Quantity::Interval { .. }) => {
+                self.report(
+                    key,
+                    "an interval is known, but not yet worked out by this copy: write one number",
+                );
+                None
+            }
+            Ok(Quantity::Question { .. }) => {
+                self.report(
+                    key,
+                    "a question is known, but not yet worked out by this copy: write one number",
+                );
+                None
+            }
+            Err(problem) => {
+                self.report(key, problem);
+                None
+            }
+        }
+    }
+
+    pub(super) fn required(&mut self, key: Name, what: &str) -> Option<Quantity> {
+        if self.is_blank(key) {
+            self.problems.push((
+                MISSING,
+                Problem::missing(&key.to_string(), format!("`{key}` is missing: give {what}")),
+            ));
+        }
+        self.quantity(key)
+    }
+}

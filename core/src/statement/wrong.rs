@@ -1,0 +1,98 @@
+//! What is wrong with a text, a key or a number, in words.
+
+use crate::keys::{self, Key, Kind, Unit};
+use crate::number;
+use crate::pairs::{LONGEST_LINK, Pairs};
+use crate::problem::Problem;
+use crate::quantity::Quantity;
+
+/// What keeps the text from being read at all: its length, or that nothing stands in it.
+pub(super) fn whole_problem(pairs: &Pairs) -> Option<Problem> {
+    if let Some(length) = pairs.too_long() {
+        return Some(Problem::whole(format!(
+            "the text is {length} bytes long; at most {LONGEST_LINK} are read"
+        )));
+    }
+    let nothing = pairs
+        .iter()
+        .all(|(key, text)| key == "v" || text.trim().is_empty());
+    let required = "x.start, x.rate, y.start and y.rate";
+    nothing.then(|| {
+        Problem::whole(format!(
+            "there is no engagement in this text: give at least {required}"
+        ))
+    })
+}
+
+/// What is wrong with a key itself: unknown, or known and not yet worked out.
+pub(super) fn key_problem(row: Option<&Key>, key: &str, text: &str) -> Option<Problem> {
+    let not_yet = || {
+        Problem::at(
+            key,
+            text,
+            format!("`{key}` is known, but not yet worked out by this copy"),
+        )
+    };
+    match row {
+        Some(row) => {
+            let at_default = text.trim().is_empty() || row.default == Some(text.trim());
+            let used = row.worked_out || at_default;
+            (!used).then(not_yet)
+        }
+        None if key.starts_with("phase") && keys::is_numbered(key) => None,
+        None if keys::is_numbered(key) => Some(not_yet()),
+        None => {
+            let near = keys::nearest(key)
+                .map(|near| format!("; the nearest it knows is `{near}`"))
+                .unwrap_or_default();
+            Some(Problem::at(
+                key,
+                text,
+                format!("this copy does not know `{key}`{near}"),
+            ))
+        }
+    }
+}
+
+/// A quantity; nearly all are plain numbers, which are read at once.
+pub(super) fn read_quantity(text: &str) -> Result<Quantity, String> {
+    if text.contains('?') || text.contains("..") {
+        return Quantity::read(text);
+    }
+    number::read(text.trim()).map(Quantity::Number)
+}
+
+pub(super) fn within_limits(row: &Key, quantity: Quantity) -> Result<Quantity, String> {
+    let Kind::Quantity { low, above, high } = row.kind else {
+        return Ok(quantity);
+    };
+    for value in quantity.numbers() {
+        if above && value <= low {
+            return Err(format!("must be more than {low}"));
+        }
+        if value < low {
+            return Err(format!("must be {low} or more"));
+        }
+        if value > high {
+            let fraction = row.unit == Unit::Fraction && value <= 100.0;
+            let hint = if fraction {
+                format!(
+                    ": for {value} % write {}",
+                    number::hundredth(&value.to_string(), value)
+                )
+            } else {
+                String::new()
+            };
+            return Err(format!("must be at most {}{hint}", plain(high)));
+        }
+    }
+    Ok(quantity)
+}
+
+pub(super) fn plain(limit: f64) -> String {
+    if limit >= 1e6 {
+        format!("{limit:e}")
+    } else {
+        format!("{limit}")
+    }
+}
