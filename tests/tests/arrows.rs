@@ -6,6 +6,9 @@ use cargo_metadata::{DependencyKind, Metadata, MetadataCommand, Package};
 use std::collections::BTreeSet;
 use std::path::{Path, PathBuf};
 
+#[path = "../../www/src/sides.rs"]
+mod sides;
+
 fn metadata() -> Metadata {
     MetadataCommand::new()
         .manifest_path(project().join("Cargo.toml"))
@@ -254,7 +257,10 @@ const WITHOUT_FIELD: &[&str] = &["v", "view"];
 /// The field of every key that is worked out bears the key's name, and the label of the table of keys.
 #[test]
 fn labels_of_the_form_are_those_of_the_table() {
-    let page = project_text("www/page/index.html");
+    let page = sides::with_sides(
+        &project_text("www/page/index.html"),
+        &project_text("www/page/side.html"),
+    );
     for key in KEYS
         .iter()
         .filter(|key| key.worked_out && !WITHOUT_FIELD.contains(&key.name))

@@ -10,8 +10,18 @@ use aftercount_core::words::math::Math;
 use aftercount_core::words::working::working;
 use aftercount_core::{caution, words};
 use aftercount_web::draw::Ink;
+use std::sync::LazyLock;
 
-const SHEET: &str = include_str!("../../www/page/index.html");
+#[path = "../../www/src/sides.rs"]
+mod sides;
+
+/// The sheet as the builder makes it, before the program is put into it.
+static SHEET: LazyLock<String> = LazyLock::new(|| {
+    sides::with_sides(
+        include_str!("../../www/page/index.html"),
+        include_str!("../../www/page/side.html"),
+    )
+});
 const STYLE: &str = include_str!("../../www/page/style.css");
 
 /// Keys that the page reads and that have no field: the frame is asked for by a link, losses have one choice as yet, and

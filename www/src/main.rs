@@ -8,6 +8,7 @@ mod inline;
 mod licences;
 mod open;
 mod policy;
+mod sides;
 mod sizes;
 mod toolchain;
 mod wasm;
@@ -76,7 +77,8 @@ fn build(workspace: &Workspace) -> Result<String> {
     let bound = wasm::bind(&built.wasm)?;
     let licences = licences::notices(workspace, &built.packages)?;
 
-    let template = read(&workspace.page_source("index.html"))?;
+    let sheet = read(&workspace.page_source("index.html"))?;
+    let template = sides::with_sides(&sheet, &read(&workspace.page_source("side.html"))?);
     let style = read(&workspace.page_source("style.css"))?;
     let boot = read(&workspace.page_source("boot.js"))?;
     inline::check("style.css", &style)?;
