@@ -47,6 +47,7 @@ fn unit(unit: Unit) -> &'static str {
         Unit::Length => ", length",
         Unit::LengthPerTime => ", length per time",
         Unit::Strength => ", strength",
+        Unit::StrengthPerTime => ", strength per time",
         Unit::EnemyStrength => ", the enemy's strength",
         Unit::Time => ", time",
         Unit::FractionPerTime => ", of the side per time",

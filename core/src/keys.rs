@@ -21,6 +21,8 @@ pub enum Unit {
     Strength,
     /// The enemy's strength.
     EnemyStrength,
+    /// Strength for each unit of time.
+    StrengthPerTime,
     /// The link's unit of time.
     Time,
     /// A fraction of the side's strength for each unit of time.
