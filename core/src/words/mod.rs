@@ -7,6 +7,7 @@ pub mod math;
 pub mod meaning;
 pub mod reading;
 pub mod sentence;
+pub mod slot;
 pub mod timeline;
 mod times;
 pub mod working;
