@@ -374,6 +374,15 @@ pub const KEYS: &[Key] = &[
     .or("1"),
 ];
 
+/// `from`, behind `phaseN.`: the time from which a phase holds, which may be the beginning.
+pub(crate) static PHASE_FROM: Key = whole(
+    "from",
+    "From",
+    UP_TO_LARGEST,
+    "the time from which the phase holds",
+)
+.measured_in(Unit::Time);
+
 /// How many slots the keys have, those without side or phase too: two for each row.
 pub(crate) const SLOTS: usize = 2 * KEYS.len();
 
@@ -469,18 +478,35 @@ pub fn is_numbered(name: &str) -> bool {
     }
 }
 
-/// The known key that is spelt most like `name`, if any is near.
+/// The known key that `name` most likely means, if any is near: the one whose label begins so, or is so without its
+/// blanks, as `x.strength` and `y.breakpoint`; else the one that is spelt most like it.
 pub fn nearest(name: &str) -> Option<String> {
     let lower = name.to_lowercase();
+    labelled(&lower).or_else(|| spelt_alike(&lower))
+}
+
+fn labelled(lower: &str) -> Option<String> {
+    let (letter, bare) = match lower.split_once('.') {
+        Some((letter @ ("x" | "y"), bare)) => (letter, bare),
+        _ => ("x", lower),
+    };
+    let means = |key: &&Key| {
+        let label = key.label.to_lowercase();
+        label.split([' ', ',']).next() == Some(bare) || label.replace(' ', "") == bare
+    };
+    KEYS.iter().find(means).map(|key| key.on(letter))
+}
+
+fn spelt_alike(lower: &str) -> Option<String> {
     KEYS.iter()
         .flat_map(|key| match key.place {
             Place::Whole => vec![key.on("")],
             Place::Side => vec![key.on("x"), key.on("y")],
         })
-        .map(|known| (strsim::osa_distance(&lower, &known), known))
+        .map(|known| (strsim::osa_distance(lower, &known), known))
         .filter(|(distance, known)| *distance < known.len() && *distance <= 1 + known.len() / 3)
         // Of two that are as near, the one that begins as `name` does.
-        .min_by_key(|(distance, known)| (*distance, Reverse(alike_at_first(&lower, known))))
+        .min_by_key(|(distance, known)| (*distance, Reverse(alike_at_first(lower, known))))
         .map(|(_, known)| known)
 }
 

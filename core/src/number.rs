@@ -114,13 +114,13 @@ fn thousands(text: &str) -> Option<String> {
     None
 }
 
+/// How the hint for a per-cent sign ends.
+pub(crate) const WITHOUT_PER_CENT: &str = ", without the per-cent sign";
+
 fn per_cent(text: &str) -> Option<String> {
     let number = text.strip_suffix('%')?.trim_end();
     let value = number.parse::<f64>().ok().filter(|_| is_number(number))?;
-    Some(format!(
-        "write {}, without the per-cent sign",
-        hundredth(number, value)
-    ))
+    Some(format!("write {}{WITHOUT_PER_CENT}", hundredth(number, value)))
 }
 
 /// A hundredth of `value`, which is written `text`, in the digits that a hundredth of the text has: 0.7 gives 0.007.

@@ -58,6 +58,15 @@ pub fn instants(engagement: &Engagement) -> Vec<Instant> {
         .collect()
 }
 
+/// Whether the fire of any side has an effect at any time.
+pub(crate) fn any_fire(engagement: &Engagement) -> bool {
+    instants(engagement).iter().any(|instant| {
+        Side::BOTH
+            .iter()
+            .any(|side| instant.conditions.fire[*side].takes_effect())
+    })
+}
+
 /// Every time at which something changes, in order, each once.
 fn times(engagement: &Engagement) -> Vec<f64> {
     let mut times = vec![0.0];

@@ -344,6 +344,13 @@ fn order_at_one_instant() {
     assert_eq!(both.breaks, Breaks::Both);
     let phases = "phase1.from=1&phase1.x.support.aimed=10&phase2.from=1&phase2.x.support.aimed=25";
     assert_eq!(ended(&format!("{STEADY}&{phases}")).time, Some(2.6));
+    // A phase from the beginning is as if its values had been written without it.
+    let fight = "x.start=400&x.rate=0.01&y.start=300&y.rate=0.01&y.break=0.5";
+    let from_the_beginning = ended(&format!("{fight}&phase1.from=0&phase1.y.rate=0.02"));
+    assert_eq!(
+        from_the_beginning,
+        ended(&fight.replace("y.rate=0.01", "y.rate=0.02"))
+    );
 }
 
 /// A withdrawal takes at most what is there and never breaks a side by itself; arrivals count at time 0 as at any other.

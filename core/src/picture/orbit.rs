@@ -5,6 +5,7 @@ use super::{Axis, Line, Picture, Role, STEPS, Spot, Table, steps};
 use crate::fight::{Fight, break_line};
 use crate::outcome::{Breaks, Ended, ToTheLast};
 use crate::piece::Piece;
+use crate::schedule::any_fire;
 use crate::sides::{Both, Side};
 use crate::statement::{Statement, Values};
 use crate::stretch::Stretch;
@@ -224,10 +225,7 @@ fn summary(
             in_words(at.y)
         )
     };
-    let engagement = statement.engagement(&Values::new());
-    let fires = Side::BOTH
-        .iter()
-        .any(|side| engagement.sides[*side].fire.takes_effect());
+    let fires = any_fire(&statement.engagement(&Values::new()));
     let last = if has_parity {
         match fight.outcome.to_the_last {
             Some(ToTheLast::X) => format!(

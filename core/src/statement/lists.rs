@@ -2,7 +2,7 @@
 
 use super::name::Name;
 use super::reader::Reader;
-use super::wrong::{plain, read_quantity};
+use super::wrong::{of_separator, plain, read_quantity};
 use crate::keys::LARGEST;
 use crate::problem::Problem;
 use crate::quantity::Quantity;
@@ -10,6 +10,52 @@ use crate::terms::{Flow, Join};
 
 /// Items of a list that are worked out at most.
 const LONGEST_LIST: usize = 20;
+
+/// How an item of reserves, and one of flows, is written.
+const JOIN: &str = "write it as size@time, such as 64@4";
+const FLOW: &str = "write it as rate@from/to, such as 5@2/8, or 5@2/ without an end";
+
+/// A number of an item.
+struct Part {
+    name: &'static str,
+    form: &'static str,
+    low: f64,
+}
+
+const SIZE: Part = Part {
+    name: "size",
+    form: JOIN,
+    low: -LARGEST,
+};
+const TIME: Part = Part {
+    name: "time",
+    form: JOIN,
+    low: 0.0,
+};
+const RATE: Part = Part {
+    name: "rate",
+    form: FLOW,
+    low: 0.0,
+};
+const FROM: Part = Part {
+    name: "time from which it flows",
+    form: FLOW,
+    low: 0.0,
+};
+const TO: Part = Part {
+    name: "time at which it ends",
+    form: FLOW,
+    low: 0.0,
+};
+
+/// What to write where another mark than a comma stands behind an item.
+fn of_mark(text: &str) -> Option<String> {
+    let comma = || {
+        text.contains(';')
+            .then(|| "write a comma for the `;` between items".into())
+    };
+    of_separator(text).or_else(comma)
+}
 
 impl<'a> Reader<'a> {
     /// The items of a list, split after decoding, each with its number.
@@ -31,10 +77,12 @@ impl<'a> Reader<'a> {
         }
     }
 
-    /// A quantity of an item, which must be a number for now, from `low` to the largest.
-    fn part(&mut self, key: Name, item: (u32, &str), text: &str, low: f64) -> Option<Quantity> {
+    /// A quantity of an item, which must be a number for now.
+    fn part(&mut self, key: Name, item: (u32, &str), text: &str, part: &Part) -> Option<Quantity> {
         let problem = match read_quantity(text) {
-            Ok(Quantity::Number(value)) if value < low => format!("`{}` must be {low} or more", text.trim()),
+            Ok(Quantity::Number(value)) if value < part.low => {
+                format!("`{}` must be {} or more", text.trim(), part.low)
+            }
             Ok(Quantity::Number(value)) if value.abs() > LARGEST => {
                 format!("`{}` must be at most {}", text.trim(), plain(LARGEST))
             }
@@ -43,7 +91,8 @@ impl<'a> Reader<'a> {
                 "an interval or a question is known, but not yet worked out by this copy: write one number"
                     .into()
             }
-            Err(problem) => format!("`{}`: {problem}", text.trim()),
+            Err(_) if text.trim().is_empty() => format!("has no {}: {}", part.name, part.form),
+            Err(problem) => of_mark(text).unwrap_or_else(|| format!("`{}`: {problem}", text.trim())),
         };
         self.report_item(key, item.0, item.1, problem);
         None
@@ -69,11 +118,16 @@ impl<'a> Reader<'a> {
         let mut joins = Vec::new();
         for item in items {
             let Some((size, time)) = item.1.split_once('@') else {
-                self.report_item(key, item.0, item.1, "write it as size@time, such as 64@4");
+                self.report_item(
+                    key,
+                    item.0,
+                    item.1,
+                    of_mark(item.1).unwrap_or_else(|| JOIN.into()),
+                );
                 continue;
             };
-            let size = self.part(key, item, size, -LARGEST);
-            let time = self.part(key, item, time, 0.0);
+            let size = self.part(key, item, size, &SIZE);
+            let time = self.part(key, item, time, &TIME);
             joins.extend(size.zip(time).map(|(size, time)| Join { size, time }));
         }
         joins
@@ -95,17 +149,17 @@ impl<'a> Reader<'a> {
                     key,
                     item.0,
                     item.1,
-                    "write it as rate@from/to, such as 5@2/8, or 5@2/ without an end",
+                    of_mark(item.1).unwrap_or_else(|| FLOW.into()),
                 );
                 continue;
             };
-            let rate = self.part(key, item, rate, 0.0);
-            let from = self.part(key, item, from, 0.0);
+            let rate = self.part(key, item, rate, &RATE);
+            let from = self.part(key, item, from, &FROM);
             let endless = to.trim().is_empty();
             let to = if endless {
                 None
             } else {
-                self.part(key, item, to, 0.0)
+                self.part(key, item, to, &TO)
             };
             let (Some(rate), Some(from)) = (rate, from) else {
                 continue;

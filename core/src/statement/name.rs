@@ -35,13 +35,15 @@ impl Name {
         }
     }
 
-    /// The slot of the key behind `phaseN.`; `phaseN.from` is a time like `until`.
+    /// The slot of the key, or of that behind `phaseN.`.
     pub(super) fn slot(self) -> Option<usize> {
-        let key = if self.key == "from" { "until" } else { self.key };
-        keys::slot_of(self.side, key)
+        keys::slot_of(self.side, self.key)
     }
 
     pub(super) fn row(self) -> Option<&'static Key> {
+        if self.phase.is_some() && self.key == "from" {
+            return Some(&keys::PHASE_FROM);
+        }
         self.slot().map(keys::row)
     }
 
@@ -63,6 +65,15 @@ pub(super) fn behind_phase(number: u8, key: &str) -> Option<&str> {
     key.strip_prefix("phase")?
         .strip_prefix(char::from(b'0' + number))?
         .strip_prefix('.')
+}
+
+/// The row of a key as it stands in a link, also behind `phaseN.`.
+pub(super) fn row_of(key: &str) -> Option<&'static Key> {
+    match (1..=9).find_map(|number| behind_phase(number, key)) {
+        Some("from") => Some(&keys::PHASE_FROM),
+        Some(behind) => keys::find(behind),
+        None => keys::find(key),
+    }
 }
 
 impl fmt::Display for Name {

@@ -1,7 +1,7 @@
 //! Collects what the pairs say, key by key, and their problems by place.
 
 use super::name::Name;
-use super::wrong::{key_problem, read_quantity, within_limits};
+use super::wrong::{key_problem, of_separator, read_quantity, within_limits, without_escape};
 use crate::keys::{self, Key, Kind};
 use crate::pairs::Pairs;
 use crate::problem::{Problem, is_hidden};
@@ -27,7 +27,7 @@ impl<'a> Reader<'a> {
             pairs,
             places: [MISSING; keys::SLOTS],
             phased: Vec::new(),
-            problems: pairs.problems(),
+            problems: pairs.problems().into_iter().map(without_escape).collect(),
         }
     }
 
@@ -145,13 +145,11 @@ impl<'a> Reader<'a> {
         };
         let word = words.iter().find(|word| **word == text).copied();
         if word.is_none() {
-            self.report(
-                key,
-                match key.key {
-                    "v" => "this copy reads version 1 of the link only: write 1".into(),
-                    _ => format!("write one of {}", words.join(", ")),
-                },
-            );
+            let problem = of_separator(text).unwrap_or_else(|| match key.key {
+                "v" => "this copy reads version 1 of the link only: write 1".into(),
+                _ => format!("write one of {}", words.join(", ")),
+            });
+            self.report(key, problem);
         }
         word
     }
@@ -178,7 +176,7 @@ impl<'a> Reader<'a> {
                 None
             }
             Err(problem) => {
-                self.report(key, problem);
+                self.report(key, of_separator(text).unwrap_or(problem));
                 None
             }
         }

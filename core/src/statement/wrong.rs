@@ -1,5 +1,6 @@
 //! What is wrong with a text, a key or a number, in words.
 
+use super::name::row_of;
 use crate::keys::{self, Key, Kind, Unit};
 use crate::number;
 use crate::pairs::{LONGEST_LINK, Pairs};
@@ -41,16 +42,45 @@ pub(super) fn key_problem(row: Option<&Key>, key: &str, text: &str) -> Option<Pr
         }
         None if key.starts_with("phase") && keys::is_numbered(key) => None,
         None if keys::is_numbered(key) => Some(not_yet()),
-        None => {
-            let near = keys::nearest(key)
-                .map(|near| format!("; the nearest it knows is `{near}`"))
-                .unwrap_or_default();
-            Some(Problem::at(
-                key,
-                text,
-                format!("this copy does not know `{key}`{near}"),
-            ))
-        }
+        None => Some(Problem::at(key, text, of_unknown(key))),
+    }
+}
+
+fn of_unknown(key: &str) -> String {
+    // A link that went through the source of a page.
+    if let Some(meant) = key.strip_prefix("amp;") {
+        return format!("write `&` alone for `&amp;` before `{meant}`");
+    }
+    let near = keys::nearest(key)
+        .map(|near| format!("; the nearest it knows is `{near}`"))
+        .unwrap_or_default();
+    format!("this copy does not know `{key}`{near}")
+}
+
+/// What to write where `text`, which is no value of its key, goes on with the next pair behind a wrong mark.
+pub(super) fn of_separator(text: &str) -> Option<String> {
+    let (_, rest) = text.split_once(';')?;
+    let (next, _) = rest.split_once('=')?;
+    Some(format!("write `&` for the `;` before `{}`", next.trim()))
+}
+
+/// The problem of a text that could not be decoded, said better where it is a number with a per-cent sign.
+pub(super) fn without_escape((place, problem): (usize, Problem)) -> (usize, Problem) {
+    let hint = || {
+        let (key, found) = (problem.key.as_deref()?, problem.found.as_deref()?);
+        let is_number = matches!(row_of(key)?.kind, Kind::Quantity { .. });
+        let hint = read_quantity(found).err().filter(|_| is_number)?;
+        hint.ends_with(number::WITHOUT_PER_CENT).then_some(hint)
+    };
+    match hint() {
+        Some(hint) => (
+            place,
+            Problem {
+                problem: hint,
+                ..problem
+            },
+        ),
+        None => (place, problem),
     }
 }
 

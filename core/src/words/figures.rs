@@ -4,6 +4,7 @@ use super::format::{per_cent, six, three};
 use crate::double::Double;
 use crate::fight::{break_line, plain_piece};
 use crate::outcome::{Breaks, Ended, Method, Outcome, ToTheLast};
+use crate::schedule::any_fire;
 use crate::sides::{Both, Side};
 use crate::statement::{Statement, TimeUnit, Values};
 use crate::terms::Engagement;
@@ -235,17 +236,11 @@ fn line_of_end(outcome: &Outcome, still: bool, side: Side) -> Option<&'static st
 
 /// Whether nothing changes, so that nobody comes to a line and the working has none.
 fn is_still(engagement: &Engagement, outcome: &Outcome) -> bool {
-    let any_effect = Side::BOTH
-        .iter()
-        .any(|side| engagement.sides[*side].fire.takes_effect());
-    !any_effect && outcome.ended != Ended::Break
+    outcome.ended != Ended::Break && !any_fire(engagement)
 }
 
 fn both(statement: &Statement, outcome: &Outcome, still: bool) -> Vec<Figure> {
-    let engagement = statement.engagement(&Values::new());
-    let fires = Side::BOTH
-        .iter()
-        .any(|side| engagement.sides[*side].fire.takes_effect());
+    let fires = any_fire(&statement.engagement(&Values::new()));
     let unit = statement.unit.symbol();
     let names = &statement.names;
     let mut lines = Vec::new();

@@ -69,8 +69,12 @@ struct Writer<'a> {
 }
 
 impl<'a> Writer<'a> {
-    fn new(statement: &'a Statement, engagement: Engagement, outcome: &'a Outcome) -> Option<Writer<'a>> {
+    fn new(statement: &'a Statement, mut engagement: Engagement, outcome: &'a Outcome) -> Option<Writer<'a>> {
         let piece = plain_piece(&engagement)?;
+        // A phase from the beginning may have another fire.
+        for side in Side::BOTH {
+            engagement.sides[side].fire = piece.fire[side];
+        }
         Some(Writer {
             statement,
             engagement,
