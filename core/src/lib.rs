@@ -22,6 +22,7 @@ pub mod number;
 pub mod orbit_point;
 pub mod outcome;
 pub mod pairs;
+pub mod passing;
 pub mod picture;
 pub mod piece;
 pub mod problem;

@@ -52,9 +52,9 @@ fn of_unknown(key: &str) -> String {
         return format!("write `&` alone for `&amp;` before `{meant}`");
     }
     let near = keys::nearest(key)
-        .map(|near| format!("; the nearest it knows is `{near}`"))
+        .map(|near| format!(". The nearest it knows is `{near}`"))
         .unwrap_or_default();
-    format!("this copy does not know `{key}`{near}")
+    format!("this copy does not know `{key}`; a newer one may{near}")
 }
 
 /// What to write where `text`, which is no value of its key, goes on with the next pair behind a wrong mark.

@@ -1,0 +1,12 @@
+//! Passing an engagement on: what is copied, saved and exported, and how it is taken up again from whatever shape it
+//! comes in.
+
+pub mod changes;
+pub mod finding;
+pub mod json;
+pub mod kept;
+pub mod received;
+pub mod saved;
+pub mod table;
+pub mod times;
+pub mod words;
