@@ -267,13 +267,10 @@ mod tests {
         assert_eq!(last[7], "Ondrel breaks");
         assert_eq!(last[1], "420", "the line is exact");
         // What is left and what is lost are what came.
-        for row in 1..rows.len() {
-            let came = if row >= 4 { 464.0 } else { 400.0 };
-            assert!(
-                (value(row, 2) + value(row, 4) - came).abs() < 1e-9 * came,
-                "{:?}",
-                rows[row]
-            );
+        for (place, row) in rows.iter().enumerate().skip(1) {
+            let came = if place >= 4 { 464.0 } else { 400.0 };
+            let (left, lost) = (value(place, 2), value(place, 4));
+            assert!((left + lost - came).abs() < 1e-9 * came, "{row:?}");
         }
         assert!(
             rows[1..]
