@@ -4,6 +4,7 @@
 //! when it is dropped, also by a test that panics. It blocks, so that a test reads from top to bottom, and it waits
 //! on what the page says of itself, never for a length of time.
 
+mod axe;
 mod command;
 mod driver;
 mod files;

@@ -21,6 +21,7 @@ mod phases;
 mod plates;
 mod problems;
 mod reading;
+mod rolling;
 mod stopwatch;
 mod timeline;
 mod timer;

@@ -42,6 +42,7 @@ pub(crate) fn all(dom: &Dom, page: &Shared, signal: &AbortSignal) -> Result<(), 
     on(document, "submit", submit)?;
     on(document, "pointerdown", pointer)?;
     on(document, "pointermove", pointer)?;
+    on(document, "toggle", unfolded)?;
     on(document, "visibilitychange", hide)?;
     on(window, "pagehide", hide)?;
     on(window, "popstate", moved)?;
@@ -82,6 +83,8 @@ fn listen(
     });
     let options = AddEventListenerOptions::new();
     options.set_signal(signal);
+    // That a panel opened is told to the panel alone, so it is heard on the way there.
+    options.set_capture(kind == "toggle");
     let call = call.into_js_value();
     target.add_event_listener_with_callback_and_add_event_listener_options(
         kind,
@@ -250,6 +253,11 @@ fn pointer(page: &mut Page, event: &Event) -> After {
         x: f64::from(mouse.client_x()) - place.left(),
         y: f64::from(mouse.client_y()) - place.top(),
     });
+    After::Nothing
+}
+
+fn unfolded(page: &mut Page, _event: &Event) -> After {
+    page.mark_what_rolls();
     After::Nothing
 }
 

@@ -13,6 +13,7 @@ use crate::phases::{Ask, Phases};
 use crate::plates::Plates;
 use crate::problems::{PATIENCE, Problems};
 use crate::reading::Pointer;
+use crate::rolling;
 use crate::stopwatch::{DRAW, Stopwatch, WORK};
 use crate::timeline;
 use crate::timer::{NextFrame, Timer};
@@ -500,6 +501,11 @@ impl Page {
         self.dom.set_shown("decided", decided.is_some());
     }
 
+    /// Lets the keyboard into what is larger than its place.
+    pub(crate) fn mark_what_rolls(&self) {
+        rolling::mark(&self.dom);
+    }
+
     /// Draws both pictures, and says that they match the text where they do.
     fn draw_now(&mut self) {
         self.frame.came();
@@ -509,6 +515,7 @@ impl Page {
             web_sys::console::error_1(&error.into());
             return;
         }
+        self.mark_what_rolls();
         if self.current {
             self.dom.mark_root("data-settled", Some(&text_mark(&self.pairs)));
             self.decide.start(SETTLED);

@@ -1,0 +1,42 @@
+//! What rolls within itself, as a formula wider than the page does, can be reached with the keyboard and rolled with
+//! the arrows; what does not roll is no stop on the way.
+
+use crate::dom::{Dom, set};
+use wasm_bindgen::JsCast;
+use web_sys::Element;
+
+/// What may be larger than its place, and what it is called where it is.
+const MAY_ROLL: [(&str, &str); 2] = [
+    (".formula", "A formula that is wider than the page"),
+    (".said", "What the model leaves, in words"),
+];
+
+/// Makes a stop of each of them that rolls as it is shown now.
+pub(crate) fn mark(dom: &Dom) {
+    for (selector, name) in MAY_ROLL {
+        let Ok(found) = dom.document.query_selector_all(selector) else {
+            continue;
+        };
+        let elements = (0..found.length()).filter_map(|at| found.item(at)?.dyn_into::<Element>().ok());
+        // All are measured before any is changed, so that the browser lays the page out once.
+        let measured: Vec<(Element, bool)> = elements
+            .map(|element| (element.clone(), rolls(&element)))
+            .collect();
+        for (element, rolls) in measured {
+            for (attribute, value) in [("tabindex", "0"), ("role", "group"), ("aria-label", name)] {
+                if rolls {
+                    set(&element, attribute, value);
+                } else {
+                    // Taking an attribute away cannot fail.
+                    let _ = element.remove_attribute(attribute);
+                }
+            }
+        }
+    }
+}
+
+/// A pixel more is a matter of rounding.
+fn rolls(element: &Element) -> bool {
+    element.scroll_width() > element.client_width() + 1
+        || element.scroll_height() > element.client_height() + 1
+}
