@@ -3,6 +3,7 @@
 use super::format::{per_cent, strength, three};
 use crate::fight::break_line;
 use crate::laws::{FireLaw, RateMeaning};
+use crate::share::AtStart;
 use crate::sides::{Both, Side};
 use crate::state::StateEquation;
 use crate::statement::{Statement, TimeUnit, Values};
@@ -48,12 +49,28 @@ pub fn rate(statement: &Statement, side: Side) -> String {
             )
         }
     };
-    let targets = engagement.sides[side.enemy()].start;
-    let at_start = fire.losses_per_time(engagement.sides[side].start, targets);
+    let reaches = engagement.closing.is_some() && engagement.sides[side].reach.is_some();
+    let near = if reaches { ", at range 0" } else { "" };
+    format!("{what}{near}. {}", at_start(statement, side))
+}
+
+/// What `side`'s fire does at the start: "At the start: 24 per h, 6.0 % of Vessary."
+fn at_start(statement: &Statement, side: Side) -> String {
+    let start = AtStart::of(&statement.engagement(&Values::new()), side);
+    let (unit, enemy) = (statement.unit.symbol(), &statement.names[side.enemy()]);
+    let absent = [side, side.enemy()]
+        .into_iter()
+        .find(|of| start.strengths[*of] == 0.0);
+    if let Some(absent) = absent {
+        return format!(
+            "At the start nothing, since {} has nobody there.",
+            statement.names[absent]
+        );
+    }
     format!(
-        "{what}. At the start: {} per\u{a0}{unit}, {} of {enemy}.",
-        three(at_start),
-        per_cent(at_start / targets)
+        "At the start: {} per\u{a0}{unit}, {} of {enemy}.",
+        three(start.losses),
+        per_cent(start.losses / start.strengths[side.enemy()])
     )
 }
 
