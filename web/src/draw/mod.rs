@@ -1,19 +1,24 @@
 //! Core's pictures, drawn once for every backend of plotters: the canvas of the page and the SVG of print and export.
 
+mod around;
 mod axes;
 mod ink;
 mod labels;
 mod layout;
 mod lines;
 mod measured;
+mod part;
 mod pen;
 mod reading;
+mod svg;
 
+pub use around::{Around, draw_around};
 pub use ink::{Ink, parse_colour};
 pub use layout::Layout;
 pub use measured::{Measure, Measured, UsualWidths};
 pub use pen::Drawn;
 pub use reading::{reading_on_orbit, reading_on_strength};
+pub use svg::svg;
 
 use aftercount_core::picture::Picture;
 use labels::Labels;

@@ -124,11 +124,15 @@ impl<'a, B: DrawingBackend> Pen<'a, B> {
     /// The same on a piece of blank paper, so that lines behind it do not run through the letters.
     pub(crate) fn label_on_paper(&mut self, text: &str, at: Point, set: Set) -> Drawn<B> {
         let (left, top, right, foot) = self.extent(text, at, set);
-        let corners = ((left - 2.0, top), (right + 2.0, foot));
-        let paper = ShapeStyle::from(&self.ink.paper).filled();
-        let (upper_left, lower_right) = (self.coord(corners.0), self.coord(corners.1));
-        self.backend.draw_rect(upper_left, lower_right, &paper, true)?;
+        self.paper((left - 2.0, top), (right + 2.0, foot))?;
         self.label(text, at, set)
+    }
+
+    /// A piece of blank paper between two corners.
+    pub(crate) fn paper(&mut self, from: Point, to: Point) -> Drawn<B> {
+        let paper = ShapeStyle::from(&self.ink.paper).filled();
+        let (from, to) = (self.coord(from), self.coord(to));
+        self.backend.draw_rect(from, to, &paper, true)
     }
 
     /// The width of a label in CSS pixels.
