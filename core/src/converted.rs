@@ -108,6 +108,7 @@ fn carries(key: &str) -> Carries {
         (
             _,
             Unit::FractionPerTime
+            | Unit::StrengthPerTime
             | Unit::EnemyPerTime
             | Unit::EnemyFractionPerTime
             | Unit::LengthPerTime
