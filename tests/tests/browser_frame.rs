@@ -1,4 +1,4 @@
-//! In a wiki's frame, without scripts, without WebAssembly, and after a trap.
+//! In a wiki's frame, without scripts, and without WebAssembly.
 
 use aftercount_tests::browser::{Browser, Screen, changed, native, native_sentence, page_url, wiki_url};
 use serde_json::json;
@@ -138,58 +138,4 @@ fn without_webassembly_the_page_says_so_with_the_caution() {
     browser.wait_text("#no-engine", "cannot run WebAssembly");
     assert!(browser.text("#no-engine").contains(CAUTION));
     browser.picture("no-engine");
-}
-
-#[test]
-fn after_a_trap_the_text_lives_on_and_after_a_second_it_can_be_copied() {
-    let browser = Browser::start();
-    browser.open(LINK);
-    browser.settle(LINK);
-    // A true trap in the middle of drawing: memory that is not to be had. What the program held then stays held for ever.
-    let trap = "const pen = CanvasRenderingContext2D.prototype, sound = pen.beginPath;
-        const program = wasm_bindgen.initSync({}); // the one that runs
-        const sink = program.__wbindgen_malloc.bind(null, -1, 1);
-        Object.defineProperty(pen, 'beginPath', {configurable: true, get() {
-          Object.defineProperty(pen, 'beginPath', {configurable: true, writable: true, value: sound}); return sink; }});";
-    browser.script(trap, vec![]);
-    browser.write("x.start", "700");
-    let link = changed(LINK, "x.start", "700");
-    assert_eq!(
-        browser.settle(&link),
-        native(&link),
-        "a fresh instance takes the text over"
-    );
-    browser.write("x.start", "800");
-    let link = changed(LINK, "x.start", "800");
-    assert_eq!(browser.settle(&link), native(&link), "and goes on with it");
-    assert_eq!(browser.text("#no-engine"), "");
-    let complaints = browser.complaints();
-    assert!(
-        complaints
-            .iter()
-            .any(|complaint| complaint.contains("RuntimeError: unreachable")),
-        "the first one did not trap"
-    );
-
-    browser.script(trap, vec![]);
-    browser.write_on("x.start", "0");
-    let link = changed(LINK, "x.start", "8000");
-    browser.wait_text("#no-engine", "Copy the text");
-    assert_eq!(
-        browser.script(
-            "return document.querySelector('#no-engine textarea').value;",
-            vec![]
-        ),
-        link
-    );
-    assert!(browser.text("#no-engine").contains(CAUTION));
-    assert_eq!(browser.shown().settled, None);
-    browser.picture("trapped");
-    let complaints = browser.complaints();
-    assert!(
-        complaints
-            .iter()
-            .all(|complaint| complaint.contains("RuntimeError: unreachable")),
-        "{complaints:?}"
-    );
 }

@@ -1,20 +1,15 @@
 //! The address: where the text comes from, and where it is kept.
 //!
-//! The text stands in the fragment, which never reaches a server's log. Keystrokes replace it, at most every 300 ms;
-//! the first change after a field was left begins a new entry of the history, so that back, forward, Undo and Redo
-//! step from field to field. In a frame nothing is pushed. Browsers throttle these calls, and some refuse them in a
-//! sandbox: then the page goes on with its own list of entries.
+//! The text stands in the fragment, which never reaches a server's log. Keystrokes replace it, at a pace that browsers
+//! bear; the first change after a field was left begins a new entry of the history, so that back, forward, Undo and Redo
+//! step from field to field. In a frame nothing is pushed. Browsers throttle these calls, with an error or without a
+//! word, and some refuse them in a sandbox: so every write is looked at, and where one failed the page goes on with its
+//! own list of entries.
 
 use crate::dom::Dom;
+use crate::pace::Pace;
 use wasm_bindgen::JsValue;
 use web_sys::History;
-
-/// The least time between two writes, in milliseconds.
-pub(crate) const WRITE_APART: f64 = 300.0;
-
-/// How many refusals in a row are answered by another try without a change; the waits between them double. Browsers
-/// that throttle forget within half a minute; a sandbox never gives way.
-const MOST_REFUSALS: u32 = 8;
 
 /// The entries of the history that this page knows, and what is still to be written.
 pub(crate) struct Address {
@@ -28,10 +23,7 @@ pub(crate) struct Address {
     /// Whether the browser's own history holds these entries.
     kept_by_browser: bool,
     unwritten: Option<String>,
-    /// When a write was last tried.
-    written_at: f64,
-    /// How many writes were refused since the last that held.
-    refusals: u32,
+    pace: Pace,
 }
 
 /// What a step through the history needs.
@@ -60,13 +52,14 @@ impl Address {
             open: false,
             kept_by_browser: true,
             unwritten: None,
-            written_at: f64::NEG_INFINITY,
-            refusals: 0,
+            pace: Pace::new(),
         }
     }
 
-    /// The text that the page begins with.
-    pub(crate) fn begin(&mut self, text: String) {
+    /// The text that the page begins with, and whether the address may be behind it: where a program before this one
+    /// trapped, the last keystrokes are still to be written.
+    pub(crate) fn begin(&mut self, text: String, behind: bool) {
+        self.unwritten = Some(text.clone()).filter(|_| behind);
         self.entries[self.at] = Some(text);
     }
 
@@ -84,18 +77,15 @@ impl Address {
         }
         self.entries[self.at] = Some(text.clone());
         self.unwritten = Some(text);
-        if self.written_at + WRITE_APART <= self.now() {
+        if self.pace.wait(self.now()) <= 0.0 {
             self.write();
         }
     }
 
     /// The milliseconds after which [`Address::write`] is due; `None` where nothing waits, or trying is of no use.
     pub(crate) fn due(&self) -> Option<i32> {
-        self.unwritten
-            .as_ref()
-            .filter(|_| self.refusals <= MOST_REFUSALS)?;
-        let apart = WRITE_APART * 2_f64.powi(self.refusals as i32);
-        Some((self.written_at + apart - self.now()).ceil().max(0.0) as i32)
+        self.unwritten.as_ref().filter(|_| !self.pace.is_given_up())?;
+        Some(self.pace.wait(self.now()).ceil() as i32)
     }
 
     /// A field was left or a button pressed: the next change begins a new entry.
@@ -107,10 +97,7 @@ impl Address {
     /// Writes what is still to be written; what is refused waits on.
     pub(crate) fn write(&mut self) {
         let Some(text) = self.unwritten.take() else { return };
-        if self.replace(&format!("#{text}")) {
-            self.refusals = 0;
-        } else {
-            self.refusals = self.refusals.saturating_add(1);
+        if !self.replace(&format!("#{text}")) {
             self.unwritten = Some(text);
         }
     }
@@ -192,30 +179,45 @@ impl Address {
         }
     }
 
+    /// Whether there is something that a reload would lose.
+    pub(crate) fn is_behind(&self) -> bool {
+        self.unwritten.is_some()
+    }
+
     /// Whether the page stands in a frame.
     pub(crate) fn is_framed(&self) -> bool {
         self.framed
     }
 
     fn push(&mut self, text: &str) -> bool {
+        let address = format!("#{text}");
         let pushed = history(&self.dom).is_some_and(|history| {
             history
-                .push_state_with_url(&JsValue::from(self.at as f64), "", Some(&format!("#{text}")))
+                .push_state_with_url(&JsValue::from(self.at as f64), "", Some(&address))
                 .is_ok()
-        });
+        }) && self.stands(&address);
         self.kept_by_browser &= pushed;
-        self.written_at = self.now();
+        self.pace.tried(self.now(), pushed);
         pushed
     }
 
     /// Whether the browser took it: one that throttles refuses now and takes it later.
     fn replace(&mut self, address: &str) -> bool {
-        self.written_at = self.now();
-        history(&self.dom).is_some_and(|history| {
+        let held = history(&self.dom).is_some_and(|history| {
             history
                 .replace_state_with_url(&JsValue::from(self.at as f64), "", Some(address))
                 .is_ok()
-        })
+        }) && self.stands(address);
+        self.pace.tried(self.now(), held);
+        held
+    }
+
+    /// Whether the fragment of an address that was written is there: a browser that throttles may say nothing of it.
+    fn stands(&self, address: &str) -> bool {
+        let fragment = self.dom.window.location().hash().unwrap_or_default();
+        address
+            .split_once('#')
+            .is_none_or(|(_, text)| fragment.strip_prefix('#').unwrap_or_default() == text)
     }
 
     fn now(&self) -> f64 {

@@ -16,6 +16,7 @@ mod listen;
 mod lists;
 mod live;
 mod outcome;
+mod pace;
 mod page;
 mod phases;
 mod plates;

@@ -45,6 +45,7 @@ pub(crate) fn all(dom: &Dom, page: &Shared, signal: &AbortSignal) -> Result<(), 
     on(document, "toggle", unfolded)?;
     on(document, "visibilitychange", hide)?;
     on(window, "pagehide", hide)?;
+    on(window, "beforeunload", going)?;
     on(window, "popstate", moved)?;
     on(window, "hashchange", moved)?;
     on(window, "resize", resized)?;
@@ -263,6 +264,14 @@ fn unfolded(page: &mut Page, _event: &Event) -> After {
 
 fn hide(page: &mut Page, _event: &Event) -> After {
     page.write_address();
+    After::Nothing
+}
+
+/// Where the address could not be written, the browser asks before it lets the text go.
+fn going(page: &mut Page, event: &Event) -> After {
+    if page.would_lose() {
+        event.prevent_default();
+    }
     After::Nothing
 }
 

@@ -101,9 +101,13 @@ impl Page {
         let mut borrowed = page.borrow_mut();
         // An instance before this one may have shown the demo: then it is the demo still.
         let kept = kept.filter(|text| *text != Pairs::parse(DEMO).link());
+        let taken_over = kept.is_some();
         let text = kept.or_else(|| borrowed.address.received());
-        borrowed.address.begin(text.clone().unwrap_or_default());
+        borrowed
+            .address
+            .begin(text.clone().unwrap_or_default(), taken_over);
         borrowed.show(text);
+        borrowed.write_later();
         let sentence = borrowed.sentence();
         borrowed.live.take_as_said(&sentence);
         drop(borrowed);
@@ -277,6 +281,13 @@ impl Page {
         self.write_later();
     }
 
+    /// The page is about to go: whether it would take with it what could not be written.
+    pub(crate) fn would_lose(&mut self) -> bool {
+        self.write_address();
+        // In a frame the text is that of the page around it.
+        self.address.is_behind() && !self.address.is_framed()
+    }
+
     /// A key on the reading line; whether it was one of its keys.
     pub(crate) fn reading_key(&mut self, key: &str) -> bool {
         let Some(good) = &self.good else { return false };
@@ -332,6 +343,8 @@ impl Page {
         self.demo = text.is_none();
         self.good = None;
         self.pairs = Pairs::parse(text.as_deref().unwrap_or(DEMO));
+        // Before all that may stop the program: a fresh start goes on from here.
+        crate::copy::keep(&self.dom, &self.pairs.link());
         self.filling = is_blank(&self.pairs);
         form::fill(&self.dom, &self.pairs);
         self.open_what_holds_values();

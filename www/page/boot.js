@@ -40,24 +40,17 @@
     traps += 1;
     life.abort();
     console.error(error);
-    if (traps > 1) give(window.aftercountText);
+    if (traps > 1) give(window.aftercountText || location.hash.slice(1));
     else start(window.aftercountText);
   }
 
   function give(text) {
     delete document.documentElement.dataset.settled;
     document.documentElement.dataset.state = "stale";
-    const notice = document.getElementById("no-engine");
-    const says = notice.querySelector("p");
-    says.textContent = "Aftercount stopped on this text, and again after a fresh start: nothing more is worked out. " +
-      "The figures below may be older than the text. Copy the text before you close or reload the page.";
-    const box = document.createElement("textarea");
-    box.readOnly = true;
-    box.rows = 4;
-    box.value = text || "";
-    box.setAttribute("aria-label", "The text of the engagement");
-    says.after(box);
+    const notice = document.getElementById("stopped");
+    notice.querySelector("textarea").value = text;
     notice.hidden = false;
+    document.getElementById("engagement").inert = true; // nobody would keep what is typed there
     notice.scrollIntoView();
   }
 

@@ -168,6 +168,17 @@ impl Browser {
         self.wait(&format!("{selector} says {part:?}"), &body);
     }
 
+    /// Waits until an element that is only heard holds a text.
+    #[track_caller]
+    pub fn wait_text_unseen(&self, selector: &str, text: &str) {
+        let body = format!(
+            "return document.querySelector({}).textContent === {};",
+            json!(selector),
+            json!(text)
+        );
+        self.wait(&format!("{selector} holds {text:?}"), &body);
+    }
+
     /// What a test that waits in vain has to go by.
     pub(super) fn summary(&self) -> String {
         let script = "return JSON.stringify({address: location.href.slice(0, 300), ...document.documentElement.dataset,
