@@ -10,6 +10,7 @@ mod driver;
 mod files;
 mod harm;
 mod input;
+mod keyboard;
 mod native;
 mod sheet;
 mod watch;
@@ -27,6 +28,7 @@ use driver::Driver;
 pub use files::{page_url, wiki_url};
 pub use harm::Doing;
 pub use input::Key;
+pub use keyboard::Struck;
 pub use native::{changed, native, native_sentence};
 pub use sheet::Shown;
 

@@ -88,10 +88,8 @@ impl Dom {
         }
         // The browser scrolls to what it gives the focus; where it refuses, everything stays as it was.
         let _ = element.focus();
-        // A cell of a table is chosen whole: what is typed there next takes its place.
-        if element.has_attribute("data-part")
-            && let Some(input) = element.dyn_ref::<HtmlInputElement>()
-        {
+        // A field is chosen whole, as by the Tab key: what is typed there next takes its place.
+        if let Some(input) = element.dyn_ref::<HtmlInputElement>() {
             input.select();
         }
     }

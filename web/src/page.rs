@@ -421,6 +421,7 @@ impl Page {
         if self.good.is_some() {
             self.dom.mark_root("data-state", Some("stale"));
         }
+        self.mark_what_rolls();
     }
 
     /// The text and what is read straight from it, whether it can be worked out or not.
@@ -516,6 +517,7 @@ impl Page {
 
     /// Lets the keyboard into what is larger than its place.
     pub(crate) fn mark_what_rolls(&self) {
+        rolling::leave_room(&self.dom);
         rolling::mark(&self.dom);
     }
 

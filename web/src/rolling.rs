@@ -1,9 +1,9 @@
-//! What rolls within itself, as a formula wider than the page does, can be reached with the keyboard and rolled with
-//! the arrows; what does not roll is no stop on the way.
+//! What gets in the way of a reader with a keyboard: parts that roll within themselves, and the sentence that stays in
+//! sight, under which the browser would otherwise bring a field that takes the focus.
 
 use crate::dom::{Dom, set};
 use wasm_bindgen::JsCast;
-use web_sys::Element;
+use web_sys::{Element, HtmlElement};
 
 /// What may be larger than its place, and what it is called where it is.
 const MAY_ROLL: [(&str, &str); 2] = [
@@ -11,7 +11,19 @@ const MAY_ROLL: [(&str, &str); 2] = [
     (".said", "What the model leaves, in words"),
 ];
 
-/// Makes a stop of each of them that rolls as it is shown now.
+/// Lets the style sheet know how much of the window the sentence covers as it is shown now.
+pub(crate) fn leave_room(dom: &Dom) {
+    let said = dom.document.query_selector(".said").ok().flatten();
+    if let (Some(said), Some(root)) = (said, dom.root.dyn_ref::<HtmlElement>()) {
+        // Without it the style sheet has a height of its own.
+        let _ = root
+            .style()
+            .set_property("--said", &format!("{}px", said.client_height()));
+    }
+}
+
+/// Makes a stop of each part that rolls as it is shown now, as a formula does that is wider than the page. It is rolled
+/// with the arrows; what does not roll is no stop on the way.
 pub(crate) fn mark(dom: &Dom) {
     for (selector, name) in MAY_ROLL {
         let Ok(found) = dom.document.query_selector_all(selector) else {
