@@ -1,6 +1,7 @@
 //! From the text of a link to its answer: an outcome, or every problem of the text.
 
 use crate::fight::{Effort, fight};
+use crate::json::to_json;
 use crate::outcome::Outcome;
 use crate::pairs::Pairs;
 use crate::problem::Problem;
@@ -21,9 +22,6 @@ pub enum Answer {
     /// It was not, for these reasons.
     Problems(Vec<Problem>),
 }
-
-/// The most bytes that the outcome of a short link usually takes.
-const USUAL_LENGTH: usize = 1024;
 
 /// Works out what `link` states.
 pub fn answer(link: &str) -> Answer {
@@ -113,11 +111,6 @@ fn write_outcome<S: Serializer>(
 impl Answer {
     /// The answer as one line of JSON, numbers in the shortest digits that read back the same.
     pub fn to_json(&self) -> String {
-        // Nothing in it can fail to be written: no maps with other keys than texts, no numbers but finite ones.
-        let mut json = Vec::with_capacity(USUAL_LENGTH);
-        serde_json::to_writer(&mut json, self)
-            .ok()
-            .and_then(|()| String::from_utf8(json).ok())
-            .unwrap_or_default()
+        to_json(self)
     }
 }

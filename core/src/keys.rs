@@ -389,6 +389,58 @@ pub(crate) const SLOTS: usize = 2 * KEYS.len();
 /// No row.
 const FREE: u8 = u8::MAX;
 
+/// The rows that the reader asks for, found by their names as this is compiled.
+pub(crate) mod rows {
+    use super::row_named;
+
+    pub(crate) const TITLE: usize = row_named("title");
+    pub(crate) const NOTE: usize = row_named("note");
+    pub(crate) const MARKING: usize = row_named("marking");
+    pub(crate) const UNIT: usize = row_named("unit");
+    pub(crate) const COUNTED: usize = row_named("counted");
+    pub(crate) const NAME: usize = row_named("name");
+    pub(crate) const START: usize = row_named("start");
+    pub(crate) const LOST: usize = row_named("lost");
+    pub(crate) const FIRE: usize = row_named("fire");
+    pub(crate) const RATE: usize = row_named("rate");
+    pub(crate) const HALF: usize = row_named("half");
+    pub(crate) const P: usize = row_named("p");
+    pub(crate) const Q: usize = row_named("q");
+    pub(crate) const BREAK: usize = row_named("break");
+    pub(crate) const WASTAGE: usize = row_named("wastage");
+    pub(crate) const SUPPORT_AREA: usize = row_named("support.area");
+    pub(crate) const SUPPORT_AIMED: usize = row_named("support.aimed");
+    pub(crate) const JOIN: usize = row_named("join");
+    pub(crate) const FLOW: usize = row_named("flow");
+    pub(crate) const RANGE: usize = row_named("range");
+    pub(crate) const RANGE_CLOSING: usize = row_named("range.closing");
+    pub(crate) const RANGE_LEAST: usize = row_named("range.least");
+    pub(crate) const REACH: usize = row_named("reach");
+    pub(crate) const REACH_SHAPE: usize = row_named("reach.shape");
+    pub(crate) const UNTIL: usize = row_named("until");
+    pub(crate) const VIEW: usize = row_named("view");
+    pub(crate) const PAPER: usize = row_named("paper");
+    pub(crate) const V: usize = row_named("v");
+}
+
+/// The row of a name; there is one.
+const fn row_named(name: &str) -> usize {
+    let mut row = 0;
+    while !is_same(KEYS[row].name, name) {
+        row += 1;
+    }
+    row
+}
+
+const fn is_same(one: &str, other: &str) -> bool {
+    let (one, other) = (one.as_bytes(), other.as_bytes());
+    let mut at = 0;
+    while at < one.len() && at < other.len() && one[at] == other[at] {
+        at += 1;
+    }
+    at == one.len() && at == other.len()
+}
+
 /// The rows by their names, so that one is found at once: each at its name's bucket, or at the next that was free.
 static BUCKETS: [u8; 128] = {
     let mut buckets = [FREE; 128];

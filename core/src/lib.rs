@@ -16,6 +16,7 @@ pub mod family;
 pub mod fight;
 pub mod golden;
 pub mod in_doubt;
+mod json;
 pub mod keys;
 pub mod laws;
 pub mod ledger;

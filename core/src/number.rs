@@ -7,43 +7,53 @@
 /// # Errors
 /// A hint in words, without a full stop, for texts outside the grammar and for numbers beyond the range of a double.
 pub fn read(text: &str) -> Result<f64, String> {
+    if let Some(value) = plain(text) {
+        return Ok(value);
+    }
     if !is_number(text) {
         return Err(hint(text));
     }
-    match text.parse::<f64>() {
-        Ok(value) if value.is_infinite() => Err("is too large".into()),
-        Ok(0.0)
-            if text
-                .split(['e', 'E'])
-                .next()
-                .is_some_and(|digits| digits.contains(|c| ('1'..='9').contains(&c))) =>
-        {
-            Err("is too small to be told from 0".into())
-        }
-        // A zero has one sign only, or two links of the same meaning would differ.
-        Ok(value) => Ok(value + 0.0),
-        Err(_) => Err(hint(text)),
-    }
+    Err(if text.parse() == Ok(0.0) {
+        "is too small to be told from 0".into()
+    } else {
+        "is too large".into()
+    })
+}
+
+/// The number of a text of the grammar within the range of a double; `None` for any other.
+pub(crate) fn plain(text: &str) -> Option<f64> {
+    let value = text.parse::<f64>().ok().filter(|_| is_number(text))?;
+    let is_zero = || !mantissa(text).contains(|digit| ('1'..='9').contains(&digit));
+    // A zero has one sign only, or two links of the same meaning would differ.
+    (value.is_finite() && (value != 0.0 || is_zero())).then_some(value + 0.0)
+}
+
+/// What stands before the exponent.
+fn mantissa(text: &str) -> &str {
+    text.split(['e', 'E']).next().unwrap_or(text)
 }
 
 /// Whether `text` is a number of the grammar.
 fn is_number(text: &str) -> bool {
-    let text = text.strip_prefix('-').unwrap_or(text);
-    let (mantissa, exponent) = match text.split_once(['e', 'E']) {
-        Some((mantissa, exponent)) => (mantissa, Some(exponent)),
-        None => (text, None),
-    };
-    let (whole, fraction) = match mantissa.split_once('.') {
-        Some((whole, fraction)) => (whole, Some(fraction)),
-        None => (mantissa, None),
-    };
-    digits(whole)
-        && fraction.is_none_or(digits)
-        && exponent.is_none_or(|exponent| digits(exponent.strip_prefix('-').unwrap_or(exponent)))
+    let mut bytes = text.strip_prefix('-').unwrap_or(text).bytes();
+    let mut next = digits(&mut bytes);
+    if next == Some(Some(b'.')) {
+        next = digits(&mut bytes);
+    }
+    if let Some(Some(b'e' | b'E')) = next {
+        let mut sign = bytes.clone();
+        if sign.next() == Some(b'-') {
+            bytes = sign;
+        }
+        next = digits(&mut bytes);
+    }
+    next == Some(None)
 }
 
-fn digits(text: &str) -> bool {
-    !text.is_empty() && text.bytes().all(|byte| byte.is_ascii_digit())
+/// Goes past digits, of which there must be some: what stands behind them, the inner `None` for nothing.
+fn digits(bytes: &mut std::str::Bytes<'_>) -> Option<Option<u8>> {
+    bytes.next().filter(u8::is_ascii_digit)?;
+    Some(bytes.find(|byte| !byte.is_ascii_digit()))
 }
 
 /// How to write what `text` seems to mean.

@@ -1,6 +1,6 @@
 //! The names of the keys that are worked out.
 
-use crate::keys::{self, Key};
+use crate::keys::{self, Key, Place};
 use crate::sides::Side;
 use std::fmt;
 
@@ -8,55 +8,70 @@ use std::fmt;
 #[derive(Clone, Copy)]
 pub(super) struct Name {
     pub(super) phase: Option<u8>,
-    side: Option<Side>,
-    pub(super) key: &'static str,
+    /// Its slot, or that of the key behind `phaseN.`; one more than there are for `phaseN.from`.
+    slot: usize,
 }
 
 impl Name {
-    pub(super) fn whole(key: &'static str) -> Name {
+    /// The key of a row for the whole engagement.
+    pub(super) const fn whole(row: usize) -> Name {
         Name {
             phase: None,
-            side: None,
-            key,
+            slot: 2 * row,
         }
     }
 
-    pub(super) fn of_side(side: Side, key: &'static str) -> Name {
+    /// The key of a row for one side.
+    pub(super) const fn of_side(side: Side, row: usize) -> Name {
         Name {
-            side: Some(side),
-            ..Name::whole(key)
+            phase: None,
+            slot: 2 * row + matches!(side, Side::Y) as usize,
         }
     }
 
-    pub(super) fn in_phase(self, number: u8) -> Name {
+    /// `phaseN.from`.
+    pub(super) const fn from_of_phase(number: u8) -> Name {
+        Name {
+            phase: Some(number),
+            slot: keys::SLOTS,
+        }
+    }
+
+    pub(super) const fn in_phase(self, number: u8) -> Name {
         Name {
             phase: Some(number),
             ..self
         }
     }
 
-    /// The slot of the key, or of that behind `phaseN.`.
-    pub(super) fn slot(self) -> Option<usize> {
-        keys::slot_of(self.side, self.key)
+    /// The slot of the key, or of that behind `phaseN.`; one more than there are for `phaseN.from`.
+    pub(super) fn slot(self) -> usize {
+        self.slot
     }
 
-    pub(super) fn row(self) -> Option<&'static Key> {
-        if self.phase.is_some() && self.key == "from" {
-            return Some(&keys::PHASE_FROM);
+    pub(super) fn row(self) -> &'static Key {
+        if self.slot == keys::SLOTS {
+            &keys::PHASE_FROM
+        } else {
+            keys::row(self.slot)
         }
-        self.slot().map(keys::row)
+    }
+
+    fn side(self) -> Option<Side> {
+        let side = if self.slot.is_multiple_of(2) { Side::X } else { Side::Y };
+        (self.row().place == Place::Side).then_some(side)
     }
 
     /// Whether `key` is this key of the phase with `number`.
     pub(super) fn is_in_phase(self, number: u8, key: &str) -> bool {
         let behind = |key| {
             let key = behind_phase(number, key)?;
-            match self.side {
+            match self.side() {
                 Some(side) => key.strip_prefix(side.letter())?.strip_prefix('.'),
                 None => Some(key),
             }
         };
-        behind(key) == Some(self.key)
+        behind(key) == Some(self.row().name)
     }
 }
 
@@ -81,9 +96,9 @@ impl fmt::Display for Name {
         if let Some(number) = self.phase {
             write!(f, "phase{number}.")?;
         }
-        if let Some(side) = self.side {
+        if let Some(side) = self.side() {
             write!(f, "{}.", side.letter())?;
         }
-        f.write_str(self.key)
+        f.write_str(self.row().name)
     }
 }

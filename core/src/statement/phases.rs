@@ -2,6 +2,7 @@
 
 use super::name::{Name, behind_phase};
 use super::reader::{MISSING, Reader};
+use crate::keys::rows;
 use crate::laws::FireLaw;
 use crate::problem::Problem;
 use crate::quantity::Quantity;
@@ -13,6 +14,9 @@ impl Reader<'_> {
     pub(super) fn phases(&mut self) -> Option<Vec<Phase<Quantity>>> {
         let mut phases = Vec::new();
         let mut whole = true;
+        if self.phased.is_empty() {
+            return Some(phases);
+        }
         for number in 1..=9_u8 {
             let stands = |place: &usize| {
                 let (key, text) = self.pairs.at(*place);
@@ -21,7 +25,7 @@ impl Reader<'_> {
             if !self.phased.iter().any(stands) {
                 continue;
             }
-            let from = Name::whole("from").in_phase(number);
+            let from = Name::from_of_phase(number);
             let from = self.required(from, "the time from which it holds");
             let changes = Both::of(|side: Side| self.changes(number, side));
             match from {
@@ -37,27 +41,29 @@ impl Reader<'_> {
     }
 
     fn changes(&mut self, number: u8, side: Side) -> Changes<Quantity> {
-        let key = |name: &'static str| Name::of_side(side, name).in_phase(number);
-        let law = if self.text(key("fire")).is_some() {
-            self.choice(key("fire")).and_then(FireLaw::of_word)
+        let key = |row: usize| Name::of_side(side, row).in_phase(number);
+        let law = if self.text(key(rows::FIRE)).is_some() {
+            self.choice(key(rows::FIRE)).and_then(FireLaw::of_word)
         } else {
             None
         };
         let changes = Changes {
             law,
-            rate: self.quantity(key("rate")),
-            half: self.quantity(key("half")),
-            p: self.quantity(key("p")),
-            q: self.quantity(key("q")),
-            wastage: self.quantity(key("wastage")),
-            support_area: self.quantity(key("support.area")),
-            support_aimed: self.quantity(key("support.aimed")),
+            rate: self.quantity(key(rows::RATE)),
+            half: self.quantity(key(rows::HALF)),
+            p: self.quantity(key(rows::P)),
+            q: self.quantity(key(rows::Q)),
+            wastage: self.quantity(key(rows::WASTAGE)),
+            support_area: self.quantity(key(rows::SUPPORT_AREA)),
+            support_aimed: self.quantity(key(rows::SUPPORT_AIMED)),
         };
         // A new law brings a new unit for its rate, and needs its own keys.
         if let Some(law) = law.filter(|law| *law != FireLaw::None) {
-            let needed = law.law().needs.iter().copied().chain(["rate"]);
-            for name in needed {
-                self.required_again(key(name));
+            let is_needed = |name: &str| name == "rate" || law.law().needs.contains(&name);
+            for row in [rows::HALF, rows::P, rows::Q, rows::RATE] {
+                if is_needed(key(row).row().name) {
+                    self.required_again(key(row));
+                }
             }
         }
         changes

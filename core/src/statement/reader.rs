@@ -2,8 +2,8 @@
 
 use super::name::Name;
 use super::wrong::{key_problem, of_separator, read_quantity, within_limits, without_escape};
-use crate::keys::{self, Key, Kind};
-use crate::pairs::Pairs;
+use crate::keys::{self, Kind};
+use crate::pairs::{Pairs, trimmed};
 use crate::problem::{Problem, is_hidden};
 use crate::quantity::Quantity;
 
@@ -11,7 +11,7 @@ use crate::quantity::Quantity;
 pub(super) struct Reader<'a> {
     pub(super) pairs: &'a Pairs,
     /// Where each key without a phase stands first, by its slot.
-    places: [usize; keys::SLOTS],
+    places: [u16; keys::SLOTS],
     /// Where keys that begin with `phase` stand.
     pub(super) phased: Vec<usize>,
     /// Problems with their place in the link; missing keys come behind them all.
@@ -21,11 +21,14 @@ pub(super) struct Reader<'a> {
 /// The place of what does not stand in the link.
 pub(super) const MISSING: usize = usize::MAX;
 
+/// The same in so few bytes as hold the place of any pair of a text that is read.
+const NOWHERE: u16 = u16::MAX;
+
 impl<'a> Reader<'a> {
     pub(super) fn new(pairs: &'a Pairs) -> Reader<'a> {
         Reader {
             pairs,
-            places: [MISSING; keys::SLOTS],
+            places: [NOWHERE; keys::SLOTS],
             phased: Vec::new(),
             problems: pairs.problems().into_iter().map(without_escape).collect(),
         }
@@ -64,9 +67,9 @@ impl<'a> Reader<'a> {
     /// Whether the key at `place` already stands before it; notes the place. An unknown key is in trouble anyway.
     fn stands_before(&mut self, place: usize, key: &str, slot: Option<usize>) -> bool {
         if let Some(slot) = slot {
-            let before = self.places[slot] != MISSING;
+            let before = self.places[slot] != NOWHERE;
             if !before {
-                self.places[slot] = place;
+                self.places[slot] = place as u16;
             }
             return before;
         }
@@ -81,7 +84,8 @@ impl<'a> Reader<'a> {
     /// Where a key stands first.
     pub(super) fn place(&self, name: Name) -> Option<usize> {
         let Some(number) = name.phase else {
-            return Some(self.places[name.slot()?]).filter(|place| *place != MISSING);
+            let place = self.places[name.slot()];
+            return (place != NOWHERE).then_some(usize::from(place));
         };
         let is_it = |place: &usize| name.is_in_phase(number, self.pairs.at(*place).0);
         self.phased.iter().copied().find(is_it)
@@ -90,14 +94,14 @@ impl<'a> Reader<'a> {
     /// Whether a key is absent or its text empty.
     pub(super) fn is_blank(&self, name: Name) -> bool {
         self.place(name)
-            .is_none_or(|place| self.pairs.at(place).1.trim().is_empty())
+            .is_none_or(|place| trimmed(self.pairs.at(place).1).is_empty())
     }
 
     /// The text of a key with its outer blanks gone, and its place; `None` where it is empty, absent, or already in
     /// trouble.
     pub(super) fn text(&self, name: Name) -> Option<(usize, &'a str)> {
         let place = self.place(name)?;
-        let text = self.pairs.at(place).1.trim();
+        let text = trimmed(self.pairs.at(place).1);
         (!text.is_empty() && self.is_decoded(place)).then_some((place, text))
     }
 
@@ -113,11 +117,7 @@ impl<'a> Reader<'a> {
         let Some((_, text)) = self.text(key) else {
             return String::new();
         };
-        let Some(Key {
-            kind: Kind::Text(most),
-            ..
-        }) = key.row()
-        else {
+        let Kind::Text(most) = key.row().kind else {
             return String::new();
         };
         if let Some(hidden) = text.chars().find(|letter| is_hidden(*letter)) {
@@ -128,7 +128,7 @@ impl<'a> Reader<'a> {
             );
         }
         let length = text.chars().count();
-        if length > *most {
+        if length > most {
             self.report(key, format!("is {length} characters long; write at most {most}"));
         }
         text.into()
@@ -136,16 +136,12 @@ impl<'a> Reader<'a> {
 
     pub(super) fn choice(&mut self, key: Name) -> Option<&'static str> {
         let (_, text) = self.text(key)?;
-        let Some(Key {
-            kind: Kind::Choice(words),
-            ..
-        }) = key.row()
-        else {
+        let Kind::Choice(words) = key.row().kind else {
             return None;
         };
         let word = words.iter().find(|word| **word == text).copied();
         if word.is_none() {
-            let problem = of_separator(text).unwrap_or_else(|| match key.key {
+            let problem = of_separator(text).unwrap_or_else(|| match key.row().name {
                 "v" => "this copy reads version 1 of the link only: write 1".into(),
                 _ => format!("write one of {}", words.join(", ")),
             });
@@ -154,12 +150,10 @@ impl<'a> Reader<'a> {
         word
     }
 
-    /// The items of a list, split after decoding, each with its number.
     /// A quantity within its key's limits; `None` where it is absent or in trouble.
     pub(super) fn quantity(&mut self, key: Name) -> Option<Quantity> {
         let (_, text) = self.text(key)?;
-        let row = key.row()?;
-        match read_quantity(text).and_then(|quantity| within_limits(row, quantity)) {
+        match read_quantity(text).and_then(|quantity| within_limits(key.row(), quantity)) {
             Ok(quantity @ Quantity::Number(_)) => Some(quantity),
             Ok(Quantity::Interval { .. }) => {
                 self.report(

@@ -3,6 +3,7 @@
 use super::name::Name;
 use super::reader::Reader;
 use super::{Statement, TimeUnit};
+use crate::keys::rows;
 use crate::laws::FireLaw;
 use crate::quantity::Quantity;
 use crate::sides::{Both, Side};
@@ -10,29 +11,29 @@ use crate::terms::{Closing, Fire, Reach, SideTerms, Support, Terms};
 
 impl Reader<'_> {
     pub(super) fn statement(&mut self) -> Option<Statement> {
-        let title = self.free_text(Name::whole("title"));
-        let note = self.free_text(Name::whole("note"));
-        let marking = self.free_text(Name::whole("marking"));
+        let title = self.free_text(Name::whole(rows::TITLE));
+        let note = self.free_text(Name::whole(rows::NOTE));
+        let marking = self.free_text(Name::whole(rows::MARKING));
         let unit = self
-            .choice(Name::whole("unit"))
+            .choice(Name::whole(rows::UNIT))
             .and_then(TimeUnit::of_word)
             .unwrap_or_default();
-        let counted = self.free_text(Name::whole("counted"));
+        let counted = self.free_text(Name::whole(rows::COUNTED));
         let counted = if counted.is_empty() {
             "combatants".into()
         } else {
             counted
         };
         let names = Both::of(|side| {
-            let name = self.free_text(Name::of_side(side, "name"));
+            let name = self.free_text(Name::of_side(side, rows::NAME));
             if name.is_empty() {
                 format!("Side {}", side.letter().to_uppercase())
             } else {
                 name
             }
         });
-        let until = self.quantity(Name::whole("until"));
-        for key in ["view", "paper", "v"] {
+        let until = self.quantity(Name::whole(rows::UNTIL));
+        for key in [rows::VIEW, rows::PAPER, rows::V] {
             self.choice(Name::whole(key));
         }
         let x = self.side(Side::X);
@@ -58,26 +59,29 @@ impl Reader<'_> {
     }
 
     fn side(&mut self, side: Side) -> Option<SideTerms<Quantity>> {
-        let key = |name: &'static str| Name::of_side(side, name);
-        let start = self.required(key("start"), "a strength at the start");
-        let law = self.fire_law(key("fire"));
+        let key = |row: usize| Name::of_side(side, row);
+        let start = self.required(key(rows::START), "a strength at the start");
+        let law = self.fire_law(key(rows::FIRE));
         let rate = match law {
             Some(FireLaw::None) => Some(Quantity::Number(0.0)),
-            _ => self.required(key("rate"), "a rate"),
+            _ => self.required(key(rows::RATE), "a rate"),
         };
-        let lost = self.quantity(key("lost")).unwrap_or(Quantity::Number(0.0));
-        let break_point = self.quantity(key("break")).unwrap_or(Quantity::Number(1.0));
+        let lost = self.quantity(key(rows::LOST)).unwrap_or(Quantity::Number(0.0));
+        let break_point = self.quantity(key(rows::BREAK)).unwrap_or(Quantity::Number(1.0));
         let law = law?;
-        let mut needed = |name: &'static str, what: &str| {
-            if law.law().needs.contains(&name) {
-                self.required(key(name), what).map(Some)
+        let mut needed = |row: usize, what: &str| {
+            if law.law().needs.contains(&key(row).row().name) {
+                self.required(key(row), what).map(Some)
             } else {
                 Some(None)
             }
         };
-        let half = needed("half", "the number of targets at which half the time is search");
-        let p = needed("p", "the exponent on the shooters");
-        let q = needed("q", "the exponent on the targets");
+        let half = needed(
+            rows::HALF,
+            "the number of targets at which half the time is search",
+        );
+        let p = needed(rows::P, "the exponent on the shooters");
+        let q = needed(rows::Q, "the exponent on the targets");
         let fire = Fire {
             law,
             rate: rate?,
@@ -86,15 +90,19 @@ impl Reader<'_> {
             q: q?,
         };
         let none = Quantity::Number(0.0);
-        let wastage = self.quantity(key("wastage")).unwrap_or(none);
+        let wastage = self.quantity(key(rows::WASTAGE)).unwrap_or(none);
         let support = Support {
-            area: self.quantity(key("support.area")).unwrap_or(none),
-            aimed: self.quantity(key("support.aimed")).unwrap_or(none),
+            area: self.quantity(key(rows::SUPPORT_AREA)).unwrap_or(none),
+            aimed: self.quantity(key(rows::SUPPORT_AIMED)).unwrap_or(none),
         };
-        let shape = self.quantity(key("reach.shape")).unwrap_or(Quantity::Number(1.0));
-        let reach = self.quantity(key("reach")).map(|reach| Reach { reach, shape });
-        let joins = self.joins(key("join"));
-        let flows = self.flows(key("flow"));
+        let shape = self
+            .quantity(key(rows::REACH_SHAPE))
+            .unwrap_or(Quantity::Number(1.0));
+        let reach = self
+            .quantity(key(rows::REACH))
+            .map(|reach| Reach { reach, shape });
+        let joins = self.joins(key(rows::JOIN));
+        let flows = self.flows(key(rows::FLOW));
         let start = start?;
         let comes = joins
             .iter()
@@ -104,7 +112,7 @@ impl Reader<'_> {
                 .any(|flow| flow.rate.numbers().any(|rate| rate > 0.0));
         if start == none && !comes {
             self.report(
-                key("start"),
+                key(rows::START),
                 "must be more than 0, unless reserves or a flow bring strength later",
             );
         }
@@ -133,14 +141,14 @@ impl Reader<'_> {
     /// The closing of the range; the outer `None` where a problem keeps it from being read.
     fn closing(&mut self, sides: &Both<SideTerms<Quantity>>) -> Option<Option<Closing<Quantity>>> {
         let none = Quantity::Number(0.0);
-        let speed = self.quantity(Name::whole("range.closing")).unwrap_or(none);
-        let least = self.quantity(Name::whole("range.least")).unwrap_or(none);
+        let speed = self.quantity(Name::whole(rows::RANGE_CLOSING)).unwrap_or(none);
+        let least = self.quantity(Name::whole(rows::RANGE_LEAST)).unwrap_or(none);
         if sides.x.reach.is_none() && sides.y.reach.is_none() {
-            self.quantity(Name::whole("range"));
+            self.quantity(Name::whole(rows::RANGE));
             return Some(None);
         }
         let range = self.required(
-            Name::whole("range"),
+            Name::whole(rows::RANGE),
             "the range at the start, which a reach is measured against",
         )?;
         Some(Some(Closing { range, speed, least }))

@@ -3,7 +3,7 @@
 use super::name::row_of;
 use crate::keys::{self, Key, Kind, Unit};
 use crate::number;
-use crate::pairs::{LONGEST_LINK, Pairs};
+use crate::pairs::{LONGEST_LINK, Pairs, trimmed};
 use crate::problem::Problem;
 use crate::quantity::Quantity;
 
@@ -16,7 +16,7 @@ pub(super) fn whole_problem(pairs: &Pairs) -> Option<Problem> {
     }
     let nothing = pairs
         .iter()
-        .all(|(key, text)| key == "v" || text.trim().is_empty());
+        .all(|(key, text)| key == "v" || trimmed(text).is_empty());
     let required = "x.start, x.rate, y.start and y.rate";
     nothing.then(|| {
         Problem::whole(format!(
@@ -36,8 +36,7 @@ pub(super) fn key_problem(row: Option<&Key>, key: &str, text: &str) -> Option<Pr
     };
     match row {
         Some(row) => {
-            let at_default = text.trim().is_empty() || row.default == Some(text.trim());
-            let used = row.worked_out || at_default;
+            let used = row.worked_out || text.trim().is_empty() || row.default == Some(text.trim());
             (!used).then(not_yet)
         }
         None if key.starts_with("phase") && keys::is_numbered(key) => None,
@@ -86,10 +85,11 @@ pub(super) fn without_escape((place, problem): (usize, Problem)) -> (usize, Prob
 
 /// A quantity; nearly all are plain numbers, which are read at once.
 pub(super) fn read_quantity(text: &str) -> Result<Quantity, String> {
-    if text.contains('?') || text.contains("..") {
-        return Quantity::read(text);
+    let text = trimmed(text);
+    match number::plain(text) {
+        Some(value) => Ok(Quantity::Number(value)),
+        None => Quantity::read(text),
     }
-    number::read(text.trim()).map(Quantity::Number)
 }
 
 pub(super) fn within_limits(row: &Key, quantity: Quantity) -> Result<Quantity, String> {
