@@ -1,16 +1,18 @@
 //! One delegated listener an event kind, all of which end with the page's signal.
 
 use crate::dom::{Dom, control_value};
+use crate::hand::Writes;
 use crate::lists::{Act, Cell};
 use crate::page::Page;
 use crate::phases::Ask;
 use crate::reading::Pointer;
+use aftercount_core::sides::Side;
 use std::cell::RefCell;
 use std::rc::Rc;
 use wasm_bindgen::closure::Closure;
 use wasm_bindgen::{JsCast, JsValue};
 use web_sys::{
-    AbortSignal, AddEventListenerOptions, Element, Event, EventTarget, KeyboardEvent, MouseEvent,
+    AbortSignal, AddEventListenerOptions, Element, Event, EventTarget, FocusEvent, KeyboardEvent, MouseEvent,
     PointerEvent, ResizeObserver,
 };
 
@@ -35,7 +37,8 @@ pub(crate) fn all(dom: &Dom, page: &Shared, signal: &AbortSignal) -> Result<(), 
     };
     on(document, "input", input)?;
     on(document, "change", left)?;
-    on(document, "focusout", left)?;
+    on(document, "focusout", focus_out)?;
+    on(document, "mousedown", hold_focus)?;
     on(document, "focusin", focused)?;
     on(document, "click", click)?;
     on(document, "keydown", key)?;
@@ -121,6 +124,8 @@ fn input(page: &mut Page, event: &Event) -> After {
         page.cell_typed(&cell, &text);
     } else if let (Some(old), Some(change)) = (target.get_attribute("data-change"), control_value(&target)) {
         return page.exchange_change(&old, &change);
+    } else if let (Some(side), Some(text)) = (side_of(&target, "data-share"), control_value(&target)) {
+        page.share_typed(side, &text);
     } else if let Some((key, text)) = crate::form::changed_field(&target) {
         page.typed(&key, &text);
     }
@@ -134,14 +139,42 @@ fn left(page: &mut Page, event: &Event) -> After {
     After::Nothing
 }
 
-/// Whether an element holds a part of the text: a field, or a cell of a table.
+/// Whether an element holds a part of the text: a field, a cell of a table, or an entry that writes one.
 fn is_field(element: &Element) -> bool {
-    element.has_attribute("name") || element.has_attribute("data-part")
+    ["name", "data-part", "data-share"]
+        .iter()
+        .any(|name| element.has_attribute(name))
 }
 
-/// A box with a text to copy offers itself whole.
-fn focused(_page: &mut Page, event: &Event) -> After {
+/// The side whose letter stands in an attribute.
+fn side_of(element: &Element, name: &str) -> Option<Side> {
+    let letter = element.get_attribute(name)?;
+    Side::BOTH.into_iter().find(|side| side.letter() == letter)
+}
+
+fn focus_out(page: &mut Page, event: &Event) -> After {
+    let next = event.dyn_ref::<FocusEvent>().and_then(FocusEvent::related_target);
+    page.focus_left(next.and_then(|next| next.dyn_into::<Element>().ok()).as_ref());
+    left(page, event)
+}
+
+/// A press on the buttons of a number leaves the focus in its field, or they would be gone before the press is over.
+fn hold_focus(_page: &mut Page, event: &Event) -> After {
     if let Some(element) = element(event)
+        && let Ok(Some(_)) = element.closest(".hand")
+    {
+        event.prevent_default();
+    }
+    After::Nothing
+}
+
+/// A box with a text to copy offers itself whole; a number has its buttons beside it.
+fn focused(page: &mut Page, event: &Event) -> After {
+    let element = element(event);
+    if let Some(element) = &element {
+        page.focused(element);
+    }
+    if let Some(element) = element
         && let Some(area) = element.dyn_ref::<web_sys::HtmlTextAreaElement>()
         && area.read_only()
     {
@@ -181,7 +214,15 @@ fn click(page: &mut Page, event: &Event) -> After {
     if button.get_attribute("aria-disabled").as_deref() == Some("true") {
         return After::Nothing;
     }
+    if let Some(writes) = Writes::of(&button) {
+        return page.hand_pressed(writes);
+    }
+    if let Some(side) = side_of(&button, "data-share-of") {
+        return page.toggle_share(side);
+    }
     match button.id().as_str() {
+        "unit.convert" => page.convert_unit(),
+        "unit.keep" => page.keep_numbers(),
         "continue" => page.continue_from_here(),
         "blank" => {
             page.start_from_blank();
@@ -202,6 +243,10 @@ fn key(page: &mut Page, event: &Event) -> After {
     let (Some(element), Some(event)) = (element(event), event.dyn_ref::<KeyboardEvent>()) else {
         return After::Nothing;
     };
+    if let Some(next) = page.hand_key(&element, &event.key()) {
+        event.prevent_default();
+        return After::GoTo(next);
+    }
     if element.id() == "reading" {
         if !event.ctrl_key() && !event.alt_key() && !event.meta_key() && page.reading_key(&event.key()) {
             event.prevent_default();

@@ -3,6 +3,7 @@
 use crate::address::{Address, Step};
 use crate::dom::Dom;
 use crate::form;
+use crate::hand::{Hand, Writes};
 use crate::kept_rates::KeptRates;
 use crate::law_fields::LawFields;
 use crate::listen::After;
@@ -14,19 +15,22 @@ use crate::plates::Plates;
 use crate::problems::{PATIENCE, Problems};
 use crate::reading::Pointer;
 use crate::rolling;
+use crate::share::Shares;
 use crate::stopwatch::{DRAW, Stopwatch, WORK};
 use crate::timeline;
 use crate::timer::{NextFrame, Timer};
+use crate::unit_change::UnitChange;
 use crate::working;
 use aftercount_core::demo::DEMO;
 use aftercount_core::mark::text_mark;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::problem::{Problem, seen};
+use aftercount_core::sides::Side;
 use aftercount_core::statement::Statement;
 use aftercount_core::words::format::three;
 use std::cell::RefCell;
 use std::rc::Rc;
-use web_sys::{AbortSignal, HtmlDetailsElement};
+use web_sys::{AbortSignal, Element, HtmlDetailsElement};
 
 /// The life of one instance of the program on the page.
 pub(crate) struct Page {
@@ -44,6 +48,9 @@ pub(crate) struct Page {
     current: bool,
     problems: Problems,
     kept_rates: KeptRates,
+    hand: Hand,
+    shares: Shares,
+    unit_change: UnitChange,
     law_fields: LawFields,
     phases: Phases,
     address: Address,
@@ -51,6 +58,7 @@ pub(crate) struct Page {
     plates: Plates,
     show_problems: Timer,
     write: Timer,
+    show_share: Timer,
     speak: Timer,
     decide: Timer,
     frame: NextFrame,
@@ -85,6 +93,9 @@ impl Page {
                 current: false,
                 problems: Problems::new(dom),
                 kept_rates: KeptRates::new(dom),
+                hand: Hand::new(dom),
+                shares: Shares::new(dom),
+                unit_change: UnitChange::new(dom),
                 law_fields: LawFields::new(dom),
                 phases: Phases::new(dom),
                 address: Address::new(dom),
@@ -92,6 +103,7 @@ impl Page {
                 plates: Plates::new(dom),
                 show_problems: Timer::new(&dom.window, page, Page::show_waiting),
                 write: Timer::new(&dom.window, page, Page::write_address),
+                show_share: Timer::new(&dom.window, page, Page::show_share),
                 speak: Timer::new(&dom.window, page, Page::speak_now),
                 decide: Timer::new(&dom.window, page, Page::decide_now),
                 frame: NextFrame::new(&dom.window, page, Page::draw_now),
@@ -129,7 +141,12 @@ impl Page {
             return;
         }
         self.demo = false;
+        let before = (key == "unit").then(|| self.pairs.clone());
         self.pairs.set(key, text);
+        match before {
+            Some(before) => self.unit_change.changed(&before, &self.pairs),
+            None => self.unit_change.typed(key),
+        }
         self.kept_rates.typed(&self.pairs, key);
         self.phases.typed(key, text);
         self.changed(Cause::Typed);
@@ -166,6 +183,71 @@ impl Page {
         next.map_or(After::Nothing, After::GoTo)
     }
 
+    /// Something has the focus.
+    pub(crate) fn focused(&mut self, element: &Element) {
+        self.hand.focused(element, &self.pairs);
+    }
+
+    /// The focus has left for `next`.
+    pub(crate) fn focus_left(&mut self, next: Option<&Element>) {
+        self.hand.left(next);
+    }
+
+    /// The id of what a key on the buttons of a number moves the focus to.
+    pub(crate) fn hand_key(&self, element: &Element, key: &str) -> Option<String> {
+        self.hand.key(element, key)
+    }
+
+    /// One of the buttons of a number. The focus goes back to the number.
+    pub(crate) fn hand_pressed(&mut self, writes: Writes) -> After {
+        let Some((field, key, text)) = self.hand.press(&self.pairs, writes) else {
+            return After::Nothing;
+        };
+        self.change_at_once(|pairs| pairs.set(&key, &text));
+        form::fill(&self.dom, &self.pairs);
+        self.kept_rates.typed(&self.pairs, &key);
+        After::GoTo(field)
+    }
+
+    /// The button beside a rate that discloses its entry as per cent.
+    pub(crate) fn toggle_share(&mut self, side: Side) -> After {
+        let good = self.good.as_ref().filter(|_| self.current);
+        After::GoTo(self.shares.toggle(side, good.map(|good| &good.statement)))
+    }
+
+    /// The per cent that a rate is to take at the start was typed: it writes the rate.
+    pub(crate) fn share_typed(&mut self, side: Side, text: &str) {
+        let key = format!("{}.rate", side.letter());
+        match self.shares.typed(&self.pairs, side, text) {
+            Some(rate) => {
+                self.typed(&key, &rate);
+                form::fill(&self.dom, &self.pairs);
+            }
+            None => self.show_share.start(PATIENCE),
+        }
+    }
+
+    fn show_share(&mut self) {
+        self.show_share.stop();
+        self.shares.show_waiting();
+    }
+
+    /// Restates every rate and time in the unit that was chosen.
+    pub(crate) fn convert_unit(&mut self) -> After {
+        if let Some(restated) = self.unit_change.convert(&self.pairs) {
+            self.change_at_once(|pairs| *pairs = restated);
+            form::fill(&self.dom, &self.pairs);
+            return After::GoTo("unit".into());
+        }
+        After::Nothing
+    }
+
+    /// Leaves every number as it is.
+    pub(crate) fn keep_numbers(&mut self) -> After {
+        self.unit_change.withdraw();
+        After::GoTo("unit".into())
+    }
+
     /// Another key was chosen for a change of a phase.
     pub(crate) fn exchange_change(&mut self, old: &str, change: &str) -> After {
         let mut pairs = self.pairs.clone();
@@ -192,6 +274,7 @@ impl Page {
     fn change_at_once(&mut self, change: impl FnOnce(&mut Pairs)) {
         self.address.close();
         self.demo = false;
+        self.unit_change.withdraw();
         change(&mut self.pairs);
         self.changed(Cause::Whole);
         self.close_entry();
@@ -215,6 +298,7 @@ impl Page {
         self.close_entry();
         self.law_fields.show_again(&self.pairs);
         self.phases.left(&self.pairs);
+        self.show_share();
         if !self.waiting.is_empty() {
             self.show_waiting();
         }
@@ -239,6 +323,7 @@ impl Page {
         }
         self.pairs = blank;
         self.demo = false;
+        self.unit_change.withdraw();
         self.good = None;
         self.filling = true;
         form::fill(&self.dom, &self.pairs);
@@ -342,6 +427,7 @@ impl Page {
     fn show(&mut self, text: Option<String>) {
         self.demo = text.is_none();
         self.good = None;
+        self.unit_change.withdraw();
         self.pairs = Pairs::parse(text.as_deref().unwrap_or(DEMO));
         // Before all that may stop the program: a fresh start goes on from here.
         crate::copy::keep(&self.dom, &self.pairs.link());
@@ -369,6 +455,7 @@ impl Page {
         self.show_text();
         lists::show(&self.dom, &self.pairs);
         self.phases.show(&self.pairs);
+        self.hand.again(&self.pairs);
         self.decide.stop();
         self.dom.set_text("decided", "");
         self.dom.set_shown("decided", false);
@@ -380,6 +467,8 @@ impl Page {
             Ok(statement) => self.work_out_good(statement),
             Err(problems) => self.work_out_bad(problems, cause),
         }
+        let good = self.good.as_ref().filter(|_| self.current);
+        self.shares.show(&self.pairs, good.map(|good| &good.statement));
     }
 
     fn work_out_good(&mut self, statement: Statement) {

@@ -58,7 +58,11 @@ impl Name {
     }
 
     fn side(self) -> Option<Side> {
-        let side = if self.slot.is_multiple_of(2) { Side::X } else { Side::Y };
+        let side = if self.slot.is_multiple_of(2) {
+            Side::X
+        } else {
+            Side::Y
+        };
         (self.row().place == Place::Side).then_some(side)
     }
 

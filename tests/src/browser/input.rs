@@ -31,6 +31,8 @@ pub enum Key {
     PageUp,
     /// A large step on.
     PageDown,
+    /// Out of it.
+    Escape,
 }
 
 impl Key {
@@ -39,6 +41,7 @@ impl Key {
             Self::Backspace => '\u{e003}',
             Self::Tab => '\u{e004}',
             Self::Enter => '\u{e007}',
+            Self::Escape => '\u{e00c}',
             Self::PageUp => '\u{e00e}',
             Self::PageDown => '\u{e00f}',
             Self::End => '\u{e010}',
@@ -123,9 +126,12 @@ impl Browser {
         self.script(script, vec![json!(name), json!(value)]);
     }
 
-    /// Clicks.
+    /// Clicks, having rolled the page to where it is, as a hand does: the window's lower edge holds the sentence.
     #[track_caller]
     pub fn click(&self, selector: &str) {
+        let script =
+            "const e = document.querySelector(arguments[0]); if (e) e.scrollIntoView({block: 'center'});";
+        self.script(script, vec![json!(selector)]);
         self.run(selector, self.element(selector).click());
     }
 

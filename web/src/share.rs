@@ -1,0 +1,104 @@
+//! A rate entered as the per cent of the enemy that it takes per unit of time at the start.
+
+use crate::dom::{Dom, append_words};
+use crate::form;
+use crate::unit_change::unit;
+use aftercount_core::pairs::Pairs;
+use aftercount_core::share::{per_cent_of_rate, rate_of_per_cent};
+use aftercount_core::sides::{Both, Side};
+use aftercount_core::statement::Statement;
+use aftercount_core::words::entry;
+use web_sys::HtmlInputElement;
+
+/// The small entries beside both rates.
+pub(crate) struct Shares {
+    dom: Dom,
+    open: Both<bool>,
+    /// What is wrong with an entry, and not shown yet.
+    waiting: Option<(Side, String)>,
+}
+
+impl Shares {
+    pub(crate) fn new(dom: &Dom) -> Shares {
+        Shares {
+            dom: dom.clone(),
+            open: Both::default(),
+            waiting: None,
+        }
+    }
+
+    /// The button beside a rate: discloses the entry, or closes it. The id of what then has the focus.
+    pub(crate) fn toggle(&mut self, side: Side, good: Option<&Statement>) -> String {
+        self.open[side] = !self.open[side];
+        let open = self.open[side];
+        let id = |part: &str| format!("{}.share{part}", side.letter());
+        self.dom.set_shown(&id(".field"), open);
+        self.dom
+            .set_attribute(&id(".open"), "aria-expanded", if open { "true" } else { "false" });
+        self.settle(side);
+        self.fill(side, good);
+        if open { id("") } else { id(".open") }
+    }
+
+    /// The rate that an entry stands for, as it is written; `None` where there is none, and then why waits to be shown.
+    pub(crate) fn typed(&mut self, pairs: &Pairs, side: Side, text: &str) -> Option<String> {
+        self.settle(side);
+        if text.trim().is_empty() {
+            return None;
+        }
+        match rate_of_per_cent(pairs, side, text) {
+            Ok(rate) => Some(rate),
+            Err(problem) => {
+                self.waiting = Some((side, problem));
+                None
+            }
+        }
+    }
+
+    /// Shows what waits.
+    pub(crate) fn show_waiting(&mut self) {
+        if let Some((side, problem)) = self.waiting.take() {
+            let id = format!("{}.share", side.letter());
+            if let Some(place) = self.dom.element(&format!("{id}.problem")) {
+                append_words(&self.dom, &place, &format!("{problem}."));
+            }
+            self.dom.set_shown(&format!("{id}.problem"), true);
+            self.dom.set_attribute(&id, "aria-invalid", "true");
+        }
+    }
+
+    /// The labels, and in the entries what the rates of the text as it stands take, where there is one.
+    pub(crate) fn show(&self, pairs: &Pairs, good: Option<&Statement>) {
+        let unit = unit(pairs).unwrap_or_default();
+        for side in Side::BOTH {
+            let enemy = form::name_of(pairs, side.enemy().letter());
+            let label = format!("{}.share.label", side.letter());
+            self.dom.set_text(&label, &entry::per_cent(&enemy, unit));
+            let focused = self.dom.document.active_element().map(|element| element.id());
+            if focused.as_deref() != Some(&format!("{}.share", side.letter())) {
+                self.fill(side, good);
+            }
+        }
+    }
+
+    fn fill(&self, side: Side, good: Option<&Statement>) {
+        let id = format!("{}.share", side.letter());
+        let words = good.filter(|_| self.open[side]);
+        let words = words.and_then(|statement| per_cent_of_rate(statement, side));
+        if let Some(input) = self.dom.typed::<HtmlInputElement>(&id) {
+            input.set_value(words.as_deref().unwrap_or_default());
+        }
+    }
+
+    /// Takes away what was said of an entry.
+    fn settle(&mut self, side: Side) {
+        self.waiting = None;
+        let id = format!("{}.share", side.letter());
+        self.dom.set_text(&format!("{id}.problem"), "");
+        self.dom.set_shown(&format!("{id}.problem"), false);
+        if let Some(input) = self.dom.element(&id) {
+            // Taking an attribute away cannot fail.
+            let _ = input.remove_attribute("aria-invalid");
+        }
+    }
+}
