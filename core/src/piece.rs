@@ -13,7 +13,7 @@ use crate::laws::area::Linear;
 use crate::orbit_point::OrbitPoint;
 use crate::outcome::{Losses, Method, ToTheLast};
 use crate::sides::{Both, Side};
-use crate::state::{Descent, StateEquation};
+use crate::state::{Descent, Origin, StateEquation};
 use crate::terms::Fire;
 use std::cell::Cell;
 
@@ -143,6 +143,8 @@ pub struct Piece {
     pub(crate) per_target: Both<[Power; 2]>,
     /// What each side loses besides the enemy's fire, per unit of time and of its factor as targets.
     pub(crate) besides: Both<f64>,
+    /// The strengths at its beginning as the equation needs them.
+    origin: Both<Origin>,
     /// What it costs to bring each side down to the last.
     pub cost: Both<Double>,
     /// Whether the sides stand at parity to the rounding of the inputs, and so wear each other out together.
@@ -170,7 +172,9 @@ impl Piece {
         let fire = conditions.fire;
         let (per_target, besides) = conditions.separated()?;
         let equation = StateEquation::with(&fire, &per_target, &besides);
-        let cost = Both::of(|side| equation.cost(side, start[side].into(), Double::from(0.0)));
+        let origin = Both::of(|side| equation.origin(side, start[side].into()));
+        let to_nothing = |side: Side| Descent::between(start[side], Double::from(0.0));
+        let cost = Both::of(|side| equation.cost_from(side, &origin[side], to_nothing(side)));
         let parity = parity(cost);
         let ahead = if parity || cost.x.is_infinite() || cost.y.is_infinite() {
             Double::from(0.0)
@@ -191,6 +195,7 @@ impl Piece {
             motion,
             per_target,
             besides,
+            origin,
             cost,
             parity,
             course: None,
@@ -207,15 +212,24 @@ impl Piece {
 
     /// The same for a descent whose height is known with all its digits.
     pub fn point_down(&self, side: Side, down: Descent) -> OrbitPoint {
+        self.point_at_cost(side, down, self.cost_of(side, down))
+    }
+
+    /// What it costs to bring `side` down so far from the beginning.
+    pub fn cost_of(&self, side: Side, down: Descent) -> Double {
+        self.equation.cost_from(side, &self.origin[side], down)
+    }
+
+    /// The place where `side` has come down so far at the cost `cost`.
+    pub(crate) fn point_at_cost(&self, side: Side, down: Descent, cost: Double) -> OrbitPoint {
         let enemy = side.enemy();
-        let cost = self.equation.cost_of(side, self.start[side].into(), down);
         let from = Double::from(self.start[enemy]);
         let (left, fallen) = if self.parity {
             let rest = self.equation.cost(side, down.to, Double::from(0.0));
             let left = self.equation.worth(enemy, rest, from);
             (left, from - left)
         } else {
-            let left = self.equation.left(enemy, from, cost);
+            let left = self.equation.left_from(enemy, &self.origin[enemy], cost);
             (left, self.equation.fallen(enemy, from, left, cost))
         };
         let of = |on: Side, own: Double, others: Double| f64::from(if on == side { own } else { others });
@@ -228,10 +242,8 @@ impl Piece {
     /// Whether the other side lasts until `side` is down to `strength`.
     pub fn lasts_until(&self, side: Side, strength: Double) -> bool {
         let enemy = side.enemy();
-        let cost = self.equation.cost(side, self.start[side].into(), strength);
-        let of_enemy = self
-            .equation
-            .cost(enemy, self.start[enemy].into(), Double::from(0.0));
+        let cost = self.cost_of(side, Descent::between(self.start[side], strength));
+        let of_enemy = self.cost[enemy];
         cost <= of_enemy || StateEquation::tie(Both { x: cost, y: of_enemy })
     }
 

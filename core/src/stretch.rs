@@ -505,7 +505,7 @@ fn piece_break(
         return None;
     }
     let equation = &piece.equation;
-    let cost = Both::of(|side| equation.cost_of(side, piece.start[side].into(), ways[side].descent));
+    let cost = Both::of(|side| piece.cost_of(side, ways[side].descent));
     if is_endless(cost.x) && is_endless(cost.y) {
         return None;
     }
@@ -516,7 +516,7 @@ fn piece_break(
     } else {
         (Breaks::X, Side::X)
     };
-    let mut point = piece.point_down(loser, ways[loser].descent);
+    let mut point = piece.point_at_cost(loser, ways[loser].descent, cost[loser]);
     if breaks == Breaks::Both {
         point.left.y = ways.y.descent.to.into();
         point.fallen.y = ways.y.descent.by.into();

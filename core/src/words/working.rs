@@ -266,10 +266,7 @@ impl<'a> Writer<'a> {
     fn cost_line(&mut self, side: Side, line: Double) -> Double {
         let letters = &LETTERS[side];
         let start = self.piece.start[side];
-        let cost = self
-            .piece
-            .equation
-            .cost_of(side, start.into(), descent(&self.engagement, side));
+        let cost = self.piece.cost_of(side, descent(&self.engagement, side));
         let name = if side == Side::X { "cost.x" } else { "cost.y" };
         let words = format!(
             "To bring {} down to its line it takes",
@@ -434,12 +431,7 @@ impl<'a> Writer<'a> {
     }
 
     fn last_line(&mut self) {
-        let zero = Double::from(0.0);
-        let cost = Both::of(|side| {
-            self.piece
-                .equation
-                .cost(side, self.piece.start[side].into(), zero)
-        });
+        let cost = self.piece.cost;
         let of = |side: Side| {
             if is_endless(cost[side]) {
                 "more than any cost".to_owned()

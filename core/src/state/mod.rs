@@ -11,62 +11,19 @@
 //! All of it is worked out in double-double arithmetic from the numbers as they were read, taken as exact: near parity
 //! the terms agree in all digits of a double.
 
+mod left;
+mod term;
+
+pub(crate) use left::LEAST;
+pub use term::{Descent, MOST_TERMS, Origin, Term, is_endless};
+
 use crate::double::Double;
-use crate::laws::{Power, growth};
+use crate::laws::Power;
 use crate::sides::{Both, Side};
 use crate::terms::Fire;
 
 /// Two sums are the same where they differ by at most this part of the larger: the rounding of the inputs themselves.
 pub const TIE: f64 = 4.0 * f64::EPSILON / 2.0;
-
-/// The least strength that a root-find goes down to: double-double arithmetic divides by no less.
-pub(crate) const LEAST: f64 = 1e-290;
-
-/// Steps at most in plain doubles; where they do not do, halving takes over.
-const MOST_STEPS: usize = 50;
-
-/// A term c·n^(k−1) of what a side costs, by the order k of its integral c·nᵏ/k.
-#[derive(Clone, Copy, Debug, Default, PartialEq)]
-pub struct Term {
-    /// c, with the rate in it; 0 where there is no term.
-    pub weight: Double,
-    /// k, exact in double-double: 0 is the logarithm.
-    pub order: Double,
-}
-
-impl Term {
-    /// The value at `strength`.
-    fn at(&self, strength: f64) -> f64 {
-        Power {
-            coefficient: self.weight.into(),
-            exponent: f64::from(self.order - 1.0),
-        }
-        .at(strength)
-    }
-}
-
-/// The way of a side down to a strength: where to, and by how much, each with all its digits. Next to the start the
-/// difference of the strengths would have lost those of the second, next to 0 those of the first.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct Descent {
-    /// The strength that is left.
-    pub to: Double,
-    /// What has fallen.
-    pub by: Double,
-}
-
-impl Descent {
-    /// From one strength to another.
-    pub fn between(from: f64, to: Double) -> Descent {
-        Descent {
-            to,
-            by: Double::from(from) - to,
-        }
-    }
-}
-
-/// The most terms of a side: two powers in 1/T, each for the fire and for what is lost besides.
-pub const MOST_TERMS: usize = 4;
 
 /// The state equation of a pairing.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -144,54 +101,45 @@ impl StateEquation {
         &self.terms[side][..count]
     }
 
+    /// `strength` as a strength from which `side` is brought down.
+    pub fn origin(&self, side: Side, strength: Double) -> Origin {
+        Origin::new(strength, self.active(side))
+    }
+
     /// What it takes to bring `side` from one strength to another: rate × ∫ S/T, 0 or more, infinite where the enemy
     /// would pay without bound.
     ///
     /// A side whose own fire has no effect takes nothing: its enemy loses none in bringing it down.
     pub fn cost(&self, side: Side, from: Double, to: Double) -> Double {
-        self.cost_of(side, from, Descent { to, by: from - to })
+        self.cost_from(side, &self.origin(side, from), Descent { to, by: from - to })
     }
 
     /// The same for a descent whose height is known with all its digits.
-    pub fn cost_of(&self, side: Side, from: Double, down: Descent) -> Double {
-        let mut sum = Double::from(0.0);
-        for term in self.active(side) {
-            let area = integral(term.order, from, down);
-            if is_endless(area) {
-                return area;
-            }
-            sum += area * term.weight;
-        }
-        sum
+    pub fn cost_from(&self, side: Side, origin: &Origin, down: Descent) -> Double {
+        term::cost(self.active(side), origin, down)
     }
 
     /// What is left of `side`, brought down from `from` at the cost `cost`; 0 where that is more than all of it.
     pub fn left(&self, side: Side, from: Double, cost: Double) -> Double {
+        self.left_from(side, &self.origin(side, from), cost)
+    }
+
+    /// The same from an origin.
+    pub fn left_from(&self, side: Side, origin: &Origin, cost: Double) -> Double {
         let zero = Double::from(0.0);
         if cost == zero {
-            return from;
+            return origin.strength;
         }
         if is_endless(cost) {
             return zero;
         }
-        let left = match self.active(side) {
-            [] => from,
-            [one] => left_of_one(one, from, cost),
-            [first, second] if first.order == 2.0 && second.order == 1.0 => {
-                left_of_quadratic(first, second, from, cost)
-            }
-            terms => left_of_many(terms, from, cost),
-        };
+        let left = left::left(self.active(side), origin, cost);
         if left > 0.0 { left } else { zero }
     }
 
     /// Whether what is left of `side` at a cost has no formula, and is found by a search for the root.
     pub fn needs_root(&self, side: Side) -> bool {
-        match self.active(side) {
-            [] | [_] => false,
-            [first, second] => !(first.order == 2.0 && second.order == 1.0),
-            _ => true,
-        }
+        left::needs_root(self.active(side))
     }
 
     /// What has fallen of `side`, brought down from `from` to `left` at the cost `cost`: also where that is so little of
@@ -276,166 +224,6 @@ impl StateEquation {
             .map(|term| f64::from(term.order))
             .fold(f64::INFINITY, f64::min)
     }
-}
-
-/// Whether a cost is without bound.
-pub fn is_endless(cost: Double) -> bool {
-    cost.is_infinite()
-}
-
-/// ∫ n^(order − 1) along a descent, in full.
-///
-/// Written with what has fallen, which keeps the digits that a difference of powers loses: for orders other than 1 and 2
-/// as the larger power times (1 − e^(−|k|·ln(from/to)))/|k|, which also holds where k is next to 0.
-fn integral(order: Double, from: Double, down: Descent) -> Double {
-    let Descent { to, by } = down;
-    if order == 1.0 || by == 0.0 {
-        return by;
-    }
-    if order == 2.0 {
-        return by * (from + to) * 0.5;
-    }
-    if to > 0.0 {
-        let part = by / from;
-        let span = if part < 0.25 {
-            -(-part).ln_1p()
-        } else {
-            (from / to).ln()
-        };
-        if order == 0.0 {
-            span
-        } else if order > 0.0 {
-            from.pow(order) * -(-(span * order)).exp_m1() / order
-        } else {
-            to.pow(order) * (span * order).exp_m1() / order
-        }
-    } else if order > 0.0 {
-        from.pow(order) / order
-    } else {
-        Double::from(f64::INFINITY)
-    }
-}
-
-/// What is left where S/T is a single power and ∫ S/T is `area`.
-fn left_of_one(term: &Term, from: Double, area: Double) -> Double {
-    let area = area / term.weight;
-    if term.order == 1.0 {
-        return from - area;
-    }
-    if term.order == 2.0 {
-        let square = from * from - area * 2.0;
-        return if square > 0.0 {
-            square.sqrt()
-        } else {
-            Double::from(0.0)
-        };
-    }
-    if term.order == 0.0 {
-        return from * (-area).exp();
-    }
-    // leftᵏ = fromᵏ·(1 − part), so left = from·(1 − part)^(1/k).
-    let part = area * term.order / from.pow(term.order);
-    if part >= 1.0 {
-        return Double::from(0.0);
-    }
-    let span = if part.abs() < 0.25 {
-        (-part).ln_1p()
-    } else {
-        (-part + 1.0).ln()
-    };
-    from * (span / term.order).exp()
-}
-
-/// What is left where S/T is c·n + d: the positive root of c·n²/2 + d·n = rest, written so that nothing cancels.
-fn left_of_quadratic(first: &Term, second: &Term, from: Double, area: Double) -> Double {
-    let (c, d) = (first.weight, second.weight);
-    let rest = from * (from * c * 0.5 + d) - area;
-    if rest > 0.0 {
-        rest * 2.0 / ((rest * c * 2.0 + d * d).sqrt() + d)
-    } else {
-        rest
-    }
-}
-
-/// What is left where S/T is a sum of powers: one root-find.
-///
-/// The sum grows with λ; Newton's steps are kept within a bracket, then one from a residual in double-double carries the
-/// root to all digits.
-fn left_of_many(terms: &[Term], from: Double, area: Double) -> Double {
-    let down = |left: f64| Descent {
-        to: left.into(),
-        by: from - left,
-    };
-    let short = |left: f64| {
-        let spent = terms
-            .iter()
-            .map(|term| integral(term.order, from, down(left)) * term.weight);
-        spent.fold(-area, |sum, one| sum + one)
-    };
-    let slope = |left: f64| -> f64 { terms.iter().map(|term| term.at(left)).sum() };
-    let start = f64::from(from);
-    let (mut low, mut high) = (0.0, libm::log(start / LEAST));
-    let mut span = span_of_many(terms, start, f64::from(area));
-    if !(0.0..20.0).contains(&span) {
-        if short(LEAST) <= 0.0 {
-            return Double::from(0.0);
-        }
-        span = span.clamp(0.0, high);
-    }
-    let mut left = start * libm::exp(-span);
-    for _ in 0..200 {
-        let off = short(left);
-        let step = f64::from(off) / (slope(left) * left);
-        if step.abs() <= 1e-14 * (1.0 + span) {
-            // One step more, in full, from so near the root doubles its digits.
-            return Double::sum(left, f64::from(off) / slope(left));
-        }
-        if step > 0.0 {
-            high = span
-        } else {
-            low = span
-        }
-        let next = span - step;
-        span = if next > low && next < high {
-            next
-        } else {
-            0.5 * (low + high)
-        };
-        left = start * libm::exp(-span);
-    }
-    left.into()
-}
-
-/// The same λ in plain doubles, which next to the end lose its last digits: where the search begins.
-fn span_of_many(terms: &[Term], start: f64, area: f64) -> f64 {
-    let scaled: Vec<(f64, f64)> = terms
-        .iter()
-        .map(|term| {
-            let order = f64::from(term.order);
-            (f64::from(term.weight) * libm::pow(start, order), order)
-        })
-        .collect();
-    // The sum is concave in λ, as its orders are 0 or more: Newton's steps from 0 never go past the root.
-    let mut span = 0.0;
-    for _ in 0..MOST_STEPS {
-        let spent: f64 = scaled
-            .iter()
-            .map(|(scale, order)| scale * growth(-order, span))
-            .sum();
-        let slope: f64 = scaled
-            .iter()
-            .map(|(scale, order)| scale * libm::exp(-order * span))
-            .sum();
-        let step = (area - spent) / slope;
-        if !step.is_finite() {
-            break;
-        }
-        span += step;
-        if step.abs() <= 1e-15 * span {
-            break;
-        }
-    }
-    span
 }
 
 #[cfg(test)]

@@ -1,0 +1,154 @@
+//! What is left of a side at a cost.
+
+use super::term::{Descent, Origin, Term, cost};
+use crate::double::Double;
+use crate::laws::growth;
+
+/// The least strength that a root-find goes down to: double-double arithmetic divides by no less.
+pub(crate) const LEAST: f64 = 1e-290;
+
+/// Steps at most in plain doubles; where they do not do, halving takes over.
+const MOST_STEPS: usize = 50;
+
+/// What is left where that has fallen from `origin` which costs `cost`; 0 or less where that is more than all of it.
+pub(super) fn left(terms: &[Term], origin: &Origin, cost: Double) -> Double {
+    match terms {
+        [] => origin.strength,
+        [one] => left_of_one(one, origin, cost),
+        [first, second] if is_quadratic(first, second) => {
+            left_of_quadratic(first, second, origin.strength, cost)
+        }
+        terms => left_of_many(terms, origin, cost),
+    }
+}
+
+/// Whether what is left has no formula, and is found by a search for the root.
+pub(super) fn needs_root(terms: &[Term]) -> bool {
+    match terms {
+        [] | [_] => false,
+        [first, second] => !is_quadratic(first, second),
+        _ => true,
+    }
+}
+
+fn is_quadratic(first: &Term, second: &Term) -> bool {
+    first.order == 2.0 && second.order == 1.0
+}
+
+/// What is left where S/T is a single power and ∫ S/T is `area`.
+fn left_of_one(term: &Term, origin: &Origin, area: Double) -> Double {
+    let (from, area) = (origin.strength, area / term.weight);
+    if term.order == 1.0 {
+        return from - area;
+    }
+    if term.order == 2.0 {
+        let square = from * from - area * 2.0;
+        return if square > 0.0 {
+            square.sqrt()
+        } else {
+            Double::from(0.0)
+        };
+    }
+    if term.order == 0.0 {
+        return from * (-area).exp();
+    }
+    // leftᵏ = fromᵏ·(1 − part), so left = from·(1 − part)^(1/k).
+    let part = area * term.order / origin.power();
+    if part >= 1.0 {
+        return Double::from(0.0);
+    }
+    let span = if part.abs() < 0.25 {
+        (-part).ln_1p()
+    } else {
+        (-part + 1.0).ln()
+    };
+    from * (span / term.order).exp()
+}
+
+/// What is left where S/T is c·n + d: the positive root of c·n²/2 + d·n = rest, written so that nothing cancels.
+fn left_of_quadratic(first: &Term, second: &Term, from: Double, area: Double) -> Double {
+    let (c, d) = (first.weight, second.weight);
+    let rest = from * (from * c * 0.5 + d) - area;
+    if rest > 0.0 {
+        rest * 2.0 / ((rest * c * 2.0 + d * d).sqrt() + d)
+    } else {
+        rest
+    }
+}
+
+/// What is left where S/T is a sum of powers: one root-find.
+///
+/// The sum grows with λ; Newton's steps are kept within a bracket, then one from a residual in double-double carries the
+/// root to all digits.
+fn left_of_many(terms: &[Term], origin: &Origin, area: Double) -> Double {
+    let from = origin.strength;
+    let down = |left: f64| Descent {
+        to: left.into(),
+        by: from - left,
+    };
+    let short = |left: f64| cost(terms, origin, down(left)) - area;
+    let slope = |left: f64| -> f64 { terms.iter().map(|term| term.at(left)).sum() };
+    let start = f64::from(from);
+    let (mut low, mut high) = (0.0, libm::log(start / LEAST));
+    let mut span = span_of_many(terms, start, f64::from(area));
+    if !(0.0..20.0).contains(&span) {
+        if short(LEAST) <= 0.0 {
+            return Double::from(0.0);
+        }
+        span = span.clamp(0.0, high);
+    }
+    let mut left = start * libm::exp(-span);
+    for _ in 0..200 {
+        let off = short(left);
+        let step = f64::from(off) / (slope(left) * left);
+        if step.abs() <= 1e-14 * (1.0 + span) {
+            // One step more, in full, from so near the root doubles its digits.
+            return Double::sum(left, f64::from(off) / slope(left));
+        }
+        if step > 0.0 {
+            high = span
+        } else {
+            low = span
+        }
+        let next = span - step;
+        span = if next > low && next < high {
+            next
+        } else {
+            0.5 * (low + high)
+        };
+        left = start * libm::exp(-span);
+    }
+    left.into()
+}
+
+/// The same λ in plain doubles, which next to the end lose its last digits: where the search begins.
+fn span_of_many(terms: &[Term], start: f64, area: f64) -> f64 {
+    let scaled: Vec<(f64, f64)> = terms
+        .iter()
+        .map(|term| {
+            let order = f64::from(term.order);
+            (f64::from(term.weight) * libm::pow(start, order), order)
+        })
+        .collect();
+    // The sum is concave in λ, as its orders are 0 or more: Newton's steps from 0 never go past the root.
+    let mut span = 0.0;
+    for _ in 0..MOST_STEPS {
+        let spent: f64 = scaled
+            .iter()
+            .map(|(scale, order)| scale * growth(-order, span))
+            .sum();
+        let slope: f64 = scaled
+            .iter()
+            .map(|(scale, order)| scale * libm::exp(-order * span))
+            .sum();
+        let step = (area - spent) / slope;
+        if !step.is_finite() {
+            break;
+        }
+        span += step;
+        if step.abs() <= 1e-15 * span {
+            break;
+        }
+    }
+    span
+}
