@@ -5,25 +5,39 @@
 //! step from field to field. In a frame nothing is pushed. Browsers throttle these calls, with an error or without a
 //! word, and some refuse them in a sandbox: so every write is looked at, and where one failed the page goes on with its
 //! own list of entries.
+//!
+//! Beside each entry stands the text as it was received, so that what was changed since is known after a reload too.
 
 use crate::dom::Dom;
 use crate::pace::Pace;
-use wasm_bindgen::JsValue;
+use js_sys::Array;
+use std::rc::Rc;
+use wasm_bindgen::{JsCast, JsValue};
 use web_sys::History;
 
 /// The entries of the history that this page knows, and what is still to be written.
 pub(crate) struct Address {
     dom: Dom,
     framed: bool,
-    /// The texts of the entries; `None` for those from before a reload.
-    entries: Vec<Option<String>>,
+    entries: Vec<Entry>,
     at: usize,
+    /// Whether the browser came to this page with a text of its own, instead of reloading it.
+    fresh: bool,
     /// Whether the current entry is still being edited.
     open: bool,
     /// Whether the browser's own history holds these entries.
     kept_by_browser: bool,
     unwritten: Option<String>,
     pace: Pace,
+}
+
+/// An entry of the history.
+#[derive(Clone, Default)]
+struct Entry {
+    /// Its text; `None` where it is from before a reload.
+    text: Option<String>,
+    /// What was received, where its text goes back to that.
+    received: Option<Rc<str>>,
 }
 
 /// What a step through the history needs.
@@ -39,16 +53,17 @@ pub(crate) enum Step {
 impl Address {
     /// Takes up the history where a reload left it.
     pub(crate) fn new(dom: &Dom) -> Address {
-        let at = history(dom).and_then(|history| place(&history)).unwrap_or(0);
-        if let Some(history) = history(dom) {
-            // So that the page knows this entry when it comes back to it. A refusal is met again at the first write.
-            let _ = history.replace_state(&JsValue::from(at as f64), "");
-        }
+        let known = history(dom).and_then(|history| state(&history));
+        let fresh = known.is_none();
+        let (at, received) = known.unwrap_or_default();
+        let mut entries = vec![Entry::default(); at + 1];
+        entries[at].received = received;
         Address {
             dom: dom.clone(),
             framed: dom.is_framed(),
-            entries: vec![None; at + 1],
+            entries,
             at,
+            fresh,
             open: false,
             kept_by_browser: true,
             unwritten: None,
@@ -57,10 +72,30 @@ impl Address {
     }
 
     /// The text that the page begins with, and whether the address may be behind it: where a program before this one
-    /// trapped, the last keystrokes are still to be written.
+    /// trapped, the last keystrokes are still to be written. An empty one is that of the demo, which nobody sent.
     pub(crate) fn begin(&mut self, text: String, behind: bool) {
         self.unwritten = Some(text.clone()).filter(|_| behind);
-        self.entries[self.at] = Some(text);
+        if self.fresh && !behind && !text.is_empty() {
+            self.entries[self.at].received = Some(text.as_str().into());
+        }
+        self.entries[self.at].text = Some(text);
+        if let Some(history) = history(&self.dom) {
+            // So that the page knows this entry when it comes back to it. A refusal is met again at the first write.
+            let _ = history.replace_state(&self.state(), "");
+        }
+    }
+
+    /// What was received, where the text that is shown goes back to that.
+    pub(crate) fn received_text(&self) -> Option<&str> {
+        self.entries[self.at].received.as_deref()
+    }
+
+    /// From now on the current entry goes back to another text that was received, or to none.
+    pub(crate) fn goes_back_to(&mut self, received: Option<&str>) {
+        let entry = &mut self.entries[self.at];
+        entry.received = received.map(Rc::from);
+        // Written anew, with the state beside it.
+        self.unwritten = entry.text.clone();
     }
 
     /// A text that the user has just changed.
@@ -68,14 +103,17 @@ impl Address {
         if !self.open {
             self.open = true;
             self.entries.truncate(self.at + 1);
-            self.entries.push(Some(text.clone()));
+            self.entries.push(Entry {
+                text: Some(text.clone()),
+                received: self.entries[self.at].received.clone(),
+            });
             self.at += 1;
             if !self.framed && self.push(&text) {
                 self.unwritten = None;
                 return;
             }
         }
-        self.entries[self.at] = Some(text.clone());
+        self.entries[self.at].text = Some(text.clone());
         self.unwritten = Some(text);
         if self.pace.wait(self.now()) <= 0.0 {
             self.write();
@@ -124,24 +162,25 @@ impl Address {
     pub(crate) fn arrived(&mut self, text: String) {
         self.unwritten = None;
         self.open = false;
-        let known = history(&self.dom).and_then(|history| place(&history));
-        match known {
-            Some(at) if at < self.entries.len() => self.at = at,
-            Some(at) => {
-                self.entries.resize(at + 1, None);
+        match history(&self.dom).and_then(|history| state(&history)) {
+            Some((at, received)) => {
+                let length = self.entries.len().max(at + 1);
+                self.entries.resize(length, Entry::default());
                 self.at = at;
+                self.entries[at] = Entry {
+                    text: Some(text),
+                    received,
+                };
             }
             // A fragment written by hand makes an entry of its own.
             None => {
                 self.entries.truncate(self.at + 1);
-                self.entries.push(None);
+                self.entries.push(Entry::default());
                 self.at += 1;
-                if let Some(history) = history(&self.dom) {
-                    let _ = history.replace_state(&JsValue::from(self.at as f64), "");
-                }
+                self.fresh = true;
+                self.begin(text, false);
             }
         }
-        self.entries[self.at] = Some(text);
     }
 
     /// Whether Undo and Redo have somewhere to go.
@@ -169,7 +208,7 @@ impl Address {
             return Step::Browser;
         }
         self.at = if forward { self.at + 1 } else { self.at - 1 };
-        match self.entries[self.at].clone() {
+        match self.entries[self.at].text.clone() {
             Some(text) => {
                 self.unwritten = Some(text.clone());
                 self.write();
@@ -193,7 +232,7 @@ impl Address {
         let address = format!("#{text}");
         let pushed = history(&self.dom).is_some_and(|history| {
             history
-                .push_state_with_url(&JsValue::from(self.at as f64), "", Some(&address))
+                .push_state_with_url(&self.state(), "", Some(&address))
                 .is_ok()
         }) && self.stands(&address);
         self.kept_by_browser &= pushed;
@@ -205,7 +244,7 @@ impl Address {
     fn replace(&mut self, address: &str) -> bool {
         let held = history(&self.dom).is_some_and(|history| {
             history
-                .replace_state_with_url(&JsValue::from(self.at as f64), "", Some(address))
+                .replace_state_with_url(&self.state(), "", Some(address))
                 .is_ok()
         }) && self.stands(address);
         self.pace.tried(self.now(), held);
@@ -220,6 +259,12 @@ impl Address {
             .is_none_or(|(_, text)| fragment.strip_prefix('#').unwrap_or_default() == text)
     }
 
+    /// What stands beside the current entry in the browser's own history: its number, and what was received.
+    fn state(&self) -> JsValue {
+        let received = self.received_text().map_or(JsValue::NULL, JsValue::from_str);
+        Array::of2(&JsValue::from(self.at as f64), &received).into()
+    }
+
     fn now(&self) -> f64 {
         self.dom.window.performance().map_or(0.0, |clock| clock.now())
     }
@@ -229,9 +274,12 @@ fn history(dom: &Dom) -> Option<History> {
     dom.window.history().ok()
 }
 
-/// Our own number of the current entry.
-fn place(history: &History) -> Option<usize> {
-    let number = history.state().ok()?.as_f64()?;
+/// Our own number of the current entry, and what was received.
+fn state(history: &History) -> Option<(usize, Option<Rc<str>>)> {
+    let state: Array = history.state().ok()?.dyn_into().ok()?;
+    let number = state.get(0).as_f64()?;
+    let received = state.get(1).as_string().map(Rc::from);
     // A page that someone else wrote may keep a state of its own here.
-    ((0.0..10_000.0).contains(&number) && number.fract() == 0.0).then_some(number as usize)
+    let ours = (0.0..10_000.0).contains(&number) && number.fract() == 0.0;
+    ours.then_some((number as usize, received))
 }

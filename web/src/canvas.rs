@@ -56,6 +56,25 @@ pub(crate) fn prepare(dom: &Dom, id: &str) -> Option<Canvas> {
     Some(Canvas { backend, scale })
 }
 
+/// A canvas that is not on the page, `size` CSS pixels large, for a picture that is passed on.
+pub(crate) fn apart(dom: &Dom, size: (u32, u32), scale: f64) -> Option<(HtmlCanvasElement, Canvas)> {
+    let canvas: HtmlCanvasElement = dom.make("canvas", "")?.dyn_into().ok()?;
+    let pixels = |length: u32| (f64::from(length) * scale).round() as u32;
+    canvas.set_width(pixels(size.0));
+    canvas.set_height(pixels(size.1));
+    let context: CanvasRenderingContext2d = canvas.get_context("2d").ok()??.dyn_into().ok()?;
+    let inside = CanvasBackend::with_canvas_object(canvas.clone())?;
+    let backend = Measured::new(inside, ByContext(context));
+    Some((canvas, Canvas { backend, scale }))
+}
+
+/// Measures text without a canvas on the page.
+pub(crate) fn measure(dom: &Dom) -> Option<ByContext> {
+    let canvas: HtmlCanvasElement = dom.make("canvas", "")?.dyn_into().ok()?;
+    let context: CanvasRenderingContext2d = canvas.get_context("2d").ok()??.dyn_into().ok()?;
+    Some(ByContext(context))
+}
+
 /// The colours and the face that the style sheet has now.
 pub(crate) fn ink(dom: &Dom) -> Ink {
     let mut ink = Ink::light();

@@ -11,8 +11,8 @@ const BY_HAND: &str = "The clipboard is not to be had here: the text is selected
 /// A box with a text to copy, and where it is said what came of it.
 #[derive(Clone, Copy)]
 pub(crate) struct Source {
-    area: &'static str,
-    said: &'static str,
+    pub(crate) area: &'static str,
+    pub(crate) said: &'static str,
 }
 
 /// The text of the engagement.

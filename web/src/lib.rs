@@ -19,6 +19,7 @@ mod live;
 mod outcome;
 mod pace;
 mod page;
+mod passing;
 mod phases;
 mod plates;
 mod problems;

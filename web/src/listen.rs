@@ -4,6 +4,7 @@ use crate::dom::{Dom, control_value};
 use crate::hand::Writes;
 use crate::lists::{Act, Cell};
 use crate::page::Page;
+use crate::passing;
 use crate::phases::Ask;
 use crate::reading::Pointer;
 use aftercount_core::sides::Side;
@@ -16,7 +17,8 @@ use web_sys::{
     PointerEvent, ResizeObserver,
 };
 
-type Shared = Rc<RefCell<Page>>;
+/// The page as its listeners and what they start hold it.
+pub(crate) type Shared = Rc<RefCell<Page>>;
 
 /// What is left to do once the page is no longer borrowed: these calls send events of their own.
 pub(crate) enum After {
@@ -26,6 +28,8 @@ pub(crate) enum After {
     GoTo(String),
     /// Selects a text and offers it to the clipboard.
     Copy(crate::copy::Source),
+    /// Something that needs the page itself.
+    Do(Box<dyn FnOnce(&Shared)>),
 }
 
 /// Sets up every listener.
@@ -43,6 +47,9 @@ pub(crate) fn all(dom: &Dom, page: &Shared, signal: &AbortSignal) -> Result<(), 
     on(document, "click", click)?;
     on(document, "keydown", key)?;
     on(document, "submit", submit)?;
+    on(document, "dragover", passing::dragged)?;
+    on(document, "drop", passing::dropped)?;
+    on(window, "storage", stored)?;
     on(document, "pointerdown", pointer)?;
     on(document, "pointermove", pointer)?;
     on(document, "toggle", unfolded)?;
@@ -97,7 +104,8 @@ fn listen(
     )
 }
 
-fn do_after(page: &Shared, after: After) {
+/// Does what is left to do once nobody has borrowed the page.
+pub(crate) fn do_after(page: &Shared, after: After) {
     let Ok(borrowed) = page.try_borrow() else { return };
     let dom = borrowed.dom().clone();
     drop(borrowed);
@@ -105,6 +113,7 @@ fn do_after(page: &Shared, after: After) {
         After::Nothing => {}
         After::GoTo(id) => dom.go_to(&id),
         After::Copy(source) => crate::copy::copy(&dom, &source),
+        After::Do(act) => act(page),
     }
 }
 
@@ -133,6 +142,11 @@ fn input(page: &mut Page, event: &Event) -> After {
 }
 
 fn left(page: &mut Page, event: &Event) -> After {
+    if event.type_() == "change"
+        && let Some(element) = element(event).filter(|element| element.has_attribute("data-choice"))
+    {
+        return passing::chosen(page, &element);
+    }
     if element(event).is_some_and(|element| is_field(&element)) {
         page.field_left();
     }
@@ -210,8 +224,11 @@ fn click(page: &mut Page, event: &Event) -> After {
     if let Some(ask) = Ask::of(&button) {
         return page.ask_of_phases(&ask);
     }
+    if let (false, Some(after)) = (is_off(&button), passing::click(page, &button)) {
+        return after;
+    }
     // Such a button keeps the focus when its own press leaves it nothing more to do.
-    if button.get_attribute("aria-disabled").as_deref() == Some("true") {
+    if is_off(&button) {
         return After::Nothing;
     }
     if let Some(writes) = Writes::of(&button) {
@@ -275,6 +292,16 @@ fn arrow(key: &str) -> Option<Act> {
         "ArrowDown" => Some(Act::Down),
         _ => None,
     }
+}
+
+fn is_off(button: &Element) -> bool {
+    button.get_attribute("aria-disabled").as_deref() == Some("true")
+}
+
+/// Another page of this browser has kept or forgotten something.
+fn stored(page: &mut Page, _event: &Event) -> After {
+    page.passing().show_kept();
+    After::Nothing
 }
 
 fn submit(_page: &mut Page, event: &Event) -> After {

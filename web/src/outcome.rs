@@ -214,6 +214,7 @@ pub(crate) fn show_names(dom: &Dom, pairs: &Pairs) {
         }
     }
     dom.set_text("until.unit", unit.symbol());
+    dom.set_text("table-unit", unit.symbol());
     dom.set_text(
         "range.closing.unit",
         &format!("length per\u{a0}{}", unit.symbol()),

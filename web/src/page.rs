@@ -1,5 +1,7 @@
 //! The page's state: the pairs, the last good figures, and what waits.
 
+mod received;
+
 use crate::address::{Address, Step};
 use crate::dom::Dom;
 use crate::form;
@@ -10,6 +12,7 @@ use crate::listen::After;
 use crate::lists::{self, Act, Cell};
 use crate::live::{Live, QUIET};
 use crate::outcome::{self, Good};
+use crate::passing::Passing;
 use crate::phases::{Ask, Phases};
 use crate::plates::Plates;
 use crate::problems::{PATIENCE, Problems};
@@ -24,6 +27,7 @@ use crate::working;
 use aftercount_core::demo::DEMO;
 use aftercount_core::mark::text_mark;
 use aftercount_core::pairs::Pairs;
+use aftercount_core::passing::words::room;
 use aftercount_core::problem::{Problem, seen};
 use aftercount_core::sides::Side;
 use aftercount_core::statement::Statement;
@@ -56,6 +60,7 @@ pub(crate) struct Page {
     address: Address,
     live: Live,
     plates: Plates,
+    passing: Passing,
     show_problems: Timer,
     write: Timer,
     show_share: Timer,
@@ -101,6 +106,7 @@ impl Page {
                 address: Address::new(dom),
                 live: Live::new(dom),
                 plates: Plates::new(dom),
+                passing: Passing::new(dom),
                 show_problems: Timer::new(&dom.window, page, Page::show_waiting),
                 write: Timer::new(&dom.window, page, Page::write_address),
                 show_share: Timer::new(&dom.window, page, Page::show_share),
@@ -266,6 +272,7 @@ impl Page {
             form::fill(&self.dom, &self.pairs);
             self.kept_rates.start(&self.pairs);
             self.open_what_holds_values();
+            self.goes_back_to(None);
         }
         After::Nothing
     }
@@ -329,6 +336,7 @@ impl Page {
         form::fill(&self.dom, &self.pairs);
         self.kept_rates.start(&self.pairs);
         self.changed(Cause::Whole);
+        self.goes_back_to(None);
         self.close_entry();
     }
 
@@ -453,6 +461,7 @@ impl Page {
         let _watch = Stopwatch::start(&self.dom, WORK);
         self.show_steps();
         self.show_text();
+        self.show_changes();
         lists::show(&self.dom, &self.pairs);
         self.phases.show(&self.pairs);
         self.hand.again(&self.pairs);
@@ -523,6 +532,9 @@ impl Page {
         self.dom.set_text("copied", "");
         self.dom.set_text("working-copied", "");
         self.dom.set_text("text-mark", &text_mark(&self.pairs));
+        let note = self.pairs.get("note").unwrap_or_default();
+        self.dom
+            .set_text("note.room", &room("note", note).unwrap_or_default());
         let trimmed = |key| self.pairs.get(key).unwrap_or_default().trim();
         let title = seen(trimmed("title"));
         self.dom.set_text("shown-title", &title);

@@ -3,10 +3,9 @@
 use crate::mark::text_mark;
 use crate::pairs::Pairs;
 use crate::problem::seen;
-use serde::{Deserialize, Serialize};
 
 /// An engagement that is kept.
-#[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
+#[derive(Clone, Debug, PartialEq, Eq)]
 pub struct Kept {
     /// When it was kept, as it is shown.
     pub when: String,
@@ -28,15 +27,26 @@ impl Kept {
     }
 }
 
-/// Reads the list. Other pages may write where it lies, so that whatever is no such list is none.
+/// Reads the list, a line each. Other pages may write where it lies: whatever is no such line is left out.
 pub fn read(stored: &str) -> Vec<Kept> {
-    serde_json::from_str(stored).unwrap_or_default()
+    let line = |line: &str| {
+        let (when, text) = line.split_once('\t')?;
+        text.contains('=').then(|| Kept {
+            when: when.into(),
+            text: text.into(),
+        })
+    };
+    stored.lines().filter_map(line).collect()
 }
 
 /// The list as it is stored.
 pub fn written(kept: &[Kept]) -> String {
-    // A list of texts can always be written.
-    serde_json::to_string(kept).unwrap_or_default()
+    let line = |kept: &Kept| {
+        // A text that could not be decoded is kept as it stood, and may hold such signs.
+        let text = kept.text.replace('\n', "%0A").replace('\r', "%0D");
+        format!("{}\t{text}\n", kept.when)
+    };
+    kept.iter().map(line).collect()
 }
 
 #[cfg(test)]
@@ -45,19 +55,20 @@ mod tests {
 
     #[test]
     fn the_list_reads_back_and_nonsense_is_none() {
-        let kept = vec![Kept {
+        let entry = |text: &str| Kept {
             when: "2026-12-01 14:05".into(),
-            text: "title=Turn \"3\"&x.start=6".into(),
-        }];
+            text: text.into(),
+        };
+        let kept = vec![entry("title=Turn%203&x.start=6&v=1"), entry("x.start=6&bare&v=1")];
         assert_eq!(read(&written(&kept)), kept);
+        let broken = entry("title=%ZZ\r\nb&v=1");
+        assert_eq!(read(&written(&[broken])), [entry("title=%ZZ%0D%0Ab&v=1")]);
+        let words = kept[0].words();
         assert!(
-            kept[0]
-                .words()
-                .starts_with("2026-12-01 14:05: Turn \"3\", text mark "),
-            "{}",
-            kept[0].words()
+            words.starts_with("2026-12-01 14:05: Turn 3, text mark "),
+            "{words}"
         );
-        for nonsense in ["", "null", "{}", "[1]", "[{\"when\":1}]", "<b>"] {
+        for nonsense in ["", "null", "{\"when\":1}", "<b>\t</b>\n\n"] {
             assert_eq!(read(nonsense), [], "{nonsense}");
         }
     }

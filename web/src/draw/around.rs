@@ -1,8 +1,6 @@
 //! A picture that stands by itself, with words above and below it that it must not go without.
 
-use super::ink::Ink;
 use super::layout::Layout;
-use super::part::Part;
 use super::pen::{Pen, Set};
 use aftercount_core::picture::Picture;
 use plotters::prelude::{DrawingBackend, RGBColor};
@@ -47,19 +45,14 @@ impl Lines {
     }
 }
 
-/// Draws `picture` with the words around it over the whole of `backend`, which has `scale` pixels for each CSS pixel.
-///
-/// # Errors
-/// Those of the backend.
-pub fn draw_around<B: DrawingBackend>(
-    backend: &mut B,
-    scale: f64,
-    ink: &Ink,
+/// Draws `picture` with the words around it over the whole of the pen's sheet.
+pub(crate) fn draw<B: DrawingBackend>(
+    pen: &mut Pen<'_, B>,
     picture: &Picture,
     around: &Around,
 ) -> Result<Layout, DrawingErrorKind<B::ErrorType>> {
-    let mut pen = Pen::new(backend, scale, ink);
     let (width, height) = pen.size();
+    let ink = pen.ink;
     pen.paper((0.0, 0.0), (width, height))?;
     let line = |pen: &Pen<'_, B>, text: &str, size: f64, italic: bool, colour: RGBColor| {
         let set = Set {
@@ -73,29 +66,22 @@ pub fn draw_around<B: DrawingBackend>(
         Lines { lines, set }
     };
     let head = [
-        line(&pen, &around.marking, WORDS, false, ink.ink),
-        line(&pen, &around.title, TITLE, true, ink.ink),
+        line(pen, &around.marking, WORDS, false, ink.ink),
+        line(pen, &around.title, TITLE, true, ink.ink),
     ];
     let foot = [
-        line(&pen, &around.sentence, WORDS, false, ink.ink),
-        line(&pen, &around.caution, WORDS, true, ink.ink),
-        line(&pen, &around.mark, WORDS, false, ink.ink),
-        line(&pen, &around.marking, WORDS, false, ink.ink),
+        line(pen, &around.sentence, WORDS, false, ink.ink),
+        line(pen, &around.caution, WORDS, true, ink.ink),
+        line(pen, &around.mark, WORDS, false, ink.ink),
+        line(pen, &around.marking, WORDS, false, ink.ink),
     ];
-    let top = below(&mut pen, &head, EDGE)? + 4.0;
+    let top = below(pen, &head, EDGE)? + 4.0;
     let under: f64 = foot.iter().map(Lines::height).sum();
     // However long the words are, the picture keeps its place; then the last of them fall off the edge.
     let bottom = (height - EDGE - under).max(top + 200.0);
-    below(&mut pen, &foot, bottom)?;
-    let pixels = |value: f64| (value * scale).round();
-    let corner = (pixels(EDGE) as i32, pixels(top) as i32);
-    let size = (
-        pixels(width - 2.0 * EDGE) as u32,
-        pixels(bottom - top - 6.0) as u32,
-    );
-    let field = super::draw(&mut Part::new(backend, corner, size), scale, ink, picture)?;
-    backend.present()?;
-    Ok(field)
+    below(pen, &foot, bottom)?;
+    let size = (width - 2.0 * EDGE, bottom - top - 6.0);
+    super::draw_with(&mut pen.within((EDGE, top), size), picture)
 }
 
 /// Sets lines one below the other, and gives where the next would stand.

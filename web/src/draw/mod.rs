@@ -7,12 +7,11 @@ mod labels;
 mod layout;
 mod lines;
 mod measured;
-mod part;
 mod pen;
 mod reading;
 mod svg;
 
-pub use around::{Around, draw_around};
+pub use around::Around;
 pub use ink::{Ink, parse_colour};
 pub use layout::Layout;
 pub use measured::{Measure, Measured, UsualWidths};
@@ -38,11 +37,36 @@ pub fn draw<B: DrawingBackend>(
     picture: &Picture,
 ) -> Result<Layout, DrawingErrorKind<B::ErrorType>> {
     backend.ensure_prepared()?;
-    let mut pen = Pen::new(backend, scale, ink);
-    let field = axes::layout(&pen, picture);
-    axes::draw(&mut pen, &field, picture)?;
-    lines::draw(&mut pen, &field, picture)?;
-    Labels::of(&field, picture).draw(&mut pen, picture)?;
+    let field = draw_with(&mut Pen::new(backend, scale, ink), picture)?;
     backend.present()?;
+    Ok(field)
+}
+
+/// The same with the words around it that a picture must not go without where it is passed on.
+///
+/// # Errors
+/// Those of the backend.
+pub fn draw_around<B: DrawingBackend>(
+    backend: &mut B,
+    scale: f64,
+    ink: &Ink,
+    picture: &Picture,
+    around: &Around,
+) -> Result<Layout, DrawingErrorKind<B::ErrorType>> {
+    backend.ensure_prepared()?;
+    let field = around::draw(&mut Pen::new(backend, scale, ink), picture, around)?;
+    backend.present()?;
+    Ok(field)
+}
+
+/// Draws with a pen, over the whole of its sheet.
+fn draw_with<B: DrawingBackend>(
+    pen: &mut Pen<'_, B>,
+    picture: &Picture,
+) -> Result<Layout, DrawingErrorKind<B::ErrorType>> {
+    let field = axes::layout(pen, picture);
+    axes::draw(pen, &field, picture)?;
+    lines::draw(pen, &field, picture)?;
+    Labels::of(&field, picture).draw(pen, picture)?;
     Ok(field)
 }

@@ -48,25 +48,54 @@ impl Set {
     }
 }
 
-/// Draws in CSS pixels on a backend that has `scale` times as many.
+/// Draws in CSS pixels on a backend that has `scale` times as many, on all of it or on a sheet within it.
 pub(crate) struct Pen<'a, B: DrawingBackend> {
     backend: &'a mut B,
     scale: f64,
+    /// The top left of the sheet.
+    corner: Point,
+    /// Its width and height.
+    size: (f64, f64),
+    /// How many times as large letters must be asked for: some backends draw them smaller.
+    letters: f64,
     pub(crate) ink: &'a Ink,
 }
 
 impl<'a, B: DrawingBackend> Pen<'a, B> {
     pub(crate) fn new(backend: &'a mut B, scale: f64, ink: &'a Ink) -> Pen<'a, B> {
-        Pen { backend, scale, ink }
+        let (width, height) = backend.get_size();
+        Pen {
+            backend,
+            scale,
+            corner: (0.0, 0.0),
+            size: (f64::from(width) / scale, f64::from(height) / scale),
+            letters: 1.0,
+            ink,
+        }
     }
 
-    /// Width and height in CSS pixels.
+    /// The same with letters that are asked for so many times as large.
+    pub(crate) fn with_letters(self, letters: f64) -> Pen<'a, B> {
+        Pen { letters, ..self }
+    }
+
+    /// A pen for a sheet within this one's.
+    pub(crate) fn within(&mut self, corner: Point, size: (f64, f64)) -> Pen<'_, B> {
+        Pen {
+            backend: self.backend,
+            corner: (self.corner.0 + corner.0, self.corner.1 + corner.1),
+            size,
+            ..*self
+        }
+    }
+
+    /// Width and height of the sheet in CSS pixels.
     pub(crate) fn size(&self) -> (f64, f64) {
-        let (width, height) = self.backend.get_size();
-        (f64::from(width) / self.scale, f64::from(height) / self.scale)
+        self.size
     }
 
     fn coord(&self, (x, y): Point) -> BackendCoord {
+        let (x, y) = (x + self.corner.0, y + self.corner.1);
         ((x * self.scale).round() as i32, (y * self.scale).round() as i32)
     }
 
@@ -116,7 +145,8 @@ impl<'a, B: DrawingBackend> Pen<'a, B> {
     /// A label with its anchor at a point.
     pub(crate) fn label(&mut self, text: &str, at: Point, set: Set) -> Drawn<B> {
         let face = self.ink.face.clone();
-        let style = self.text_style(&face, set);
+        let size = set.size * self.letters;
+        let style = self.text_style(&face, Set { size, ..set });
         let at = self.coord(at);
         self.backend.draw_text(text, &style, at)
     }

@@ -1,9 +1,9 @@
 //! A picture as SVG, in the page's units and with letters that can be read and searched.
 
-use super::around::{Around, draw_around};
+use super::around::{self, Around};
 use super::ink::Ink;
 use super::measured::{Measure, Measured};
-use super::part::Part;
+use super::pen::Pen;
 use aftercount_core::passing::finding::escaped;
 use aftercount_core::picture::Picture;
 use plotters::prelude::{DrawingBackend, SVGBackend};
@@ -30,11 +30,11 @@ pub fn svg(
     let mut text = String::new();
     {
         let mut backend = Measured::new(SVGBackend::with_string(&mut text, pixels), measure);
-        let mut letters = Part::with_letters(&mut backend, LETTERS);
-        let scale = f64::from(SCALE);
+        backend.ensure_prepared().map_err(in_words)?;
+        let mut pen = Pen::new(&mut backend, f64::from(SCALE), ink).with_letters(LETTERS);
         match around {
-            Some(around) => draw_around(&mut letters, scale, ink, picture, around),
-            None => super::draw(&mut letters, scale, ink, picture),
+            Some(around) => around::draw(&mut pen, picture, around),
+            None => super::draw_with(&mut pen, picture),
         }
         .map_err(in_words)?;
         backend.present().map_err(in_words)?;
