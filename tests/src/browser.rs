@@ -6,6 +6,7 @@
 
 mod axe;
 mod command;
+mod downloads;
 mod driver;
 mod files;
 mod harm;

@@ -23,7 +23,7 @@ fn line(dom: &Dom, change: &Change) -> Option<Element> {
     let line = dom.make("li", "")?;
     let key = seen(&change.key);
     append(&line, &dom.make("code", &key)?);
-    append(&line, &dom.make("span", &format!(" {} ", change.words()))?);
+    append(&line, &dom.make("span", &format!(" {} · ", change.words()))?);
     let button = dom.make("button", "back to as received")?;
     set(&button, "type", "button");
     set(&button, "data-back", &change.key);

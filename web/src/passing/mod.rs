@@ -16,7 +16,8 @@ use aftercount_core::passing::finding::Finding;
 use aftercount_core::passing::{json, saved};
 use downloads::Downloads;
 use keeping::Keeping;
-use web_sys::{Element, HtmlDialogElement};
+use wasm_bindgen::JsCast;
+use web_sys::{Element, HtmlDialogElement, HtmlTextAreaElement};
 
 /// What the page remembers of it.
 pub(crate) struct Passing {
@@ -103,14 +104,21 @@ fn place(button: &Element, name: &str) -> Option<usize> {
     button.get_attribute(name)?.parse().ok()
 }
 
+/// Shows a dialog with its box in the focus, and what stands there chosen.
 fn show_dialog(id: &'static str) -> After {
     After::Do(Box::new(move |page: &Shared| {
         let dom = page.borrow().dom().clone();
-        if let Some(dialog) = dom.typed::<HtmlDialogElement>(id)
-            && !dialog.open()
+        let Some(dialog) = dom.typed::<HtmlDialogElement>(id).filter(|dialog| !dialog.open()) else {
+            return;
+        };
+        // It fails where it is open, or out of the document.
+        let _ = dialog.show_modal();
+        if let Ok(Some(area)) = dialog.query_selector("textarea")
+            && let Some(area) = area.dyn_ref::<HtmlTextAreaElement>()
         {
-            // It fails where it is open, or out of the document.
-            let _ = dialog.show_modal();
+            // What cannot take the focus is still chosen.
+            let _ = area.focus();
+            area.select();
         }
     }))
 }
@@ -121,7 +129,6 @@ fn close_dialog(button: &Element) -> After {
 }
 
 fn close(dialog: Option<&Element>) {
-    use wasm_bindgen::JsCast;
     if let Some(dialog) = dialog.and_then(|dialog| dialog.dyn_ref::<HtmlDialogElement>()) {
         dialog.close();
     }
