@@ -43,7 +43,7 @@ fn a_saved_file_opens_again() {
     let name = format!("aftercount-{}.txt", text_mark(&Pairs::parse(LINK)));
     assert_eq!(
         browser.downloaded_names(),
-        [name.clone()],
+        std::slice::from_ref(&name),
         "the name tells nothing but the text mark"
     );
     browser.wait_text("#file-said", &name);
