@@ -137,6 +137,8 @@ fn input(page: &mut Page, event: &Event) -> After {
         page.share_typed(side, &text);
     } else if let Some((key, text)) = crate::form::changed_field(&target) {
         page.typed(&key, &text);
+    } else {
+        passing::asked_anew(page, &target);
     }
     After::Nothing
 }
@@ -145,7 +147,7 @@ fn left(page: &mut Page, event: &Event) -> After {
     if event.type_() == "change"
         && let Some(element) = element(event).filter(|element| element.has_attribute("data-choice"))
     {
-        return passing::chosen(page, &element);
+        return passing::chosen(&element);
     }
     if element(event).is_some_and(|element| is_field(&element)) {
         page.field_left();

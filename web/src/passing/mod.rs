@@ -86,15 +86,18 @@ pub(crate) fn click(page: &mut Page, button: &Element) -> Option<After> {
     })
 }
 
-/// A file was chosen, or a choice made that is no key of the text.
-pub(crate) fn chosen(page: &mut Page, element: &Element) -> After {
+/// A file was chosen.
+pub(crate) fn chosen(element: &Element) -> After {
     match element.id().as_str() {
         opening::FILE => opening::take_up_chosen(element),
-        id if id.starts_with("table-") => {
-            sheet_table::clear_problem(page.dom());
-            After::Nothing
-        }
         _ => After::Nothing,
+    }
+}
+
+/// Something else is asked for. Not when its field is left, which a click does: the page would move under it.
+pub(crate) fn asked_anew(page: &mut Page, element: &Element) {
+    if element.id().starts_with("table-") {
+        sheet_table::clear_problem(page.dom());
     }
 }
 
