@@ -9,6 +9,9 @@ use std::fmt::Error;
 /// The most bytes that the answer to a short link usually takes.
 const USUAL_LENGTH: usize = 1024;
 
+/// Whole numbers below this are written without an exponent.
+const MOST_WHOLE: u32 = 1_000_000_000;
+
 /// `value` as one line of JSON, numbers in the shortest digits that read back the same.
 pub(crate) fn to_json(value: &impl Serialize) -> String {
     let mut json = String::with_capacity(USUAL_LENGTH);
@@ -120,8 +123,11 @@ impl<'a> Serializer for Writer<'a> {
     }
 
     fn serialize_f64(self, value: f64) -> Result<(), Error> {
-        if value == 0.0 && value.is_sign_positive() {
-            self.json.push_str("0.0");
+        // Nearly half of all are whole, and written faster so.
+        let whole = value as u32;
+        if f64::from(whole) == value && whole < MOST_WHOLE && value.is_sign_positive() {
+            self.json.push_str(itoa::Buffer::new().format(whole));
+            self.json.push_str(".0");
         } else if value.is_finite() {
             self.json.push_str(zmij::Buffer::new().format_finite(value));
         } else {
@@ -228,7 +234,16 @@ mod tests {
             1_u8,
             -2_i64,
             'x',
-            [f64::NAN, -0.0, 1e21, 5e-324],
+            [
+                f64::NAN,
+                -0.0,
+                -3.0,
+                1e21,
+                5e-324,
+                999_999_999.0,
+                1e9,
+                4_294_967_296.0,
+            ],
             Some([true]),
             (),
         );

@@ -211,6 +211,11 @@ impl Pairs {
         (pair.key(&self.text), pair.text(&self.text))
     }
 
+    /// The decoded text at a place of [`Pairs::iter`].
+    pub(crate) fn text_at(&self, place: usize) -> &str {
+        self.pairs[place].text(&self.text)
+    }
+
     /// Whether no pair stands.
     pub fn is_empty(&self) -> bool {
         self.pairs.is_empty() && !self.untouched
@@ -271,6 +276,9 @@ impl Pairs {
                 },
             ))
         };
+        if self.pairs.iter().all(|pair| pair.raw.is_none()) {
+            return Vec::new();
+        }
         self.pairs.iter().enumerate().filter_map(undecoded).collect()
     }
 }

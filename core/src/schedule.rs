@@ -21,6 +21,9 @@ pub struct Instant {
 
 /// The instants of an engagement, time 0 first.
 pub fn instants(engagement: &Engagement) -> Vec<Instant> {
+    if is_quiet(engagement) {
+        return vec![instant(engagement, &[], 0.0)];
+    }
     let mut phases: Vec<usize> = (0..engagement.phases.len()).collect();
     phases.sort_by(|a, b| {
         let key = |place: &usize| (engagement.phases[*place].from, engagement.phases[*place].number);
@@ -28,34 +31,44 @@ pub fn instants(engagement: &Engagement) -> Vec<Instant> {
     });
     times(engagement)
         .into_iter()
-        .map(|time| {
-            let sum = |side: Side, sign: f64| {
-                let sizes = engagement.sides[side]
-                    .joins
-                    .iter()
-                    .filter(|join| join.time == time);
-                sizes
-                    .map(|join| (join.size * sign).max(0.0))
-                    .fold(0.0, |sum, size| sum + size)
-            };
-            let begun: Vec<usize> = phases
-                .iter()
-                .copied()
-                .filter(|place| engagement.phases[*place].from <= time)
-                .collect();
-            let beginning = begun
-                .iter()
-                .map(|place| &engagement.phases[*place])
-                .filter(|phase| phase.from == time);
-            Instant {
-                time,
-                arrivals: Both::of(|side| sum(side, 1.0)),
-                withdrawals: Both::of(|side| sum(side, -1.0)),
-                phases: beginning.map(|phase| phase.number).collect(),
-                conditions: conditions(engagement, &begun, time),
-            }
-        })
+        .map(|time| instant(engagement, &phases, time))
         .collect()
+}
+
+/// What happens at `time`; `phases` are the places of the phases, in the order of their beginning.
+fn instant(engagement: &Engagement, phases: &[usize], time: f64) -> Instant {
+    let sum = |side: Side, sign: f64| {
+        let sizes = engagement.sides[side]
+            .joins
+            .iter()
+            .filter(|join| join.time == time);
+        sizes
+            .map(|join| (join.size * sign).max(0.0))
+            .fold(0.0, |sum, size| sum + size)
+    };
+    let begun: Vec<usize> = phases
+        .iter()
+        .copied()
+        .filter(|place| engagement.phases[*place].from <= time)
+        .collect();
+    let beginning = begun
+        .iter()
+        .map(|place| &engagement.phases[*place])
+        .filter(|phase| phase.from == time);
+    Instant {
+        time,
+        arrivals: Both::of(|side| sum(side, 1.0)),
+        withdrawals: Both::of(|side| sum(side, -1.0)),
+        phases: beginning.map(|phase| phase.number).collect(),
+        conditions: conditions(engagement, &begun, time),
+    }
+}
+
+/// Whether nothing comes, goes or changes after the beginning.
+fn is_quiet(engagement: &Engagement) -> bool {
+    let nobody =
+        |side: Side| engagement.sides[side].joins.is_empty() && engagement.sides[side].flows.is_empty();
+    nobody(Side::X) && nobody(Side::Y) && engagement.phases.is_empty() && engagement.closing.is_none()
 }
 
 /// Whether the fire of any side has an effect at any time.

@@ -95,6 +95,13 @@ impl Double {
         fast_two_sum(near, (self - two_product(near, near)).hi / (2.0 * near))
     }
 
+    /// Its cube root; it is above 0: one step of Newton's from that of the nearest double.
+    pub fn cbrt(self) -> Double {
+        let near = libm::cbrt(self.hi);
+        let square = two_product(near, near);
+        fast_two_sum(near, (self - square * near).hi / (3.0 * square.hi))
+    }
+
     /// e to it.
     pub fn exp(self) -> Double {
         functions::exp(self)
@@ -271,6 +278,8 @@ mod tests {
                 );
             }
             assert!(f64::from((a.sqrt() * a.sqrt() - a) / a).abs() < 1e-30, "{a:?}");
+            let root = a.cbrt();
+            assert!(f64::from((root * root * root - a) / a).abs() < 1e-30, "{a:?}");
         }
     }
 

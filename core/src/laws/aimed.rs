@@ -139,9 +139,13 @@ impl Square {
 }
 
 fn raised(number: f64, exponent: f64) -> f64 {
-    if exponent == 1.0 {
-        number
-    } else {
-        libm::pow(number, exponent)
+    match exponent {
+        1.0 => number,
+        0.75 => {
+            let root = libm::sqrt(number);
+            root * libm::sqrt(root)
+        }
+        0.5 => libm::sqrt(number),
+        _ => libm::pow(number, exponent),
     }
 }

@@ -1,6 +1,6 @@
 //! What is left of a side at a cost.
 
-use super::term::{Descent, Origin, Term, cost};
+use super::term::{Descent, Origin, THREE_HALVES, Term, cost};
 use crate::double::Double;
 use crate::laws::growth;
 
@@ -51,6 +51,15 @@ fn left_of_one(term: &Term, origin: &Origin, area: Double) -> Double {
     }
     if term.order == 0.0 {
         return from * (-area).exp();
+    }
+    if term.order == THREE_HALVES {
+        let cube = origin.power() - area * THREE_HALVES;
+        let root = if cube > 0.0 {
+            cube.cbrt()
+        } else {
+            Double::from(0.0)
+        };
+        return root * root;
     }
     // leftᵏ = fromᵏ·(1 − part), so left = from·(1 − part)^(1/k).
     let part = area * term.order / origin.power();

@@ -43,6 +43,9 @@ impl Descent {
     }
 }
 
+/// The order of the three-halves law, whose integrals are as cheap as those of a square.
+pub(super) const THREE_HALVES: f64 = 1.5;
+
 /// The most terms of a side: two powers in 1/T, each for the fire and for what is lost besides.
 pub const MOST_TERMS: usize = 4;
 
@@ -58,7 +61,9 @@ impl Origin {
     pub(super) fn new(strength: Double, terms: &[Term]) -> Origin {
         let mut powers = [Double::default(); MOST_TERMS];
         for (power, term) in powers.iter_mut().zip(terms) {
-            if !term.is_simple() {
+            if term.order == THREE_HALVES {
+                *power = strength * strength.sqrt();
+            } else if !term.is_simple() {
                 *power = strength.pow(term.order);
             }
         }
@@ -77,9 +82,11 @@ pub fn is_endless(cost: Double) -> bool {
 }
 
 impl Term {
-    /// Whether its integral is a logarithm, a difference or a difference of squares.
+    /// Whether its integral is a logarithm, a difference, or a difference of squares or of cubes of roots.
     fn is_simple(&self) -> bool {
-        self.order == 0.0 || self.order == 1.0 || self.order == 2.0
+        [0.0, 1.0, 2.0, THREE_HALVES]
+            .iter()
+            .any(|order| self.order == *order)
     }
 
     /// ∫ n^(k − 1) along a way down, whose beginning is `power` when raised to the order k, in full.
@@ -92,6 +99,10 @@ impl Term {
             by
         } else if order == 2.0 {
             by * (way.from + to) * 0.5
+        } else if order == THREE_HALVES {
+            // The difference of two cubes over that of their squares.
+            let roots = (way.from.sqrt(), to.sqrt());
+            by * (way.from + roots.0 * roots.1 + to) / ((roots.0 + roots.1) * THREE_HALVES)
         } else if to > 0.0 {
             let span = way.span;
             if order == 0.0 {
@@ -136,13 +147,14 @@ impl Way {
 /// it is without bound.
 pub(super) fn cost(terms: &[Term], origin: &Origin, down: Descent) -> Double {
     let way = Way::new(origin.strength, down, terms);
-    let mut sum = Double::from(0.0);
+    let mut sum = None;
     for (term, power) in terms.iter().zip(origin.powers) {
         let area = term.integral(&way, power);
         if is_endless(area) {
             return area;
         }
-        sum += area * term.weight;
+        let cost = area * term.weight;
+        sum = Some(sum.map_or(cost, |sum| sum + cost));
     }
-    sum
+    sum.unwrap_or_default()
 }

@@ -82,11 +82,18 @@ impl<'a> Reader<'a> {
     }
 
     /// Where a key stands first.
+    #[inline]
     pub(super) fn place(&self, name: Name) -> Option<usize> {
-        let Some(number) = name.phase else {
-            let place = self.places[name.slot()];
-            return (place != NOWHERE).then_some(usize::from(place));
-        };
+        match name.phase {
+            None => {
+                let place = self.places[name.slot()];
+                (place != NOWHERE).then_some(usize::from(place))
+            }
+            Some(number) => self.place_in_phase(number, name),
+        }
+    }
+
+    fn place_in_phase(&self, number: u8, name: Name) -> Option<usize> {
         let is_it = |place: &usize| name.is_in_phase(number, self.pairs.at(*place).0);
         self.phased.iter().copied().find(is_it)
     }
@@ -94,14 +101,14 @@ impl<'a> Reader<'a> {
     /// Whether a key is absent or its text empty.
     pub(super) fn is_blank(&self, name: Name) -> bool {
         self.place(name)
-            .is_none_or(|place| trimmed(self.pairs.at(place).1).is_empty())
+            .is_none_or(|place| trimmed(self.pairs.text_at(place)).is_empty())
     }
 
     /// The text of a key with its outer blanks gone, and its place; `None` where it is empty, absent, or already in
     /// trouble.
     pub(super) fn text(&self, name: Name) -> Option<(usize, &'a str)> {
         let place = self.place(name)?;
-        let text = trimmed(self.pairs.at(place).1);
+        let text = trimmed(self.pairs.text_at(place));
         (!text.is_empty() && self.is_decoded(place)).then_some((place, text))
     }
 
@@ -132,6 +139,14 @@ impl<'a> Reader<'a> {
             self.report(key, format!("is {length} characters long; write at most {most}"));
         }
         text.into()
+    }
+
+    /// A free text, or `default` where none is given.
+    pub(super) fn text_or(&mut self, key: Name, default: &str) -> String {
+        match self.free_text(key) {
+            text if text.is_empty() => default.into(),
+            text => text,
+        }
     }
 
     pub(super) fn choice(&mut self, key: Name) -> Option<&'static str> {
@@ -177,12 +192,13 @@ impl<'a> Reader<'a> {
     }
 
     pub(super) fn required(&mut self, key: Name, what: &str) -> Option<Quantity> {
-        if self.is_blank(key) {
+        let quantity = self.quantity(key);
+        if quantity.is_none() && self.is_blank(key) {
             self.problems.push((
                 MISSING,
                 Problem::missing(&key.to_string(), format!("`{key}` is missing: give {what}")),
             ));
         }
-        self.quantity(key)
+        quantity
     }
 }

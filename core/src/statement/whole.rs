@@ -18,20 +18,11 @@ impl Reader<'_> {
             .choice(Name::whole(rows::UNIT))
             .and_then(TimeUnit::of_word)
             .unwrap_or_default();
-        let counted = self.free_text(Name::whole(rows::COUNTED));
-        let counted = if counted.is_empty() {
-            "combatants".into()
-        } else {
-            counted
+        let counted = self.text_or(Name::whole(rows::COUNTED), "combatants");
+        let names = Both {
+            x: self.text_or(Name::of_side(Side::X, rows::NAME), "Side X"),
+            y: self.text_or(Name::of_side(Side::Y, rows::NAME), "Side Y"),
         };
-        let names = Both::of(|side| {
-            let name = self.free_text(Name::of_side(side, rows::NAME));
-            if name.is_empty() {
-                format!("Side {}", side.letter().to_uppercase())
-            } else {
-                name
-            }
-        });
         let until = self.quantity(Name::whole(rows::UNTIL));
         for key in [rows::VIEW, rows::PAPER, rows::V] {
             self.choice(Name::whole(key));

@@ -96,6 +96,12 @@ pub(super) fn within_limits(row: &Key, quantity: Quantity) -> Result<Quantity, S
     let Kind::Quantity { low, above, high } = row.kind else {
         return Ok(quantity);
     };
+    let fits = |value: f64| value >= low && value <= high && !(above && value == low);
+    if let Quantity::Number(value) = quantity
+        && fits(value)
+    {
+        return Ok(quantity);
+    }
     for value in quantity.numbers() {
         if above && value <= low {
             return Err(format!("must be more than {low}"));
