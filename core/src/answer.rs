@@ -1,5 +1,7 @@
 //! From the text of a link to its answer: an outcome, or every problem of the text.
 
+use crate::asked::{Asked, Inquiry};
+use crate::caution;
 use crate::fight::{Effort, fight};
 use crate::json::to_json;
 use crate::outcome::Outcome;
@@ -19,6 +21,13 @@ pub enum Answer {
         /// How, line by line, where that was asked for.
         working: Option<Vec<String>>,
     },
+    /// Numbers in question were worked out.
+    Asked {
+        /// What each must be.
+        asked: Vec<Asked>,
+        /// The outcome with the values they have now; `None` where one has none.
+        outcome: Option<Box<Answer>>,
+    },
     /// It was not, for these reasons.
     Problems(Vec<Problem>),
 }
@@ -34,29 +43,68 @@ pub fn answer_with_working(link: &str) -> Answer {
 }
 
 fn read_and_fight(link: &str, shown: bool) -> Answer {
-    match Statement::read(&Pairs::parse(link)) {
-        Ok(statement) => {
-            let outcome = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
-            let lines = || {
-                working(&statement, &outcome)
-                    .iter()
-                    .map(WorkingLine::text)
-                    .collect()
-            };
-            let working = shown.then(lines);
-            Answer::Outcome {
-                outcome: Box::new(outcome),
-                working,
-            }
-        }
-        Err(problems) => Answer::Problems(problems),
+    let pairs = Pairs::parse(link);
+    let statement = match Statement::read(&pairs) {
+        Ok(statement) => statement,
+        Err(problems) => return Answer::Problems(problems),
+    };
+    if statement.asks() {
+        return Answer::Asked {
+            asked: ask(&pairs, &statement),
+            outcome: statement
+                .has_base()
+                .then(|| Box::new(worked_out(&statement, shown))),
+        };
     }
+    worked_out(&statement, shown)
+}
+
+/// The outcome with the numbers as they are now.
+fn worked_out(statement: &Statement, shown: bool) -> Answer {
+    let outcome = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
+    let lines = || {
+        working(statement, &outcome)
+            .iter()
+            .map(WorkingLine::text)
+            .collect()
+    };
+    let working = shown.then(lines);
+    Answer::Outcome {
+        outcome: Box::new(outcome),
+        working,
+    }
+}
+
+/// The answers to the questions of a statement.
+fn ask(pairs: &Pairs, statement: &Statement) -> Vec<Asked> {
+    let mut inquiry = Inquiry::new(pairs, statement);
+    inquiry
+        .iter_mut()
+        .map(|inquiry| {
+            while !inquiry.go_on(u32::MAX) {}
+            inquiry.answer()
+        })
+        .collect()
 }
 
 impl Serialize for Answer {
     fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
         match self {
-            Answer::Outcome { outcome, working } => write_outcome(outcome, working.as_deref(), serializer),
+            Answer::Outcome { outcome, working } => {
+                write_outcome(None, outcome, working.as_deref(), serializer)
+            }
+            Answer::Asked { asked, outcome } => match outcome.as_deref() {
+                Some(Answer::Outcome { outcome, working }) => {
+                    write_outcome(Some(asked), outcome, working.as_deref(), serializer)
+                }
+                _ => {
+                    let mut answer = serializer.serialize_struct("Answer", 3)?;
+                    answer.serialize_field("ok", &true)?;
+                    answer.serialize_field("asked", asked)?;
+                    answer.serialize_field("caution", caution::SHORT)?;
+                    answer.end()
+                }
+            },
             Answer::Problems(problems) => {
                 let mut answer = serializer.serialize_struct("Answer", 2)?;
                 answer.serialize_field("ok", &false)?;
@@ -69,6 +117,7 @@ impl Serialize for Answer {
 
 /// The fields of an outcome between `ok` and its working: by name, as serde's `flatten` is slower.
 fn write_outcome<S: Serializer>(
+    asked: Option<&[Asked]>,
     outcome: &Outcome,
     working: Option<&[String]>,
     serializer: S,
@@ -88,8 +137,12 @@ fn write_outcome<S: Serializer>(
         pieces,
         caution,
     } = outcome;
-    let mut answer = serializer.serialize_struct("Answer", 13 + usize::from(working.is_some()))?;
+    let besides = usize::from(asked.is_some()) + usize::from(working.is_some());
+    let mut answer = serializer.serialize_struct("Answer", 13 + besides)?;
     answer.serialize_field("ok", &true)?;
+    if let Some(asked) = asked {
+        answer.serialize_field("asked", asked)?;
+    }
     answer.serialize_field("breaks", breaks)?;
     answer.serialize_field("time", time)?;
     answer.serialize_field("ended", ended)?;

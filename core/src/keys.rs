@@ -342,7 +342,12 @@ pub const KEYS: &[Key] = &[
         "the time at which the engagement is cut off",
     )
     .measured_in(Unit::Time),
-    whole("sothat", "So that", Kind::List, "what a question is asked for").later(),
+    whole(
+        "sothat",
+        "So that",
+        Kind::List,
+        "what a question is asked for: conditions with a comma between, all of which must hold",
+    ),
     whole(
         "losses",
         "Losses",
@@ -394,6 +399,7 @@ pub(crate) mod rows {
     use super::row_named;
 
     pub(crate) const TITLE: usize = row_named("title");
+    pub(crate) const SOTHAT: usize = row_named("sothat");
     pub(crate) const NOTE: usize = row_named("note");
     pub(crate) const MARKING: usize = row_named("marking");
     pub(crate) const UNIT: usize = row_named("unit");

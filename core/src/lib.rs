@@ -4,6 +4,7 @@
 //! browser, no clock, no files, no threads; the same link gives the same bits on every machine.
 
 pub mod answer;
+pub mod asked;
 pub mod caution;
 pub mod conditions;
 pub mod continued;
@@ -14,6 +15,7 @@ pub mod demo;
 pub mod double;
 pub mod family;
 pub mod fight;
+pub mod goals;
 pub mod golden;
 pub mod in_doubt;
 mod json;

@@ -63,6 +63,27 @@ impl Quantity {
         }
     }
 
+    /// The number that holds now: of an interval its likeliest or middle value, of a question the one before the mark;
+    /// `None` where it has none.
+    pub fn now(&self) -> Option<f64> {
+        match *self {
+            Quantity::Number(value) => Some(value),
+            Quantity::Interval { low, likely, high } => Some(likely.unwrap_or(low / 2.0 + high / 2.0)),
+            Quantity::Question { now, .. } => now,
+        }
+    }
+
+    /// Whether it is asked for.
+    pub fn is_question(&self) -> bool {
+        matches!(self, Quantity::Question { .. })
+    }
+
+    /// Whether it may be above 0, as written.
+    pub(crate) fn may_exceed_zero(&self) -> bool {
+        let open = matches!(self, Quantity::Question { between: None, .. });
+        open || self.numbers().any(|value| value > 0.0)
+    }
+
     /// The numbers that the quantity is written with, each of which must keep the key's limits.
     pub fn numbers(&self) -> impl Iterator<Item = f64> {
         let written = match *self {

@@ -140,11 +140,12 @@ impl Limits {
 impl Slot {
     /// Its number; `None` where it is asked for and has none.
     pub fn value(&self) -> Option<f64> {
-        match self.quantity {
-            Quantity::Number(value) => Some(value),
-            Quantity::Interval { low, likely, high } => Some(likely.unwrap_or(low / 2.0 + high / 2.0)),
-            Quantity::Question { now, .. } => now,
-        }
+        self.quantity.now()
+    }
+
+    /// Whether it is a time.
+    pub fn is_time(&self) -> bool {
+        self.unit == Unit::Time
     }
 }
 
@@ -331,10 +332,8 @@ impl Part {
 impl SideTerms<Quantity> {
     /// Whether reserves or a flow bring strength, or may.
     fn is_reinforced(&self) -> bool {
-        let brings = |quantity: &Quantity| {
-            matches!(quantity, Quantity::Question { .. }) || quantity.numbers().any(|size| size > 0.0)
-        };
-        self.joins.iter().any(|join| brings(&join.size)) || self.flows.iter().any(|flow| brings(&flow.rate))
+        self.joins.iter().any(|join| join.size.may_exceed_zero())
+            || self.flows.iter().any(|flow| flow.rate.may_exceed_zero())
     }
 }
 

@@ -68,6 +68,21 @@ impl<C: Copy + PartialEq> Scan<C> {
         self.is_done()
     }
 
+    /// Takes in that between `low` and `high`, two points of the same class with no change between them so far, there is
+    /// another class at `middle`.
+    pub fn found(&mut self, low: f64, middle: f64, high: f64, there: C) {
+        let Some(around) = self.class_at(low) else { return };
+        for (low, high, from, to) in [(low, middle, around, there), (middle, high, there, around)] {
+            self.brackets.push(Bracket { low, high, from, to });
+        }
+    }
+
+    /// The class at the last point seen up to `value`.
+    fn class_at(&self, value: f64) -> Option<C> {
+        let place = self.points.partition_point(|point| *point <= value);
+        self.classes.get(place.checked_sub(1)?).copied()
+    }
+
     /// Whether every change is found.
     pub fn is_done(&self) -> bool {
         self.classes.len() == self.points.len() && self.brackets.is_empty()

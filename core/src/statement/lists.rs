@@ -59,14 +59,14 @@ fn of_mark(text: &str) -> Option<String> {
 
 impl<'a> Reader<'a> {
     /// The items of a list, split after decoding, each with its number.
-    fn items(&self, key: Name) -> Vec<(u32, &'a str)> {
+    pub(super) fn items(&self, key: Name) -> Vec<(u32, &'a str)> {
         let Some((_, text)) = self.text(key) else {
             return Vec::new();
         };
         (1..).zip(text.split(',').map(str::trim)).collect()
     }
 
-    fn report_item(&mut self, key: Name, item: u32, found: &str, problem: impl Into<String>) {
+    pub(super) fn report_item(&mut self, key: Name, item: u32, found: &str, problem: impl Into<String>) {
         // Not by its text: that is no longer to be had once an item before it is in trouble, and each is reported.
         if let Some(place) = self.place(key) {
             let problem = Problem {
@@ -77,19 +77,23 @@ impl<'a> Reader<'a> {
         }
     }
 
-    /// A quantity of an item, which must be a number for now.
+    /// A quantity of an item, a number or one in question.
     fn part(&mut self, key: Name, item: (u32, &str), text: &str, part: &Part) -> Option<Quantity> {
         let problem = match read_quantity(text) {
-            Ok(Quantity::Number(value)) if value < part.low => {
+            Ok(Quantity::Interval { .. }) => {
+                "an interval is known, but not yet worked out by this copy: write one number".into()
+            }
+            Ok(quantity) if quantity.numbers().any(|value| value < part.low) => {
                 format!("`{}` must be {} or more", text.trim(), part.low)
             }
-            Ok(Quantity::Number(value)) if value.abs() > LARGEST => {
+            Ok(quantity) if quantity.numbers().any(|value| value.abs() > LARGEST) => {
                 format!("`{}` must be at most {}", text.trim(), plain(LARGEST))
             }
-            Ok(quantity @ Quantity::Number(_)) => return Some(quantity),
-            Ok(_) => {
-                "an interval or a question is known, but not yet worked out by this copy: write one number"
-                    .into()
+            Ok(quantity) => {
+                if quantity.is_question() {
+                    self.note_question(key, Some(item.0), item.1);
+                }
+                return Some(quantity);
             }
             Err(_) if text.trim().is_empty() => format!("has no {}: {}", part.name, part.form),
             Err(problem) => of_mark(text).unwrap_or_else(|| format!("`{}`: {problem}", text.trim())),
@@ -164,9 +168,8 @@ impl<'a> Reader<'a> {
             let (Some(rate), Some(from)) = (rate, from) else {
                 continue;
             };
-            if let (Quantity::Number(from), Some(Quantity::Number(to))) = (from, to)
-                && to <= from
-            {
+            let ends_first = |to: f64| from.numbers().any(|from| to <= from);
+            if to.is_some_and(|to| to.numbers().any(ends_first)) {
                 self.report_item(key, item.0, item.1, "must end after it begins");
                 continue;
             }

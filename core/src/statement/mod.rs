@@ -1,5 +1,6 @@
 //! What the pairs say, or the list of what is wrong with them.
 
+mod goals;
 mod lists;
 mod name;
 mod phases;
@@ -10,6 +11,7 @@ mod wrong;
 
 pub use time_unit::TimeUnit;
 
+use crate::goals::Goal;
 use crate::pairs::Pairs;
 use crate::problem::Problem;
 use crate::quantity::Quantity;
@@ -39,6 +41,8 @@ pub struct Statement {
     pub names: Both<String>,
     /// Its quantities.
     pub terms: Terms<Quantity>,
+    /// What its questions are asked for; empty where they are asked for the whole story.
+    pub so_that: Vec<Goal>,
 }
 
 impl Statement {
@@ -62,18 +66,28 @@ impl Statement {
 
     /// The engagement in plain numbers: those of `values` in their slots, the statement's own in the others.
     ///
-    /// This version reads plain numbers only, so every slot has one; an interval counts as its likeliest or middle
-    /// value and a question without a number as 0 until they are worked out.
+    /// An interval counts as its likeliest or middle value until intervals are worked out, and a number that is asked for
+    /// and has no value now as 0: what is worked out of it then is for its question alone, see [`Statement::has_base`].
     pub fn engagement(&self, values: &Values) -> Engagement {
-        let own = |quantity: &Quantity| match quantity {
-            Quantity::Number(value) => *value,
-            Quantity::Interval { low, likely, high } => likely.unwrap_or(low / 2.0 + high / 2.0),
-            Quantity::Question { now, .. } => now.unwrap_or(0.0),
-        };
+        let own = |quantity: &Quantity| quantity.now().unwrap_or(0.0);
         if values.is_empty() {
             return self.terms.map_unnamed(own);
         }
         self.terms
             .map(|slot, quantity| values.get(slot).copied().unwrap_or_else(|| own(quantity)))
+    }
+    /// Whether every number has a value now, so that there is an outcome beside the answers to its questions.
+    pub fn has_base(&self) -> bool {
+        let mut whole = true;
+        self.terms
+            .map_unnamed(|quantity| whole &= quantity.now().is_some());
+        whole
+    }
+
+    /// Whether any number is in question.
+    pub fn asks(&self) -> bool {
+        let mut asks = false;
+        self.terms.map_unnamed(|quantity| asks |= quantity.is_question());
+        asks
     }
 }

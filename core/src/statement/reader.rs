@@ -16,7 +16,12 @@ pub(super) struct Reader<'a> {
     pub(super) phased: Vec<usize>,
     /// Problems with their place in the link; missing keys come behind them all.
     pub(super) problems: Vec<(usize, Problem)>,
+    /// Numbers in question, by their place, each with what is said where it is one too many.
+    questions: Vec<(usize, Problem)>,
 }
+
+/// Numbers that can be in question at the same time.
+const MOST_QUESTIONS: usize = 1;
 
 /// The place of what does not stand in the link.
 pub(super) const MISSING: usize = usize::MAX;
@@ -31,10 +36,14 @@ impl<'a> Reader<'a> {
             places: [NOWHERE; keys::SLOTS],
             phased: Vec::new(),
             problems: pairs.problems().into_iter().map(without_escape).collect(),
+            questions: Vec::new(),
         }
     }
 
     pub(super) fn into_problems(mut self) -> Vec<Problem> {
+        self.questions.sort_by_key(|(place, _)| *place);
+        self.problems
+            .extend(self.questions.into_iter().skip(MOST_QUESTIONS));
         self.problems.sort_by_key(|(place, _)| *place);
         self.problems.into_iter().map(|(_, problem)| problem).collect()
     }
@@ -170,17 +179,14 @@ impl<'a> Reader<'a> {
         let (_, text) = self.text(key)?;
         match read_quantity(text).and_then(|quantity| within_limits(key.row(), quantity)) {
             Ok(quantity @ Quantity::Number(_)) => Some(quantity),
+            Ok(quantity @ Quantity::Question { .. }) => {
+                self.note_question(key, None, text);
+                Some(quantity)
+            }
             Ok(Quantity::Interval { .. }) => {
                 self.report(
                     key,
                     "an interval is known, but not yet worked out by this copy: write one number",
-                );
-                None
-            }
-            Ok(Quantity::Question { .. }) => {
-                self.report(
-                    key,
-                    "a question is known, but not yet worked out by this copy: write one number",
                 );
                 None
             }
@@ -189,6 +195,24 @@ impl<'a> Reader<'a> {
                 None
             }
         }
+    }
+
+    /// Notes that a number is in question: the third is one too many.
+    pub(super) fn note_question(&mut self, key: Name, item: Option<u32>, found: &str) {
+        let Some(place) = self.place(key) else { return };
+        let problem = "is one number in question too many: one can be asked for at a time";
+        let problem = Problem {
+            item,
+            ..Problem::at(&key.to_string(), found, problem)
+        };
+        self.questions.push((place, problem));
+    }
+
+    /// Reads by `read` what is checked and then has no effect: numbers in question there are not asked for.
+    pub(super) fn without_effect(&mut self, read: impl FnOnce(&mut Self)) {
+        let count = self.questions.len();
+        read(self);
+        self.questions.truncate(count);
     }
 
     pub(super) fn required(&mut self, key: Name, what: &str) -> Option<Quantity> {

@@ -30,6 +30,7 @@ impl Reader<'_> {
         let x = self.side(Side::X);
         let y = self.side(Side::Y);
         let phases = self.phases();
+        let so_that = self.goals();
         let sides = Both { x: x?, y: y? };
         let closing = self.closing(&sides)?;
         let terms = Terms {
@@ -46,6 +47,7 @@ impl Reader<'_> {
             counted,
             names,
             terms,
+            so_that,
         })
     }
 
@@ -95,13 +97,9 @@ impl Reader<'_> {
         let joins = self.joins(key(rows::JOIN));
         let flows = self.flows(key(rows::FLOW));
         let start = start?;
-        let comes = joins
-            .iter()
-            .any(|join| join.size.numbers().any(|size| size > 0.0))
-            || flows
-                .iter()
-                .any(|flow| flow.rate.numbers().any(|rate| rate > 0.0));
-        if start == none && !comes {
+        let comes = joins.iter().any(|join| join.size.may_exceed_zero())
+            || flows.iter().any(|flow| flow.rate.may_exceed_zero());
+        if start.now() == Some(0.0) && !comes {
             self.report(
                 key(rows::START),
                 "must be more than 0, unless reserves or a flow bring strength later",
@@ -132,12 +130,16 @@ impl Reader<'_> {
     /// The closing of the range; the outer `None` where a problem keeps it from being read.
     fn closing(&mut self, sides: &Both<SideTerms<Quantity>>) -> Option<Option<Closing<Quantity>>> {
         let none = Quantity::Number(0.0);
-        let speed = self.quantity(Name::whole(rows::RANGE_CLOSING)).unwrap_or(none);
-        let least = self.quantity(Name::whole(rows::RANGE_LEAST)).unwrap_or(none);
         if sides.x.reach.is_none() && sides.y.reach.is_none() {
-            self.quantity(Name::whole(rows::RANGE));
+            self.without_effect(|reader| {
+                for key in [rows::RANGE_CLOSING, rows::RANGE_LEAST, rows::RANGE] {
+                    reader.quantity(Name::whole(key));
+                }
+            });
             return Some(None);
         }
+        let speed = self.quantity(Name::whole(rows::RANGE_CLOSING)).unwrap_or(none);
+        let least = self.quantity(Name::whole(rows::RANGE_LEAST)).unwrap_or(none);
         let range = self.required(
             Name::whole(rows::RANGE),
             "the range at the start, which a reach is measured against",

@@ -1,0 +1,17 @@
+//! Asking backwards: what a number must be.
+//!
+//! One number in question makes a family of engagements. An [`Inquiry`] looks along it, finds every change of the outcome
+//! and of the conditions, and gives the answer, [`Asked`].
+
+mod answer;
+mod golden;
+mod inquiry;
+mod outright;
+mod span;
+mod story;
+
+pub use answer::{Asked, Boundary, End, Met, Nearest, Segment};
+pub use inquiry::{Inquiry, STEPS};
+pub use outright::outright;
+pub use span::Why;
+pub use story::{Sample, Story, Worst};

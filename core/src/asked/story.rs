@@ -1,0 +1,111 @@
+//! What is read of each outcome along a number in question.
+
+use crate::goals::{Goal, distances, prevails};
+use crate::outcome::{Breaks, Ended, Outcome};
+use crate::sides::{Both, Side};
+use crate::terms::Engagement;
+
+/// How an engagement comes out, in the main: where it changes, the story changes.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct Story {
+    /// Who breaks first.
+    pub breaks: Breaks,
+    /// How it ends.
+    pub ended: Ended,
+    /// Who prevails: see [`prevails`].
+    pub prevails: Option<Side>,
+}
+
+/// What is told apart along a number: the story, and whether all conditions are met.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(super) struct Class {
+    pub(super) story: Story,
+    pub(super) met: bool,
+}
+
+/// The worst of the conditions that an outcome does not meet.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Worst {
+    /// Its place among the conditions.
+    pub goal: usize,
+    /// By how much it is not met, in its own unit.
+    pub by: f64,
+    /// The same as a part of what is there.
+    pub part: f64,
+}
+
+/// An outcome with a value of the number in question.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Sample {
+    /// The value.
+    pub value: f64,
+    /// How it comes out.
+    pub story: Story,
+    /// Whether all conditions are met; so where there are none.
+    pub met: bool,
+    /// What is left of each side at the end; infinite where it grows without bound.
+    pub end: Both<f64>,
+    /// When a side breaks.
+    pub time: Option<f64>,
+    /// What is missing, where conditions are not met.
+    pub worst: Option<Worst>,
+    /// How far the outcome is from another story: the part of what it has committed by which the side that is left is
+    /// above its line, or the nearer where both are.
+    pub(super) near: f64,
+    /// All that the larger side has committed.
+    committed: f64,
+}
+
+impl Sample {
+    pub(super) fn of(value: f64, engagement: &Engagement, outcome: &Outcome, goals: &[Goal]) -> Sample {
+        let sides = outcome.sides();
+        let above = distances(engagement, outcome);
+        let parts = Side::BOTH.map(|side| above[side] / sides[side].committed.max(f64::MIN_POSITIVE));
+        let unbroken = Side::BOTH
+            .into_iter()
+            .zip(parts)
+            .filter(|(side, _)| !outcome.breaks.includes(*side));
+        Sample {
+            value,
+            story: Story {
+                breaks: outcome.breaks,
+                ended: outcome.ended,
+                prevails: prevails(outcome),
+            },
+            met: goals.iter().all(|goal| goal.holds(outcome)),
+            end: Both::of(|side| sides[side].end.unwrap_or(f64::INFINITY)),
+            time: outcome.time,
+            worst: worst(engagement, outcome, goals),
+            near: unbroken.map(|(_, part)| part).fold(f64::INFINITY, f64::min),
+            committed: sides.x.committed.max(sides.y.committed),
+        }
+    }
+
+    pub(super) fn class(&self) -> Class {
+        Class {
+            story: self.story,
+            met: self.met,
+        }
+    }
+
+    /// Whether the outcome goes over into another without a jump: what is left is nearly the same in both.
+    pub(super) fn goes_over_into(&self, other: &Sample) -> bool {
+        // Next to a crossing what is left falls as a root of the way to it, whose last 1e-13 are not seen.
+        let same = |a: f64, b: f64| a == b || (a - b).abs() <= 1e-4 * self.committed.max(other.committed);
+        Side::BOTH
+            .into_iter()
+            .all(|side| same(self.end[side], other.end[side]))
+    }
+}
+
+fn worst(engagement: &Engagement, outcome: &Outcome, goals: &[Goal]) -> Option<Worst> {
+    let short = goals.iter().enumerate().filter_map(|(goal, one)| {
+        let short = one.short(engagement, outcome)?;
+        Some(Worst {
+            goal,
+            by: short.by,
+            part: short.part,
+        })
+    });
+    short.max_by(|a, b| a.part.total_cmp(&b.part))
+}
