@@ -4,7 +4,6 @@ use super::span::Why;
 use super::story::{Class, Sample, Story, Worst};
 use crate::family::Span;
 use crate::goals::Goal;
-use crate::outcome::Breaks;
 use crate::slots::Slot;
 use serde::ser::{Serialize, SerializeStruct, Serializer};
 
@@ -101,8 +100,8 @@ impl End {
 }
 
 impl Segment {
-    /// The story along `span`, which begins with `first`; where both break at a single value between one breaking and the
-    /// other, that value is the boundary.
+    /// The story along `span`, which begins with `first`; where neither prevails at a single value, as at parity, that
+    /// value is the boundary.
     pub(super) fn all(span: Span, first: Story, told: &[(Class, Class, Boundary)]) -> Vec<Segment> {
         let mut all = vec![Segment {
             from: End::Edge(span.low),
@@ -129,8 +128,9 @@ fn without_single_values(all: Vec<Segment>, width: f64) -> Vec<Segment> {
     let count = all.len();
     for (place, segment) in all.into_iter().enumerate() {
         let inside = 0 < place && place + 1 < count;
+        // Both break there, or both fade.
         let narrow = segment.to.at() - segment.from.at() <= width;
-        if inside && narrow && segment.story.breaks == Breaks::Both {
+        if inside && narrow && segment.story.prevails.is_none() {
             continue;
         }
         match kept.last_mut() {

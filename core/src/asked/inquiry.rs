@@ -8,7 +8,6 @@ use super::story::{Class, Sample};
 use crate::family::{Change, Family, Scan, Span, points};
 use crate::fight::{Effort, fight};
 use crate::goals::Goal;
-use crate::outcome::Breaks;
 use crate::pairs::Pairs;
 use crate::slots::{Slot, slots};
 use crate::statement::{Statement, Values};
@@ -237,13 +236,8 @@ impl Inquiry {
 
     /// The change by the state equation, where it is one from one side's break to the other's and has a formula.
     fn by_formula(&self, change: &Change<Class>) -> Option<f64> {
-        let turned = matches!(
-            (change.from.story.breaks, change.to.story.breaks),
-            (Breaks::X | Breaks::Both, Breaks::Y | Breaks::Both)
-                | (Breaks::Y, Breaks::X | Breaks::Both)
-                | (Breaks::Both, Breaks::X)
-        );
-        if !turned {
+        let (from, to) = (change.from.story.prevails, change.to.story.prevails);
+        if from == to {
             return None;
         }
         let mut family = self.family.clone();

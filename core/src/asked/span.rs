@@ -23,6 +23,8 @@ pub enum Why {
     EqualFire,
     /// Up to ten times what is lost to the fire at the start.
     LostAtStart,
+    /// Up to ten times the enemy's strength at the start.
+    Targets,
     /// Up to the clock.
     Clock,
     /// Up to twice as long as the fight lasts.
@@ -91,7 +93,7 @@ fn of_side(engagement: &Engagement, side: Side, part: Part) -> (f64, Why) {
     match part {
         Part::Start | Part::Lost => (4.0 * larger_side(engagement), Why::LargerSide),
         Part::Rate => (10.0 * equal_rate(engagement, side), Why::EqualFire),
-        Part::Half => (10.0 * engagement.sides[enemy].start, Why::LargerSide),
+        Part::Half => (10.0 * engagement.sides[enemy].start, Why::Targets),
         Part::Break => (1.0, Why::Whole),
         Part::P | Part::Q => (3.0, Why::Whole),
         Part::ReachShape => (10.0, Why::Whole),

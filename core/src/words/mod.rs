@@ -1,9 +1,11 @@
 //! All wording of results: the page, the batch door and the tests say the same.
 
+pub mod asked;
 pub mod decided;
 pub mod entry;
 pub mod figures;
 pub mod format;
+pub mod goal;
 pub mod math;
 pub mod meaning;
 pub mod reading;

@@ -79,3 +79,18 @@ pub fn value(statement: &Statement, unit: Unit, value: f64) -> String {
         _ => number,
     }
 }
+
+/// A value to six significant digits with its unit, for tables.
+pub fn six_with_unit(statement: &Statement, unit: Unit, value: f64) -> String {
+    let number = significant(value, 6);
+    let symbol = statement.unit.symbol();
+    match unit {
+        Unit::Time => format!("{number}{NO_BREAK}{symbol}"),
+        Unit::StrengthPerTime
+        | Unit::EnemyPerTime
+        | Unit::FractionPerTime
+        | Unit::EnemyFractionPerTime
+        | Unit::LengthPerTime => format!("{number} per{NO_BREAK}{symbol}"),
+        _ => number,
+    }
+}
