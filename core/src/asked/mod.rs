@@ -7,11 +7,13 @@ mod answer;
 mod golden;
 mod inquiry;
 mod outright;
+mod put;
 mod span;
 mod story;
 
 pub use answer::{Asked, Boundary, End, Met, Nearest, Segment};
 pub use inquiry::{Inquiry, STEPS};
 pub use outright::outright;
+pub use put::Putting;
 pub use span::Why;
 pub use story::{Sample, Story, Worst};

@@ -11,33 +11,43 @@ pub struct Tick {
     pub text: String,
 }
 
-/// An axis of a picture, from 0.
+/// An axis of a picture, from 0 unless it is said otherwise.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Axis {
     /// What it measures, with its unit.
     pub label: String,
+    /// Its beginning.
+    pub from: f64,
     /// Its end.
     pub to: f64,
-    /// Its round numbers, 0 among them.
+    /// Its round numbers.
     pub ticks: Vec<Tick>,
 }
 
 impl Axis {
     /// An axis from 0 to `to`, which is above 0, with about `count` ticks.
     pub fn new(label: String, to: f64, count: usize) -> Axis {
-        let step = round_step(to / count as f64);
-        let last = (to / step * (1.0 + 1e-12)).floor() as usize;
+        Axis::between(label, 0.0, to, count)
+    }
+
+    /// An axis from `from` to `to`, which is above it, with about `count` ticks.
+    pub fn between(label: String, from: f64, to: f64, count: usize) -> Axis {
+        let step = round_step((to - from) / count as f64);
+        let first = (from / step * (1.0 - 1e-12 * from.signum())).ceil();
+        let last = (to / step * (1.0 + 1e-12 * to.signum())).floor();
         let tick = |number: usize| {
-            let at = step * number as f64;
+            let at = step * (first + number as f64);
             Tick {
                 at,
                 text: significant(at, 6),
             }
         };
+        let steps = (last - first).max(0.0) as usize;
         Axis {
             label,
+            from,
             to,
-            ticks: (0..=last.min(4 * count)).map(tick).collect(),
+            ticks: (0..=steps.min(4 * count)).map(tick).collect(),
         }
     }
 }

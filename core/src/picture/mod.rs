@@ -1,10 +1,12 @@
 //! What the two pictures show, in the units of the engagement: the shell draws it on canvas and as SVG.
 
+mod asked;
 mod axis;
 mod orbit;
 mod paths;
 mod strength;
 
+pub use asked::asked;
 pub use axis::{Axis, Tick};
 pub use orbit::orbit;
 pub use strength::strength;
@@ -32,6 +34,12 @@ pub enum Role {
     Clock,
     /// A moment at which something joins, leaves or changes.
     Instant,
+    /// A value of a number in question at which the outcome changes.
+    Change,
+    /// The value that it has now.
+    Now,
+    /// Values with which all that is wanted holds.
+    Met,
 }
 
 /// A line through points, all within the axes.

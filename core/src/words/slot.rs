@@ -80,6 +80,21 @@ pub fn value(statement: &Statement, unit: Unit, value: f64) -> String {
     }
 }
 
+/// The unit of a number where it is short: "h", "per h"; else empty.
+pub fn unit(statement: &Statement, unit: Unit) -> String {
+    let symbol = statement.unit.symbol();
+    match unit {
+        Unit::Time => symbol.into(),
+        Unit::Strength | Unit::EnemyStrength => statement.counted.clone(),
+        Unit::StrengthPerTime
+        | Unit::EnemyPerTime
+        | Unit::FractionPerTime
+        | Unit::EnemyFractionPerTime
+        | Unit::LengthPerTime => format!("per{NO_BREAK}{symbol}"),
+        _ => String::new(),
+    }
+}
+
 /// A value to six significant digits with its unit, for tables.
 pub fn six_with_unit(statement: &Statement, unit: Unit, value: f64) -> String {
     let number = significant(value, 6);

@@ -58,8 +58,8 @@ pub(crate) fn layout<B: DrawingBackend>(pen: &Pen<'_, B>, picture: &Picture) -> 
         top: WORDS + 14.0,
         right: width - (behind * 0.7).clamp(20.0, width * 0.15),
         foot: (height - UNDER).max(WORDS + 34.0),
-        across: (0.0, picture.across.to),
-        up: (0.0, picture.up.to),
+        across: (picture.across.from, picture.across.to),
+        up: (picture.up.from, picture.up.to),
     }
 }
 

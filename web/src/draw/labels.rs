@@ -85,13 +85,17 @@ impl Labels {
         }
         for line in picture.lines.iter().filter(|line| !line.label.is_empty()) {
             match line.role {
-                Role::Defeat | Role::Clock => self.moment(pen, line)?,
+                Role::Defeat | Role::Clock | Role::Change => self.moment(pen, line)?,
                 Role::BreakLine(side) => self.break_line(pen, picture, line, side)?,
                 Role::Parity => self.along(pen, line, pen.ink.ink, true)?,
                 _ => {}
             }
         }
-        for line in picture.lines.iter().filter(|line| line.role == Role::Instant) {
+        for line in picture
+            .lines
+            .iter()
+            .filter(|line| matches!(line.role, Role::Instant | Role::Now))
+        {
             self.instant(pen, line)?;
         }
         for line in picture.lines.iter().filter(|line| !line.label.is_empty()) {

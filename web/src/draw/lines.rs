@@ -62,8 +62,10 @@ fn hand<B: DrawingBackend>(pen: &Pen<'_, B>, role: Role) -> (RGBColor, f64, Dash
         Role::Neighbour => (pen.ink.faint, 1.0, SOLID),
         Role::Parity => (pen.ink.ink, 1.0, DASH_DOT),
         Role::BreakLine(side) => (side_colour(pen, side), 1.2, DOTS),
-        Role::Defeat | Role::Clock => (pen.ink.ink, 1.0, SOLID),
+        Role::Defeat | Role::Clock | Role::Change => (pen.ink.ink, 1.0, SOLID),
         Role::Instant => (pen.ink.between(), 0.8, SOLID),
+        Role::Now => (pen.ink.ink, 1.0, SHORT_DASH),
+        Role::Met => (pen.ink.ink, 6.0, SOLID),
     }
 }
 
@@ -87,6 +89,9 @@ fn marks_along<B: DrawingBackend>(
 
 /// The height of a curve over `at`, between its points.
 fn height_at(points: &[(f64, f64)], at: f64) -> Option<f64> {
+    if points.first().is_none_or(|first| at < first.0) {
+        return None;
+    }
     let after = points.iter().position(|point| point.0 >= at)?;
     let (to, from) = (points[after], points[after.saturating_sub(1)]);
     if to.0 == from.0 {
@@ -178,6 +183,7 @@ mod tests {
         assert_eq!(height_at(&points, 0.0), Some(10.0));
         assert_eq!(height_at(&points, 1.0), Some(8.0));
         assert_eq!(height_at(&points, 5.0), None);
+        assert_eq!(height_at(&points, -1.0), None);
     }
 
     #[test]
