@@ -32,6 +32,7 @@ pub mod passing;
 pub mod picture;
 pub mod piece;
 pub mod problem;
+pub mod put;
 pub mod quadrature;
 pub mod quantity;
 pub mod schedule;

@@ -4,6 +4,7 @@
 //! that knows no browser.
 
 mod address;
+mod asking;
 mod canvas;
 mod copy;
 mod dom;

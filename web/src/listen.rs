@@ -220,6 +220,12 @@ fn click(page: &mut Page, event: &Event) -> After {
         page.keep_first(&key);
         return After::GoTo(key);
     }
+    if let Some(place) = button
+        .get_attribute("data-put")
+        .and_then(|place| place.parse().ok())
+    {
+        return page.put_answer(place);
+    }
     if let (Some(cell), Some(act)) = (Cell::of(&button), act_of(&button)) {
         return page.act_on_list(&cell, act, None);
     }
@@ -243,6 +249,7 @@ fn click(page: &mut Page, event: &Event) -> After {
         "unit.convert" => page.convert_unit(),
         "unit.keep" => page.keep_numbers(),
         "continue" => page.continue_from_here(),
+        "sothat.add" => page.add_condition(),
         "blank" => {
             page.start_from_blank();
             After::GoTo("x.name".into())
@@ -380,7 +387,7 @@ fn watch_sizes(dom: &Dom, page: &Shared, signal: &AbortSignal) -> Result<(), JsV
         }
     });
     let observer = ResizeObserver::new(call.into_js_value().unchecked_ref())?;
-    for id in ["strength", "orbit"] {
+    for id in ["strength", "orbit", "asked-picture"] {
         if let Some(canvas) = dom.element(id) {
             observer.observe(&canvas);
         }

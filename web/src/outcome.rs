@@ -256,7 +256,8 @@ fn show_figures(dom: &Dom, figures: &Figures) {
     }
 }
 
-fn show_table(dom: &Dom, id: &str, content: &Table) {
+/// Shows a table of core's.
+pub(crate) fn show_table(dom: &Dom, id: &str, content: &Table) {
     let Some(table) = dom.element(id) else { return };
     table.set_text_content(None);
     let mut build = Build { dom, row: None };

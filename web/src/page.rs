@@ -3,6 +3,8 @@
 mod received;
 
 use crate::address::{Address, Step};
+use crate::asking::Asking;
+use crate::canvas;
 use crate::dom::Dom;
 use crate::form;
 use crate::hand::{Hand, Writes};
@@ -46,6 +48,8 @@ pub(crate) struct Page {
     /// Whether a blank form is being filled: then what is missing is no news.
     filling: bool,
     good: Option<Good>,
+    /// The question of the text, where it has one.
+    asking: Asking,
     /// Problems that are not shown yet.
     waiting: Vec<Problem>,
     /// Whether `good` is of the text as it stands.
@@ -66,6 +70,7 @@ pub(crate) struct Page {
     show_share: Timer,
     speak: Timer,
     decide: Timer,
+    ask_on: Timer,
     frame: NextFrame,
     /// Whether the working was opened for the printer alone.
     opened_for_print: bool,
@@ -94,6 +99,7 @@ impl Page {
                 demo: false,
                 filling: false,
                 good: None,
+                asking: Asking::new(dom),
                 waiting: Vec::new(),
                 current: false,
                 problems: Problems::new(dom),
@@ -112,6 +118,7 @@ impl Page {
                 show_share: Timer::new(&dom.window, page, Page::show_share),
                 speak: Timer::new(&dom.window, page, Page::speak_now),
                 decide: Timer::new(&dom.window, page, Page::decide_now),
+                ask_on: Timer::new(&dom.window, page, Page::ask_on),
                 frame: NextFrame::new(&dom.window, page, Page::draw_now),
                 opened_for_print: false,
             })
@@ -332,6 +339,7 @@ impl Page {
         self.demo = false;
         self.unit_change.withdraw();
         self.good = None;
+        self.asking.clear();
         self.filling = true;
         form::fill(&self.dom, &self.pairs);
         self.kept_rates.start(&self.pairs);
@@ -436,6 +444,7 @@ impl Page {
         self.demo = text.is_none();
         self.good = None;
         self.unit_change.withdraw();
+        self.asking.clear();
         self.pairs = Pairs::parse(text.as_deref().unwrap_or(DEMO));
         // Before all that may stop the program: a fresh start goes on from here.
         crate::copy::keep(&self.dom, &self.pairs.link());
@@ -473,7 +482,15 @@ impl Page {
         self.waiting.clear();
         self.current = false;
         match Statement::read(&self.pairs) {
-            Ok(statement) => self.work_out_good(statement),
+            Ok(statement) => {
+                self.asking.begin(&self.pairs, &statement);
+                if statement.has_base() {
+                    self.work_out_good(statement);
+                } else {
+                    self.work_out_question();
+                }
+                self.ask_on();
+            }
             Err(problems) => self.work_out_bad(problems, cause),
         }
         let good = self.good.as_ref().filter(|_| self.current);
@@ -494,16 +511,66 @@ impl Page {
         self.frame.ask();
     }
 
+    /// A number is asked for and has no value now: the sheet says the answer alone.
+    fn work_out_question(&mut self) {
+        self.problems.clear();
+        self.law_fields.show(&self.pairs, &[]);
+        self.filling = false;
+        self.good = None;
+        self.clear_outcome();
+        self.current = true;
+        self.dom.mark_root("data-state", Some("good"));
+    }
+
+    /// Goes on with the question for a slice.
+    fn ask_on(&mut self) {
+        self.ask_on.stop();
+        if !self.asking.go_on(&self.pairs) {
+            self.ask_on.start(0);
+            return;
+        }
+        if self.good.is_none() {
+            let sentence = self.sentence();
+            self.dom.set_text("sentence", &sentence);
+        }
+        self.frame.ask();
+    }
+
+    /// Puts an answer into its field.
+    pub(crate) fn put_answer(&mut self, place: usize) -> After {
+        let Some((key, changed)) = self.asking.putting(&self.pairs, place) else {
+            return After::Nothing;
+        };
+        self.change_at_once(|pairs| *pairs = changed);
+        form::fill(&self.dom, &self.pairs);
+        After::GoTo(key)
+    }
+
+    /// Adds the condition that was chosen to what is wanted.
+    pub(crate) fn add_condition(&mut self) -> After {
+        if let Some(conditions) = self.asking.with_choice(&self.pairs) {
+            self.change_at_once(|pairs| pairs.set("sothat", &conditions));
+            form::fill(&self.dom, &self.pairs);
+        }
+        After::GoTo("sothat".into())
+    }
+
+    fn clear_outcome(&self) {
+        outcome::clear(&self.dom);
+        timeline::clear(&self.dom);
+        working::clear(&self.dom);
+    }
+
     fn work_out_bad(&mut self, mut problems: Vec<Problem>, cause: Cause) {
         if self.filling {
             problems.retain(|problem| problem.found.is_some());
         }
         self.law_fields.show(&self.pairs, &problems);
         self.waiting = problems;
-        if self.good.is_none() {
-            outcome::clear(&self.dom);
-            timeline::clear(&self.dom);
-            working::clear(&self.dom);
+        self.asking.stop();
+        if self.good.is_none() && self.asking.sentence().is_none() {
+            self.asking.clear();
+            self.clear_outcome();
             self.dom.mark_root("data-state", Some("empty"));
         }
         match cause {
@@ -516,7 +583,7 @@ impl Page {
         self.show_problems.stop();
         let waiting = std::mem::take(&mut self.waiting);
         self.problems.show(&self.pairs, &waiting);
-        if self.good.is_some() {
+        if self.good.is_some() || self.asking.sentence().is_some() {
             self.dom.mark_root("data-state", Some("stale"));
         }
         self.mark_what_rolls();
@@ -593,7 +660,8 @@ impl Page {
     }
 
     fn sentence(&self) -> String {
-        self.good.as_ref().map(Good::sentence).unwrap_or_default()
+        let asked = || self.asking.sentence().unwrap_or_default();
+        self.good.as_ref().map_or_else(asked, Good::sentence)
     }
 
     fn speak_now(&mut self) {
@@ -625,14 +693,14 @@ impl Page {
     /// Draws both pictures, and says that they match the text where they do.
     fn draw_now(&mut self) {
         self.frame.came();
-        let Some(good) = &self.good else { return };
         let _watch = Stopwatch::start(&self.dom, DRAW);
-        if let Err(error) = self.plates.draw(good) {
+        let plates = self.good.as_ref().map_or(Ok(()), |good| self.plates.draw(good));
+        if let Err(error) = plates.and_then(|()| self.asking.draw(&canvas::ink(&self.dom))) {
             web_sys::console::error_1(&error.into());
             return;
         }
         self.mark_what_rolls();
-        if self.current {
+        if self.current && self.asking.is_done() {
             self.dom.mark_root("data-settled", Some(&text_mark(&self.pairs)));
             self.decide.start(SETTLED);
         }

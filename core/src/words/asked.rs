@@ -127,6 +127,14 @@ fn range(statement: &Statement, asked: &Asked, met: &Met) -> String {
     }
 }
 
+/// What a button that puts a value into the field says: "put 608 into the field".
+pub fn putting(statement: &Statement, asked: &Asked, value: f64) -> String {
+    format!(
+        "put {} into the field",
+        slot::six_with_unit(statement, asked.slot.unit, value)
+    )
+}
+
 /// Where it was looked for, why there, and how closely.
 pub fn where_looked(statement: &Statement, asked: &Asked) -> String {
     let why = match asked.why {

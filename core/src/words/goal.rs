@@ -2,9 +2,52 @@
 
 use super::format::{significant, time};
 use crate::asked::Worst;
+use crate::decimal::written;
 use crate::goals::{Bounds, Goal};
 use crate::sides::Side;
 use crate::statement::Statement;
+
+/// A condition to choose: in words, and as it is written.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Choice {
+    /// "Ondrel prevails".
+    pub words: String,
+    /// "x.prevails".
+    pub text: String,
+}
+
+/// The conditions that can be chosen, with numbers from the engagement where they need one: half of a side left, a quarter
+/// of it lost, the clock or a day.
+pub fn choices(statement: &Statement) -> Vec<Choice> {
+    let start = |side: Side| {
+        let start = statement.terms.sides[side].start.now();
+        start.filter(|start| *start > 0.0).unwrap_or(100.0)
+    };
+    let clock = statement.terms.until.and_then(|until| until.now());
+    let day = clock.unwrap_or(statement.unit.in_a_day());
+    let of_side = |side: Side| {
+        let letter = side.letter();
+        [
+            format!("{letter}.prevails"),
+            format!("{letter}.holds"),
+            format!("{letter}.breaks"),
+            format!("{letter}.end:{}..", written(two_digits(start(side) / 2.0))),
+            format!("{letter}.lost:..{}", written(two_digits(start(side) / 4.0))),
+        ]
+    };
+    let texts = Side::BOTH.into_iter().flat_map(of_side);
+    let texts = texts.chain([format!("time:..{}", written(two_digits(day)))]);
+    texts
+        .filter_map(|text| {
+            let words = goal(statement, &Goal::read(&text).ok()?);
+            Some(Choice { words, text })
+        })
+        .collect()
+}
+
+fn two_digits(value: f64) -> f64 {
+    format!("{value:.1e}").parse().unwrap_or(value)
+}
 
 /// A condition as a clause: "Ondrel prevails", "at least 80 of Ondrel are left".
 pub fn goal(statement: &Statement, goal: &Goal) -> String {

@@ -1,0 +1,213 @@
+//! What a number in question must be: worked out in slices, so that typing is never held up, and put on the page.
+
+use crate::canvas;
+use crate::dom::{Dom, append, set};
+use crate::draw::{self, Ink};
+use crate::outcome::show_table;
+use aftercount_core::asked::{Asked, Inquiry, Putting};
+use aftercount_core::pairs::Pairs;
+use aftercount_core::picture::{self, Picture};
+use aftercount_core::put::put;
+use aftercount_core::statement::Statement;
+use aftercount_core::words::asked as words;
+use aftercount_core::words::goal;
+use web_sys::HtmlSelectElement;
+
+/// How long the page works at a stretch, in milliseconds.
+const SLICE: f64 = 12.0;
+
+/// Fights between two looks at the clock.
+const AT_ONCE: u32 = 8;
+
+/// The question of the text, and how far it has come.
+pub(crate) struct Asking {
+    dom: Dom,
+    statement: Option<Statement>,
+    inquiry: Option<Inquiry>,
+    answer: Option<Asked>,
+    picture: Option<Picture>,
+}
+
+impl Asking {
+    pub(crate) fn new(dom: &Dom) -> Asking {
+        Asking {
+            dom: dom.clone(),
+            statement: None,
+            inquiry: None,
+            answer: None,
+            picture: None,
+        }
+    }
+
+    /// Takes up the question of a statement; without one the answer before goes.
+    pub(crate) fn begin(&mut self, pairs: &Pairs, statement: &Statement) {
+        self.inquiry = Inquiry::new(pairs, statement);
+        if self.inquiry.is_none() {
+            self.clear();
+            return;
+        }
+        self.statement = Some(statement.clone());
+        self.dom.set_shown("asked", true);
+        self.dom.set_shown("asked-how", false);
+        self.dom.mark_root(
+            "data-asked",
+            Some(if statement.has_base() { "beside" } else { "alone" }),
+        );
+        self.dom.set_attribute("asked", "aria-busy", "true");
+        self.show_choices(statement);
+        let echo = goal::goals(statement, &statement.so_that);
+        self.dom.set_text("sothat.echo", &sentence_of(&echo));
+    }
+
+    /// Takes the answer off the page.
+    pub(crate) fn clear(&mut self) {
+        *self = Asking::new(&self.dom);
+        self.dom.set_shown("asked", false);
+        self.dom.set_shown("asked-how", true);
+        self.dom.mark_root("data-asked", None);
+    }
+
+    /// Whether nothing is being worked out.
+    pub(crate) fn is_done(&self) -> bool {
+        self.inquiry.is_none()
+    }
+
+    /// Leaves off: the text has changed to one that cannot be worked out.
+    pub(crate) fn stop(&mut self) {
+        self.inquiry = None;
+        self.dom.set_attribute("asked", "aria-busy", "false");
+    }
+
+    /// Works for a slice; shows the answer once it is there. Whether it is.
+    pub(crate) fn go_on(&mut self, pairs: &Pairs) -> bool {
+        let Some(inquiry) = &mut self.inquiry else {
+            return true;
+        };
+        let clock = self.dom.window.performance();
+        let now = || clock.as_ref().map_or(0.0, web_sys::Performance::now);
+        let from = now();
+        let mut done = false;
+        while !done && now() - from < SLICE {
+            done = inquiry.go_on(AT_ONCE);
+        }
+        if done {
+            self.answer = Some(inquiry.answer());
+            self.inquiry = None;
+            self.show(pairs);
+        } else {
+            let part = (inquiry.progress() * 100.0).round();
+            self.dom
+                .set_text("asked-working", &format!("Being worked out: {part} % so far."));
+        }
+        done
+    }
+
+    /// The answer in one sentence.
+    pub(crate) fn sentence(&self) -> Option<String> {
+        let (statement, answer) = (self.statement.as_ref()?, self.answer.as_ref()?);
+        Some(words::sentence(statement, answer))
+    }
+
+    /// What is written in the field for one of the answers: the key and its text.
+    pub(crate) fn putting(&self, pairs: &Pairs, place: usize) -> Option<(String, Pairs)> {
+        let answer = self.answer.as_ref()?;
+        let putting = answer.puttings().into_iter().nth(place)?;
+        let mut changed = pairs.clone();
+        put(&mut changed, &answer.slot, &putting.text);
+        Some((answer.slot.key.clone(), changed))
+    }
+
+    /// Draws the picture.
+    pub(crate) fn draw(&self, ink: &Ink) -> Result<(), String> {
+        let (Some(picture), Some(mut canvas)) = (&self.picture, canvas::prepare(&self.dom, "asked-picture"))
+        else {
+            return Ok(());
+        };
+        draw::draw(&mut canvas.backend, canvas.scale, ink, picture)
+            .map(|_| ())
+            .map_err(|error| format!("a picture could not be drawn: {error:?}"))
+    }
+
+    fn show(&mut self, pairs: &Pairs) {
+        let (Some(statement), Some(answer)) = (&self.statement, &self.answer) else {
+            return;
+        };
+        let dom = &self.dom;
+        dom.set_attribute("asked", "aria-busy", "false");
+        dom.set_text("asked-working", "");
+        dom.set_text("asked-sentence", &words::sentence(statement, answer));
+        dom.set_text("asked-where", &words::where_looked(statement, answer));
+        show_table(dom, "asked-story", &words::table(statement, answer));
+        let met = words::met_table(statement, answer).filter(|table| !table.rows.is_empty());
+        dom.set_shown("asked-met-part", met.is_some());
+        if let Some(met) = &met {
+            show_table(dom, "asked-met", met);
+        }
+        self.picture = picture::asked(statement, answer);
+        if let Some(picture) = &self.picture {
+            dom.set_text("asked-words", &picture.summary);
+            show_table(dom, "asked-table", &picture.table);
+        }
+        self.show_puttings(pairs, statement, answer);
+    }
+
+    /// The conditions that can be added, in words.
+    fn show_choices(&self, statement: &Statement) {
+        let Some(select) = self.dom.typed::<HtmlSelectElement>("sothat.choice") else {
+            return;
+        };
+        let chosen = select.selected_index();
+        select.set_text_content(None);
+        for choice in goal::choices(statement) {
+            if let Some(option) = self.dom.make("option", &choice.words) {
+                set(&option, "value", &choice.text);
+                append(&select, &option);
+            }
+        }
+        select.set_selected_index(chosen.max(0));
+    }
+
+    /// The conditions with the chosen one added.
+    pub(crate) fn with_choice(&self, pairs: &Pairs) -> Option<String> {
+        let select = self.dom.typed::<HtmlSelectElement>("sothat.choice")?;
+        let before = pairs.get("sothat").unwrap_or_default().trim();
+        let chosen = select.value();
+        Some(if before.is_empty() {
+            chosen
+        } else {
+            format!("{before},{chosen}")
+        })
+    }
+
+    /// A button for each answer.
+    fn show_puttings(&self, pairs: &Pairs, statement: &Statement, answer: &Asked) {
+        let dom = &self.dom;
+        let Some(list) = dom.element("asked-put") else {
+            return;
+        };
+        list.set_text_content(None);
+        for (place, putting) in answer.puttings().iter().enumerate() {
+            if Some(putting.value) == answer.slot.value() {
+                continue;
+            }
+            let Putting { value, .. } = putting;
+            let label = words::putting(statement, answer, *value);
+            if let Some(button) = dom.make("button", &label) {
+                set(&button, "type", "button");
+                set(&button, "data-put", &place.to_string());
+                append(&list, &button);
+            }
+        }
+        let nothing = pairs.get(&answer.slot.key).is_none();
+        dom.set_shown("asked-put", !nothing);
+    }
+}
+
+/// A clause as a sentence of its own.
+fn sentence_of(clause: &str) -> String {
+    if clause.is_empty() {
+        String::new()
+    } else {
+        format!("So that {clause}.")
+    }
+}
