@@ -8,6 +8,7 @@ use aftercount_core::asked::{Asked, Inquiry, Putting};
 use aftercount_core::pairs::Pairs;
 use aftercount_core::picture::{self, Picture};
 use aftercount_core::put::put;
+use aftercount_core::sides::Side;
 use aftercount_core::statement::Statement;
 use aftercount_core::words::asked as words;
 use aftercount_core::words::goal;
@@ -55,6 +56,11 @@ impl Asking {
         );
         self.dom.set_attribute("asked", "aria-busy", "true");
         self.show_choices(statement);
+        for side in Side::BOTH {
+            let id = format!("asked.{}.who", side.letter());
+            self.dom.set_text(&id, &statement.names[side]);
+        }
+        self.dom.set_shown("met-key", !statement.so_that.is_empty());
         let echo = goal::goals(statement, &statement.so_that);
         self.dom.set_text("sothat.echo", &sentence_of(&echo));
     }
