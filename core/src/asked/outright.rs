@@ -38,7 +38,8 @@ pub fn outright(engagement: &Engagement, place: Place) -> Option<f64> {
 /// What it costs to bring `side` down to its line.
 fn cost(engagement: &Engagement, equation: &StateEquation, side: Side) -> Option<Double> {
     let way = descent(engagement, side);
-    let cost = equation.cost_of(side, engagement.sides[side].start.into(), way);
+    let origin = equation.origin(side, engagement.sides[side].start.into());
+    let cost = equation.cost_from(side, &origin, way);
     (way.by > 0.0 && cost > 0.0 && !is_endless(cost)).then_some(cost)
 }
 
