@@ -69,6 +69,9 @@ pub fn rate_of_per_cent(pairs: &Pairs, side: Side, per_cent: &str) -> Result<Str
         return Err("must be 0 or more".into());
     }
     let statement = at_rate_one(pairs, side)?;
+    if !statement.has_base() {
+        return Err("it rests on a number in question that has no value now".into());
+    }
     let engagement = statement.engagement(&Values::new());
     let (name, enemy) = (&statement.names[side], &statement.names[side.enemy()]);
     if engagement.sides[side].fire.law == FireLaw::None {
@@ -197,7 +200,8 @@ mod tests {
                 "6",
                 "it rests on `y.start`: `4,000`: write 4000",
             ),
-            ("x.start=600&y.start=400?", "6", "it rests on `y.start`"),
+            ("x.start=600&y.start=?", "6", "it rests on a number in question"),
+            ("x.start=600&y.start=2..400", "6", "it rests on `y.start`"),
             ("x.start=600&y.start=400&x.fire=none", "6", "Side X has no fire"),
             (
                 "x.start=600&y.start=400&x.fire=search",
