@@ -3,6 +3,7 @@
 use aftercount_core::answer::{Answer, answer};
 use aftercount_core::fight::{Effort, fight};
 use aftercount_core::mark::text_mark;
+use aftercount_core::outcome::Outcome;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::statement::{Statement, Values};
 use aftercount_core::words::sentence::sentence;
@@ -15,18 +16,35 @@ use super::Shown;
 /// Where the text has problems.
 #[track_caller]
 pub fn native(link: &str) -> Shown {
-    let outcome = match answer(link) {
-        Answer::Outcome { outcome, .. } => outcome,
-        Answer::Problems(problems) => panic!("{link:?} cannot be worked out: {problems:?}"),
+    let shown = Shown {
+        state: "good".to_owned(),
+        settled: Some(text_mark(&Pairs::parse(link))),
+        ..Shown::default()
+    };
+    let Some(outcome) = outcome(answer(link), link) else {
+        return shown;
     };
     let breaks = serde_json::to_value(outcome.breaks).expect("an outcome can be written");
     Shown {
-        state: "good".to_owned(),
-        settled: Some(text_mark(&Pairs::parse(link))),
         breaks: breaks.as_str().unwrap_or_default().to_owned(),
         time: outcome.time,
         x_end: outcome.x.end,
         y_end: outcome.y.end,
+        ..shown
+    }
+}
+
+/// The outcome of an answer; `None` where it answers a question alone.
+#[track_caller]
+fn outcome(answer: Answer, link: &str) -> Option<Box<Outcome>> {
+    match answer {
+        Answer::Outcome { outcome, .. } => Some(outcome),
+        Answer::Asked {
+            outcome: Some(beside),
+            ..
+        } => outcome(*beside, link),
+        Answer::Asked { outcome: None, .. } => None,
+        Answer::Problems(problems) => panic!("{link:?} cannot be worked out: {problems:?}"),
     }
 }
 

@@ -7,7 +7,7 @@ use serde_json::{Value, json};
 use super::{Browser, page_url};
 
 /// The outcome as the page states it of itself, at full precision.
-#[derive(Clone, Debug, PartialEq)]
+#[derive(Clone, Debug, Default, PartialEq)]
 pub struct Shown {
     /// `good`, `stale` or `empty`.
     pub state: String,
