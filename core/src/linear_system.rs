@@ -23,6 +23,8 @@ pub struct LinearSystem {
     /// The start and its first derivative, taken apart along the eigenvectors; unused where they nearly agree.
     along: [Both<f64>; 2],
     first: [Both<f64>; 2],
+    /// The same for what comes in.
+    coming: [Both<f64>; 2],
 }
 
 /// Which integral of e^(λt) from 0: none, one, two.
@@ -62,6 +64,7 @@ impl LinearSystem {
             delta: delta.into(),
             along: Default::default(),
             first: Default::default(),
+            coming: Default::default(),
         };
         if system.delta > 0.0 {
             system.along = system.taken_apart(Both::of(|side| Double::from(start[side])), [high, low]);
@@ -71,6 +74,7 @@ impl LinearSystem {
                     - Double::product(by_enemy[side], start[side.enemy()])
             });
             system.first = system.taken_apart(first, [high, low]);
+            system.coming = system.taken_apart(Both::of(|side| Double::from(inflow[side])), [high, low]);
         }
         system
     }
@@ -211,11 +215,16 @@ impl LinearSystem {
         self.inflow[side] == 0.0 && self.by_enemy[side] == 0.0
     }
 
-    /// The strengths summed over time up to `t`.
+    /// The strengths summed over time up to `t`: of the start, and of what comes in.
+    ///
+    /// Not the start times `t` and its change: long after a side has faded nothing would be left of their digits.
     pub fn integrals(&self, t: f64) -> Both<f64> {
-        let first = self.first_derivative();
-        let twice = self.function(Order::Twice, t, first, &self.first);
-        Both::of(|side| self.start[side] * t + twice[side])
+        let once = self.function(Order::Once, t, self.start, &self.along);
+        if self.inflow == Both::default() {
+            return once;
+        }
+        let twice = self.function(Order::Twice, t, self.inflow, &self.coming);
+        Both::of(|side| once[side] + twice[side])
     }
 
     /// The derivatives of the strengths at the time `t`.
@@ -243,7 +252,7 @@ impl LinearSystem {
             // At a steady pace.
             let pace = rising - self.inflow[side];
             let time = f64::from(above) / pace;
-            return (pace > 0.0 && time <= horizon).then_some(time);
+            return (pace > 0.0 && time <= horizon && time.is_finite()).then_some(time);
         }
         // No side is ever stronger than its start and all that flows in: at the pace of that most do not get near the line.
         let most = |side: Side| self.start[side] + self.inflow[side].max(0.0) * horizon;
@@ -321,7 +330,14 @@ impl LinearSystem {
         slope: impl Fn(f64) -> f64,
     ) -> f64 {
         if horizon.is_finite() {
-            return horizon;
+            // Long after all has decayed, or grown beyond any strength, a double holds nothing of it, not even which way
+            // it went.
+            let [high, low] = self.eigenvalues;
+            return match high {
+                _ if high > 0.0 => horizon.min(from + 600.0 / high),
+                _ if high < 0.0 && low < 0.0 => horizon.min(from + 8.0 * self.settled()),
+                _ => horizon,
+            };
         }
         let first = self.first_derivative();
         let scales = Side::BOTH.map(|side| self.start[side] / first[side].abs());

@@ -165,10 +165,11 @@ impl Outcome {
     /// The ratio of Y's losses to X's, and the ratio of the fractions that they are.
     pub(crate) fn exchange_ratios(sides: &Both<SideOutcome>) -> (Option<f64>, Option<f64>) {
         let by_enemy = Both::of(|side| sides[side].losses.fire + sides[side].losses.support);
-        let fraction = Both {
-            x: by_enemy.x / sides.x.committed,
-            y: by_enemy.y / sides.y.committed,
-        };
+        // Of nobody committed nobody is lost.
+        let fraction = Both::of(|side| match by_enemy[side] {
+            0.0 => 0.0,
+            lost => lost / sides[side].committed,
+        });
         let ratio = |lost: Both<f64>| (lost.x > 0.0).then(|| lost.y / lost.x);
         (ratio(by_enemy), ratio(fraction))
     }

@@ -126,6 +126,12 @@ impl Work {
 /// How nearly the integrator finds strengths that are polished afterwards.
 const GUESS: f64 = 1e-9;
 
+/// The part of its start at which a side has faded, for pictures.
+const FADED: f64 = 1e-200;
+
+/// The part of a strength whose change a picture does not show, nor a table to six digits.
+const RESTS: f64 = 1e-12;
+
 /// A stretch of time in which nothing is added and no rate changes.
 #[derive(Clone, Debug)]
 pub struct Piece {
@@ -287,15 +293,23 @@ impl Piece {
             Motion::Linear(motion) => motion.point_at(t),
             Motion::Ambush(motion) => motion.point_at(t),
             Motion::AlongOrbit => {
-                let course = Course::under(self.start, &self.conditions, t, GUESS, |_| false);
-                self.count(Work {
-                    evaluations: 0,
-                    steps: course.steps(),
-                });
-                let near = course.strengths_at(t.min(course.until()));
+                let near = match &self.course {
+                    Some(course) => course.strengths_at(t.min(course.until())),
+                    None => self.guess(t),
+                };
                 AlongOrbit { piece: self }.point_at(t, near)
             }
         }
+    }
+
+    /// Strengths near those at the time `t`.
+    fn guess(&self, t: f64) -> Both<f64> {
+        let course = Course::under(self.start, &self.conditions, t, GUESS, |_| false);
+        self.count(Work {
+            evaluations: 0,
+            steps: course.steps(),
+        });
+        course.strengths_at(t.min(course.until()))
     }
 
     fn follow(&self, until: f64) -> Course {
@@ -370,13 +384,35 @@ impl Piece {
             let support = self.conditions.support[enemy];
             let support = support.area * exposure + support.aimed * t;
             let wastage = self.conditions.wastage[side] * exposure;
-            Losses {
+            let losses = Losses {
                 fire: by_fire,
                 support,
                 wastage,
                 all: by_fire + support + wastage,
+            };
+            if losses.all.is_finite() {
+                losses
+            } else {
+                self.losses_in_proportion(side, point.fallen[side])
             }
         })
+    }
+
+    /// What `side` lost, shared among the causes as at the start: for where its sums over time have more decades than a
+    /// double holds.
+    fn losses_in_proportion(&self, side: Side, all: f64) -> Losses {
+        let enemy = side.enemy();
+        let (start, support) = (self.start[side], self.conditions.support[enemy]);
+        let by_fire = self.fire[enemy].losses_per_time(self.start[enemy], start);
+        let support = support.area * start + support.aimed;
+        let wastage = self.conditions.wastage[side] * start;
+        let part = |rate: f64| all * (rate / (by_fire + support + wastage));
+        Losses {
+            fire: part(by_fire),
+            support: part(support),
+            wastage: part(wastage),
+            all,
+        }
     }
 
     /// Prepares strengths at any time up to `until`, counted from the beginning of the piece.
@@ -397,8 +433,29 @@ impl Piece {
     pub fn strengths_at(&self, t: f64) -> Both<f64> {
         match &self.course {
             Some(course) if t <= course.until() => course.strengths_at(t),
-            _ => self.point_at(t).left,
+            Some(course) => self.after(course, t).unwrap_or_else(|| self.point_at(t).left),
+            None => self.point_at(t).left,
         }
+    }
+
+    /// The strengths at the time `t` after the end of `course`, where one side has faded and the other goes on by itself, or
+    /// hardly at all; `None` where the fire still counts.
+    fn after(&self, course: &Course, t: f64) -> Option<Both<f64>> {
+        let (end, mut left) = (course.until(), course.strengths_at(course.until()));
+        let faded = Side::BOTH
+            .into_iter()
+            .find(|side| left[*side] <= FADED * self.start[*side])?;
+        let other = faded.enemy();
+        let moves = course.slopes_at(end)[other].abs() * (t - end);
+        if moves > RESTS * left[other] {
+            let fire = &self.fire[faded];
+            let counts = fire.takes_effect() && fire.shooters().exponent != 0.0;
+            let steady = if fire.takes_effect() { fire.rate } else { 0.0 } + self.besides[other];
+            (!counts).then_some(())?;
+            let motion = Alone::new(other, left[other], steady, self.per_target[other]);
+            left[other] = f64::from(motion.left_at(t - end)).max(0.0);
+        }
+        Some(left)
     }
 
     /// Who is left when both fight to the last: whoever costs more to bring down. `None` where nothing has any effect,

@@ -192,7 +192,12 @@ fn growth_at(engagement: &Engagement, side: Side, time: f64) -> Factor {
     if reach.shape == 0.0 {
         return Factor::Full;
     }
-    let value = if time == arrives { 0.0 } else { value };
+    // Next to the moment at which it comes into reach only rounding is left of the value.
+    let value = if time == arrives || value <= 4.0 * f64::EPSILON {
+        0.0
+    } else {
+        value
+    };
     Factor::Growing(Growth {
         value,
         slope: closing.speed / reach.reach,

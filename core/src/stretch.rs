@@ -14,6 +14,9 @@ use crate::state::{Descent, StateEquation, TIE, is_endless};
 /// The part of its start at which a side to which nobody comes is gone.
 const GONE: f64 = 1e-200;
 
+/// A strength below which the integrator does not go on: what is left is nobody.
+const NOBODY: f64 = 1e-279;
+
 /// How a stretch is solved.
 #[derive(Clone, Debug)]
 enum How {
@@ -330,7 +333,9 @@ impl Stretch {
     /// Where the integrator's course ends with one side gone: the strengths then, and how the other goes on.
     fn alone(&self, course: &Course) -> Option<(Both<f64>, LinearSystem)> {
         let left = course.strengths_at(course.until());
-        let gone = |side: Side| left[side] <= GONE * self.start[side] && self.conditions.flow[side] == 0.0;
+        let gone = |side: Side| {
+            left[side] <= (GONE * self.start[side]).max(NOBODY) && self.conditions.flow[side] == 0.0
+        };
         Side::BOTH.into_iter().any(gone).then_some(())?;
         let start = Both::of(|side| if gone(side) { 0.0 } else { left[side] });
         let system = self.conditions.without_fire().linear(start)?;
@@ -573,8 +578,36 @@ fn piece_limit(piece: &Piece) -> (Ended, Both<Option<f64>>, Both<Losses>) {
             .all(|side| now[side] <= point.left[side] + 1e-15 * piece.start[side])
     };
     let course = Course::under(piece.start, piece.conditions(), f64::INFINITY, TOLERANCE, faded);
-    let losses = course.losses_at(course.until());
+    let (left, so_far) = (
+        course.strengths_at(course.until()),
+        course.losses_at(course.until()),
+    );
+    let losses = Both::of(|side| {
+        let rest = (left[side] - point.left[side]).max(0.0);
+        sum_of(&so_far[side], &besides_the_fire(piece.conditions(), side, rest))
+    });
     (Ended::Limit, Both::of(|side| Some(point.left[side])), losses)
+}
+
+/// What a side loses of itself without the enemy, who is gone, by the causes.
+fn besides_the_fire(conditions: &Conditions, side: Side, lost: f64) -> Losses {
+    let part = conditions.part_lost(side);
+    let wastage = if part > 0.0 {
+        lost * (conditions.wastage[side] / part)
+    } else {
+        0.0
+    };
+    let support = if part > 0.0 || conditions.steadily_lost(side) > 0.0 {
+        lost - wastage
+    } else {
+        0.0
+    };
+    Losses {
+        fire: 0.0,
+        support,
+        wastage,
+        all: support + wastage,
+    }
 }
 
 /// The losses of a linear system by their causes, from the strengths summed over time.

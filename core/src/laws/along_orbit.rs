@@ -83,7 +83,7 @@ impl AlongOrbit<'_> {
     /// A rate of loss, which depends on the strengths alone, summed over time up to `point`, which is reached with at
     /// least one side left.
     pub fn summed(&self, point: &OrbitPoint, rate_of: impl Fn(Both<f64>) -> f64) -> Integral {
-        let stretch = self.stretch(point);
+        let stretch = self.stretch(&self.last_with_digits(point));
         let (rate, besides) = self.losses(stretch.along);
         let shooters = self.piece.fire[stretch.along.enemy()].shooters();
         self.along(&stretch, |own, fallen, above| {
@@ -92,6 +92,20 @@ impl AlongOrbit<'_> {
             strengths[stretch.along.enemy()] = other;
             rate_of(strengths) / (rate * shooters.at(other) + besides)
         })
+    }
+
+    /// The point itself, or where a side only fades and has faded below the least double, the last that has digits: beyond
+    /// it nothing is lost any more.
+    fn last_with_digits(&self, point: &OrbitPoint) -> OrbitPoint {
+        let piece = self.piece;
+        let faded = |side: &Side| {
+            let fades = piece.per_target[*side][0].exponent <= -1.0;
+            fades && point.left[*side] < LEAST && piece.lasts_until(*side, LEAST.into())
+        };
+        match Side::BOTH.into_iter().find(faded) {
+            Some(side) => piece.point_with(side, LEAST.into()),
+            None => *point,
+        }
     }
 
     fn stretch(&self, point: &OrbitPoint) -> Stretch<'_> {
@@ -234,13 +248,14 @@ impl AlongOrbit<'_> {
             }
             // The steps double their digits, so that one more would be lost in the rounding.
             let is_last = step.abs() <= 1e-10 * span;
+            let before = span;
             span = if is_last || (next > low && next < high) {
                 next
             } else {
                 0.5 * (low + high)
             };
             point = at(span);
-            if is_last {
+            if is_last || span == before {
                 break;
             }
         }

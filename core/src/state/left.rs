@@ -85,6 +85,9 @@ fn left_of_quadratic(first: &Term, second: &Term, from: Double, area: Double) ->
     }
 }
 
+/// Newton's steps before every other one halves the bracket.
+const FAST: u32 = 12;
+
 /// What is left where S/T is a sum of powers: one root-find.
 ///
 /// The sum grows with λ; Newton's steps are kept within a bracket, then one from a residual in double-double carries the
@@ -107,9 +110,15 @@ fn left_of_many(terms: &[Term], origin: &Origin, area: Double) -> Double {
         span = span.clamp(0.0, high);
     }
     let mut left = start * libm::exp(-span);
-    for _ in 0..200 {
+    for tried in 0..200 {
         let off = short(left);
-        let step = f64::from(off) / (slope(left) * left);
+        let pace = slope(left) * left;
+        // Next to nothing the slope may be more than a double holds: then only the sign of what is missing counts.
+        let step = if pace.is_finite() {
+            f64::from(off) / pace
+        } else {
+            f64::from(off) * f64::INFINITY
+        };
         if step.abs() <= 1e-14 * (1.0 + span) {
             // One step more, in full, from so near the root doubles its digits.
             return Double::sum(left, f64::from(off) / slope(left));
@@ -120,7 +129,9 @@ fn left_of_many(terms: &[Term], origin: &Origin, area: Double) -> Double {
             low = span
         }
         let next = span - step;
-        span = if next > low && next < high {
+        // From far away, where the sum grows without bound towards nothing, each step goes only a little way.
+        let is_slow = tried > FAST && tried % 2 == 0;
+        span = if next > low && next < high && !is_slow {
             next
         } else {
             0.5 * (low + high)
@@ -160,4 +171,25 @@ fn span_of_many(terms: &[Term], start: f64, area: f64) -> f64 {
         }
     }
     span
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// A factor that grows without bound towards nothing, as where a side's fire feeds on its number: the search begins so
+    /// far away that its slope is more than a double holds.
+    #[test]
+    fn what_is_left_is_found_where_the_cost_is_without_bound() {
+        let terms = [(2.5, 77_234.0), (-0.5, 2.13)].map(|(order, weight)| Term {
+            order: order.into(),
+            weight: weight.into(),
+        });
+        for to in [2.23e-12, 1e-100, 3e-7] {
+            let origin = Origin::new(Double::from(4.57e-7), &terms);
+            let down = Descent::between(4.57e-7, to.into());
+            let left = left_of_many(&terms, &origin, cost(&terms, &origin, down));
+            assert!(f64::from((left - to) / to).abs() < 1e-15, "{to:e}: {left:?}");
+        }
+    }
 }
