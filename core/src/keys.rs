@@ -539,7 +539,7 @@ pub fn is_numbered(name: &str) -> bool {
 /// The known key that `name` most likely means, if any is near: the one whose label begins so, or is so without its
 /// blanks, as `x.strength` and `y.breakpoint`; else the one that is spelt most like it.
 pub fn nearest(name: &str) -> Option<String> {
-    let lower = name.to_lowercase();
+    let lower = name.to_ascii_lowercase();
     labelled(&lower).or_else(|| spelt_alike(&lower))
 }
 
@@ -549,7 +549,7 @@ fn labelled(lower: &str) -> Option<String> {
         _ => ("x", lower),
     };
     let means = |key: &&Key| {
-        let label = key.label.to_lowercase();
+        let label = key.label.to_ascii_lowercase();
         label.split([' ', ',']).next() == Some(bare) || label.replace(' ', "") == bare
     };
     KEYS.iter().find(means).map(|key| key.on(letter))

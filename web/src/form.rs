@@ -63,7 +63,7 @@ pub(crate) fn name_of(pairs: &Pairs, letter: &str) -> String {
         .filter(|name| !name.is_empty());
     match written {
         Some(name) => seen(name),
-        None => format!("Side {}", letter.to_uppercase()),
+        None => format!("Side {}", letter.to_ascii_uppercase()),
     }
 }
 

@@ -419,7 +419,7 @@ fn label(row: &Key, name: &str, names: &[String; 2]) -> String {
     } else {
         &names[1]
     };
-    format!("{side}: {}", row.label.to_lowercase())
+    format!("{side}: {}", row.label.to_ascii_lowercase())
 }
 
 /// What a change is measured in, by the law of fire that holds in its phase.

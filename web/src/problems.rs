@@ -192,7 +192,7 @@ fn label(pairs: &Pairs, key: &str) -> String {
     let label = keys::find(key).map_or(key, |row| row.label);
     match key.split_once('.') {
         Some((letter @ ("x" | "y"), _)) => {
-            format!("{}: {}", form::name_of(pairs, letter), label.to_lowercase())
+            format!("{}: {}", form::name_of(pairs, letter), label.to_ascii_lowercase())
         }
         _ => label.to_owned(),
     }
