@@ -26,6 +26,7 @@ pub mod linear_system;
 pub mod mark;
 pub mod number;
 pub mod orbit_point;
+pub mod order;
 pub mod outcome;
 pub mod pairs;
 pub mod passing;

@@ -1,5 +1,6 @@
 //! The text mark: a short fingerprint of the engagement's text, so that two papers can be matched.
 
+use crate::order::sort_by;
 use crate::pairs::{Pairs, encode};
 
 /// Letters and digits that are not mistaken for one another in print (Crockford's base 32).
@@ -15,7 +16,7 @@ pub fn text_mark(pairs: &Pairs) -> String {
         .filter(|(key, text)| !matches!(*key, "v" | "view" | "paper") && !text.is_empty())
         .map(|(key, text)| format!("{}={}", encode(key), encode(text)))
         .collect();
-    lines.sort();
+    sort_by(&mut lines, String::cmp);
     let hash = fnv1a(lines.join("&").as_bytes());
     // The high bits are the best mixed.
     let letters = (0..8).map(|place| LETTERS[(hash >> (59 - 5 * place)) as usize & 31] as char);

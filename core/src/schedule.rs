@@ -1,6 +1,7 @@
 //! What happens when: the instants of an engagement, and what holds between them.
 
 use crate::conditions::{Conditions, Growth};
+use crate::order::sort_by;
 use crate::sides::{Both, Side};
 use crate::terms::{Changes, Engagement, Fire, Flow};
 
@@ -25,7 +26,7 @@ pub fn instants(engagement: &Engagement) -> Vec<Instant> {
         return vec![instant(engagement, &[], 0.0)];
     }
     let mut phases: Vec<usize> = (0..engagement.phases.len()).collect();
-    phases.sort_by(|a, b| {
+    sort_by(&mut phases, |a, b| {
         let key = |place: &usize| (engagement.phases[*place].from, engagement.phases[*place].number);
         key(a).partial_cmp(&key(b)).unwrap_or(std::cmp::Ordering::Equal)
     });
@@ -100,7 +101,7 @@ fn times(engagement: &Engagement) -> Vec<f64> {
         times.extend(ranges.map(|range| (closing.range - range) / closing.speed));
     }
     times.retain(|time| *time >= 0.0);
-    times.sort_by(f64::total_cmp);
+    sort_by(&mut times, f64::total_cmp);
     times.dedup();
     times
 }

@@ -5,6 +5,7 @@ use crate::dom::{Dom, append, set};
 use crate::form;
 use aftercount_core::keys::{self, KEYS, Key, Place};
 use aftercount_core::laws::FireLaw;
+use aftercount_core::order::sort_by;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::sides::Side;
 use aftercount_core::statement::TimeUnit;
@@ -448,7 +449,7 @@ fn law_in(pairs: &Pairs, number: u8, letter: &str) -> Option<FireLaw> {
         .filter_map(|number| Some((from(number)?, number)))
         .filter(|other| *other <= here)
         .collect();
-    before.sort_by(|a, b| b.0.total_cmp(&a.0).then(b.1.cmp(&a.1)));
+    sort_by(&mut before, |a, b| b.0.total_cmp(&a.0).then(b.1.cmp(&a.1)));
     let keys = before
         .into_iter()
         .map(|(_, number)| format!("phase{number}.{letter}.fire"));

@@ -2,6 +2,7 @@
 
 use crate::draw::Layout;
 use crate::outcome::Good;
+use aftercount_core::order::sort_by;
 use aftercount_core::picture::Role;
 
 /// How many small steps one tick of the time axis has.
@@ -113,6 +114,6 @@ fn events(good: &Good) -> Vec<f64> {
         .chain(ends)
         .collect();
     events.retain(|event| *event <= last);
-    events.sort_by(f64::total_cmp);
+    sort_by(&mut events, f64::total_cmp);
     events
 }

@@ -8,6 +8,7 @@ use super::story::{Class, Sample};
 use crate::family::{Change, Family, Scan, Span, points};
 use crate::fight::{Effort, fight};
 use crate::goals::Goal;
+use crate::order::sort_by;
 use crate::pairs::Pairs;
 use crate::slots::{Slot, slots};
 use crate::statement::{Statement, Values};
@@ -171,7 +172,7 @@ impl Inquiry {
                 )
             })
             .collect();
-        dips.sort_by(|a, b| a.0.total_cmp(&b.0));
+        sort_by(&mut dips, |a, b| a.0.total_cmp(&b.0));
         dips.truncate(MOST_DIPS);
         dips.into_iter().map(|(_, dip)| dip).collect()
     }
@@ -219,7 +220,7 @@ impl Inquiry {
 
     fn sorted(&self) -> Vec<Sample> {
         let mut sorted = self.samples.clone();
-        sorted.sort_by(|a, b| a.value.total_cmp(&b.value));
+        sort_by(&mut sorted, |a, b| a.value.total_cmp(&b.value));
         sorted
     }
 

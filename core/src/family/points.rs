@@ -1,5 +1,7 @@
 //! The values at which a number is first looked at: even steps, and even ratios, so that small and large scales are seen.
 
+use crate::order::sort_by;
+
 /// A stretch of values, both ends included.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Span {
@@ -41,7 +43,7 @@ pub fn points(span: Span, even: u32, besides: &[f64]) -> Vec<f64> {
     }
     points.extend_from_slice(besides);
     points.retain(|point| span.has(*point));
-    points.sort_by(f64::total_cmp);
+    sort_by(&mut points, f64::total_cmp);
     points.dedup();
     points
 }

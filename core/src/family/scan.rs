@@ -1,5 +1,7 @@
 //! Every change of a class along one number: scanned at given points, then halved down to the change itself.
 
+use crate::order::sort_by;
+
 /// Where the class changes between two values that are as near to each other as was asked.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Change<C> {
@@ -101,7 +103,7 @@ impl<C: Copy + PartialEq> Scan<C> {
     /// The changes found so far, in order.
     pub fn changes(&self) -> Vec<Change<C>> {
         let mut changes = self.changes.clone();
-        changes.sort_by(|a, b| a.below.total_cmp(&b.below));
+        sort_by(&mut changes, |a, b| a.below.total_cmp(&b.below));
         changes
     }
 

@@ -8,6 +8,7 @@ use super::finding::Finding;
 use super::times::Times;
 use crate::caution;
 use crate::mark::text_mark;
+use crate::order::sort_by;
 use crate::problem::seen;
 use crate::sides::{Both, Side};
 use crate::stretch::Stretch;
@@ -67,7 +68,7 @@ fn rows(trajectory: &Trajectory, moments: &[Moment], request: &Request) -> Vec<R
         // Where it ends is what most want to know.
         times.extend(trajectory.ends());
     }
-    times.sort_by(f64::total_cmp);
+    sort_by(&mut times, f64::total_cmp);
     times.dedup();
     let mut rows = Vec::new();
     for time in times {

@@ -1,6 +1,7 @@
 //! The times for which a trajectory is written out: at a step, from a list, or at what happens.
 
 use crate::number;
+use crate::order::sort_by;
 use crate::trajectory::Trajectory;
 
 /// The most rows that are written.
@@ -67,7 +68,7 @@ impl Times {
             Times::At(times) => times.clone(),
             Times::Events => Vec::new(),
         };
-        times.sort_by(f64::total_cmp);
+        sort_by(&mut times, f64::total_cmp);
         times.dedup();
         times
     }

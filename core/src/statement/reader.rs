@@ -3,6 +3,7 @@
 use super::name::Name;
 use super::wrong::{key_problem, of_separator, read_quantity, within_limits, without_escape};
 use crate::keys::{self, Kind};
+use crate::order::sort_by;
 use crate::pairs::{Pairs, trimmed};
 use crate::problem::{Problem, is_hidden};
 use crate::quantity::Quantity;
@@ -41,10 +42,10 @@ impl<'a> Reader<'a> {
     }
 
     pub(super) fn into_problems(mut self) -> Vec<Problem> {
-        self.questions.sort_by_key(|(place, _)| *place);
+        sort_by(&mut self.questions, |a, b| a.0.cmp(&b.0));
         self.problems
             .extend(self.questions.into_iter().skip(MOST_QUESTIONS));
-        self.problems.sort_by_key(|(place, _)| *place);
+        sort_by(&mut self.problems, |a, b| a.0.cmp(&b.0));
         self.problems.into_iter().map(|(_, problem)| problem).collect()
     }
 
