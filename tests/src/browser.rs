@@ -14,6 +14,7 @@ mod input;
 mod keyboard;
 mod native;
 mod sheet;
+mod text;
 mod watch;
 
 use std::path::PathBuf;

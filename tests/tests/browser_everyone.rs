@@ -105,3 +105,66 @@ fn axe_finds_nothing_in_a_frame() {
     assert!(found.is_empty(), "{}", found.join("\n"));
     browser.assert_clean();
 }
+
+#[test]
+fn no_text_runs_over_other_text() {
+    let browser = Browser::start();
+    let mut found = Vec::new();
+    for screen in [
+        Screen::SMALL,
+        Screen {
+            width: 768,
+            ..Screen::DESK
+        },
+        Screen::DESK,
+    ] {
+        browser.screen(screen);
+        for (name, link) in [("demo", DEMO), ("full", FULL)] {
+            browser.open(link);
+            browser.settle(link);
+            browser.script(UNFOLD, vec![]);
+            found.extend(browser.text_that_lies_badly(&format!("{name}, {} px", screen.width)));
+        }
+        browser.open(WRONG);
+        browser.wait_state("empty");
+        browser.script(UNFOLD, vec![]);
+        found.extend(browser.text_that_lies_badly(&format!("problems, {} px", screen.width)));
+    }
+    assert!(found.is_empty(), "{}", found.join("\n"));
+    browser.assert_clean();
+}
+
+#[test]
+fn text_twice_as_large_has_room() {
+    let mut found = Vec::new();
+    for for_every_page in [true, false] {
+        let browser = Browser::start();
+        for screen in [Screen::SMALL, Screen::DESK] {
+            browser.screen(screen);
+            for (name, link) in [("demo", DEMO), ("full", FULL)] {
+                if for_every_page {
+                    browser.text_size(2.0, true);
+                }
+                browser.open(link);
+                browser.settle(link);
+                if !for_every_page {
+                    browser.text_size(2.0, false);
+                }
+                let what = format!(
+                    "large-{name}-{}-{}",
+                    screen.width,
+                    if for_every_page { "set" } else { "zoomed" }
+                );
+                browser.script(UNFOLD, vec![]);
+                found.extend(browser.text_that_lies_badly(&what));
+                let size = browser.script(
+                    "return getComputedStyle(document.documentElement).fontSize;",
+                    vec![],
+                );
+                assert_eq!(size, "32px", "{what}");
+            }
+        }
+        browser.assert_clean();
+    }
+    assert!(found.is_empty(), "{}", found.join("\n"));
+}

@@ -10,12 +10,18 @@ use web_sys::{CanvasRenderingContext2d, HtmlCanvasElement};
 const LEAST_SCALE: f64 = 2.0;
 /// The most: beyond that memory grows and nothing is seen of it.
 const MOST_SCALE: f64 = 4.0;
+/// The usual size of the page's text, in CSS pixels.
+const USUAL_TEXT: f64 = 16.0;
+/// A picture whose text grows must keep room for its lines: the least width that is left, in pixels of the usual text.
+const LEAST_WIDTH: f64 = 230.0;
 
 /// A backend on a canvas of the page, cleared.
 pub(crate) struct Canvas {
     pub(crate) backend: Measured<CanvasBackend, ByContext>,
     /// Backing pixels for each CSS pixel.
     pub(crate) scale: f64,
+    /// How many times the usual size words, marks and lines should have, as readers set the size of their text.
+    pub(crate) zoom: f64,
 }
 
 /// Measures by the canvas' own context: no element is added, so the policy has nothing to block.
@@ -53,7 +59,19 @@ pub(crate) fn prepare(dom: &Dom, id: &str) -> Option<Canvas> {
         canvas.set_height(size.1);
     }
     let backend = Measured::new(CanvasBackend::with_canvas_object(canvas)?, ByContext(context));
-    Some(Canvas { backend, scale })
+    Some(Canvas {
+        backend,
+        scale,
+        zoom: (text_size(dom) / USUAL_TEXT).min(width / LEAST_WIDTH).max(1.0),
+    })
+}
+
+/// The size of the page's text, in CSS pixels.
+fn text_size(dom: &Dom) -> f64 {
+    let style = dom.window.get_computed_style(&dom.root).ok().flatten();
+    let size = style.and_then(|style| style.get_property_value("font-size").ok());
+    size.and_then(|size| size.trim_end_matches("px").parse().ok())
+        .unwrap_or(USUAL_TEXT)
 }
 
 /// A canvas that is not on the page, `size` CSS pixels large, for a picture that is passed on.

@@ -59,9 +59,14 @@ impl Plates {
         let (Some(picture), Some(mut canvas)) = (picture, canvas::prepare(&self.dom, id)) else {
             return Ok(None);
         };
-        draw::draw(&mut canvas.backend, canvas.scale, &self.ink, picture)
-            .map(Some)
-            .map_err(in_words)
+        draw::draw(
+            &mut canvas.backend,
+            canvas.scale * canvas.zoom,
+            &self.ink,
+            picture,
+        )
+        .map(|field| Some(field.times(canvas.zoom)))
+        .map_err(in_words)
     }
 
     /// A key on the reading line; whether it was one of its keys.

@@ -33,6 +33,18 @@ impl Layout {
         (self.x(x), self.y(y))
     }
 
+    /// The same field where everything is so many times as large.
+    #[must_use]
+    pub fn times(&self, zoom: f64) -> Layout {
+        Layout {
+            left: self.left * zoom,
+            top: self.top * zoom,
+            right: self.right * zoom,
+            foot: self.foot * zoom,
+            ..*self
+        }
+    }
+
     /// The value across at a pixel, kept inside the field.
     pub fn value_at(&self, pixel: f64) -> f64 {
         let part = ((pixel - self.left) / (self.right - self.left)).clamp(0.0, 1.0);
@@ -58,5 +70,8 @@ mod tests {
         assert_eq!(field.value_at(90.0), 2.0);
         assert_eq!(field.value_at(-5.0), 0.0);
         assert_eq!(field.value_at(1e9), 8.0);
+        let larger = field.times(2.0);
+        assert_eq!(larger.place((2.0, 250.0)), (180.0, 120.0));
+        assert_eq!(larger.value_at(180.0), 2.0);
     }
 }
