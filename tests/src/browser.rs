@@ -194,6 +194,15 @@ impl Browser {
         );
     }
 
+    /// Sets several of what the system prefers at once.
+    pub fn prefers_all(&self, features: &[(&str, &str)]) {
+        let features: Vec<Value> = features
+            .iter()
+            .map(|(name, value)| json!({"name": name, "value": value}))
+            .collect();
+        self.devtools("Emulation.setEmulatedMedia", json!({"features": features}));
+    }
+
     /// Takes the whole page's picture to `screens/NAME.png` in the target directory, for a person to look at.
     pub fn picture(&self, name: &str) {
         let taken = self.devtools(

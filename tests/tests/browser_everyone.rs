@@ -168,3 +168,126 @@ fn text_twice_as_large_has_room() {
     }
     assert!(found.is_empty(), "{}", found.join("\n"));
 }
+
+/// What is pressed, dragged or typed in on a small screen is large enough for a finger.
+#[test]
+fn a_finger_hits_what_it_means() {
+    let browser = Browser::start();
+    browser.screen(Screen::SMALL);
+    for link in [DEMO, FULL] {
+        browser.open(link);
+        browser.settle(link);
+        browser.script(UNFOLD, vec![]);
+        let script = "
+            const small = [];
+            for (const part of document.querySelectorAll('button, input, select, textarea, summary, [role=slider]')) {
+              const box = part.getBoundingClientRect();
+              if (part.checkVisibility() && (box.height < 44 || box.width < 32))
+                small.push(`${part.tagName}#${part.id} ${part.innerText} ${box.width} x ${box.height}`);
+            }
+            return small;";
+        assert_eq!(browser.script(script, vec![]), serde_json::json!([]));
+    }
+    browser.assert_clean();
+}
+
+/// The sentence stays in sight wherever one is in the form, and a row of the figures is a card.
+#[test]
+fn on_a_small_screen_the_sentence_stays_and_tables_are_cards() {
+    let browser = Browser::start();
+    browser.screen(Screen::SMALL);
+    browser.open(DEMO);
+    browser.settle(DEMO);
+    for field in ["x.start", "y.break", "note"] {
+        let script = "document.getElementById(arguments[0]).scrollIntoView();
+            const said = document.getElementById('sentence').getBoundingClientRect();
+            return said.top >= 0 && said.bottom < innerHeight / 2;";
+        assert_eq!(browser.script(script, vec![field.into()]), true, "at {field}");
+    }
+    let cards = "const rows = [...document.querySelectorAll('#figures tbody tr')];
+        return rows.length > 5 && rows.every((row) => {
+          const parts = [...row.children].map((part) => part.getBoundingClientRect());
+          return parts.every((part, at) => at === 0 || (part.top >= parts[at - 1].bottom - 1 && part.left === parts[0].left));
+        });";
+    assert_eq!(browser.script(cards, vec![]), true);
+    let spoken =
+        "return getComputedStyle(document.querySelector('#figures td[data-side]'), '::before').content;";
+    assert_eq!(browser.script(spoken, vec![]), "\"Ondrel: \"");
+    browser.assert_clean();
+}
+
+/// Nothing moves by itself, so there is nothing to take out where a reader wants no movement.
+#[test]
+fn nothing_moves_by_itself() {
+    let browser = Browser::start();
+    for wish in ["no-preference", "reduce"] {
+        browser.prefers("prefers-reduced-motion", wish);
+        browser.open(DEMO);
+        browser.settle(DEMO);
+        browser.write("x.start", "700");
+        browser.click(".more > summary");
+        let script = "const moves = (style) => [style.transitionDuration, style.animationDuration].some((time) => parseFloat(time) > 0)
+              || style.scrollBehavior === 'smooth';
+            const parts = [...document.querySelectorAll('*')].filter((part) => moves(getComputedStyle(part)));
+            return [document.getAnimations().length, ...parts.map((part) => part.tagName + '#' + part.id)];";
+        assert_eq!(browser.script(script, vec![]), serde_json::json!([0]), "{wish}");
+    }
+    browser.assert_clean();
+}
+
+/// With the system's own few colours, states differ by more than colour: by a dash, a rule or a word.
+#[test]
+fn forced_colours_tell_states_apart() {
+    let browser = Browser::start();
+    for scheme in ["light", "dark"] {
+        browser.prefers_all(&[("forced-colors", "active"), ("prefers-color-scheme", scheme)]);
+        browser.open(DEMO);
+        browser.settle(DEMO);
+        let drawn = browser.script(INK_IN_PICTURES, vec![]);
+        for picture in drawn.as_array().expect("two pictures") {
+            let (ground, strokes) = (&picture[0], picture[1].as_u64().unwrap_or_default());
+            assert_eq!(*ground, true, "{scheme}: the ground is the system's");
+            assert!(
+                strokes > 2000,
+                "{scheme}: only {strokes} dots in the colour of text"
+            );
+        }
+        let off = "const look = (id) => getComputedStyle(document.getElementById(id));
+            return look('undo').color !== look('blank').color && look('undo').borderBottomStyle === 'dotted';";
+        assert_eq!(
+            browser.script(off, vec![]),
+            true,
+            "{scheme}: what cannot be pressed"
+        );
+        browser.picture(&format!("forced-colours-{scheme}"));
+
+        browser.write("x.start", "1,000");
+        browser.leave();
+        browser.wait_state("stale");
+        let wrong = "const field = getComputedStyle(document.getElementById('x.start')), well = getComputedStyle(document.getElementById('y.start'));
+            const old = getComputedStyle(document.querySelector('.plates'), '::before');
+            return [field.borderBottomStyle, well.borderBottomStyle, old.borderLeftStyle, old.borderLeftWidth];";
+        assert_eq!(
+            browser.script(wrong, vec![]),
+            serde_json::json!(["dashed", "solid", "dashed", "2px"]),
+            "{scheme}: a field with a problem, one without, and old figures"
+        );
+        browser.picture(&format!("forced-colours-{scheme}-problem"));
+    }
+    browser.assert_clean();
+}
+
+/// Of each picture: whether its ground shows the page's, and how many of its dots have the colour of the page's text.
+const INK_IN_PICTURES: &str = "
+    const pen = document.createElement('canvas').getContext('2d', {willReadFrequently: true});
+    const dots = (colour) => { pen.fillStyle = colour; pen.fillRect(0, 0, 1, 1); return [...pen.getImageData(0, 0, 1, 1).data]; };
+    const body = getComputedStyle(document.body), ground = dots(body.backgroundColor), text = dots(body.color);
+    return ['strength', 'orbit'].map((id) => {
+      const canvas = document.getElementById(id);
+      const data = canvas.getContext('2d').getImageData(0, 0, canvas.width, canvas.height).data;
+      let strokes = 0;
+      for (let at = 0; at < data.length; at += 4)
+        if (data[at + 3] > 200 && [0, 1, 2].every((part) => Math.abs(data[at + part] - text[part]) < 24)) strokes += 1;
+      const corner = [0, 1, 2, 3].map((part) => data[part]);
+      return [corner[3] === 0 || corner.every((part, at) => Math.abs(part - ground[at]) < 4), strokes];
+    });";

@@ -186,6 +186,7 @@ pub(crate) fn show_names(dom: &Dom, pairs: &Pairs) {
     for side in Side::BOTH {
         let (letter, name, enemy) = (side.letter(), &names[side], &names[side.enemy()]);
         dom.set_text(&format!("{letter}.who"), name);
+        dom.set_text(&format!("{letter}.spoken"), &format!("{name}:"));
         dom.set_text(&format!("{letter}.direction"), &meaning::direction(name, enemy));
         let rate_unit = law_of(pairs, side)
             .map(|law| meaning::rate_unit(law, name, enemy, unit))
@@ -198,8 +199,10 @@ pub(crate) fn show_names(dom: &Dom, pairs: &Pairs) {
         for key in ["start", "lost"] {
             dom.set_text(&format!("{letter}.{key}.unit"), &counted);
         }
-        if let Ok(Some(legend)) = dom.document.query_selector(&format!("[data-name={letter}]")) {
-            legend.set_text_content(Some(name));
+        if let Ok(places) = dom.document.query_selector_all(&format!("[data-name={letter}]")) {
+            for place in (0..places.length()).filter_map(|at| places.item(at)) {
+                place.set_text_content(Some(name));
+            }
         }
     }
     for side in Side::BOTH {

@@ -68,8 +68,10 @@ const LOOK: &str = "
       const seen = document.elementFromPoint(x, y);
       if (seen && !stop.contains(seen) && !seen.contains(stop)) wrong.push('is covered by ' + seen.tagName + '#' + seen.id + '.' + seen.className);
     }
+    // The buttons of a number go with the focus from field to field, so they have no place of their own in the order.
+    if (stop.closest('.hand')) return {name: 'the buttons beside ' + (stop.closest('.hand').parentElement.querySelector('input') || {}).id, wrong};
     const way = back ? Node.DOCUMENT_POSITION_PRECEDING : Node.DOCUMENT_POSITION_FOLLOWING;
-    if (last && last !== stop && last.isConnected && !(last.compareDocumentPosition(stop) & way)) wrong.push('is out of order');
+    if (last && last !== stop && last.isConnected && !last.closest('.hand') && !(last.compareDocumentPosition(stop) & way)) wrong.push('is out of order');
     if (last === stop) wrong.push('holds the focus');
     window.lastStop = stop;
     return {name, wrong};";

@@ -8,7 +8,7 @@ use super::Browser;
 /// stays in sight, and what waits in a strip that rolls.
 const LOOK: &str = "
     const apart = '.said, .unseen, .skip, .formula, pre, option, svg, canvas, noscript, [hidden]';
-    const lines = [], wrong = [];
+    const lines = [], wrong = [], width = document.documentElement.clientWidth; // without a bar at the side
     const clipped = (part) => part && (getComputedStyle(part).clipPath === 'inset(50%)' || clipped(part.parentElement));
     const walk = document.createTreeWalker(document.body, NodeFilter.SHOW_TEXT);
     for (let node = walk.nextNode(); node; node = walk.nextNode()) {
@@ -20,7 +20,7 @@ const LOOK: &str = "
       for (const box of range.getClientRects()) {
         if (box.width < 1 || box.height < 1) continue;
         const words = node.data.trim().slice(0, 40);
-        if (!strip && (box.right > innerWidth + 1 || box.left < -1)) wrong.push('sticks out: ' + words);
+        if (!strip && (box.right > width + 1 || box.left < -1)) wrong.push('sticks out: ' + words);
         // A line's box is higher than its letters: what only touches is no overlap.
         const slack = box.height * 0.22;
         lines.push({top: box.top + slack, bottom: box.bottom - slack, left: box.left + 1, right: box.right - 1, parent, words, strip});
@@ -41,9 +41,9 @@ const LOOK: &str = "
       // A choice or a button must show its words whole.
       if (part.tagName === 'BUTTON' && part.scrollWidth > part.clientWidth + 1) wrong.push('button cut: ' + part.innerText);
     }
-    const over = document.documentElement.scrollWidth - innerWidth;
+    const over = document.documentElement.scrollWidth - width;
     if (over > 0) {
-      const wide = [...document.querySelectorAll('body *')].filter((part) => !part.closest('.roll > *, .formula > *') && part.checkVisibility() && part.getBoundingClientRect().right > innerWidth);
+      const wide = [...document.querySelectorAll('body *')].filter((part) => !part.closest('.roll > *, .formula > *') && part.checkVisibility() && part.getBoundingClientRect().right > width);
       wrong.push('the page is ' + over + ' px too wide: ' + wide.slice(0, 8).map((part) => part.tagName + '#' + part.id + '.' + part.className).join(', '));
     }
     return wrong;";
