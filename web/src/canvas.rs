@@ -83,7 +83,15 @@ pub(crate) fn apart(dom: &Dom, size: (u32, u32), scale: f64) -> Option<(HtmlCanv
     let context: CanvasRenderingContext2d = canvas.get_context("2d").ok()??.dyn_into().ok()?;
     let inside = CanvasBackend::with_canvas_object(canvas.clone())?;
     let backend = Measured::new(inside, ByContext(context));
-    Some((canvas, Canvas { backend, scale }))
+    let zoom = 1.0;
+    Some((
+        canvas,
+        Canvas {
+            backend,
+            scale,
+            zoom,
+        },
+    ))
 }
 
 /// Measures text without a canvas on the page.
