@@ -60,14 +60,28 @@ const ROUNDING: f64 = 1e-9;
 pub fn judge(text: &str, depth: Depth) -> Result<Verdict, String> {
     let pairs = Pairs::parse(text);
     written_as_read(&pairs)?;
-    match answer(text) {
+    judged(&pairs, &answer(text), depth)
+}
+
+fn judged(pairs: &Pairs, answer: &Answer, depth: Depth) -> Result<Verdict, String> {
+    match answer {
         Answer::Problems(problems) => {
-            refused_with_reasons(&pairs, &problems)?;
+            refused_with_reasons(pairs, problems)?;
             Ok(Verdict::Refused(problems.len()))
         }
+        // A number in question has a value now, or there is no outcome to look at.
+        Answer::Asked {
+            outcome: Some(outcome),
+            ..
+        } => judged(pairs, outcome, depth),
+        Answer::Asked { outcome: None, .. } => Ok(Verdict::Answered {
+            work: Work::default(),
+            shown: None,
+            adds_up: true,
+        }),
         Answer::Outcome { outcome, .. } => {
-            makes_sense(&outcome)?;
-            let (work, shown) = worked_out(&pairs, &outcome, depth)?;
+            makes_sense(outcome)?;
+            let (work, shown) = worked_out(pairs, outcome, depth)?;
             // What flows in for ever is without bound, and so are its losses.
             let flows = outcome.pieces.last().is_some_and(|piece| piece.to.is_none())
                 && pairs.iter().any(|(key, _)| key.ends_with(".flow"));

@@ -215,7 +215,7 @@ fn escape(rng: &mut Rng, text: &str) -> String {
     let mut escaped = String::new();
     for byte in text.bytes() {
         match rng.u8(..40) {
-            0 => escaped.push_str(&format!("%{:02X}", byte ^ rng.u8(..2) * 0x80)),
+            0 => escaped.push_str(&format!("%{:02X}", byte ^ (rng.u8(..2) * 0x80))),
             _ if byte.is_ascii() => escaped.push(char::from(byte)),
             _ => escaped.push_str(&format!("%{byte:02x}")),
         }

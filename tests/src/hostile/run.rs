@@ -71,7 +71,7 @@ fn milliseconds(begun: Instant) -> u64 {
 }
 
 fn one(generator: &Generator, index: u64, report: &mut Report) {
-    let depth = if index % IN_FULL == 0 {
+    let depth = if index.is_multiple_of(IN_FULL) {
         Depth::Page
     } else {
         Depth::Answer
