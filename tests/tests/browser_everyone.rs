@@ -181,8 +181,9 @@ fn a_finger_hits_what_it_means() {
         let script = "
             const small = [];
             for (const part of document.querySelectorAll('button, input, select, textarea, summary, [role=slider]')) {
-              const box = part.getBoundingClientRect();
-              if (part.checkVisibility() && (box.height < 44 || box.width < 32))
+              const by_label = ['radio', 'checkbox'].includes(part.type);
+              const box = (by_label ? part.labels[0] : part).getBoundingClientRect();
+              if (part.checkVisibility() && (box.height < 44 || (box.width < 32 && !by_label)))
                 small.push(`${part.tagName}#${part.id} ${part.innerText} ${box.width} x ${box.height}`);
             }
             return small;";

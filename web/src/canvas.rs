@@ -84,14 +84,7 @@ pub(crate) fn apart(dom: &Dom, size: (u32, u32), scale: f64) -> Option<(HtmlCanv
     let inside = CanvasBackend::with_canvas_object(canvas.clone())?;
     let backend = Measured::new(inside, ByContext(context));
     let zoom = 1.0;
-    Some((
-        canvas,
-        Canvas {
-            backend,
-            scale,
-            zoom,
-        },
-    ))
+    Some((canvas, Canvas { backend, scale, zoom }))
 }
 
 /// Measures text without a canvas on the page.
