@@ -3,13 +3,11 @@
 //! y' = −s·T(y), where s = b·S(x) does not change: because x is not shot at, or because the number of shooters does not
 //! count (logarithmic fire, a power law with p = 0). The time is then s·t = ∫dy/T(y), a sum of powers.
 
-use super::{Power, growth};
+use super::Power;
+use super::span::span_of;
 use crate::double::Double;
 use crate::orbit_point::OrbitPoint;
 use crate::sides::Side;
-
-/// Newton's steps at most; a start nine decades from the root needs some forty.
-const MOST_STEPS: usize = 100;
 
 /// A side that fades by itself, in time.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -71,28 +69,12 @@ impl Alone {
         -libm::log1p((-part).max(-1.0)) / order
     }
 
-    /// The same for two powers, whose sum is concave in λ: Newton's steps from 0 never go past the root.
+    /// The same for two powers.
     fn span_of_two(&self, spent: f64) -> f64 {
-        let terms = self.per_target.map(|power| {
+        let scaled = self.per_target.map(|power| {
             let order = power.exponent + 1.0;
-            (power.coefficient * libm::pow(self.start, order), order)
+            (power.coefficient * libm::pow(self.start, order), -order)
         });
-        let mut span = 0.0;
-        for _ in 0..MOST_STEPS {
-            let reached: f64 = terms
-                .iter()
-                .map(|(scale, order)| scale * growth(-order, span))
-                .sum();
-            let slope: f64 = terms
-                .iter()
-                .map(|(scale, order)| scale * libm::exp(-order * span))
-                .sum();
-            let step = (spent - reached) / slope;
-            span += step;
-            if step.abs() <= 2.0 * f64::EPSILON * span {
-                break;
-            }
-        }
-        span
+        span_of(&scaled, spent, 0.0)
     }
 }

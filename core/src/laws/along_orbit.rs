@@ -4,13 +4,14 @@
 //! from the end of the stretch, where a fight next to a tie is most sensitive: the cost from there on and what it leaves
 //! are sums without cancelling, in plain doubles, while the end itself comes from the state equation in double-double.
 
+use super::span::span_of;
 use super::{Power, growth};
 use crate::double::Double;
 use crate::orbit_point::OrbitPoint;
 use crate::piece::Piece;
 use crate::quadrature::{Integral, integrate};
 use crate::sides::{Both, Side};
-use crate::state::{LEAST, Term};
+use crate::state::{LEAST, Term, powers};
 
 /// Steps at most from the integrator's strengths to the root; two or three where those are near it, as they mostly are.
 const MOST_POLISHING: usize = 60;
@@ -20,9 +21,6 @@ const FAR: f64 = 600.0;
 
 /// While less than this part has fallen, the first moment's losses are the better guess.
 const EARLY: f64 = 1e-4;
-
-/// Newton's steps at most for a sum of two powers; a start nine decades from the root needs some forty.
-const MOST_STEPS: usize = 100;
 
 /// A pairing in time, by its state equation and a quadrature; both fires take effect.
 pub struct AlongOrbit<'a> {
@@ -405,7 +403,8 @@ impl Stretch<'_> {
             .iter()
             .map(|term| after(term, end, area))
             .fold(f64::INFINITY, f64::min);
-        end * libm::exp(span_of_many(terms, end, area, most))
+        let scaled = powers(terms, end);
+        end * libm::exp(span_of(&scaled[..terms.len()], area, libm::log(most / end)))
     }
 }
 
@@ -433,33 +432,4 @@ fn after(term: &Term, from: f64, area: f64) -> f64 {
     } else {
         libm::log1p(part * order) / order
     })
-}
-
-/// ln(n/end) where the terms together make up `area`: Newton's steps from `most` down. The sum is convex in the
-/// logarithm, so that no step goes past the root.
-fn span_of_many(terms: &[Term], end: f64, area: f64, most: f64) -> f64 {
-    let scaled: Vec<(f64, f64)> = terms
-        .iter()
-        .map(|term| {
-            let order = f64::from(term.order);
-            (f64::from(term.weight) * libm::pow(end, order), order)
-        })
-        .collect();
-    let mut span = libm::log(most / end);
-    for _ in 0..MOST_STEPS {
-        let made_up: f64 = scaled
-            .iter()
-            .map(|(scale, order)| scale * growth(*order, span))
-            .sum();
-        let slope: f64 = scaled
-            .iter()
-            .map(|(scale, order)| scale * libm::exp(order * span))
-            .sum();
-        let step = (made_up - area) / slope;
-        span -= step;
-        if step.abs() <= 2.0 * f64::EPSILON * span {
-            break;
-        }
-    }
-    span
 }

@@ -14,6 +14,7 @@ pub mod logarithmic;
 pub mod none;
 pub mod power;
 pub mod search;
+pub(crate) mod span;
 
 use crate::terms::Fire;
 

@@ -1,14 +1,11 @@
 //! What is left of a side at a cost.
 
-use super::term::{Descent, Origin, THREE_HALVES, Term, cost};
+use super::term::{Descent, MOST_TERMS, Origin, THREE_HALVES, Term, cost};
 use crate::double::Double;
-use crate::laws::growth;
+use crate::laws::span::span_of;
 
 /// The least strength that a root-find goes down to: double-double arithmetic divides by no less.
 pub(crate) const LEAST: f64 = 1e-290;
-
-/// Steps at most in plain doubles; where they do not do, halving takes over.
-const MOST_STEPS: usize = 50;
 
 /// What is left where that has fallen from `origin` which costs `cost`; 0 or less where that is more than all of it.
 pub(super) fn left(terms: &[Term], origin: &Origin, cost: Double) -> Double {
@@ -102,7 +99,9 @@ fn left_of_many(terms: &[Term], origin: &Origin, area: Double) -> Double {
     let slope = |left: f64| -> f64 { terms.iter().map(|term| term.at(left)).sum() };
     let start = f64::from(from);
     let (mut low, mut high) = (0.0, libm::log(start / LEAST));
-    let mut span = span_of_many(terms, start, f64::from(area));
+    // In plain doubles, which next to the end lose their last digits: where the search begins.
+    let falling = powers(terms, start).map(|(scale, order)| (scale, -order));
+    let mut span = span_of(&falling[..terms.len()], f64::from(area), 0.0);
     if !(0.0..20.0).contains(&span) {
         if short(LEAST) <= 0.0 {
             return Double::from(0.0);
@@ -141,36 +140,15 @@ fn left_of_many(terms: &[Term], origin: &Origin, area: Double) -> Double {
     left.into()
 }
 
-/// The same λ in plain doubles, which next to the end lose its last digits: where the search begins.
-fn span_of_many(terms: &[Term], start: f64, area: f64) -> f64 {
-    let scaled: Vec<(f64, f64)> = terms
-        .iter()
-        .map(|term| {
-            let order = f64::from(term.order);
-            (f64::from(term.weight) * libm::pow(start, order), order)
-        })
-        .collect();
-    // The sum is concave in λ, as its orders are 0 or more: Newton's steps from 0 never go past the root.
-    let mut span = 0.0;
-    for _ in 0..MOST_STEPS {
-        let spent: f64 = scaled
-            .iter()
-            .map(|(scale, order)| scale * growth(-order, span))
-            .sum();
-        let slope: f64 = scaled
-            .iter()
-            .map(|(scale, order)| scale * libm::exp(-order * span))
-            .sum();
-        let step = (area - spent) / slope;
-        if !step.is_finite() {
-            break;
-        }
-        span += step;
-        if step.abs() <= 1e-15 * span {
-            break;
-        }
+/// The terms as pairs of a scale and an order: what each costs from `strength` on, of which the order is in the
+/// logarithm.
+pub(crate) fn powers(terms: &[Term], strength: f64) -> [(f64, f64); MOST_TERMS] {
+    let mut powers = [(0.0, 0.0); MOST_TERMS];
+    for (power, term) in powers.iter_mut().zip(terms) {
+        let order = f64::from(term.order);
+        *power = (f64::from(term.weight) * libm::pow(strength, order), order);
     }
-    span
+    powers
 }
 
 #[cfg(test)]

@@ -14,7 +14,7 @@
 mod left;
 mod term;
 
-pub(crate) use left::LEAST;
+pub(crate) use left::{LEAST, powers};
 pub use term::{Descent, MOST_TERMS, Origin, Term, is_endless};
 
 use crate::double::Double;
