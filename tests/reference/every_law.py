@@ -18,7 +18,6 @@ with the double exponential rule of mpmath; some by mpmath's Taylor integrator.
 """
 
 import math
-import random
 from dataclasses import replace
 from fractions import Fraction
 from multiprocessing import Pool
@@ -28,27 +27,18 @@ import mpmath
 from mpmath import mp, mpf
 
 import separable
-from exact import TIE, big, exact, text
+from drawing import Chance, check_by_integrator, close, line, same_numbers, share_left, sizes_fit, write
+from fights import TIE, big, exact, text
 from separable import Fight, Orbit, Rule, Side, TooWide, outcome, speed
 
-COLUMNS = ("group", "link", "breaks", "ended", "time", "x_end", "y_end", "to_the_last", "below_one", "x_lost", "y_lost")
 LAWS = ("aimed", "area", "logarithmic", "search", "power")
 NEW = LAWS[2:]
-BREAKS = ["0.05", "0.1", "0.2", "0.25", "0.3", "0.4", "0.5", "0.6", "0.75", "0.9", "0.99"]
 EXPONENTS = ["0", "0.25", "0.3", "0.5", "0.7", "0.75", "0.9", "0.99", "1", "1.2", "1.5", "1.75", "2", "2.5", "3"]
 PLAN = {"last": 5, "lines": 6, "near": 7, "parity": 4, "tie": 3, "clock": 7}
 PLAN_ONE_SIDED = {"last": 4, "lines": 5, "clock": 4}
 GROUP = {"last": "ends", "lines": "ends", "near": "near", "parity": "near", "tie": "near", "clock": "clock"}
 MOST_CONDITION = 30
-chance = random.Random(1959)
-
-
-def between(low, high):
-    """A number between two powers of ten, half of them cut to a few digits as a person would write it."""
-    value = 10 ** chance.uniform(low, high)
-    if chance.random() < 0.5:
-        value = float(f"{value:.{chance.randint(1, 5)}e}")
-    return min(max(value, 10.0**low), 10.0**high)
+chance = Chance(1959)
 
 
 def ulps(value, most):
@@ -65,10 +55,10 @@ def exponent(most):
 
 def random_side(law, strength):
     """A side; the rate is set later, against that of the other."""
-    side = Side(text(between(*strength)), law)
+    side = Side(text(chance.between(*strength)), law)
     if law == "search":
         size = chance.choice([(-12, -3), (-3, 0), (0, 4), (4, 9)])
-        side = replace(side, half=text(between(*size)))
+        side = replace(side, half=text(chance.between(*size)))
     if law == "power":
         side = replace(side, p=exponent(chance.choice([1, 2, 3])), q=exponent(chance.choice([1, 2, 3])))
     return side
@@ -117,7 +107,7 @@ def random_fight(laws, kind):
                 x, y = change(x, y)
             else:
                 y, x = change(y, x)
-    return Fight(replace(x, rate=text(between(-6, 6))), replace(y, rate=text(between(-6, 6))))
+    return Fight(replace(x, rate=text(chance.between(-6, 6))), replace(y, rate=text(chance.between(-6, 6))))
 
 
 def balanced(fight, ratio):
@@ -140,48 +130,24 @@ def balanced(fight, ratio):
     return replace(changed, y=replace(fight.y, rate=text(rate))) if 1e-9 <= rate <= 1e9 else None
 
 
-def with_lines(fight, always=False):
-    sides = []
-    for side in (fight.x, fight.y):
-        breaks = chance.choice(BREAKS) if always or chance.random() < 0.9 else "1"
-        before = "0"
-        if chance.random() < 0.3:
-            share = float(breaks) / (1 - min(float(breaks), 0.9)) * chance.uniform(0, 0.9)
-            before = text(min(float(f"{float(side.start) * share:.3g}"), 1e9))
-        sides.append(replace(side, breaks=breaks, lost=before))
-    return replace(fight, x=sides[0], y=sides[1])
-
-
-def near_one():
-    """A ratio within 1e-3 to 1e-12 of 1, or now and then just outside the rounding that counts as a tie."""
-    if chance.random() < 0.1:
-        return 1 + chance.choice([-1, 1]) * Fraction(chance.randint(6, 60), 2**53)
-    return 1 + chance.choice([-1, 1]) * Fraction(10 ** chance.uniform(-12, -3))
-
-
 def draw(kind, laws):
     fight = random_fight(laws, kind)
     if "none" in laws:
-        return fight if kind == "last" else with_lines(fight)
+        return fight if kind == "last" else chance.with_lines(fight, 0.9, 0.3)
     endless = mpmath.inf in fight.costs(Fraction(0), Fraction(0))
     if kind == "last":
         return fight if endless else balanced(fight, 10 ** chance.uniform(-2, 2))
     if kind == "lines":
-        lined = with_lines(fight)
+        lined = chance.with_lines(fight, 0.9, 0.3)
         return balanced(lined, 10 ** chance.uniform(-1, 1)) or lined
     if kind == "near" or endless:
-        lined = with_lines(fight, always=True)
+        lined = chance.with_lines(fight, 1, 0.3)
         lined = lined if kind != "tie" else replace(lined, x=replace(lined.x, lost="0"), y=replace(lined.y, lost="0"))
-        return balanced(lined, 1 if kind == "tie" else near_one())
+        return balanced(lined, 1 if kind == "tie" else chance.near_one())
     if kind in ("parity", "tie"):
-        return balanced(fight, 1 if kind == "tie" else near_one())
-    lined = with_lines(fight) if chance.random() < 0.7 else fight
-    return balanced(lined, chance.choice([near_one(), 10 ** chance.uniform(-1, 1), 10 ** chance.uniform(-6, 6)])) or lined
-
-
-def share_left(side):
-    """A tie to rounding alone says little of a side whose line is a small part of it: such rows would prove nothing."""
-    return float(side.line / side.strength)
+        return balanced(fight, 1 if kind == "tie" else chance.near_one())
+    lined = chance.with_lines(fight, 0.9, 0.3) if chance.random() < 0.7 else fight
+    return balanced(lined, chance.choice([chance.near_one(), 10 ** chance.uniform(-1, 1), 10 ** chance.uniform(-6, 6)])) or lined
 
 
 def fits(kind, fight):
@@ -200,11 +166,6 @@ def fits(kind, fight):
         return False
     tied = margins[0] is not None and abs(margins[0]) <= big(TIE)
     return tied == (kind == "tie")
-
-
-def sizes_fit(found):
-    sizes = [found.time, found.x_end, found.y_end, found.below_one]
-    return all(size is None or size == 0 or 1e-250 < size < 1e250 for size in sizes)
 
 
 def clocked(fight):
@@ -284,18 +245,11 @@ def tasks():
 # --- checks ---
 
 
-def close(one, other, digits_alike):
-    scale = max(abs(one), abs(other))
-    return scale == 0 or abs(one - other) <= scale * mpf(10) ** -digits_alike
-
-
 def check_twice(fight, near, found):
     """The same with more digits and a finer rule."""
     with mp.workdps(130):
         again = outcome(fight, near, Rule(60, 44, 800))
-    for name in ("time", "x_end", "y_end", "below_one"):
-        one, other = getattr(found, name), getattr(again, name)
-        assert (one is None) == (other is None) and (one is None or close(one, other, 45)), (fight.link(), name)
+    same_numbers(fight, found, again, 45)
 
 
 def check_other_side(fight, found):
@@ -326,27 +280,15 @@ def check_other_side(fight, found):
 def check_motion(fight, found):
     """A Taylor integrator comes to the same place."""
     time = found.time if found.time is not None else big(exact(fight.until))
-    scale = (big(fight.x.strength), big(fight.y.strength))
-
-    def motion(_, state):
-        x, y = state[0] * scale[0], state[1] * scale[1]
-        return [-speed(fight, x, y) * time / scale[0], -speed(fight.swapped, y, x) * time / scale[1]]
-
     with mp.workdps(22):
-        path = mpmath.odefun(motion, 0, [mpf(1), mpf(1)])(1)
-    for value, known, whole in zip(path, (found.x_end, found.y_end), scale):
-        assert abs(value * whole - known) < whole * mpf(10) ** -12, (fight.link(), value * whole, known)
+        losses = lambda x, y: (speed(fight, x, y), speed(fight.swapped, y, x))
+        check_by_integrator(fight, found, time, losses)
 
 
 def is_tame(fight, found):
     """Whether the integrator is quick, and accurate: not much has fallen of either side."""
     ends = (found.x_end / big(fight.x.strength), found.y_end / big(fight.y.strength))
     return (found.time or found.ended == "clock") and min(ends) > 0.3 and fight.x.effect * fight.y.effect > 0
-
-
-def digits(value):
-    """45 significant digits; an empty cell for what is not there."""
-    return "" if value is None else value if isinstance(value, str) else mpmath.nstr(value, 45, min_fixed=0, max_fixed=0)
 
 
 def row(numbered):
@@ -364,17 +306,15 @@ def row(numbered):
         if number % 5 == 0 and is_tame(fight, found):
             check_motion(fight, found)
             motion = True
-    cells = [f"{fight.x.fire}/{fight.y.fire} {GROUP[kind]}", fight.link(), found.breaks, found.ended, found.time]
-    cells += [found.x_end, found.y_end, found.to_the_last, found.below_one]
-    cells += [big(fight.x.strength) - found.x_end, big(fight.y.strength) - found.y_end]
-    return "\t".join(digits(cell) for cell in cells), known, motion
+    group = f"{fight.x.fire}/{fight.y.fire} {GROUP[kind]}"
+    return line(group, fight, found), known, motion
 
 
 def main():
     with Pool(2) as pool:
         done = list(pool.imap(row, enumerate(tasks())))
     path = Path(__file__).with_suffix(".tsv")
-    path.write_text("\n".join(["\t".join(COLUMNS), *(line for line, _, _ in done)]) + "\n", encoding="utf-8")
+    write(path, [row for row, _, _ in done])
     followed = [known for _, known, _ in done if known]
     print(f"{len(done)} rows in {path.name}; {len(followed)} by the other side, {min(followed)} digits and more alike;")
     print(f"{sum(1 for _, _, motion in done if motion)} by the integrator")

@@ -19,78 +19,15 @@ from fractions import Fraction
 import mpmath
 from mpmath import mp, mpf
 
+import fights
+from fights import TIE, Outcome, big, broken_from_the_start, exact, mirrored
+
 mp.dps = 120
-TIE = Fraction(4, 2**53)
-
-
-def text(value):
-    """The shortest decimal that reads back as this double, in the link's own grammar."""
-    plain = repr(float(value)).replace("e+", "e")
-    return plain[:-2] if plain.endswith(".0") else plain
-
-
-def exact(written):
-    """The double nearest to a text, as an exact fraction."""
-    return Fraction(float(written))
-
-
-def big(fraction):
-    """A fraction at working precision."""
-    return mpf(fraction.numerator) / fraction.denominator
 
 
 @dataclass(frozen=True)
-class Side:
-    """One side as the link writes it: texts for the numbers, so that what is read is what is written."""
-
-    start: str
-    rate: str = "0"
-    fire: str = "aimed"
-    breaks: str = "1"
-    lost: str = "0"
-
-    @property
-    def strength(self):
-        return exact(self.start)
-
-    @property
-    def effect(self):
-        """The rate, or nothing for a side that does not fire."""
-        return Fraction(0) if self.fire == "none" else exact(self.rate)
-
-    @property
-    def line(self):
-        """The strength at which the side breaks: x has then lost `breaks` of all it ever committed."""
-        return (self.strength + exact(self.lost)) * (1 - exact(self.breaks))
-
-    def pairs(self, name):
-        yield f"{name}.start={self.start}"
-        if self.fire != "aimed":
-            yield f"{name}.fire={self.fire}"
-        if self.fire != "none":
-            yield f"{name}.rate={self.rate}"
-        if self.breaks != "1":
-            yield f"{name}.break={self.breaks}"
-        if self.lost != "0":
-            yield f"{name}.lost={self.lost}"
-
-
-@dataclass(frozen=True)
-class Fight:
-    """Two sides and perhaps a clock."""
-
-    x: Side
-    y: Side
-    until: str | None = None
-
-    def link(self):
-        pairs = [*self.x.pairs("x"), *self.y.pairs("y")]
-        if self.until is not None:
-            pairs.append(f"until={self.until}")
-        return "&".join(pairs)
-
-    def swapped(self):
-        return replace(self, x=self.y, y=self.x)
+class Fight(fights.Fight):
+    """A fight whose margins are rational."""
 
     def worths(self, x_line, y_line):
         """What it takes of x, and of y, to be brought to a line: rate times the integral of shooters over targets."""
@@ -137,7 +74,7 @@ def time_between(fight, x_end, y_end):
             return (1 / y_end - 1 / y) / a
         return mpmath.log(y * x_end / (x * y_end)) / drift
     if laws == ("area", "aimed"):
-        return time_between(fight.swapped(), y_end, x_end)
+        return time_between(fight.swapped, y_end, x_end)
     return ambush_time(b * x - a * y**2 / 2, a, y, y_end)
 
 
@@ -172,7 +109,7 @@ def strengths_at(fight, time):
     if laws == ("area", "area"):
         return linear_strengths(a, b, x, y, time)
     if laws == ("area", "aimed"):
-        return tuple(reversed(strengths_at(fight.swapped(), time)))
+        return tuple(reversed(strengths_at(fight.swapped, time)))
     constant = b * x - a * y**2 / 2
     left = ambush_strength(constant, a, y, time)
     return (constant + a * left**2 / 2) / b, left
@@ -203,17 +140,6 @@ def ambush_strength(constant, a, y, time):
     return root * (y + root * mpmath.tanh(angle)) / (root + y * mpmath.tanh(angle))
 
 
-@dataclass(frozen=True)
-class Outcome:
-    breaks: str
-    ended: str
-    time: object
-    x_end: object
-    y_end: object
-    to_the_last: str | None
-    below_one: object
-
-
 def outcome(fight):
     """The outcome of a fight, its clock included."""
     last = to_the_last(fight)
@@ -235,7 +161,7 @@ def falls_below_one(fight, last):
     if last in ("y", "parity"):
         times.append(fades_below_one(fight, last))
     if last in ("x", "parity"):
-        times.append(fades_below_one(fight.swapped(), last))
+        times.append(fades_below_one(fight.swapped, last))
     return min((time for time in times if time is not None), default=None)
 
 
@@ -274,16 +200,14 @@ def to_the_last(fight):
 
 
 def unclocked(fight):
-    x, y = fight.x, fight.y
-    gone = [side.strength <= side.line for side in (x, y)]
-    if any(gone):
-        who = "both" if all(gone) else "x" if gone[0] else "y"
-        return Outcome(who, "break", mpf(0), big(x.strength), big(y.strength), None, None)
-    margin = fight.margin(x.line, y.line)
+    broken = broken_from_the_start(fight)
+    if broken:
+        return broken
+    margin = fight.margin(fight.x.line, fight.y.line)
     if abs(margin) <= TIE:
         return tied(fight)
     if margin > 0:
-        return mirrored(first_is_x(fight.swapped()))
+        return mirrored(first_is_x(fight.swapped))
     return first_is_x(fight)
 
 
@@ -311,7 +235,7 @@ def time_to_line_x(fight):
 
 
 def time_to_line_y(fight):
-    return time_to_line_x(fight.swapped())
+    return time_to_line_x(fight.swapped)
 
 
 def first_is_x(fight):
@@ -322,13 +246,3 @@ def first_is_x(fight):
     if can_be_reached(x.line, y.fire):
         return Outcome("x", "break", time_between(fight, x_end, y_end), x_end, y_end, None, None)
     return Outcome("neither", "limit", None, x_end, y_end, None, None)
-
-
-def mirrored(result):
-    names = {"x": "y", "y": "x"}
-    return replace(
-        result,
-        breaks=names.get(result.breaks, result.breaks),
-        x_end=result.y_end,
-        y_end=result.x_end,
-    )

@@ -11,7 +11,6 @@ Each row is checked before it is written: at two precisions; against quadrature 
 motion, differentiated numerically; some clocks against a Taylor integrator.
 """
 
-import random
 from dataclasses import replace
 from fractions import Fraction
 from pathlib import Path
@@ -19,30 +18,17 @@ from pathlib import Path
 import mpmath
 from mpmath import mp, mpf
 
-from exact import TIE, Fight, Side, big, exact, outcome, strengths_at, text
+from drawing import Chance, check_by_integrator, close, line, same_numbers, share_left, sizes_fit, write
+from exact import Fight, outcome, strengths_at
+from fights import TIE, Side, big, exact, text
 
-COLUMNS = ("group", "link", "breaks", "ended", "time", "x_end", "y_end", "to_the_last", "below_one", "x_lost", "y_lost")
 TWO_SIDED = [("aimed", "aimed"), ("area", "area"), ("aimed", "area"), ("area", "aimed")]
 ONE_SIDED = [("aimed", "none"), ("none", "aimed"), ("area", "none"), ("none", "area")]
-BREAKS = ["0.05", "0.1", "0.2", "0.25", "0.3", "0.4", "0.5", "0.6", "0.75", "0.9", "0.99"]
-chance = random.Random(1916)
-
-
-def between(low, high):
-    """A number between two powers of ten, half of them cut to a few digits as a person would write it."""
-    value = 10 ** chance.uniform(low, high)
-    if chance.random() < 0.5:
-        value = float(f"{value:.{chance.randint(1, 5)}e}")
-    return min(max(value, 10.0**low), 10.0**high)
-
-
-def fires(fight, laws):
-    """The same fight under other laws of fire."""
-    return replace(fight, x=replace(fight.x, fire=laws[0]), y=replace(fight.y, fire=laws[1]))
+chance = Chance(1916)
 
 
 def random_fight(laws):
-    sides = [Side(text(between(0, 9)), text(between(-9, 9)), law) for law in laws]
+    sides = [Side(text(chance.between(0, 9)), rate=text(chance.between(-9, 9)), fire=law) for law in laws]
     return Fight(*sides)
 
 
@@ -56,16 +42,8 @@ def balanced(fight, ratio):
     return replace(fight, y=replace(fight.y, rate=text(rate))) if 1e-9 <= rate <= 1e9 else None
 
 
-def with_lines(fight, lost=True):
-    sides = []
-    for side in (fight.x, fight.y):
-        breaks = chance.choice(BREAKS) if chance.random() < 0.9 else "1"
-        before = "0"
-        if lost and chance.random() < 0.4:
-            share = float(breaks) / (1 - min(float(breaks), 0.9)) * chance.uniform(0, 0.9)
-            before = text(min(float(f"{float(side.start) * share:.3g}"), 1e9))
-        sides.append(replace(side, breaks=breaks, lost=before))
-    return replace(fight, x=sides[0], y=sides[1])
+def with_lines(fight, before=0.4):
+    return chance.with_lines(fight, 0.9, before)
 
 
 def until_good(make):
@@ -87,27 +65,20 @@ def lines(laws):
     return drawn if chance.random() < 0.3 else balanced(drawn, 10 ** chance.uniform(-1, 1))
 
 
-def near_one():
-    """A ratio within 1e-3 to 1e-12 of 1, or now and then just outside the rounding that counts as a tie."""
-    if chance.random() < 0.1:
-        return 1 + chance.choice([-1, 1]) * Fraction(chance.randint(6, 60), 2**53)
-    return 1 + chance.choice([-1, 1]) * Fraction(10 ** chance.uniform(-12, -3))
-
-
 def near(laws):
-    return balanced(with_lines(random_fight(laws)), near_one())
+    return balanced(with_lines(random_fight(laws)), chance.near_one())
 
 
 def parity(laws):
-    return balanced(random_fight(laws), near_one())
+    return balanced(random_fight(laws), chance.near_one())
 
 
 def tie(laws):
     """Lines reached together: in small integers, exactly; or with the last rate rounded to a double."""
     if chance.random() < 0.5:
-        drawn = with_lines(random_fight(laws), lost=False)
+        drawn = with_lines(random_fight(laws), 0)
     else:
-        whole = [Side(str(chance.randint(1, 40) * 2 ** chance.randint(0, 20)), "1", law) for law in laws]
+        whole = [Side(str(chance.randint(1, 40) * 2 ** chance.randint(0, 20)), law, "1") for law in laws]
         drawn = Fight(replace(whole[0], rate=text(3 * 2.0 ** chance.randint(-9, 9))), whole[1])
         breaks = chance.choice(["0.25", "0.5", "0.75", "1"])
         drawn = replace(drawn, x=replace(drawn.x, breaks=breaks), y=replace(drawn.y, breaks=breaks))
@@ -117,16 +88,11 @@ def tie(laws):
     return drawn if drawn and abs(drawn.margin(drawn.x.line, drawn.y.line)) <= TIE else None
 
 
-def share_left(side):
-    """A tie to rounding alone says little of a side whose line is a small part of it: such rows would prove nothing."""
-    return float(side.line / side.strength)
-
-
 def clock(laws):
     one_sided = "none" in laws
     drawn = random_fight(laws) if chance.random() < 0.3 else with_lines(random_fight(laws))
     if not one_sided:
-        close_to = chance.choice([near_one(), 10 ** chance.uniform(-1, 1), 10 ** chance.uniform(-12, 12)])
+        close_to = chance.choice([chance.near_one(), 10 ** chance.uniform(-1, 1), 10 ** chance.uniform(-12, 12)])
         drawn = balanced(drawn, close_to)
     if drawn is None:
         return None
@@ -165,14 +131,14 @@ def one_sided(kind, laws):
 def by_hand():
     """Fights whose answer must never be left to chance."""
     known = [
-        ("tie", Fight(Side("600", "0.04"), Side("400", "0.09"))),
-        ("last", Fight(Side("600", "0.04"), Side("400", "0.05"))),
-        ("lines", Fight(Side("600", "0.04", breaks="0.3"), Side("400", "0.05", breaks="0.3"))),
-        ("lines", Fight(Side("75", "0.1", breaks="0.25", lost="25"), Side("80", "0.1"))),
-        ("lines", Fight(Side("60", "0.1", breaks="0.25", lost="40"), Side("50", "0.1", breaks="0.5", lost="70"))),
-        ("lines", Fight(Side("100", "0.1", breaks="0.5"), Side("10", "0.1", breaks="0.5", lost="30"), "3")),
-        ("last", Fight(Side("100", "0.1"), Side("50", "0"))),
-        ("last", Fight(Side("100", "0", "area"), Side("50", "0.001", "area"))),
+        ("tie", Fight(Side("600", rate="0.04"), Side("400", rate="0.09"))),
+        ("last", Fight(Side("600", rate="0.04"), Side("400", rate="0.05"))),
+        ("lines", Fight(Side("600", rate="0.04", breaks="0.3"), Side("400", rate="0.05", breaks="0.3"))),
+        ("lines", Fight(Side("75", rate="0.1", breaks="0.25", lost="25"), Side("80", rate="0.1"))),
+        ("lines", Fight(Side("60", rate="0.1", breaks="0.25", lost="40"), Side("50", rate="0.1", breaks="0.5", lost="70"))),
+        ("lines", Fight(Side("100", rate="0.1", breaks="0.5"), Side("10", rate="0.1", breaks="0.5", lost="30"), "3")),
+        ("last", Fight(Side("100", rate="0.1"), Side("50", rate="0"))),
+        ("last", Fight(Side("100", "area", "0"), Side("50", "area", "0.001"))),
     ]
     return known
 
@@ -201,27 +167,14 @@ def fit(kind, drawn):
     if kind != "tie" and abs(margins[0]) <= TIE:
         return None
     found = outcome(drawn)
-    sizes = [found.time, found.x_end, found.y_end, found.below_one]
-    return drawn if all(size is None or size == 0 or 1e-250 < size < 1e250 for size in sizes) else None
-
-
-def digits(value):
-    """45 significant digits; an empty cell for what is not there."""
-    return "" if value is None else value if isinstance(value, str) else mpmath.nstr(value, 45, min_fixed=0, max_fixed=0)
-
-
-def close(one, other, digits_alike):
-    scale = max(abs(one), abs(other))
-    return scale == 0 or abs(one - other) <= scale * mpf(10) ** -digits_alike
+    return drawn if sizes_fit(found) else None
 
 
 def check(fight, found):
     """Holds a row against a higher precision, the equations of motion, and quadrature."""
     with mp.workdps(160):
         again = outcome(fight)
-    for name in ("time", "x_end", "y_end", "below_one"):
-        one, other = getattr(found, name), getattr(again, name)
-        assert (one is None) == (other is None) and (one is None or close(one, other, 46)), (fight.link(), name)
+    same_numbers(fight, found, again, 46)
     if found.time:
         check_time(fight, found)
     if found.ended == "clock":
@@ -276,15 +229,7 @@ def check_motion(fight, time, found):
         assert abs(slope - loss) <= abs(loss) * mpf(10) ** -20, fight.link()
     if is_tame(fight):
         with mp.workdps(25):
-            scale = (big(fight.x.strength), big(fight.y.strength))
-
-            def motion(_, state):
-                loss = losses(state[0] * scale[0], state[1] * scale[1])
-                return [-loss[0] * time / scale[0], -loss[1] * time / scale[1]]
-
-            path = mpmath.odefun(motion, 0, [mpf(1), mpf(1)])(1)
-        assert abs(path[0] * scale[0] - found.x_end) < scale[0] * mpf(10) ** -12, fight.link()
-        assert abs(path[1] * scale[1] - found.y_end) < scale[1] * mpf(10) ** -12, fight.link()
+            check_by_integrator(fight, found, time, losses)
 
 
 def is_tame(fight):
@@ -293,18 +238,14 @@ def is_tame(fight):
 
 
 def main():
-    lines_out = ["\t".join(COLUMNS)]
+    done = []
     for kind, fight in rows():
         found = outcome(fight)
         check(fight, found)
-        group = f"{fight.x.fire}/{fight.y.fire} {kind}"
-        cells = [group, fight.link(), found.breaks, found.ended, found.time, found.x_end, found.y_end]
-        cells += [found.to_the_last, found.below_one]
-        cells += [big(fight.x.strength) - found.x_end, big(fight.y.strength) - found.y_end]
-        lines_out.append("\t".join(digits(cell) for cell in cells))
+        done.append(line(f"{fight.x.fire}/{fight.y.fire} {kind}", fight, found))
     path = Path(__file__).with_suffix(".tsv")
-    path.write_text("\n".join(lines_out) + "\n", encoding="utf-8")
-    print(f"{len(lines_out) - 1} rows in {path.name}")
+    write(path, done)
+    print(f"{len(done)} rows in {path.name}")
 
 
 if __name__ == "__main__":

@@ -17,7 +17,8 @@ from functools import cached_property
 import mpmath
 from mpmath import mp, mpf
 
-from exact import TIE, Outcome, big, exact, mirrored
+import fights
+from fights import TIE, Outcome, big, broken_from_the_start, exact, mirrored
 
 mp.dps = 110
 INFINITE = mpf("inf")
@@ -27,39 +28,8 @@ SAME_EXPONENT = Fraction(1, 10**14)
 
 
 @dataclass(frozen=True)
-class Side:
-    """One side as the link writes it: texts for the numbers, so that what is read is what is written."""
-
-    start: str
-    fire: str = "aimed"
-    rate: str = "0"
-    half: str | None = None
-    p: str | None = None
-    q: str | None = None
-    breaks: str = "1"
-    lost: str = "0"
-
-    @cached_property
-    def strength(self):
-        return exact(self.start)
-
-    @cached_property
-    def effect(self):
-        """The rate, or nothing for a side that does not fire."""
-        return Fraction(0) if self.fire == "none" else exact(self.rate)
-
-    @property
-    def big_effect(self):
-        return big(self.effect)
-
-    @property
-    def big_strength(self):
-        return big(self.strength)
-
-    @cached_property
-    def line(self):
-        """The strength at which the side breaks: it has then lost `breaks` of all it ever committed."""
-        return (self.strength + exact(self.lost)) * (1 - exact(self.breaks))
+class Side(fights.Side):
+    """A side with the factors of its law."""
 
     @cached_property
     def shooters(self):
@@ -81,39 +51,10 @@ class Side:
         """T falls as the targets to this power, next to 0."""
         return max(-exponent for _, exponent in self.per_target)
 
-    def pairs(self, name):
-        yield f"{name}.start={self.start}"
-        if self.fire != "aimed":
-            yield f"{name}.fire={self.fire}"
-        if self.fire != "none":
-            yield f"{name}.rate={self.rate}"
-        for key in ("half", "p", "q"):
-            if getattr(self, key) is not None:
-                yield f"{name}.{key}={getattr(self, key)}"
-        if self.breaks != "1":
-            yield f"{name}.break={self.breaks}"
-        if self.lost != "0":
-            yield f"{name}.lost={self.lost}"
-
 
 @dataclass(frozen=True)
-class Fight:
-    """Two sides and perhaps a clock."""
-
-    x: Side
-    y: Side
-    until: str | None = None
-
-    def link(self):
-        pairs = [*self.x.pairs("x"), *self.y.pairs("y")]
-        if self.until is not None:
-            pairs.append(f"until={self.until}")
-        return "&".join(pairs)
-
-    @cached_property
-    def swapped(self):
-        """The same fight seen from the other side."""
-        return replace(self, x=self.y, y=self.x)
+class Fight(fights.Fight):
+    """A fight that separates."""
 
     @cached_property
     def terms(self):
@@ -431,12 +372,10 @@ def is_reached(fight, x, y):
 
 
 def unclocked(fight, rule):
-    x, y = fight.x, fight.y
-    gone = [side.strength <= side.line for side in (x, y)]
-    if any(gone):
-        who = "both" if all(gone) else "x" if gone[0] else "y"
-        return Outcome(who, "break", mpf(0), big(x.strength), big(y.strength), None, None)
-    margin = fight.margin(x.line, y.line)
+    broken = broken_from_the_start(fight)
+    if broken:
+        return broken
+    margin = fight.margin(fight.x.line, fight.y.line)
     if margin is None:
         return Outcome("neither", "limit", None, mpf(0), mpf(0), None, None)
     if abs(margin) <= big(TIE):
