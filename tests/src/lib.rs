@@ -4,4 +4,5 @@
 pub mod browser;
 pub mod budgets;
 pub mod hostile;
+pub mod shown;
 pub mod tables;
