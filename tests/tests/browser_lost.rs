@@ -1,6 +1,7 @@
 //! Nothing is lost: whatever fails, the text of the engagement is still there.
 
-use aftercount_tests::browser::{Browser, Doing, changed, native, native_sentence};
+use aftercount_core::passing::words::NO_ROOM;
+use aftercount_tests::browser::{Browser, Doing, Key, Screen, changed, native, native_sentence};
 use serde_json::json;
 
 const LINK: &str =
@@ -228,4 +229,71 @@ fn two_tabs_keep_their_texts_apart() {
     browser.click("#undo");
     assert_eq!(browser.settle(LINK), native(LINK));
     browser.assert_clean();
+}
+
+#[test]
+fn two_tabs_keep_what_both_were_asked_to_keep() {
+    let browser = Browser::opened(LINK);
+    let (first, _) = browser.new_tab();
+    let other = changed(LINK, "x.start", "700");
+    browser.open(&other);
+    browser.settle(&other);
+    browser.press("#keep", Key::Enter);
+    browser.wait_text("#kept-said", "Kept");
+    browser.go_to_tab(&first);
+    browser.press("#keep", Key::Enter);
+    browser.wait_text("#kept-said", "Kept");
+    let count = "return document.querySelectorAll('#kept li').length;";
+    assert_eq!(browser.script(count, vec![]), 2);
+    browser.press("#kept li:nth-child(2) [data-take-up]", Key::Enter);
+    assert_eq!(browser.settle(&other), native(&other));
+    browser.assert_clean();
+}
+
+#[test]
+fn storage_that_is_full_keeps_what_it_has() {
+    let browser = Browser::opened(LINK);
+    browser.press("#keep", Key::Enter);
+    browser.wait_text("#kept-said", "Kept");
+    // Truly full: as much as the browser takes, halving what is tried.
+    let fill = "for (let size = 8e6; size >= 1; size = Math.floor(size / 2))
+          for (let more = true; more;) try { localStorage.filler = (localStorage.filler || '') + 'x'.repeat(size); } catch { more = false; }";
+    browser.script(fill, vec![]);
+    browser.write("x.start", "700");
+    let link = changed(LINK, "x.start", "700");
+    browser.settle(&link);
+    browser.press("#keep", Key::Enter);
+    browser.wait_text("#kept-said", NO_ROOM);
+    browser.reload();
+    assert_eq!(browser.settle(&link), native(&link), "the text is in the address");
+    browser.press("#kept [data-take-up]", Key::Enter);
+    assert_eq!(
+        browser.settle(LINK),
+        native(LINK),
+        "and what was kept before is kept"
+    );
+    browser.assert_clean();
+}
+
+#[test]
+fn a_trap_behind_an_open_dialog_is_not_hidden_by_it() {
+    let browser = Browser::opened(LINK);
+    browser.trap(Doing::Drawing);
+    browser.write("x.start", "700");
+    let link = changed(LINK, "x.start", "700");
+    browser.settle(&link);
+    browser.click(".top [data-pass=copy-as]");
+    browser.wait(
+        "the dialog",
+        "return document.getElementById('copy-dialog').open;",
+    );
+    browser.trap(Doing::Drawing);
+    browser.screen(Screen::SMALL);
+    browser.wait_text("#stopped", "Copy the text");
+    let on_top = "const box = document.getElementById('stopped-text'); box.scrollIntoView({block: 'center'});
+        const place = box.getBoundingClientRect();
+        return document.elementFromPoint(place.left + 5, place.top + 5) === box;";
+    assert_eq!(browser.script(on_top, vec![]), true);
+    assert_eq!(text_to_copy(&browser), link);
+    assert_eq!(browser.complaints_but_traps(), Vec::<String>::new());
 }

@@ -50,6 +50,7 @@
     const notice = document.getElementById("stopped");
     notice.querySelector("textarea").value = text;
     notice.hidden = false;
+    for (const dialog of document.querySelectorAll("dialog[open]")) dialog.close(); // it would hide the notice
     document.getElementById("engagement").inert = true; // nobody would keep what is typed there
     notice.scrollIntoView();
   }
