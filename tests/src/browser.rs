@@ -27,7 +27,7 @@ use tokio::runtime::Runtime;
 
 use command::Command;
 use driver::Driver;
-pub use files::{page_url, wiki_url};
+pub use files::{interface_url, page_url, wiki_url};
 pub use harm::Doing;
 pub use input::Key;
 pub use keyboard::Struck;

@@ -1,5 +1,6 @@
 //! What must never appear where: the arrows and the house rules, read from the sources and the dependencies.
 
+use aftercount_core::demo::DEMO;
 use aftercount_core::keys::KEYS;
 use aftercount_tests::tables::{project, project_text};
 use cargo_metadata::{DependencyKind, Metadata, MetadataCommand, Package};
@@ -208,12 +209,61 @@ fn the_two_halves_of_wasm_bindgen_are_pinned_to_one_version() {
     assert_eq!(web, pinned("aftercount-www", "wasm-bindgen-cli-support"));
 }
 
+/// Scripts start the program and hand texts to it; all else is Rust. The last is an example of a page that is not ours.
 #[test]
-fn the_only_script_is_a_short_one() {
+fn the_only_scripts_are_short_ones() {
+    let allowed = [
+        ("www/interface/aftercount.d.ts", 80),
+        ("www/interface/example.js", 40),
+        ("www/interface/loader.js", 60),
+        ("www/page/boot.js", 80),
+    ];
     let scripts = files("", &[".js", ".mjs", ".cjs", ".ts", ".jsx", ".tsx"]);
-    assert_eq!(scripts, [project().join("www/page/boot.js")]);
-    let lines = text_of(&scripts[0]).lines().count();
-    assert!((1..=80).contains(&lines), "boot.js has {lines} lines");
+    assert_eq!(scripts, allowed.map(|(script, _)| project().join(script)));
+    for (script, most) in allowed {
+        let lines = project_text(script).lines().count();
+        assert!((1..=most).contains(&lines), "{script} has {lines} lines");
+    }
+}
+
+/// The types of the interface for scripts name every key of an answer, and no other.
+#[test]
+fn the_types_of_the_interface_are_those_of_an_answer() {
+    let types = project_text("www/interface/aftercount.d.ts");
+    let mut known = BTreeSet::new();
+    for link in [
+        DEMO,
+        "x.start=1,000",
+        "x.start=600?&x.rate=1&y.start=400&y.rate=1&sothat=y.breaks",
+    ] {
+        let answer = aftercount_tests::tables::answer(link);
+        let mut open = vec![&answer];
+        while let Some(value) = open.pop() {
+            if let Some(object) = value.as_object() {
+                known.extend(object.keys().cloned());
+                // Answers to questions are taken as they are.
+                open.extend(
+                    object
+                        .iter()
+                        .filter(|(key, _)| *key != "asked")
+                        .map(|(_, value)| value),
+                );
+            }
+            open.extend(value.as_array().into_iter().flatten());
+        }
+    }
+    // What the interface adds.
+    known.extend(["sentence", "marking", "link", "text_mark"].map(str::to_owned));
+    let (_, of_answers) = types.split_once("interface AftercountOutcome").expect("its type");
+    let comments = |line: &&str| !line.trim_start().starts_with("/**");
+    let named: BTreeSet<String> = of_answers
+        .lines()
+        .filter(comments)
+        .flat_map(|line| line.split(['{', ';', ' ']))
+        .filter_map(|word| word.strip_suffix(':'))
+        .map(|word| word.trim_end_matches('?').to_owned())
+        .collect();
+    assert_eq!(named, known);
 }
 
 #[test]
@@ -245,7 +295,7 @@ fn pages_hold_no_script_of_their_own() {
 /// Nothing that the page is made of may name an address to load from.
 #[test]
 fn the_page_names_no_address() {
-    for path in files("www/page", &[".html", ".css", ".js"]) {
+    for path in files("www", &[".html", ".css", ".js"]) {
         let text = text_of(&path);
         for scheme in ["http:", "https:", "ws:", "wss:", "@import", "src=\"/", "url(//"] {
             let found: Vec<&str> = text

@@ -11,6 +11,7 @@ mod dom;
 pub mod draw;
 mod form;
 mod hand;
+pub mod interface;
 mod kept_rates;
 mod law_fields;
 mod list_text;

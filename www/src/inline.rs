@@ -53,9 +53,27 @@ pub(crate) fn escape(text: &str) -> String {
         .replace('"', "&quot;")
 }
 
+/// The text that [`escape`] was given, as it may stand in a comment of a script.
+pub(crate) fn in_comment(html: &str) -> String {
+    let text = html
+        .replace("&quot;", "\"")
+        .replace("&gt;", ">")
+        .replace("&lt;", "<")
+        .replace("&amp;", "&");
+    text.replace("*/", "* /")
+}
+
 #[cfg(test)]
 mod tests {
-    use super::{check, escape, fill};
+    use super::{check, escape, fill, in_comment};
+
+    #[test]
+    fn a_comment_is_not_ended_by_what_stands_in_it() {
+        assert_eq!(
+            in_comment(&escape("a <b> & \"c\" */ &lt;")),
+            "a <b> & \"c\" * / &lt;"
+        );
+    }
 
     #[test]
     fn refuses_what_would_break_out() {

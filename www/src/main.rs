@@ -2,7 +2,8 @@
 //!
 //! `cargo run -p aftercount-www` compiles the web crate to WebAssembly, puts it with its glue, the boot script, the
 //! style sheet and the licence notices into `www/page/index.html`, and writes `aftercount.html` and an example wiki
-//! page that frames it to `page/` in Cargo's target directory. `--no-open` keeps the result from being opened.
+//! page that frames it to `page/` in Cargo's target directory. Beside them it writes `aftercount.js`, the same program for
+//! pages with scripts of their own, with an example. `--no-open` keeps the result from being opened.
 
 mod inline;
 mod licences;
@@ -58,20 +59,30 @@ fn run() -> Result<()> {
         }
     }
     let workspace = Workspace::find()?;
-    let page = build(&workspace)?;
-    let written = write(&workspace, &page)?;
-    let sizes = Sizes::of(page.as_bytes())?;
-    println!("{}  {sizes}", written.page.display());
-    println!("{}", written.wiki.display());
+    let built = build(&workspace)?;
+    let written = write(&workspace, &built)?;
+    let sizes = Sizes::of(built.page.as_bytes())?;
+    println!("{}  {sizes}", written[0].display());
+    for further in &written[1..] {
+        println!("{}", further.display());
+    }
     sizes.check(LIMITS)?;
     if show {
-        open::show(&written.page);
+        open::show(&written[0]);
     }
     Ok(())
 }
 
-/// The finished page as text.
-fn build(workspace: &Workspace) -> Result<String> {
+/// What is made of the program.
+struct Finished {
+    /// The page.
+    page: String,
+    /// The script for other pages.
+    script: String,
+}
+
+/// The finished page and script as texts.
+fn build(workspace: &Workspace) -> Result<Finished> {
     toolchain::ensure_wasm_target()?;
     let built = wasm::build(workspace)?;
     let bound = wasm::bind(&built.wasm)?;
@@ -108,28 +119,43 @@ fn build(workspace: &Workspace) -> Result<String> {
         ],
     )?;
     let policy = policy::policy(&filled)?;
+    let script = inline::fill(
+        &read(&workspace.interface_source("loader.js"))?,
+        &[
+            ("wasm", &encoded),
+            ("glue", &bound.glue),
+            ("version", &version),
+            // The notices stand in a comment there, as plain text.
+            ("licences", &inline::in_comment(&licences)),
+        ],
+    )?;
     // Only once: the text above is free to contain the same letters.
-    Ok(filled.replacen("{{policy}}", &policy, 1))
+    let page = filled.replacen("{{policy}}", &policy, 1);
+    Ok(Finished { page, script })
 }
 
-struct Written {
-    page: PathBuf,
-    wiki: PathBuf,
-}
-
-fn write(workspace: &Workspace, page: &str) -> Result<Written> {
+/// Writes everything, the page first, and says where it lies.
+fn write(workspace: &Workspace, built: &Finished) -> Result<Vec<PathBuf>> {
     let folder = workspace.target.join("page");
     fs::create_dir_all(&folder).with_context(|| format!("cannot make {}", folder.display()))?;
-    let written = Written {
-        page: folder.join("aftercount.html"),
-        wiki: folder.join("wiki.html"),
+    let wiki = read(&workspace.page_source("wiki.html"))?;
+    let types = read(&workspace.interface_source("aftercount.d.ts"))?;
+    let example = read(&workspace.interface_source("example.html"))?;
+    let its_script = read(&workspace.interface_source("example.js"))?;
+    let files = [
+        ("aftercount.html", &built.page),
+        ("wiki.html", &wiki),
+        ("aftercount.js", &built.script),
+        ("aftercount.d.ts", &types),
+        ("interface.html", &example),
+        ("interface.js", &its_script),
+    ];
+    let put = |(name, text): (&str, &String)| {
+        let path = folder.join(name);
+        fs::write(&path, text).with_context(|| format!("cannot write {}", path.display()))?;
+        Ok(path)
     };
-    let put = |path: &Path, text: &str| {
-        fs::write(path, text).with_context(|| format!("cannot write {}", path.display()))
-    };
-    put(&written.page, page)?;
-    put(&written.wiki, &read(&workspace.page_source("wiki.html"))?)?;
-    Ok(written)
+    files.into_iter().map(put).collect()
 }
 
 fn read(path: &Path) -> Result<String> {

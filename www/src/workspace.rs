@@ -40,6 +40,11 @@ impl Workspace {
     pub(crate) fn page_source(&self, name: &str) -> PathBuf {
         self.root.join("www").join("page").join(name)
     }
+
+    /// A file of the interface for scripts of other pages.
+    pub(crate) fn interface_source(&self, name: &str) -> PathBuf {
+        self.root.join("www").join("interface").join(name)
+    }
 }
 
 /// The Cargo that started us.

@@ -17,6 +17,11 @@ pub fn wiki_url() -> Url {
     built("wiki.html")
 }
 
+/// The address of the example of a page that uses the interface for scripts.
+pub fn interface_url() -> Url {
+    built("interface.html")
+}
+
 fn built(name: &str) -> Url {
     let path = target().join("page").join(name);
     assert!(

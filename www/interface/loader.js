@@ -1,0 +1,45 @@
+// Aftercount {{version}} as one script for other pages: `await aftercount.ready`, then `aftercount.outcome(text)`.
+/*
+{{licences}}
+*/
+var aftercount = (function () {
+  "use strict";
+  const packed = "{{wasm}}";
+  let compiled;
+  let engine; // nothing until it is ready, and after it could not be started
+
+  // The glue keeps the engine's state in itself: called once more, it makes an engine that knows nothing of the last.
+  function glue() {
+    {{glue}}
+    return wasm_bindgen;
+  }
+
+  function start() {
+    engine = glue();
+    engine.initSync({ module: compiled });
+  }
+
+  function problem(words) {
+    return { ok: false, problems: [{ key: null, item: null, found: null, problem: words }] };
+  }
+
+  function outcome(text) {
+    if (!engine) return problem("Aftercount is not ready: await aftercount.ready first");
+    try {
+      return engine.outcome(text);
+    } catch (error) {
+      // An engine that stopped cannot be trusted with another call.
+      start();
+      return problem("Aftercount stopped on this text: " + error);
+    }
+  }
+
+  async function unpack() {
+    const bytes = Uint8Array.from(atob(packed), (letter) => letter.charCodeAt(0));
+    const stream = new Blob([bytes]).stream().pipeThrough(new DecompressionStream("gzip"));
+    compiled = await WebAssembly.compile(await new Response(stream).arrayBuffer());
+    start();
+  }
+
+  return Object.freeze({ ready: unpack(), outcome, version: "{{version}}" });
+})();
