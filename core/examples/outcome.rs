@@ -1,9 +1,10 @@
 //! The batch door: one link a line in, one JSON object a line out, blank and bad lines answered in place, in order.
 //!
-//! With `--working` each outcome also has its working, as the lines of plain text that the page shows. The lines are
-//! worked out on all cores, a block at a time, so that memory stays flat however many there are.
+//! With `--working` each outcome also has its working, as the lines of plain text that the page shows; with `--reversal`
+//! what would reverse it. The lines are worked out on all cores, a block at a time, so that memory stays flat however many
+//! there are.
 
-use aftercount_core::answer::{Answer, answer, answer_with_working};
+use aftercount_core::answer::{Besides, answer_with};
 use std::io::{self, BufRead, BufReader, BufWriter, Write};
 use std::process::ExitCode;
 use std::thread;
@@ -12,16 +13,18 @@ use std::thread;
 const BLOCK: usize = 512;
 
 fn main() -> ExitCode {
-    let options: Vec<String> = std::env::args().skip(1).collect();
-    let solve: fn(&str) -> Answer = match options.iter().map(String::as_str).collect::<Vec<_>>()[..] {
-        [] => answer,
-        ["--working"] => answer_with_working,
-        _ => {
-            eprintln!("outcome: links on standard input, one a line; the one option is --working");
-            return ExitCode::from(2);
+    let mut besides = Besides::default();
+    for option in std::env::args().skip(1) {
+        let wanted = match option.as_str() {
+            "--working" => &mut besides.working,
+            "--reversal" => &mut besides.reversal,
+            _ => return refuse(),
+        };
+        if std::mem::replace(wanted, true) {
+            return refuse();
         }
-    };
-    match run(solve) {
+    }
+    match run(besides) {
         Ok(()) => ExitCode::SUCCESS,
         // Whoever reads the answers has enough of them.
         Err(error) if error.kind() == io::ErrorKind::BrokenPipe => ExitCode::SUCCESS,
@@ -32,7 +35,14 @@ fn main() -> ExitCode {
     }
 }
 
-fn run(solve: fn(&str) -> Answer) -> io::Result<()> {
+fn refuse() -> ExitCode {
+    eprintln!(
+        "outcome: links on standard input, one a line; its options are --working and --reversal, each once"
+    );
+    ExitCode::from(2)
+}
+
+fn run(besides: Besides) -> io::Result<()> {
     let cores = thread::available_parallelism().map_or(1, usize::from);
     let mut out = BufWriter::new(io::stdout().lock());
     let mut input = BufReader::with_capacity(1 << 20, io::stdin());
@@ -41,7 +51,7 @@ fn run(solve: fn(&str) -> Answer) -> io::Result<()> {
         if lines.is_empty() {
             return out.flush();
         }
-        for answer in answers(&lines, cores, solve) {
+        for answer in answers(&lines, cores, besides) {
             writeln!(out, "{answer}")?;
         }
         // A pipe that asks line by line is answered line by line.
@@ -68,9 +78,14 @@ fn read_lines(input: &mut BufReader<io::Stdin>, most: usize) -> io::Result<Vec<S
 }
 
 /// The answers in the order of the lines.
-fn answers(lines: &[String], cores: usize, solve: fn(&str) -> Answer) -> Vec<String> {
+fn answers(lines: &[String], cores: usize, besides: Besides) -> Vec<String> {
     let share = lines.len().div_ceil(cores);
-    let work = |lines: &[String]| -> Vec<String> { lines.iter().map(|line| solve(line).to_json()).collect() };
+    let work = |lines: &[String]| -> Vec<String> {
+        lines
+            .iter()
+            .map(|line| answer_with(line, besides).to_json())
+            .collect()
+    };
     if lines.len() < 2 * cores {
         return work(lines);
     }

@@ -7,6 +7,7 @@ use crate::json::to_json;
 use crate::outcome::Outcome;
 use crate::pairs::Pairs;
 use crate::problem::Problem;
+use crate::reversal::{Entry, Reversal};
 use crate::statement::{Statement, Values};
 use crate::words::working::{WorkingLine, working};
 use serde::ser::{Serialize, SerializeStruct, Serializer};
@@ -20,6 +21,8 @@ pub enum Answer {
         outcome: Box<Outcome>,
         /// How, line by line, where that was asked for.
         working: Option<Vec<String>>,
+        /// What would reverse it, where that was asked for.
+        reversal: Option<Vec<Entry>>,
     },
     /// Numbers in question were worked out.
     Asked {
@@ -32,17 +35,22 @@ pub enum Answer {
     Problems(Vec<Problem>),
 }
 
+/// What is wanted beside the outcome.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
+pub struct Besides {
+    /// How it was worked out.
+    pub working: bool,
+    /// What would reverse it, which takes hundreds of fights.
+    pub reversal: bool,
+}
+
 /// Works out what `link` states.
 pub fn answer(link: &str) -> Answer {
-    read_and_fight(link, false)
+    answer_with(link, Besides::default())
 }
 
-/// Works out what `link` states, and shows how.
-pub fn answer_with_working(link: &str) -> Answer {
-    read_and_fight(link, true)
-}
-
-fn read_and_fight(link: &str, shown: bool) -> Answer {
+/// Works out what `link` states, and what is wanted beside it.
+pub fn answer_with(link: &str, besides: Besides) -> Answer {
     let pairs = Pairs::parse(link);
     let statement = match Statement::read(&pairs) {
         Ok(statement) => statement,
@@ -53,14 +61,14 @@ fn read_and_fight(link: &str, shown: bool) -> Answer {
             asked: ask(&pairs, &statement),
             outcome: statement
                 .has_base()
-                .then(|| Box::new(worked_out(&statement, shown))),
+                .then(|| Box::new(worked_out(&pairs, &statement, besides))),
         };
     }
-    worked_out(&statement, shown)
+    worked_out(&pairs, &statement, besides)
 }
 
 /// The outcome with the numbers as they are now.
-fn worked_out(statement: &Statement, shown: bool) -> Answer {
+fn worked_out(pairs: &Pairs, statement: &Statement, besides: Besides) -> Answer {
     let outcome = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
     let lines = || {
         working(statement, &outcome)
@@ -68,10 +76,13 @@ fn worked_out(statement: &Statement, shown: bool) -> Answer {
             .map(WorkingLine::text)
             .collect()
     };
-    let working = shown.then(lines);
+    let working = besides.working.then(lines);
+    let entries = || Reversal::new(pairs, statement).finished().into_entries();
+    let reversal = besides.reversal.then(entries);
     Answer::Outcome {
         outcome: Box::new(outcome),
         working,
+        reversal,
     }
 }
 
@@ -90,13 +101,9 @@ fn ask(pairs: &Pairs, statement: &Statement) -> Vec<Asked> {
 impl Serialize for Answer {
     fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
         match self {
-            Answer::Outcome { outcome, working } => {
-                write_outcome(None, outcome, working.as_deref(), serializer)
-            }
+            Answer::Outcome { .. } => write_outcome(None, self, serializer),
             Answer::Asked { asked, outcome } => match outcome.as_deref() {
-                Some(Answer::Outcome { outcome, working }) => {
-                    write_outcome(Some(asked), outcome, working.as_deref(), serializer)
-                }
+                Some(outcome @ Answer::Outcome { .. }) => write_outcome(Some(asked), outcome, serializer),
                 _ => {
                     let mut answer = serializer.serialize_struct("Answer", 3)?;
                     answer.serialize_field("ok", &true)?;
@@ -115,13 +122,20 @@ impl Serialize for Answer {
     }
 }
 
-/// The fields of an outcome between `ok` and its working: by name, as serde's `flatten` is slower.
+/// The fields of an outcome between `ok` and what was asked for besides: by name, as serde's `flatten` is slower.
 fn write_outcome<S: Serializer>(
     asked: Option<&[Asked]>,
-    outcome: &Outcome,
-    working: Option<&[String]>,
+    answer: &Answer,
     serializer: S,
 ) -> Result<S::Ok, S::Error> {
+    let Answer::Outcome {
+        outcome,
+        working,
+        reversal,
+    } = answer
+    else {
+        return serializer.serialize_none();
+    };
     // Taken apart in full, so that none can be forgotten.
     let Outcome {
         breaks,
@@ -136,8 +150,9 @@ fn write_outcome<S: Serializer>(
         method,
         pieces,
         caution,
-    } = outcome;
-    let besides = usize::from(asked.is_some()) + usize::from(working.is_some());
+    } = &**outcome;
+    let besides = [asked.is_some(), working.is_some(), reversal.is_some()];
+    let besides: usize = besides.into_iter().map(usize::from).sum();
     let mut answer = serializer.serialize_struct("Answer", 13 + besides)?;
     answer.serialize_field("ok", &true)?;
     if let Some(asked) = asked {
@@ -157,6 +172,9 @@ fn write_outcome<S: Serializer>(
     answer.serialize_field("caution", caution)?;
     if let Some(working) = working {
         answer.serialize_field("working", working)?;
+    }
+    if let Some(reversal) = reversal {
+        answer.serialize_field("reversal", reversal)?;
     }
     answer.end()
 }

@@ -16,6 +16,9 @@ use crate::trajectory::Trajectory;
 /// How much is asked of a fight.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Effort {
+    /// Who breaks, when, and what is left; of a fight without end also who fades. What it would have come to had it gone on
+    /// is left out: to work that out takes as long again.
+    Ending,
     /// The outcome alone.
     Outcome,
     /// The outcome, and strength over time.
@@ -38,7 +41,7 @@ pub struct Fight {
 /// Its numbers keep the limits of their keys: `Statement::read` sees to that.
 pub fn fight(engagement: &Engagement, effort: Effort) -> Fight {
     let run = Run::of(engagement);
-    let outcome = run.outcome(engagement);
+    let outcome = run.outcome(engagement, effort);
     let work = run
         .stretches
         .iter()
@@ -141,8 +144,13 @@ impl Run {
     }
 
     fn break_at_instant(&mut self, engagement: &Engagement, at: f64) -> bool {
-        let broken =
-            Both::of(|side| self.ledger[side].has_broken(engagement.sides[side].break_point, self.due[side]));
+        let broken = Both::of(|side| {
+            let break_point = engagement.sides[side].break_point;
+            // To the last it has done so only where the stretch before came to it: one that fades has lost all but for a
+            // rest that the sum of the losses has no digits for.
+            let may = break_point < 1.0 || self.due[side];
+            may && self.ledger[side].has_broken(break_point, self.due[side])
+        });
         let breaks = Breaks::of(broken);
         if let Some(breaks) = breaks {
             self.finish(breaks, Ended::Break, at);
@@ -319,7 +327,9 @@ impl Run {
         }
     }
 
-    fn outcome(&self, engagement: &Engagement) -> Outcome {
+    fn outcome(&self, engagement: &Engagement, effort: Effort) -> Outcome {
+        let whole = effort != Effort::Ending;
+        let is_asked = whole || self.breaks == Breaks::Neither && self.ended == Ended::Limit;
         let sides = Both::of(|side| {
             let ledger = &self.ledger[side];
             SideOutcome {
@@ -349,8 +359,8 @@ impl Run {
                 None
             },
             ended: self.ended,
-            to_the_last: self.to_the_last(engagement),
-            below_one: self.below_one(),
+            to_the_last: is_asked.then(|| self.to_the_last(engagement)).flatten(),
+            below_one: whole.then(|| self.below_one()).flatten(),
             x: sides.x,
             y: sides.y,
             loss_exchange_ratio,
@@ -494,6 +504,22 @@ pub fn break_line(engagement: &Engagement, side: Side) -> Double {
 #[cfg(test)]
 mod tests {
     use crate::answer::{Answer, answer};
+    use crate::outcome::Breaks;
+
+    /// A side of which next to nothing was left when the enemy's reserve came: its losses were rounded to all it had.
+    #[test]
+    fn a_side_that_fades_to_the_last_is_not_broken_by_rounding() {
+        for wastage in [9, 90, 900] {
+            let link = format!(
+                "x.start=135&x.rate=0.23&x.join=30@1.9&x.wastage={wastage}&y.start=412&y.fire=logarithmic&y.rate=0.067&\
+                 y.break=0.1&y.join=116@6.5"
+            );
+            let Answer::Outcome { outcome, .. } = answer(&link) else {
+                panic!("it is worked out")
+            };
+            assert_eq!(outcome.breaks, Breaks::Neither, "{wastage}");
+        }
+    }
 
     /// A side that was withdrawn to the last while a flow kept bringing some: it was found gone again and again, without
     /// end.

@@ -211,7 +211,7 @@ impl<'a> Serializer for Writer<'a> {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::answer::{answer, answer_with_working};
+    use crate::answer::{Besides, answer, answer_with};
     use crate::golden;
 
     /// The lines of links of all kinds, and texts with all that must be escaped.
@@ -220,8 +220,12 @@ mod tests {
         let mut links: Vec<String> = (0..200).map(golden::link).collect();
         links.push("x.start=%22%5C%01%C3%A9%E2%80%A8%7F/&x.rate=-0&title=%0A".into());
         links.push("x.start=600&x.rate=0.04&y.start=400&y.rate=0.05&x.name=%22O%5C&x.join=-0.1@1".into());
-        for link in links {
-            for answer in [answer(&link), answer_with_working(&link)] {
+        for (place, link) in links.into_iter().enumerate() {
+            let besides = Besides {
+                working: true,
+                reversal: place == 0,
+            };
+            for answer in [answer(&link), answer_with(&link, besides)] {
                 let known = serde_json::to_string(&answer).expect("it can be written");
                 assert_eq!(to_json(&answer), known, "{link}");
             }

@@ -36,6 +36,7 @@ pub mod problem;
 pub mod put;
 pub mod quadrature;
 pub mod quantity;
+pub mod reversal;
 pub mod schedule;
 pub mod share;
 pub mod sides;

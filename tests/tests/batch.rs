@@ -1,6 +1,6 @@
 //! The door for batches, as a user opens it: one link a line in, one object of JSON a line out.
 
-use aftercount_core::answer::answer_with_working;
+use aftercount_core::answer::{Besides, answer_with};
 use aftercount_core::golden;
 use aftercount_tests::tables::{self, project};
 use serde_json::Value;
@@ -238,7 +238,13 @@ fn working_is_shown_where_it_is_asked_for() {
                 .is_some_and(|line| !line.trim().is_empty() && !line.contains('<'))),
             "{lines:?}"
         );
-        let known: Value = serde_json::from_str(&answer_with_working(link).to_json()).expect("JSON");
+        let known: Value = {
+            let besides = Besides {
+                working: true,
+                ..Besides::default()
+            };
+            serde_json::from_str(&answer_with(link, besides).to_json()).expect("JSON")
+        };
         assert_eq!(answer, &known);
     }
     assert!(found[1].get("working").is_none(), "{}", found[1]);
@@ -248,8 +254,45 @@ fn working_is_shown_where_it_is_asked_for() {
 }
 
 #[test]
+fn what_would_reverse_it_is_given_in_the_order_of_the_lines() {
+    let other = "x.start=300&x.rate=0.05&y.start=500&y.rate=0.02&y.join=40@2";
+    let lines = format!("{GOOD}\nx.start=NaN\n{other}\n{GOOD}\n");
+    let found = answers(&["--reversal"], lines.as_bytes());
+    let plain = batch(lines.as_bytes());
+    for (answer, link) in [(&found[0], GOOD), (&found[2], other), (&found[3], GOOD)] {
+        let besides = Besides {
+            reversal: true,
+            ..Besides::default()
+        };
+        let known: Value = serde_json::from_str(&answer_with(link, besides).to_json()).expect("JSON");
+        assert_eq!(answer, &known);
+        for entry in answer["reversal"].as_array().expect("a list") {
+            let keys: Vec<&str> = entry
+                .as_object()
+                .expect("an object")
+                .keys()
+                .map(String::as_str)
+                .collect();
+            let known = ["breaks", "change", "elasticity", "kind", "now", "slot", "value"];
+            assert_eq!(keys, known, "{entry}");
+            assert_eq!(entry["value"].is_null(), entry["change"].is_null());
+            assert!(entry["kind"] == "reversed" || entry["kind"] == "undecided");
+        }
+    }
+    assert!(found[1].get("reversal").is_none());
+    let mut without = found[0].clone();
+    without.as_object_mut().expect("an object").remove("reversal");
+    assert_eq!(without, plain[0], "and all else is the same");
+}
+
+#[test]
 fn an_option_it_does_not_know_is_refused() {
-    for options in [&["--workings"][..], &["--working", "--working"], &["links.txt"]] {
+    for options in [
+        &["--workings"][..],
+        &["--working", "--working"],
+        &["--reversal", "--reversal"],
+        &["links.txt"],
+    ] {
         let output = door(options, GOOD.as_bytes());
         assert_eq!(output.status.code(), Some(2), "{options:?}");
         assert!(output.stdout.is_empty(), "{options:?}");

@@ -1,0 +1,359 @@
+//! What would reverse the outcome: for every number of an engagement, changed alone, the nearest value at which the other
+//! side breaks first, and where no value does that, the nearest at which nobody does.
+//!
+//! Where the state equation gives the value in closed form it is taken from there; else the number is looked
+//! at from its present value outwards ([`outward`]), on both sides, and the first change is closed in on ([`close_in`]). All
+//! of it is done one fight at a time, so that a page can stop between two of them.
+
+mod aim;
+mod close_in;
+mod elasticity;
+mod measure;
+mod outward;
+mod search;
+mod written;
+
+pub use elasticity::Elasticity;
+pub use measure::Told;
+
+use crate::asked::outright;
+use crate::fight::{Effort, fight};
+use crate::keys::Unit;
+use crate::outcome::{Breaks, Outcome};
+use crate::pairs::Pairs;
+use crate::sides::Side;
+use crate::slots::{Slot, slots};
+use crate::statement::{Statement, Values};
+use crate::terms::Engagement;
+use aim::{Aim, Standing, gives_way, lead};
+use measure::Measure;
+use search::{Found, Search};
+use serde::ser::{Serialize, SerializeStruct, Serializer};
+use std::cmp::Ordering;
+
+/// What a value beyond the present one brings.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, serde::Serialize)]
+#[serde(rename_all = "lowercase")]
+pub enum Kind {
+    /// The other side breaks first; where neither does now, one does.
+    Reversed,
+    /// Neither side breaks, or both do at one moment.
+    Undecided,
+}
+
+/// The nearest value at which the outcome is another.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Change {
+    /// The value next to the change, on its far side, to a part of 1e-10 or better.
+    pub value: f64,
+    /// The same as it would be written: beyond the change, in the fewest digits that are not far from it.
+    pub written: String,
+    /// By how much it differs from the present value, told as [`Entry::told`] says.
+    pub by: f64,
+    /// What it brings.
+    pub kind: Kind,
+    /// Who breaks first there.
+    pub breaks: Breaks,
+    /// Who gives way there: breaks first, or fades without end; `None` for neither or both.
+    pub gives_way: Option<Side>,
+}
+
+/// One number of the engagement, and what it takes to reverse the outcome by it alone.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Entry {
+    /// The number.
+    pub slot: Slot,
+    /// Its present value.
+    pub now: f64,
+    /// How its changes are told.
+    pub told: Told,
+    /// The nearest reversal; `None` where no value within its limits does, at the resolution of the search.
+    pub change: Option<Change>,
+    /// The change in parts of what counts as a whole: by this entries are set in order.
+    pub size: f64,
+    /// What a small change of it does.
+    pub elasticity: Elasticity,
+}
+
+/// The digits that a value is written with.
+const FEWEST: usize = 4;
+const MOST: usize = 17;
+
+/// What is being done for the number at hand.
+#[derive(Clone, Debug)]
+enum Stage {
+    /// Its value is searched.
+    Search(Box<Search>),
+    /// It is written in as few digits as will do, these next.
+    Write(Found, usize),
+    /// Nothing is left but what a small change does.
+    Elasticity,
+}
+
+/// The search through all numbers of an engagement.
+#[derive(Clone, Debug)]
+pub struct Reversal {
+    engagement: Engagement,
+    outcome: Outcome,
+    aim: Aim,
+    measure: Measure,
+    slots: Vec<Slot>,
+    /// The number at hand, and what was found for it.
+    at: usize,
+    stage: Option<Stage>,
+    change: Option<Change>,
+    small: elasticity::Search,
+    entries: Vec<Entry>,
+    fights: u32,
+}
+
+/// Looks to a power of ten of change.
+const A_DECADE: f64 = 16.0;
+/// The same where each look takes the integrator.
+const A_DECADE_INTEGRATED: f64 = 6.0;
+
+/// A change of no more than this part of a whole is the least there is: any change of that number does it,
+const LEAST: f64 = 1e-9;
+/// and so it is written as this part of a whole.
+const SOME: f64 = 1e-3;
+
+/// A written value is no further beyond the change than this part of the way to it.
+const FURTHER: f64 = 0.02;
+
+impl Reversal {
+    /// A search at its beginning; `pairs` are those that `statement` was read from.
+    pub fn new(pairs: &Pairs, statement: &Statement) -> Reversal {
+        let engagement = statement.engagement(&Values::new());
+        let fight = fight(&engagement, Effort::Ending);
+        Reversal {
+            aim: Aim::of(&fight.outcome),
+            measure: Measure::of(&engagement, &fight.outcome),
+            slots: slots(pairs, statement),
+            at: 0,
+            stage: None,
+            change: None,
+            small: elasticity::Search::default(),
+            entries: Vec::new(),
+            fights: 1,
+            outcome: fight.outcome,
+            engagement,
+        }
+    }
+
+    /// The same search for some of the numbers alone.
+    pub fn only(mut self, keep: impl Fn(&Slot) -> bool) -> Reversal {
+        self.slots.retain(keep);
+        self
+    }
+
+    /// Goes to the end at once.
+    pub fn finished(mut self) -> Reversal {
+        while self.step() {}
+        self
+    }
+
+    /// Goes on by one fight, or what takes no longer; says whether anything is left to do.
+    pub fn step(&mut self) -> bool {
+        let Some(slot) = self.slots.get(self.at) else {
+            return false;
+        };
+        let slot = slot.clone();
+        let now = slot.value().unwrap_or(0.0);
+        match self.stage.take() {
+            None => {
+                let search = self.search(&slot, now);
+                self.stage = Some(Stage::Search(Box::new(search)));
+            }
+            Some(Stage::Search(mut search)) => {
+                let before = search.fights;
+                let goes_on = search.step(&mut self.engagement);
+                self.fights += search.fights - before;
+                self.stage = Some(match (goes_on, search.found()) {
+                    (true, _) => Stage::Search(search),
+                    (false, Some(found)) => Stage::Write(found, FEWEST - 1),
+                    (false, None) => Stage::Elasticity,
+                });
+            }
+            Some(Stage::Write(found, digits)) => self.write(&slot, now, found, digits),
+            Some(Stage::Elasticity) => self.small_change(slot, now),
+        }
+        true
+    }
+
+    /// Whether nothing is left to do.
+    pub fn is_done(&self) -> bool {
+        self.at == self.slots.len()
+    }
+
+    /// How far it is, from 0 to 1.
+    pub fn progress(&self) -> f64 {
+        self.at as f64 / self.slots.len().max(1) as f64
+    }
+
+    /// The fights it took so far.
+    pub fn fights(&self) -> u32 {
+        self.fights
+    }
+
+    /// Whether a side breaks first, or fades, as it is: else there is nothing to reverse, and a change decides.
+    pub fn is_decided(&self) -> bool {
+        self.aim != Aim::Undecided
+    }
+
+    /// What has been found so far: first what reverses the outcome, then what leaves it undecided, each the smallest change
+    /// first, strengths, rates and lengths that are 0 now behind the rest; then the numbers of which no value does.
+    pub fn entries(&self) -> Vec<&Entry> {
+        let mut entries: Vec<&Entry> = self.entries.iter().collect();
+        entries.sort_by(|a, b| a.before(b));
+        entries
+    }
+
+    /// The same, as a list of its own.
+    pub fn into_entries(mut self) -> Vec<Entry> {
+        self.entries.sort_by(Entry::before);
+        self.entries
+    }
+
+    fn search(&mut self, slot: &Slot, now: f64) -> Search {
+        let whole = self.measure.whole(slot, now);
+        let a_decade = if self.is_integrated(slot, now, whole) {
+            A_DECADE_INTEGRATED
+        } else {
+            A_DECADE
+        };
+        let outward = outward::outward(slot, now, &self.engagement, &self.measure, a_decade);
+        let lead = lead(&self.engagement, &self.outcome);
+        let mut search = Search::new(slot.place, now, whole, self.aim, lead, outward);
+        let formula = matches!(self.aim, Aim::Broken(_)).then(|| outright(&self.engagement, slot.place));
+        if let Some(value) = formula.flatten() {
+            search.try_at(&mut self.engagement, value, slot.limits);
+            self.fights += search.fights;
+        }
+        search
+    }
+
+    /// Whether a fight takes the integrator once this number is another.
+    fn is_integrated(&mut self, slot: &Slot, now: f64, whole: f64) -> bool {
+        let others = [now + 0.01 * whole, now - 0.01 * whole];
+        let Some(other) = others.into_iter().find(|value| slot.limits.hold(*value)) else {
+            return false;
+        };
+        self.engagement.put(slot.place, other);
+        let work = fight(&self.engagement, Effort::Ending).work;
+        self.engagement.put(slot.place, now);
+        self.fights += 1;
+        work.steps > 0
+    }
+
+    /// One try at writing a value that was found.
+    fn write(&mut self, slot: &Slot, now: f64, found: Found, digits: usize) {
+        let whole = self.measure.whole(slot, now);
+        let least = (found.value - now).abs() <= LEAST * whole;
+        let last = digits >= MOST;
+        let text = match digits {
+            MOST.. => format!("{}", found.value),
+            // Before all others: of what any change does, a change that can be seen.
+            ..FEWEST if least => written::beyond(now + SOME * whole * (found.value - now).signum(), now, 2),
+            _ => written::beyond(found.value, now, digits),
+        };
+        let value: f64 = text.parse().unwrap_or(found.value);
+        let near = if digits < FEWEST {
+            least
+        } else {
+            (value - found.value).abs() <= FURTHER * (found.value - now).abs()
+        };
+        if !last && !(near && slot.limits.hold(value)) {
+            self.stage = Some(Stage::Write(found, digits + 1));
+            return;
+        }
+        self.engagement.put(slot.place, value);
+        let outcome = fight(&self.engagement, Effort::Ending).outcome;
+        self.engagement.put(slot.place, now);
+        self.fights += 1;
+        if !last && self.aim.judge(&outcome) != found.standing {
+            self.stage = Some(Stage::Write(found, digits + 1));
+            return;
+        }
+        let by = match Measure::told(slot, now) {
+            Told::Relative => (found.value - now) / now.abs(),
+            Told::Absolute => found.value - now,
+        };
+        self.change = Some(Change {
+            value: found.value,
+            written: text,
+            by,
+            kind: match found.standing {
+                Standing::Reversed => Kind::Reversed,
+                _ => Kind::Undecided,
+            },
+            breaks: outcome.breaks,
+            gives_way: gives_way(&outcome),
+        });
+        self.stage = Some(Stage::Elasticity);
+    }
+
+    fn small_change(&mut self, slot: Slot, now: f64) {
+        self.fights += 1;
+        let goes_on = self.small.step(&mut self.engagement, &self.outcome, &slot, now);
+        if goes_on {
+            self.stage = Some(Stage::Elasticity);
+            return;
+        }
+        let change = self.change.take();
+        let whole = self.measure.whole(&slot, now);
+        let size = change
+            .as_ref()
+            .map_or(f64::INFINITY, |change| (change.value - now).abs() / whole);
+        self.entries.push(Entry {
+            told: Measure::told(&slot, now),
+            elasticity: std::mem::take(&mut self.small).elasticity(),
+            slot,
+            now,
+            change,
+            size,
+        });
+        self.at += 1;
+    }
+}
+
+impl Entry {
+    /// Whether the least change does it.
+    pub fn is_least(&self) -> bool {
+        self.size <= LEAST
+    }
+
+    /// Whether it is a strength, a rate or a length that is 0 now: no part of it says how much a change is.
+    pub fn is_of_nothing(&self) -> bool {
+        let measured_by_itself = matches!(self.slot.unit, Unit::Time | Unit::Fraction | Unit::Exponent);
+        self.now == 0.0 && !measured_by_itself
+    }
+
+    /// The order of entries: see [`Reversal::entries`].
+    fn before(&self, other: &Entry) -> Ordering {
+        let rank = |entry: &Entry| match entry.change.as_ref().map(|change| change.kind) {
+            Some(Kind::Reversed) => (0, entry.is_of_nothing()),
+            Some(Kind::Undecided) => (1, entry.is_of_nothing()),
+            None => (2, false),
+        };
+        rank(self)
+            .cmp(&rank(other))
+            .then(self.size.total_cmp(&other.size))
+    }
+}
+
+impl Serialize for Entry {
+    fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
+        let change = self.change.as_ref();
+        let mut entry = serializer.serialize_struct("Entry", 7)?;
+        entry.serialize_field("slot", &self.slot.name)?;
+        entry.serialize_field("now", &self.now)?;
+        entry.serialize_field("value", &change.map(|change| change.value))?;
+        entry.serialize_field("change", &change.map(|change| change.by))?;
+        // Of a number of which no value does, what was looked for.
+        let kind = change.map_or(Kind::Reversed, |change| change.kind);
+        entry.serialize_field("kind", &kind)?;
+        entry.serialize_field("breaks", &change.map(|change| change.breaks))?;
+        entry.serialize_field("elasticity", &self.elasticity)?;
+        entry.end()
+    }
+}
