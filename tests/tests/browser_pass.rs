@@ -180,12 +180,36 @@ fn without_an_outcome_only_the_text_is_copied() {
     browser.settle(LINK);
     browser.write("x.start", "6,0");
     browser.click("[data-pass=copy-as]");
-    browser.wait_text("#copy-finding-why", "Nothing was worked out");
+    browser.wait_text("#copy-finding-why", "There is no outcome");
     browser.press("[data-pass=copy-finding]", Key::Enter);
     browser.press("[data-pass=copy-link]", Key::Enter);
     browser.wait_text("#copy-said", "with the keyboard");
     let link = changed(LINK, "x.start", "6,0");
     assert_eq!(browser.script(CHOSEN, vec![]), json!(["copy-text", link]));
+    browser.assert_clean();
+}
+
+#[test]
+fn the_answer_to_a_question_is_part_of_the_finding() {
+    let link = changed(LINK, "x.start", "60000?");
+    let browser = Browser::opened(&link);
+    browser.wait(
+        "the answer",
+        "return document.getElementById('asked').getAttribute('aria-busy') !== 'true';",
+    );
+    browser.click("[data-pass=copy-as]");
+    browser.press("[data-pass=copy-finding]", Key::Enter);
+    let finding = browser.script(
+        "return document.getElementById('copy-text').value.split('\\n');",
+        vec![],
+    );
+    let lines: Vec<String> = serde_json::from_value(finding).expect("lines");
+    assert_eq!(lines.len(), 4, "{lines:?}");
+    assert!(
+        lines[0].starts_with("In this model Vessary breaks first"),
+        "{lines:?}"
+    );
+    assert!(lines[1].contains("Ondrel"), "{lines:?}");
     browser.assert_clean();
 }
 

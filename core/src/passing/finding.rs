@@ -17,6 +17,8 @@ pub struct Finding<'a> {
     pub statement: &'a Statement,
     /// What it leaves.
     pub outcome: &'a Outcome,
+    /// What a number in question must be, where one is asked for.
+    pub asked: Option<&'a str>,
     /// The line "Nearest reversal: …", where it is known.
     pub reversal: Option<&'a str>,
     /// The version of the page.
@@ -24,14 +26,15 @@ pub struct Finding<'a> {
 }
 
 impl Finding<'_> {
-    /// The finding with plain digits, a line each: the marking, the sentence, the nearest reversal, the text mark with
-    /// the version, the caution. What there is none of is left out.
+    /// The finding with plain digits, a line each: the marking, the sentence, the answer to a question, the nearest
+    /// reversal, the text mark with the version, the caution. What there is none of is left out.
     pub fn lines(&self) -> String {
         let sentence = plain(&sentence(self.statement, self.outcome));
-        let reversal = self.reversal.map(plain).unwrap_or_default();
+        let [asked, reversal] = [self.asked, self.reversal].map(|line| line.map(plain).unwrap_or_default());
         let lines = [
             self.statement.marking.trim(),
             &sentence,
+            &asked,
             &reversal,
             &self.mark_and_version(),
             caution::SHORT,
@@ -111,6 +114,7 @@ pub(super) mod tests {
             pairs: &pairs,
             statement: &statement,
             outcome: &fight.outcome,
+            asked: None,
             reversal: Some("Nearest reversal: 12\u{202f}345 more"),
             version: "0.1.0",
         };
@@ -126,11 +130,14 @@ pub(super) mod tests {
             format!("Text mark {}, Aftercount 0.1.0", text_mark(&pairs))
         );
         assert_eq!(lines[4], caution::SHORT);
-        let known = Finding {
+        let asked = Finding {
             reversal: None,
+            asked: Some("A number must be 12\u{202f}000."),
             ..finding
         };
-        assert_eq!(known.lines().lines().count(), 4);
+        assert_eq!(asked.lines().lines().nth(2), Some("A number must be 12000."));
+        let neither = Finding { asked: None, ..asked };
+        assert_eq!(neither.lines().lines().count(), 4);
     }
 
     #[test]
@@ -140,6 +147,7 @@ pub(super) mod tests {
             pairs: &pairs,
             statement: &statement,
             outcome: &fight.outcome,
+            asked: None,
             reversal: None,
             version: "0.1.0",
         };

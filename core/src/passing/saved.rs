@@ -26,14 +26,15 @@ pub fn saved(pairs: &Pairs, finding: Option<&Finding<'_>>, version: &str, when: 
         Some(finding) => plain(&sentence(finding.statement, finding.outcome)),
         None => "Nothing was worked out for this text.".into(),
     };
-    let reversal = finding.and_then(|finding| finding.reversal).map(plain);
+    let line = |line: Option<&str>| line.map(plain).unwrap_or_default();
     [
         "An engagement, for Aftercount\n",
         &marking,
         &labelled("Title", &text("title")),
         &labelled("Note", &text("note")),
         &labelled("Outcome", &outcome),
-        &labelled("Also", &reversal.unwrap_or_default()),
+        &labelled("Asked", &line(finding.and_then(|finding| finding.asked))),
+        &labelled("Also", &line(finding.and_then(|finding| finding.reversal))),
         &labelled("Text mark", &text_mark(pairs)),
         &labelled("Saved", &seen(when)),
         &labelled("By", &format!("Aftercount {}", seen(version))),
@@ -97,6 +98,7 @@ mod tests {
             pairs: &pairs,
             statement: &statement,
             outcome: &fight.outcome,
+            asked: Some("A number must be 12\u{202f}000."),
             reversal: None,
             version: "0.1.0",
         };
@@ -104,6 +106,7 @@ mod tests {
         for part in [
             "Marking: EXERCISE\nTitle: Turn 3\nOutcome: In this model Side Y breaks first",
             "of 60000",
+            "Asked: A number must be 12000.\n",
             "Saved: 2026-12-01 14:05\nBy: Aftercount 0.1.0\n",
             caution::FULL,
             "---- end ----\nMarking: EXERCISE\n",

@@ -216,6 +216,7 @@ mod tests {
             pairs: &pairs,
             statement: &statement,
             outcome: &fight.outcome,
+            asked: None,
             reversal: None,
             version: "0.1.0",
         };

@@ -11,7 +11,7 @@ pub const NO_ADDRESS: &str =
 
 /// Stands in place of what needs an outcome.
 pub const NO_OUTCOME: &str =
-    "Nothing was worked out for the text as it stands: only the text itself can be copied.";
+    "There is no outcome for the text as it stands: only the text itself can be passed on.";
 
 /// Stands beside a download in a frame, which may not be allowed.
 pub const FRAMED: &str = "If no file came: this frame does not allow downloads. Open the page by itself, or copy what \

@@ -18,6 +18,13 @@ impl Page {
         self.good.as_ref().filter(|_| self.current)
     }
 
+    /// What a number in question must be, where that is known.
+    pub(crate) fn asked(&self) -> Option<String> {
+        self.asking
+            .sentence()
+            .filter(|_| self.current && self.asking.is_done())
+    }
+
     pub(crate) fn passing(&mut self) -> &mut Passing {
         &mut self.passing
     }

@@ -147,10 +147,12 @@ fn version(dom: &Dom) -> String {
 fn with_finding<T>(page: &Page, act: impl FnOnce(&Finding<'_>, &Good) -> T) -> Option<T> {
     let good = page.outcome()?;
     let version = version(page.dom());
+    let asked = page.asked();
     let finding = Finding {
         pairs: page.pairs(),
         statement: &good.statement,
         outcome: &good.fight.outcome,
+        asked: asked.as_deref(),
         reversal: None,
         version: &version,
     };
