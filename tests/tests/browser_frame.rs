@@ -13,53 +13,66 @@ fn framed_link(browser: &Browser) -> String {
     fragment.as_str().expect("an address has a fragment").to_owned()
 }
 
+/// The frames of the example.
+const FRAMES: u16 = 3;
+
 #[test]
-fn a_wiki_s_frame_works_with_an_opaque_origin() {
+fn a_wiki_s_frames_work_with_an_opaque_origin() {
     for screen in [Screen::DESK, Screen::FRAME_UPRIGHT] {
         let browser = Browser::start();
         browser.screen(screen);
         browser.open_address(wiki_url().as_str());
-        browser.picture(&format!("wiki-{}", screen.width));
-        let said = browser.text("#said");
         let entries = browser.script("return history.length;", vec![]);
-        browser.enter_frame();
-        let link = framed_link(&browser);
-        assert_eq!(browser.settle(&link), native(&link));
-        assert_eq!(
-            browser.script("return self.origin;", vec![]),
-            "null",
-            "the sandbox gives no origin"
-        );
-        assert_eq!(browser.text("#sentence"), native_sentence(&link));
-        assert_eq!(
-            browser.text("#sentence"),
-            said,
-            "the wiki's own words, for print and search"
-        );
-        assert!(browser.text("#short-caution").contains(CAUTION));
-        assert!(!browser.text("#text-mark").is_empty());
-        assert!(!browser.text("#open-sheet").is_empty());
-        assert_eq!(browser.text("[name='x.start']"), "", "a frame has no form");
-        assert_eq!(
-            browser.script("return document.activeElement === document.body;", vec![]),
-            true,
-            "it takes no focus"
-        );
-        assert_eq!(
-            browser.script("return history.length;", vec![]),
-            entries,
-            "a frame adds nothing to the history"
-        );
+        let mut links = Vec::new();
+        for frame in 0..FRAMES {
+            let said = browser.text(&format!("#said-{}", frame + 1));
+            browser.enter_frame_number(frame);
+            let link = framed_link(&browser);
+            assert_eq!(browser.settle(&link), native(&link));
+            assert_eq!(browser.text("#sentence"), native_sentence(&link));
+            assert_eq!(
+                said,
+                native_sentence(&link),
+                "the wiki's own words, for print and search"
+            );
+            is_a_frame(&browser);
+            let length = browser.script("return history.length;", vec![]);
+            assert_eq!(length, entries, "a frame adds nothing to the history");
+            links.push(link);
+            browser.leave_frame();
+        }
+        links.dedup();
+        assert_eq!(links.len(), usize::from(FRAMES), "each shows another engagement");
+        browser.picture(&format!("wiki-{}", screen.width));
 
         // The page around it may change the frame's fragment; a frame of no origin may not, not even its own.
-        let other = changed(&link, "x.start", "900");
-        browser.leave_frame();
-        let script = "const frame = document.querySelector('iframe'); frame.src = frame.src.split('#')[0] + '#' + arguments[0];";
+        let other = changed(&links[0], "x.start", "900");
+        let script = "const frame = document.querySelector('iframe');
+            frame.src = frame.src.split('#')[0] + '#' + arguments[0];";
         browser.script(script, vec![other.clone().into()]);
         browser.enter_frame();
         assert_eq!(browser.settle(&other), native(&other));
         browser.assert_clean();
     }
+}
+
+/// What every frame is: whole, of no origin, quiet, without a form and without anything that could be dragged.
+fn is_a_frame(browser: &Browser) {
+    let origin = browser.script("return self.origin;", vec![]);
+    assert_eq!(origin, "null", "the sandbox gives no origin");
+    assert!(browser.text("#short-caution").contains(CAUTION));
+    assert!(!browser.text("#text-mark").is_empty());
+    assert!(!browser.text("#open-sheet").is_empty());
+    assert_eq!(browser.text("[name='x.start']"), "", "a frame has no form");
+    let focus = browser.script("return document.activeElement === document.body;", vec![]);
+    assert_eq!(focus, true, "it takes no focus");
+    let spoken = browser.script("return document.getElementById('live').textContent;", vec![]);
+    assert_eq!(spoken, "", "it announces nothing");
+    let touch = browser.script(
+        "return getComputedStyle(document.getElementById('strength').closest('.print')).touchAction;",
+        vec![],
+    );
+    assert_eq!(touch, "pan-y", "a finger scrolls the page around it");
 }
 
 #[test]

@@ -28,7 +28,10 @@ fn plain(value: Value) -> Value {
     match value {
         Value::Number(number) => json!(number.as_f64()),
         Value::Array(items) => items.into_iter().map(plain).collect(),
-        Value::Object(object) => object.into_iter().map(|(key, value)| (key, plain(value))).collect(),
+        Value::Object(object) => object
+            .into_iter()
+            .map(|(key, value)| (key, plain(value)))
+            .collect(),
         other => other,
     }
 }

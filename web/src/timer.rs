@@ -43,12 +43,17 @@ impl Timer {
     }
 }
 
-/// Calls one thing of the page before the next paint, however often it is asked for.
+/// Calls one thing of the page before the next paint, however often it is asked for; a little later where nothing is
+/// painted, since a frame of a wiki that is out of sight may be printed, and is scrolled to.
 pub(crate) struct NextFrame {
     window: Window,
     call: Closure<dyn FnMut()>,
-    asked: bool,
+    asked: Option<i32>,
+    late: Timer,
 }
+
+/// How long a frame may be in coming, in milliseconds.
+const LATE: i32 = 100;
 
 impl NextFrame {
     /// Nothing is asked for yet. The action must call [`NextFrame::came`].
@@ -56,23 +61,26 @@ impl NextFrame {
         NextFrame {
             window: window.clone(),
             call: later(page, action),
-            asked: false,
+            asked: None,
+            late: Timer::new(window, page, action),
         }
     }
 
     /// Asks for the next frame.
     pub(crate) fn ask(&mut self) {
-        if !self.asked {
-            self.asked = self
-                .window
-                .request_animation_frame(self.call.as_ref().unchecked_ref())
-                .is_ok();
+        if self.asked.is_none() {
+            let call = self.call.as_ref().unchecked_ref();
+            self.asked = self.window.request_animation_frame(call).ok();
+            self.late.start(LATE);
         }
     }
 
-    /// The frame has come.
+    /// The frame has come, or its time is over.
     pub(crate) fn came(&mut self) {
-        self.asked = false;
+        self.late.stop();
+        if let Some(asked) = self.asked.take() {
+            let _ = self.window.cancel_animation_frame(asked);
+        }
     }
 }
 

@@ -64,6 +64,11 @@ impl Browser {
         self.run("the frame", self.client().enter_frame(0));
     }
 
+    /// Goes into a frame of the page by its number, from 0.
+    pub fn enter_frame_number(&self, number: u16) {
+        self.run("the frame", self.client().enter_frame(number));
+    }
+
     /// Goes back to the page around the frame.
     pub fn leave_frame(&self) {
         self.run("the page around", self.client().enter_parent_frame());
