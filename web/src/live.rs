@@ -1,4 +1,5 @@
-//! What a screen reader is told by itself: the sentence, once typing has stopped, and only when it changed.
+//! What a screen reader is told by itself: the sentence, or what is wrong, once typing has stopped, and only when it
+//! changed.
 
 use crate::dom::Dom;
 

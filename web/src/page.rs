@@ -665,10 +665,17 @@ impl Page {
     }
 
     fn speak_now(&mut self) {
-        // In a frame the page around it has the word, and a text with a problem has no new sentence.
-        if self.current && !self.address.is_framed() {
-            let sentence = self.sentence();
-            self.live.speak(&sentence);
+        // In a frame the page around it has the word.
+        if self.address.is_framed() {
+            return;
+        }
+        let words = if self.current {
+            self.sentence()
+        } else {
+            self.problems.aloud().to_owned()
+        };
+        if !words.is_empty() {
+            self.live.speak(&words);
         }
     }
 

@@ -7,6 +7,7 @@ use crate::phases::is_phase_key;
 use aftercount_core::keys;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::problem::{Problem, seen};
+use aftercount_core::words::entry;
 use std::collections::BTreeSet;
 use web_sys::Element;
 
@@ -20,6 +21,8 @@ pub(crate) struct Problems {
     marked: BTreeSet<String>,
     /// The cells of tables that are marked.
     marked_cells: Vec<String>,
+    /// What a screen reader is told of them.
+    aloud: String,
 }
 
 impl Problems {
@@ -28,7 +31,13 @@ impl Problems {
             dom: dom.clone(),
             marked: BTreeSet::new(),
             marked_cells: Vec::new(),
+            aloud: String::new(),
         }
+    }
+
+    /// What a screen reader is told of those that are shown; nothing where none is.
+    pub(crate) fn aloud(&self) -> &str {
+        &self.aloud
     }
 
     /// Takes every problem off the page.
@@ -45,6 +54,7 @@ impl Problems {
         self.dom.set_shown("nothing", false);
         self.dom.set_shown("empty-words", true);
         self.dom.set_text("problem-list", "");
+        self.aloud.clear();
     }
 
     fn unmark(&self, field: &str) {
@@ -64,6 +74,11 @@ impl Problems {
             // That a key stands twice comes after what is wrong with its first text.
             let last_of_key = problems[place + 1..].iter().all(|later| later.key != problem.key);
             self.list(pairs, problem, last_of_key);
+        }
+        if let Some(first) = problems.first() {
+            let field = first.key.as_deref().filter(|key| self.has_field(key));
+            let field = field.map(|key| whereabouts(pairs, key, first.item).0);
+            self.aloud = entry::problems_aloud(&field.unwrap_or_default(), &first.line(), problems.len() - 1);
         }
         self.dom.set_shown("problems", !problems.is_empty());
         self.dom.set_shown("nothing", !problems.is_empty());

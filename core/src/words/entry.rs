@@ -44,6 +44,21 @@ pub fn convert(to: TimeUnit) -> String {
 /// The button that leaves the numbers as they are.
 pub const KEEP_NUMBERS: &str = "keep the numbers";
 
+/// What is spoken of problems: the first, by the name of its field, and how many more there are. "Ondrel: rate: 0,04: write
+/// 0.04, with a point. 2 more to put right."
+pub fn problems_aloud(field: &str, line: &str, more: usize) -> String {
+    let line = line.replace('`', "");
+    let first = if field.is_empty() {
+        line
+    } else {
+        format!("{field}: {line}")
+    };
+    match more {
+        0 => first,
+        _ => format!("{first} {more} more to put right."),
+    }
+}
+
 /// Why nothing was restated: "Nothing was converted. To be put right first: `x.rate`, `until`."
 pub fn not_converted(keys: &[String]) -> String {
     let keys: Vec<String> = keys.iter().map(|key| format!("`{key}`")).collect();
