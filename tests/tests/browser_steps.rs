@@ -6,8 +6,11 @@ const LINK: &str =
     "x.name=Ondrel&x.start=600&x.rate=0.04&x.break=0.3&y.name=Vessary&y.start=464&y.rate=0.05&v=1";
 const OTHER: &str = "x.start=300&x.rate=0.02&y.start=200&y.rate=0.03&v=1";
 
+/// What somebody does, in words, and how.
+type Act = (&'static str, fn(&Browser));
+
 /// Everything that changes the text, each as one step, in an order in which each has something to do.
-const ACTS: [(&str, fn(&Browser)); 17] = [
+const ACTS: [Act; 17] = [
     ("typing in a field", |browser| {
         type_and_leave(browser, "x.start", "650")
     }),
