@@ -2,6 +2,7 @@
 
 use crate::laws::{NO_POWER, Power};
 use crate::linear_system::LinearSystem;
+use crate::outcome::Losses;
 use crate::sides::{Both, Side};
 use crate::terms::Fire;
 
@@ -65,6 +66,11 @@ impl Growth {
     }
 }
 
+/// A part of a number; no part of a number without bound is nothing.
+fn part_of(part: f64, number: f64) -> f64 {
+    if part == 0.0 { 0.0 } else { part * number }
+}
+
 fn raised(number: f64, power: f64) -> f64 {
     match power {
         0.0 => 1.0,
@@ -97,6 +103,37 @@ impl Conditions {
     /// What `side` loses per unit of time besides, whatever its strength.
     pub fn steadily_lost(&self, side: Side) -> f64 {
         self.support[side.enemy()].aimed
+    }
+
+    /// What `side` loses per unit of time at the strengths `left`, by its causes, with every fire at its full rate.
+    pub fn losses_per_time(&self, side: Side, left: Both<f64>) -> Losses {
+        let enemy = side.enemy();
+        let support = self.support[enemy];
+        let steady = if left[side] > 0.0 { support.aimed } else { 0.0 };
+        Losses::of(
+            self.fire[enemy].losses_per_time(left[enemy], left[side]),
+            part_of(support.area, left[side]) + steady,
+            part_of(self.wastage[side], left[side]),
+        )
+    }
+
+    /// The same from a time `by` later on: growing fire has grown by then.
+    pub fn later(&self, by: f64) -> Conditions {
+        let growth = |side: Side| {
+            self.growth[side].map(|growth| Growth {
+                value: growth.value + growth.slope * by,
+                ..growth
+            })
+        };
+        Conditions {
+            growth: Both::of(growth),
+            ..*self
+        }
+    }
+
+    /// The factor on the rate of a side's fire at the time `t`.
+    pub fn growth_at(&self, side: Side, t: f64) -> f64 {
+        self.growth[side].map_or(1.0, |growth| growth.at(t))
     }
 
     /// Whether nothing but the two fires changes any strength.

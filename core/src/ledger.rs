@@ -63,10 +63,18 @@ impl Ledger {
         self.committed > 0.0 && lost > 0.0 && by <= rounding
     }
 
+    /// Enters what joins.
+    pub(crate) fn join(&mut self, came: f64) {
+        self.joined += came;
+        self.committed = if came.is_finite() {
+            self.committed + came
+        } else {
+            Double::from(came)
+        };
+    }
+
+    /// Enters what is lost.
     pub(crate) fn add(&mut self, losses: &Losses) {
-        self.losses.fire += losses.fire;
-        self.losses.support += losses.support;
-        self.losses.wastage += losses.wastage;
-        self.losses.all += losses.all;
+        self.losses = self.losses.and(losses);
     }
 }

@@ -5,10 +5,12 @@
 //! from their values at the eigenvalues (N. J. Higham, *Functions of Matrices*, 2008, ch. 1).
 
 use crate::double::Double;
+use crate::root::{newton, root};
 use crate::sides::{Both, Side};
+use std::cell::{Cell, OnceCell};
 
 /// A linear system, from the strengths at its start.
-#[derive(Clone, Copy, Debug, PartialEq)]
+#[derive(Clone, Debug, PartialEq)]
 pub struct LinearSystem {
     start: Both<f64>,
     /// f and g: what comes in, less losses that do not depend on strength.
@@ -17,66 +19,150 @@ pub struct LinearSystem {
     own: Both<f64>,
     /// B and D: what a side loses for each of the enemy.
     by_enemy: Both<f64>,
-    /// The eigenvalues, the greater first.
+    /// The eigenvalues, the greater first, and in full.
     eigenvalues: [f64; 2],
+    exact: [Double; 2],
     delta: f64,
-    /// The start and its first derivative, taken apart along the eigenvectors; unused where they nearly agree.
-    along: [Both<f64>; 2],
-    first: [Both<f64>; 2],
-    /// The same for what comes in.
-    coming: [Both<f64>; 2],
+    /// The first derivative at the start.
+    first: Both<f64>,
+    /// It, the start and the inflow, taken apart along the eigenvectors; most stretches are too short to need them.
+    first_parts: OnceCell<[Both<f64>; 2]>,
+    start_parts: OnceCell<[Both<f64>; 2]>,
+    inflow_parts: OnceCell<[Both<f64>; 2]>,
+    /// How often it was asked how matters stand.
+    evaluations: Cell<u32>,
 }
 
-/// Which integral of e^(λt) from 0: none, one, two.
-#[derive(Clone, Copy, PartialEq)]
-enum Order {
-    None = 0,
-    Once = 1,
-    Twice = 2,
+/// How matters stand at one time.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Moment {
+    /// The strengths.
+    pub strengths: Both<f64>,
+    /// Their changes per unit of time.
+    pub slopes: Both<f64>,
+    /// What has been added to the strengths since the start, below 0 for what has been lost.
+    pub change: Both<f64>,
+    /// The mean of the strengths over the time so far.
+    pub means: Both<f64>,
 }
 
-/// Terms of a series at most, for a matrix times t below 1;
-const TERMS: usize = 23;
+/// e^(λt), its integral from 0, and the integral of that: at an eigenvalue, or their divided differences.
+#[derive(Clone, Copy, Debug)]
+struct Exponential {
+    none: f64,
+    once: f64,
+    /// Over the time, since it may be beyond a double.
+    twice_by_t: f64,
+}
 
-/// and what is no longer a digit of their sum.
-const SMALL: f64 = 1e-19;
+/// How functions of the matrix are taken at a time.
+enum Shape {
+    /// By their series, so many terms of it.
+    Series { terms: usize },
+    /// By the value at the greater eigenvalue and the divided difference, since the eigenvectors nearly agree.
+    Near(Exponential, Exponential),
+    /// By the values at both eigenvalues.
+    Apart([Exponential; 2]),
+}
+
+/// The eigenvalues, the greater first, and half of their distance.
+fn eigenvalues(own: Both<f64>, by_enemy: Both<f64>) -> [Double; 3] {
+    let scale = scale_for(own, by_enemy);
+    if scale > 1.0 {
+        let scaled = |rates: Both<f64>| Both::of(|side| rates[side] * scale);
+        return eigenvalues(scaled(own), scaled(by_enemy)).map(|value| value * (1.0 / scale));
+    }
+    let half = Double::difference(own.x, own.y) * 0.5;
+    let delta = (half * half + Double::product(by_enemy.x, by_enemy.y)).sqrt();
+    let mu = -Double::sum(own.x, own.y) * 0.5;
+    // The product of the eigenvalues is A·C − B·D: the smaller one is found from it, since its sum may cancel.
+    let determinant = Double::product(own.x, own.y) - Double::product(by_enemy.x, by_enemy.y);
+    let low = mu - delta;
+    let high = if low == 0.0 {
+        Double::from(0.0)
+    } else {
+        determinant / low
+    };
+    [high, low, delta]
+}
+
+/// A power of two that brings rates so low that their squares would be below the smallest double into its reach.
+fn scale_for(own: Both<f64>, by_enemy: Both<f64>) -> f64 {
+    const TINY: f64 = f64::from_bits((1023 - 400) << 52);
+    let greatest = own.x.max(own.y).max(by_enemy.x).max(by_enemy.y);
+    match greatest {
+        0.0 => 1.0,
+        _ if greatest < TINY * TINY => 1.0 / (TINY * TINY),
+        _ if greatest < TINY => 1.0 / TINY,
+        _ => 1.0,
+    }
+}
+
+/// Where the greater eigenvalue times the time is below this, a series is taken: whatever the eigenvectors.
+const SHORT: f64 = 1.0 / 16.0;
+
+/// Where the eigenvalues are nearer to each other than this part of the greater, the eigenvectors nearly agree.
+const NEAR: f64 = 1.0 / 8.0;
 
 impl LinearSystem {
     /// The system with these rates, none of `own` and `by_enemy` below 0.
     pub fn new(start: Both<f64>, inflow: Both<f64>, own: Both<f64>, by_enemy: Both<f64>) -> LinearSystem {
-        let half = Double::difference(own.x, own.y) * 0.5;
-        let delta = (half * half + Double::product(by_enemy.x, by_enemy.y)).sqrt();
-        let mu = -Double::sum(own.x, own.y) * 0.5;
-        // The product of the eigenvalues is A·C − B·D: the smaller one is found from it, since its sum may cancel.
-        let determinant = Double::product(own.x, own.y) - Double::product(by_enemy.x, by_enemy.y);
-        let low = mu - delta;
-        let high = if low == 0.0 {
-            Double::from(0.0)
-        } else {
-            determinant / low
-        };
-        let mut system = LinearSystem {
+        let [high, low, delta] = eigenvalues(own, by_enemy);
+        let system = LinearSystem {
             start,
             inflow,
             own,
             by_enemy,
             eigenvalues: [high.into(), low.into()],
+            exact: [high, low],
             delta: delta.into(),
-            along: Default::default(),
-            first: Default::default(),
-            coming: Default::default(),
+            first: Both::default(),
+            first_parts: OnceCell::new(),
+            start_parts: OnceCell::new(),
+            inflow_parts: OnceCell::new(),
+            evaluations: Cell::default(),
         };
-        if system.delta > 0.0 {
-            system.along = system.taken_apart(Both::of(|side| Double::from(start[side])), [high, low]);
-            let first = Both::of(|side: Side| {
-                Double::from(inflow[side])
-                    - Double::product(own[side], start[side])
-                    - Double::product(by_enemy[side], start[side.enemy()])
-            });
-            system.first = system.taken_apart(first, [high, low]);
-            system.coming = system.taken_apart(Both::of(|side| Double::from(inflow[side])), [high, low]);
+        let first = system.exact_first();
+        LinearSystem {
+            first: Both::of(|side| first[side].into()),
+            ..system
         }
-        system
+    }
+
+    /// The first derivative at the start, in full.
+    fn exact_first(&self) -> Both<Double> {
+        Both::of(|side: Side| {
+            Double::from(self.inflow[side])
+                - Double::product(self.own[side], self.start[side])
+                - Double::product(self.by_enemy[side], self.start[side.enemy()])
+        })
+    }
+
+    fn first_parts(&self) -> &[Both<f64>; 2] {
+        self.first_parts.get_or_init(|| {
+            if scale_for(self.own, self.by_enemy) == 1.0 {
+                return self.taken_apart(self.exact_first());
+            }
+            let (start, inflow) = (self.start_parts(), self.inflow_parts());
+            [0, 1].map(|place| {
+                Both::of(|side| self.eigenvalues[place] * start[place][side] + inflow[place][side])
+            })
+        })
+    }
+
+    fn start_parts(&self) -> &[Both<f64>; 2] {
+        self.start_parts
+            .get_or_init(|| self.taken_apart(Both::of(|side| Double::from(self.start[side]))))
+    }
+
+    fn inflow_parts(&self) -> &[Both<f64>; 2] {
+        self.inflow_parts.get_or_init(|| {
+            if self.inflow == Both::default() {
+                Default::default()
+            } else {
+                self.taken_apart(Both::of(|side| Double::from(self.inflow[side])))
+            }
+        })
     }
 
     /// The system in which nothing moves.
@@ -85,15 +171,17 @@ impl LinearSystem {
     }
 
     /// The parts of `vector` along the eigenvectors of the two eigenvalues: (M − λ₂)v/(λ₁ − λ₂) and (λ₁ − M)v/(λ₁ − λ₂).
-    fn taken_apart(&self, vector: Both<Double>, eigenvalues: [Double; 2]) -> [Both<f64>; 2] {
-        let spread = eigenvalues[0] - eigenvalues[1];
+    fn taken_apart(&self, vector: Both<Double>) -> [Both<f64>; 2] {
+        let scale = scale_for(self.own, self.by_enemy);
+        let [high, low] = self.exact.map(|value| value * scale);
+        let spread = f64::from(high - low);
         let moved = Both::of(|side: Side| {
-            -(vector[side] * self.own[side]) - vector[side.enemy()] * self.by_enemy[side]
+            -(vector[side] * (self.own[side] * scale)) - vector[side.enemy()] * (self.by_enemy[side] * scale)
         });
-        let part = |sign: f64, eigenvalue: Double| {
-            Both::of(|side| f64::from((moved[side] - vector[side] * eigenvalue) / spread * sign))
+        let part = |eigenvalue: Double, spread: f64| {
+            Both::of(|side| f64::from(moved[side] - vector[side] * eigenvalue) / spread)
         };
-        [part(1.0, eigenvalues[1]), part(-1.0, eigenvalues[0])]
+        [part(low, spread), part(high, -spread)]
     }
 
     /// Its parts, for the working: what comes in, what each side loses of itself, what each loses for each of the enemy.
@@ -109,8 +197,9 @@ impl LinearSystem {
             return None;
         }
         // The first derivative is the sum of both parts, each over its eigenvalue a part of the strength.
+        let parts = self.first_parts();
         Some(Both::of(|side| {
-            let (rising, falling) = (self.first[0][side] / high, self.first[1][side] / low);
+            let (rising, falling) = (parts[0][side] / high, parts[1][side] / low);
             [self.start[side] - rising - falling, rising, falling]
         }))
     }
@@ -120,60 +209,82 @@ impl LinearSystem {
         self.eigenvalues
     }
 
+    /// The changes of the strengths per unit of time at the start.
+    pub fn first_derivative(&self) -> Both<f64> {
+        self.first
+    }
+
+    /// How often it was asked how matters stand.
+    pub fn evaluations(&self) -> u32 {
+        self.evaluations.get()
+    }
+
     fn times(&self, vector: Both<f64>) -> Both<f64> {
         Both::of(|side: Side| -self.own[side] * vector[side] - self.by_enemy[side] * vector[side.enemy()])
     }
 
-    /// The first derivative at the start.
-    fn first_derivative(&self) -> Both<f64> {
-        let moved = self.times(self.start);
-        Both::of(|side| moved[side] + self.inflow[side])
-    }
-
-    /// A function of the matrix, e^(Mt) or its integrals from 0, times a vector whose parts along the eigenvectors are
-    /// `parts`.
-    fn function(&self, order: Order, t: f64, vector: Both<f64>, parts: &[Both<f64>; 2]) -> Both<f64> {
+    /// How functions of the matrix are best taken at the time `t`.
+    fn shape(&self, t: f64) -> Shape {
         let [high, low] = self.eigenvalues;
-        if high.abs().max(low.abs()) * t < 1.0 {
-            return self.by_series(order, t, vector);
+        let greater = high.abs().max(low.abs());
+        let near = self.delta < NEAR * greater || self.delta == 0.0;
+        let angle = greater * t;
+        if angle < SHORT || (near && angle < 1.0) {
+            return Shape::Series {
+                terms: terms_for(angle),
+            };
         }
-        if self.delta * t < 1.0 {
-            // Newton's form at the eigenvalues, whose divided difference does not cancel.
-            let difference = self.divided_difference(order, t);
-            let moved = self.times(vector);
-            return Both::of(|side| {
-                scalar(order, high, t) * vector[side] + difference * (moved[side] - high * vector[side])
-            });
+        let of_high = Exponential::new(high, t);
+        if near && self.delta * t < 1.0 {
+            let difference = self.divided_difference(t, &of_high);
+            return Shape::Near(of_high, difference);
         }
-        Both::of(|side| scalar(order, high, t) * parts[0][side] + scalar(order, low, t) * parts[1][side])
+        Shape::Apart([of_high, Exponential::new(low, t)])
     }
 
-    /// Σ tⁿ⁺ᵏ·Mⁿ·v/(n + k)!, for a matrix times t below 1.
-    fn by_series(&self, order: Order, t: f64, vector: Both<f64>) -> Both<f64> {
-        let mut term = vector;
-        for n in 1..=order as u32 {
-            term = Both::of(|side| term[side] * t / f64::from(n));
-        }
-        let mut terms = [Both::default(); TERMS];
-        let mut sum = Both::default();
-        let mut count = 0;
-        while count < TERMS {
-            terms[count] = term;
-            count += 1;
-            sum = Both::of(|side| sum[side] + term[side]);
-            let is_small = |side: Side| term[side].abs() <= SMALL * f64::abs(sum[side]);
-            if Side::BOTH.into_iter().all(is_small) {
-                break;
+    /// A function of the matrix, given by its values in the two eigenvalues or their neighbourhood, times a vector.
+    fn times_vector(
+        &self,
+        vector: Both<f64>,
+        parts: impl Fn() -> [Both<f64>; 2],
+        shape: &Shape,
+        which: impl Fn(&Exponential) -> f64,
+    ) -> Both<f64> {
+        match shape {
+            // Newton's form at the eigenvalues, whose divided difference does not cancel.
+            Shape::Near(of_high, difference) => {
+                let (value, difference) = (which(of_high), which(difference));
+                let moved = self.times(vector);
+                let high = self.eigenvalues[0];
+                Both::of(|side| value * vector[side] + difference * (moved[side] - high * vector[side]))
             }
-            let moved = self.times(term);
-            term = Both::of(|side| moved[side] * t / (count + order as usize) as f64);
+            Shape::Apart([of_high, of_low]) => {
+                let (high, low, [first, second]) = (which(of_high), which(of_low), parts());
+                Both::of(|side| high * first[side] + low * second[side])
+            }
+            Shape::Series { .. } => Both::default(),
         }
-        // The smallest first.
-        Both::of(|side| terms[..count].iter().rev().map(|term| term[side]).sum())
+    }
+
+    /// Σ tⁿ⁺²·Mⁿ·v/(n + 2)! from the last term that counts on, so that the smallest come first; the matrix times that, and
+    /// t·v, is Σ tⁿ⁺¹·Mⁿ·v/(n + 1)!, and so again e^(Mt)·v.
+    fn by_series(&self, t: f64, terms: usize, vector: Both<f64>) -> [Both<f64>; 3] {
+        let mut sum = vector;
+        for part in ONE_OVER[3..terms + 3].iter().rev() {
+            let moved = self.times(sum);
+            let by = t * part;
+            sum = Both::of(|side| vector[side] + moved[side] * by);
+        }
+        let twice_by_t = Both::of(|side| 0.5 * t * sum[side]);
+        let moved = self.times(twice_by_t);
+        let once = Both::of(|side| t * (vector[side] + moved[side]));
+        let moved = self.times(once);
+        let none = Both::of(|side| vector[side] + moved[side]);
+        [none, once, twice_by_t]
     }
 
     /// (h(λ₂) − h(λ₁))/(λ₂ − λ₁), where δ·t is below 1 and |λ₂|·t above: from λ·h₁(λ) = h₀(λ) − 1 and λ·h₂(λ) = h₁(λ) − t.
-    fn divided_difference(&self, order: Order, t: f64) -> f64 {
+    fn divided_difference(&self, t: f64, of_high: &Exponential) -> Exponential {
         let [high, low] = self.eigenvalues;
         let angle = self.delta * t;
         let shape = if angle == 0.0 {
@@ -182,32 +293,101 @@ impl LinearSystem {
             libm::sinh(angle) / angle
         };
         let none = libm::exp(0.5 * (high + low) * t) * t * shape;
-        match order {
-            Order::None => none,
-            Order::Once => (none - scalar(Order::Once, high, t)) / low,
-            Order::Twice => {
-                let once = (none - scalar(Order::Once, high, t)) / low;
-                (once - scalar(Order::Twice, high, t)) / low
-            }
+        let once = (none - of_high.once) / low;
+        Exponential {
+            none,
+            once,
+            twice_by_t: (once / t - of_high.twice_by_t) / low,
         }
     }
 
-    /// What has been added to the strengths since the start, below 0 for what has been lost.
-    pub fn change(&self, t: f64) -> Both<f64> {
-        self.function(Order::Once, t, self.first_derivative(), &self.first)
+    /// How matters stand at the time `t`.
+    pub fn at(&self, t: f64) -> Moment {
+        self.evaluations.set(self.evaluations.get().saturating_add(1));
+        let shape = self.shape(t);
+        let [slopes, change, twice_by_t] = match shape {
+            Shape::Series { terms } => self.by_series(t, terms, self.first),
+            _ => {
+                let of = |which: fn(&Exponential) -> f64| {
+                    self.times_vector(self.first, || *self.first_parts(), &shape, which)
+                };
+                [of(|of| of.none), of(|of| of.once), of(|of| of.twice_by_t)]
+            }
+        };
+        let mut moment = Moment {
+            strengths: Both::of(|side| self.start[side] + change[side]),
+            slopes,
+            change,
+            means: Both::of(|side| self.start[side] + twice_by_t[side]),
+        };
+        match shape {
+            Shape::Series { .. } => {}
+            Shape::Near(..) => self.keep_digits_near(&mut moment, t, &shape),
+            Shape::Apart(exponentials) => self.keep_digits_apart(&mut moment, t, &exponentials),
+        }
+        for side in Side::BOTH.into_iter().filter(|side| self.fades_alone(*side)) {
+            moment.strengths[side] = self.start[side] * libm::exp(-self.own[side] * t);
+        }
+        moment
+    }
+
+    /// After a long time the start less what has fallen has lost its digits, and so has its sum. With the start s, the
+    /// inflow f and the first derivative v = λ·s + f along an eigenvector, s + v·(e^z − 1)/λ is (v·e^z − f)/λ.
+    fn keep_digits_apart(&self, moment: &mut Moment, t: f64, exponentials: &[Exponential; 2]) {
+        let is_long = |eigenvalue: f64| (eigenvalue * t).abs() > 0.5;
+        if !self.eigenvalues.into_iter().any(is_long) {
+            return;
+        }
+        let (starts, firsts, inflows) = (self.start_parts(), self.first_parts(), self.inflow_parts());
+        let sum = |side: Side,
+                   long: fn(f64, f64, &Exponential, f64) -> f64,
+                   short: fn(f64, f64, &Exponential, f64) -> f64|
+         -> f64 {
+            (0..2)
+                .map(|place| {
+                    let (eigenvalue, of) = (self.eigenvalues[place], &exponentials[place]);
+                    let first = firsts[place][side];
+                    if is_long(eigenvalue) {
+                        long(first, inflows[place][side], of, t) / eigenvalue
+                    } else {
+                        short(first, starts[place][side], of, t)
+                    }
+                })
+                .sum()
+        };
+        moment.strengths = Both::of(|side| {
+            sum(
+                side,
+                |first, inflow, of, _| first * of.none - inflow,
+                |first, start, of, _| start + first * of.once,
+            )
+        });
+        moment.means = Both::of(|side| {
+            sum(
+                side,
+                |first, inflow, of, t| first * (of.once / t) - inflow,
+                |first, start, of, _| start + first * of.twice_by_t,
+            )
+        });
+    }
+
+    /// The same where the eigenvectors nearly agree: e^(Mt) times the start and (e^(Mt) − 1)/M times the inflow, and for the
+    /// sum M·∫u = u − s − f·t.
+    fn keep_digits_near(&self, moment: &mut Moment, t: f64, shape: &Shape) {
+        let none = self.times_vector(self.start, Default::default, shape, |of| of.none);
+        let once = self.times_vector(self.inflow, Default::default, shape, |of| of.once);
+        moment.strengths = Both::of(|side| none[side] + once[side]);
+        let determinant = self.eigenvalues[0] * self.eigenvalues[1];
+        let right = Both::of(|side| moment.change[side] / t - self.inflow[side]);
+        moment.means = Both::of(|side: Side| {
+            let enemy = side.enemy();
+            (self.by_enemy[side] * right[enemy] - self.own[enemy] * right[side]) / determinant
+        });
     }
 
     /// The strengths at the time `t`.
     pub fn strengths(&self, t: f64) -> Both<f64> {
-        let change = self.change(t);
-        let plain = self.inflow.x == 0.0 && self.inflow.y == 0.0;
-        let faded = plain.then(|| self.function(Order::None, t, self.start, &self.along));
-        Both::of(|side| match faded {
-            _ if self.fades_alone(side) => self.start[side] * libm::exp(-self.own[side] * t),
-            // What is left after a long fading has more digits than the start less what has fallen.
-            Some(left) if left[side] < 0.5 * self.start[side] => left[side],
-            _ => self.start[side] + change[side],
-        })
+        self.at(t).strengths
     }
 
     /// Whether a strength is one exponential, whatever the enemy and what flows in to him: it never comes to 0.
@@ -215,21 +395,9 @@ impl LinearSystem {
         self.inflow[side] == 0.0 && self.by_enemy[side] == 0.0
     }
 
-    /// The strengths summed over time up to `t`: of the start, and of what comes in.
-    ///
-    /// Not the start times `t` and its change: long after a side has faded nothing would be left of their digits.
-    pub fn integrals(&self, t: f64) -> Both<f64> {
-        let once = self.function(Order::Once, t, self.start, &self.along);
-        if self.inflow == Both::default() {
-            return once;
-        }
-        let twice = self.function(Order::Twice, t, self.inflow, &self.coming);
-        Both::of(|side| once[side] + twice[side])
-    }
-
     /// The derivatives of the strengths at the time `t`.
     pub fn slopes(&self, t: f64) -> Both<f64> {
-        self.function(Order::None, t, self.first_derivative(), &self.first)
+        self.at(t).slopes
     }
 
     /// The time after which what decays has decayed; 0 where nothing does.
@@ -275,31 +443,42 @@ impl LinearSystem {
             let time = span / self.own[side];
             return (line > 0.0 && time <= horizon).then_some(time);
         }
-        let distance = |t: f64| {
-            let left = self.strengths(t)[side];
-            if left < 0.5 * start && rising == 0.0 {
+        // How far above the line a strength is, and how that changes.
+        let above_line = |t: f64| {
+            let now = self.at(t);
+            let left = now.strengths[side];
+            let height = if left < 0.5 * start && rising == 0.0 {
                 left - line
             } else {
-                f64::from(above) + self.change(t)[side] - rising * t
-            }
+                f64::from(above) + now.change[side] - rising * t
+            };
+            (height, now.slopes[side] - rising)
         };
-        let slope = |t: f64| self.slopes(t)[side] - rising;
-        let mut turns = vec![0.0];
+        let mut from = Place {
+            t: 0.0,
+            height: above.into(),
+            slope: self.first[side] - rising,
+        };
         let bend = self.inflection(side).filter(|t| *t < horizon);
-        turns.extend(bend);
-        let last = *turns.last().unwrap_or(&0.0);
-        turns.push(self.far(side, last, horizon, distance, slope));
-        let mut marks = vec![0.0];
-        for pair in turns.windows(2) {
-            marks.extend(root(pair[0], pair[1], &slope));
-            marks.push(pair[1]);
+        let bend = bend.map(|t| Place::at(t, &above_line));
+        let last = bend.map_or(0.0, |bend| bend.t);
+        let far = if horizon.is_finite() {
+            Place::at(horizon.min(self.beyond_digits(last, rising)), &above_line)
+        } else {
+            self.far(side, &from, last, &above_line)
+        };
+        for end in bend.into_iter().chain([far]) {
+            // Between two bends the slope has one zero at most.
+            let turn = (from.slope < 0.0) != (end.slope < 0.0);
+            let turn = turn.then(|| root(from.t, end.t, &|t| above_line(t).1)).flatten();
+            for mark in turn.map(|t| Place::at(t, &above_line)).into_iter().chain([end]) {
+                if mark.is_down() {
+                    return Some(from.reach(&mark, &above_line));
+                }
+                from = mark;
+            }
         }
-        // What has faded below the smallest double has not reached a line at 0.
-        let is_down = |t: f64| distance(t) < 0.0 || (distance(t) == 0.0 && slope(t) < 0.0);
-        marks.windows(2).find_map(|pair| {
-            let down = is_down(pair[1]);
-            down.then(|| root(pair[0], pair[1], &distance).unwrap_or(pair[1]))
-        })
+        None
     }
 
     /// The time at which the second derivative of a strength is 0: tanh(δt)/δ = −c/s.
@@ -308,7 +487,7 @@ impl LinearSystem {
             // It moves by itself, as one exponential.
             return None;
         }
-        let second = self.times(self.first_derivative());
+        let second = self.times(self.first);
         let mu = 0.5 * (self.eigenvalues[0] + self.eigenvalues[1]);
         let third = self.times(second)[side] - mu * second[side];
         let ratio = -second[side] / third;
@@ -320,99 +499,138 @@ impl LinearSystem {
         (t.is_finite() && t > 0.0).then_some(t)
     }
 
-    /// The horizon, or where there is none a time by which a strength has come to its line, or never will.
-    fn far(
-        &self,
-        side: Side,
-        from: f64,
-        horizon: f64,
-        distance: impl Fn(f64) -> f64,
-        slope: impl Fn(f64) -> f64,
-    ) -> f64 {
-        if horizon.is_finite() {
-            // Long after all has decayed, or grown beyond any strength, a double holds nothing of it, not even which way
-            // it went.
-            let [high, low] = self.eigenvalues;
-            return match high {
-                _ if high > 0.0 => horizon.min(from + 600.0 / high),
-                _ if high < 0.0 && low < 0.0 => horizon.min(from + 8.0 * self.settled()),
-                _ => horizon,
-            };
+    /// The time at which all has long decayed since the time `from`, or grown beyond any strength, so that a double holds
+    /// nothing of it, not even which way it went; to a line that still rises what has decayed may come later.
+    fn beyond_digits(&self, from: f64, rising: f64) -> f64 {
+        match self.eigenvalues {
+            [high, _] if high > 0.0 => from + 600.0 / high,
+            [high, low] if high < 0.0 && low < 0.0 && rising == 0.0 => from + 8.0 * self.settled(),
+            _ => f64::INFINITY,
         }
-        let first = self.first_derivative();
-        let scales = Side::BOTH.map(|side| self.start[side] / first[side].abs());
-        let mut t = scales
-            .into_iter()
-            .filter(|scale| scale.is_finite())
-            .fold(from, f64::max)
-            .max(1e-200);
-        for _ in 0..400 {
-            let grown = self.eigenvalues[0] * t > 600.0;
-            // What decays has decayed: only a steady pace can still bring it down.
-            let rests = t > from + self.settled() && slope(t) * t > -1e-9 * self.start[side];
-            if grown || rests || t > 1e200 || distance(t) <= 0.0 {
-                break;
-            }
-            t *= 2.0;
-        }
-        t
     }
-}
 
-/// e^(λt), its integral from 0 and the integral of that.
-fn scalar(order: Order, eigenvalue: f64, t: f64) -> f64 {
-    let angle = eigenvalue * t;
-    match order {
-        Order::None => libm::exp(angle),
-        Order::Once if angle == 0.0 => t,
-        Order::Once => libm::expm1(angle) / eigenvalue,
-        // t²·(1/2 + z/6 + z²/24 …), which e^z − 1 − z would lose.
-        Order::Twice if angle.abs() < 0.5 => {
-            let series = (3..21)
-                .rev()
-                .fold(0.0, |sum, n| (sum * angle + 1.0) / f64::from(n));
-            t * t * 0.5 * (1.0 + angle * series)
-        }
-        Order::Twice => (libm::expm1(angle) - angle) / (eigenvalue * eigenvalue),
-    }
-}
-
-/// The root of a monotone function between two times, where it has one: Newton-free, by the Illinois variant of the
-/// secant rule kept within its bracket.
-pub(crate) fn root(low: f64, high: f64, function: &impl Fn(f64) -> f64) -> Option<f64> {
-    let (mut a, mut b) = (low, high);
-    let (mut fa, mut fb) = (function(a), function(b));
-    if fa == 0.0 {
-        return Some(a);
-    }
-    if fb == 0.0 {
-        return Some(b);
-    }
-    if (fa > 0.0) == (fb > 0.0) || !(fa.is_finite() && fb.is_finite()) {
-        return None;
-    }
-    for step in 0..300 {
-        let middle = 0.5 * (a + b);
-        let secant = b - fb * (b - a) / (fb - fa);
-        // Every third step halves, whatever the secant says.
-        let next = if step % 3 != 2 && secant > a.min(b) && secant < a.max(b) {
-            secant
+    /// A place after `least` at which a strength has come to its line, or never will.
+    fn far(&self, side: Side, start: &Place, least: f64, above_line: &impl Fn(f64) -> (f64, f64)) -> Place {
+        // Beyond it what grows has no digits left.
+        let most = if self.eigenvalues[0] > 0.0 {
+            f64::min(600.0 / self.eigenvalues[0], FAR)
         } else {
-            middle
+            FAR
         };
-        let value = function(next);
-        if value == 0.0 || next == a || next == b {
-            return Some(next);
-        }
-        if (value > 0.0) == (fb > 0.0) {
-            fa *= 0.5;
-        } else {
-            (a, fa) = (b, fb);
-        }
-        (b, fb) = (next, value);
-        if (b - a).abs() <= f64::EPSILON * a.abs().max(b.abs()) {
-            return Some(b);
+        let scales = Side::BOTH.map(|side| self.start[side] / self.first[side].abs());
+        let mut scales = [-2.0 * start.height / start.slope].into_iter().chain(scales);
+        let scale = scales.find(|scale| *scale > 0.0 && *scale < FAR);
+        let mut t = scale.unwrap_or(1.0).min(most).max(least).max(1e-200);
+        let settled = least + self.settled();
+        // With both eigenvalues 0 a slope may change for ever: nothing settles.
+        let settles = self.delta > 0.0 || self.eigenvalues[0] < 0.0;
+        let pace = self.first[side].abs().max(self.first[side.enemy()].abs()) * SETTLED;
+        let mut factor = 2.0;
+        loop {
+            let place = Place::at(t, above_line);
+            // What decays has decayed: only a steady pace can still bring it down.
+            let rests = settles && t > settled && place.slope >= -pace;
+            if rests || t >= most || place.height <= 0.0 || place.height.is_nan() {
+                return place;
+            }
+            t = f64::min(t * factor, most);
+            // It is a long way, or none.
+            factor = f64::min(factor * 1.25, 1e6);
         }
     }
-    Some(b)
+}
+
+/// No time later than this is asked for.
+const FAR: f64 = 1e300;
+
+/// The part of the first pace below which nothing moves any more, once what decays has decayed.
+const SETTLED: f64 = 1e-22;
+
+/// A time, and how matters stand there.
+#[derive(Clone, Copy)]
+struct Place {
+    t: f64,
+    height: f64,
+    slope: f64,
+}
+
+impl Place {
+    fn at(t: f64, above_line: &impl Fn(f64) -> (f64, f64)) -> Place {
+        let (height, slope) = above_line(t);
+        Place { t, height, slope }
+    }
+
+    /// What has faded below the smallest double has not reached a line at 0.
+    fn is_down(&self) -> bool {
+        self.height < 0.0 || (self.height == 0.0 && self.slope < 0.0)
+    }
+
+    /// When the line is met between this place, above it, and `down`, with a monotone way between them: from where the
+    /// cubic through both places, time over height, crosses it.
+    fn reach(&self, down: &Place, above_line: &impl Fn(f64) -> (f64, f64)) -> f64 {
+        if self.height <= 0.0 {
+            return if down.height == 0.0 { down.t } else { self.t };
+        }
+        let part = self.height / (self.height - down.height);
+        let rest = 1.0 - part;
+        let span = down.height - self.height;
+        let (start, end) = (span / self.slope, span / down.slope);
+        let first = self.t * rest * rest * (1.0 + 2.0 * part)
+            + down.t * part * part * (1.0 + 2.0 * rest)
+            + start * part * rest * rest
+            - end * part * part * rest;
+        newton(self.t, down.t, first, above_line)
+    }
+}
+
+/// 1 over each whole number.
+const ONE_OVER: [f64; 24] = {
+    let mut parts = [0.0; 24];
+    let mut n = 1;
+    while n < 24 {
+        parts[n] = 1.0 / n as f64;
+        n += 1;
+    }
+    parts
+};
+
+/// How many terms of a series count for this greatest angle: they fall at least as angleⁿ·n/n!, and the first that is left
+/// out is below 1e-18 of the first.
+fn terms_for(angle: f64) -> usize {
+    match angle {
+        _ if angle < 1.0 / 256.0 => 7,
+        _ if angle < SHORT => 11,
+        _ => 21,
+    }
+}
+
+impl Exponential {
+    /// That of an eigenvalue.
+    fn new(eigenvalue: f64, t: f64) -> Exponential {
+        let angle = eigenvalue * t;
+        // e^z − 1 keeps its digits near 0, e^z far below.
+        let (none, less_one) = if angle < -0.5 {
+            let none = libm::exp(angle);
+            (none, none - 1.0)
+        } else {
+            let less_one = libm::expm1(angle);
+            (1.0 + less_one, less_one)
+        };
+        let once = if angle == 0.0 { t } else { less_one / eigenvalue };
+        let twice_by_t = if angle.abs() < 0.5 {
+            // t·(1/2 + z/6 + z²/24 …), which (e^z − 1)/z − 1 would lose.
+            let series = ONE_OVER[3..16]
+                .iter()
+                .rev()
+                .fold(0.0, |sum, part| (sum * angle + 1.0) * part);
+            t * 0.5 * (1.0 + angle * series)
+        } else {
+            (less_one / angle - 1.0) / eigenvalue
+        };
+        Exponential {
+            none,
+            once,
+            twice_by_t,
+        }
+    }
 }

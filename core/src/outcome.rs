@@ -28,6 +28,14 @@ impl Breaks {
         }
     }
 
+    /// `side` alone.
+    pub fn only(side: Side) -> Breaks {
+        match side {
+            Side::X => Breaks::X,
+            Side::Y => Breaks::Y,
+        }
+    }
+
     /// Whether `side` is among those that break.
     pub fn includes(self, side: Side) -> bool {
         match self {
@@ -55,6 +63,8 @@ pub enum Ended {
     Growth,
     /// A side was withdrawn to the last, unbroken, with nobody to come.
     Withdrawn,
+    /// It was worked out only so far: more would take more evaluations than an answer may.
+    Unfinished,
 }
 
 /// Who would be left if no side broke and no clock ran.
@@ -83,7 +93,7 @@ pub enum Method {
     Integration,
 }
 
-/// Losses of one side since time 0, by cause.
+/// Losses of one side since time 0, by cause; infinite, in JSON null, where they have no bound.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Serialize)]
 pub struct Losses {
     /// By the enemy's fire.
@@ -96,16 +106,38 @@ pub struct Losses {
     pub all: f64,
 }
 
+impl Losses {
+    /// Losses by these causes.
+    pub fn of(fire: f64, support: f64, wastage: f64) -> Losses {
+        Losses {
+            fire,
+            support,
+            wastage,
+            all: fire + support + wastage,
+        }
+    }
+
+    /// These and others, each cause summed on its own.
+    pub fn and(&self, other: &Losses) -> Losses {
+        Losses {
+            fire: self.fire + other.fire,
+            support: self.support + other.support,
+            wastage: self.wastage + other.wastage,
+            all: self.all + other.all,
+        }
+    }
+}
+
 /// What became of one side.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Serialize)]
 pub struct SideOutcome {
     /// Strength at time 0.
     pub start: f64,
-    /// What joined after time 0.
+    /// What joined after time 0; infinite, in JSON null, where reinforcement never ends.
     pub joined: f64,
     /// What was withdrawn.
     pub withdrawn: f64,
-    /// Start, lost before, and all arrivals.
+    /// Start, lost before, and all arrivals; infinite, in JSON null, where reinforcement never ends.
     pub committed: f64,
     /// Strength at the break, at the clock, or the limit; `None` where it grows without bound.
     pub end: Option<f64>,
@@ -141,7 +173,7 @@ pub struct Outcome {
     pub x: SideOutcome,
     /// Side Y.
     pub y: SideOutcome,
-    /// Y's losses by fire and support over X's; `None` over 0.
+    /// Y's losses by fire and support over X's; `None` over 0, and where either has no bound.
     pub loss_exchange_ratio: Option<f64>,
     /// The same, each over what its side had committed.
     pub fractional_exchange_ratio: Option<f64>,
@@ -170,7 +202,11 @@ impl Outcome {
             0.0 => 0.0,
             lost => lost / sides[side].committed,
         });
-        let ratio = |lost: Both<f64>| (lost.x > 0.0).then(|| lost.y / lost.x);
-        (ratio(by_enemy), ratio(fraction))
+        let known = by_enemy.x > 0.0 && by_enemy.x.is_finite() && by_enemy.y.is_finite();
+        let of_all = fraction.x > 0.0 && sides.y.committed.is_finite();
+        (
+            known.then(|| by_enemy.y / by_enemy.x),
+            (known && of_all).then(|| fraction.y / fraction.x),
+        )
     }
 }

@@ -2,7 +2,8 @@
 //!
 //! `speed times` reads lines of a name and a link, tab between, and prints for each as one line of JSON the nanoseconds
 //! from the text of the link to the JSON of its answer, and, where its time is a quadrature, those of the quadrature and of
-//! the integrator to the same moment. `speed links N` prints N mixed links.
+//! the integrator to the same moment. `speed links N` prints N mixed links, `speed ugly N` N ugly schedules. `speed slowest`
+//! reads links and prints those that took longest, with their microseconds and evaluations.
 
 use aftercount_core::answer::answer;
 use aftercount_core::course::Course;
@@ -14,6 +15,7 @@ use aftercount_core::pairs::Pairs;
 use aftercount_core::sides::Side;
 use aftercount_core::statement::{Statement, Values};
 use aftercount_core::terms::Engagement;
+use aftercount_tests::ugly;
 use serde_json::{Value, json};
 use std::hint::black_box;
 use std::io::{BufWriter, Write};
@@ -42,9 +44,48 @@ fn main() -> ExitCode {
             }
             ExitCode::SUCCESS
         }
+        ["ugly", count] => {
+            let count: u32 = count.parse().expect("how many");
+            let mut out = BufWriter::new(std::io::stdout().lock());
+            for index in 0..count {
+                writeln!(out, "{}", ugly::link(index)).expect("somebody reads them");
+            }
+            ExitCode::SUCCESS
+        }
+        ["slowest"] => {
+            slowest();
+            ExitCode::SUCCESS
+        }
         _ => {
-            eprintln!("speed: `times` or `links N`");
+            eprintln!("speed: `times`, `links N`, `ugly N` or `slowest`");
             ExitCode::from(2)
+        }
+    }
+}
+
+/// How many of the slowest are printed.
+const SLOWEST: usize = 12;
+
+fn slowest() {
+    let mut found: Vec<(u128, u32, String)> = Vec::new();
+    for line in std::io::stdin().lines() {
+        let line = line.expect("lines of text");
+        let Ok(statement) = Statement::read(&Pairs::parse(&line)) else {
+            continue;
+        };
+        let engagement = statement.engagement(&Values::new());
+        let start = Instant::now();
+        let work = fight(&engagement, Effort::Outcome).work;
+        found.push((start.elapsed().as_micros(), work.evaluations(), line));
+    }
+    println!("{} links", found.len());
+    for order in [
+        |a: &(u128, u32, String)| a.0,
+        |a: &(u128, u32, String)| u128::from(a.1),
+    ] {
+        found.sort_by_key(|one| std::cmp::Reverse(order(one)));
+        for (microseconds, evaluations, link) in found.iter().take(SLOWEST) {
+            println!("{microseconds} µs, {evaluations} evaluations: {link}");
         }
     }
 }

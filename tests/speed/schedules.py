@@ -15,8 +15,8 @@ from pathlib import Path
 
 from scipy.integrate import solve_ivp
 
-HERE = Path(__file__).parent
-sys.path.insert(0, str(HERE / "reference"))
+TESTS = Path(__file__).resolve().parent.parent
+sys.path.insert(0, str(TESTS / "reference"))
 from schedule_taylor import ENEMY, Engagement, Stretch  # noqa: E402
 
 JOINS = "&x.join=30@1,20@2,-10@3,25@4,30@5&y.join=20@1.5,25@2.5,-10@3.5,25@4.5,20@5.5"
@@ -104,7 +104,7 @@ def timed(program, link, lines):
 
 
 def main():
-    target = Path(os.environ.get("CARGO_TARGET_DIR", HERE.parent / "target"))
+    target = Path(os.environ.get("CARGO_TARGET_DIR", TESTS.parent / "target"))
     program = sys.argv[1] if len(sys.argv) > 1 else target / "release" / "examples" / "outcome"
     for name, (wanted, link) in SCHEDULES.items():
         stretches, breaks = prepared(link)

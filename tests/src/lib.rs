@@ -6,3 +6,4 @@ pub mod budgets;
 pub mod hostile;
 pub mod shown;
 pub mod tables;
+pub mod ugly;

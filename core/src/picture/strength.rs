@@ -184,8 +184,9 @@ fn summary(statement: &Statement, fight: &Fight, shown: f64) -> String {
     };
     let parts = Both::of(part);
     let span = match fight.outcome.ended {
-        Ended::Break | Ended::Clock => format!("in {}", time(shown, statement.unit)),
-        Ended::Withdrawn => format!("in {}", time(shown, statement.unit)),
+        Ended::Break | Ended::Clock | Ended::Withdrawn | Ended::Unfinished => {
+            format!("in {}", time(shown, statement.unit))
+        }
         Ended::Limit | Ended::Growth => "in the limit of endless time".into(),
         Ended::Equilibrium => "at all times".into(),
     };

@@ -1,6 +1,6 @@
 //! What is left of a side at a cost.
 
-use super::term::{Descent, MOST_TERMS, Origin, THREE_HALVES, Term, cost};
+use super::term::{Descent, MOST_TERMS, Origin, THREE_HALVES, Term, cost as cost_of};
 use crate::double::Double;
 use crate::laws::span::span_of;
 
@@ -9,6 +9,9 @@ pub(crate) const LEAST: f64 = 1e-290;
 
 /// What is left where that has fallen from `origin` which costs `cost`; 0 or less where that is more than all of it.
 pub(super) fn left(terms: &[Term], origin: &Origin, cost: Double) -> Double {
+    if terms.first().is_some_and(|term| term.weight < TINY) {
+        return left_of_tiny(terms, origin, cost);
+    }
     match terms {
         [] => origin.strength,
         [one] => left_of_one(one, origin, cost),
@@ -17,6 +20,22 @@ pub(super) fn left(terms: &[Term], origin: &Origin, cost: Double) -> Double {
         }
         terms => left_of_many(terms, origin, cost),
     }
+}
+
+/// Weights below this have products below the smallest double.
+const TINY: f64 = 1e-100;
+
+/// The same with weights that low: a power of two before all of them and the cost changes no digit.
+fn left_of_tiny(terms: &[Term], origin: &Origin, cost: Double) -> Double {
+    let scale = f64::from_bits((1023 + 400) << 52);
+    let mut scaled = [Term::default(); MOST_TERMS];
+    for (to, term) in scaled.iter_mut().zip(terms) {
+        *to = Term {
+            weight: term.weight * scale,
+            ..*term
+        };
+    }
+    left(&scaled[..terms.len()], origin, cost * scale)
 }
 
 /// Whether what is left has no formula, and is found by a search for the root.
@@ -95,7 +114,7 @@ fn left_of_many(terms: &[Term], origin: &Origin, area: Double) -> Double {
         to: left.into(),
         by: from - left,
     };
-    let short = |left: f64| cost(terms, origin, down(left)) - area;
+    let short = |left: f64| cost_of(terms, origin, down(left)) - area;
     let slope = |left: f64| -> f64 { terms.iter().map(|term| term.at(left)).sum() };
     let start = f64::from(from);
     let (mut low, mut high) = (0.0, libm::log(start / LEAST));
@@ -166,7 +185,7 @@ mod tests {
         for to in [2.23e-12, 1e-100, 3e-7] {
             let origin = Origin::new(Double::from(4.57e-7), &terms);
             let down = Descent::between(4.57e-7, to.into());
-            let left = left_of_many(&terms, &origin, cost(&terms, &origin, down));
+            let left = left_of_many(&terms, &origin, cost_of(&terms, &origin, down));
             assert!(f64::from((left - to) / to).abs() < 1e-15, "{to:e}: {left:?}");
         }
     }

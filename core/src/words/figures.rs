@@ -63,7 +63,8 @@ pub fn figures(statement: &Statement, outcome: &Outcome) -> Figures {
         row(
             format!("Breaks at ({counted} left)"),
             &|side| match line_in_the_end(&engagement, outcome, side) {
-                line if line > 0.0 => six(line),
+                line if line > 0.0 && line.is_finite() => six(line),
+                line if line > 0.0 => "rises for ever".into(),
                 _ => "to the last".into(),
             },
         )
@@ -81,7 +82,11 @@ pub fn figures(statement: &Statement, outcome: &Outcome) -> Figures {
         row(format!("Losses ({counted})"), &|side| six(sides[side].losses.all)),
         row("Lost, of all committed".into(), &|side| {
             let lost = sides[side].losses.all + engagement.sides[side].lost;
-            format!("{}\u{202f}%", six(100.0 * fraction(lost, sides[side].committed)))
+            if sides[side].committed.is_finite() {
+                format!("{}\u{202f}%", six(100.0 * fraction(lost, sides[side].committed)))
+            } else {
+                "no part of what has no bound".into()
+            }
         }),
     ];
     rows.extend(ends.map(|row| row.from(end)));
@@ -143,7 +148,11 @@ fn line_in_the_end(engagement: &Engagement, outcome: &Outcome, side: Side) -> f6
     if totals.committed == engagement.committed_at_start(side) && totals.withdrawn == 0.0 {
         return break_line(engagement, side).into();
     }
-    let held = Double::difference(1.0, engagement.sides[side].break_point) * totals.committed;
+    let held = Double::difference(1.0, engagement.sides[side].break_point);
+    if held > 0.0 && totals.committed.is_infinite() {
+        return totals.committed;
+    }
+    let held = held * totals.committed.min(f64::MAX);
     (held - totals.withdrawn).into()
 }
 
@@ -262,7 +271,11 @@ fn both(statement: &Statement, outcome: &Outcome, still: bool) -> Vec<Figure> {
         figure("Time of the break", format!("{} {unit}", six(time)), Some("time"));
     } else if let Some(clock) = outcome.pieces.last().and_then(|piece| piece.to) {
         let at = format!("{} {unit}", six(clock));
-        figure("Cut off by the clock at", at, Some("clock"));
+        let (label, line) = match outcome.ended {
+            Ended::Unfinished => ("Worked out up to", None),
+            _ => ("Cut off by the clock at", Some("clock")),
+        };
+        figure(label, at, line);
     }
     if let Some(below) = outcome.below_one {
         let who = match outcome.to_the_last {

@@ -33,6 +33,13 @@ pub fn sentence(statement: &Statement, outcome: &Outcome) -> String {
                 names.x, names.y
             );
         }
+        (Breaks::Neither, Ended::Unfinished) => {
+            let known = outcome.pieces.last().and_then(|piece| piece.to).unwrap_or(0.0);
+            format!(
+                "neither side breaks by {}; what comes after would take more steps than an answer may",
+                time(known, statement.unit)
+            )
+        }
         (Breaks::Neither, Ended::Growth) => "neither side breaks, and strength grows without bound".into(),
         (Breaks::Neither, Ended::Withdrawn) => {
             let gone = if outcome.x.end == Some(0.0) {
@@ -49,13 +56,13 @@ pub fn sentence(statement: &Statement, outcome: &Outcome) -> String {
 
 fn left(statement: &Statement, outcome: &Outcome, side: Side) -> String {
     let outcome = outcome.sides()[side];
-    let end = outcome.end.unwrap_or(f64::INFINITY);
-    format!(
-        "{} {} of {}",
-        statement.names[side],
-        strength(end),
-        strength(outcome.committed)
-    )
+    let end = strength(outcome.end.unwrap_or(f64::INFINITY));
+    let name = &statement.names[side];
+    if outcome.committed.is_finite() {
+        format!("{name} {end} of {}", strength(outcome.committed))
+    } else {
+        format!("{name} {end}, reinforced without end")
+    }
 }
 
 /// Whether anything was lost or came in.

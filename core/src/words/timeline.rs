@@ -165,6 +165,7 @@ fn ending(statement: &Statement, fight: &Fight) -> Option<String> {
         (Breaks::Both, _) => "both break".into(),
         (Breaks::Neither, Ended::Clock) => "the clock".into(),
         (Breaks::Neither, Ended::Withdrawn) => "a side has nobody left, some of them withdrawn".into(),
+        (Breaks::Neither, Ended::Unfinished) => "not worked out further".into(),
         (Breaks::Neither, _) => return None,
     })
 }

@@ -1,0 +1,78 @@
+//! The first moment of a course where a series does not exist: a strength of 0 or a growth of 0 under a broken exponent.
+
+use crate::conditions::Conditions;
+use crate::sides::{Both, Side};
+
+/// A first moment, to first order.
+pub(crate) struct FirstMoment {
+    /// How long it is.
+    pub(crate) length: f64,
+    /// The strengths at its end.
+    pub(crate) strength: Both<f64>,
+    /// What each side has lost by fire by then.
+    pub(crate) fire: Both<f64>,
+}
+
+/// How far it goes: what is left out is the square of this part of the strengths.
+const PART: f64 = 1e-9;
+
+/// No shorter moment is tried.
+const SHORTEST: f64 = 1e-250;
+
+impl FirstMoment {
+    /// The first moment from the strengths `start` on, no longer than `until`; `None` where the conditions have a series
+    /// there.
+    pub(crate) fn new(start: Both<f64>, conditions: &Conditions, until: f64) -> Option<FirstMoment> {
+        if Side::BOTH
+            .into_iter()
+            .all(|side| has_series(side, start, conditions))
+        {
+            return None;
+        }
+        let mut length = until.min(1.0);
+        loop {
+            let (moment, small) = FirstMoment::of(length, start, conditions);
+            if small || length < SHORTEST {
+                return Some(moment);
+            }
+            length *= 0.125;
+        }
+    }
+
+    /// The moment of this length, and whether it is short enough. The losses per unit of time at its end bound those along
+    /// it.
+    fn of(length: f64, start: Both<f64>, conditions: &Conditions) -> (FirstMoment, bool) {
+        let grown = Both::of(|side: Side| start[side] + conditions.flow[side] * length);
+        let fire = Both::of(|side: Side| {
+            let enemy = side.enemy();
+            let growth = conditions.growth[enemy].map_or(1.0, |growth| growth.until(length) / length);
+            conditions.fire[enemy].losses_per_time(grown[enemy], grown[side]) * growth * length
+        });
+        let lost = Both::of(|side: Side| {
+            let exposure = 0.5 * (start[side] + grown[side]) * length;
+            let besides = conditions.part_lost(side) * exposure + conditions.steadily_lost(side) * length;
+            fire[side] + besides
+        });
+        let small = Side::BOTH.iter().all(|side| lost[*side] <= PART * grown[*side]);
+        let strength = Both::of(|side| grown[side] - lost[side]);
+        (
+            FirstMoment {
+                length,
+                strength,
+                fire,
+            },
+            small,
+        )
+    }
+}
+
+/// Whether the fire of `side` has a series at the start.
+fn has_series(side: Side, start: Both<f64>, conditions: &Conditions) -> bool {
+    let broken = |exponent: f64| ![0.0, 1.0, 2.0].contains(&exponent);
+    let fire = &conditions.fire[side];
+    let growth = conditions.growth[side].is_some_and(|growth| growth.value <= 0.0 && broken(growth.power));
+    let shooters = start[side] == 0.0 && broken(fire.shooters().exponent);
+    let [first, second] = fire.per_target();
+    let targets = start[side.enemy()] == 0.0 && (broken(-first.exponent) || second.coefficient > 0.0);
+    !fire.takes_effect() || !(growth || shooters || targets)
+}

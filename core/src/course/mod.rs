@@ -1,0 +1,387 @@
+//! The integrator: strength over time by Taylor series under any conditions, dense output between the steps.
+//!
+//! The choice of the step is that of À. Jorba and M. Zou, "A software package for the numerical integration of ODEs by
+//! means of high-order Taylor methods", Experimental Mathematics 14 (2005) 99–117. The series itself is the dense output,
+//! and events are located on it. Near a strength of 0 reached in finite time the steps shrink with what is left of the
+//! time, in a geometric row.
+
+mod first_moment;
+mod series;
+
+pub use series::ORDER;
+
+use crate::conditions::Conditions;
+use crate::outcome::Losses;
+use crate::root::{newton, root};
+use crate::sides::{Both, Side};
+use crate::terms::Fire;
+use first_moment::FirstMoment;
+use series::Expansion;
+
+/// Steps of one course at most; a fight that needs more goes on in another.
+pub const MOST_STEPS: usize = 600;
+
+/// With less left of a side than this, its powers have no digits to go on with.
+pub(crate) const LEAST: f64 = 1e-280;
+
+/// The longest step in its own unit: what is next to nothing has coefficients that no double holds, and would else be
+/// taken to have a series without end.
+const LONGEST_STEP: f64 = 6.0;
+
+/// The accuracy of each step as a part of the strengths, unless another is asked for: far below the 1e-11 that is asked
+/// of what is integrated, since a series has digits for little more.
+pub const TOLERANCE: f64 = f64::EPSILON;
+
+/// What is summed along a course: losses are never taken as a remainder.
+#[derive(Clone, Copy, Debug, Default, PartialEq)]
+struct Summed {
+    /// What has been lost by fire.
+    fire: f64,
+    /// The strength summed over time, of which wastage and fire at an area take their parts.
+    exposure: f64,
+}
+
+/// One step: its series, and what had been summed when it began.
+#[derive(Clone, Debug, PartialEq)]
+struct Step {
+    from: f64,
+    /// The time in which the changes of its first moment would use a side up: the twentieth power of any other unit may
+    /// be too large for a double, or too small.
+    unit: f64,
+    series: Expansion,
+    before: Both<Summed>,
+}
+
+impl Step {
+    /// What has been summed by the time `t` from the beginning of the step, in its unit.
+    fn summed(&self, t: f64) -> Both<Summed> {
+        let (fire, exposure) = (self.series.fire(t), self.series.exposures(t));
+        Both::of(|side| Summed {
+            // Of next to nothing the rounding may be below it.
+            fire: self.before[side].fire + fire[side].max(0.0),
+            exposure: self.before[side].exposure + exposure[side] * self.unit,
+        })
+    }
+}
+
+/// Why a course went no further.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Stopped {
+    /// It came to its horizon.
+    Horizon,
+    /// Enough was known.
+    Enough,
+    /// A side was gone.
+    Gone,
+    /// It took as many steps as a course may, or its steps fell below the digits of its time or its strengths left those
+    /// of a double.
+    Short,
+}
+
+/// Strength over time from the start up to a horizon, to the rounding of doubles.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Course {
+    conditions: Conditions,
+    steps: Vec<Step>,
+    until: f64,
+    /// The strengths and what has been summed at the end.
+    now: Both<f64>,
+    summed: Both<Summed>,
+    stopped: Stopped,
+}
+
+/// A line that a strength may come down to: its distance below the start, and how it rises.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Line {
+    /// Where it stands at the start.
+    pub at: f64,
+    /// Its rise per unit of time.
+    pub rising: f64,
+}
+
+impl Course {
+    /// Follows a fight of the two fires alone from `start` up to the time `until`.
+    pub fn follow(start: Both<f64>, fire: &Both<Fire<f64>>, until: f64, tolerance: f64) -> Course {
+        let conditions = Conditions {
+            fire: *fire,
+            wastage: Both::default(),
+            support: Both::default(),
+            flow: Both::default(),
+            growth: Both::default(),
+        };
+        Course::under(start, &conditions, until, tolerance, |_| false)
+    }
+
+    /// Follows a fight under `conditions` up to the time `until`, or to the end of the first step at which `enough`
+    /// holds; each step keeps its error to the part `tolerance` of the strengths.
+    pub fn under(
+        start: Both<f64>,
+        conditions: &Conditions,
+        until: f64,
+        tolerance: f64,
+        enough: impl Fn(&Course) -> bool,
+    ) -> Course {
+        Course::along(start, conditions, until, tolerance, enough, |now| now)
+    }
+
+    /// The same, each step ending where `onto_orbit` puts it: next to a tie a rounding off the orbit grows as the fight
+    /// goes on, and one along it does not.
+    pub fn along(
+        start: Both<f64>,
+        conditions: &Conditions,
+        until: f64,
+        tolerance: f64,
+        enough: impl Fn(&Course) -> bool,
+        onto_orbit: impl Fn(Both<f64>) -> Both<f64>,
+    ) -> Course {
+        let mut course = Course {
+            conditions: *conditions,
+            steps: Vec::new(),
+            until: 0.0,
+            now: start,
+            summed: Both::default(),
+            stopped: Stopped::Horizon,
+        };
+        if course.is_gone() {
+            course.stopped = Stopped::Gone;
+            return course;
+        }
+        if let Some(moment) = FirstMoment::new(start, conditions, until) {
+            course.take(&moment);
+        }
+        while course.until < until {
+            course.stopped =
+                if course.steps.len() >= MOST_STEPS || !course.step(until, tolerance, &onto_orbit) {
+                    Stopped::Short
+                } else if course.is_gone() {
+                    Stopped::Gone
+                } else if enough(&course) {
+                    Stopped::Enough
+                } else {
+                    continue;
+                };
+            break;
+        }
+        course
+    }
+
+    /// Begins with a first moment that has no series.
+    fn take(&mut self, moment: &FirstMoment) {
+        let step = Step {
+            from: 0.0,
+            unit: moment.length,
+            series: Expansion::straight(
+                Both::of(|side| [self.now[side], moment.strength[side]]),
+                moment.fire,
+            ),
+            before: Both::default(),
+        };
+        self.until = moment.length;
+        self.now = moment.strength;
+        self.summed = step.summed(1.0);
+        self.steps.push(step);
+    }
+
+    /// Takes one step towards `until`; says whether there was one to take.
+    fn step(&mut self, until: f64, tolerance: f64, onto_orbit: &impl Fn(Both<f64>) -> Both<f64>) -> bool {
+        let at = self.until;
+        let (unit, most) = unit_of(self.now, at, &self.conditions);
+        let short = ((until - at) / unit).min(most);
+        let (series, is_short) = Expansion::new(self.now, at, &self.conditions, unit, short, tolerance);
+        let length = if is_short {
+            short
+        } else {
+            series.step_length(tolerance).min(short)
+        };
+        let comes_to = if length * unit >= until - at {
+            until
+        } else {
+            at + length * unit
+        };
+        let now = onto_orbit(series.strengths(length));
+        if comes_to == at || !(now.x.is_finite() && now.y.is_finite()) {
+            return false;
+        }
+        let step = Step {
+            from: at,
+            unit,
+            series,
+            before: self.summed,
+        };
+        (self.until, self.now, self.summed) = (comes_to, now, step.summed(length));
+        self.steps.push(step);
+        true
+    }
+
+    /// Whether a side to which nobody comes has no digits left to go on with, or one that had somebody has nobody.
+    fn is_gone(&self) -> bool {
+        let gone = |side: Side| {
+            if self.conditions.flow[side] > 0.0 {
+                self.now[side] <= 0.0 && !self.steps.is_empty()
+            } else {
+                self.now[side] <= LEAST
+            }
+        };
+        gone(Side::X) || gone(Side::Y)
+    }
+
+    /// How many steps it took.
+    pub fn steps(&self) -> u32 {
+        self.steps.len() as u32
+    }
+
+    /// The time up to which it was followed.
+    pub fn until(&self) -> f64 {
+        self.until
+    }
+
+    /// Why it was followed no further.
+    pub fn stopped(&self) -> Stopped {
+        self.stopped
+    }
+
+    /// The strengths at the end.
+    pub fn end(&self) -> Both<f64> {
+        Both::of(|side| self.now[side].max(0.0))
+    }
+
+    /// The step at the time `t`, and that time from its beginning in its unit.
+    fn step_at(&self, t: f64) -> Option<(&Step, f64)> {
+        let place = self.steps.partition_point(|step| step.from <= t).max(1) - 1;
+        let step = self.steps.get(place)?;
+        Some((step, (t - step.from) / step.unit))
+    }
+
+    /// The strengths at the time `t`, from 0 to the horizon.
+    pub fn strengths_at(&self, t: f64) -> Both<f64> {
+        let Some((step, t)) = self.step_at(t) else {
+            return self.end();
+        };
+        let left = step.series.strengths(t);
+        Both::of(|side| left[side].max(0.0))
+    }
+
+    /// The losses by the time `t`, by their causes.
+    pub fn losses_at(&self, t: f64) -> Both<Losses> {
+        let summed = match self.step_at(t) {
+            _ if t == self.until => self.summed,
+            Some((step, t)) => step.summed(t),
+            None => Both::default(),
+        };
+        Both::of(|side: Side| {
+            let support = self.conditions.support[side.enemy()];
+            let Summed { fire, exposure } = summed[side];
+            let support = support.area * exposure + support.aimed * t;
+            Losses::of(fire, support, self.conditions.wastage[side] * exposure)
+        })
+    }
+
+    /// The highest strength of a side at the beginning of a step.
+    pub fn highest(&self, side: Side) -> f64 {
+        self.steps
+            .iter()
+            .map(|step| step.series.strength[side][0])
+            .fold(0.0, f64::max)
+    }
+
+    /// The changes of the strengths per unit of time at the time `t`.
+    pub fn slopes_at(&self, t: f64) -> Both<f64> {
+        let Some((step, t)) = self.step_at(t) else {
+            return Both::default();
+        };
+        let slopes = step.series.slopes(t);
+        Both::of(|side| slopes[side] / step.unit)
+    }
+
+    /// The first time at which `side` is down to a strength that does not move; `None` where it is not before the
+    /// horizon.
+    pub fn time_to(&self, side: Side, line: f64) -> Option<f64> {
+        self.first_reach(
+            side,
+            Line {
+                at: line,
+                rising: 0.0,
+            },
+        )
+    }
+
+    /// The first time at which `side` is down to `line`; `None` where it is not before the horizon.
+    pub fn first_reach(&self, side: Side, line: Line) -> Option<f64> {
+        let ends = self
+            .steps
+            .iter()
+            .skip(1)
+            .map(|next| next.from)
+            .chain([self.until]);
+        self.steps.iter().zip(ends).find_map(|(step, end)| {
+            let at = line.at + line.rising * step.from;
+            let end = (end - step.from) / step.unit;
+            let reached = reach_in(&step.series, side, at, line.rising * step.unit, end)?;
+            Some(step.from + reached * step.unit)
+        })
+    }
+}
+
+/// The first time up to `end` at which a strength is down to a line from `at` on, all in the unit of the series.
+///
+/// A step is no longer than its series' radius of convergence over e², so the first terms rule it. Where the sum of all
+/// terms that fall does not come to the line nothing does; where no slope is above 0 there is one root at most; else eight
+/// parts of the step, and the low points in them, leave none unseen.
+fn reach_in(series: &Expansion, side: Side, at: f64, rising: f64, end: f64) -> Option<f64> {
+    const PARTS: u32 = 8;
+    let start = series.strength[side][0];
+    if series.least_above(side, at, rising, end) > 1e-14 * start {
+        return None;
+    }
+    let above = |t: f64| series.above(side, at, rising, t);
+    // A side that begins with nobody, or at its line, may be on its way up.
+    if start <= at && series.strength[side][1] <= rising {
+        return Some(0.0);
+    }
+    if series.greatest_slope(side, rising, end) < 0.0 {
+        if above(end).0 > 0.0 {
+            return None;
+        }
+        let first = (at - start) / (series.strength[side][1] - rising);
+        return Some(newton(0.0, end, first, &above));
+    }
+    for part in 0..PARTS {
+        let low = end * f64::from(part) / f64::from(PARTS);
+        let high = if part + 1 == PARTS {
+            end
+        } else {
+            end * f64::from(part + 1) / f64::from(PARTS)
+        };
+        let dip = if above(low).1 < 0.0 && above(high).1 > 0.0 {
+            root(low, high, &|t| above(t).1)
+        } else {
+            None
+        };
+        for (from, to) in [(low, dip.unwrap_or(high)), (dip.unwrap_or(high), high)] {
+            if above(to).0 <= 0.0 {
+                return Some(root(from, to, &|t| above(t).0).unwrap_or(from));
+            }
+        }
+    }
+    None
+}
+
+/// The time in which the changes of the first moment would use a side up, and how many of them a step takes at most.
+fn unit_of(now: Both<f64>, at: f64, conditions: &Conditions) -> (f64, f64) {
+    let share = |side: Side| {
+        let enemy = side.enemy();
+        let growth = conditions.growth_at(enemy, at);
+        let fire = conditions.fire[enemy].share_per_time(now[enemy], now[side]) * growth;
+        let steady = conditions.steadily_lost(side) + conditions.flow[side];
+        fire + conditions.part_lost(side) + if steady > 0.0 { steady / now[side] } else { 0.0 }
+    };
+    let share = [share(Side::X), share(Side::Y)]
+        .into_iter()
+        .filter(|share| share.is_finite())
+        .fold(0.0, f64::max);
+    if share > 0.0 {
+        (1.0 / share, LONGEST_STEP)
+    } else {
+        (1.0, f64::INFINITY)
+    }
+}

@@ -1,0 +1,526 @@
+//! A fight in the making: through the instants one after another, and along the stretches between them.
+
+use crate::conditions::Conditions;
+use crate::double::Double;
+use crate::ledger::Ledger;
+use crate::outcome::{Breaks, Ended, Losses, Method};
+use crate::piece::Work;
+use crate::schedule::{Instant, instants};
+use crate::sides::{Both, Side};
+use crate::state::TIE;
+use crate::stretch::{After, FirstBreak, Standing, Stretch, TheEnd, WayDown};
+use crate::terms::Engagement;
+use crate::trajectory::Trajectory;
+
+/// How often between two instants a side is found gone, at most; each side can be so once, and once more with what flows in.
+const MOST_ROUNDS: u32 = 4;
+
+/// Where so many evaluations have been spent an integration that is not at its end is not taken up again.
+const MOST_SPENT: u32 = 200_000;
+
+/// The time between two instants, or from the last one on.
+struct Span {
+    until: f64,
+    /// Whether something arrives at its end.
+    arrivals: bool,
+    after: After,
+}
+
+impl Span {
+    /// Whether a line reached at `time` is reached within the span: a reserve that comes at the very moment is in time, a
+    /// line reached at the clock is reached.
+    fn is_on_time(&self, time: f64) -> bool {
+        if self.arrivals {
+            time < self.until * (1.0 - TIE)
+        } else {
+            time <= self.until * (1.0 + TIE)
+        }
+    }
+}
+
+/// What comes after a side was pinned at nothing.
+enum Next {
+    /// The fight is over.
+    Over,
+    /// The next instant.
+    Instant,
+    /// It goes on from this time.
+    At(f64),
+}
+
+/// The part by which losses must outweigh reinforcement for a side to be pinned at nothing.
+const PINNED: f64 = 1e-12;
+
+/// What comes of a stretch.
+enum Comes {
+    /// A side reaches its line.
+    Break(FirstBreak),
+    /// The integrator went no further than this from its beginning.
+    Cut(f64, Standing),
+    /// It comes to its end, so far from its beginning.
+    Through(f64, Standing),
+    /// It never ends.
+    Forever(TheEnd),
+}
+
+impl Comes {
+    /// What comes of a stretch of so great a length in which nobody breaks.
+    fn through(stretch: &Stretch, length: f64) -> Comes {
+        if let Some(cut) = stretch.cut_short(length) {
+            Comes::Cut(cut, stretch.at(cut))
+        } else if length.is_finite() {
+            Comes::Through(length, stretch.at(length))
+        } else {
+            Comes::Forever(stretch.endless())
+        }
+    }
+
+    /// Whether nobody has appeared or vanished, and no number is none.
+    fn keeps_books(&self, stretch: &Stretch) -> bool {
+        let keeps = |side: Side, length: f64, end: f64, losses: &Losses| {
+            let came = stretch.conditions.flow[side];
+            let there = stretch.start[side] + if came > 0.0 { came * length } else { 0.0 };
+            let off = (there - end - losses.all).abs();
+            end >= 0.0 && losses.all >= 0.0 && (off <= 1e-9 * there || there.is_infinite())
+        };
+        Side::BOTH.into_iter().all(|side| match self {
+            Comes::Break(FirstBreak { time, standing, .. }) => {
+                keeps(side, *time, standing.left[side], &standing.losses[side])
+            }
+            Comes::Cut(length, standing) | Comes::Through(length, standing) => {
+                keeps(side, *length, standing.left[side], &standing.losses[side])
+            }
+            Comes::Forever(TheEnd { end, losses, .. }) => {
+                let end = end[side].unwrap_or(f64::INFINITY);
+                keeps(side, f64::INFINITY, end, &losses[side])
+            }
+        })
+    }
+}
+
+/// A fight in the making.
+pub(crate) struct Run {
+    pub(crate) stretches: Vec<Stretch>,
+    pub(crate) instants: Vec<Instant>,
+    /// The fraction lost at which each side breaks.
+    pub(crate) break_point: Both<f64>,
+    /// When the engagement is cut off; infinite where it is not.
+    clock: f64,
+    /// What is left of each side so far.
+    pub(crate) left: Both<f64>,
+    /// What is left in the end; `None` without bound.
+    pub(crate) end: Both<Option<f64>>,
+    pub(crate) ledger: Both<Ledger>,
+    /// The sides that reach their lines at the next instant, to rounding, unless something arrives then.
+    due: Both<bool>,
+    pub(crate) breaks: Breaks,
+    pub(crate) ended: Ended,
+    /// When it ended; `None` where it never does.
+    pub(crate) time: Option<f64>,
+    /// Whether nothing is asked but who is left in the end.
+    verdict: bool,
+    /// The evaluations of stretches that were cut short.
+    spent: u32,
+}
+
+impl Run {
+    /// The fight of `engagement`.
+    pub(crate) fn of(engagement: &Engagement) -> Run {
+        let left = Both::of(|side| engagement.sides[side].start);
+        let ledger = Both::of(|side| Ledger {
+            committed: Double::sum(engagement.sides[side].start, engagement.sides[side].lost),
+            lost_before: engagement.sides[side].lost,
+            ..Ledger::default()
+        });
+        let instants = instants(engagement);
+        let mut run = Run {
+            stretches: Vec::with_capacity(instants.len()),
+            instants,
+            break_point: Both::of(|side| engagement.sides[side].break_point),
+            clock: engagement.until.unwrap_or(f64::INFINITY),
+            left,
+            end: Both::default(),
+            ledger,
+            // Losses before time 0 may have reached a line already.
+            due: Both { x: true, y: true },
+            breaks: Breaks::Neither,
+            ended: Ended::Limit,
+            time: None,
+            verdict: false,
+            spent: 0,
+        };
+        run.go(0);
+        run
+    }
+
+    /// This fight going on from the time `time` where it was cut short, to the last and without a clock: to see who is
+    /// left.
+    pub(crate) fn fought_on(&self, time: f64) -> Run {
+        let place = self
+            .instants
+            .iter()
+            .rposition(|instant| instant.time <= time)
+            .unwrap_or(0);
+        let mut run = Run {
+            stretches: Vec::new(),
+            instants: self.instants[place..].to_vec(),
+            break_point: Both { x: 1.0, y: 1.0 },
+            clock: f64::INFINITY,
+            left: self.left,
+            end: Both::default(),
+            ledger: self.ledger,
+            due: Both::default(),
+            breaks: Breaks::Neither,
+            ended: Ended::Limit,
+            time: None,
+            verdict: true,
+            spent: 0,
+        };
+        let next = run.instants.get(1).map(|instant| instant.time);
+        let over = run.gone_with(0) || run.run_stretch(0, time, next);
+        if !over {
+            run.go(1);
+        }
+        run
+    }
+
+    /// What it took so far.
+    pub(crate) fn work(&self) -> Work {
+        self.stretches
+            .iter()
+            .map(Stretch::work)
+            .fold(Work::default(), Work::and)
+    }
+
+    /// Goes through the instants from the one at `first` on.
+    fn go(&mut self, first: usize) {
+        let clock = self.clock;
+        for place in first..self.instants.len() {
+            let at = self.instants[place].time;
+            if at > clock {
+                break;
+            }
+            self.arrive(place);
+            if self.break_at_instant(at) {
+                return;
+            }
+            let next = self.instants.get(place + 1).map(|instant| instant.time);
+            if at == clock || self.gone_with(place) {
+                let ended = if at == clock {
+                    Ended::Clock
+                } else {
+                    Ended::Withdrawn
+                };
+                return self.finish(Breaks::Neither, ended, at);
+            }
+            if self.run_stretch(place, at, next) {
+                return;
+            }
+        }
+        // The clock stands between two instants, or behind the last.
+        if self.time.is_none() && clock.is_finite() {
+            self.finish(Breaks::Neither, Ended::Clock, clock);
+        }
+    }
+
+    /// What happens at an instant, arrivals first.
+    fn arrive(&mut self, place: usize) {
+        let instant = &self.instants[place];
+        for side in Side::BOTH {
+            let ledger = &mut self.ledger[side];
+            self.left[side] += instant.arrivals[side];
+            ledger.join(instant.arrivals[side]);
+            // No more can go than are there.
+            let going = instant.withdrawals[side].min(self.left[side]);
+            self.left[side] -= going;
+            ledger.withdrawn += going;
+        }
+    }
+
+    fn break_at_instant(&mut self, at: f64) -> bool {
+        let broken = Both::of(|side| {
+            let break_point = self.break_point[side];
+            // To the last it has done so only where the stretch before came to it: one that fades has lost all but for a
+            // rest that the sum of the losses has no digits for.
+            let may = break_point < 1.0 || self.due[side];
+            may && self.ledger[side].has_broken(break_point, self.due[side])
+        });
+        let breaks = Breaks::of(broken);
+        if let Some(breaks) = breaks {
+            self.finish(breaks, Ended::Break, at);
+        }
+        breaks.is_some()
+    }
+
+    /// Whether a side has been withdrawn to the last, with nobody to come.
+    fn gone_with(&self, place: usize) -> bool {
+        let rest = &self.instants[place..];
+        Side::BOTH.into_iter().any(|side| {
+            let comes = rest[1..].iter().any(|instant| instant.arrivals[side] > 0.0)
+                || rest.iter().any(|instant| instant.conditions.flow[side] > 0.0);
+            self.left[side] == 0.0 && !comes && self.ledger[side].withdrawn > 0.0
+        })
+    }
+
+    fn finish(&mut self, breaks: Breaks, ended: Ended, time: f64) {
+        self.breaks = breaks;
+        self.ended = ended;
+        self.time = Some(time);
+        self.end = Both::of(|side| Some(self.left[side]));
+    }
+
+    /// Solves from the time `from`, at an instant or behind it, to the next, the clock or the end; says whether the fight is over.
+    fn run_stretch(&mut self, place: usize, from: f64, next: Option<f64>) -> bool {
+        let span = self.span(next);
+        let since = self.instants[place].time;
+        let (mut at, mut rounds) = (from, 0);
+        loop {
+            let conditions = self.instants[place].conditions.later(at - since);
+            let ways = Both::of(|side| {
+                self.ledger[side].way_down(self.left[side], self.break_point[side], conditions.flow[side])
+            });
+            if let Some(next) = self.pinned(&span, at, &conditions, &ways) {
+                match next {
+                    Next::At(time) if rounds < MOST_ROUNDS => {
+                        rounds += 1;
+                        at = time;
+                        continue;
+                    }
+                    Next::At(_) | Next::Instant => return false,
+                    Next::Over => return true,
+                }
+            }
+            let (stretch, due, comes) = self.solve(&span, at, conditions, &ways);
+            if let Some(side) = stretch.doomed() {
+                self.stretches.push(stretch);
+                self.finish(Breaks::only(side), Ended::Break, at);
+                return true;
+            }
+            let breaks = |breaks: Option<Breaks>, side: Side| {
+                breaks.is_some_and(|breaks| breaks.includes(side)) && ways[side].sunk == 0.0
+            };
+            self.due = Both::of(|side| breaks(due, side));
+            let first = match comes {
+                Comes::Break(first) if rounds < MOST_ROUNDS => first,
+                // A side with nobody left may have somebody the next moment, and none the one after: it is not asked for
+                // ever whether it is gone.
+                Comes::Break(_) => {
+                    let comes = Comes::through(&stretch, span.until - at);
+                    return self.run_out(stretch, &conditions, comes, span.until);
+                }
+                Comes::Cut(length, standing) => {
+                    // The integrator goes on in a stretch of its own, as long as it gets anywhere.
+                    let before = at;
+                    self.spent = self.spent.saturating_add(stretch.work().evaluations());
+                    at += length;
+                    self.close(stretch, &conditions, &standing, length, at);
+                    if at == before || self.spent > MOST_SPENT {
+                        self.finish(Breaks::Neither, Ended::Unfinished, at);
+                        return true;
+                    }
+                    continue;
+                }
+                comes => return self.run_out(stretch, &conditions, comes, span.until),
+            };
+            rounds += 1;
+            at += first.time;
+            self.close(stretch, &conditions, &first.standing, first.time, at);
+            let broken = Both::of(|side| breaks(Some(first.breaks), side));
+            if let Some(breaks) = Breaks::of(broken) {
+                self.finish(breaks, Ended::Break, at);
+                return true;
+            }
+            if self.gone_with(place) {
+                self.finish(Breaks::Neither, Ended::Withdrawn, at);
+                return true;
+            }
+        }
+    }
+
+    /// The time up to the next instant, at `next`, or the clock.
+    fn span(&self, next: Option<f64>) -> Span {
+        let arrivals = next.is_some_and(|next| next <= self.clock);
+        Span {
+            until: next.unwrap_or(f64::INFINITY).min(self.clock),
+            arrivals,
+            after: match next {
+                Some(_) => After::More,
+                None if self.verdict => After::Verdict,
+                None => After::Nothing,
+            },
+        }
+    }
+
+    /// The stretch from the time `at` on, who is due to break in it, on time or a hair later, and what comes of it.
+    ///
+    /// Where extremes have cost a formula its digits, which the books tell, the stretch is integrated.
+    fn solve(
+        &self,
+        span: &Span,
+        at: f64,
+        conditions: Conditions,
+        ways: &Both<WayDown>,
+    ) -> (Stretch, Option<Breaks>, Comes) {
+        let length = span.until - at;
+        // Below 0 a line does not count: the way there is to nothing.
+        let level = Both::of(|side| {
+            let way = ways[side];
+            if way.sunk > 0.0 {
+                WayDown { rising: 0.0, ..way }
+            } else {
+                way
+            }
+        });
+        let what_comes = |stretch: &Stretch| {
+            let first = stretch.first_break(&level, length);
+            let due = first.as_ref().map(|first| first.breaks);
+            let comes = match first.filter(|first| span.is_on_time(at + first.time)) {
+                Some(first) => Comes::Break(first),
+                None => Comes::through(stretch, length),
+            };
+            (due, comes)
+        };
+        let mut stretch = Stretch::new(at, length, self.left, conditions, &level, span.after);
+        stretch.ledger = self.ledger;
+        let (due, comes) = what_comes(&stretch);
+        if stretch.method() == Method::Integration || comes.keeps_books(&stretch) {
+            return (stretch, due, comes);
+        }
+        let stretch = stretch.integrated(length, span.after);
+        let (due, comes) = what_comes(&stretch);
+        (stretch, due, comes)
+    }
+
+    /// A side with nobody there whose reinforcement is lost as fast as it comes breaks with the first that comes, unless its
+    /// line is below 0 since some were withdrawn: then its enemy goes on alone, until its losses have brought the line up
+    /// to 0, or the enemy has become too weak. Says what comes after; `None` where no side is so.
+    fn pinned(
+        &mut self,
+        span: &Span,
+        at: f64,
+        conditions: &Conditions,
+        ways: &Both<WayDown>,
+    ) -> Option<Next> {
+        let fire_on = |side: Side| {
+            let enemy = side.enemy();
+            let fire = conditions.fire[enemy].losses_per_time(self.left[enemy], 0.0);
+            fire * conditions.growth_at(enemy, 0.0)
+        };
+        let side = Side::BOTH.into_iter().find(|side| {
+            let (flow, lost) = (
+                conditions.flow[*side],
+                fire_on(*side) + conditions.steadily_lost(*side),
+            );
+            self.left[*side] == 0.0 && flow > 0.0 && lost > flow * (1.0 + PINNED)
+        })?;
+        if ways[side].sunk == 0.0 {
+            self.finish(Breaks::only(side), Ended::Break, at);
+            return Some(Next::Over);
+        }
+        let (fire, steady) = (fire_on(side), conditions.steadily_lost(side));
+        let mut alone = *conditions;
+        alone.flow[side] = 0.0;
+        let breaks = at + ways[side].sunk / ways[side].rising;
+        let until = breaks
+            .min(span.until)
+            .min(at + self.too_weak(span, side, &alone, ways, (conditions.flow[side] - steady) / fire));
+        let until_then = Span { until, ..*span };
+        let (stretch, _, comes) = self.solve(&until_then, at, alone, ways);
+        let broken = match &comes {
+            Comes::Break(first) => Some(first.breaks),
+            _ => None,
+        };
+        let end = match &comes {
+            Comes::Break(first) => at + first.time,
+            _ => until,
+        };
+        self.run_out(stretch, &alone, comes, end);
+        let came = conditions.flow[side] * (end - at);
+        let by = |pace: f64| {
+            if pace > 0.0 {
+                came * (pace / (fire + steady))
+            } else {
+                0.0
+            }
+        };
+        let ledger = &mut self.ledger[side];
+        ledger.join(came);
+        ledger.add(&Losses::of(by(fire), by(steady), 0.0));
+        match broken {
+            Some(broken) if ways[side.enemy()].sunk == 0.0 => self.finish(broken, Ended::Break, end),
+            _ if end.is_infinite() => {}
+            _ if end == breaks => self.finish(Breaks::only(side), Ended::Break, end),
+            _ if end == span.until => return Some(Next::Instant),
+            _ => return Some(Next::At(end)),
+        }
+        Some(Next::Over)
+    }
+
+    /// How long it takes until the enemy of `side`, going on alone, is down to where his fire is the part `part` of what it
+    /// is now; infinite where he never is.
+    fn too_weak(&self, span: &Span, side: Side, alone: &Conditions, ways: &Both<WayDown>, part: f64) -> f64 {
+        let enemy = side.enemy();
+        let exponent = alone.fire[enemy].shooters().exponent;
+        if part <= 0.0 || exponent == 0.0 {
+            return f64::INFINITY;
+        }
+        let strength = self.left[enemy] * libm::pow(part, 1.0 / exponent) * (1.0 - PINNED);
+        Stretch::new(0.0, span.until, self.left, *alone, ways, After::More)
+            .time_to_strength(enemy, strength)
+            .unwrap_or(f64::INFINITY)
+    }
+
+    /// Enters a stretch in which nobody breaks, up to `until` or for ever; says whether the fight is over.
+    fn run_out(&mut self, stretch: Stretch, conditions: &Conditions, comes: Comes, until: f64) -> bool {
+        match comes {
+            Comes::Forever(TheEnd { ended, end, losses }) => {
+                for side in Side::BOTH {
+                    self.ledger[side].add(&losses[side]);
+                    if conditions.flow[side] > 0.0 {
+                        self.ledger[side].join(f64::INFINITY);
+                    }
+                }
+                self.stretches.push(stretch);
+                (self.ended, self.end) = (ended, end);
+                true
+            }
+            Comes::Break(FirstBreak { standing, .. })
+            | Comes::Cut(_, standing)
+            | Comes::Through(_, standing) => {
+                let length = until - stretch.from;
+                self.close(stretch, conditions, &standing, length, until);
+                false
+            }
+        }
+    }
+
+    /// Ends a stretch after `length`, at the time `to`, and enters what it has done into the ledgers.
+    fn close(
+        &mut self,
+        mut stretch: Stretch,
+        conditions: &Conditions,
+        standing: &Standing,
+        length: f64,
+        to: f64,
+    ) {
+        self.book(conditions, length, standing);
+        stretch.to = Some(to);
+        self.stretches.push(stretch);
+    }
+
+    /// Enters what a stretch has done into the ledgers.
+    fn book(&mut self, conditions: &Conditions, length: f64, standing: &Standing) {
+        for side in Side::BOTH {
+            let ledger = &mut self.ledger[side];
+            ledger.join(conditions.flow[side] * length);
+            ledger.add(&standing.losses[side]);
+            self.left[side] = standing.left[side].max(0.0);
+        }
+    }
+
+    /// Strength over time.
+    pub(crate) fn into_trajectory(self) -> Trajectory {
+        let end = self.time.map(|_| self.left);
+        Trajectory::of(self.stretches, self.instants, self.time, end, self.left)
+    }
+}

@@ -1,0 +1,287 @@
+//! A stretch that is integrated: the integrator's course, its lines, and what comes after its end.
+
+use super::{After, Standing, TheEnd, WayDown, linear};
+use crate::conditions::Conditions;
+use crate::course::{Course, LEAST, Line, Stopped, TOLERANCE};
+use crate::double::Double;
+use crate::linear_system::LinearSystem;
+use crate::outcome::{Ended, Losses};
+use crate::sides::{Both, Side};
+
+/// The part of its start at which a side to which nobody comes is gone.
+const GONE: f64 = 1e-200;
+
+/// The part of its start to which a side that is on its way to nothing is followed.
+const FADED: f64 = 1e-13;
+
+/// An integrated stretch.
+#[derive(Clone, Debug)]
+pub(super) struct Integrated {
+    start: Both<f64>,
+    conditions: Conditions,
+    course: Course,
+    /// The side that is sure to be brought to nothing, where that alone was asked.
+    doomed: Option<Side>,
+}
+
+impl Integrated {
+    /// The integrator's course up to `length`, or until a side is at its line, or nothing moves any more, or, where only
+    /// that is asked, it is sure who will be gone in the end.
+    pub(super) fn new(
+        start: Both<f64>,
+        conditions: &Conditions,
+        length: f64,
+        ways: &Both<WayDown>,
+        after: After,
+    ) -> Integrated {
+        let enough = |course: &Course| {
+            let t = course.until();
+            let now = course.end();
+            let down = |side: Side| now[side] <= f64::from(ways[side].descent.to) + ways[side].rising * t;
+            let decided = after == After::Verdict && doomed(conditions, now, t).is_some();
+            decided || down(Side::X) || down(Side::Y) || has_settled(course, start, conditions, length)
+        };
+        let course = Course::under(start, conditions, length, TOLERANCE, enough);
+        let doomed = match after {
+            After::Verdict => doomed(conditions, course.end(), course.until()),
+            _ => None,
+        };
+        Integrated {
+            start,
+            conditions: *conditions,
+            course,
+            doomed,
+        }
+    }
+
+    /// The course of two sides that tend to `limit` for ever, until they are next to it.
+    pub(super) fn fading(start: Both<f64>, conditions: &Conditions, limit: Both<f64>) -> Integrated {
+        let faded = |course: &Course| {
+            let now = course.end();
+            let near = |side: Side| now[side] <= limit[side] + 1e-15 * start[side];
+            near(Side::X) && near(Side::Y)
+        };
+        Integrated {
+            start,
+            conditions: *conditions,
+            course: Course::under(start, conditions, f64::INFINITY, TOLERANCE, faded),
+            doomed: None,
+        }
+    }
+
+    /// The integrator's course.
+    pub(super) fn course(&self) -> &Course {
+        &self.course
+    }
+
+    /// The side that is sure to be brought to nothing, where that alone was asked.
+    pub(super) fn doomed(&self) -> Option<Side> {
+        self.doomed
+    }
+
+    /// Where it went no further although more of `length` was left, and how matters go on is not known.
+    pub(super) fn cut_short(&self, length: f64) -> Option<f64> {
+        let end = self.course.until();
+        (self.course.stopped() == Stopped::Short && end < length && self.alone().is_none()).then_some(end)
+    }
+
+    /// The first time up to `length` at which `side` is at its line.
+    pub(super) fn first_reach(&self, side: Side, way: &WayDown, length: f64) -> Option<f64> {
+        let line = Line {
+            at: f64::from(way.descent.to),
+            rising: way.rising,
+        };
+        let time = self
+            .course
+            .first_reach(side, line)
+            .or_else(|| self.last_moment(side, line, length))
+            .or_else(|| self.line_met_later(side, line, length));
+        time.filter(|time| *time <= length)
+    }
+
+    /// The moment at which a side comes to 0 where its losses do not vanish with it: the integrator's steps shrink with
+    /// what is left of the time, and end a hair before.
+    fn last_moment(&self, side: Side, line: Line, length: f64) -> Option<f64> {
+        let end = self.course.until();
+        let fire = &self.conditions.fire[side.enemy()];
+        let [first, second] = fire.per_target();
+        let vanishes = second.coefficient > 0.0 || first.exponent <= -1.0 || !fire.takes_effect();
+        let comes = !vanishes || self.conditions.steadily_lost(side) > 0.0;
+        let left = self.course.end();
+        let next_to_nothing = left[side] <= LEAST.max(1e-9 * self.course.highest(side));
+        let lost = self.conditions.losses_per_time(side, left).all;
+        let falls = lost * self.conditions.growth_at(side.enemy(), end) > self.conditions.flow[side];
+        (end < length && line.at == 0.0 && line.rising == 0.0 && comes && falls && next_to_nothing)
+            .then_some(end)
+    }
+
+    /// When a side comes to its line after the end of the integrator's course: alone, or since the line rises to it.
+    fn line_met_later(&self, side: Side, line: Line, length: f64) -> Option<f64> {
+        let end = self.course.until();
+        if end >= length || self.cut_short(length).is_some() {
+            return None;
+        }
+        if let Some((start, system)) = self.alone() {
+            let above = Double::from(start[side] - line.at - line.rising * end);
+            let later =
+                (start[side] > 0.0).then(|| system.first_reach(side, above, line.rising, length - end))?;
+            return later.map(|later| end + later);
+        }
+        // What still grows has not come to rest: how it goes on is not known.
+        if line.rising == 0.0 || self.grows(Side::X) || self.grows(Side::Y) {
+            return None;
+        }
+        let time = (self.course.end()[side] - line.at) / line.rising;
+        (time >= end).then_some(time)
+    }
+
+    /// How matters stand at the time `t`.
+    ///
+    /// After the end of the course, where one side is gone the other goes on alone; else nothing moves any more, and
+    /// losses go on at their pace.
+    pub(super) fn at(&self, t: f64) -> Standing {
+        let course = &self.course;
+        if t <= course.until() {
+            return Standing {
+                left: course.strengths_at(t),
+                losses: course.losses_at(t),
+            };
+        }
+        let losses = course.losses_at(course.until());
+        let on = t - course.until();
+        let later = match self.alone() {
+            Some((start, system)) => linear::standing(&self.conditions.without_fire(), start, &system, on),
+            None => Standing {
+                left: course.end(),
+                losses: steady_losses(&self.conditions, course.end(), on),
+            },
+        };
+        Standing {
+            left: later.left,
+            losses: Both::of(|side| losses[side].and(&later.losses[side])),
+        }
+    }
+
+    /// Where the integrator's course ends with one side gone: the strengths then, and how the other goes on.
+    fn alone(&self) -> Option<(Both<f64>, LinearSystem)> {
+        let left = self.course.end();
+        let gone = |side: Side| {
+            left[side] <= LEAST.max(GONE * self.start[side]) && self.conditions.flow[side] == 0.0
+        };
+        Side::BOTH.into_iter().any(gone).then_some(())?;
+        let start = Both::of(|side| if gone(side) { 0.0 } else { left[side] });
+        let system = self.conditions.without_fire().linear(start)?;
+        Some((start, system))
+    }
+
+    /// Whether `side` still grows at the end of the course.
+    fn grows(&self, side: Side) -> bool {
+        let late = self.course.until();
+        let slope = self.course.slopes_at(late)[side];
+        slope > 0.0 && slope * late > 1e-6 * self.course.end()[side]
+    }
+
+    /// Where it tends where it never ends.
+    pub(super) fn endless(&self) -> TheEnd {
+        let course = &self.course;
+        if let Some((start, system)) = self.alone() {
+            let later = linear::endless(&self.conditions.without_fire(), start, &system);
+            let losses = course.losses_at(course.until());
+            return TheEnd {
+                losses: Both::of(|side| losses[side].and(&later.losses[side])),
+                ..later
+            };
+        }
+        let late = course.until();
+        let left = course.end();
+        let end = Both::of(|side| {
+            if self.grows(side) {
+                None
+            } else if self.conditions.flow[side] == 0.0 && left[side] <= FADED * self.start[side] {
+                // What is that little has not come to rest: it fades.
+                Some(0.0)
+            } else {
+                Some(left[side])
+            }
+        });
+        let flows = Side::BOTH.iter().any(|side| self.conditions.flow[*side] > 0.0);
+        let ended = match (end.x.is_none() || end.y.is_none(), flows) {
+            (true, _) => Ended::Growth,
+            (false, true) => Ended::Equilibrium,
+            (false, false) => Ended::Limit,
+        };
+        TheEnd::of(&self.conditions, ended, end, course.losses_at(late))
+    }
+}
+
+/// Whether nothing moves any more at the end of `course`, so that what comes after is known.
+fn has_settled(course: &Course, start: Both<f64>, conditions: &Conditions, length: f64) -> bool {
+    let steady = conditions.growth.x.is_none() && conditions.growth.y.is_none();
+    let endless = length.is_infinite();
+    if !steady && !endless {
+        return false;
+    }
+    let (t, now) = (course.until(), course.end());
+    let slopes = course.slopes_at(t);
+    let still =
+        |side: Side| (slopes[side] * t).abs() <= 1e-13 * now[side] || now[side] <= FADED * start[side];
+    let huge = |side: Side| now[side] > 1e15 * (1.0 + start.x + start.y);
+    if endless && (huge(Side::X) || huge(Side::Y)) {
+        return true;
+    }
+    if !(still(Side::X) && still(Side::Y)) {
+        return false;
+    }
+    // Up to a clock or an instant only what has come to rest is left alone: what comes in and what is lost balance.
+    let rests = |side: Side| {
+        let lost = steady_losses(conditions, now, 1.0)[side].all;
+        let slope = slopes[side].abs();
+        let small = slope <= 1e-13 * (lost + conditions.flow[side]) || slope * length <= 1e-13 * now[side];
+        small || now[side] <= 1e-40 * start[side]
+    };
+    endless || (rests(Side::X) && rests(Side::Y))
+}
+
+/// What is lost in the time `t` at steady strengths and full rates.
+fn steady_losses(conditions: &Conditions, left: Both<f64>, t: f64) -> Both<Losses> {
+    Both::of(|side: Side| {
+        let pace = conditions.losses_per_time(side, left);
+        Losses::of(pace.fire * t, pace.support * t, pace.wastage * t)
+    })
+}
+
+/// The side that is sure to be brought to nothing in finite time while the other stands, from the strengths `now` at the
+/// time `at` on; `None` where that is not known yet.
+///
+/// With `n` left of a side under the fire of `m`, it is gone within τ = ∫ dn/(rate·S(m/2)·T(n)) while its enemy keeps half of
+/// what he has; and he does where all that he can lose in that time, by n at its number now, is no more than half.
+fn doomed(conditions: &Conditions, now: Both<f64>, at: f64) -> Option<Side> {
+    Side::BOTH.into_iter().find(|side| {
+        let enemy = side.enemy();
+        if conditions.flow[*side] > 0.0 || now[enemy] <= 0.0 {
+            return false;
+        }
+        let fire = &conditions.fire[enemy];
+        let pace = if fire.takes_effect() {
+            fire.rate * fire.shooters().at(0.5 * now[enemy]) * conditions.growth_at(enemy, at)
+        } else {
+            0.0
+        };
+        let by_fire: f64 = fire
+            .per_target()
+            .iter()
+            .map(|power| power.integral(0.0, now[*side]))
+            .sum();
+        let by_fire = if pace > 0.0 { by_fire / pace } else { f64::INFINITY };
+        let within = by_fire.min(now[*side] / conditions.steadily_lost(*side));
+        if !within.is_finite() {
+            return false;
+        }
+        let most = now[enemy] + conditions.flow[enemy] * within;
+        let lost = conditions.fire[*side].losses_per_time(now[*side], most)
+            * conditions.growth_at(*side, at + within)
+            + conditions.part_lost(enemy) * most
+            + conditions.steadily_lost(enemy);
+        lost * within <= 0.5 * now[enemy]
+    })
+}
