@@ -14,6 +14,12 @@ const FULL: &str = "title=The%20northern%20crossing&note=Rates%20as%20agreed&mar
 const WRONG: &str = "x.start=1,000&x.rate=-3&x.join=40@2,x@3&y.start=464&y.rate=0,05&y.break=2&range=far&\
     phase1.from=soon&phase1.x.rate=5%20%&y.speed=3&x.start=5&bare&v=1";
 
+/// A number in question, which has a value now, and one that has none.
+const ASKED: [&str; 2] = [
+    "x.name=Ondrel&x.start=600?400..900&x.rate=0.04&x.break=0.3&y.name=Vessary&y.start=464&y.rate=0.05&y.break=0.5&v=1",
+    "x.name=Ondrel&x.start=600&x.rate=?&x.break=0.3&y.name=Vessary&y.start=464&y.rate=0.05&y.break=0.5&v=1",
+];
+
 /// Opens all that can be opened.
 const UNFOLD: &str = "for (const panel of document.querySelectorAll('details')) panel.open = true;";
 
@@ -64,6 +70,29 @@ fn axe_finds_nothing_where_problems_show() {
             browser.wait_state("stale");
             found.extend(browser.axe(&format!("old figures, {paper}, {} px", screen.width)));
             browser.picture(&format!("old-figures-{}-{paper}", screen.width));
+        }
+    }
+    assert!(found.is_empty(), "{}", found.join("\n"));
+    browser.assert_clean();
+}
+
+#[test]
+fn axe_finds_nothing_where_a_number_is_asked_for() {
+    let browser = Browser::start();
+    let mut found = Vec::new();
+    for screen in screens() {
+        browser.screen(screen);
+        for paper in ["light", "dark"] {
+            for (at, asked) in ASKED.iter().enumerate() {
+                let link = changed(asked, "paper", paper);
+                browser.open(&link);
+                browser.settle(&link);
+                browser.script(UNFOLD, vec![]);
+                let name = format!("asked-{at}-{paper}-{}", screen.width);
+                found.extend(browser.axe(&name));
+                found.extend(browser.text_that_lies_badly(&name));
+                browser.picture(&name);
+            }
         }
     }
     assert!(found.is_empty(), "{}", found.join("\n"));

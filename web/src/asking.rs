@@ -1,7 +1,7 @@
 //! What a number in question must be: worked out in slices, so that typing is never held up, and put on the page.
 
 use crate::canvas;
-use crate::dom::{Dom, append, set};
+use crate::dom::{Dom, append, append_words, set};
 use crate::draw::{self, Ink};
 use crate::outcome::show_table;
 use aftercount_core::asked::{Asked, Inquiry, Putting};
@@ -142,7 +142,10 @@ impl Asking {
         dom.set_attribute("asked", "aria-busy", "false");
         dom.set_text("asked-working", "");
         dom.set_text("asked-sentence", &words::sentence(statement, answer));
-        dom.set_text("asked-where", &words::where_looked(statement, answer));
+        if let Some(place) = dom.element("asked-where") {
+            place.set_text_content(None);
+            append_words(dom, &place, &words::where_looked(statement, answer));
+        }
         show_table(dom, "asked-story", &words::table(statement, answer));
         let met = words::met_table(statement, answer).filter(|table| !table.rows.is_empty());
         dom.set_shown("asked-met-part", met.is_some());
