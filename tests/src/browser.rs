@@ -13,6 +13,7 @@ mod harm;
 mod input;
 mod keyboard;
 mod native;
+mod paper;
 mod sheet;
 mod text;
 mod watch;
@@ -32,6 +33,7 @@ pub use harm::Doing;
 pub use input::Key;
 pub use keyboard::Struck;
 pub use native::{changed, native, native_sentence};
+pub use paper::Paper;
 pub use sheet::Shown;
 
 /// How long anything may take before a test gives up on it. Far beyond what it takes, for a busy machine.

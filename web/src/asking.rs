@@ -134,6 +134,11 @@ impl Asking {
             .map_err(|error| format!("a picture could not be drawn: {error:?}"))
     }
 
+    /// The picture of the answer, where there is one.
+    pub(crate) fn picture(&self) -> Option<&Picture> {
+        self.picture.as_ref()
+    }
+
     fn show(&mut self, pairs: &Pairs) {
         let (Some(statement), Some(answer)) = (&self.statement, &self.answer) else {
             return;

@@ -21,6 +21,7 @@ mod live;
 mod outcome;
 mod pace;
 mod page;
+mod paper;
 mod passing;
 mod phases;
 mod plates;

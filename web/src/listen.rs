@@ -26,6 +26,8 @@ pub(crate) enum After {
     Nothing,
     /// Moves the focus.
     GoTo(String),
+    /// Opens the browser's way to the printer, which tells the page when it looks.
+    Print,
     /// Selects a text and offers it to the clipboard.
     Copy(crate::copy::Source),
     /// Something that needs the page itself.
@@ -112,6 +114,8 @@ pub(crate) fn do_after(page: &Shared, after: After) {
     match after {
         After::Nothing => {}
         After::GoTo(id) => dom.go_to(&id),
+        // A frame may not be allowed to: then nothing happens.
+        After::Print => drop(dom.window.print()),
         After::Copy(source) => crate::copy::copy(&dom, &source),
         After::Do(act) => act(page),
     }
@@ -260,6 +264,10 @@ fn click(page: &mut Page, event: &Event) -> After {
             page.field_left();
             After::Copy(crate::copy::TEXT)
         }
+        "print" => {
+            page.field_left();
+            After::Print
+        }
         "copy-working" => After::Copy(crate::copy::WORKING),
         _ => After::Nothing,
     }
@@ -362,7 +370,7 @@ fn moved(page: &mut Page, _event: &Event) -> After {
 }
 
 fn print(page: &mut Page, _event: &Event) -> After {
-    page.draw_for_print();
+    page.put_on_paper();
     After::Nothing
 }
 

@@ -14,6 +14,7 @@ use crate::listen::After;
 use crate::lists::{self, Act, Cell};
 use crate::live::{Live, QUIET};
 use crate::outcome::{self, Good};
+use crate::paper::{ASKED, Paper};
 use crate::passing::Passing;
 use crate::phases::{Ask, Phases};
 use crate::plates::Plates;
@@ -36,7 +37,7 @@ use aftercount_core::statement::Statement;
 use aftercount_core::words::format::three;
 use std::cell::RefCell;
 use std::rc::Rc;
-use web_sys::{AbortSignal, Element, HtmlDetailsElement};
+use web_sys::{AbortSignal, Element};
 
 /// The life of one instance of the program on the page.
 pub(crate) struct Page {
@@ -50,6 +51,8 @@ pub(crate) struct Page {
     good: Option<Good>,
     /// The question of the text, where it has one.
     asking: Asking,
+    /// The text that `good` is of.
+    good_pairs: Option<Pairs>,
     /// Problems that are not shown yet.
     waiting: Vec<Problem>,
     /// Whether `good` is of the text as it stands.
@@ -72,8 +75,7 @@ pub(crate) struct Page {
     decide: Timer,
     ask_on: Timer,
     frame: NextFrame,
-    /// Whether the working was opened for the printer alone.
-    opened_for_print: bool,
+    paper: Paper,
 }
 
 /// How long the page is at rest before it works out what decided an engagement, in milliseconds: that takes many fights.
@@ -100,6 +102,7 @@ impl Page {
                 filling: false,
                 good: None,
                 asking: Asking::new(dom),
+                good_pairs: None,
                 waiting: Vec::new(),
                 current: false,
                 problems: Problems::new(dom),
@@ -120,7 +123,7 @@ impl Page {
                 decide: Timer::new(&dom.window, page, Page::decide_now),
                 ask_on: Timer::new(&dom.window, page, Page::ask_on),
                 frame: NextFrame::new(&dom.window, page, Page::draw_now),
-                opened_for_print: false,
+                paper: Paper::new(dom),
             })
         });
         let mut borrowed = page.borrow_mut();
@@ -336,6 +339,7 @@ impl Page {
             blank.set(key, self.pairs.get(key).unwrap_or_default());
         }
         self.pairs = blank;
+        self.good_pairs = None;
         self.demo = false;
         self.unit_change.withdraw();
         self.good = None;
@@ -416,26 +420,26 @@ impl Page {
         }
     }
 
-    /// The printer is about to look: the working is opened, so that it is on the paper.
-    pub(crate) fn draw_for_print(&mut self) {
-        if let Some(details) = self.dom.typed::<HtmlDetailsElement>("working-details") {
-            self.opened_for_print = !details.open();
-            details.set_open(true);
-        }
-        if let Some(good) = &self.good
-            && let Err(error) = self.plates.draw_for_print(good)
-        {
-            web_sys::console::error_1(&error.into());
-        }
+    /// The printer is about to look.
+    pub(crate) fn put_on_paper(&mut self) {
+        // Beside a problem it is the last text that could be worked out, as on the screen.
+        let stated = [Some(&self.pairs), self.good_pairs.as_ref()]
+            .into_iter()
+            .flatten()
+            .find_map(|pairs| Some((pairs, Statement::read(pairs).ok()?)));
+        let good = self.good.as_ref();
+        let pictures = [
+            ("strength", good.and_then(|good| good.strength.as_ref())),
+            ("orbit", good.and_then(|good| good.orbit.as_ref())),
+            (ASKED, self.asking.picture()),
+        ];
+        let stated = stated.as_ref().map(|(pairs, statement)| (*pairs, statement));
+        self.paper.fill(&self.pairs, stated, &pictures);
     }
 
     /// The printer has looked.
     pub(crate) fn printed(&mut self) {
-        if let Some(details) = self.dom.typed::<HtmlDetailsElement>("working-details")
-            && std::mem::take(&mut self.opened_for_print)
-        {
-            details.set_open(false);
-        }
+        self.paper.put_away();
         self.frame.ask();
     }
 
@@ -443,6 +447,7 @@ impl Page {
     fn show(&mut self, text: Option<String>) {
         self.demo = text.is_none();
         self.good = None;
+        self.good_pairs = None;
         self.unit_change.withdraw();
         self.asking.clear();
         self.pairs = Pairs::parse(text.as_deref().unwrap_or(DEMO));
@@ -506,6 +511,7 @@ impl Page {
         timeline::show(&self.dom, &good);
         working::show(&self.dom, &good, &text_mark(&self.pairs));
         self.good = Some(good);
+        self.good_pairs = Some(self.pairs.clone());
         self.current = true;
         self.dom.mark_root("data-state", Some("good"));
         self.frame.ask();

@@ -32,22 +32,7 @@ impl Plates {
 
     /// Draws both pictures anew, and the reading line over them.
     pub(crate) fn draw(&mut self, good: &Good) -> Result<(), String> {
-        self.draw_in(good, canvas::ink(&self.dom))
-    }
-
-    /// The same on white paper, whatever the page wears: for the printer.
-    pub(crate) fn draw_for_print(&mut self, good: &Good) -> Result<(), String> {
-        self.draw_in(
-            good,
-            Ink {
-                face: canvas::ink(&self.dom).face,
-                ..Ink::light()
-            },
-        )
-    }
-
-    fn draw_in(&mut self, good: &Good, ink: Ink) -> Result<(), String> {
-        self.ink = ink;
+        self.ink = canvas::ink(&self.dom);
         self.strength = self.draw_one("strength", good.strength.as_ref())?;
         self.orbit = self.draw_one("orbit", good.orbit.as_ref())?;
         self.reading.keep_within(good);

@@ -105,6 +105,26 @@ fn in_parts(value: f64, unit: TimeUnit) -> Option<String> {
     })
 }
 
+/// A day as it stands on paper: `1 December 2026`; the month is counted from 1.
+pub fn date(year: u32, month: u32, day: u32) -> String {
+    const MONTHS: [&str; 12] = [
+        "January",
+        "February",
+        "March",
+        "April",
+        "May",
+        "June",
+        "July",
+        "August",
+        "September",
+        "October",
+        "November",
+        "December",
+    ];
+    let place = (month as usize).saturating_sub(1);
+    format!("{day} {} {year}", MONTHS.get(place).copied().unwrap_or_default())
+}
+
 /// The same text with plain digits and plain blanks, as it is copied.
 pub fn plain(text: &str) -> String {
     text.replace(NARROW, "").replace(NO_BREAK, " ")
@@ -178,6 +198,12 @@ mod tests {
         ] {
             assert_eq!(per_cent(fraction).replace(NARROW, " "), text);
         }
+    }
+
+    #[test]
+    fn a_day_has_its_month_in_letters() {
+        assert_eq!(date(2026, 12, 1), "1 December 2026");
+        assert_eq!(date(2027, 1, 31), "31 January 2027");
     }
 
     #[test]

@@ -1,6 +1,7 @@
 //! All wording of results: the page, the batch door and the tests say the same.
 
 pub mod asked;
+pub mod assumptions;
 pub mod decided;
 pub mod entry;
 pub mod figures;

@@ -21,6 +21,14 @@ impl Command {
         }
     }
 
+    /// The page as a PDF on paper so many centimetres large, with the margins that the page itself asks for.
+    pub(super) fn print(width: f64, height: f64) -> Self {
+        Self {
+            path: "print",
+            body: json!({"page": {"width": width, "height": height}, "background": false, "shrinkToFit": false}),
+        }
+    }
+
     /// What a log gathered since it was last asked for.
     pub(super) fn log(kind: &'static str) -> Self {
         Self {

@@ -41,10 +41,15 @@ fn target() -> PathBuf {
         .expect("tests lie deep in the target directory")
 }
 
-/// Puts a picture where a person finds it.
-pub(super) fn write_picture(name: &str, encoded: &str) {
+/// Where something is put for a person to look at.
+pub(super) fn screen(name: &str) -> PathBuf {
     let folder = target().join("screens");
     fs::create_dir_all(&folder).expect("a folder for pictures");
+    folder.join(name)
+}
+
+/// Puts a picture where a person finds it.
+pub(super) fn write_picture(name: &str, encoded: &str) {
     let picture = BASE64.decode(encoded).expect("base64 from the browser");
-    fs::write(folder.join(name).with_extension("png"), picture).expect("a picture is written");
+    fs::write(screen(name).with_extension("png"), picture).expect("a picture is written");
 }
