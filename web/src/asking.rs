@@ -129,9 +129,7 @@ impl Asking {
         else {
             return Ok(());
         };
-        draw::draw(&mut canvas.backend, canvas.scale, ink, picture)
-            .map(|_| ())
-            .map_err(|error| format!("a picture could not be drawn: {error:?}"))
+        draw::draw(&mut canvas.backend, canvas.scale, ink, picture).map(|_| ())
     }
 
     /// The picture of the answer, where there is one.

@@ -7,7 +7,6 @@ use crate::outcome::Good;
 use crate::reading::{Pointer, Reading};
 use aftercount_core::picture::Picture;
 use aftercount_core::words::reading;
-use std::fmt::Debug;
 use web_sys::{HtmlButtonElement, HtmlElement};
 
 /// The pictures as they were drawn last.
@@ -51,7 +50,6 @@ impl Plates {
             picture,
         )
         .map(|field| Some(field.times(canvas.zoom)))
-        .map_err(in_words)
     }
 
     /// A key on the reading line; whether it was one of its keys.
@@ -102,13 +100,11 @@ impl Plates {
             return Ok(());
         };
         if let (Some(field), Some(mut over)) = (self.strength, canvas::prepare(&self.dom, "strength-over")) {
-            draw::reading_on_strength(&mut over.backend, over.scale, &self.ink, &field, t, &strengths)
-                .map_err(in_words)?;
+            draw::reading_on_strength(&mut over.backend, over.scale, &self.ink, &field, t, &strengths)?;
             self.put_thumb(&field, t);
         }
         if let (Some(field), Some(mut over)) = (self.orbit, canvas::prepare(&self.dom, "orbit-over")) {
-            draw::reading_on_orbit(&mut over.backend, over.scale, &self.ink, &field, &strengths)
-                .map_err(in_words)?;
+            draw::reading_on_orbit(&mut over.backend, over.scale, &self.ink, &field, &strengths)?;
         }
         Ok(())
     }
@@ -120,8 +116,4 @@ impl Plates {
             let _ = thumb.style().set_property("left", &format!("{}px", field.x(t)));
         }
     }
-}
-
-fn in_words(error: impl Debug) -> String {
-    format!("a picture could not be drawn: {error:?}")
 }

@@ -373,12 +373,13 @@ fn not_used(text: Option<&str>, why: &str) -> String {
     text.map_or("none".into(), |text| format!("{text} ({why})"))
 }
 
-/// Words in the middle of a line.
+/// Words of ours in the middle of a line.
 fn decapitalised(words: &str) -> String {
-    let mut letters = words.trim_end_matches('.').chars();
-    letters.next().map_or(String::new(), |first| {
-        first.to_lowercase().chain(letters).collect()
-    })
+    let mut words = words.trim_end_matches('.').to_owned();
+    if let Some(first) = words.get_mut(..1) {
+        first.make_ascii_lowercase();
+    }
+    words
 }
 
 #[cfg(test)]

@@ -3,9 +3,8 @@
 use super::layout::Layout;
 use super::pen::{Pen, Set};
 use aftercount_core::picture::Picture;
-use plotters::prelude::{DrawingBackend, RGBColor};
+use plotters::prelude::RGBColor;
 use plotters::style::text_anchor::{HPos, VPos};
-use plotters_backend::DrawingErrorKind;
 
 /// What stands around a picture that is passed on.
 #[derive(Clone, Debug, Default, PartialEq)]
@@ -46,15 +45,11 @@ impl Lines {
 }
 
 /// Draws `picture` with the words around it over the whole of the pen's sheet.
-pub(crate) fn draw<B: DrawingBackend>(
-    pen: &mut Pen<'_, B>,
-    picture: &Picture,
-    around: &Around,
-) -> Result<Layout, DrawingErrorKind<B::ErrorType>> {
+pub(crate) fn draw(pen: &mut Pen<'_>, picture: &Picture, around: &Around) -> Result<Layout, String> {
     let (width, height) = pen.size();
     let ink = pen.ink;
     pen.paper((0.0, 0.0), (width, height))?;
-    let line = |pen: &Pen<'_, B>, text: &str, size: f64, italic: bool, colour: RGBColor| {
+    let line = |pen: &Pen<'_>, text: &str, size: f64, italic: bool, colour: RGBColor| {
         let set = Set {
             size,
             italic,
@@ -85,11 +80,7 @@ pub(crate) fn draw<B: DrawingBackend>(
 }
 
 /// Sets lines one below the other, and gives where the next would stand.
-fn below<B: DrawingBackend>(
-    pen: &mut Pen<'_, B>,
-    all: &[Lines],
-    from: f64,
-) -> Result<f64, DrawingErrorKind<B::ErrorType>> {
+fn below(pen: &mut Pen<'_>, all: &[Lines], from: f64) -> Result<f64, String> {
     let mut at = from;
     for lines in all {
         for line in &lines.lines {

@@ -1,10 +1,11 @@
 //! Axes: two hairlines with short outward ticks, and no grid.
 
 use super::layout::Layout;
-use super::pen::{Drawn, Pen, SOLID, Set};
+use super::pen::{Pen, SOLID, Set};
+use super::surface::Drawn;
 use aftercount_core::picture::{Axis, Picture, Role};
 use aftercount_core::sides::Side;
-use plotters::prelude::{DrawingBackend, RGBColor};
+use plotters::prelude::RGBColor;
 use plotters::style::text_anchor::{HPos, VPos};
 
 /// The size of the numbers, in CSS pixels.
@@ -37,7 +38,7 @@ fn words(colour: RGBColor, across: HPos) -> Set {
 }
 
 /// Where the field stands, so that every number and label has its room.
-pub(crate) fn layout<B: DrawingBackend>(pen: &Pen<'_, B>, picture: &Picture) -> Layout {
+pub(crate) fn layout(pen: &Pen<'_>, picture: &Picture) -> Layout {
     let (width, height) = pen.size();
     let set = numbers(pen.ink.ink, HPos::Right, VPos::Center);
     let widest = picture
@@ -69,7 +70,7 @@ pub(crate) fn is_orbit(picture: &Picture) -> bool {
 }
 
 /// The hairlines, the ticks and their numbers, and what is measured.
-pub(crate) fn draw<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, picture: &Picture) -> Drawn<B> {
+pub(crate) fn draw(pen: &mut Pen<'_>, field: &Layout, picture: &Picture) -> Drawn {
     let ink = pen.ink.ink;
     pen.line(
         &[(field.left, field.foot), (field.right, field.foot)],
@@ -98,7 +99,7 @@ pub(crate) fn draw<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, pict
     pen.label(&picture.up.label, (2.0, 1.0), words(up, HPos::Left))
 }
 
-fn ticks_across<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, axis: &Axis) -> Drawn<B> {
+fn ticks_across(pen: &mut Pen<'_>, field: &Layout, axis: &Axis) -> Drawn {
     let set = numbers(pen.ink.ink, HPos::Center, VPos::Top);
     let mut free_from = f64::NEG_INFINITY;
     for tick in &axis.ticks {
@@ -119,7 +120,7 @@ fn ticks_across<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, axis: &
     Ok(())
 }
 
-fn ticks_up<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, axis: &Axis) -> Drawn<B> {
+fn ticks_up(pen: &mut Pen<'_>, field: &Layout, axis: &Axis) -> Drawn {
     let set = numbers(pen.ink.ink, HPos::Right, VPos::Center);
     let mut free_under = f64::INFINITY;
     for tick in &axis.ticks {
@@ -139,7 +140,7 @@ fn ticks_up<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, axis: &Axis
 }
 
 /// The colour of a side.
-pub(crate) fn side_colour<B: DrawingBackend>(pen: &Pen<'_, B>, side: Side) -> RGBColor {
+pub(crate) fn side_colour(pen: &Pen<'_>, side: Side) -> RGBColor {
     match side {
         Side::X => pen.ink.x,
         Side::Y => pen.ink.y,

@@ -2,10 +2,11 @@
 
 use super::axes::{is_orbit, side_colour};
 use super::layout::Layout;
-use super::pen::{Drawn, Pen, Point, Set};
+use super::pen::{Pen, Point, Set};
+use super::surface::Drawn;
 use aftercount_core::picture::{Line, Picture, Role, Spot};
 use aftercount_core::sides::Side;
-use plotters::prelude::{DrawingBackend, RGBColor};
+use plotters::prelude::RGBColor;
 use plotters::style::text_anchor::{HPos, VPos};
 
 /// The size of words in the field, in CSS pixels.
@@ -79,7 +80,7 @@ impl Labels {
     }
 
     /// Sets every label of the picture, those that have the least choice first.
-    pub(crate) fn draw<B: DrawingBackend>(mut self, pen: &mut Pen<'_, B>, picture: &Picture) -> Drawn<B> {
+    pub(crate) fn draw(mut self, pen: &mut Pen<'_>, picture: &Picture) -> Drawn {
         for (index, spot) in picture.spots.iter().enumerate() {
             self.spot(pen, picture, spot, index)?;
         }
@@ -106,13 +107,7 @@ impl Labels {
         Ok(())
     }
 
-    fn spot<B: DrawingBackend>(
-        &mut self,
-        pen: &mut Pen<'_, B>,
-        picture: &Picture,
-        spot: &Spot,
-        index: usize,
-    ) -> Drawn<B> {
+    fn spot(&mut self, pen: &mut Pen<'_>, picture: &Picture, spot: &Spot, index: usize) -> Drawn {
         let (x, y) = self.field.place(spot.at);
         let colour = spot.side.map_or(pen.ink.ink, |side| side_colour(pen, side));
         let around = [
@@ -138,7 +133,7 @@ impl Labels {
         self.set(pen, &spot.label, hand, &around)
     }
 
-    fn moment<B: DrawingBackend>(&mut self, pen: &mut Pen<'_, B>, line: &Line) -> Drawn<B> {
+    fn moment(&mut self, pen: &mut Pen<'_>, line: &Line) -> Drawn {
         let Some(&(at, _)) = line.points.first() else {
             return Ok(());
         };
@@ -151,7 +146,7 @@ impl Labels {
     }
 
     /// What happens on the way, near the top of its upright line.
-    fn instant<B: DrawingBackend>(&mut self, pen: &mut Pen<'_, B>, line: &Line) -> Drawn<B> {
+    fn instant(&mut self, pen: &mut Pen<'_>, line: &Line) -> Drawn {
         let Some(&(at, _)) = line.points.first() else {
             return Ok(());
         };
@@ -171,13 +166,7 @@ impl Labels {
         self.set(pen, &line.label, hand, &places)
     }
 
-    fn break_line<B: DrawingBackend>(
-        &mut self,
-        pen: &mut Pen<'_, B>,
-        picture: &Picture,
-        line: &Line,
-        side: Side,
-    ) -> Drawn<B> {
+    fn break_line(&mut self, pen: &mut Pen<'_>, picture: &Picture, line: &Line, side: Side) -> Drawn {
         let Some(&last) = line.points.last() else {
             return Ok(());
         };
@@ -211,13 +200,7 @@ impl Labels {
     }
 
     /// Words beside a curve: its name.
-    fn along<B: DrawingBackend>(
-        &mut self,
-        pen: &mut Pen<'_, B>,
-        line: &Line,
-        colour: RGBColor,
-        italic: bool,
-    ) -> Drawn<B> {
+    fn along(&mut self, pen: &mut Pen<'_>, line: &Line, colour: RGBColor, italic: bool) -> Drawn {
         let mut places = Vec::new();
         for part in [0.4, 0.3, 0.5, 0.2, 0.6, 0.1, 0.75, 0.88] {
             let Some(point) = line.points.get((part * line.points.len() as f64) as usize) else {
@@ -236,13 +219,7 @@ impl Labels {
         self.set(pen, &line.label, hand, &places)
     }
 
-    fn set<B: DrawingBackend>(
-        &mut self,
-        pen: &mut Pen<'_, B>,
-        text: &str,
-        hand: Hand,
-        places: &[(Point, HPos, VPos)],
-    ) -> Drawn<B> {
+    fn set(&mut self, pen: &mut Pen<'_>, text: &str, hand: Hand, places: &[(Point, HPos, VPos)]) -> Drawn {
         let room = pen.size().0 - 6.0;
         let text = fitting(
             pen,
@@ -295,7 +272,7 @@ impl Labels {
 }
 
 /// The text, shortened with an ellipsis where it is wider than its room.
-fn fitting<B: DrawingBackend>(pen: &Pen<'_, B>, text: &str, hand: Hand, room: f64) -> String {
+fn fitting(pen: &Pen<'_>, text: &str, hand: Hand, room: f64) -> String {
     let set = hand.at(HPos::Left, VPos::Top);
     if pen.width(text, set) <= room {
         return text.to_owned();

@@ -3,10 +3,11 @@
 use super::axes::{is_orbit, side_colour};
 use super::labels::is_on_the_way;
 use super::layout::Layout;
-use super::pen::{Dash, Drawn, Pen, Point, SOLID};
+use super::pen::{Dash, Pen, Point, SOLID};
+use super::surface::Drawn;
 use aftercount_core::picture::{Line, Picture, Role, Spot};
 use aftercount_core::sides::Side;
-use plotters::prelude::{DrawingBackend, RGBColor};
+use plotters::prelude::RGBColor;
 
 /// Side Y's stroke, as in the form's and the legend's signs.
 const LONG_DASH: Dash = &[14.0, 6.0];
@@ -24,7 +25,7 @@ const MARK: f64 = 4.2;
 const SMALL_MARK: f64 = 3.0;
 
 /// Every line, the background first, then the marks.
-pub(crate) fn draw<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, picture: &Picture) -> Drawn<B> {
+pub(crate) fn draw(pen: &mut Pen<'_>, field: &Layout, picture: &Picture) -> Drawn {
     for line in &picture.lines {
         let points: Vec<Point> = line.points.iter().map(|point| field.place(*point)).collect();
         let (colour, width, dash) = hand(pen, line.role);
@@ -53,7 +54,7 @@ pub(crate) fn draw<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, pict
 }
 
 /// Colour, width in CSS pixels and dash of a role.
-fn hand<B: DrawingBackend>(pen: &Pen<'_, B>, role: Role) -> (RGBColor, f64, Dash) {
+fn hand(pen: &Pen<'_>, role: Role) -> (RGBColor, f64, Dash) {
     match role {
         Role::Strength(Side::X) => (pen.ink.x, 2.2, SOLID),
         Role::Strength(Side::Y) => (pen.ink.y, 2.2, LONG_DASH),
@@ -70,13 +71,7 @@ fn hand<B: DrawingBackend>(pen: &Pen<'_, B>, role: Role) -> (RGBColor, f64, Dash
 }
 
 /// Marks where the ticks of the axis meet the curve, so that the sides are told apart without colour.
-fn marks_along<B: DrawingBackend>(
-    pen: &mut Pen<'_, B>,
-    field: &Layout,
-    picture: &Picture,
-    line: &Line,
-    side: Side,
-) -> Drawn<B> {
+fn marks_along(pen: &mut Pen<'_>, field: &Layout, picture: &Picture, line: &Line, side: Side) -> Drawn {
     let colour = side_colour(pen, side);
     let ends = line.points.last().map_or(0.0, |last| last.0);
     for tick in picture.across.ticks.iter().filter(|tick| tick.at < ends * 0.97) {
@@ -100,7 +95,7 @@ fn height_at(points: &[(f64, f64)], at: f64) -> Option<f64> {
     Some(from.1 + (to.1 - from.1) * (at - from.0) / (to.0 - from.0))
 }
 
-fn mark<B: DrawingBackend>(pen: &mut Pen<'_, B>, (x, y): Point, side: Side, colour: RGBColor) -> Drawn<B> {
+fn mark(pen: &mut Pen<'_>, (x, y): Point, side: Side, colour: RGBColor) -> Drawn {
     match side {
         Side::X => {
             let corners = [
@@ -122,7 +117,7 @@ fn mark<B: DrawingBackend>(pen: &mut Pen<'_, B>, (x, y): Point, side: Side, colo
     }
 }
 
-fn draw_spot<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, spot: &Spot, begins: bool) -> Drawn<B> {
+fn draw_spot(pen: &mut Pen<'_>, field: &Layout, spot: &Spot, begins: bool) -> Drawn {
     let at = field.place(spot.at);
     match spot.side {
         Some(side) => mark(pen, at, side, side_colour(pen, side)),
@@ -131,7 +126,7 @@ fn draw_spot<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, spot: &Spo
 }
 
 /// An open arrow head, for the way the engagement goes.
-fn direction<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, line: &Line) -> Drawn<B> {
+fn direction(pen: &mut Pen<'_>, field: &Layout, line: &Line) -> Drawn {
     let points: Vec<Point> = line.points.iter().map(|point| field.place(*point)).collect();
     let Some((from, to)) = on_the_way(&points) else {
         return Ok(());

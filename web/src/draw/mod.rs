@@ -9,21 +9,22 @@ mod lines;
 mod measured;
 mod pen;
 mod reading;
+mod surface;
 mod svg;
 
 pub use around::Around;
 pub use ink::{Ink, parse_colour};
 pub use layout::Layout;
 pub use measured::{Measure, Measured, UsualWidths};
-pub use pen::Drawn;
 pub use reading::{reading_on_orbit, reading_on_strength};
+pub use surface::Drawn;
 pub use svg::svg;
 
 use aftercount_core::picture::Picture;
 use labels::Labels;
 use pen::Pen;
 use plotters::prelude::DrawingBackend;
-use plotters_backend::DrawingErrorKind;
+use surface::in_words;
 
 /// Draws `picture` over the whole of `backend`, which has `scale` pixels for each CSS pixel, and says where its values
 /// stand.
@@ -35,10 +36,10 @@ pub fn draw<B: DrawingBackend>(
     scale: f64,
     ink: &Ink,
     picture: &Picture,
-) -> Result<Layout, DrawingErrorKind<B::ErrorType>> {
-    backend.ensure_prepared()?;
+) -> Result<Layout, String> {
+    backend.ensure_prepared().map_err(in_words)?;
     let field = draw_with(&mut Pen::new(backend, scale, ink), picture)?;
-    backend.present()?;
+    backend.present().map_err(in_words)?;
     Ok(field)
 }
 
@@ -52,18 +53,15 @@ pub fn draw_around<B: DrawingBackend>(
     ink: &Ink,
     picture: &Picture,
     around: &Around,
-) -> Result<Layout, DrawingErrorKind<B::ErrorType>> {
-    backend.ensure_prepared()?;
+) -> Result<Layout, String> {
+    backend.ensure_prepared().map_err(in_words)?;
     let field = around::draw(&mut Pen::new(backend, scale, ink), picture, around)?;
-    backend.present()?;
+    backend.present().map_err(in_words)?;
     Ok(field)
 }
 
 /// Draws with a pen, over the whole of its sheet.
-fn draw_with<B: DrawingBackend>(
-    pen: &mut Pen<'_, B>,
-    picture: &Picture,
-) -> Result<Layout, DrawingErrorKind<B::ErrorType>> {
+fn draw_with(pen: &mut Pen<'_>, picture: &Picture) -> Result<Layout, String> {
     let field = axes::layout(pen, picture);
     axes::draw(pen, &field, picture)?;
     lines::draw(pen, &field, picture)?;

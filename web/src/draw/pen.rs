@@ -1,13 +1,11 @@
 //! Strokes, marks and labels in CSS pixels, on any backend of plotters.
 
 use super::ink::Ink;
-use plotters::prelude::{Color, DrawingBackend, RGBColor, ShapeStyle, TextStyle};
+use super::surface::{Drawn, Surface};
+use plotters::prelude::{Color, RGBColor, ShapeStyle, TextStyle};
 use plotters::style::text_anchor::{HPos, Pos, VPos};
 use plotters::style::{FontDesc, FontFamily, FontStyle};
-use plotters_backend::{BackendCoord, DrawingErrorKind};
-
-/// What drawing gives back.
-pub type Drawn<B> = Result<(), DrawingErrorKind<<B as DrawingBackend>::ErrorType>>;
+use plotters_backend::BackendCoord;
 
 /// A point in CSS pixels, from the top left.
 pub(crate) type Point = (f64, f64);
@@ -49,8 +47,8 @@ impl Set {
 }
 
 /// Draws in CSS pixels on a backend that has `scale` times as many, on all of it or on a sheet within it.
-pub(crate) struct Pen<'a, B: DrawingBackend> {
-    backend: &'a mut B,
+pub(crate) struct Pen<'a> {
+    surface: &'a mut dyn Surface,
     scale: f64,
     /// The top left of the sheet.
     corner: Point,
@@ -61,11 +59,11 @@ pub(crate) struct Pen<'a, B: DrawingBackend> {
     pub(crate) ink: &'a Ink,
 }
 
-impl<'a, B: DrawingBackend> Pen<'a, B> {
-    pub(crate) fn new(backend: &'a mut B, scale: f64, ink: &'a Ink) -> Pen<'a, B> {
-        let (width, height) = backend.get_size();
+impl<'a> Pen<'a> {
+    pub(crate) fn new(surface: &'a mut dyn Surface, scale: f64, ink: &'a Ink) -> Pen<'a> {
+        let (width, height) = surface.size();
         Pen {
-            backend,
+            surface,
             scale,
             corner: (0.0, 0.0),
             size: (f64::from(width) / scale, f64::from(height) / scale),
@@ -75,14 +73,14 @@ impl<'a, B: DrawingBackend> Pen<'a, B> {
     }
 
     /// The same with letters that are asked for so many times as large.
-    pub(crate) fn with_letters(self, letters: f64) -> Pen<'a, B> {
+    pub(crate) fn with_letters(self, letters: f64) -> Pen<'a> {
         Pen { letters, ..self }
     }
 
     /// A pen for a sheet within this one's.
-    pub(crate) fn within(&mut self, corner: Point, size: (f64, f64)) -> Pen<'_, B> {
+    pub(crate) fn within(&mut self, corner: Point, size: (f64, f64)) -> Pen<'_> {
         Pen {
-            backend: self.backend,
+            surface: self.surface,
             corner: (self.corner.0 + corner.0, self.corner.1 + corner.1),
             size,
             ..*self
@@ -104,7 +102,7 @@ impl<'a, B: DrawingBackend> Pen<'a, B> {
     }
 
     /// A line through points, dashed where a dash is given.
-    pub(crate) fn line(&mut self, points: &[Point], colour: RGBColor, width: f64, dash: Dash) -> Drawn<B> {
+    pub(crate) fn line(&mut self, points: &[Point], colour: RGBColor, width: f64, dash: Dash) -> Drawn {
         let style = self.stroke(colour, width);
         let points = simplified(points, TOLERANCE);
         let strokes = if dash.is_empty() {
@@ -114,55 +112,54 @@ impl<'a, B: DrawingBackend> Pen<'a, B> {
         };
         for stroke in strokes.iter().filter(|stroke| stroke.len() > 1) {
             let path: Vec<BackendCoord> = stroke.iter().map(|point| self.coord(*point)).collect();
-            self.backend.draw_path(path, &style)?;
+            self.surface.path(&path, &style)?;
         }
         Ok(())
     }
 
     /// A closed figure: filled, or open so that the paper shows through.
-    pub(crate) fn figure(&mut self, corners: &[Point], colour: RGBColor, filled: bool) -> Drawn<B> {
+    pub(crate) fn figure(&mut self, corners: &[Point], colour: RGBColor, filled: bool) -> Drawn {
         let path: Vec<BackendCoord> = corners.iter().map(|point| self.coord(*point)).collect();
         let ground = if filled { colour } else { self.ink.paper };
-        self.backend
-            .fill_polygon(path.clone(), &ShapeStyle::from(&ground).filled())?;
+        self.surface.polygon(&path, &ShapeStyle::from(&ground).filled())?;
         let style = self.stroke(colour, 1.6);
         // The first stroke again at the end, so that every corner is mitred.
-        self.backend
-            .draw_path(path.iter().chain(path.iter().take(2)).copied(), &style)
+        let around: Vec<BackendCoord> = path.iter().chain(path.iter().take(2)).copied().collect();
+        self.surface.path(&around, &style)
     }
 
     /// A round mark.
-    pub(crate) fn dot(&mut self, at: Point, radius: f64, colour: RGBColor, filled: bool) -> Drawn<B> {
+    pub(crate) fn dot(&mut self, at: Point, radius: f64, colour: RGBColor, filled: bool) -> Drawn {
         let radius = (radius * self.scale).round() as u32;
         let ground = if filled { colour } else { self.ink.paper };
         let at = self.coord(at);
-        self.backend
-            .draw_circle(at, radius, &ShapeStyle::from(&ground).filled(), true)?;
+        self.surface
+            .circle(at, radius, &ShapeStyle::from(&ground).filled(), true)?;
         let style = self.stroke(colour, 1.6);
-        self.backend.draw_circle(at, radius, &style, false)
+        self.surface.circle(at, radius, &style, false)
     }
 
     /// A label with its anchor at a point.
-    pub(crate) fn label(&mut self, text: &str, at: Point, set: Set) -> Drawn<B> {
+    pub(crate) fn label(&mut self, text: &str, at: Point, set: Set) -> Drawn {
         let face = self.ink.face.clone();
         let size = set.size * self.letters;
         let style = self.text_style(&face, Set { size, ..set });
         let at = self.coord(at);
-        self.backend.draw_text(text, &style, at)
+        self.surface.words(text, &style, at)
     }
 
     /// The same on a piece of blank paper, so that lines behind it do not run through the letters.
-    pub(crate) fn label_on_paper(&mut self, text: &str, at: Point, set: Set) -> Drawn<B> {
+    pub(crate) fn label_on_paper(&mut self, text: &str, at: Point, set: Set) -> Drawn {
         let (left, top, right, foot) = self.extent(text, at, set);
         self.paper((left - 2.0, top), (right + 2.0, foot))?;
         self.label(text, at, set)
     }
 
     /// A piece of blank paper between two corners.
-    pub(crate) fn paper(&mut self, from: Point, to: Point) -> Drawn<B> {
+    pub(crate) fn paper(&mut self, from: Point, to: Point) -> Drawn {
         let paper = ShapeStyle::from(&self.ink.paper).filled();
         let (from, to) = (self.coord(from), self.coord(to));
-        self.backend.draw_rect(from, to, &paper, true)
+        self.surface.rectangle(from, to, &paper)
     }
 
     /// The width of a label in CSS pixels.
@@ -170,9 +167,9 @@ impl<'a, B: DrawingBackend> Pen<'a, B> {
         let style = self.text_style(&self.ink.face, set);
         // A backend that cannot measure is taken to set half an em a letter.
         let guess = || text.chars().count() as f64 * set.size / 2.0;
-        self.backend
-            .estimate_text_size(text, &style)
-            .map_or_else(|_| guess(), |size| f64::from(size.0) / self.scale)
+        self.surface
+            .width(text, &style)
+            .map_or_else(guess, |width| f64::from(width) / self.scale)
     }
 
     /// Left, top, right and foot of a label.

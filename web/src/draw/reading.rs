@@ -2,7 +2,8 @@
 
 use super::ink::Ink;
 use super::layout::Layout;
-use super::pen::{Drawn, Pen, Point, SOLID};
+use super::pen::{Pen, Point, SOLID};
+use super::surface::Drawn;
 use aftercount_core::sides::{Both, Side};
 use plotters::prelude::DrawingBackend;
 
@@ -20,7 +21,7 @@ pub fn reading_on_strength<B: DrawingBackend>(
     field: &Layout,
     t: f64,
     strengths: &Both<f64>,
-) -> Drawn<B> {
+) -> Drawn {
     let mut pen = Pen::new(backend, scale, ink);
     let x = field.x(t);
     pen.line(&[(x, field.top), (x, field.foot)], ink.ink, 1.0, SOLID)?;
@@ -41,7 +42,7 @@ pub fn reading_on_orbit<B: DrawingBackend>(
     ink: &Ink,
     field: &Layout,
     strengths: &Both<f64>,
-) -> Drawn<B> {
+) -> Drawn {
     let mut pen = Pen::new(backend, scale, ink);
     let (x, y) = field.place((strengths.x, strengths.y));
     pen.line(&[(x, field.foot), (x, y)], ink.x, 1.0, SOLID)?;
@@ -49,11 +50,7 @@ pub fn reading_on_orbit<B: DrawingBackend>(
     diamond(&mut pen, (x, y), ink.ink)
 }
 
-fn diamond<B: DrawingBackend>(
-    pen: &mut Pen<'_, B>,
-    (x, y): Point,
-    colour: plotters::prelude::RGBColor,
-) -> Drawn<B> {
+fn diamond(pen: &mut Pen<'_>, (x, y): Point, colour: plotters::prelude::RGBColor) -> Drawn {
     pen.figure(
         &[(x, y - POINT), (x + POINT, y), (x, y + POINT), (x - POINT, y)],
         colour,

@@ -4,10 +4,10 @@ use super::around::{self, Around};
 use super::ink::Ink;
 use super::measured::{Measure, Measured};
 use super::pen::Pen;
+use super::surface::in_words;
 use aftercount_core::passing::finding::escaped;
 use aftercount_core::picture::Picture;
 use plotters::prelude::{DrawingBackend, SVGBackend};
-use std::fmt::Debug;
 
 /// Pixels for each unit: plotters counts in whole pixels, and a curve of those is a staircase.
 const SCALE: u32 = 8;
@@ -33,10 +33,9 @@ pub fn svg(
         backend.ensure_prepared().map_err(in_words)?;
         let mut pen = Pen::new(&mut backend, f64::from(SCALE), ink).with_letters(LETTERS);
         match around {
-            Some(around) => around::draw(&mut pen, picture, around),
-            None => super::draw_with(&mut pen, picture),
-        }
-        .map_err(in_words)?;
+            Some(around) => around::draw(&mut pen, picture, around)?,
+            None => super::draw_with(&mut pen, picture)?,
+        };
         backend.present().map_err(in_words)?;
     }
     Ok(in_units(&text, size, pixels, &picture.summary))
@@ -52,8 +51,4 @@ fn in_units(text: &str, size: (u32, u32), pixels: (u32, u32), summary: &str) -> 
         head(size),
         escaped(summary)
     )
-}
-
-fn in_words(error: impl Debug) -> String {
-    format!("the picture could not be drawn: {error:?}")
 }
