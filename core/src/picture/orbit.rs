@@ -39,10 +39,16 @@ pub fn orbit(statement: &Statement, fight: &Fight) -> Option<Picture> {
     let mut lines = last.map_or(Vec::new(), |piece| neighbours(&piece.equation, corner));
     let parity = last.and_then(|piece| parity(&piece.equation, corner));
     let has_parity = parity.is_some();
+    let later = trajectory.stretches.last().map(|stretch| stretch.from);
+    let later = later.filter(|from| last.is_some() && *from > 0.0);
+    let later = later.map(|from| with_unit(from, statement.unit));
     lines.extend(parity.map(|points| Line {
         role: Role::Parity,
         points,
-        label: "parity".into(),
+        label: match &later {
+            Some(from) => format!("parity from {from} on"),
+            None => "parity".into(),
+        },
     }));
     lines.extend(break_lines(statement, trajectory, corner));
     let to_nothing = |piece: &Piece| to_the_last(&piece.equation, end, POINTS);
@@ -70,7 +76,7 @@ pub fn orbit(statement: &Statement, fight: &Fight) -> Option<Picture> {
         label: end_label(statement, fight),
     });
     let table = table(statement, trajectory, end);
-    let scheduled = trajectory.instants.len() > 1;
+    let scheduled = (trajectory.instants.len() > 1).then_some(later.as_deref());
     let summary = summary(statement, fight, has_parity, scheduled, start, end);
     Some(Picture {
         across,
@@ -133,7 +139,7 @@ fn fight_path(trajectory: &Trajectory, end: Both<f64>, points: usize) -> Vec<(f6
     curve
 }
 
-/// Upright and level lines at the strengths at which the sides break in the end.
+/// Upright and level lines at the strengths at which the sides break in the end, which is said where they have moved.
 fn break_lines(statement: &Statement, trajectory: &Trajectory, corner: Both<f64>) -> Vec<Line> {
     let engagement = statement.engagement(&Values::new());
     let line = |side: Side| {
@@ -153,7 +159,16 @@ fn break_lines(statement: &Statement, trajectory: &Trajectory, corner: Both<f64>
             Side::X => vec![(line, 0.0), (line, corner.y)],
             Side::Y => vec![(0.0, line), (corner.x, line)],
         };
-        let label = format!("{}: {} breaks", in_words(line), statement.names[side]);
+        let at_start = trajectory
+            .stretches
+            .first()
+            .and_then(|stretch| stretch.break_line(side, 0.0));
+        let moved = if at_start.is_none_or(|start| start == line) {
+            ""
+        } else {
+            " in the end"
+        };
+        let label = format!("{}{moved}: {} breaks", in_words(line), statement.names[side]);
         Some(Line {
             role: Role::BreakLine(side),
             points,
@@ -211,7 +226,7 @@ fn summary(
     statement: &Statement,
     fight: &Fight,
     has_parity: bool,
-    scheduled: bool,
+    scheduled: Option<Option<&str>>,
     start: Both<f64>,
     end: Both<f64>,
 ) -> String {
@@ -252,10 +267,19 @@ fn summary(
             _ => "there is no parity line: both fade to nothing whatever their strengths,".into(),
         }
     };
-    let last = if scheduled {
-        "with what arrives, leaves and changes on the way".into()
-    } else {
-        format!("{last} if both fight to the last")
+    let last = match scheduled {
+        None => format!("{last} if both fight to the last"),
+        Some(later) => {
+            let lines = if has_parity {
+                "the parity line and the fights nearby are"
+            } else {
+                "the fights nearby are"
+            };
+            let later = later.map_or(String::new(), |from| {
+                format!("; {lines} those of what holds from {from} on")
+            });
+            format!("with what arrives, leaves and changes on the way{later}")
+        }
     };
     format!(
         "One side against the other: from {} to {}; {last}.",

@@ -21,7 +21,7 @@ pub fn strength(statement: &Statement, fight: &Fight) -> Option<Picture> {
 
     let mut lines: Vec<Line> = Side::BOTH
         .into_iter()
-        .filter_map(|side| break_line(statement, trajectory, side, across.to, up.to))
+        .flat_map(|side| break_lines(statement, trajectory, side, across.to, up.to))
         .collect();
     lines.extend(instants(statement, fight, up.to));
     lines.extend(moment(statement, fight, up.to));
@@ -91,14 +91,16 @@ fn curve(trajectory: &Trajectory, of: impl Fn(Both<f64>) -> f64) -> Vec<(f64, f6
     points
 }
 
-/// The break line of a side, which moves with what arrives; `None` where none of it is in the picture.
-fn break_line(
+/// The break line of a side, a line for each level to which arrivals move it; none where not all of it is in the picture.
+///
+/// The last is named in words, those before it by their number.
+fn break_lines(
     statement: &Statement,
     trajectory: &Trajectory,
     side: Side,
     right: f64,
     top: f64,
-) -> Option<Line> {
+) -> Vec<Line> {
     let mut points: Vec<(f64, f64)> = Vec::new();
     for stretch in &trajectory.stretches {
         let to = stretch.to.unwrap_or(right).min(right);
@@ -110,16 +112,43 @@ fn break_line(
         let line = f64::from(break_line_at_start(&statement.engagement(&Values::new()), side));
         points.extend((line > 0.0).then_some((0.0, line)));
     }
-    let last = *points.last()?;
-    points.push((right, last.1));
+    points.extend(points.last().map(|last| (right, last.1)));
     // A side that had lost more than that before the start has its line above the picture.
-    let inside = points.iter().all(|point| point.1 <= top);
-    let label = format!("{}: {} breaks", in_words(last.1), statement.names[side]);
-    inside.then_some(Line {
-        role: Role::BreakLine(side),
-        points,
-        label,
-    })
+    if points.iter().any(|point| point.1 > top) {
+        return Vec::new();
+    }
+    let levels = levels(points);
+    let count = levels.len();
+    let line = |(place, points): (usize, Vec<(f64, f64)>)| {
+        let level = points.last().map_or(0.0, |last| last.1);
+        let named = match place + 1 == count {
+            true => format!("{}: {} breaks", in_words(level), statement.names[side]),
+            // One that moves all the while has no number.
+            false if points[points.len() - 2].1 == level => in_words(level),
+            false => String::new(),
+        };
+        Line {
+            role: Role::BreakLine(side),
+            points,
+            label: named,
+        }
+    };
+    levels.into_iter().enumerate().map(line).collect()
+}
+
+/// A line over time cut where it steps at one moment; each part but the first begins with the step.
+fn levels(points: Vec<(f64, f64)>) -> Vec<Vec<(f64, f64)>> {
+    let mut levels: Vec<Vec<(f64, f64)>> = Vec::new();
+    let mut before: Option<(f64, f64)> = None;
+    for point in points {
+        let steps = before.is_some_and(|before| before.0 == point.0 && before.1 != point.1);
+        match levels.last_mut() {
+            Some(level) if !steps => level.push(point),
+            _ => levels.push(before.into_iter().chain([point]).collect()),
+        }
+        before = Some(point);
+    }
+    levels
 }
 
 /// Upright lines where something joins, leaves or changes.

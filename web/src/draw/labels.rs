@@ -14,6 +14,9 @@ const WORDS: f64 = 13.0;
 /// The size of the words at what happens on the way.
 const SMALL: f64 = 11.5;
 
+/// How far the words of a break line begin from where it begins, in CSS pixels.
+const FROM_MARK: f64 = 6.0;
+
 /// What it costs to stand on other words.
 const OTHER_WORDS: f64 = 1e3;
 
@@ -183,17 +186,20 @@ impl Labels {
         };
         let (from, to) = (self.field.place(first), self.field.place(last));
         let mut places = Vec::new();
-        if from.1 == to.1 {
-            for part in [0.02, 0.3, 0.55, 0.75] {
-                let x = from.0 + (to.0 - from.0) * part;
-                places.push(((x, from.1 - 3.0), HPos::Left, VPos::Bottom));
-                places.push(((x, from.1 + 3.0), HPos::Left, VPos::Top));
-            }
-        } else {
+        if from.0 == to.0 {
             for part in [0.96, 0.8, 0.6, 0.4, 0.2, 0.06] {
                 let y = from.1 + (to.1 - from.1) * part;
                 places.push(((from.0 + 5.0, y), HPos::Left, VPos::Center));
                 places.push(((from.0 - 5.0, y), HPos::Right, VPos::Center));
+            }
+        } else {
+            // Clear of the upright mark of what moved it.
+            let room = (to.0 - from.0 - FROM_MARK).max(0.0);
+            for part in [0.0, 0.3, 0.55, 0.75] {
+                let x = from.0 + FROM_MARK + room * part;
+                let y = from.1 + (to.1 - from.1) * (x - from.0) / (to.0 - from.0);
+                places.push(((x, y - 3.0), HPos::Left, VPos::Bottom));
+                places.push(((x, y + 3.0), HPos::Left, VPos::Top));
             }
         }
         self.set(pen, &line.label, Hand::italic(side_colour(pen, side)), &places)

@@ -30,11 +30,6 @@ pub(crate) fn draw(pen: &mut Pen<'_>, field: &Layout, picture: &Picture) -> Draw
         let points: Vec<Point> = line.points.iter().map(|point| field.place(*point)).collect();
         let (colour, width, dash) = hand(pen, line.role);
         pen.line(&points, colour, width, dash)?;
-        if line.role == Role::Clock {
-            // The clock is a double line: the engagement is cut there, and goes on behind it.
-            let beside: Vec<Point> = points.iter().map(|(x, y)| (x + 3.0, *y)).collect();
-            pen.line(&beside, colour, width, dash)?;
-        }
     }
     for line in &picture.lines {
         match line.role {
