@@ -139,6 +139,18 @@ fn axe_finds_nothing_in_a_frame() {
 fn no_text_runs_over_other_text() {
     let browser = Browser::start();
     let mut found = Vec::new();
+    // The longest that may be written, without a place to break.
+    let long = [
+        ("x.name", 60),
+        ("y.name", 60),
+        ("title", 200),
+        ("marking", 60),
+        ("counted", 30),
+        ("note", 1000),
+    ];
+    let long = long.iter().fold(FULL.to_owned(), |link, (key, most)| {
+        changed(&link, key, &"Unbreakable".repeat(100)[..*most])
+    });
     for screen in [
         Screen::SMALL,
         Screen {
@@ -148,7 +160,7 @@ fn no_text_runs_over_other_text() {
         Screen::DESK,
     ] {
         browser.screen(screen);
-        for (name, link) in [("demo", DEMO), ("full", FULL)] {
+        for (name, link) in [("demo", DEMO), ("full", FULL), ("long", long.as_str())] {
             browser.open(link);
             browser.settle(link);
             browser.script(UNFOLD, vec![]);
