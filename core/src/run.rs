@@ -15,8 +15,8 @@ use crate::trajectory::Trajectory;
 /// How often between two instants a side is found gone, at most; each side can be so once, and once more with what flows in.
 const MOST_ROUNDS: u32 = 4;
 
-/// Where so many evaluations have been spent an integration that is not at its end is not taken up again.
-const MOST_SPENT: u32 = 200_000;
+/// How often in a fight an integration that is not at its end is taken up again.
+const MOST_CUTS: u32 = 16;
 
 /// The time between two instants, or from the last one on.
 struct Span {
@@ -119,8 +119,8 @@ pub(crate) struct Run {
     pub(crate) time: Option<f64>,
     /// Whether nothing is asked but who is left in the end.
     verdict: bool,
-    /// The evaluations of stretches that were cut short.
-    spent: u32,
+    /// How many stretches were cut short.
+    cuts: u32,
 }
 
 impl Run {
@@ -147,7 +147,7 @@ impl Run {
             ended: Ended::Limit,
             time: None,
             verdict: false,
-            spent: 0,
+            cuts: 0,
         };
         run.go(0);
         run
@@ -174,11 +174,12 @@ impl Run {
             ended: Ended::Limit,
             time: None,
             verdict: true,
-            spent: 0,
+            cuts: 0,
         };
         let next = run.instants.get(1).map(|instant| instant.time);
-        let over = run.gone_with(0) || run.run_stretch(0, time, next);
-        if !over {
+        if run.gone_with(0) {
+            run.finish(Breaks::Neither, Ended::Withdrawn, time);
+        } else if !run.run_stretch(0, time, next) {
             run.go(1);
         }
         run
@@ -311,10 +312,10 @@ impl Run {
                 Comes::Cut(length, standing) => {
                     // The integrator goes on in a stretch of its own, as long as it gets anywhere.
                     let before = at;
-                    self.spent = self.spent.saturating_add(stretch.work().evaluations());
+                    self.cuts += 1;
                     at += length;
                     self.close(stretch, &conditions, &standing, length, at);
-                    if at == before || self.spent > MOST_SPENT {
+                    if at == before || self.cuts > MOST_CUTS {
                         self.finish(Breaks::Neither, Ended::Unfinished, at);
                         return true;
                     }

@@ -1,13 +1,13 @@
 """Prints how many times faster a schedule is answered than SciPy follows it, both in this one run.
 
-Run by hand: `cargo build --release -p aftercount-core --example outcome`, then `python3 tests/speed/schedules.py [PROGRAM]`
-with the program where cargo left it (needs NumPy and SciPy). SciPy's DOP853 is given the right-hand side of the schedule alone, a
-stretch at a time, its break lines as terminal events, at rtol 1e-12, and is timed without reading any text; the program is
-timed from text to JSON over many lines on one core, its start included.
+Run by hand from the project's folder: `python3 tests/speed/schedules.py` (needs NumPy, SciPy and cargo). SciPy's DOP853 is
+given the right-hand side of the schedule alone, a stretch at a time, its break lines as terminal events, at rtol 1e-12, and is
+timed without reading any text; the core from the text of the link to the JSON of its answer. Each is the least of as many
+rounds of some milliseconds within one process, so that what else the machine has to do counts for neither. Their ends must
+agree to 1e-9.
 """
 
 import json
-import os
 import subprocess
 import sys
 import time
@@ -17,7 +17,7 @@ from scipy.integrate import solve_ivp
 
 TESTS = Path(__file__).resolve().parent.parent
 sys.path.insert(0, str(TESTS / "reference"))
-from schedule_taylor import ENEMY, Engagement, Stretch  # noqa: E402
+from schedule_taylor import Engagement, Stretch  # noqa: E402
 
 JOINS = "&x.join=30@1,20@2,-10@3,25@4,30@5&y.join=20@1.5,25@2.5,-10@3.5,25@4.5,20@5.5"
 SCHEDULES = {
@@ -28,7 +28,6 @@ SCHEDULES = {
     "one event, integrated": (20, "x.start=600&x.fire=search&x.half=80&x.rate=0.03&x.break=0.5&x.wastage=0.002&y.start=500"
                               "&y.fire=power&y.p=0.8&y.q=0.4&y.rate=0.012&y.break=0.5&x.join=30@3"),
 }
-LINES = 20_000
 ROUNDS = 20
 
 
@@ -95,17 +94,17 @@ def prepared(link):
     return stretches, [float(engagement.sides[k].breaks_at) for k in "xy"]
 
 
-def timed(program, link, lines):
-    text = (link + "\n") * lines
-    one_core = {"preexec_fn": lambda: os.sched_setaffinity(0, {max(os.sched_getaffinity(0))})}
-    began = time.perf_counter()
-    out = subprocess.run([program], input=text, capture_output=True, text=True, check=True, **one_core).stdout
-    return (time.perf_counter() - began) / lines, json.loads(out.splitlines()[0])
+def ours():
+    """For each schedule the seconds from text to JSON, and the answer."""
+    command = ["cargo", "run", "-q", "--release", "-p", "aftercount-tests", "--example", "speed", "--", "times"]
+    lines = "".join(f"{name}\t{link}\n" for name, (_, link) in SCHEDULES.items())
+    out = subprocess.run(command, input=lines, capture_output=True, text=True, check=True, cwd=TESTS.parent).stdout
+    found = map(json.loads, out.splitlines())
+    return {one["name"]: (one["whole"] / 1e9, one["outcome"]) for one in found}
 
 
 def main():
-    target = Path(os.environ.get("CARGO_TARGET_DIR", TESTS.parent / "target"))
-    program = sys.argv[1] if len(sys.argv) > 1 else target / "release" / "examples" / "outcome"
+    answers = ours()
     for name, (wanted, link) in SCHEDULES.items():
         stretches, breaks = prepared(link)
         best = float("inf")
@@ -113,9 +112,9 @@ def main():
             began = time.perf_counter()
             when, left = by_scipy(stretches, breaks)
             best = min(best, time.perf_counter() - began)
-        own, answer = min((timed(program, link, LINES) for _ in range(3)), key=lambda run: run[0])
-        assert abs(answer["time"] - when) <= 1e-6 * when, (answer["time"], when)
-        assert abs(answer["x"]["end"] - left[0]) <= 1e-5 * left[0], (answer["x"]["end"], left)
+        own, answer = answers[name]
+        assert abs(answer["time"] - when) <= 1e-9 * when, (answer["time"], when)
+        assert abs(answer["x"]["end"] - left[0]) <= 1e-9 * left[0], (answer["x"]["end"], left)
         ratio = best / own
         print(f"{name}: SciPy {best * 1e3:.2f} ms, ours {own * 1e6:.1f} µs ({answer['method']}, {len(answer['pieces'])} pieces): "
               f"{ratio:.0f} times as fast, {wanted} wanted: {'yes' if ratio >= wanted else 'NO'}")

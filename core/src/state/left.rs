@@ -117,6 +117,9 @@ fn left_of_many(terms: &[Term], origin: &Origin, area: Double) -> Double {
     let short = |left: f64| cost_of(terms, origin, down(left)) - area;
     let slope = |left: f64| -> f64 { terms.iter().map(|term| term.at(left)).sum() };
     let start = f64::from(from);
+    if start <= LEAST {
+        return Double::from(0.0);
+    }
     let (mut low, mut high) = (0.0, libm::log(start / LEAST));
     // In plain doubles, which next to the end lose their last digits: where the search begins.
     let falling = powers(terms, start).map(|(scale, order)| (scale, -order));
