@@ -236,3 +236,65 @@ fn the_skip_link_leads_to_the_outcome() {
     );
     browser.assert_clean();
 }
+
+/// A dialog takes the focus in, holds it while it is open, and gives it back to the button that opened it.
+#[test]
+fn dialogs_take_the_focus_in_and_give_it_back() {
+    let browser = Browser::opened(STATED);
+    for (button, dialog) in [
+        ("[data-pass=open]", "#open-dialog"),
+        ("[data-pass=copy-as]", "#copy-dialog"),
+    ] {
+        browser.script("document.activeElement.blur();", vec![]);
+        browser.walk_to(&format!(".top {button}"), false);
+        browser.strike(Struck::Enter);
+        browser.wait(
+            "the dialog",
+            &format!("return document.querySelector('{dialog}').open;"),
+        );
+        let inside = |browser: &Browser| {
+            // The browser's own bars come between the last stop and the first.
+            browser.has_focus(&format!("{dialog} *")) || browser.has_focus("body")
+        };
+        assert!(
+            browser.has_focus(&format!("{dialog} *")),
+            "{dialog} takes the focus"
+        );
+        for _ in 0..12 {
+            browser.strike(Struck::Tab);
+            assert!(inside(&browser), "{dialog} holds the focus");
+        }
+        browser.strike(Struck::Escape);
+        browser.wait(
+            "no dialog",
+            &format!("return !document.querySelector('{dialog}').open;"),
+        );
+        assert!(
+            browser.has_focus(&format!(".top {button}")),
+            "{dialog} gives the focus back"
+        );
+    }
+    assert_eq!(browser.link(), STATED);
+    browser.assert_clean();
+}
+
+#[test]
+fn an_engagement_is_opened_with_the_keyboard() {
+    let browser = Browser::opened(DEMO);
+    browser.walk_to(".top [data-pass=open]", false);
+    browser.strike(Struck::Enter);
+    browser.wait(
+        "the dialog",
+        "return document.querySelector('#open-dialog').open;",
+    );
+    assert!(
+        browser.has_focus("#open-text"),
+        "what is to be filled has the focus"
+    );
+    browser.type_here(STATED);
+    browser.walk_to("[data-pass=take-up]", false);
+    browser.strike(Struck::Enter);
+    assert_eq!(browser.settle(STATED), native(STATED));
+    assert!(browser.has_focus("#leaves-head"), "the outcome is next");
+    browser.assert_clean();
+}

@@ -16,6 +16,8 @@ pub enum Struck {
     Enter,
     /// Presses a button, opens a panel.
     Space,
+    /// Leaves what is open.
+    Escape,
     /// A step back.
     Left,
     /// A step on.
@@ -40,6 +42,7 @@ impl Struck {
             Self::Tab | Self::BackTab => '\u{e004}',
             Self::Enter => '\u{e007}',
             Self::Space => ' ',
+            Self::Escape => '\u{e00c}',
             Self::PageUp => '\u{e00e}',
             Self::PageDown => '\u{e00f}',
             Self::End => '\u{e010}',
