@@ -16,10 +16,6 @@ const UNITS: [TimeUnit; 5] = [
     TimeUnit::Week,
 ];
 
-/// Golden links in which a side that never reaches 0 falls below the least double before something arrives: whether that
-/// counts as a break is a matter of the last bit of its losses, in any unit.
-const FADED: [u32; 3] = [149, 333, 428];
-
 fn outcome(pairs: &Pairs) -> Outcome {
     let statement = Statement::read(pairs).unwrap_or_else(|why| panic!("{}: {why:?}", pairs.link()));
     fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome
@@ -51,7 +47,11 @@ fn change_of_outcome(link: &str, from: TimeUnit, to: TimeUnit) -> Option<f64> {
     let time = here.time.unwrap_or(0.0);
     let times = apart(here.time, there.time.map(|time| time * factor), time);
     let sides = [(&here.x, &there.x), (&here.y, &there.y)];
-    let ends = sides.map(|(here, there)| apart(here.end, there.end, here.committed.max(1.0)));
+    let ends = sides.map(|(here, there)| {
+        let committed = here.committed.max(1.0);
+        let losses = apart(Some(here.losses.all), Some(there.losses.all), committed);
+        apart(here.end, there.end, committed).max(losses)
+    });
     Some(times.max(ends[0]).max(ends[1]))
 }
 
@@ -59,7 +59,7 @@ fn change_of_outcome(link: &str, from: TimeUnit, to: TimeUnit) -> Option<f64> {
 #[test]
 fn every_golden_engagement_ends_alike_in_every_unit() {
     let (mut compared, mut worst) = (0, (0.0, String::new()));
-    for number in (0..golden::COUNT).filter(|number| !FADED.contains(number)) {
+    for number in 0..golden::COUNT {
         let link = golden::link(number);
         for to in UNITS.into_iter().filter(|to| *to != TimeUnit::Hour) {
             if let Some(change) = change_of_outcome(&link, TimeUnit::Hour, to) {
