@@ -43,6 +43,8 @@ pub struct Statement {
     pub terms: Terms<Quantity>,
     /// What its questions are asked for; empty where they are asked for the whole story.
     pub so_that: Vec<Goal>,
+    /// Whether any number is in question.
+    in_question: bool,
 }
 
 impl Statement {
@@ -76,6 +78,7 @@ impl Statement {
         self.terms
             .map(|slot, quantity| values.get(slot).copied().unwrap_or_else(|| own(quantity)))
     }
+
     /// Whether every number has a value now, so that there is an outcome beside the answers to its questions.
     pub fn has_base(&self) -> bool {
         let mut whole = true;
@@ -86,8 +89,6 @@ impl Statement {
 
     /// Whether any number is in question.
     pub fn asks(&self) -> bool {
-        let mut asks = false;
-        self.terms.map_unnamed(|quantity| asks |= quantity.is_question());
-        asks
+        self.in_question
     }
 }

@@ -209,6 +209,11 @@ impl<'a> Reader<'a> {
         self.questions.push((place, problem));
     }
 
+    /// Whether any number that has an effect is in question.
+    pub(super) fn asks(&self) -> bool {
+        !self.questions.is_empty()
+    }
+
     /// Reads by `read` what is checked and then has no effect: numbers in question there are not asked for.
     pub(super) fn without_effect(&mut self, read: impl FnOnce(&mut Self)) {
         let count = self.questions.len();

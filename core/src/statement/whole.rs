@@ -48,6 +48,7 @@ impl Reader<'_> {
             names,
             terms,
             so_that,
+            in_question: self.asks(),
         })
     }
 
