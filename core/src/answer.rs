@@ -52,19 +52,16 @@ pub fn answer(link: &str) -> Answer {
 /// Works out what `link` states, and what is wanted beside it.
 pub fn answer_with(link: &str, besides: Besides) -> Answer {
     let pairs = Pairs::parse(link);
-    let statement = match Statement::read(&pairs) {
-        Ok(statement) => statement,
-        Err(problems) => return Answer::Problems(problems),
-    };
-    if statement.asks() {
-        return Answer::Asked {
-            asked: ask(&pairs, &statement),
+    match &Statement::read(&pairs) {
+        Ok(statement) if statement.asks() => Answer::Asked {
+            asked: ask(&pairs, statement),
             outcome: statement
                 .has_base()
-                .then(|| Box::new(worked_out(&pairs, &statement, besides))),
-        };
+                .then(|| Box::new(worked_out(&pairs, statement, besides))),
+        },
+        Ok(statement) => worked_out(&pairs, statement, besides),
+        Err(problems) => Answer::Problems(problems.clone()),
     }
-    worked_out(&pairs, &statement, besides)
 }
 
 /// The outcome with the numbers as they are now.

@@ -55,7 +55,7 @@ pub fn fight(engagement: &Engagement, effort: Effort) -> Fight {
 
 /// The engagement as a single piece under its two fires; `None` where it is more: where something arrives or changes, or
 /// something besides the fires is lost, or the range counts.
-pub fn plain_piece(engagement: &Engagement) -> Option<Piece> {
+pub fn plain_piece(engagement: &Engagement) -> Option<Box<Piece>> {
     let instants = instants(engagement);
     let conditions = instants[0].conditions;
     if instants.len() > 1 || !conditions.are_plain() || conditions.shared_growth() != Some(None) {

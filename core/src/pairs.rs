@@ -373,8 +373,8 @@ pub(crate) fn trimmed(text: &str) -> &str {
 ///
 /// An address shows by a `#` or `?` before the first `=`; its fragment counts where that holds a key, else its query.
 fn without_address(link: &str) -> &str {
-    let head = link.split_once('=').map_or(link, |(head, _)| head);
-    match head.find(['#', '?']) {
+    let head = head_of(link);
+    match head.bytes().position(|byte| matches!(byte, b'#' | b'?')) {
         Some(at) if head.as_bytes()[at] == b'#' => &link[at + 1..],
         Some(at) => {
             let query = &link[at + 1..];
@@ -387,6 +387,12 @@ fn without_address(link: &str) -> &str {
         None if head == link && link.contains("://") => "",
         None => link,
     }
+}
+
+/// What stands before the first `=`, or all.
+fn head_of(link: &str) -> &str {
+    let end = link.bytes().position(|byte| byte == b'=');
+    &link[..end.unwrap_or(link.len())]
 }
 
 #[cfg(test)]

@@ -176,7 +176,7 @@ impl Piece {
         start: Both<f64>,
         conditions: &Conditions,
         parity: impl Fn(Both<Double>) -> bool,
-    ) -> Option<Piece> {
+    ) -> Option<Box<Piece>> {
         let conditions = Conditions {
             growth: Both::default(),
             ..*conditions
@@ -199,7 +199,7 @@ impl Piece {
             Motion::new(start, &fire, &equation, ahead)
         };
         let work = Cell::default();
-        Some(Piece {
+        Some(Box::new(Piece {
             start,
             conditions,
             fire,
@@ -212,7 +212,7 @@ impl Piece {
             parity,
             course: None,
             work,
-        })
+        }))
     }
 
     /// The place on the orbit of this piece where `side` is left with `strength`, of what it had at the beginning.
@@ -229,6 +229,9 @@ impl Piece {
 
     /// What it costs to bring `side` down so far from the beginning.
     pub fn cost_of(&self, side: Side, down: Descent) -> Double {
+        if down.to == 0.0 && down.by == self.start[side] {
+            return self.cost[side];
+        }
         self.equation.cost_from(side, &self.origin[side], down)
     }
 

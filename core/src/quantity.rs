@@ -73,6 +73,13 @@ impl Quantity {
         }
     }
 
+    /// The same, 0 where it has none.
+    // Not once for every number of an engagement: so much code is not at hand when it is needed.
+    #[inline(never)]
+    pub(crate) fn now_or_zero(&self) -> f64 {
+        self.now().unwrap_or(0.0)
+    }
+
     /// Whether it is asked for.
     pub fn is_question(&self) -> bool {
         matches!(self, Quantity::Question { .. })

@@ -26,7 +26,7 @@ struct Problem {
 }
 
 impl Problem {
-    fn piece(&self) -> Piece {
+    fn piece(&self) -> Box<Piece> {
         plain_piece(&self.engagement).expect("a fight of two fires alone")
     }
 

@@ -248,7 +248,7 @@ proptest! {
 }
 
 /// The fight as a piece.
-fn piece(engagement: &Engagement) -> Piece {
+fn piece(engagement: &Engagement) -> Box<Piece> {
     plain_piece(engagement).expect("a fight of two fires alone")
 }
 

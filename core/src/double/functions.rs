@@ -1,6 +1,6 @@
 //! Exponentials and logarithms in double-double arithmetic, good to a part of 1e-30.
 
-use super::{Double, two_sum};
+use super::{Double, fast_two_sum, two_sum};
 
 /// ln 2 to 32 digits.
 const LN_2: Double = Double {
@@ -149,12 +149,22 @@ fn doubled(number: Double, turns: i64) -> Double {
 
 /// e^z − 1 for |z| up to ln 2/64, by its series: the term of 14 is below a part of 1e-33.
 fn series(z: Double) -> Double {
-    let last = LAST.into_iter().fold(0.0, |sum, term| sum * z.hi + term);
+    // Of the nearest double alone, and e^(h + l) − 1 = (e^h − 1) + l·e^h, of which the last counts in its first digits.
+    let h = z.hi;
+    let last = LAST.into_iter().fold(0.0, |sum, term| sum * h + term);
     let [sixth, rest @ ..] = FIRST;
     let sum = rest
         .into_iter()
-        .fold(sixth + last * z.hi, |sum, term| sum * z + term);
-    ((sum * z + 0.5) * z + 1.0) * z
+        .fold(sixth + last * h, |sum, term| far_larger(term, sum * h));
+    let half = far_larger(Double::from(0.5), sum * h);
+    let grown = far_larger(Double::from(1.0), half * h) * h;
+    grown + z.lo * (1.0 + grown.hi)
+}
+
+/// The sum of two numbers of which the first is by far the larger: fewer steps than for any two.
+fn far_larger(one: Double, other: Double) -> Double {
+    let sum = fast_two_sum(one.hi, other.hi);
+    fast_two_sum(sum.hi, sum.lo + (one.lo + other.lo))
 }
 
 #[cfg(test)]

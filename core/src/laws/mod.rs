@@ -192,7 +192,9 @@ impl Power {
             fallen
         } else if left > 0.0 {
             let span = libm::log1p(fallen / left);
-            if order > 0.0 {
+            if order == 0.0 {
+                span
+            } else if order > 0.0 {
                 libm::pow(left + fallen, order) * growth(-order, span)
             } else {
                 libm::pow(left, order) * growth(order, span)

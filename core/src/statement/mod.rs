@@ -71,7 +71,7 @@ impl Statement {
     /// An interval counts as its likeliest or middle value until intervals are worked out, and a number that is asked for
     /// and has no value now as 0: what is worked out of it then is for its question alone, see [`Statement::has_base`].
     pub fn engagement(&self, values: &Values) -> Engagement {
-        let own = |quantity: &Quantity| quantity.now().unwrap_or(0.0);
+        let own = Quantity::now_or_zero;
         if values.is_empty() {
             return self.terms.map_unnamed(own);
         }

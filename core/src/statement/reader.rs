@@ -42,6 +42,9 @@ impl<'a> Reader<'a> {
     }
 
     pub(super) fn into_problems(mut self) -> Vec<Problem> {
+        if self.problems.is_empty() && self.questions.len() <= MOST_QUESTIONS {
+            return Vec::new();
+        }
         sort_by(&mut self.questions, |a, b| a.0.cmp(&b.0));
         self.problems
             .extend(self.questions.into_iter().skip(MOST_QUESTIONS));

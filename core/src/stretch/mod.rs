@@ -143,12 +143,11 @@ impl Stretch {
             let growth = growth?;
             // Losses besides the fires do not grow with the range.
             let fits = both_there && (conditions.are_plain() || growth.is_none());
-            let piece = if fits {
-                Piece::new(start, &conditions, parity)
-            } else {
-                None
-            };
-            piece.map(|piece| How::Piece(Box::new(piece), growth))
+            if !fits {
+                return None;
+            }
+            let piece = Piece::new(start, &conditions, parity)?;
+            Some(How::Piece(piece, growth))
         };
         let linear = || match growth {
             Some(None) => conditions

@@ -65,7 +65,7 @@ struct Writer<'a> {
     statement: &'a Statement,
     engagement: Engagement,
     outcome: &'a Outcome,
-    piece: Piece,
+    piece: Box<Piece>,
     lines: Vec<WorkingLine>,
 }
 
