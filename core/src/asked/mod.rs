@@ -6,6 +6,7 @@
 mod answer;
 mod golden;
 mod inquiry;
+mod map;
 mod outright;
 mod put;
 mod span;
@@ -13,6 +14,7 @@ mod story;
 
 pub use answer::{Asked, Boundary, End, Met, Nearest, Segment};
 pub use inquiry::{Inquiry, STEPS};
+pub use map::{Chart, Contour, FINEST, Flip, Second};
 pub use outright::outright;
 pub use put::Putting;
 pub use span::Why;

@@ -22,7 +22,7 @@ pub(super) struct Reader<'a> {
 }
 
 /// Numbers that can be in question at the same time.
-const MOST_QUESTIONS: usize = 1;
+const MOST_QUESTIONS: usize = 2;
 
 /// The place of what does not stand in the link.
 pub(super) const MISSING: usize = usize::MAX;
@@ -204,7 +204,7 @@ impl<'a> Reader<'a> {
     /// Notes that a number is in question: the third is one too many.
     pub(super) fn note_question(&mut self, key: Name, item: Option<u32>, found: &str) {
         let Some(place) = self.place(key) else { return };
-        let problem = "is one number in question too many: one can be asked for at a time";
+        let problem = "is one number in question too many: one makes a list of values, two make a map, and more cannot be asked for at a time";
         let problem = Problem {
             item,
             ..Problem::at(&key.to_string(), found, problem)

@@ -1,0 +1,478 @@
+//! Two numbers in question: a map of how it comes out, and the lines along which that flips.
+//!
+//! Points of a lattice are fought coarsely first. A cell whose corners come out alike is taken to be alike within; where they
+//! differ it is halved three times, so that next to a flip the map is as fine as 304 × 304 points at a few per cent of their
+//! work. The middles of the coarse cells are looked at too, for islands. Every flip is then closed in on along the edge of the
+//! lattice that it crosses, and the crossings are chained to lines.
+
+mod contour;
+mod lattice;
+mod line;
+
+pub use lattice::FINEST;
+
+use super::span::{Why, span};
+use super::story::{Sample, Story};
+use crate::family::{Family, Span};
+use crate::fight::{Effort, fight};
+use crate::outcome::{Breaks, Ended, Outcome, ToTheLast};
+use crate::pairs::Pairs;
+use crate::sides::Both;
+use crate::slots::{Slot, slots};
+use crate::statement::{Statement, Values};
+use lattice::{At, BASE, Lattice};
+use line::{Crossings, Edge};
+use std::collections::BTreeMap;
+
+/// How near, as a part of the axis, a flip is closed in on.
+const PRECISION: f64 = 1e-12;
+
+/// How near an outcome must come to another, as a part of what is committed, to be taken as where it flips.
+const TOUCHES: f64 = 1e-12;
+
+/// What is read of an outcome besides its story.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Second {
+    /// When it ends in a break.
+    Time,
+    /// What is left of X.
+    LeftX,
+    /// What is left of Y.
+    LeftY,
+    /// Y's losses for each of X's.
+    ExchangeRatio,
+}
+
+impl Second {
+    /// All of them, in the order of the page.
+    pub const ALL: [Second; 4] = [Second::Time, Second::LeftX, Second::LeftY, Second::ExchangeRatio];
+}
+
+/// What is known of one point.
+#[derive(Clone, Copy, Debug, PartialEq)]
+struct Point {
+    class: u8,
+    near: f64,
+    time: Option<f64>,
+    end: Both<f64>,
+    ratio: Option<f64>,
+}
+
+impl Point {
+    fn second(&self, second: Second) -> Option<f64> {
+        let value = match second {
+            Second::Time => self.time,
+            Second::LeftX => Some(self.end.x),
+            Second::LeftY => Some(self.end.y),
+            Second::ExchangeRatio => self.ratio,
+        };
+        value.filter(|value| value.is_finite())
+    }
+}
+
+/// A line along which the outcome flips.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Flip {
+    /// How it comes out on its two sides.
+    pub between: [Story; 2],
+    /// Its points, in the values of the two numbers.
+    pub points: Vec<(f64, f64)>,
+}
+
+/// A line along which a second reading has the same value.
+#[derive(Clone, Debug, PartialEq)]
+pub struct Contour {
+    /// The value.
+    pub level: f64,
+    /// Its pieces, in the values of the two numbers.
+    pub pieces: Vec<[(f64, f64); 2]>,
+}
+
+/// What is done next: places to fight at, or edges to close in on, the last first.
+#[derive(Clone, Debug)]
+enum Stage {
+    Fighting {
+        places: Vec<At>,
+        /// Then the cells of so many steps are halved where they differ, and finer ones.
+        step: usize,
+        /// Whether islands are looked for behind that.
+        islands: bool,
+    },
+    /// Looking at the middles of coarse cells; with what is to be looked at around those that come out otherwise.
+    Islands {
+        middles: Vec<At>,
+        around: Vec<At>,
+    },
+    Closing(Vec<Edge>),
+    Done,
+}
+
+/// The search for the map of two numbers.
+#[derive(Clone, Debug)]
+pub struct Chart {
+    slots: [Slot; 2],
+    spans: [Span; 2],
+    whys: [Why; 2],
+    family: Family<2>,
+    lattice: Lattice<Point>,
+    stories: Vec<Story>,
+    stage: Stage,
+    crossed: Crossings,
+    closed: BTreeMap<Edge, f64>,
+    fights: usize,
+}
+
+impl Chart {
+    /// The map of the numbers of `statement` that are in question; `None` unless two are.
+    ///
+    /// `pairs` are those that `statement` was read from.
+    pub fn new(pairs: &Pairs, statement: &Statement) -> Option<Chart> {
+        let asked: Vec<Slot> = slots(pairs, statement)
+            .into_iter()
+            .filter(|slot| slot.quantity.is_question())
+            .collect();
+        let slots: [Slot; 2] = asked.try_into().ok()?;
+        let engagement = statement.engagement(&Values::new());
+        let looked = [span(&slots[0], &engagement), span(&slots[1], &engagement)];
+        let mut places = lattice::coarsest();
+        places.reverse();
+        Some(Chart {
+            family: Family::new(engagement, [slots[0].place, slots[1].place]),
+            spans: looked.map(|looked| looked.0),
+            whys: looked.map(|looked| looked.1),
+            slots,
+            lattice: Lattice::new(),
+            stories: Vec::new(),
+            stage: Stage::Fighting {
+                places,
+                step: FINEST / BASE,
+                islands: true,
+            },
+            crossed: Crossings::default(),
+            closed: BTreeMap::new(),
+            fights: 0,
+        })
+    }
+
+    /// The two numbers.
+    pub fn slots(&self) -> &[Slot; 2] {
+        &self.slots
+    }
+
+    /// Where they are looked at.
+    pub fn spans(&self) -> [Span; 2] {
+        self.spans
+    }
+
+    /// Why there.
+    pub fn whys(&self) -> [Why; 2] {
+        self.whys
+    }
+
+    /// How many fights it took so far.
+    pub fn fights(&self) -> usize {
+        self.fights
+    }
+
+    /// Whether the coarsest lattice is filled, so that there is something to show.
+    pub fn has_ground(&self) -> bool {
+        self.lattice.get((FINEST, FINEST)).is_some()
+    }
+
+    /// The part of the work that is surely behind, 0 to 1.
+    pub fn progress(&self) -> f64 {
+        (self.fights as f64 / 9000.0).min(0.99)
+    }
+
+    /// Goes on with about `most` fights; says whether all is there.
+    pub fn go_on(&mut self, most: u32) -> bool {
+        let until = self.fights + most as usize;
+        while self.fights < until && !matches!(self.stage, Stage::Done) {
+            self.step();
+        }
+        matches!(self.stage, Stage::Done)
+    }
+
+    fn step(&mut self) {
+        match &mut self.stage {
+            Stage::Fighting {
+                places,
+                step,
+                islands,
+            } => match places.pop() {
+                Some(at) => self.fight_at(at),
+                None => {
+                    let (step, islands) = (*step, *islands);
+                    self.stage = self.finer(step, islands);
+                }
+            },
+            Stage::Islands { middles, around } => match middles.pop() {
+                Some(at) => self.look_for_island(at),
+                None => {
+                    self.stage = Stage::Fighting {
+                        places: std::mem::take(around),
+                        step: FINEST / BASE / 2,
+                        islands: false,
+                    }
+                }
+            },
+            Stage::Closing(edges) => match edges.pop() {
+                Some(edge) => {
+                    let part = self.close_in(edge);
+                    self.closed.insert(edge, part);
+                }
+                None => self.stage = Stage::Done,
+            },
+            Stage::Done => {}
+        }
+    }
+
+    fn fight_at(&mut self, at: At) {
+        if self.lattice.get(at).is_none() {
+            let point = self.point(parts(at));
+            self.lattice.put(at, point);
+        }
+    }
+
+    fn finer(&mut self, step: usize, islands: bool) -> Stage {
+        if step > 1 {
+            return Stage::Fighting {
+                places: lattice::halving(&self.lattice, step, |a, b| a.class == b.class),
+                step: step / 2,
+                islands,
+            };
+        }
+        if islands {
+            return Stage::Islands {
+                middles: lattice::middles(),
+                around: Vec::new(),
+            };
+        }
+        self.crossed = line::crossings(&self.lattice, |point| point.class);
+        Stage::Closing(self.crossed.edges.keys().copied().collect())
+    }
+
+    /// Looks at the middle of a coarse cell that was not halved; where it comes out otherwise than around it, the cell is
+    /// looked at as closely as the others.
+    fn look_for_island(&mut self, at: At) {
+        if self.lattice.get(at).is_some() {
+            return;
+        }
+        let half = FINEST / BASE / 2;
+        let (across, up) = (at.0 - half, at.1 - half);
+        let outside = self.lattice.get((across, up)).map(|point| point.class);
+        let middle = self.point(parts(at));
+        if Some(middle.class) == outside {
+            // Not put into the lattice: a middle without its edges would make a cell that is known in part.
+            return;
+        }
+        self.lattice.put(at, middle);
+        if let Stage::Islands { around, .. } = &mut self.stage {
+            around.extend([
+                (across + half, up),
+                (across, up + half),
+                (across + 2 * half, up + half),
+                (across + half, up + 2 * half),
+            ]);
+        }
+    }
+
+    /// The values at parts of both axes.
+    pub fn values(&self, parts: [f64; 2]) -> [f64; 2] {
+        let value = |axis: usize| {
+            let Span { low, high } = self.spans[axis];
+            let value = low + (high - low) * parts[axis];
+            // An end that the number cannot be is looked at from next to it.
+            if self.slots[axis].limits.hold(value) {
+                value
+            } else if parts[axis] < 0.5 {
+                low + (high - low) * 1e-9
+            } else {
+                high - (high - low) * 1e-9
+            }
+        };
+        [value(0), value(1)]
+    }
+
+    /// The outcome with two values.
+    pub fn outcome(&mut self, values: [f64; 2]) -> Outcome {
+        self.fights += 1;
+        fight(self.family.member(values), Effort::Outcome).outcome
+    }
+
+    fn point(&mut self, parts: [f64; 2]) -> Point {
+        let values = self.values(parts);
+        let mut outcome = self.outcome(values);
+        if is_tie(&outcome) {
+            // A tie is a line without width: a place on it counts to one of its sides.
+            let [width, _] = self.spans.map(|span| span.high - span.low);
+            let aside = self.outcome([values[0] + width * ASIDE, values[1]]);
+            if !is_tie(&aside) {
+                outcome = aside;
+            }
+        }
+        let sample = Sample::of(values[0], self.family.member(values), &outcome, &[]);
+        Point {
+            class: self.class(sample.story),
+            near: sample.near,
+            time: sample.time,
+            end: sample.end,
+            ratio: outcome.loss_exchange_ratio,
+        }
+    }
+
+    fn class(&mut self, story: Story) -> u8 {
+        let known = self.stories.iter().position(|known| *known == story);
+        let place = known.unwrap_or_else(|| {
+            self.stories.push(story);
+            self.stories.len() - 1
+        });
+        u8::try_from(place).unwrap_or(u8::MAX)
+    }
+
+    /// The part of an edge at which the outcome flips.
+    ///
+    /// How near the outcome is to the other falls smoothly to 0 on either side, with a bend between them: so the next guess
+    /// is by the secant through the last two points of one side, and every fourth a halving, which is all that helps at a
+    /// jump.
+    fn close_in(&mut self, edge: Edge) -> f64 {
+        let (from, to) = (parts(edge.at), parts(edge.end()));
+        let (Some(first), Some(last)) = (self.lattice.get(edge.at), self.lattice.get(edge.end())) else {
+            return 0.5;
+        };
+        let along = |part: f64| {
+            [
+                from[0] + (to[0] - from[0]) * part,
+                from[1] + (to[1] - from[1]) * part,
+            ]
+        };
+        let (mut low, mut high) = (Nearing::from(0.0, first.near), Nearing::from(1.0, last.near));
+        let narrow = PRECISION * FINEST as f64;
+        let mut on_low = false;
+        for round in 0..90 {
+            let (from, to) = (low.now.0, high.now.0);
+            if to - from <= narrow {
+                break;
+            }
+            let side = if on_low { &low } else { &high };
+            let guess = side
+                .meets()
+                .filter(|guess| round % 4 != 3 && from < *guess && *guess < to);
+            let part = guess.unwrap_or(from + (to - from) / 2.0);
+            let point = self.point(along(part));
+            if point.near < TOUCHES && guess.is_some() {
+                return part;
+            }
+            on_low = point.class == first.class;
+            let moved = if on_low { &mut low } else { &mut high };
+            moved.come_to(part, point.near);
+        }
+        low.now.0 + (high.now.0 - low.now.0) / 2.0
+    }
+
+    /// How it comes out in a cell of the finest lattice; `None` before the coarsest is filled.
+    pub fn story_at(&self, across: usize, up: usize) -> Option<usize> {
+        let (cell, _) = self.lattice.cell_around((across, up))?;
+        let nearest = self.lattice.get((across, up)).or(self.lattice.get(cell))?;
+        Some(usize::from(nearest.class))
+    }
+
+    /// The stories that were met, in the order in which they were.
+    pub fn stories(&self) -> &[Story] {
+        &self.stories
+    }
+
+    /// The lines along which the outcome flips.
+    pub fn flips(&self) -> Vec<Flip> {
+        let chains = line::chains(&self.crossed.pairs).into_iter();
+        chains
+            .filter_map(|chain| {
+                let (one, other) = *self.crossed.edges.get(chain.first()?)?;
+                let story = |class: u8| self.stories.get(usize::from(class)).copied();
+                let points = chain.iter().map(|edge| self.crossing(*edge)).collect();
+                Some(Flip {
+                    between: [story(one)?, story(other)?],
+                    points,
+                })
+            })
+            .collect()
+    }
+
+    fn crossing(&self, edge: Edge) -> (f64, f64) {
+        let part = self.closed.get(&edge).copied().unwrap_or(0.5);
+        let (from, to) = (parts(edge.at), parts(edge.end()));
+        let along = |axis: usize| from[axis] + (to[axis] - from[axis]) * part;
+        let values = self.values([along(0), along(1)]);
+        (values[0], values[1])
+    }
+
+    /// The least and the greatest value of a second reading; `None` where it has none.
+    pub fn range(&self, second: Second) -> Option<(f64, f64)> {
+        let points = lattice::coarsest()
+            .into_iter()
+            .filter_map(|at| self.lattice.get(at));
+        let values = points.filter_map(|point| point.second(second));
+        values.fold(None, |range, value| {
+            let (low, high) = range.unwrap_or((value, value));
+            Some((low.min(value), high.max(value)))
+        })
+    }
+
+    /// Lines of equal value of a second reading.
+    pub fn contour(&self, second: Second, level: f64) -> Contour {
+        let pieces = contour::contour(
+            &self.lattice,
+            |a, b| a.class == b.class,
+            |point| point.second(second),
+            level,
+        );
+        let value = |(across, up): (f64, f64)| {
+            let values = self.values([across / FINEST as f64, up / FINEST as f64]);
+            (values[0], values[1])
+        };
+        Contour {
+            level,
+            pieces: pieces.into_iter().map(|piece| piece.map(value)).collect(),
+        }
+    }
+}
+
+/// The last two points on one side of a flip: where, and how near the outcome is to the other.
+struct Nearing {
+    before: Option<(f64, f64)>,
+    now: (f64, f64),
+}
+
+impl Nearing {
+    fn from(part: f64, near: f64) -> Nearing {
+        Nearing {
+            before: None,
+            now: (part, near),
+        }
+    }
+
+    fn come_to(&mut self, part: f64, near: f64) {
+        self.before = Some(self.now);
+        self.now = (part, near);
+    }
+
+    /// Where the line through both comes to 0.
+    fn meets(&self) -> Option<f64> {
+        let before = self.before?;
+        let slope = (before.1 - self.now.1) / (before.0 - self.now.0);
+        Some(self.now.0 - self.now.1 / slope).filter(|meets| meets.is_finite())
+    }
+}
+
+/// How far, as a part of the axis, another place is looked at in place of one on a tie.
+const ASIDE: f64 = 1e-9;
+
+/// Whether the sides are even, to rounding, and not past their lines from the beginning.
+fn is_tie(outcome: &Outcome) -> bool {
+    let parity = outcome.ended == Ended::Limit && outcome.to_the_last == Some(ToTheLast::Parity);
+    parity || outcome.breaks == Breaks::Both && outcome.time > Some(0.0)
+}
+
+fn parts(at: At) -> [f64; 2] {
+    [line::part(at.0), line::part(at.1)]
+}
