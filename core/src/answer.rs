@@ -1,6 +1,6 @@
 //! From the text of a link to its answer: an outcome, or every problem of the text.
 
-use crate::asked::{Asked, Inquiry};
+use crate::asked::{Chart, Inquiry, Reply};
 use crate::caution;
 use crate::fight::{Effort, fight};
 use crate::json::to_json;
@@ -27,7 +27,7 @@ pub enum Answer {
     /// Numbers in question were worked out.
     Asked {
         /// What each must be.
-        asked: Vec<Asked>,
+        asked: Vec<Reply>,
         /// The outcome with the values they have now; `None` where one has none.
         outcome: Option<Box<Answer>>,
     },
@@ -84,15 +84,16 @@ fn worked_out(pairs: &Pairs, statement: &Statement, besides: Besides) -> Answer 
 }
 
 /// The answers to the questions of a statement.
-fn ask(pairs: &Pairs, statement: &Statement) -> Vec<Asked> {
-    let mut inquiry = Inquiry::new(pairs, statement);
-    inquiry
-        .iter_mut()
-        .map(|inquiry| {
-            while !inquiry.go_on(u32::MAX) {}
-            inquiry.answer()
-        })
-        .collect()
+fn ask(pairs: &Pairs, statement: &Statement) -> Vec<Reply> {
+    let one = Inquiry::new(pairs, statement).map(|mut inquiry| {
+        while !inquiry.go_on(u32::MAX) {}
+        Reply::One(Box::new(inquiry.answer()))
+    });
+    let two = Chart::new(pairs, statement).map(|mut chart| {
+        while !chart.go_on(u32::MAX) {}
+        Reply::Two(chart.answer())
+    });
+    one.or(two).into_iter().collect()
 }
 
 impl Serialize for Answer {
@@ -121,7 +122,7 @@ impl Serialize for Answer {
 
 /// The fields of an outcome between `ok` and what was asked for besides: by name, as serde's `flatten` is slower.
 fn write_outcome<S: Serializer>(
-    asked: Option<&[Asked]>,
+    asked: Option<&[Reply]>,
     answer: &Answer,
     serializer: S,
 ) -> Result<S::Ok, S::Error> {

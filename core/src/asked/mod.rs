@@ -1,7 +1,7 @@
 //! Asking backwards: what a number must be.
 //!
 //! One number in question makes a family of engagements. An [`Inquiry`] looks along it, finds every change of the outcome
-//! and of the conditions, and gives the answer, [`Asked`].
+//! and of the conditions, and gives the answer, [`Asked`]. Two make a map, a [`Chart`].
 
 mod answer;
 mod golden;
@@ -9,13 +9,15 @@ mod inquiry;
 mod map;
 mod outright;
 mod put;
+mod reply;
 mod span;
 mod story;
 
 pub use answer::{Asked, Boundary, End, Met, Nearest, Segment};
 pub use inquiry::{Inquiry, STEPS};
-pub use map::{Chart, Contour, FINEST, Flip, Second};
+pub use map::{Chart, FINEST, Flip, Second};
 pub use outright::outright;
 pub use put::Putting;
+pub use reply::{FlipLine, Mapped, Reply};
 pub use span::Why;
 pub use story::{Sample, Story, Worst};

@@ -16,6 +16,17 @@ pub struct Story {
     pub prevails: Option<Side>,
 }
 
+impl Story {
+    /// The story of an outcome.
+    pub fn of(outcome: &Outcome) -> Story {
+        Story {
+            breaks: outcome.breaks,
+            ended: outcome.ended,
+            prevails: prevails(outcome),
+        }
+    }
+}
+
 /// What is told apart along a number: the story, and whether all conditions are met.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub(super) struct Class {
@@ -67,11 +78,7 @@ impl Sample {
             .filter(|(side, _)| !outcome.breaks.includes(*side));
         Sample {
             value,
-            story: Story {
-                breaks: outcome.breaks,
-                ended: outcome.ended,
-                prevails: prevails(outcome),
-            },
+            story: Story::of(outcome),
             met: goals.iter().all(|goal| goal.holds(outcome)),
             end: Both::of(|side| sides[side].end.unwrap_or(f64::INFINITY)),
             time: outcome.time,

@@ -44,6 +44,7 @@ pub fn asked(statement: &Statement, asked: &Asked) -> Option<Picture> {
         summary: summary(statement, asked, &name),
         table: table(statement, asked, shown),
         names: statement.names.clone(),
+        ground: None,
     })
 }
 

@@ -2,12 +2,14 @@
 
 mod asked;
 mod axis;
+mod map;
 mod orbit;
 mod paths;
 mod strength;
 
 pub use asked::asked;
 pub use axis::{Axis, Tick};
+pub use map::{Ground, Tone, map};
 pub use orbit::orbit;
 pub use strength::strength;
 
@@ -40,6 +42,10 @@ pub enum Role {
     Now,
     /// Values with which all that is wanted holds.
     Met,
+    /// Where the outcome flips, on a map.
+    Flip,
+    /// Where a second reading has the same value, on a map.
+    Contour,
 }
 
 /// A line through points, all within the axes.
@@ -90,6 +96,8 @@ pub struct Picture {
     pub table: Table,
     /// The names of the sides, for labels.
     pub names: Both<String>,
+    /// How every place comes out, on a map.
+    pub ground: Option<Ground>,
 }
 
 /// How many points a curve is drawn through.

@@ -86,6 +86,7 @@ pub fn orbit(statement: &Statement, fight: &Fight) -> Option<Picture> {
         summary,
         table,
         names: names.clone(),
+        ground: None,
     })
 }
 

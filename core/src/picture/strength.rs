@@ -54,6 +54,7 @@ pub fn strength(statement: &Statement, fight: &Fight) -> Option<Picture> {
         summary,
         table,
         names: statement.names.clone(),
+        ground: None,
     })
 }
 

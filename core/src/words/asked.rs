@@ -135,9 +135,9 @@ pub fn putting(statement: &Statement, asked: &Asked, value: f64) -> String {
     )
 }
 
-/// Where it was looked for, why there, and how closely.
-pub fn where_looked(statement: &Statement, asked: &Asked) -> String {
-    let why = match asked.why {
+/// Why it was looked for where it was.
+pub(super) fn why(why: Why) -> &'static str {
+    match why {
         Why::Asked => "as asked",
         Why::Whole => "all that it can be",
         Why::LargerSide => "up to four times the larger side",
@@ -150,7 +150,12 @@ pub fn where_looked(statement: &Statement, asked: &Asked) -> String {
         Why::Clock => "up to the clock",
         Why::Lasting => "up to twice as long as the fight lasts",
         Why::Range => "up to four times the larger of range and reach",
-    };
+    }
+}
+
+/// Where it was looked for, why there, and how closely.
+pub fn where_looked(statement: &Statement, asked: &Asked) -> String {
+    let why = why(asked.why);
     let step = (asked.span.high - asked.span.low) / f64::from(crate::asked::STEPS);
     format!(
         "Looked for {}, {why}; write `?low..high` behind the number to look elsewhere. Seen in even steps of {} and in even \

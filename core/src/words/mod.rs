@@ -7,6 +7,7 @@ pub mod entry;
 pub mod figures;
 pub mod format;
 pub mod goal;
+pub mod map;
 pub mod math;
 pub mod meaning;
 pub mod reading;

@@ -1,6 +1,7 @@
 //! Lines of equal value of a second reading, within the parts of a map that come out alike.
 
 use super::lattice::{At, FINEST, Lattice, cells};
+use std::collections::BTreeMap;
 
 /// The pieces of the line at `level`, in places of the lattice, from every cell whose corners are of one class and have a
 /// value each.
@@ -82,4 +83,55 @@ fn through((across, up): At, step: f64, values: [f64; 4], level: f64) -> Option<
         [from, to] => Some([from, to]),
         _ => None,
     }
+}
+
+/// A place, to the rounding with which two pieces meet.
+fn key((across, up): (f64, f64)) -> (i64, i64) {
+    ((across * 1e6).round() as i64, (up * 1e6).round() as i64)
+}
+
+/// The pieces put together to lines.
+pub(super) fn chained(pieces: &[[(f64, f64); 2]]) -> Vec<Vec<(f64, f64)>> {
+    let mut meeting: BTreeMap<(i64, i64), Vec<usize>> = BTreeMap::new();
+    for (place, piece) in pieces.iter().enumerate() {
+        for end in piece {
+            meeting.entry(key(*end)).or_default().push(place);
+        }
+    }
+    let mut used = vec![false; pieces.len()];
+    let mut lines = Vec::new();
+    for first in 0..pieces.len() {
+        if used[first] {
+            continue;
+        }
+        used[first] = true;
+        let [from, to] = pieces[first];
+        let mut ahead = followed(to, pieces, &meeting, &mut used);
+        let mut line = followed(from, pieces, &meeting, &mut used);
+        line.reverse();
+        line.extend([from, to]);
+        line.append(&mut ahead);
+        lines.push(line);
+    }
+    lines
+}
+
+/// The points of the line that goes on from `at` through pieces that are not used yet.
+fn followed(
+    mut at: (f64, f64),
+    pieces: &[[(f64, f64); 2]],
+    meeting: &BTreeMap<(i64, i64), Vec<usize>>,
+    used: &mut [bool],
+) -> Vec<(f64, f64)> {
+    let mut line = Vec::new();
+    while let Some(next) = meeting
+        .get(&key(at))
+        .and_then(|here| here.iter().copied().find(|place| !used[*place]))
+    {
+        used[next] = true;
+        let [from, to] = pieces[next];
+        at = if key(from) == key(at) { to } else { from };
+        line.push(at);
+    }
+    line
 }

@@ -79,15 +79,6 @@ pub struct Flip {
     pub points: Vec<(f64, f64)>,
 }
 
-/// A line along which a second reading has the same value.
-#[derive(Clone, Debug, PartialEq)]
-pub struct Contour {
-    /// The value.
-    pub level: f64,
-    /// Its pieces, in the values of the two numbers.
-    pub pieces: Vec<[(f64, f64); 2]>,
-}
-
 /// What is done next: places to fight at, or edges to close in on, the last first.
 #[derive(Clone, Debug)]
 enum Stage {
@@ -418,8 +409,8 @@ impl Chart {
         })
     }
 
-    /// Lines of equal value of a second reading.
-    pub fn contour(&self, second: Second, level: f64) -> Contour {
+    /// Lines along which a second reading has the value `level`, in the values of the two numbers.
+    pub fn contour(&self, second: Second, level: f64) -> Vec<Vec<(f64, f64)>> {
         let pieces = contour::contour(
             &self.lattice,
             |a, b| a.class == b.class,
@@ -430,10 +421,10 @@ impl Chart {
             let values = self.values([across / FINEST as f64, up / FINEST as f64]);
             (values[0], values[1])
         };
-        Contour {
-            level,
-            pieces: pieces.into_iter().map(|piece| piece.map(value)).collect(),
-        }
+        let chains = contour::chained(&pieces).into_iter();
+        chains
+            .map(|chain| chain.into_iter().map(value).collect())
+            .collect()
     }
 }
 
