@@ -91,7 +91,7 @@ fn ask(pairs: &Pairs, statement: &Statement) -> Vec<Reply> {
     });
     let two = Chart::new(pairs, statement).map(|mut chart| {
         while !chart.go_on(u32::MAX) {}
-        Reply::Two(chart.answer())
+        Reply::Two(Box::new(chart.answer()))
     });
     one.or(two).into_iter().collect()
 }

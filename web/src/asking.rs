@@ -3,6 +3,7 @@
 use crate::canvas;
 use crate::dom::{Dom, append, append_words, set};
 use crate::draw::{self, Ink};
+use crate::mapping::Mapping;
 use crate::outcome::show_table;
 use aftercount_core::asked::{Asked, Inquiry, Putting};
 use aftercount_core::pairs::Pairs;
@@ -27,6 +28,7 @@ pub(crate) struct Asking {
     inquiry: Option<Inquiry>,
     answer: Option<Asked>,
     picture: Option<Picture>,
+    mapping: Mapping,
 }
 
 impl Asking {
@@ -37,23 +39,33 @@ impl Asking {
             inquiry: None,
             answer: None,
             picture: None,
+            mapping: Mapping::new(dom),
         }
     }
 
-    /// Takes up the question of a statement; without one the answer before goes.
+    /// Takes up the question of a statement, or the two; without one the answer before goes.
     pub(crate) fn begin(&mut self, pairs: &Pairs, statement: &Statement) {
         self.inquiry = Inquiry::new(pairs, statement);
-        if self.inquiry.is_none() {
-            self.clear();
-            return;
+        if self.inquiry.is_some() {
+            self.mapping.clear();
+            self.begin_one(statement);
+        } else {
+            self.clear_one();
+            if !self.mapping.begin(pairs, statement) {
+                self.clear();
+                return;
+            }
         }
-        self.statement = Some(statement.clone());
-        self.dom.set_shown("asked", true);
         self.dom.set_shown("asked-how", false);
         self.dom.mark_root(
             "data-asked",
             Some(if statement.has_base() { "beside" } else { "alone" }),
         );
+    }
+
+    fn begin_one(&mut self, statement: &Statement) {
+        self.statement = Some(statement.clone());
+        self.dom.set_shown("asked", true);
         self.dom.set_attribute("asked", "aria-busy", "true");
         self.show_choices(statement);
         for side in Side::BOTH {
@@ -67,35 +79,58 @@ impl Asking {
 
     /// Takes the answer off the page.
     pub(crate) fn clear(&mut self) {
-        *self = Asking::new(&self.dom);
-        self.dom.set_shown("asked", false);
+        self.clear_one();
+        self.mapping.clear();
         self.dom.set_shown("asked-how", true);
         self.dom.mark_root("data-asked", None);
     }
 
+    fn clear_one(&mut self) {
+        self.statement = None;
+        self.inquiry = None;
+        self.answer = None;
+        self.picture = None;
+        self.dom.set_shown("asked", false);
+    }
+
+    /// The map, where two numbers are in question.
+    pub(crate) fn mapping(&mut self) -> &mut Mapping {
+        &mut self.mapping
+    }
+
     /// Whether nothing is being worked out.
     pub(crate) fn is_done(&self) -> bool {
-        self.inquiry.is_none()
+        self.inquiry.is_none() && self.mapping.is_done()
     }
 
     /// Leaves off: the text has changed to one that cannot be worked out.
     pub(crate) fn stop(&mut self) {
         self.inquiry = None;
+        self.mapping.stop();
         self.dom.set_attribute("asked", "aria-busy", "false");
     }
 
-    /// Works for a slice; shows the answer once it is there. Whether it is.
+    /// Works for a slice, and shows what there is to be shown; whether there is something new to draw.
     pub(crate) fn go_on(&mut self, pairs: &Pairs) -> bool {
-        let Some(inquiry) = &mut self.inquiry else {
-            return true;
-        };
         let clock = self.dom.window.performance();
         let now = || clock.as_ref().map_or(0.0, web_sys::Performance::now);
         let from = now();
-        let mut done = false;
+        let mut done = self.is_done();
         while !done && now() - from < SLICE {
-            done = inquiry.go_on(AT_ONCE);
+            done = match &mut self.inquiry {
+                Some(inquiry) => inquiry.go_on(AT_ONCE),
+                None => self.mapping.go_on(AT_ONCE),
+            };
         }
+        if self.inquiry.is_none() {
+            return self.mapping.show();
+        }
+        self.show_one(done, pairs);
+        done
+    }
+
+    fn show_one(&mut self, done: bool, pairs: &Pairs) {
+        let Some(inquiry) = &self.inquiry else { return };
         if done {
             self.answer = Some(inquiry.answer());
             self.inquiry = None;
@@ -105,11 +140,13 @@ impl Asking {
             self.dom
                 .set_text("asked-working", &format!("Being worked out: {part} % so far."));
         }
-        done
     }
 
     /// The answer in one sentence.
     pub(crate) fn sentence(&self) -> Option<String> {
+        if let Some(map) = self.mapping.sentence() {
+            return Some(map);
+        }
         let (statement, answer) = (self.statement.as_ref()?, self.answer.as_ref()?);
         Some(words::sentence(statement, answer))
     }
@@ -124,7 +161,8 @@ impl Asking {
     }
 
     /// Draws the picture.
-    pub(crate) fn draw(&self, ink: &Ink) -> Result<(), String> {
+    pub(crate) fn draw(&mut self, ink: &Ink) -> Result<(), String> {
+        self.mapping.draw(ink)?;
         let (Some(picture), Some(mut canvas)) = (&self.picture, canvas::prepare(&self.dom, "asked-picture"))
         else {
             return Ok(());

@@ -58,7 +58,7 @@ fn in_words(answer: &Answer, statement: &Statement) -> String {
         Answer::Outcome { outcome, .. } => sentence(statement, outcome),
         Answer::Asked { asked, outcome } => {
             let outcome = outcome.iter().map(|outcome| in_words(outcome, statement));
-            let asked = asked.iter().map(|asked| asked::sentence(statement, asked));
+            let asked = asked.iter().map(|reply| asked::reply(statement, reply));
             outcome.chain(asked).collect::<Vec<_>>().join(" ")
         }
         Answer::Problems(_) => String::new(),

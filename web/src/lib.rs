@@ -18,6 +18,7 @@ mod list_text;
 mod listen;
 mod lists;
 mod live;
+mod mapping;
 mod outcome;
 mod pace;
 mod page;

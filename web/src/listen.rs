@@ -148,6 +148,10 @@ fn input(page: &mut Page, event: &Event) -> After {
 }
 
 fn left(page: &mut Page, event: &Event) -> After {
+    if event.type_() == "change" && element(event).is_some_and(|element| element.id() == "map-second") {
+        page.choose_second();
+        return After::Nothing;
+    }
     if event.type_() == "change"
         && let Some(element) = element(event).filter(|element| element.has_attribute("data-choice"))
     {
@@ -212,6 +216,9 @@ fn click(page: &mut Page, event: &Event) -> After {
         event.prevent_default();
         let href = link.get_attribute("href").unwrap_or_default();
         return After::GoTo(href.trim_start_matches('#').to_owned());
+    }
+    if element.id() == "map-at" {
+        return page.put_place();
     }
     let Ok(Some(button)) = element.closest("button") else {
         return After::Nothing;
@@ -285,6 +292,14 @@ fn key(page: &mut Page, event: &Event) -> After {
         if !event.ctrl_key() && !event.alt_key() && !event.meta_key() && page.reading_key(&event.key()) {
             event.prevent_default();
         }
+    } else if element.id() == "map-at" {
+        let plain = !event.ctrl_key() && !event.alt_key() && !event.meta_key();
+        if plain && page.map_key(&event.key(), event.shift_key()) {
+            event.prevent_default();
+        } else if plain && event.key() == "Enter" {
+            event.prevent_default();
+            return page.put_place();
+        }
     } else if let (true, Some(cell), Some(act)) = (event.alt_key(), Cell::of(&element), arrow(&event.key())) {
         event.prevent_default();
         return page.act_on_list(&cell, act, Some(act));
@@ -336,13 +351,18 @@ fn pointer(page: &mut Page, event: &Event) -> After {
     };
     let place = print.get_bounding_client_rect();
     let mouse: &MouseEvent = pointer.as_ref();
-    page.pointed(&Pointer {
-        on_strength: print
-            .query_selector("#strength")
-            .is_ok_and(|canvas| canvas.is_some()),
-        x: f64::from(mouse.client_x()) - place.left(),
-        y: f64::from(mouse.client_y()) - place.top(),
-    });
+    let holds = |canvas: &str| print.query_selector(canvas).is_ok_and(|canvas| canvas.is_some());
+    let x = f64::from(mouse.client_x()) - place.left();
+    let y = f64::from(mouse.client_y()) - place.top();
+    if holds("#map") {
+        page.pointed_on_map((x, y));
+    } else if holds("#strength") || holds("#orbit") {
+        page.pointed(&Pointer {
+            on_strength: holds("#strength"),
+            x,
+            y,
+        });
+    }
     After::Nothing
 }
 
@@ -395,7 +415,7 @@ fn watch_sizes(dom: &Dom, page: &Shared, signal: &AbortSignal) -> Result<(), JsV
         }
     });
     let observer = ResizeObserver::new(call.into_js_value().unchecked_ref())?;
-    for id in ["strength", "orbit", "asked-picture"] {
+    for id in ["strength", "orbit", "asked-picture", "map"] {
         if let Some(canvas) = dom.element(id) {
             observer.observe(&canvas);
         }

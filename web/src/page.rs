@@ -531,14 +531,43 @@ impl Page {
     /// Goes on with the question for a slice.
     fn ask_on(&mut self) {
         self.ask_on.stop();
-        if !self.asking.go_on(&self.pairs) {
+        let news = self.asking.go_on(&self.pairs);
+        if !self.asking.is_done() {
             self.ask_on.start(0);
-            return;
         }
         if self.good.is_none() {
             let sentence = self.sentence();
             self.dom.set_text("sentence", &sentence);
         }
+        if news || self.asking.is_done() {
+            self.frame.ask();
+        }
+    }
+
+    /// The pointer is over the map.
+    pub(crate) fn pointed_on_map(&mut self, at: (f64, f64)) {
+        let ink = canvas::ink(&self.dom);
+        self.asking.mapping().pointed(at, &ink);
+    }
+
+    /// A key on the map; whether it was one of its keys.
+    pub(crate) fn map_key(&mut self, key: &str, far: bool) -> bool {
+        let ink = canvas::ink(&self.dom);
+        self.asking.mapping().key(key, far, &ink)
+    }
+
+    /// Puts the place on the map into its two fields.
+    pub(crate) fn put_place(&mut self) -> After {
+        if let Some(changed) = self.asking.mapping().putting(&self.pairs) {
+            self.change_at_once(|pairs| *pairs = changed);
+            form::fill(&self.dom, &self.pairs);
+        }
+        After::Nothing
+    }
+
+    /// Another second reading of the map was chosen.
+    pub(crate) fn choose_second(&mut self) {
+        self.asking.mapping().choose_second();
         self.frame.ask();
     }
 

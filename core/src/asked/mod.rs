@@ -17,7 +17,7 @@ pub use answer::{Asked, Boundary, End, Met, Nearest, Segment};
 pub use inquiry::{Inquiry, STEPS};
 pub use map::{Chart, FINEST, Flip, Second};
 pub use outright::outright;
-pub use put::Putting;
+pub use put::{Putting, near_text};
 pub use reply::{FlipLine, Mapped, Reply};
 pub use span::Why;
 pub use story::{Sample, Story, Worst};

@@ -3,6 +3,7 @@
 use super::answer::{Asked, End};
 use crate::decimal::written;
 use crate::quantity::Quantity;
+use crate::slots::Slot;
 
 /// An answer that can be put into the field of the number in question.
 #[derive(Clone, Debug, PartialEq)]
@@ -33,16 +34,9 @@ impl Asked {
 
     /// What is written in the field for a value.
     pub fn putting(&self, value: f64) -> Putting {
-        let between = match self.slot.quantity {
-            Quantity::Question {
-                between: Some((low, high)),
-                ..
-            } => format!("{}..{}", written(low), written(high)),
-            _ => String::new(),
-        };
         Putting {
             value,
-            text: format!("{}?{between}", written(value)),
+            text: in_question(&self.slot, value),
         }
     }
 
@@ -68,6 +62,25 @@ impl Asked {
         let mut written = digits.map(|digits| rounded(near, digits, from_below));
         written.find(kept).or(Some(0.5 * low + 0.5 * high).filter(kept))
     }
+}
+
+/// A value as it is written for a number that stays in question, where it was looked for kept.
+fn in_question(slot: &Slot, value: f64) -> String {
+    let between = match slot.quantity {
+        Quantity::Question {
+            between: Some((low, high)),
+            ..
+        } => format!("{}..{}", written(low), written(high)),
+        _ => String::new(),
+    };
+    format!("{}?{between}", written(value))
+}
+
+/// What is written for a number in question that a place on a map is put into: to three digits, within its limits.
+pub fn near_text(slot: &Slot, value: f64) -> String {
+    let rounded: f64 = format!("{value:.2e}").parse().unwrap_or(value);
+    let kept = if slot.limits.hold(rounded) { rounded } else { value };
+    in_question(slot, kept)
 }
 
 /// The number of so many digits behind the first next to `value`, above it or below it.

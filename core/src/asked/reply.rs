@@ -2,8 +2,10 @@
 
 use super::answer::Asked;
 use super::map::Chart;
+use super::story::Story;
 use crate::outcome::Breaks;
-use serde::Serialize;
+use crate::slots::Slot;
+use serde::{Serialize, Serializer};
 
 /// The answer to the questions of a text.
 #[derive(Clone, Debug, PartialEq, Serialize)]
@@ -12,20 +14,31 @@ pub enum Reply {
     /// One number was in question.
     One(Box<Asked>),
     /// Two were.
-    Two(Mapped),
+    Two(Box<Mapped>),
 }
 
 /// The map of two numbers: the lines along which the outcome flips.
 #[derive(Clone, Debug, PartialEq, Serialize)]
 pub struct Mapped {
-    /// The names of the two slots.
-    pub slots: [String; 2],
+    /// The two numbers.
+    #[serde(serialize_with = "names")]
+    pub slots: [Slot; 2],
     /// The least of each that was looked at.
     pub from: [f64; 2],
     /// The greatest.
     pub to: [f64; 2],
     /// The lines.
     pub flips: Vec<FlipLine>,
+    /// How much of the map comes out in each way, the most first.
+    #[serde(skip)]
+    pub shares: Vec<(Story, f64)>,
+}
+
+fn names<S: Serializer>(slots: &[Slot; 2], serializer: S) -> Result<S::Ok, S::Error> {
+    slots
+        .each_ref()
+        .map(|slot| slot.name.as_str())
+        .serialize(serializer)
 }
 
 /// A line along which the outcome flips.
@@ -46,10 +59,11 @@ impl Chart {
             points: flip.points,
         });
         Mapped {
-            slots: self.slots().each_ref().map(|slot| slot.name.clone()),
+            slots: self.slots().clone(),
             from: spans.map(|span| span.low),
             to: spans.map(|span| span.high),
             flips: flips.collect(),
+            shares: self.shares(),
         }
     }
 }

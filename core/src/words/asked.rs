@@ -3,7 +3,7 @@
 use super::goal::{goals, short};
 use super::sentence::breaks;
 use super::slot;
-use crate::asked::{Asked, Boundary, End, Met, Segment, Story, Why};
+use crate::asked::{Asked, Boundary, End, Met, Reply, Segment, Story, Why};
 use crate::outcome::{Breaks, Ended};
 use crate::picture::Table;
 use crate::sides::Side;
@@ -16,6 +16,14 @@ pub fn sentence(statement: &Statement, asked: &Asked) -> String {
         None => story(statement, asked),
     };
     format!("In this model {answer}.")
+}
+
+/// The answer to one question or to two in one sentence.
+pub fn reply(statement: &Statement, reply: &Reply) -> String {
+    match reply {
+        Reply::One(asked) => sentence(statement, asked),
+        Reply::Two(map) => super::map::of_shares(statement, &map.slots, &map.shares),
+    }
 }
 
 fn value(statement: &Statement, asked: &Asked, value: f64) -> String {

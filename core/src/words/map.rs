@@ -7,45 +7,26 @@ use crate::asked::{Chart, FINEST, Second, Story};
 use crate::outcome::Outcome;
 use crate::picture::Table;
 use crate::sides::Side;
+use crate::slots::Slot;
 use crate::statement::Statement;
 
 /// What the map shows in one sentence. It begins "In this model", so that it stays true when it is copied alone.
 pub fn sentence(statement: &Statement, chart: &Chart) -> String {
-    let [one, other] = chart.slots();
+    of_shares(statement, chart.slots(), &chart.shares())
+}
+
+/// The same of a map as the batch door has it.
+pub fn of_shares(statement: &Statement, slots: &[Slot; 2], shares: &[(Story, f64)]) -> String {
+    let [one, other] = slots;
     let (one, other) = (slot::name(statement, one), slot::name(statement, other));
-    let parts = shares(chart);
     let part = |(story, share): &(Story, f64)| {
         format!("{} on {} of the map", happens(statement, story), per_cent(*share))
     };
-    let parts: Vec<String> = parts.iter().map(part).collect();
+    let parts: Vec<String> = shares.iter().map(part).collect();
     format!(
         "In this model, with {one} and {other} in question: {}.",
         parts.join("; ")
     )
-}
-
-/// How much of the map comes out in each way, the most first.
-pub fn shares(chart: &Chart) -> Vec<(Story, f64)> {
-    let mut counts = vec![0_u32; chart.stories().len()];
-    let step = FINEST / 152;
-    let places = (0..FINEST).step_by(step);
-    for (across, up) in places
-        .clone()
-        .flat_map(|up| places.clone().map(move |across| (across, up)))
-    {
-        if let Some(count) = chart.story_at(across, up).and_then(|story| counts.get_mut(story)) {
-            *count += 1;
-        }
-    }
-    let all: u32 = counts.iter().sum();
-    let share = |count: u32| f64::from(count) / f64::from(all.max(1));
-    let stories = chart.stories().iter().copied().zip(counts);
-    let mut shares: Vec<(Story, f64)> = stories
-        .filter(|(_, count)| *count > 0)
-        .map(|(story, count)| (story, share(count)))
-        .collect();
-    shares.sort_by(|a, b| b.1.total_cmp(&a.1));
-    shares
 }
 
 /// The place on the map and how it comes out there: "Ondrel's strength at the start 620, Vessary's strength at the start 410:

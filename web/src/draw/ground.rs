@@ -1,10 +1,11 @@
 //! The ground of a map: how it comes out at every place, by lightness and hatch, so that it is read without colour.
 
 use super::layout::Layout;
-use super::pen::{Drawn, Pen, Point, SOLID};
+use super::pen::{Pen, Point, SOLID};
+use super::surface::Drawn;
 use aftercount_core::picture::{Ground, Tone};
 use aftercount_core::sides::Side;
-use plotters::prelude::{DrawingBackend, RGBColor};
+use plotters::prelude::RGBColor;
 
 /// The height of a row of the ground, in CSS pixels: its stairs are hidden under the line along which it flips.
 const ROW: f64 = 1.0;
@@ -23,7 +24,7 @@ fn depth(tone: Tone) -> u16 {
 }
 
 /// Draws the whole ground.
-pub(crate) fn draw<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, ground: &Ground) -> Drawn<B> {
+pub(crate) fn draw(pen: &mut Pen<'_>, field: &Layout, ground: &Ground) -> Drawn {
     rows(pen, field, ground)?;
     let colour = mixed(pen.ink.ink, pen.ink.paper, 34);
     for (rises, tones) in [
@@ -37,7 +38,7 @@ pub(crate) fn draw<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, grou
     Ok(())
 }
 
-fn rows<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, ground: &Ground) -> Drawn<B> {
+fn rows(pen: &mut Pen<'_>, field: &Layout, ground: &Ground) -> Drawn {
     let mut top = field.top;
     while top < field.foot {
         let foot = (top + ROW).min(field.foot);
@@ -57,7 +58,7 @@ fn rows<B: DrawingBackend>(pen: &mut Pen<'_, B>, field: &Layout, ground: &Ground
     Ok(())
 }
 
-fn fill<B: DrawingBackend>(pen: &mut Pen<'_, B>, from: Point, to: Point, tone: Tone) -> Drawn<B> {
+fn fill(pen: &mut Pen<'_>, from: Point, to: Point, tone: Tone) -> Drawn {
     let depth = depth(tone);
     if depth == 0 {
         return Ok(());

@@ -91,7 +91,7 @@ impl Labels {
             match line.role {
                 Role::Defeat | Role::Clock | Role::Change => self.moment(pen, line)?,
                 Role::BreakLine(side) => self.break_line(pen, picture, line, side)?,
-                Role::Parity => self.along(pen, line, pen.ink.ink, true)?,
+                Role::Parity | Role::Contour => self.along(pen, line, pen.ink.ink, true)?,
                 _ => {}
             }
         }

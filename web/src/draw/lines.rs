@@ -62,6 +62,8 @@ fn hand(pen: &Pen<'_>, role: Role) -> (RGBColor, f64, Dash) {
         Role::Instant => (pen.ink.between(), 0.8, SOLID),
         Role::Now => (pen.ink.ink, 1.0, SHORT_DASH),
         Role::Met => (pen.ink.ink, 6.0, SOLID),
+        Role::Flip => (pen.ink.ink, 2.4, SOLID),
+        Role::Contour => (pen.ink.ink, 0.9, SHORT_DASH),
     }
 }
 

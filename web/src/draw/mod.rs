@@ -2,6 +2,7 @@
 
 mod around;
 mod axes;
+mod ground;
 mod ink;
 mod labels;
 mod layout;
@@ -16,7 +17,7 @@ pub use around::Around;
 pub use ink::{Ink, parse_colour};
 pub use layout::Layout;
 pub use measured::{Measure, Measured, UsualWidths};
-pub use reading::{reading_on_orbit, reading_on_strength};
+pub use reading::{reading_on_map, reading_on_orbit, reading_on_strength};
 pub use surface::Drawn;
 pub use svg::svg;
 
@@ -63,6 +64,9 @@ pub fn draw_around<B: DrawingBackend>(
 /// Draws with a pen, over the whole of its sheet.
 fn draw_with(pen: &mut Pen<'_>, picture: &Picture) -> Result<Layout, String> {
     let field = axes::layout(pen, picture);
+    if let Some(ground) = &picture.ground {
+        ground::draw(pen, &field, ground)?;
+    }
     axes::draw(pen, &field, picture)?;
     lines::draw(pen, &field, picture)?;
     Labels::of(&field, picture).draw(pen, picture)?;

@@ -50,6 +50,24 @@ pub fn reading_on_orbit<B: DrawingBackend>(
     diamond(&mut pen, (x, y), ink.ink)
 }
 
+/// The place on a map, and lines from it to both axes.
+///
+/// # Errors
+/// Those of the backend.
+pub fn reading_on_map<B: DrawingBackend>(
+    backend: &mut B,
+    scale: f64,
+    ink: &Ink,
+    field: &Layout,
+    at: Point,
+) -> Drawn {
+    let mut pen = Pen::new(backend, scale, ink);
+    let (x, y) = field.place(at);
+    pen.line(&[(x, field.foot), (x, y)], ink.ink, 1.0, SOLID)?;
+    pen.line(&[(field.left, y), (x, y)], ink.ink, 1.0, SOLID)?;
+    diamond(&mut pen, (x, y), ink.ink)
+}
+
 fn diamond(pen: &mut Pen<'_>, (x, y): Point, colour: plotters::prelude::RGBColor) -> Drawn {
     pen.figure(
         &[(x, y - POINT), (x + POINT, y), (x, y + POINT), (x - POINT, y)],

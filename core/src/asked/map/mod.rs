@@ -368,6 +368,29 @@ impl Chart {
         Some(usize::from(nearest.class))
     }
 
+    /// How much of the map comes out in each way, the most first.
+    pub fn shares(&self) -> Vec<(Story, f64)> {
+        let mut counts = vec![0_u32; self.stories.len()];
+        let places = (0..FINEST).step_by(2);
+        for (across, up) in places
+            .clone()
+            .flat_map(|up| places.clone().map(move |across| (across, up)))
+        {
+            if let Some(count) = self.story_at(across, up).and_then(|story| counts.get_mut(story)) {
+                *count += 1;
+            }
+        }
+        let all: u32 = counts.iter().sum();
+        let share = |count: u32| f64::from(count) / f64::from(all.max(1));
+        let stories = self.stories.iter().copied().zip(counts);
+        let mut shares: Vec<(Story, f64)> = stories
+            .filter(|(_, count)| *count > 0)
+            .map(|(story, count)| (story, share(count)))
+            .collect();
+        shares.sort_by(|a, b| b.1.total_cmp(&a.1));
+        shares
+    }
+
     /// The stories that were met, in the order in which they were.
     pub fn stories(&self) -> &[Story] {
         &self.stories
