@@ -7,7 +7,7 @@ leaves. Two kinds of rows:
   numerical integrals of the state equation and a root of their difference. No formula of the core is used.
 - the others: thresholds by a search of its own. A fight is followed by SciPy's DOP853 at a relative tolerance of 1e-13, stretch by
   stretch between the instants of the schedule, with the break lines as events; the interval is looked at in even steps, and each
-  change of the outcome is halved down to 1e-12. Its own reading of the link, its own rules of breaking.
+  change of the outcome is halved down to 1e-11. Its own reading of the link, its own rules of breaking.
 
 A row: kind, link, the outcomes along the interval ("x|y": x breaks, then y), the thresholds between them, and where there are
 conditions the intervals that meet them ("607.2..900", an end that is the edge of the question in square brackets).
@@ -21,8 +21,8 @@ from mpmath import findroot, mp, mpf, quad
 from scipy.integrate import solve_ivp
 
 ENEMY = {"x": "y", "y": "x"}
-STEPS = 160
-PRECISION = 1e-12
+STEPS = 96
+PRECISION = 1e-11
 HORIZON = 600.0
 
 
@@ -209,6 +209,12 @@ def holds(goals, result):
     return True
 
 
+def at_a_glance(keys, steps=12):
+    """The outcomes at a few values."""
+    key, low, high = asked(keys)
+    return [fight(put(keys, key, low + (high - low) * (step + 0.5) / steps))[0] for step in range(steps)]
+
+
 def search(keys):
     """The outcomes along the number, the thresholds between them, and where the conditions hold."""
     key, low, high = asked(keys)
@@ -362,11 +368,13 @@ def window(draft):
     enemy = ENEMY[k]
     own, others = draft.number(f"{k}.start"), draft.number(f"{enemy}.start")
     draft.keys[f"{enemy}.fire"], draft.keys[f"{k}.fire"] = "area", "aimed"
-    draft.keys[f"{enemy}.rate"] = text(0.08 / others)
-    draft.keys[f"{k}.rate"] = text(0.05 * others / own)
-    draft.keys[f"phase1.from"] = text(draft.random.uniform(1, 3))
-    draft.keys[f"phase1.{enemy}.rate"] = text(0.04 / others)
-    draft.keys[f"{k}.join"] = f"{text(own * draft.random.uniform(0.2, 0.8))}@?0..{text(draft.lasting() * 1.3)}"
+    draft.keys[f"{k}.break"] = "0.5"
+    barrage = draft.random.uniform(1, 3)
+    draft.keys[f"{enemy}.rate"] = text(draft.random.uniform(0.3, 0.55) / barrage / others)
+    draft.keys[f"{k}.rate"] = text(draft.random.uniform(0.03, 0.07) * others / own)
+    draft.keys["phase1.from"] = text(barrage)
+    draft.keys[f"phase1.{enemy}.rate"] = text(draft.random.uniform(0.02, 0.08) / others)
+    draft.keys[f"{k}.join"] = f"{text(own * draft.random.uniform(0.3, 0.9))}@?0..{text(draft.lasting() * 1.3)}"
 
 
 def conditions(draft):
@@ -396,14 +404,20 @@ def is_clear(keys, thresholds, met):
 
 
 def found(source, make):
-    """A link of a kind whose outcome changes; two changes or more for those in which more may hurt."""
-    least = 2 if make in (more_hurts, window) else 1
+    """A link of a kind whose outcome changes; that changes back, where it is useful in a window only."""
+    least = 2 if make is window else 1
     while True:
         draft = Draft(source)
         if draft.lasting() >= HORIZON / 2:
             continue
         try:
             make(draft)
+            glance = at_a_glance(draft.keys)
+            if make is not conditions and sum(a != b for a, b in zip(glance, glance[1:])) < least:
+                continue
+            if make is more_hurts and glance[-1] != asked(draft.keys)[0][0]:
+                # More must bring the side down.
+                continue
             outcomes, thresholds, met = search(draft.keys)
         except (ValueError, OverflowError, ZeroDivisionError):
             continue
@@ -473,15 +487,20 @@ def main():
     source = random.Random(20_250_607)
     rows = list(parities())
     print(len(rows), "parities", flush=True)
+    path = Path(__file__).with_name("questions.tsv")
     for make, count in COUNTS.items():
         for _ in range(count):
             link, outcomes, thresholds, met = found(source, make)
             rows.append((make.__name__.replace("_", " "), link, outcomes, [plain(value) for value in thresholds], met))
         print(make.__name__, flush=True)
+        write(path, rows)
+    print(len(rows), "rows")
+
+
+def write(path, rows):
     lines = ["# Written by questions.py.", "kind\tlink\toutcomes\tthresholds\tmet"]
     lines += ["\t".join([kind, link, "|".join(outcomes), "|".join(thresholds), "|".join(met)]) for kind, link, outcomes, thresholds, met in rows]
-    Path(__file__).with_name("questions.tsv").write_text("\n".join(lines) + "\n", encoding="utf-8")
-    print(len(rows), "rows")
+    path.write_text("\n".join(lines) + "\n", encoding="utf-8")
 
 
 if __name__ == "__main__":

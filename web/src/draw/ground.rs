@@ -26,7 +26,7 @@ fn depth(tone: Tone) -> u16 {
 /// Draws the whole ground.
 pub(crate) fn draw(pen: &mut Pen<'_>, field: &Layout, ground: &Ground) -> Drawn {
     rows(pen, field, ground)?;
-    let colour = mixed(pen.ink.ink, pen.ink.paper, 34);
+    let colour = mixed(pen.ink.ink, pen.ink.paper, 48);
     for (rises, tones) in [
         (true, [Tone::Breaks(Side::X), Tone::Both]),
         (false, [Tone::Breaks(Side::Y), Tone::Both]),

@@ -1,7 +1,6 @@
 //! Lines of equal value of a second reading, within the parts of a map that come out alike.
 
 use super::lattice::{At, FINEST, Lattice, cells};
-use std::collections::BTreeMap;
 
 /// The pieces of the line at `level`, in places of the lattice, from every cell whose corners are of one class and have a
 /// value each.
@@ -85,19 +84,19 @@ fn through((across, up): At, step: f64, values: [f64; 4], level: f64) -> Option<
     }
 }
 
-/// A place, to the rounding with which two pieces meet.
-fn key((across, up): (f64, f64)) -> (i64, i64) {
-    ((across * 1e6).round() as i64, (up * 1e6).round() as i64)
+/// A place as a number, to the rounding with which two pieces meet.
+fn key((across, up): (f64, f64)) -> u64 {
+    let part = |place: f64| (place * 1e6).round() as u64;
+    part(up) * 1_000_000_000 + part(across)
 }
 
 /// The pieces put together to lines.
 pub(super) fn chained(pieces: &[[(f64, f64); 2]]) -> Vec<Vec<(f64, f64)>> {
-    let mut meeting: BTreeMap<(i64, i64), Vec<usize>> = BTreeMap::new();
+    let mut meeting: Vec<(u64, u32)> = Vec::with_capacity(2 * pieces.len());
     for (place, piece) in pieces.iter().enumerate() {
-        for end in piece {
-            meeting.entry(key(*end)).or_default().push(place);
-        }
+        meeting.extend(piece.iter().map(|end| (key(*end), place as u32)));
     }
+    meeting.sort_unstable();
     let mut used = vec![false; pieces.len()];
     let mut lines = Vec::new();
     for first in 0..pieces.len() {
@@ -116,22 +115,27 @@ pub(super) fn chained(pieces: &[[(f64, f64); 2]]) -> Vec<Vec<(f64, f64)>> {
     lines
 }
 
-/// The points of the line that goes on from `at` through pieces that are not used yet.
+/// The points of the line that goes on from `at` through pieces that are not used yet; `meeting` has the pieces by the places
+/// of their ends, in order.
 fn followed(
     mut at: (f64, f64),
     pieces: &[[(f64, f64); 2]],
-    meeting: &BTreeMap<(i64, i64), Vec<usize>>,
+    meeting: &[(u64, u32)],
     used: &mut [bool],
 ) -> Vec<(f64, f64)> {
     let mut line = Vec::new();
-    while let Some(next) = meeting
-        .get(&key(at))
-        .and_then(|here| here.iter().copied().find(|place| !used[*place]))
-    {
+    loop {
+        let here = key(at);
+        let first = meeting.partition_point(|(place, _)| *place < here);
+        let mut pieces_here = meeting[first..].iter().take_while(|(place, _)| *place == here);
+        let Some(next) =
+            pieces_here.find_map(|(_, piece)| (!used[*piece as usize]).then_some(*piece as usize))
+        else {
+            return line;
+        };
         used[next] = true;
         let [from, to] = pieces[next];
-        at = if key(from) == key(at) { to } else { from };
+        at = if key(from) == here { to } else { from };
         line.push(at);
     }
-    line
 }

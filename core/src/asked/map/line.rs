@@ -1,117 +1,139 @@
 //! Lines through a lattice: edges between points that differ, chained from cell to cell.
+//!
+//! Edges are numbers, and what is known of them stands in tables by that number.
 
 use super::lattice::{At, FINEST, Lattice, cells};
-use std::collections::{BTreeMap, BTreeSet};
 
-/// An edge of the finest lattice between two neighbouring points.
-#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
-pub(super) struct Edge {
-    /// Where it begins.
-    pub(super) at: At,
-    /// Whether it goes up, and not across.
-    pub(super) up: bool,
+/// An edge of the finest lattice between two neighbouring points: twice the number of the point where it begins, and one more
+/// where it goes up.
+pub(super) type Edge = u32;
+
+/// No edge.
+const NONE: Edge = Edge::MAX;
+
+/// One more than the largest edge.
+pub(super) const EDGES: usize = 2 * (FINEST + 1) * (FINEST + 1);
+
+fn edge((across, up): At, goes_up: bool) -> Edge {
+    (2 * (up * (FINEST + 1) + across) + usize::from(goes_up)) as Edge
 }
 
-impl Edge {
-    /// Where it ends.
-    pub(super) fn end(self) -> At {
-        if self.up {
-            (self.at.0, self.at.1 + 1)
-        } else {
-            (self.at.0 + 1, self.at.1)
-        }
-    }
+/// Where an edge begins, and where it ends.
+pub(super) fn ends(edge: Edge) -> [At; 2] {
+    let (point, goes_up) = (edge as usize / 2, edge % 2 == 1);
+    let (across, up) = (point % (FINEST + 1), point / (FINEST + 1));
+    let end = if goes_up {
+        (across, up + 1)
+    } else {
+        (across + 1, up)
+    };
+    [(across, up), end]
 }
 
 /// The edges of a cell of the finest lattice, in order around it.
 fn around((across, up): At) -> [Edge; 4] {
-    let edge = |across, up, goes_up| Edge {
-        at: (across, up),
-        up: goes_up,
-    };
     [
-        edge(across, up, false),
-        edge(across + 1, up, true),
-        edge(across, up + 1, false),
-        edge(across, up, true),
+        edge((across, up), false),
+        edge((across + 1, up), true),
+        edge((across, up + 1), false),
+        edge((across, up), true),
     ]
 }
 
 /// Where classes meet.
 #[derive(Clone, Debug, Default)]
 pub(super) struct Crossings {
-    /// Every edge whose ends are of two classes, with them in order.
-    pub(super) edges: BTreeMap<Edge, (u8, u8)>,
-    /// The pairs of such edges that belong together in a cell.
-    pub(super) pairs: Vec<(Edge, Edge)>,
+    /// Every edge whose ends are of two classes, in order.
+    pub(super) edges: Vec<Edge>,
+    /// The edges that an edge is connected with through the cells on its two sides.
+    next: Vec<[Edge; 2]>,
 }
 
-/// Every edge of the finest lattice whose ends are of two classes.
-pub(super) fn crossings<P: Copy>(lattice: &Lattice<P>, class: impl Fn(&P) -> u8) -> Crossings {
-    let mut found = Crossings::default();
-    for cell in cells(1) {
-        if lattice.corners(cell, 1).is_none() {
-            continue;
-        }
-        let crossed: Vec<(Edge, (u8, u8))> = around(cell)
-            .into_iter()
-            .filter_map(|edge| {
-                let (from, to) = (class(&lattice.get(edge.at)?), class(&lattice.get(edge.end())?));
-                (from != to).then_some((edge, (from.min(to), from.max(to))))
-            })
-            .collect();
-        found.edges.extend(crossed.iter().copied());
-        // Those of the same two classes belong together, one after the other around the cell.
-        let mut open: BTreeMap<(u8, u8), Edge> = BTreeMap::new();
-        for (edge, classes) in crossed {
-            match open.remove(&classes) {
-                Some(before) => found.pairs.push((before, edge)),
-                None => {
-                    open.insert(classes, edge);
+impl Crossings {
+    /// Every edge of the finest lattice whose ends are of two classes.
+    pub(super) fn of<P: Copy>(lattice: &Lattice<P>, class: impl Fn(&P) -> u8) -> Crossings {
+        let mut found = Crossings {
+            edges: Vec::new(),
+            next: vec![[NONE; 2]; EDGES],
+        };
+        for cell in cells(1) {
+            let Some(corners) = lattice.corners(cell, 1) else {
+                continue;
+            };
+            let classes = corners.map(|corner| class(&corner));
+            // Edges of the same two classes belong together, one after the other around the cell.
+            let mut open: [Option<(Edge, u8, u8)>; 4] = [None; 4];
+            for (place, edge) in around(cell).into_iter().enumerate() {
+                let (from, to) = (classes[place], classes[(place + 1) % 4]);
+                if from == to {
+                    continue;
+                }
+                found.edges.push(edge);
+                let (low, high) = (from.min(to), from.max(to));
+                let before = open
+                    .iter_mut()
+                    .find(|slot| slot.is_some_and(|(_, a, b)| (a, b) == (low, high)));
+                match before {
+                    Some(slot) => {
+                        if let Some((before, ..)) = slot.take() {
+                            found.connect(before, edge);
+                        }
+                    }
+                    None => open[place] = Some((edge, low, high)),
                 }
             }
         }
+        found.edges.sort_unstable();
+        found.edges.dedup();
+        found
     }
-    found
-}
 
-/// The edges in order along each line.
-pub(super) fn chains(pairs: &[(Edge, Edge)]) -> Vec<Vec<Edge>> {
-    let mut next: BTreeMap<Edge, Vec<Edge>> = BTreeMap::new();
-    for (one, other) in pairs {
-        next.entry(*one).or_default().push(*other);
-        next.entry(*other).or_default().push(*one);
-    }
-    let mut left: BTreeSet<Edge> = next.keys().copied().collect();
-    let mut chains = Vec::new();
-    // Lines with ends first, so that none is begun in its middle; then those that close.
-    let ends: Vec<Edge> = next
-        .iter()
-        .filter(|(_, to)| to.len() == 1)
-        .map(|(edge, _)| *edge)
-        .collect();
-    for begin in ends.into_iter().chain(next.keys().copied()) {
-        if !left.remove(&begin) {
-            continue;
+    fn connect(&mut self, one: Edge, other: Edge) {
+        for (from, to) in [(one, other), (other, one)] {
+            if let Some(free) = self.next[from as usize].iter_mut().find(|next| **next == NONE) {
+                *free = to;
+            }
         }
+    }
+
+    fn connections(&self, edge: Edge) -> impl Iterator<Item = Edge> {
+        self.next[edge as usize].into_iter().filter(|next| *next != NONE)
+    }
+
+    /// The edges in order along each line; a line that closes ends with its first.
+    pub(super) fn chains(&self) -> Vec<Vec<Edge>> {
+        let mut used = vec![false; EDGES];
+        let mut chains = Vec::new();
+        // Lines with ends first, so that none is begun in its middle; then those that close.
+        for with_end in [true, false] {
+            for begin in self.edges.iter().copied() {
+                let count = self.connections(begin).count();
+                if used[begin as usize] || count == 0 || (count == 1) != with_end {
+                    continue;
+                }
+                chains.push(self.chain(begin, &mut used));
+            }
+        }
+        chains
+    }
+
+    fn chain(&self, begin: Edge, used: &mut [bool]) -> Vec<Edge> {
         let mut chain = vec![begin];
         let mut at = begin;
-        let step =
-            |at: Edge, left: &BTreeSet<Edge>| next[&at].iter().copied().find(|edge| left.contains(edge));
-        while let Some(edge) = step(at, &left) {
-            left.remove(&edge);
-            chain.push(edge);
-            at = edge;
+        used[begin as usize] = true;
+        while let Some(next) = self.connections(at).find(|next| !used[*next as usize]) {
+            used[next as usize] = true;
+            chain.push(next);
+            at = next;
         }
-        if chain.len() > 2 && next[&at].contains(&begin) {
+        if chain.len() > 2 && self.connections(at).any(|next| next == begin) {
             chain.push(begin);
         }
-        chains.push(chain);
+        chain
     }
-    chains
 }
 
-/// A value of a lattice place as a part of the axis.
+/// A place of the lattice as a part of the axis.
 pub(super) fn part(place: usize) -> f64 {
     place as f64 / FINEST as f64
 }

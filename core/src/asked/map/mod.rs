@@ -21,8 +21,7 @@ use crate::sides::Both;
 use crate::slots::{Slot, slots};
 use crate::statement::{Statement, Values};
 use lattice::{At, BASE, Lattice};
-use line::{Crossings, Edge};
-use std::collections::BTreeMap;
+use line::{Crossings, EDGES, Edge, ends};
 
 /// How near, as a part of the axis, a flip is closed in on.
 const PRECISION: f64 = 1e-12;
@@ -109,7 +108,8 @@ pub struct Chart {
     stories: Vec<Story>,
     stage: Stage,
     crossed: Crossings,
-    closed: BTreeMap<Edge, f64>,
+    /// The part of each edge at which the outcome flips; half-way where that is not known yet.
+    closed: Vec<f64>,
     fights: usize,
 }
 
@@ -140,7 +140,7 @@ impl Chart {
                 islands: true,
             },
             crossed: Crossings::default(),
-            closed: BTreeMap::new(),
+            closed: vec![0.5; EDGES],
             fights: 0,
         })
     }
@@ -210,7 +210,7 @@ impl Chart {
             Stage::Closing(edges) => match edges.pop() {
                 Some(edge) => {
                     let part = self.close_in(edge);
-                    self.closed.insert(edge, part);
+                    self.closed[edge as usize] = part;
                 }
                 None => self.stage = Stage::Done,
             },
@@ -239,8 +239,8 @@ impl Chart {
                 around: Vec::new(),
             };
         }
-        self.crossed = line::crossings(&self.lattice, |point| point.class);
-        Stage::Closing(self.crossed.edges.keys().copied().collect())
+        self.crossed = Crossings::of(&self.lattice, |point| point.class);
+        Stage::Closing(self.crossed.edges.clone())
     }
 
     /// Looks at the middle of a coarse cell that was not halved; where it comes out otherwise than around it, the cell is
@@ -327,8 +327,9 @@ impl Chart {
     /// is by the secant through the last two points of one side, and every fourth a halving, which is all that helps at a
     /// jump.
     fn close_in(&mut self, edge: Edge) -> f64 {
-        let (from, to) = (parts(edge.at), parts(edge.end()));
-        let (Some(first), Some(last)) = (self.lattice.get(edge.at), self.lattice.get(edge.end())) else {
+        let [begin, end] = ends(edge);
+        let (from, to) = (parts(begin), parts(end));
+        let (Some(first), Some(last)) = (self.lattice.get(begin), self.lattice.get(end)) else {
             return 0.5;
         };
         let along = |part: f64| {
@@ -398,14 +399,18 @@ impl Chart {
 
     /// The lines along which the outcome flips.
     pub fn flips(&self) -> Vec<Flip> {
-        let chains = line::chains(&self.crossed.pairs).into_iter();
+        let chains = self.crossed.chains().into_iter();
+        let story = |at: At| {
+            self.stories
+                .get(usize::from(self.lattice.get(at)?.class))
+                .copied()
+        };
         chains
             .filter_map(|chain| {
-                let (one, other) = *self.crossed.edges.get(chain.first()?)?;
-                let story = |class: u8| self.stories.get(usize::from(class)).copied();
+                let [begin, end] = ends(*chain.first()?);
                 let points = chain.iter().map(|edge| self.crossing(*edge)).collect();
                 Some(Flip {
-                    between: [story(one)?, story(other)?],
+                    between: [story(begin)?, story(end)?],
                     points,
                 })
             })
@@ -413,8 +418,8 @@ impl Chart {
     }
 
     fn crossing(&self, edge: Edge) -> (f64, f64) {
-        let part = self.closed.get(&edge).copied().unwrap_or(0.5);
-        let (from, to) = (parts(edge.at), parts(edge.end()));
+        let part = self.closed[edge as usize];
+        let [from, to] = ends(edge).map(parts);
         let along = |axis: usize| from[axis] + (to[axis] - from[axis]) * part;
         let values = self.values([along(0), along(1)]);
         (values[0], values[1])
