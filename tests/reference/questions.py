@@ -143,20 +143,32 @@ def stretch(sides, now, end):
         meets.direction = -1
         return meets
 
+    def lowest(row, side, flow):
+        """Where the distance from the line turns: a flow moves the line, so that it may be met between two steps only."""
+        turns = lambda t, state: side.breaks * flow - rates(t, state)[2 + row]
+        turns.direction = 1
+        return turns
+
     events = [event(0, x, flows["x"]), event(1, y, flows["y"])]
+    flowing = [row for row in (0, 1) if flows["xy"[row]] > 0]
+    events += [lowest(row, (x, y)[row], flows["xy"[row]]) for row in flowing]
     for k, one in zip("xy", events):
         if one(now, [x.left, y.left, 0, 0]) <= 0:
             return k, now
     found = solve_ivp(
         rates, (now, end), [x.left, y.left, 0.0, 0.0], method="DOP853", rtol=1e-13, atol=1e-13 * scale, events=events,
     )
+    for row, times, states in zip(flowing, found.t_events[2:], found.y_events[2:]):
+        for time, state in zip(times, states):
+            if events[row](time, state) <= 0:
+                return "xy"[row], time
     state, time = found.y[:, -1], found.t[-1]
     for row, side in enumerate((x, y)):
         side.left = state[row]
         side.lost += state[2 + row]
         side.committed += flows["xy"[row]] * (time - now)
     if found.status == 1:
-        met = [k for k, times in zip("xy", found.t_events) if len(times)]
+        met = [k for k, times in zip("xy", found.t_events[:2]) if len(times)]
         return met[0], time
     return None
 
