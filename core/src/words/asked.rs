@@ -82,6 +82,7 @@ pub fn happens(statement: &Statement, story: &Story) -> String {
         }
         (_, Ended::Growth, _) => "neither side breaks, and strength grows without bound".into(),
         (_, Ended::Withdrawn, _) => "neither side breaks, and one has nobody left there".into(),
+        (_, Ended::Unfinished, _) => "neither side breaks as far as it was worked out".into(),
         (_, Ended::Equilibrium, _) => "neither side breaks, and all comes to balance".into(),
         _ => "neither side breaks".into(),
     }
