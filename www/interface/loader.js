@@ -5,6 +5,7 @@
 var aftercount = (function () {
   "use strict";
   const packed = "{{wasm}}";
+  const first = "{{unpacker}}"; // unpacks the rest
   let compiled;
   let engine; // nothing until it is ready, and after it could not be started
 
@@ -35,9 +36,11 @@ var aftercount = (function () {
   }
 
   async function unpack() {
-    const bytes = Uint8Array.from(atob(packed), (letter) => letter.charCodeAt(0));
-    const stream = new Blob([bytes]).stream().pipeThrough(new DecompressionStream("gzip"));
-    compiled = await WebAssembly.compile(await new Response(stream).arrayBuffer());
+    await null; // while this script runs, the glue would ask for its address, which it may not have
+    {{unpacker-glue}}
+    const bytes = (text) => Uint8Array.from(atob(text), (letter) => letter.charCodeAt(0));
+    unpacker.initSync({ module: await WebAssembly.compile(bytes(first)) });
+    compiled = await WebAssembly.compile(unpacker.unpack(bytes(packed)));
     start();
   }
 

@@ -62,9 +62,9 @@
   window.addEventListener("unhandledrejection", (event) => look(event.reason));
 
   Promise.resolve()
-    .then(() => new Blob([decode(document.getElementById("wasm").textContent)]).stream())
-    .then((packed) => new Response(packed.pipeThrough(new DecompressionStream("gzip"))).arrayBuffer())
-    .then((bytes) => WebAssembly.compile(bytes))
+    .then(() => WebAssembly.compile(decode(document.getElementById("unpacker").textContent)))
+    .then((module) => unpacker.initSync({ module }))
+    .then(() => WebAssembly.compile(unpacker.unpack(decode(document.getElementById("wasm").textContent))))
     .then((module) => { compiled = module; start(undefined); })
     .catch((error) => {
       document.getElementById("no-engine").hidden = false;

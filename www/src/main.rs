@@ -8,6 +8,7 @@
 mod inline;
 mod licences;
 mod open;
+mod pack;
 mod policy;
 mod sides;
 mod sizes;
@@ -85,7 +86,8 @@ struct Finished {
 fn build(workspace: &Workspace) -> Result<Finished> {
     toolchain::ensure_wasm_target()?;
     let built = wasm::build(workspace)?;
-    let bound = wasm::bind(&built.wasm)?;
+    let bound = wasm::bind(&built.program, "wasm_bindgen")?;
+    let unpacker = wasm::bind(&built.unpacker, "unpacker")?;
     let licences = licences::notices(workspace, &built.packages)?;
 
     let sheet = read(&workspace.page_source("index.html"))?;
@@ -96,20 +98,27 @@ fn build(workspace: &Workspace) -> Result<Finished> {
     inline::check("boot.js", &boot)?;
     inline::check("the glue", &bound.glue)?;
 
-    // Packed, since base64 makes it a third larger again; every browser that runs the program unpacks it.
-    let encoded = BASE64.encode(sizes::packed(&bound.wasm)?);
+    inline::check("the unpacker's glue", &unpacker.glue)?;
+
+    // Packed, since base64 makes it a third larger again; what unpacks it stands before it as it is.
+    let encoded = BASE64.encode(pack::packed(&bound.wasm)?);
+    let first = BASE64.encode(&unpacker.wasm);
     let version = version(&[
         template.as_bytes(),
         style.as_bytes(),
         boot.as_bytes(),
         bound.glue.as_bytes(),
         &bound.wasm,
+        unpacker.glue.as_bytes(),
+        &unpacker.wasm,
     ]);
     let filled = inline::fill(
         &template,
         &[
             ("style", &style),
             ("wasm", &encoded),
+            ("unpacker", &first),
+            ("unpacker-glue", &unpacker.glue),
             ("glue", &bound.glue),
             ("boot", &boot),
             ("version", &version),
@@ -123,6 +132,8 @@ fn build(workspace: &Workspace) -> Result<Finished> {
         &read(&workspace.interface_source("loader.js"))?,
         &[
             ("wasm", &encoded),
+            ("unpacker", &first),
+            ("unpacker-glue", &unpacker.glue),
             ("glue", &bound.glue),
             ("version", &version),
             // The notices stand in a comment there, as plain text.

@@ -2,7 +2,6 @@
 
 use std::fmt;
 use std::io::Write as _;
-use std::num::NonZeroU64;
 
 use anyhow::{Result, bail};
 use flate2::Compression;
@@ -21,19 +20,6 @@ pub(crate) struct Limits {
 pub(crate) struct Sizes {
     raw: usize,
     gzipped: usize,
-}
-
-/// The bytes in gzip's format, as small as it gets and the same ones each time.
-///
-/// More than one round of zopfli's would take longer and save a thousandth.
-pub(crate) fn packed(bytes: &[u8]) -> Result<Vec<u8>> {
-    let mut packed = Vec::new();
-    let options = zopfli::Options {
-        iteration_count: NonZeroU64::MIN,
-        ..zopfli::Options::default()
-    };
-    zopfli::compress(options, zopfli::Format::Gzip, bytes, &mut packed)?;
-    Ok(packed)
 }
 
 /// How many bytes gzip makes of these, as servers and mailers use it.

@@ -6,6 +6,7 @@ use std::path::{Path, PathBuf};
 use std::process::{Child, Stdio};
 
 use anyhow::{Context, Result, bail, ensure};
+use cargo_metadata::camino::Utf8PathBuf;
 use cargo_metadata::{Artifact, Message, PackageId};
 use wasm_bindgen_cli_support::Bindgen;
 
@@ -13,7 +14,10 @@ use crate::toolchain::{TARGET, rustc_prints};
 use crate::workspace::{Workspace, cargo};
 
 /// The crate that becomes the page's program.
-const PACKAGE: &str = "aftercount-web";
+const PROGRAM: &str = "aftercount_web";
+
+/// The one that unpacks it.
+const UNPACKER: &str = "aftercount_unpack";
 
 /// Settings from outside that would change the program. The page must be the same whoever builds it.
 const DEAF_TO: [&str; 7] = [
@@ -29,8 +33,10 @@ const DEAF_TO: [&str; 7] = [
 /// What the compiler left.
 pub(crate) struct Built {
     /// The program, not yet bound to JavaScript.
-    pub(crate) wasm: PathBuf,
-    /// Every package that was compiled into it.
+    pub(crate) program: PathBuf,
+    /// What unpacks it, likewise.
+    pub(crate) unpacker: PathBuf,
+    /// Every package that was compiled into them.
     pub(crate) packages: Vec<PackageId>,
 }
 
@@ -38,11 +44,11 @@ pub(crate) struct Built {
 pub(crate) struct Bound {
     /// The program's bytes.
     pub(crate) wasm: Vec<u8>,
-    /// The script; it declares the variable `wasm_bindgen`.
+    /// The script; it declares a variable of the name that it was given.
     pub(crate) glue: String,
 }
 
-/// Compiles the web crate with the profile `page`.
+/// Compiles both crates with the profile `page`.
 pub(crate) fn build(workspace: &Workspace) -> Result<Built> {
     let mut command = cargo();
     // A target directory of its own: Cargo would otherwise fill the folder of the finished page, named like the profile.
@@ -51,7 +57,9 @@ pub(crate) fn build(workspace: &Workspace) -> Result<Built> {
         .args([
             "build",
             "--package",
-            PACKAGE,
+            &PROGRAM.replace('_', "-"),
+            "--package",
+            &UNPACKER.replace('_', "-"),
             "--lib",
             "--target",
             TARGET,
@@ -116,8 +124,7 @@ fn artifacts(child: &mut Child) -> Result<Vec<Artifact>> {
 
 /// Tells the program and its parts from what only helped to build it, which was compiled for this machine.
 fn gather(artifacts: Vec<Artifact>) -> Result<Built> {
-    let mut wasm = None;
-    let mut packages = Vec::new();
+    let (mut programs, mut packages) = (Vec::new(), Vec::new());
     for artifact in artifacts {
         let Some(file) = artifact
             .filenames
@@ -126,28 +133,33 @@ fn gather(artifacts: Vec<Artifact>) -> Result<Built> {
         else {
             continue;
         };
-        if let Some(found) = artifact
-            .filenames
-            .iter()
-            .find(|file| file.extension() == Some("wasm"))
-        {
-            wasm = Some(found.clone().into_std_path_buf());
-        }
+        let is_program = |file: &&Utf8PathBuf| file.extension() == Some("wasm");
+        programs.extend(artifact.filenames.iter().find(is_program).cloned());
         if file.extension().is_some() {
             packages.push(artifact.package_id);
         }
     }
-    let Some(wasm) = wasm else {
-        bail!("cargo named no .wasm file among what it built");
+    let named = |name: &str| {
+        let found = programs.iter().find(|file| file.file_stem() == Some(name));
+        found
+            .map(|file| file.clone().into_std_path_buf())
+            .with_context(|| format!("cargo named no {name}.wasm among what it built"))
     };
-    Ok(Built { wasm, packages })
+    Ok(Built {
+        program: named(PROGRAM)?,
+        unpacker: named(UNPACKER)?,
+        packages,
+    })
 }
 
 /// Makes the glue for a page without modules, which a file opened from disc cannot load.
-pub(crate) fn bind(input: &Path) -> Result<Bound> {
+///
+/// The glue declares a variable `name`, which holds all that the program offers.
+pub(crate) fn bind(input: &Path, name: &str) -> Result<Bound> {
     let mut output = Bindgen::new()
         .input_path(input)
         .no_modules(true)?
+        .no_modules_global(name)?
         .typescript(false)
         .remove_name_section(true)
         .remove_producers_section(true)
@@ -160,21 +172,21 @@ pub(crate) fn bind(input: &Path) -> Result<Bound> {
         );
     }
     Ok(Bound {
-        glue: redeclarable(output.js())?,
+        glue: redeclarable(output.js(), name)?,
         wasm: output.wasm_mut().emit_wasm(),
     })
 }
 
-/// Turns `let wasm_bindgen` into `var wasm_bindgen`.
+/// Turns the glue's `let` into `var`.
 ///
 /// After a trap the boot script runs the glue's text once more to get an instance with a state of its own; a second
 /// `let` of one name would be a syntax error.
-fn redeclarable(glue: &str) -> Result<String> {
-    const FROM: &str = "let wasm_bindgen =";
-    match glue.trim_start().strip_prefix(FROM) {
-        Some(rest) => Ok(format!("var wasm_bindgen ={rest}")),
+fn redeclarable(glue: &str, name: &str) -> Result<String> {
+    let from = format!("let {name} =");
+    match glue.trim_start().strip_prefix(&from) {
+        Some(rest) => Ok(format!("var {name} ={rest}")),
         None => bail!(
-            "the glue no longer begins with `{FROM}`: {:?}",
+            "the glue no longer begins with `{from}`: {:?}",
             glue.chars().take(60).collect::<String>()
         ),
     }
@@ -187,9 +199,9 @@ mod tests {
     #[test]
     fn glue_can_run_twice() {
         assert_eq!(
-            redeclarable("\n  let wasm_bindgen = 1;").expect("begins so"),
+            redeclarable("\n  let wasm_bindgen = 1;", "wasm_bindgen").expect("begins so"),
             "var wasm_bindgen = 1;"
         );
-        assert!(redeclarable("const other = 1;").is_err());
+        assert!(redeclarable("const other = 1;", "other").is_err());
     }
 }

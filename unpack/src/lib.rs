@@ -1,0 +1,16 @@
+//! Unpacks the page's program where the page starts.
+//!
+//! The program travels packed by LZMA, which makes it a sixth smaller than gzip does. Browsers do not unpack that
+//! themselves, so this does: it comes first, and is small because it knows one shape of stream only and never panics.
+
+mod lzma;
+
+pub use lzma::unpacked;
+
+use wasm_bindgen::prelude::wasm_bindgen;
+
+/// The bytes that were packed: see [`unpacked`].
+#[wasm_bindgen]
+pub fn unpack(packed: &[u8]) -> Vec<u8> {
+    unpacked(packed)
+}
