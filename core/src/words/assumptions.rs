@@ -143,7 +143,11 @@ impl Table<'_> {
             |key: &str, side: Side| meaning::parameter_unit(key, &names[side], &names[side.enemy()], unit);
         self.told.extend(["x.name".into(), "y.name".into()]);
         self.both("start", |side| {
-            format!("{} {}", number(&of(side).start), statement.counted)
+            let (start, counted) = (&of(side).start, &statement.counted);
+            match is_number(start) {
+                true => format!("{} {counted}", number(start)),
+                false => format!("{} ({counted})", number(start)),
+            }
         });
         self.both("lost", |side| number(&of(side).lost));
         self.both("fire", |side| of(side).fire.law.law().label.into());
@@ -165,11 +169,13 @@ impl Table<'_> {
             });
         }
         self.both("break", |side| {
-            let point = &of(side).break_point;
-            with(
-                &number(point),
-                &decapitalised(&meaning::break_point(statement, side)),
-            )
+            let (point, rest) = (&of(side).break_point, [&of(side).start, &of(side).lost]);
+            let known = [point].into_iter().chain(rest).all(is_number);
+            let words = match known {
+                true => decapitalised(&meaning::break_point(statement, side)),
+                false => "the fraction lost at which it breaks".into(),
+            };
+            with(&number(point), &words)
         });
         self.both("wastage", |side| {
             measured(&of(side).wastage, &parameter("wastage", side))
@@ -332,6 +338,10 @@ fn number(quantity: &Quantity) -> String {
     }
 }
 
+fn is_number(quantity: &Quantity) -> bool {
+    matches!(quantity, Quantity::Number(_))
+}
+
 /// A number and what it is measured in.
 fn with(number: &str, unit: &str) -> String {
     if unit.is_empty() {
@@ -469,6 +479,16 @@ mod tests {
                 ("note", "As agreed".into(), false),
                 ("range", "9 (nothing in this engagement uses it)".into(), false),
             ]
+        );
+    }
+
+    #[test]
+    fn what_rests_on_a_number_in_question_is_not_made_up() {
+        let table = of("x.start=?&x.rate=0.04&x.break=0.3&y.start=400&y.rate=0.05");
+        assert_eq!(both(&table, "start").0, "in question (combatants)");
+        assert_eq!(
+            both(&table, "break").0,
+            "0.3: the fraction lost at which it breaks"
         );
     }
 
