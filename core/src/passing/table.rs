@@ -54,9 +54,7 @@ pub fn table(
     request: &Request,
 ) -> String {
     let lines = written(finding, &rows(trajectory, moments, request), request.signs);
-    // Lines of the same length, written to memory, cannot fail.
-    let lines = lines.ok().and_then(|bytes| String::from_utf8(bytes).ok());
-    format!("\u{feff}{}", lines.unwrap_or_default())
+    format!("\u{feff}{lines}")
 }
 
 fn rows(trajectory: &Trajectory, moments: &[Moment], request: &Request) -> Vec<Row> {
@@ -138,13 +136,7 @@ fn row_of(stretch: &Stretch, time: f64) -> Row {
     }
 }
 
-fn written(finding: &Finding<'_>, rows: &[Row], signs: Signs) -> Result<Vec<u8>, csv::Error> {
-    let delimiter = if signs == Signs::Commas { b';' } else { b',' };
-    let mut lines = csv::WriterBuilder::new()
-        .delimiter(delimiter)
-        .terminator(csv::Terminator::CRLF)
-        .from_writer(Vec::new());
-    lines.write_record(heads(finding))?;
+fn written(finding: &Finding<'_>, rows: &[Row], signs: Signs) -> String {
     let number = |value: f64| match signs {
         Signs::Points => number(value),
         Signs::Commas => number(value).replace('.', ","),
@@ -155,6 +147,7 @@ fn written(finding: &Finding<'_>, rows: &[Row], signs: Signs) -> Result<Vec<u8>,
         format!("Aftercount {}", finding.version),
         caution::SHORT.to_owned(),
     ];
+    let mut lines = line(&heads(finding), signs);
     for row in rows {
         let mut cells = vec![number(row.time)];
         cells.extend(Side::BOTH.map(|side| number(row.strengths[side])));
@@ -162,9 +155,24 @@ fn written(finding: &Finding<'_>, rows: &[Row], signs: Signs) -> Result<Vec<u8>,
         cells.extend(Side::BOTH.map(|side| row.break_line[side].map(number).unwrap_or_default()));
         cells.push(cell(&row.what));
         cells.extend(behind.iter().cloned());
-        lines.write_record(cells)?;
+        lines += &line(&cells, signs);
     }
-    lines.into_inner().map_err(|error| error.into_error().into())
+    lines
+}
+
+/// A line, quoted where it must be. By hand: the crate for it brings a printer of numbers that weighs more than the rest.
+fn line(cells: &[String], signs: Signs) -> String {
+    let quoted = cells.iter().map(|cell| {
+        if cell.contains([',', ';', '"', '\r', '\n']) {
+            format!("\"{}\"", cell.replace('"', "\"\""))
+        } else {
+            cell.clone()
+        }
+    });
+    let quoted: Vec<String> = quoted.collect();
+    let mut line = quoted.join(if signs == Signs::Commas { ";" } else { "," });
+    line += "\r\n";
+    line
 }
 
 /// The heads, with units. Each begins with words of our own.
