@@ -1,7 +1,7 @@
 //! The map of two numbers in question: worked out in slices, drawn, read by pointer and keys, and put into the fields.
 
 use crate::canvas;
-use crate::dom::{Dom, append, set};
+use crate::dom::{Dom, append, append_words, set};
 use crate::draw::{self, Ink, Layout};
 use crate::outcome::show_table;
 use aftercount_core::asked::{Chart, Second, near_text};
@@ -114,7 +114,10 @@ impl Mapping {
         self.picture = picture::map(statement, chart, self.second);
         let dom = &self.dom;
         dom.set_text("map-sentence", &words::sentence(statement, chart));
-        dom.set_text("map-where", &words::where_looked(statement, chart));
+        if let Some(place) = dom.element("map-where") {
+            place.set_text_content(None);
+            append_words(dom, &place, &words::where_looked(statement, chart));
+        }
         if let Some(picture) = &self.picture {
             dom.set_text("map-words", &picture.summary);
             show_table(dom, "map-table", &picture.table);
