@@ -1,4 +1,4 @@
-//! The built page in Chromium, for the tests that look at it as a reader would.
+//! The built page in a browser, for the tests that look at it as a reader would.
 //!
 //! Each [`Browser`] has a driver and a profile of its own, on a port that the system picked, and leaves nothing behind
 //! when it is dropped, also by a test that panics. It blocks, so that a test reads from top to bottom, and it waits
@@ -8,6 +8,7 @@ mod axe;
 mod command;
 mod downloads;
 mod driver;
+mod engine;
 mod files;
 mod harm;
 mod input;
@@ -17,7 +18,9 @@ mod paper;
 mod sheet;
 mod text;
 mod watch;
+mod wire;
 
+use std::cell::RefCell;
 use std::path::PathBuf;
 use std::time::Duration;
 
@@ -28,6 +31,7 @@ use tokio::runtime::Runtime;
 
 use command::Command;
 use driver::Driver;
+pub use engine::{Engine, is_skipped};
 pub use files::{interface_url, page_url, wiki_url};
 pub use harm::Doing;
 pub use input::Key;
@@ -35,6 +39,7 @@ pub use keyboard::Struck;
 pub use native::{changed, native, native_sentence};
 pub use paper::Paper;
 pub use sheet::Shown;
+use wire::Wire;
 
 /// How long anything may take before a test gives up on it. Far beyond what it takes, for a busy machine.
 pub const PATIENCE: Duration = Duration::from_secs(20);
@@ -77,11 +82,22 @@ impl Screen {
     };
 }
 
+/// Sets what Firefox takes the system to prefer, by its own settings.
+const PREFER: &str = "const [feature, value] = arguments, set = (name, number) => Services.prefs.setIntPref(name, number);
+    if (feature === 'prefers-color-scheme')
+      set('layout.css.prefers-color-scheme.content-override', {dark: 0, light: 1}[value]);
+    else if (feature === 'prefers-reduced-motion') set('ui.prefersReducedMotion', value === 'reduce' ? 1 : 0);
+    else if (feature === 'forced-colors') set('browser.display.document_color_use', value === 'active' ? 2 : 0);
+    else throw new Error('no setting for ' + feature);";
+
 /// A browser with one window.
 pub struct Browser {
     // Dropped in this order: the driver may only go once the session is closed.
     client: Option<Client>,
     runtime: Runtime,
+    engine: Engine,
+    /// What Firefox tells; Chromium's driver keeps logs instead.
+    wire: Option<RefCell<Wire>>,
     driver: Driver,
 }
 
@@ -97,21 +113,27 @@ impl Browser {
     /// Starts a browser that shows an empty page.
     ///
     /// # Panics
-    /// Where Chromium or its driver is not installed or does not start.
+    /// Where the browser or its driver is not installed or does not start.
     pub fn start() -> Self {
-        let driver = Driver::start();
+        let engine = Engine::chosen();
+        let driver = Driver::start(engine);
         let runtime = tokio::runtime::Builder::new_current_thread()
             .enable_all()
             .build()
             .expect("a runtime for one thread");
         let mut builder = ClientBuilder::new(HttpConnector::new());
-        builder.capabilities(driver.capabilities());
+        builder.capabilities(engine.capabilities(driver.folder()));
         let client = runtime
             .block_on(builder.connect(&driver.address()))
-            .expect("chromedriver starts Chromium");
+            .expect("the driver starts the browser");
+        let told_at = client
+            .capabilities()
+            .and_then(|all| all.get("webSocketUrl")?.as_str());
         let browser = Self {
+            wire: told_at.map(|address| RefCell::new(Wire::open(address))),
             client: Some(client),
             runtime,
+            engine,
             driver,
         };
         browser.watch();
@@ -141,7 +163,12 @@ impl Browser {
     }
 
     /// A command of Chromium's own protocol.
+    ///
+    /// # Panics
+    /// In Firefox: a test that needs one asks [`is_skipped`] first.
+    #[track_caller]
     pub fn devtools(&self, method: &'static str, parameters: Value) -> Value {
+        assert_eq!(self.engine, Engine::Chromium, "{method} is Chromium's alone");
         self.run(
             method,
             self.client().issue_cmd(Command::devtools(method, parameters)),
@@ -176,42 +203,99 @@ impl Browser {
         found
     }
 
+    /// Calls a method of the protocol by which Firefox tells what happens.
+    fn call(&self, method: &str, parameters: Value) -> Value {
+        let wire = self.wire.as_ref().expect("Firefox has such a line");
+        wire.borrow_mut().call(method, parameters)
+    }
+
     /// A script that runs at the beginning of every document from now on, before any of its own.
     pub fn before_each_page(&self, script: &str) {
-        self.devtools("Page.addScriptToEvaluateOnNewDocument", json!({"source": script}));
+        match self.engine {
+            Engine::Chromium => {
+                self.devtools("Page.addScriptToEvaluateOnNewDocument", json!({"source": script}));
+            }
+            Engine::Firefox => {
+                let function = format!("() => {{ {script} }}");
+                self.call(
+                    "script.addPreloadScript",
+                    json!({"functionDeclaration": function}),
+                );
+            }
+        }
     }
 
     /// Gives the window's content another size.
     pub fn screen(&self, screen: Screen) {
         let Screen { width, height, ratio } = screen;
-        let metrics = json!({"width": width, "height": height, "deviceScaleFactor": ratio, "mobile": false});
-        self.devtools("Emulation.setDeviceMetricsOverride", metrics);
+        match self.engine {
+            Engine::Chromium => {
+                let metrics =
+                    json!({"width": width, "height": height, "deviceScaleFactor": ratio, "mobile": false});
+                self.devtools("Emulation.setDeviceMetricsOverride", metrics);
+            }
+            Engine::Firefox => {
+                let window = self.run("the window", self.client().window());
+                let size = json!({"context": String::from(window), "devicePixelRatio": ratio,
+                    "viewport": {"width": width, "height": height}});
+                self.call("browsingContext.setViewport", size);
+            }
+        }
     }
 
     /// Sets what the system prefers, for example `prefers-color-scheme` to `dark`.
     pub fn prefers(&self, feature: &str, value: &str) {
-        self.devtools(
-            "Emulation.setEmulatedMedia",
-            json!({"features": [{"name": feature, "value": value}]}),
-        );
+        self.prefers_all(&[(feature, value)]);
     }
 
     /// Sets several of what the system prefers at once.
     pub fn prefers_all(&self, features: &[(&str, &str)]) {
-        let features: Vec<Value> = features
-            .iter()
-            .map(|(name, value)| json!({"name": name, "value": value}))
-            .collect();
-        self.devtools("Emulation.setEmulatedMedia", json!({"features": features}));
+        match self.engine {
+            Engine::Chromium => {
+                let features: Vec<Value> = features
+                    .iter()
+                    .map(|(name, value)| json!({"name": name, "value": value}))
+                    .collect();
+                self.devtools("Emulation.setEmulatedMedia", json!({"features": features}));
+            }
+            Engine::Firefox => {
+                for (name, value) in features {
+                    self.firefox(PREFER, vec![json!(name), json!(value)]);
+                }
+            }
+        }
+    }
+
+    /// The value of a script's `return` in Firefox's own window, where what the system says can be overridden.
+    fn firefox(&self, text: &str, arguments: Vec<Value>) -> Value {
+        let turn = |context| {
+            self.run(
+                context,
+                self.client().issue_cmd(Command::firefox_context(context)),
+            )
+        };
+        turn("chrome");
+        let value = self.script(text, arguments);
+        turn("content");
+        value
     }
 
     /// Takes the whole page's picture to `screens/NAME.png` in the target directory, for a person to look at.
     pub fn picture(&self, name: &str) {
-        let taken = self.devtools(
-            "Page.captureScreenshot",
-            json!({"format": "png", "captureBeyondViewport": true}),
-        );
-        files::write_picture(name, taken["data"].as_str().expect("a picture in base64"));
+        match self.engine {
+            Engine::Chromium => {
+                let shot = json!({"format": "png", "captureBeyondViewport": true});
+                let taken = self.devtools("Page.captureScreenshot", shot);
+                files::write_picture(name, taken["data"].as_str().expect("a picture in base64"));
+            }
+            Engine::Firefox => {
+                let window = self.run("the window", self.client().window());
+                let shot = json!({"context": String::from(window), "origin": "document"});
+                let taken = self.call("browsingContext.captureScreenshot", shot);
+                let name = format!("firefox-{name}");
+                files::write_picture(&name, taken["data"].as_str().expect("a picture in base64"));
+            }
+        }
     }
 }
 

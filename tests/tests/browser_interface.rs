@@ -55,9 +55,7 @@ fn sentence_of(answer: &Answer, text: &str) -> String {
     match answer {
         Answer::Asked { asked, outcome } => {
             let base = outcome.iter().map(|_| native_sentence(text));
-            let asked = asked
-                .iter()
-                .map(|asked| words::asked::sentence(&statement, asked));
+            let asked = asked.iter().map(|reply| words::asked::reply(&statement, reply));
             base.chain(asked).collect::<Vec<_>>().join(" ")
         }
         _ => native_sentence(text),

@@ -1,4 +1,4 @@
-//! Commands of chromedriver's that WebDriver does not have.
+//! Commands of the drivers' own that WebDriver does not have.
 
 use fantoccini::wd::WebDriverCompatibleCommand;
 use http::Method;
@@ -26,6 +26,14 @@ impl Command {
         Self {
             path: "print",
             body: json!({"page": {"width": width, "height": height}, "background": false, "shrinkToFit": false}),
+        }
+    }
+
+    /// Whether scripts from now on run in Firefox's own window (`chrome`) or in the page (`content`).
+    pub(super) fn firefox_context(context: &'static str) -> Self {
+        Self {
+            path: "moz/context",
+            body: json!({"context": context}),
         }
     }
 

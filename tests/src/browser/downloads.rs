@@ -6,15 +6,18 @@ use std::{fs, thread};
 
 use serde_json::json;
 
-use super::{Browser, PATIENCE};
+use super::{Browser, Engine, PATIENCE};
 
 impl Browser {
     /// Lets files come, into a folder of this browser's own.
     pub fn allow_downloads(&self) {
         let folder = self.downloads();
         fs::create_dir_all(&folder).expect("a folder for downloads");
-        let parameters = json!({"behavior": "allow", "downloadPath": folder});
-        self.devtools("Browser.setDownloadBehavior", parameters);
+        // Firefox is started with this folder.
+        if self.engine == Engine::Chromium {
+            let parameters = json!({"behavior": "allow", "downloadPath": folder});
+            self.devtools("Browser.setDownloadBehavior", parameters);
+        }
     }
 
     /// The names of the files that have come, in order.

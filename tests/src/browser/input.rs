@@ -2,9 +2,9 @@
 
 use fantoccini::Locator;
 use fantoccini::elements::Element;
-use serde_json::json;
+use serde_json::{Value, json};
 
-use super::Browser;
+use super::{Browser, Engine};
 
 /// Keys that type no letter, as WebDriver writes them.
 #[derive(Clone, Copy, Debug)]
@@ -59,13 +59,22 @@ impl Browser {
     #[track_caller]
     pub fn write(&self, name: &str, text: &str) {
         let field = self.field(name);
-        // Control and A choose all that stands there.
         let keys = if text.is_empty() {
             Key::Backspace.code().to_string()
         } else {
             text.to_owned()
         };
-        self.run(name, field.send_keys(&format!("\u{e009}a\u{e000}{keys}")));
+        // Control and A choose all that stands there; Firefox's driver forgets the text behind them.
+        let chosen = match self.engine {
+            Engine::Chromium => "\u{e009}a\u{e000}",
+            Engine::Firefox => {
+                let script = "const field = document.getElementsByName(arguments[0])[0];
+                    field.focus(); field.select();";
+                self.script(script, vec![json!(name)]);
+                ""
+            }
+        };
+        self.run(name, field.send_keys(&format!("{chosen}{keys}")));
     }
 
     /// Writes on after what stands in a field.
@@ -139,33 +148,47 @@ impl Browser {
     #[track_caller]
     pub fn hover(&self, selector: &str, across: f64, down: f64) {
         let (x, y) = self.place(selector, across, down);
-        self.devtools(
-            "Input.dispatchMouseEvent",
-            json!({"type": "mouseMoved", "x": x, "y": y}),
-        );
+        match self.engine {
+            Engine::Chromium => {
+                let moved = json!({"type": "mouseMoved", "x": x, "y": y});
+                self.devtools("Input.dispatchMouseEvent", moved);
+            }
+            Engine::Firefox => self.point("mouse", json!([move_to((x, y))])),
+        }
     }
 
     /// Touches an element at a place, in parts of its width and height, and moves the finger to another.
     #[track_caller]
     pub fn swipe(&self, selector: &str, from: (f64, f64), to: (f64, f64)) {
-        let point = |(across, down)| {
-            let (x, y) = self.place(selector, across, down);
-            json!([{"x": x, "y": y}])
-        };
-        let (from, to) = (point(from), point(to));
-        self.devtools("Emulation.setTouchEmulationEnabled", json!({"enabled": true}));
-        self.devtools(
-            "Input.dispatchTouchEvent",
-            json!({"type": "touchStart", "touchPoints": from}),
-        );
-        self.devtools(
-            "Input.dispatchTouchEvent",
-            json!({"type": "touchMove", "touchPoints": to}),
-        );
-        self.devtools(
-            "Input.dispatchTouchEvent",
-            json!({"type": "touchEnd", "touchPoints": []}),
-        );
+        let [from, to] = [from, to].map(|(across, down)| self.place(selector, across, down));
+        match self.engine {
+            Engine::Chromium => {
+                self.devtools("Emulation.setTouchEmulationEnabled", json!({"enabled": true}));
+                let touch = |kind: &str, points: Value| {
+                    let event = json!({"type": kind, "touchPoints": points});
+                    self.devtools("Input.dispatchTouchEvent", event);
+                };
+                touch("touchStart", json!([{"x": from.0, "y": from.1}]));
+                touch("touchMove", json!([{"x": to.0, "y": to.1}]));
+                touch("touchEnd", json!([]));
+            }
+            Engine::Firefox => {
+                let (down, up) = (
+                    json!({"type": "pointerDown", "button": 0}),
+                    json!({"type": "pointerUp", "button": 0}),
+                );
+                self.point("touch", json!([move_to(from), down, move_to(to), up]));
+            }
+        }
+    }
+
+    /// What a mouse or a finger does, one after another, in Firefox.
+    fn point(&self, kind: &str, actions: Value) {
+        let window = self.run("the window", self.client().window());
+        let pointer =
+            json!({"type": "pointer", "id": kind, "parameters": {"pointerType": kind}, "actions": actions});
+        let all = json!({"context": String::from(window), "actions": [pointer]});
+        self.call("input.performActions", all);
     }
 
     fn place(&self, selector: &str, across: f64, down: f64) -> (f64, f64) {
@@ -185,4 +208,9 @@ impl Browser {
     pub(super) fn element(&self, selector: &str) -> Element {
         self.run(selector, self.client().find(Locator::Css(selector)))
     }
+}
+
+/// A pointer's way to a place of the window, which is a whole number of pixels.
+fn move_to((x, y): (f64, f64)) -> Value {
+    json!({"type": "pointerMove", "x": x.round() as i64, "y": y.round() as i64})
 }

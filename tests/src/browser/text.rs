@@ -2,7 +2,7 @@
 
 use serde_json::{Value, json};
 
-use super::Browser;
+use super::{Browser, Engine};
 
 /// Every line of text that can be seen, and what is wrong with it. What covers by design is left out: the sentence that
 /// stays in sight, and what waits in a strip that rolls.
@@ -61,7 +61,13 @@ impl Browser {
     /// Gives all text another size, in parts of the usual: as a reader sets it for every page, so that what is measured
     /// in letters follows, or for this page alone.
     pub fn text_size(&self, times: f64, for_every_page: bool) {
-        if for_every_page {
+        if for_every_page && self.engine == Engine::Firefox {
+            let script = "for (const font of ['variable', 'monospace']) {
+                const name = `font.size.${font}.x-western`;
+                Services.prefs.setIntPref(name, Math.round((font === 'variable' ? 16 : 13) * arguments[0]));
+            }";
+            self.firefox(script, vec![json!(times)]);
+        } else if for_every_page {
             self.devtools(
                 "Page.setFontSizes",
                 json!({"fontSizes": {"standard": (16.0 * times).round(), "fixed": (13.0 * times).round()}}),

@@ -12,7 +12,7 @@ const LISTENERS: &str = "
     addEventListener('unhandledrejection', (event) => console.error('unhandled: ' + event.reason));";
 
 /// Schemes that stay on the machine.
-const LOCAL: [&str; 5] = ["file:", "data:", "blob:", "about:", "chrome:"];
+const LOCAL: [&str; 6] = ["file:", "data:", "blob:", "about:", "chrome:", "resource:"];
 
 impl Browser {
     /// Listens to every document from now on.
@@ -22,6 +22,9 @@ impl Browser {
 
     /// All that went wrong since this was last asked.
     pub fn complaints(&self) -> Vec<String> {
+        if let Some(wire) = &self.wire {
+            return wire.borrow_mut().complaints(is_local);
+        }
         let mut complaints = Vec::new();
         for entry in self.log("browser") {
             if entry["level"] == "SEVERE" {
@@ -62,7 +65,11 @@ fn load(message: &str) -> Option<String> {
         "Network.webSocketCreated" | "Network.webTransportCreated" => event["params"]["url"].as_str()?,
         _ => return None,
     };
-    (!LOCAL.iter().any(|scheme| url.starts_with(scheme))).then(|| format!("network: {url}"))
+    (!is_local(url)).then(|| format!("network: {url}"))
+}
+
+fn is_local(url: &str) -> bool {
+    LOCAL.iter().any(|scheme| url.starts_with(scheme))
 }
 
 #[cfg(test)]
