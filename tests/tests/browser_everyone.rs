@@ -14,10 +14,11 @@ const FULL: &str = "title=The%20northern%20crossing&note=Rates%20as%20agreed&mar
 const WRONG: &str = "x.start=1,000&x.rate=-3&x.join=40@2,x@3&y.start=464&y.rate=0,05&y.break=2&range=far&\
     phase1.from=soon&phase1.x.rate=5%20%&y.speed=3&x.start=5&bare&v=1";
 
-/// A number in question, which has a value now, and one that has none.
-const ASKED: [&str; 2] = [
+/// A number in question, which has a value now, one that has none, and two at once, which make a map.
+const ASKED: [&str; 3] = [
     "x.name=Ondrel&x.start=600?400..900&x.rate=0.04&x.break=0.3&y.name=Vessary&y.start=464&y.rate=0.05&y.break=0.5&v=1",
     "x.name=Ondrel&x.start=600&x.rate=?&x.break=0.3&y.name=Vessary&y.start=464&y.rate=0.05&y.break=0.5&v=1",
+    "x.name=Ondrel&x.start=600?400..900&x.rate=0.04&x.break=0.3&y.name=Vessary&y.start=464?300..600&y.rate=0.05&y.break=0.5&v=1",
 ];
 
 /// Opens all that can be opened.
