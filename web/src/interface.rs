@@ -8,8 +8,6 @@ use aftercount_core::statement::Statement;
 use aftercount_core::words::asked;
 use aftercount_core::words::sentence::sentence;
 use js_sys::Reflect;
-use serde::Serialize;
-use serde_wasm_bindgen::Serializer;
 use wasm_bindgen::JsValue;
 use wasm_bindgen::prelude::wasm_bindgen;
 
@@ -32,11 +30,10 @@ pub fn outcome(text: &JsValue) -> JsValue {
     object
 }
 
-/// A plain object, as from JSON. None of its keys or values is of a kind that could not be written.
+/// The object that the line of the command line stands for: by way of its text, since that is there anyhow, and a second
+/// way to write an answer would weigh some kilobytes.
 fn object(answer: &Answer) -> JsValue {
-    answer
-        .serialize(&Serializer::json_compatible())
-        .unwrap_or(JsValue::NULL)
+    js_sys::JSON::parse(&answer.to_json()).unwrap_or(JsValue::NULL)
 }
 
 fn add_words(object: &JsValue, answer: &Answer, statement: &Statement, pairs: &Pairs) {
