@@ -111,6 +111,10 @@ impl Integrated {
         let next_to_nothing = left[side] <= LEAST.max(1e-9 * self.course.highest(side));
         let lost = self.conditions.losses_per_time(side, left).all;
         let falls = lost * self.conditions.growth_at(side.enemy(), end) > self.conditions.flow[side];
+        // Of so few the powers have no digits: whatever they lose is all of them.
+        if self.start[side] <= LEAST && line.at > 0.0 && falls {
+            return Some(end);
+        }
         (end < length && line.at == 0.0 && line.rising == 0.0 && comes && falls && next_to_nothing)
             .then_some(end)
     }
