@@ -28,6 +28,7 @@ mod phases;
 mod plates;
 mod problems;
 mod reading;
+mod reversal;
 mod rolling;
 mod share;
 mod stopwatch;

@@ -237,6 +237,12 @@ fn click(page: &mut Page, event: &Event) -> After {
     {
         return page.put_answer(place);
     }
+    if let Some(row) = button
+        .get_attribute("data-reverse")
+        .and_then(|row| row.parse().ok())
+    {
+        return page.put_reversal(row);
+    }
     if let (Some(cell), Some(act)) = (Cell::of(&button), act_of(&button)) {
         return page.act_on_list(&cell, act, None);
     }

@@ -1,6 +1,7 @@
 //! The page's state: the pairs, the last good figures, and what waits.
 
 mod received;
+mod reversal;
 
 use crate::address::{Address, Step};
 use crate::asking::Asking;
@@ -20,6 +21,7 @@ use crate::phases::{Ask, Phases};
 use crate::plates::Plates;
 use crate::problems::{PATIENCE, Problems};
 use crate::reading::Pointer;
+use crate::reversal::Reversals;
 use crate::rolling;
 use crate::share::Shares;
 use crate::stopwatch::{DRAW, Stopwatch, WORK};
@@ -53,6 +55,7 @@ pub(crate) struct Page {
     asking: Asking,
     /// The text that `good` is of.
     good_pairs: Option<Pairs>,
+    reversals: Reversals,
     /// Problems that are not shown yet.
     waiting: Vec<Problem>,
     /// Whether `good` is of the text as it stands.
@@ -74,6 +77,7 @@ pub(crate) struct Page {
     speak: Timer,
     decide: Timer,
     ask_on: Timer,
+    reverse_on: Timer,
     frame: NextFrame,
     paper: Paper,
 }
@@ -103,6 +107,7 @@ impl Page {
                 good: None,
                 asking: Asking::new(dom),
                 good_pairs: None,
+                reversals: Reversals::new(dom),
                 waiting: Vec::new(),
                 current: false,
                 problems: Problems::new(dom),
@@ -122,6 +127,7 @@ impl Page {
                 speak: Timer::new(&dom.window, page, Page::speak_now),
                 decide: Timer::new(&dom.window, page, Page::decide_now),
                 ask_on: Timer::new(&dom.window, page, Page::ask_on),
+                reverse_on: Timer::new(&dom.window, page, Page::reverse_on),
                 frame: NextFrame::new(&dom.window, page, Page::draw_now),
                 paper: Paper::new(dom),
             })
@@ -486,6 +492,8 @@ impl Page {
         self.show_problems.stop();
         self.waiting.clear();
         self.current = false;
+        self.reverse_on.stop();
+        self.reversals.stop();
         match Statement::read(&self.pairs) {
             Ok(statement) => {
                 self.asking.begin(&self.pairs, &statement);
@@ -506,6 +514,7 @@ impl Page {
         self.problems.clear();
         self.law_fields.show(&self.pairs, &[]);
         self.filling = false;
+        self.reversals.begin(&self.pairs, &statement);
         let good = Good::new(statement);
         outcome::show(&self.dom, &good);
         timeline::show(&self.dom, &good);
@@ -590,7 +599,8 @@ impl Page {
         After::GoTo("sothat".into())
     }
 
-    fn clear_outcome(&self) {
+    fn clear_outcome(&mut self) {
+        self.reversals.clear();
         outcome::clear(&self.dom);
         timeline::clear(&self.dom);
         working::clear(&self.dom);
@@ -745,6 +755,7 @@ impl Page {
         if self.current && self.asking.is_done() {
             self.dom.mark_root("data-settled", Some(&text_mark(&self.pairs)));
             self.decide.start(SETTLED);
+            self.reverse_on.start(0);
         }
     }
 }

@@ -5,6 +5,8 @@ use web_sys::Performance;
 
 /// Reading, working out and showing a text.
 pub(crate) const WORK: &str = "aftercount.work";
+/// A slice of the search for what would reverse the outcome.
+pub(crate) const REVERSAL: &str = "aftercount.reversal";
 /// Drawing both pictures.
 pub(crate) const DRAW: &str = "aftercount.draw";
 

@@ -108,9 +108,9 @@ pub struct Reversal {
 }
 
 /// Looks to a power of ten of change.
-const A_DECADE: f64 = 16.0;
+pub const A_DECADE: f64 = 16.0;
 /// The same where each look takes the integrator.
-const A_DECADE_INTEGRATED: f64 = 6.0;
+pub const A_DECADE_INTEGRATED: f64 = 6.0;
 
 /// A change of no more than this part of a whole is the least there is: any change of that number does it,
 const LEAST: f64 = 1e-9;

@@ -11,6 +11,7 @@ pub mod map;
 pub mod math;
 pub mod meaning;
 pub mod reading;
+pub mod reversal;
 pub mod sentence;
 pub mod slot;
 pub mod timeline;

@@ -153,7 +153,7 @@ fn with_finding<T>(page: &Page, act: impl FnOnce(&Finding<'_>, &Good) -> T) -> O
         statement: &good.statement,
         outcome: &good.fight.outcome,
         asked: asked.as_deref(),
-        reversal: None,
+        reversal: page.nearest_reversal(),
         version: &version,
     };
     Some(act(&finding, good))
