@@ -11,6 +11,7 @@ mod dom;
 pub mod draw;
 mod form;
 mod hand;
+mod handles;
 pub mod interface;
 mod kept_rates;
 mod law_fields;

@@ -54,6 +54,8 @@ pub(crate) fn all(dom: &Dom, page: &Shared, signal: &AbortSignal) -> Result<(), 
     on(window, "storage", stored)?;
     on(document, "pointerdown", pointer)?;
     on(document, "pointermove", pointer)?;
+    on(document, "pointerup", let_go)?;
+    on(document, "pointercancel", let_go)?;
     on(document, "toggle", unfolded)?;
     on(document, "visibilitychange", hide)?;
     on(window, "pagehide", hide)?;
@@ -157,8 +159,13 @@ fn left(page: &mut Page, event: &Event) -> After {
     {
         return passing::chosen(&element);
     }
-    if element(event).is_some_and(|element| is_field(&element)) {
+    let Some(element) = element(event) else {
+        return After::Nothing;
+    };
+    if is_field(&element) {
         page.field_left();
+    } else if grip_of(&element).is_some() {
+        return page.handle_left();
     }
     After::Nothing
 }
@@ -294,7 +301,12 @@ fn key(page: &mut Page, event: &Event) -> After {
         event.prevent_default();
         return After::GoTo(next);
     }
-    if element.id() == "reading" {
+    if let Some(name) = grip_of(&element) {
+        if !event.ctrl_key() && !event.alt_key() && !event.meta_key() && page.handle_key(&name, &event.key())
+        {
+            event.prevent_default();
+        }
+    } else if element.id() == "reading" {
         if !event.ctrl_key() && !event.alt_key() && !event.meta_key() && page.reading_key(&event.key()) {
             event.prevent_default();
         }
@@ -351,6 +363,15 @@ fn pointer(page: &mut Page, event: &Event) -> After {
     let Some(element) = element(event) else {
         return After::Nothing;
     };
+    if let Some(pointer) = event.dyn_ref::<PointerEvent>() {
+        if let (true, Some(name)) = (event.type_() == "pointerdown", grip_of(&element)) {
+            return take(page, &element, &name, pointer);
+        }
+        if let Some(id) = page.dragged_on() {
+            drag(page, id, pointer);
+            return After::Nothing;
+        }
+    }
     let (Ok(Some(print)), Some(pointer)) = (element.closest(".print"), event.dyn_ref::<PointerEvent>())
     else {
         return After::Nothing;
@@ -369,6 +390,40 @@ fn pointer(page: &mut Page, event: &Event) -> After {
             y,
         });
     }
+    After::Nothing
+}
+
+/// The name of a handle on a picture.
+fn grip_of(element: &Element) -> Option<String> {
+    element.get_attribute("data-grip")
+}
+
+/// Takes hold of a handle: its pointer is the handle's wherever it goes.
+fn take(page: &mut Page, element: &Element, name: &str, pointer: &PointerEvent) -> After {
+    let mouse: &MouseEvent = pointer.as_ref();
+    if mouse.button() != 0 || !page.take_handle(name) {
+        return After::Nothing;
+    }
+    // Without capture the drag ends where the pointer leaves the page, which is no harm.
+    let _ = element.set_pointer_capture(pointer.pointer_id());
+    let event: &Event = pointer.as_ref();
+    event.prevent_default();
+    After::GoTo(element.id())
+}
+
+fn drag(page: &mut Page, id: &str, pointer: &PointerEvent) {
+    if let Some(canvas) = page.dom().element(id) {
+        let place = canvas.get_bounding_client_rect();
+        let mouse: &MouseEvent = pointer.as_ref();
+        page.drag_to((
+            f64::from(mouse.client_x()) - place.left(),
+            f64::from(mouse.client_y()) - place.top(),
+        ));
+    }
+}
+
+fn let_go(page: &mut Page, _event: &Event) -> After {
+    page.let_handle_go();
     After::Nothing
 }
 

@@ -2,6 +2,7 @@
 
 use crate::dom::{Dom, append, set};
 use crate::form;
+use crate::handles::Paper;
 use crate::law_fields::{self, law_of};
 use crate::working;
 use aftercount_core::continued::continued;
@@ -25,11 +26,19 @@ pub(crate) struct Good {
 }
 
 impl Good {
-    /// Works a statement out.
-    pub(crate) fn new(statement: Statement) -> Good {
+    /// Works a statement out; its pictures are held to a paper where something is dragged on them.
+    pub(crate) fn new(statement: Statement, paper: Option<&Paper>) -> Good {
         let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
-        let strength = picture::strength(&statement, &fight);
-        let orbit = picture::orbit(&statement, &fight);
+        let (strength, orbit) = match paper {
+            Some(paper) => (
+                picture::strength_on(&statement, &fight, &paper.strength),
+                picture::orbit_on(&statement, &fight, &paper.orbit),
+            ),
+            None => (
+                picture::strength(&statement, &fight),
+                picture::orbit(&statement, &fight),
+            ),
+        };
         Good {
             statement,
             fight,

@@ -1,5 +1,6 @@
 //! The page's state: the pairs, the last good figures, and what waits.
 
+mod by_hand;
 mod received;
 mod reversal;
 
@@ -9,6 +10,7 @@ use crate::canvas;
 use crate::dom::Dom;
 use crate::form;
 use crate::hand::{Hand, Writes};
+use crate::handles::Handles;
 use crate::kept_rates::KeptRates;
 use crate::law_fields::LawFields;
 use crate::listen::After;
@@ -70,6 +72,7 @@ pub(crate) struct Page {
     address: Address,
     live: Live,
     plates: Plates,
+    handles: Handles,
     passing: Passing,
     show_problems: Timer,
     write: Timer,
@@ -120,6 +123,7 @@ impl Page {
                 address: Address::new(dom),
                 live: Live::new(dom),
                 plates: Plates::new(dom),
+                handles: Handles::new(dom),
                 passing: Passing::new(dom),
                 show_problems: Timer::new(&dom.window, page, Page::show_waiting),
                 write: Timer::new(&dom.window, page, Page::write_address),
@@ -515,7 +519,7 @@ impl Page {
         self.law_fields.show(&self.pairs, &[]);
         self.filling = false;
         self.reversals.begin(&self.pairs, &statement);
-        let good = Good::new(statement);
+        let good = Good::new(statement, self.handles.paper());
         outcome::show(&self.dom, &good);
         timeline::show(&self.dom, &good);
         working::show(&self.dom, &good, &text_mark(&self.pairs));
@@ -601,6 +605,7 @@ impl Page {
 
     fn clear_outcome(&mut self) {
         self.reversals.clear();
+        self.handles.clear();
         outcome::clear(&self.dom);
         timeline::clear(&self.dom);
         working::clear(&self.dom);
@@ -750,6 +755,10 @@ impl Page {
         if let Err(error) = plates.and_then(|()| self.asking.draw(&canvas::ink(&self.dom))) {
             web_sys::console::error_1(&error.into());
             return;
+        }
+        if let Some(good) = &self.good {
+            let (strength, orbit) = self.plates.fields();
+            self.handles.show(good, strength, orbit);
         }
         self.mark_what_rolls();
         if self.current && self.asking.is_done() {

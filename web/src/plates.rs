@@ -52,6 +52,11 @@ impl Plates {
         .map(|field| Some(field.times(canvas.zoom)))
     }
 
+    /// Where the values of both pictures stand, as they were drawn last.
+    pub(crate) fn fields(&self) -> (Option<Layout>, Option<Layout>) {
+        (self.strength, self.orbit)
+    }
+
     /// A key on the reading line; whether it was one of its keys.
     pub(crate) fn reading_key(&mut self, good: &Good, key: &str) -> bool {
         self.reading.key(good, key)

@@ -2,6 +2,8 @@
 
 mod asked;
 mod axis;
+pub mod handles;
+mod held;
 mod map;
 mod orbit;
 mod paths;
@@ -9,9 +11,10 @@ mod strength;
 
 pub use asked::asked;
 pub use axis::{Axis, Tick};
+pub use held::Axes;
 pub use map::{Ground, Tone, map};
-pub use orbit::orbit;
-pub use strength::strength;
+pub use orbit::{orbit, orbit_on};
+pub use strength::{strength, strength_on};
 
 use crate::sides::{Both, Side};
 

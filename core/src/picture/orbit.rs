@@ -1,7 +1,7 @@
 //! One side against the other: the parametric curve of the engagement among its neighbours.
 
 use super::paths::{POINTS, along_orbit, larger, lost, neighbours, parity, path, to_the_last};
-use super::{Axis, Line, Picture, Role, STEPS, Spot, Table, steps};
+use super::{Axes, Axis, Line, Picture, Role, STEPS, Spot, Table, steps};
 use crate::fight::{Fight, break_line};
 use crate::outcome::{Breaks, Ended, ToTheLast};
 use crate::piece::Piece;
@@ -19,6 +19,15 @@ use crate::words::timeline::{Moment, timeline};
 ///
 /// `None` where the fight was worked out without its trajectory.
 pub fn orbit(statement: &Statement, fight: &Fight) -> Option<Picture> {
+    on_axes(statement, fight, None)
+}
+
+/// The same on the axes of another, what leaves them being cut off.
+pub fn orbit_on(statement: &Statement, fight: &Fight, axes: &Axes) -> Option<Picture> {
+    on_axes(statement, fight, Some(axes)).map(|picture| picture.held_to(axes))
+}
+
+fn on_axes(statement: &Statement, fight: &Fight, axes: Option<&Axes>) -> Option<Picture> {
     let trajectory = fight.trajectory.as_ref()?;
     let counted = &statement.counted;
     let names = &statement.names;
@@ -28,8 +37,11 @@ pub fn orbit(statement: &Statement, fight: &Fight) -> Option<Picture> {
         let highest = fight_line.iter().map(of).fold(0.0, f64::max);
         if highest > 0.0 { highest } else { 1.0 }
     };
-    let across = Axis::new(format!("{} ({counted})", names.x), highest(|at| at.0) * 1.12, 5);
-    let up = Axis::new(format!("{} ({counted})", names.y), highest(|at| at.1) * 1.12, 5);
+    let own = || Axes {
+        across: Axis::new(format!("{} ({counted})", names.x), highest(|at| at.0) * 1.12, 5),
+        up: Axis::new(format!("{} ({counted})", names.y), highest(|at| at.1) * 1.12, 5),
+    };
+    let Axes { across, up } = axes.cloned().unwrap_or_else(own);
     let corner = Both {
         x: across.to,
         y: up.to,

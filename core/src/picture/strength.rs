@@ -1,6 +1,6 @@
 //! Strength over time.
 
-use super::{Axis, Line, POINTS, Picture, Role, STEPS, Spot, Table, steps};
+use super::{Axes, Axis, Line, POINTS, Picture, Role, STEPS, Spot, Table, steps};
 use crate::fight::{Fight, break_line as break_line_at_start};
 use crate::outcome::{Breaks, Ended};
 use crate::sides::{Both, Side};
@@ -14,10 +14,22 @@ use crate::words::timeline::{Moment, timeline};
 ///
 /// `None` where the fight was worked out without its trajectory.
 pub fn strength(statement: &Statement, fight: &Fight) -> Option<Picture> {
+    on_axes(statement, fight, None)
+}
+
+/// The same on the axes of another, what leaves them being cut off.
+pub fn strength_on(statement: &Statement, fight: &Fight, axes: &Axes) -> Option<Picture> {
+    on_axes(statement, fight, Some(axes)).map(|picture| picture.held_to(axes))
+}
+
+fn on_axes(statement: &Statement, fight: &Fight, axes: Option<&Axes>) -> Option<Picture> {
     let trajectory = fight.trajectory.as_ref()?;
     let shown = trajectory.shown;
-    let across = Axis::new(format!("time ({})", statement.unit.symbol()), shown * 1.06, 6);
-    let up = Axis::new(statement.counted.clone(), highest(trajectory) * 1.08, 5);
+    let own = || Axes {
+        across: Axis::new(format!("time ({})", statement.unit.symbol()), shown * 1.06, 6),
+        up: Axis::new(statement.counted.clone(), highest(trajectory) * 1.08, 5),
+    };
+    let Axes { across, up } = axes.cloned().unwrap_or_else(own);
 
     let mut lines: Vec<Line> = Side::BOTH
         .into_iter()

@@ -94,15 +94,14 @@ impl Search {
     }
 
     fn conclude(&mut self, here: &Logs, step: f64, both: bool, sign: f64) {
-        for which in 0..3 {
+        for (which, own) in here.iter().enumerate() {
             let at = |place: usize| self.looks[place][which];
             let (coarse, fine, order) = if both {
                 ((at(0) - at(1)) / (2.0 * step), (at(2) - at(3)) / step, 4.0)
             } else {
                 // Three points on one side, by parabolas.
-                let parabola = |near: f64, far: f64, step: f64| {
-                    sign * (4.0 * near - far - 3.0 * here[which]) / (2.0 * step)
-                };
+                let parabola =
+                    |near: f64, far: f64, step: f64| sign * (4.0 * near - far - 3.0 * own) / (2.0 * step);
                 (
                     parabola(at(1), at(0), step),
                     parabola(at(2), at(1), 0.5 * step),

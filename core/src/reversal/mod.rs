@@ -262,7 +262,8 @@ impl Reversal {
         } else {
             (value - found.value).abs() <= FURTHER * (found.value - now).abs()
         };
-        if !last && !(near && slot.limits.hold(value)) {
+        let written = near && slot.limits.hold(value);
+        if !last && !written {
             self.stage = Some(Stage::Write(found, digits + 1));
             return;
         }

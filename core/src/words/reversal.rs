@@ -228,7 +228,7 @@ mod tests {
         );
         assert_eq!(
             line("x.start=600&x.fire=none&y.start=400&y.fire=none"),
-            "Nearest reversal: no number, changed alone, makes the outcome another."
+            "Nearest reversal: the least change of Side X's wastage will do; then Side X fades, and Side Y is left."
         );
         assert_eq!(
             line("x.start=600&x.rate=0.04&y.start=400&y.rate=0.09"),

@@ -50,6 +50,12 @@ impl Layout {
         let part = ((pixel - self.left) / (self.right - self.left)).clamp(0.0, 1.0);
         self.across.0 + part * (self.across.1 - self.across.0)
     }
+
+    /// The value up at a pixel, kept inside the field.
+    pub fn value_up_at(&self, pixel: f64) -> f64 {
+        let part = ((self.foot - pixel) / (self.foot - self.top)).clamp(0.0, 1.0);
+        self.up.0 + part * (self.up.1 - self.up.0)
+    }
 }
 
 #[cfg(test)]
@@ -70,6 +76,8 @@ mod tests {
         assert_eq!(field.value_at(90.0), 2.0);
         assert_eq!(field.value_at(-5.0), 0.0);
         assert_eq!(field.value_at(1e9), 8.0);
+        assert_eq!(field.value_up_at(60.0), 250.0);
+        assert_eq!(field.value_up_at(-5.0), 500.0);
         let larger = field.times(2.0);
         assert_eq!(larger.place((2.0, 250.0)), (180.0, 120.0));
         assert_eq!(larger.value_at(180.0), 2.0);
