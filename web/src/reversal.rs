@@ -12,9 +12,6 @@ use web_sys::Element;
 /// How long the page works at a stretch, in milliseconds.
 const SLICE: f64 = 8.0;
 
-/// Fights between two looks at the clock: one may take as long as a slice.
-const AT_ONCE: u32 = 4;
-
 /// The search for what would reverse the outcome of the text, and what it found.
 pub(crate) struct Reversals {
     dom: Dom,
@@ -76,12 +73,11 @@ impl Reversals {
         let clock = self.dom.window.performance();
         let now = || clock.as_ref().map_or(0.0, web_sys::Performance::now);
         let from = now();
+        // One fight at a time: some take as long as a slice.
         while now() - from < SLICE {
-            for _ in 0..AT_ONCE {
-                if !search.step() {
-                    self.show();
-                    return false;
-                }
+            if !search.step() {
+                self.show();
+                return false;
             }
         }
         let part = (search.progress() * 100.0).floor();

@@ -191,6 +191,22 @@ impl Browser {
         self.call("input.performActions", all);
     }
 
+    /// Takes hold of an element in its middle with the mouse, and moves it by these amounts, in CSS pixels from where it was.
+    #[track_caller]
+    pub fn drag(&self, selector: &str, by: &[(f64, f64)]) {
+        let (x, y) = self.place(selector, 0.5, 0.5);
+        let mouse = |kind: &str, (dx, dy): (f64, f64), buttons: u32| {
+            let event = json!({"type": kind, "x": x + dx, "y": y + dy, "button": "left", "buttons": buttons,
+                               "clickCount": 1});
+            self.devtools("Input.dispatchMouseEvent", event);
+        };
+        mouse("mousePressed", (0.0, 0.0), 1);
+        for step in by {
+            mouse("mouseMoved", *step, 1);
+        }
+        mouse("mouseReleased", by.last().copied().unwrap_or_default(), 0);
+    }
+
     fn place(&self, selector: &str, across: f64, down: f64) -> (f64, f64) {
         let script = "const e = document.querySelector(arguments[0]); e.scrollIntoView({block: 'center'});
                       const r = e.getBoundingClientRect(); return [r.left, r.top, r.width, r.height];";
