@@ -10,9 +10,9 @@ use aftercount_core::put::put;
 use aftercount_core::slots::{Place, slots};
 use web_sys::{Element, HtmlElement};
 
-/// The pictures of a drag: they stay on the axes that they had at its beginning.
+/// The axes of both pictures while something is dragged: those that they had at its beginning.
 #[derive(Clone)]
-pub(crate) struct Paper {
+pub(crate) struct HeldAxes {
     /// That of strength over time.
     pub(crate) strength: Axes,
     /// That of one side against the other.
@@ -23,7 +23,7 @@ pub(crate) struct Paper {
 struct Drag {
     grip: Grip,
     field: Layout,
-    paper: Paper,
+    held: HeldAxes,
 }
 
 /// The handles as they stand, and what is dragged.
@@ -42,9 +42,9 @@ impl Handles {
         }
     }
 
-    /// The paper that pictures are held to while something is dragged.
-    pub(crate) fn paper(&self) -> Option<&Paper> {
-        self.drag.as_ref().map(|drag| &drag.paper)
+    /// The axes that pictures are held to while something is dragged.
+    pub(crate) fn held(&self) -> Option<&HeldAxes> {
+        self.drag.as_ref().map(|drag| &drag.held)
     }
 
     /// Puts every handle where it belongs; none in a frame, where nothing is dragged.
@@ -132,11 +132,11 @@ impl Handles {
         let Some(field) = (if grip.is_on_orbit() { orbit } else { strength }) else {
             return false;
         };
-        let paper = Paper {
+        let held = HeldAxes {
             strength: Axes::of(over_time),
             orbit: Axes::of(against),
         };
-        self.drag = Some(Drag { grip, field, paper });
+        self.drag = Some(Drag { grip, field, held });
         true
     }
 
@@ -150,9 +150,9 @@ impl Handles {
     pub(crate) fn dragged(&self, pairs: &Pairs, good: &Good, (x, y): (f64, f64)) -> Option<Pairs> {
         let drag = self.drag.as_ref()?;
         let axes = if drag.grip.is_on_orbit() {
-            &drag.paper.orbit
+            &drag.held.orbit
         } else {
-            &drag.paper.strength
+            &drag.held.strength
         };
         let to = (drag.field.value_at(x), drag.field.value_up_at(y));
         written(

@@ -2,7 +2,7 @@
 
 use crate::dom::{Dom, append, set};
 use crate::form;
-use crate::handles::Paper;
+use crate::handles::HeldAxes;
 use crate::law_fields::{self, law_of};
 use crate::working;
 use aftercount_core::continued::continued;
@@ -26,13 +26,13 @@ pub(crate) struct Good {
 }
 
 impl Good {
-    /// Works a statement out; its pictures are held to a paper where something is dragged on them.
-    pub(crate) fn new(statement: Statement, paper: Option<&Paper>) -> Good {
+    /// Works a statement out; its pictures are held to axes where something is dragged on them.
+    pub(crate) fn new(statement: Statement, held: Option<&HeldAxes>) -> Good {
         let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
-        let (strength, orbit) = match paper {
-            Some(paper) => (
-                picture::strength_on(&statement, &fight, &paper.strength),
-                picture::orbit_on(&statement, &fight, &paper.orbit),
+        let (strength, orbit) = match held {
+            Some(held) => (
+                picture::strength_on(&statement, &fight, &held.strength),
+                picture::orbit_on(&statement, &fight, &held.orbit),
             ),
             None => (
                 picture::strength(&statement, &fight),

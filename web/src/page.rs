@@ -519,7 +519,7 @@ impl Page {
         self.law_fields.show(&self.pairs, &[]);
         self.filling = false;
         self.reversals.begin(&self.pairs, &statement);
-        let good = Good::new(statement, self.handles.paper());
+        let good = Good::new(statement, self.handles.held());
         outcome::show(&self.dom, &good);
         timeline::show(&self.dom, &good);
         working::show(&self.dom, &good, &text_mark(&self.pairs));

@@ -2,7 +2,7 @@
 //! side breaks first, and where no value does that, the nearest at which nobody does.
 //!
 //! Where the state equation gives the value in closed form it is taken from there; else the number is looked
-//! at from its present value outwards ([`outward`]), on both sides, and the first change is closed in on ([`close_in`]). All
+//! at from its present value outwards (`outward`), on both sides, and the first change is closed in on (`close_in`). All
 //! of it is done one fight at a time, so that a page can stop between two of them.
 
 mod aim;
