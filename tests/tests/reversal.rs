@@ -208,7 +208,7 @@ struct Tally {
 fn check(number: u64, tally: &mut Tally) {
     let link = &engagement(number)[..];
     let (pairs, statement) = read(link);
-    let search = Reversal::new(&pairs, &statement).only(|slot| slot.written || number % 8 == 0);
+    let search = Reversal::new(&pairs, &statement).only(|slot| slot.written || number.is_multiple_of(8));
     let base = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
     let mut dice = Dice(0x1234_5678_9abc_def1);
     for entry in search.finished().into_entries() {
