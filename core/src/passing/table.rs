@@ -162,15 +162,16 @@ fn written(finding: &Finding<'_>, rows: &[Row], signs: Signs) -> String {
 
 /// A line, quoted where it must be. By hand: the crate for it brings a printer of numbers that weighs more than the rest.
 fn line(cells: &[String], signs: Signs) -> String {
+    let part = if signs == Signs::Commas { ";" } else { "," };
     let quoted = cells.iter().map(|cell| {
-        if cell.contains([',', ';', '"', '\r', '\n']) {
+        if cell.contains(part) || cell.contains(['"', '\r', '\n']) {
             format!("\"{}\"", cell.replace('"', "\"\""))
         } else {
             cell.clone()
         }
     });
     let quoted: Vec<String> = quoted.collect();
-    let mut line = quoted.join(if signs == Signs::Commas { ";" } else { "," });
+    let mut line = quoted.join(part);
     line += "\r\n";
     line
 }

@@ -77,6 +77,9 @@ pub struct Entry {
 
 /// The digits that a value is written with.
 const FEWEST: usize = 4;
+
+/// A hair, in parts of a value or of its change: on either side of it the outcome must be clear.
+const HAIR: f64 = 1e-9;
 const MOST: usize = 17;
 
 /// What is being done for the number at hand.
@@ -275,6 +278,10 @@ impl Reversal {
             self.stage = Some(Stage::Write(found, digits + 1));
             return;
         }
+        if !least && !self.is_clean(slot, now, found) {
+            self.stage = Some(Stage::Elasticity);
+            return;
+        }
         let by = match Measure::told(slot, now) {
             Told::Relative => (found.value - now) / now.abs(),
             Told::Absolute => found.value - now,
@@ -291,6 +298,26 @@ impl Reversal {
             gives_way: gives_way(&outcome),
         });
         self.stage = Some(Stage::Elasticity);
+    }
+
+    /// Whether the outcome is another a hair behind the value that was found, and is not a hair before it. Where a side fades
+    /// to less than a double can hold, it is neither: what seems to change there is the rounding alone.
+    fn is_clean(&mut self, slot: &Slot, now: f64, found: Found) -> bool {
+        let outwards = (found.value - now).signum();
+        let hair = HAIR * found.value.abs().max((found.value - now).abs()) * outwards;
+        let mut changes = |value: f64| {
+            self.engagement.put(slot.place, value);
+            let outcome = fight(&self.engagement, Effort::Ending).outcome;
+            self.fights += 1;
+            self.aim.judge(&outcome) == found.standing
+        };
+        let [before, at, one, three] = [-1.0, 0.0, 1.0, 3.0].map(|hairs| found.value + hairs * hair);
+        let behind =
+            |value: f64, changes: &mut dyn FnMut(f64) -> bool| !slot.limits.hold(value) || changes(value);
+        let clean =
+            changes(at) && !changes(before) && (behind(one, &mut changes) || behind(three, &mut changes));
+        self.engagement.put(slot.place, now);
+        clean
     }
 
     fn small_change(&mut self, slot: Slot, now: f64) {

@@ -128,7 +128,7 @@ fn row(statement: &Statement, entry: &Entry) -> Row {
         time: percent(entry.elasticity.time),
         put: change.map(|change| {
             let shown = value(statement, &entry.slot, &change.written);
-            (format!("put {shown} in"), change.written.clone())
+            (format!("put in {shown}"), change.written.clone())
         }),
         slot: entry.slot.clone(),
     }
