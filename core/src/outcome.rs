@@ -67,6 +67,13 @@ pub enum Ended {
     Unfinished,
 }
 
+impl Ended {
+    /// Whether the fight goes on without end: whoever fades in it fades for ever.
+    pub fn is_never(self) -> bool {
+        matches!(self, Ended::Limit | Ended::Equilibrium | Ended::Growth)
+    }
+}
+
 /// Who would be left if no side broke and no clock ran.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize)]
 #[serde(rename_all = "lowercase")]

@@ -13,7 +13,7 @@ impl Run {
     /// What it leaves, and the work that it took to find out who would be left in the end.
     pub(crate) fn outcome(&self, engagement: &Engagement, effort: Effort) -> (Outcome, Work) {
         let whole = effort != Effort::Ending;
-        let is_asked = whole || self.breaks == Breaks::Neither && self.ended == Ended::Limit;
+        let is_asked = whole || self.breaks == Breaks::Neither && self.ended.is_never();
         let sides = Both::of(|side| {
             let ledger = &self.ledger[side];
             SideOutcome {

@@ -40,6 +40,10 @@ impl Aim {
 
     /// How another outcome stands to it.
     pub(crate) fn judge(self, outcome: &Outcome) -> Standing {
+        // What was not worked out to its end shows no change.
+        if outcome.ended == Ended::Unfinished {
+            return Standing::Same;
+        }
         match self {
             Aim::Broken(loser) => match outcome.breaks {
                 Breaks::X | Breaks::Y if outcome.breaks.includes(loser) => Standing::Same,
@@ -64,8 +68,8 @@ pub(crate) fn gives_way(outcome: &Outcome) -> Option<Side> {
     match (outcome.breaks, outcome.ended, outcome.to_the_last) {
         (Breaks::X, ..) => Some(Side::X),
         (Breaks::Y, ..) => Some(Side::Y),
-        (Breaks::Neither, Ended::Limit, Some(ToTheLast::X)) => Some(Side::Y),
-        (Breaks::Neither, Ended::Limit, Some(ToTheLast::Y)) => Some(Side::X),
+        (Breaks::Neither, ended, Some(ToTheLast::X)) if ended.is_never() => Some(Side::Y),
+        (Breaks::Neither, ended, Some(ToTheLast::Y)) if ended.is_never() => Some(Side::X),
         _ => None,
     }
 }

@@ -17,7 +17,7 @@ pub enum Told {
 }
 
 /// See [`Measure::furthest`].
-const SATURATED: f64 = 1e4;
+const SATURATED: f64 = 1e2;
 const NEVER: f64 = 1e2;
 
 /// What changes of an engagement's numbers are measured by.
@@ -82,7 +82,7 @@ impl Measure {
     }
 
     /// The furthest value of `slot` that is worth a look: a loss per unit of time beyond that which takes a side within a
-    /// ten-thousandth of the engagement does no more than that one, and a time a hundred times as far as its end is never.
+    /// hundredth of the engagement does hardly more than that one, and a time a hundred times as far as its end is never.
     pub(crate) fn furthest(&self, slot: &Slot, value: f64) -> f64 {
         match slot.unit {
             Unit::FractionPerTime | Unit::EnemyFractionPerTime | Unit::EnemyPerTime => {
