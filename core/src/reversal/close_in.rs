@@ -23,23 +23,32 @@ const NEAR: f64 = 1e-12;
 /// Of so many looks one is a halving, whatever the secant says.
 const HALVING: u32 = 3;
 
+/// Looks at one change, at most.
+const MOST_LOOKS: u32 = 400;
+
 impl Bracket {
     /// Whether the ends are as near to each other as is asked; `least` is a distance that counts as none.
     pub(crate) fn is_closed(&self, least: f64) -> bool {
         let width = (self.far - self.near).abs();
-        width <= self.tolerance(least) || self.middle() == self.near || self.middle() == self.far
+        // Every third look halves: no bracket of doubles takes more.
+        self.looks >= MOST_LOOKS
+            || width <= self.tolerance(least)
+            || self.middle() == self.near
+            || self.middle() == self.far
     }
 
     /// Where to look next.
     pub(crate) fn next(&self, least: f64) -> f64 {
         let width = self.far - self.near;
-        let Some((near, far)) = self.leads.filter(|_| self.looks % HALVING != HALVING - 1) else {
+        let secant = self.leads.map(|(near, far)| near / (near - far));
+        // Where both leads have come to 0 there is no secant.
+        let usable = secant.filter(|secant| secant.is_finite() && self.looks % HALVING != HALVING - 1);
+        let Some(secant) = usable else {
             return self.middle();
         };
         // No nearer to an end than leaves the look some use: a root that lies at one end is then closed in from both sides.
         let part = (0.5 * self.tolerance(least) / width.abs()).min(0.5);
-        let secant = (near / (near - far)).clamp(part, 1.0 - part);
-        self.near + width * secant
+        self.near + width * secant.clamp(part, 1.0 - part)
     }
 
     /// Takes up what was seen at `value`: whether it lies behind the change, and the lead there.
@@ -118,6 +127,8 @@ mod tests {
                 "{looks}"
             );
         }
+        let (found, _) = closed(1.0, 1.2, 1.1, |_| Some(0.0));
+        assert!((found - 1.1).abs() <= 2e-12, "{found}");
         let (_, looks) = closed(1.0, 1.2, 1.1, |value| Some(value - 1.1));
         assert!(looks < 12, "{looks}");
     }

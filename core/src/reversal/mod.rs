@@ -88,7 +88,7 @@ enum Stage {
     /// Its value is searched.
     Search(Box<Search>),
     /// It is written in as few digits as will do, these next.
-    Write(Found, usize),
+    Write(Box<Search>, Found, usize),
     /// Nothing is left but what a small change does.
     Elasticity,
 }
@@ -173,11 +173,11 @@ impl Reversal {
                 self.fights += search.fights - before;
                 self.stage = Some(match (goes_on, search.found()) {
                     (true, _) => Stage::Search(search),
-                    (false, Some(found)) => Stage::Write(found, FEWEST - 1),
+                    (false, Some(found)) => Stage::Write(search, found, FEWEST - 1),
                     (false, None) => Stage::Elasticity,
                 });
             }
-            Some(Stage::Write(found, digits)) => self.write(&slot, now, found, digits),
+            Some(Stage::Write(search, found, digits)) => self.write(search, &slot, now, found, digits),
             Some(Stage::Elasticity) => self.small_change(slot, now),
         }
         true
@@ -249,7 +249,7 @@ impl Reversal {
     }
 
     /// One try at writing a value that was found.
-    fn write(&mut self, slot: &Slot, now: f64, found: Found, digits: usize) {
+    fn write(&mut self, mut search: Box<Search>, slot: &Slot, now: f64, found: Found, digits: usize) {
         let whole = self.measure.whole(slot, now);
         let least = (found.value - now).abs() <= LEAST * whole;
         let last = digits >= MOST;
@@ -267,7 +267,7 @@ impl Reversal {
         };
         let written = near && slot.limits.hold(value);
         if !last && !written {
-            self.stage = Some(Stage::Write(found, digits + 1));
+            self.stage = Some(Stage::Write(search, found, digits + 1));
             return;
         }
         self.engagement.put(slot.place, value);
@@ -275,11 +275,13 @@ impl Reversal {
         self.engagement.put(slot.place, now);
         self.fights += 1;
         if !last && self.aim.judge(&outcome) != found.standing {
-            self.stage = Some(Stage::Write(found, digits + 1));
+            self.stage = Some(Stage::Write(search, found, digits + 1));
             return;
         }
         if !least && !self.is_clean(slot, now, found) {
-            self.stage = Some(Stage::Elasticity);
+            // What leaves it undecided may still be clear.
+            search.discard();
+            self.stage = Some(Stage::Search(search));
             return;
         }
         let by = match Measure::told(slot, now) {

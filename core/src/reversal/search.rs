@@ -133,6 +133,14 @@ impl Search {
         self.found
     }
 
+    /// Takes back what was found, and all that would be found on the ways out: what is left is where nobody breaks.
+    pub(crate) fn discard(&mut self) {
+        self.found = None;
+        for way in &mut self.ways {
+            way.over = true;
+        }
+    }
+
     /// The way whose next look is the nearest, of those that may still have something nearer than what is found.
     fn next_way(&mut self) -> Option<usize> {
         if let Some(found) = self.found {
