@@ -75,6 +75,8 @@ pub struct Asked {
     pub nearest: Option<Nearest>,
     /// How many fights it took.
     pub fights: usize,
+    /// Whether it was ended before all was looked at, since the fights are so dear.
+    pub cut_short: bool,
     /// Those fights, in order of the value.
     pub samples: Vec<Sample>,
 }
@@ -201,6 +203,9 @@ impl Serialize for Asked {
         }
         if let Some(nearest) = &self.nearest {
             asked.serialize_field("nearest", nearest)?;
+        }
+        if self.cut_short {
+            asked.serialize_field("cut_short", &true)?;
         }
         asked.end()
     }

@@ -1,12 +1,13 @@
 //! The way to the answer of one question, in slices as small as is wanted.
 
+use super::MOST_EVALUATIONS;
 use super::answer::{Asked, Boundary, Met, Nearest, Segment};
 use super::golden::Lowest;
 use super::outright::outright;
 use super::span::{Why, span};
 use super::story::{Class, Sample};
-use crate::family::{Change, Family, Scan, Span, points};
-use crate::fight::{Effort, fight};
+use crate::family::{Change, Family, Scan, Span, Tally, points};
+use crate::fight::Effort;
 use crate::goals::Goal;
 use crate::order::sort_by;
 use crate::pairs::Pairs;
@@ -49,12 +50,12 @@ enum Stage {
 #[derive(Clone, Debug)]
 pub struct Inquiry {
     slot: Slot,
-    goals: Vec<Goal>,
     span: Span,
     why: Why,
-    family: Family<1>,
+    looks: Looks,
     scan: Scan<Class>,
-    samples: Vec<Sample>,
+    most: u64,
+    cut_short: bool,
     stage: Stage,
 }
 
@@ -82,10 +83,15 @@ impl Inquiry {
         let mut points = points(span, STEPS, &besides);
         points.retain(|point| slot.limits.hold(*point));
         Some(Inquiry {
-            family: Family::new(engagement, [slot.place]),
-            goals: statement.so_that.clone(),
+            looks: Looks {
+                family: Family::new(engagement, [slot.place]),
+                goals: statement.so_that.clone(),
+                samples: Vec::new(),
+                tally: Tally::default(),
+            },
             scan: Scan::new(points, PRECISION),
-            samples: Vec::new(),
+            most: MOST_EVALUATIONS,
+            cut_short: false,
             stage: Stage::Scanning,
             slot,
             span,
@@ -99,27 +105,46 @@ impl Inquiry {
         while left > 0 && !matches!(self.stage, Stage::Done) {
             left -= 1;
             self.step();
+            if self.looks.tally.evaluations > self.most && !matches!(self.stage, Stage::Done) {
+                self.cut_short();
+            }
         }
         matches!(self.stage, Stage::Done)
     }
 
+    /// The same search, to end when its fights have taken so many evaluations instead of [`MOST_EVALUATIONS`].
+    pub fn with_at_most(mut self, evaluations: u64) -> Inquiry {
+        self.most = evaluations;
+        self
+    }
+
+    /// Ends the search with what is known; what is not looked at yet is no part of what was asked any more.
+    fn cut_short(&mut self) {
+        if matches!(self.stage, Stage::Scanning) {
+            self.scan.end();
+            let last = self.scan.seen().last();
+            self.span.high = last.map_or(self.span.high, |(value, _)| value);
+        }
+        self.scan.end();
+        self.cut_short = true;
+        self.stage = Stage::Done;
+    }
+
     /// How many fights it took so far.
     pub fn fights(&self) -> usize {
-        self.samples.len()
+        self.looks.samples.len()
     }
 
     /// The part of the work that is surely behind, 0 to 1.
     pub fn progress(&self) -> f64 {
         let expected = f64::from(2 * STEPS) + 150.0;
-        (self.samples.len() as f64 / expected).min(0.99)
+        (self.looks.samples.len() as f64 / expected).min(0.99)
     }
 
     fn step(&mut self) {
         match &mut self.stage {
             Stage::Scanning => {
-                let (family, goals, samples) = (&mut self.family, &self.goals, &mut self.samples);
-                let class = |value: f64| look(family, goals, samples, value).class();
-                if self.scan.go_on(1, class) {
+                if self.scan.go_on(1, |value| self.looks.at(value).class()) {
                     self.stage = Stage::Dipping(self.dips());
                 }
             }
@@ -127,9 +152,7 @@ impl Inquiry {
                 Some(Some(value)) => self.dip(value),
                 Some(None) => drop(dips.pop()),
                 None if !self.scan.is_done() => {
-                    let (family, goals, samples) = (&mut self.family, &self.goals, &mut self.samples);
-                    self.scan
-                        .go_on(1, |value| look(family, goals, samples, value).class());
+                    self.scan.go_on(1, |value| self.looks.at(value).class());
                 }
                 None => {
                     self.stage = Stage::Touching(self.boundaries().iter().map(|(_, at, _)| *at).collect())
@@ -137,13 +160,13 @@ impl Inquiry {
             },
             Stage::Touching(values) => match values.pop() {
                 Some(value) => {
-                    look(&mut self.family, &self.goals, &mut self.samples, value);
+                    self.looks.at(value);
                 }
                 None => self.stage = self.nearing(),
             },
             Stage::Nearing(search) => match search.next() {
                 Some(value) => {
-                    let sample = look(&mut self.family, &self.goals, &mut self.samples, value);
+                    let sample = self.looks.at(value);
                     search.take(value, sample.worst.map_or(0.0, |worst| worst.part));
                 }
                 None => self.stage = Stage::Done,
@@ -180,12 +203,13 @@ impl Inquiry {
     /// One evaluation in the last dip; where another outcome is found the dip is over, and the scan has two changes more.
     fn dip(&mut self, value: f64) {
         let around = self
+            .looks
             .samples
             .iter()
             .copied()
             .filter(|sample| sample.value < value)
             .max_by(|a, b| a.value.total_cmp(&b.value));
-        let sample = look(&mut self.family, &self.goals, &mut self.samples, value);
+        let sample = self.looks.at(value);
         let Stage::Dipping(dips) = &mut self.stage else {
             return;
         };
@@ -204,7 +228,7 @@ impl Inquiry {
     }
 
     fn nearing(&self) -> Stage {
-        if self.goals.is_empty() || self.samples.iter().any(|sample| sample.met) {
+        if self.looks.goals.is_empty() || self.looks.samples.iter().any(|sample| sample.met) {
             return Stage::Done;
         }
         let sorted = self.sorted();
@@ -219,7 +243,7 @@ impl Inquiry {
     }
 
     fn sorted(&self) -> Vec<Sample> {
-        let mut sorted = self.samples.clone();
+        let mut sorted = self.looks.samples.clone();
         sort_by(&mut sorted, |a, b| a.value.total_cmp(&b.value));
         sorted
     }
@@ -241,7 +265,7 @@ impl Inquiry {
         if from == to {
             return None;
         }
-        let mut family = self.family.clone();
+        let mut family = self.looks.family.clone();
         let near = outright(family.member([change.at()]), self.slot.place)?;
         let slack = 1e-9 * near.abs();
         (change.below - slack <= near && near <= change.above + slack).then_some(near)
@@ -269,7 +293,7 @@ impl Inquiry {
             .map(|one| (one.0.from, one.0.to, boundary(one)))
             .collect();
         let outcomes = first.map_or(Vec::new(), |first| Segment::all(self.span, first.story, &told));
-        let met = (!self.goals.is_empty()).then(|| {
+        let met = (!self.looks.goals.is_empty()).then(|| {
             let first = first.is_some_and(|first| first.met);
             Met::all(self.span, first, &told, &samples)
         });
@@ -279,22 +303,34 @@ impl Inquiry {
         };
         Asked {
             slot: self.slot.clone(),
-            goals: self.goals.clone(),
+            goals: self.looks.goals.clone(),
             span: self.span,
             why: self.why,
             outcomes,
             met,
             nearest,
-            fights: self.samples.len(),
+            fights: self.looks.samples.len(),
+            cut_short: self.cut_short,
             samples,
         }
     }
 }
 
-fn look(family: &mut Family<1>, goals: &[Goal], samples: &mut Vec<Sample>, value: f64) -> Sample {
-    let engagement = family.member([value]);
-    let outcome = fight(engagement, Effort::Outcome).outcome;
-    let sample = Sample::of(value, engagement, &outcome, goals);
-    samples.push(sample);
-    sample
+/// The family along the number, and what was seen of it.
+#[derive(Clone, Debug)]
+struct Looks {
+    family: Family<1>,
+    goals: Vec<Goal>,
+    samples: Vec<Sample>,
+    tally: Tally,
+}
+
+impl Looks {
+    fn at(&mut self, value: f64) -> Sample {
+        let engagement = self.family.member([value]);
+        let outcome = self.tally.fight(engagement, Effort::Outcome);
+        let sample = Sample::of(value, engagement, &outcome, &self.goals);
+        self.samples.push(sample);
+        sample
+    }
 }

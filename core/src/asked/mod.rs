@@ -21,3 +21,7 @@ pub use put::{Putting, near_text};
 pub use reply::{FlipLine, Mapped, Reply};
 pub use span::Why;
 pub use story::{Sample, Story, Worst};
+
+/// The answer to a question takes no more evaluations of functions than this and one fight more: where fights are so dear
+/// that it would, it says what it knows by then, and that it was cut short.
+pub const MOST_EVALUATIONS: u64 = 100_000_000;

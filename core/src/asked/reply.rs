@@ -29,6 +29,9 @@ pub struct Mapped {
     pub to: [f64; 2],
     /// The lines.
     pub flips: Vec<FlipLine>,
+    /// Whether it was ended before all was looked at, since the fights are so dear.
+    #[serde(skip_serializing_if = "std::ops::Not::not")]
+    pub cut_short: bool,
     /// How much of the map comes out in each way, the most first.
     #[serde(skip)]
     pub shares: Vec<(Story, f64)>,
@@ -63,6 +66,7 @@ impl Chart {
             from: spans.map(|span| span.low),
             to: spans.map(|span| span.high),
             flips: flips.collect(),
+            cut_short: self.is_cut_short(),
             shares: self.shares(),
         }
     }

@@ -1,13 +1,15 @@
 //! Families of engagements: one in which a number or two vary, everything else being as it is stated.
 //!
 //! All of them go through `fight`. A [`Scan`] looks along one number, at a stated resolution, for every change of what is
-//! asked about the outcomes, and closes in on each; its work is counted, and done in slices as small as is wanted.
+//! asked about the outcomes, and closes in on each; its work is counted ([`Tally`]), and done in slices as small as is wanted.
 
 mod points;
 mod scan;
+mod tally;
 
 pub use points::{Span, points};
 pub use scan::{Change, Scan};
+pub use tally::Tally;
 
 use crate::slots::Place;
 use crate::terms::Engagement;

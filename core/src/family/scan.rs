@@ -70,6 +70,18 @@ impl<C: Copy + PartialEq> Scan<C> {
         self.is_done()
     }
 
+    /// Ends the search with what is known: changes that are not closed in on yet are as wide as their brackets.
+    pub fn end(&mut self) {
+        self.points.truncate(self.classes.len());
+        let known = self.brackets.drain(..).map(|bracket| Change {
+            below: bracket.low,
+            above: bracket.high,
+            from: bracket.from,
+            to: bracket.to,
+        });
+        self.changes.extend(known);
+    }
+
     /// Takes in that between `low` and `high`, two points of the same class with no change between them so far, there is
     /// another class at `middle`.
     pub fn found(&mut self, low: f64, middle: f64, high: f64, there: C) {

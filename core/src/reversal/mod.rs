@@ -17,6 +17,7 @@ pub use elasticity::Elasticity;
 pub use measure::Told;
 
 use crate::asked::outright;
+use crate::family::Tally;
 use crate::fight::{Effort, fight};
 use crate::keys::Unit;
 use crate::outcome::{Breaks, Outcome};
@@ -107,8 +108,15 @@ pub struct Reversal {
     change: Option<Change>,
     small: elasticity::Search,
     entries: Vec<Entry>,
-    fights: u32,
+    tally: Tally,
+    most: u64,
+    /// Numbers that were not looked at.
+    left_out: usize,
 }
+
+/// The table takes no more evaluations of functions than this, and one number's few fights more: where fights are so dear that
+/// it would, the numbers behind are left out, and it says so.
+pub const MOST_EVALUATIONS: u64 = 200_000_000;
 
 /// Looks to a power of ten of change.
 pub const A_DECADE: f64 = 16.0;
@@ -137,7 +145,12 @@ impl Reversal {
             change: None,
             small: elasticity::Search::default(),
             entries: Vec::new(),
-            fights: 1,
+            tally: Tally {
+                fights: 1,
+                evaluations: 0,
+            },
+            most: MOST_EVALUATIONS,
+            left_out: 0,
             outcome: fight.outcome,
             engagement,
         }
@@ -149,6 +162,12 @@ impl Reversal {
         self
     }
 
+    /// The same search, to end when its fights have taken so many evaluations instead of [`MOST_EVALUATIONS`].
+    pub fn with_at_most(mut self, evaluations: u64) -> Reversal {
+        self.most = evaluations;
+        self
+    }
+
     /// Goes to the end at once.
     pub fn finished(mut self) -> Reversal {
         while self.step() {}
@@ -157,6 +176,9 @@ impl Reversal {
 
     /// Goes on by one fight, or what takes no longer; says whether anything is left to do.
     pub fn step(&mut self) -> bool {
+        if self.tally.evaluations > self.most {
+            self.left_out += self.slots.drain(self.at..).len();
+        }
         let Some(slot) = self.slots.get(self.at) else {
             return false;
         };
@@ -168,9 +190,8 @@ impl Reversal {
                 self.stage = Some(Stage::Search(Box::new(search)));
             }
             Some(Stage::Search(mut search)) => {
-                let before = search.fights;
                 let goes_on = search.step(&mut self.engagement);
-                self.fights += search.fights - before;
+                self.count(&mut search);
                 self.stage = Some(match (goes_on, search.found()) {
                     (true, _) => Stage::Search(search),
                     (false, Some(found)) => Stage::Write(search, found, FEWEST - 1),
@@ -195,7 +216,12 @@ impl Reversal {
 
     /// The fights it took so far.
     pub fn fights(&self) -> u32 {
-        self.fights
+        self.tally.fights
+    }
+
+    /// How many numbers were not looked at, since the fights are so dear.
+    pub fn left_out(&self) -> usize {
+        self.left_out
     }
 
     /// Whether a side breaks first, or fades, as it is: else there is nothing to reverse, and a change decides.
@@ -217,6 +243,11 @@ impl Reversal {
         self.entries
     }
 
+    /// Takes what a search took to the account of all.
+    fn count(&mut self, search: &mut Search) {
+        self.tally = self.tally.and(std::mem::take(&mut search.tally));
+    }
+
     fn search(&mut self, slot: &Slot, now: f64) -> Search {
         let whole = self.measure.whole(slot, now);
         let a_decade = if self.is_integrated(slot, now, whole) {
@@ -230,7 +261,7 @@ impl Reversal {
         let formula = matches!(self.aim, Aim::Broken(_)).then(|| outright(&self.engagement, slot.place));
         if let Some(value) = formula.flatten() {
             search.try_at(&mut self.engagement, value, slot.limits);
-            self.fights += search.fights;
+            self.count(&mut search);
         }
         search
     }
@@ -244,7 +275,7 @@ impl Reversal {
         self.engagement.put(slot.place, other);
         let work = fight(&self.engagement, Effort::Ending).work;
         self.engagement.put(slot.place, now);
-        self.fights += 1;
+        self.tally.fights += 1;
         work.steps > 0
     }
 
@@ -271,9 +302,8 @@ impl Reversal {
             return;
         }
         self.engagement.put(slot.place, value);
-        let outcome = fight(&self.engagement, Effort::Ending).outcome;
+        let outcome = self.tally.fight(&self.engagement, Effort::Ending);
         self.engagement.put(slot.place, now);
-        self.fights += 1;
         if !last && self.aim.judge(&outcome) != found.standing {
             self.stage = Some(Stage::Write(search, found, digits + 1));
             return;
@@ -309,8 +339,7 @@ impl Reversal {
         let hair = HAIR * found.value.abs().max((found.value - now).abs()) * outwards;
         let mut changes = |value: f64| {
             self.engagement.put(slot.place, value);
-            let outcome = fight(&self.engagement, Effort::Ending).outcome;
-            self.fights += 1;
+            let outcome = self.tally.fight(&self.engagement, Effort::Ending);
             self.aim.judge(&outcome) == found.standing
         };
         let [before, at, one, three] = [-1.0, 0.0, 1.0, 3.0].map(|hairs| found.value + hairs * hair);
@@ -323,7 +352,7 @@ impl Reversal {
     }
 
     fn small_change(&mut self, slot: Slot, now: f64) {
-        self.fights += 1;
+        self.tally.fights += 1;
         let goes_on = self.small.step(&mut self.engagement, &self.outcome, &slot, now);
         if goes_on {
             self.stage = Some(Stage::Elasticity);

@@ -2,7 +2,8 @@
 
 use super::aim::{Aim, Standing, lead};
 use super::close_in::Bracket;
-use crate::fight::{Effort, fight};
+use crate::family::Tally;
+use crate::fight::Effort;
 use crate::slots::{Limits, Place};
 use crate::terms::Engagement;
 
@@ -55,7 +56,7 @@ pub(crate) struct Search {
     closing: Option<(Bracket, Standing)>,
     found: Option<Found>,
     /// The fights it took.
-    pub(crate) fights: u32,
+    pub(crate) tally: Tally,
 }
 
 /// A distance that counts as none, in parts of a whole.
@@ -93,7 +94,7 @@ impl Search {
             ways,
             closing: None,
             found: None,
-            fights: 0,
+            tally: Tally::default(),
         }
     }
 
@@ -237,9 +238,8 @@ impl Search {
     }
 
     fn look(&mut self, engagement: &mut Engagement, value: f64) -> Look {
-        self.fights += 1;
         engagement.put(self.place, value);
-        let outcome = fight(engagement, Effort::Ending).outcome;
+        let outcome = self.tally.fight(engagement, Effort::Ending);
         let lead = lead(engagement, &outcome);
         engagement.put(self.place, self.value);
         Look {

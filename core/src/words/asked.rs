@@ -166,9 +166,15 @@ pub(super) fn why(why: Why) -> &'static str {
 pub fn where_looked(statement: &Statement, asked: &Asked) -> String {
     let why = why(asked.why);
     let step = (asked.span.high - asked.span.low) / f64::from(crate::asked::STEPS);
+    let cut_short = if asked.cut_short {
+        " Each of these fights takes much work, so looking was ended early: nothing beyond is known, and values may be off by a \
+         step."
+    } else {
+        ""
+    };
     format!(
         "Looked for {}, {why}; write `?low..high` behind the number to look elsewhere. Seen in even steps of {} and in even \
-         ratios, {} fights in all: what changes and changes back between two steps may be missed.",
+         ratios, {} fights in all: what changes and changes back between two steps may be missed.{cut_short}",
         looked(statement, asked),
         value(statement, asked, step),
         asked.fights

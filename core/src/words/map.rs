@@ -23,6 +23,12 @@ pub fn of_shares(statement: &Statement, slots: &[Slot; 2], shares: &[(Story, f64
         format!("{} on {} of the map", happens(statement, story), per_cent(*share))
     };
     let parts: Vec<String> = shares.iter().map(part).collect();
+    if parts.is_empty() {
+        return format!(
+            "In this model, with {one} and {other} in question, each fight takes too much work for a map: ask for one of them, or \
+             in a smaller range."
+        );
+    }
     format!(
         "In this model, with {one} and {other} in question: {}.",
         parts.join("; ")
@@ -94,9 +100,15 @@ pub fn where_looked(statement: &Statement, chart: &Chart) -> String {
             )
         });
     let looked: Vec<String> = looked.collect();
+    let cut_short = if chart.is_cut_short() {
+        " Each of these fights takes much work, so looking was ended early: parts of the lines may be missing, or off by a \
+         three-hundredth of the map."
+    } else {
+        ""
+    };
     format!(
         "Looked at: {}; write `?low..high` behind a number to look elsewhere. {FINEST} × {FINEST} places where the outcome flips, \
-         fewer elsewhere, {} fights in all: an island smaller than a fortieth of the map may be missed.",
+         fewer elsewhere, {} fights in all: an island smaller than a fortieth of the map may be missed.{cut_short}",
         looked.join("; "),
         chart.fights()
     )

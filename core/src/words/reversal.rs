@@ -96,10 +96,17 @@ pub fn rows(statement: &Statement, reversal: &Reversal) -> Vec<Row> {
 
 /// How closely was looked.
 pub fn looked(reversal: &Reversal) -> String {
+    let left_out = match reversal.left_out() {
+        0 => String::new(),
+        left => format!(
+            " Each of these fights takes much work, so looking was ended early: {left} more numbers were not looked at, and one \
+             of them may be nearer."
+        ),
+    };
     format!(
         "Looked for outwards from each present value, {A_DECADE} steps to a power of ten of change and {A_DECADE_INTEGRATED} where \
          the fight must be integrated, as far as the number may go; {} fights in all. What changes and changes back between two \
-         steps may be missed.",
+         steps may be missed.{left_out}",
         reversal.fights()
     )
 }

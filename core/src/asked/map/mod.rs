@@ -11,10 +11,11 @@ mod line;
 
 pub use lattice::FINEST;
 
+use super::MOST_EVALUATIONS;
 use super::span::{Why, span};
 use super::story::{Sample, Story};
-use crate::family::{Family, Span};
-use crate::fight::{Effort, fight};
+use crate::family::{Family, Span, Tally};
+use crate::fight::Effort;
 use crate::outcome::{Breaks, Ended, Outcome, ToTheLast};
 use crate::pairs::Pairs;
 use crate::sides::Both;
@@ -110,7 +111,9 @@ pub struct Chart {
     crossed: Crossings,
     /// The part of each edge at which the outcome flips; half-way where that is not known yet.
     closed: Vec<f64>,
-    fights: usize,
+    tally: Tally,
+    most: u64,
+    cut_short: bool,
 }
 
 impl Chart {
@@ -141,7 +144,9 @@ impl Chart {
             },
             crossed: Crossings::default(),
             closed: vec![0.5; EDGES],
-            fights: 0,
+            tally: Tally::default(),
+            most: MOST_EVALUATIONS,
+            cut_short: false,
         })
     }
 
@@ -161,8 +166,28 @@ impl Chart {
     }
 
     /// How many fights it took so far.
-    pub fn fights(&self) -> usize {
-        self.fights
+    pub fn fights(&self) -> u32 {
+        self.tally.fights
+    }
+
+    /// Whether it was ended before all was looked at, since the fights are so dear.
+    pub fn is_cut_short(&self) -> bool {
+        self.cut_short
+    }
+
+    /// The same search, to end when its fights have taken so many evaluations instead of [`MOST_EVALUATIONS`].
+    pub fn with_at_most(mut self, evaluations: u64) -> Chart {
+        self.most = evaluations;
+        self
+    }
+
+    /// Ends the search with what is known: a flip that is not closed in on yet is put half-way.
+    fn cut_short(&mut self) {
+        if matches!(self.stage, Stage::Fighting { .. } | Stage::Islands { .. }) {
+            self.crossed = Crossings::of(&self.lattice, |point| point.class);
+        }
+        self.cut_short = true;
+        self.stage = Stage::Done;
     }
 
     /// Whether the coarsest lattice is filled, so that there is something to show.
@@ -172,14 +197,17 @@ impl Chart {
 
     /// The part of the work that is surely behind, 0 to 1.
     pub fn progress(&self) -> f64 {
-        (self.fights as f64 / 9000.0).min(0.99)
+        (f64::from(self.tally.fights) / 9000.0).min(0.99)
     }
 
     /// Goes on with about `most` fights; says whether all is there.
     pub fn go_on(&mut self, most: u32) -> bool {
-        let until = self.fights + most as usize;
-        while self.fights < until && !matches!(self.stage, Stage::Done) {
+        let until = self.tally.fights.saturating_add(most);
+        while self.tally.fights < until && !matches!(self.stage, Stage::Done) {
             self.step();
+            if self.tally.evaluations > self.most && !matches!(self.stage, Stage::Done) {
+                self.cut_short();
+            }
         }
         matches!(self.stage, Stage::Done)
     }
@@ -287,8 +315,7 @@ impl Chart {
 
     /// The outcome with two values.
     pub fn outcome(&mut self, values: [f64; 2]) -> Outcome {
-        self.fights += 1;
-        fight(self.family.member(values), Effort::Outcome).outcome
+        self.tally.fight(self.family.member(values), Effort::Outcome)
     }
 
     fn point(&mut self, parts: [f64; 2]) -> Point {
@@ -369,8 +396,11 @@ impl Chart {
         Some(usize::from(nearest.class))
     }
 
-    /// How much of the map comes out in each way, the most first.
+    /// How much of the map comes out in each way, the most first; empty before there is something to show.
     pub fn shares(&self) -> Vec<(Story, f64)> {
+        if !self.has_ground() {
+            return Vec::new();
+        }
         let mut counts = vec![0_u32; self.stories.len()];
         let places = (0..FINEST).step_by(2);
         for (across, up) in places
