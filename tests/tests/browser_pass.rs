@@ -195,7 +195,8 @@ fn the_answer_to_a_question_is_part_of_the_finding() {
     let browser = Browser::opened(&link);
     browser.wait(
         "the answer",
-        "return document.getElementById('asked').getAttribute('aria-busy') !== 'true';",
+        "return document.getElementById('asked').getAttribute('aria-busy') !== 'true' &&
+            document.getElementById('reversal').getAttribute('aria-busy') !== 'true';",
     );
     browser.click("[data-pass=copy-as]");
     browser.press("[data-pass=copy-finding]", Key::Enter);
@@ -204,12 +205,13 @@ fn the_answer_to_a_question_is_part_of_the_finding() {
         vec![],
     );
     let lines: Vec<String> = serde_json::from_value(finding).expect("lines");
-    assert_eq!(lines.len(), 4, "{lines:?}");
+    assert_eq!(lines.len(), 5, "{lines:?}");
     assert!(
         lines[0].starts_with("In this model Vessary breaks first"),
         "{lines:?}"
     );
     assert!(lines[1].contains("Ondrel"), "{lines:?}");
+    assert!(lines[2].starts_with("Nearest reversal: "), "{lines:?}");
     browser.assert_clean();
 }
 

@@ -41,13 +41,12 @@ impl Browser {
     pub fn downloaded(&self, ending: &str) -> Vec<u8> {
         let end = Instant::now() + PATIENCE;
         loop {
-            // While it comes it has another name.
-            if let Some(name) = self
-                .downloaded_names()
-                .into_iter()
-                .find(|name| name.ends_with(ending))
-            {
-                return fs::read(self.downloads().join(name)).expect("a file");
+            // While it comes it has another name, and its own is held by an empty file.
+            let names = self.downloaded_names().into_iter();
+            let read = |name| fs::read(self.downloads().join(name)).expect("a file");
+            let mut contents = names.filter(|name| name.ends_with(ending)).map(read);
+            if let Some(content) = contents.find(|content| !content.is_empty()) {
+                return content;
             }
             assert!(Instant::now() < end, "no file {ending}: {}", self.summary());
             thread::yield_now();

@@ -64,12 +64,13 @@ const LOOK: &str = "
     const wrong = [], style = getComputedStyle(stop), box = stop.getBoundingClientRect();
     if (!stop.checkVisibility({visibilityProperty: true}) || box.width < 2 || box.height < 2) wrong.push('is not shown');
     if (style.outlineStyle === 'none' || parseFloat(style.outlineWidth) < 1) wrong.push('has no ring');
-    // What is higher than the window shows its beginning.
-    const y = Math.min((box.top + box.bottom) / 2, box.top + innerHeight / 3), x = Math.min((box.left + box.right) / 2, innerWidth - 1);
-    if (box.top < -1 || y > innerHeight || box.left < -1) wrong.push('is out of sight at ' + [x, y].map(Math.round));
+    // What hardly fits into the window fills the most of it, and need not show its beginning.
+    const large = box.height > 0.6 * innerHeight, seen = Math.min(box.bottom, innerHeight) - Math.max(box.top, 0);
+    const y = large ? innerHeight / 2 : (box.top + box.bottom) / 2, x = Math.min((box.left + box.right) / 2, innerWidth - 1);
+    if ((large ? seen < innerHeight / 2 : box.top < -1 || y > innerHeight) || box.left < -1) wrong.push('is out of sight: ' + [box.left, box.top, box.right, box.bottom].map(Math.round) + ' in ' + [innerWidth, innerHeight]);
     else {
-      const seen = document.elementFromPoint(x, y);
-      if (seen && !stop.contains(seen) && !seen.contains(stop)) wrong.push('is covered by ' + seen.tagName + '#' + seen.id + '.' + seen.className);
+      const there = document.elementFromPoint(x, y);
+      if (there && !stop.contains(there) && !there.contains(stop)) wrong.push('is covered by ' + there.tagName + '#' + there.id + '.' + there.className);
     }
     // The buttons of a number go with the focus from field to field, so they have no place of their own in the order.
     if (stop.closest('.hand')) return {name: 'the buttons beside ' + (stop.closest('.hand').parentElement.querySelector('input') || {}).id, wrong};
