@@ -12,8 +12,9 @@ use super::{Depth, Generator, judge};
 /// Of so many texts one is looked at in full, as the page shows it: that takes many times as long.
 const IN_FULL: u64 = 40;
 
-/// How long one text may take, on a busy machine and with every check on.
-const PATIENCE: Duration = Duration::from_secs(20);
+/// How long one text may take, on a busy machine and with every check on: a map whose fights are all as dear as can be takes
+/// some seconds of the processor.
+const PATIENCE: Duration = Duration::from_secs(90);
 
 /// How many texts a thread takes at a time.
 const BLOCK: u64 = 1000;
