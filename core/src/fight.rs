@@ -107,6 +107,33 @@ mod tests {
         }
     }
 
+    /// Two that break at one moment do so wherever their fight is cut in two: which is first is not left to the rounding of
+    /// the strengths at the cut.
+    #[test]
+    fn a_tie_is_one_behind_a_cut() {
+        let pairings = [
+            ("x.rate=0.04&x.break=0.3&y.rate=0.09&y.break=0.3", 5.9),
+            (
+                "x.rate=0.04&x.break=0.3&y.rate=0.09&y.break=0.3&x.wastage=0.01&y.wastage=0.01",
+                5.0,
+            ),
+            (
+                "x.rate=4e-4&x.fire=area&x.break=0.3&y.rate=6e-4&y.fire=area&y.break=0.3",
+                1.0,
+            ),
+        ];
+        for (pairing, end) in pairings {
+            for step in 1..500 {
+                let from = end * f64::from(step) / 500.0;
+                let link = format!("x.start=600&y.start=400&{pairing}&phase1.from={from}");
+                let Answer::Outcome { outcome, .. } = answer(&link) else {
+                    panic!("it is worked out")
+                };
+                assert_eq!(outcome.breaks, Breaks::Both, "{link}");
+            }
+        }
+    }
+
     /// A side that was withdrawn to the last while a flow kept bringing some: it was found gone again and again, without
     /// end.
     #[test]

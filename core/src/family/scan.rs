@@ -44,6 +44,9 @@ pub struct Scan<C> {
     evaluations: u32,
 }
 
+/// With so many changes one is not told from the rounding any more: brackets are no longer taken apart.
+const MOST_CHANGES: usize = 200;
+
 /// Next to 0, where no value is near another in relative terms, values this part of the largest are the same.
 const NOTHING: f64 = 1e-15;
 
@@ -166,7 +169,8 @@ impl<C: Copy + PartialEq> Scan<C> {
         while let Some(bracket) = self.brackets.pop() {
             let Bracket { low, high, from, to } = bracket;
             let near = (high - low) <= self.precision * low.abs().max(high.abs());
-            if !near && high - low > self.nothing() && low.next_up() < high {
+            let is_one_of_many = self.changes.len() + self.brackets.len() >= MOST_CHANGES;
+            if !near && !is_one_of_many && high - low > self.nothing() && low.next_up() < high {
                 return Some(bracket);
             }
             self.changes.push(Change {
@@ -232,6 +236,19 @@ mod tests {
         }
         assert_eq!(changes[3].at(), 4.0);
         assert!(work < 700, "{work}");
+    }
+
+    /// What changes with every last digit is told by some of its changes.
+    #[test]
+    fn noise_comes_to_an_end() {
+        let class = |value: f64| (value.to_bits().wrapping_mul(0x9e37_79b9_7f4a_7c15) >> 62) as u8;
+        let (changes, work) = all(0.0, 1000.0, class);
+        assert!(
+            changes.len() >= MOST_CHANGES && changes.len() < 1000,
+            "{}",
+            changes.len()
+        );
+        assert!(work < 2000, "{work}");
     }
 
     /// Two changes between the same two points, and a class of a single value between two others.

@@ -176,8 +176,13 @@ impl StateEquation {
 
     /// Whether two costs are the same to the rounding of the inputs.
     pub fn tie(cost: Both<Double>) -> bool {
+        StateEquation::tie_within(cost, TIE)
+    }
+
+    /// Whether two costs are the same to so small a part.
+    pub fn tie_within(cost: Both<Double>, part: f64) -> bool {
         let larger = if cost.x > cost.y { cost.x } else { cost.y };
-        !is_endless(larger) && (cost.x - cost.y).abs() <= larger * TIE
+        !is_endless(larger) && (cost.x - cost.y).abs() <= larger * part
     }
 
     /// Whether a fight gets to the strengths `left` on its orbit in finite time, by the exponents alone.

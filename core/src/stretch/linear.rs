@@ -5,12 +5,17 @@ use crate::conditions::Conditions;
 use crate::linear_system::{LinearSystem, Moment};
 use crate::outcome::{Ended, Losses};
 use crate::sides::{Both, Side};
-use crate::state::TIE;
 
 /// When each side comes to its line within `length`, where it is not later than the other.
 ///
-/// The side that would be there first at the pace of the start is asked first: beyond its time the other is of no account.
-pub(super) fn first_reaches(system: &LinearSystem, ways: &Both<WayDown>, length: f64) -> Both<Option<f64>> {
+/// The side that would be there first at the pace of the start is asked first: beyond its time, and the part `rounding`
+/// more, the other is of no account.
+pub(super) fn first_reaches(
+    system: &LinearSystem,
+    ways: &Both<WayDown>,
+    length: f64,
+    rounding: f64,
+) -> Both<Option<f64>> {
     let reach = |side: Side, length: f64| {
         let way = &ways[side];
         system.first_reach(side, way.descent.by, way.rising, length)
@@ -30,7 +35,7 @@ pub(super) fn first_reaches(system: &LinearSystem, ways: &Both<WayDown>, length:
     };
     let mut times = Both::default();
     times[likely] = reach(likely, length);
-    let length = times[likely].map_or(length, |time| time * (1.0 + 4.0 * TIE));
+    let length = times[likely].map_or(length, |time| time * (1.0 + 4.0 * rounding));
     times[likely.enemy()] = reach(likely.enemy(), length);
     times
 }

@@ -86,6 +86,9 @@ pub struct Stretch {
     how: How,
 }
 
+/// How many times the rounding of a strength its way down may be out by, at most: of a shorter way nothing is certain.
+const MOST_ROUNDING: f64 = 1e6;
+
 /// The way down to the break line of a side, which rises while reinforcement flows in.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct WayDown {
@@ -267,17 +270,32 @@ impl Stretch {
     /// The first break before `length` is over, from the beginning of the stretch; both sides have some way to go.
     pub fn first_break(&self, ways: &Both<WayDown>, length: f64) -> Option<FirstBreak> {
         match &self.how {
-            How::Piece(piece, growth) => separated::first_break(piece, growth.as_ref(), ways, length),
+            How::Piece(piece, growth) => {
+                separated::first_break(piece, growth.as_ref(), ways, length, self.rounding(ways))
+            }
             How::Linear(system) => {
                 // What is at the end to rounding is at the end.
                 let length = length + (self.from + length) * TIE;
-                self.earlier(ways, linear::first_reaches(system, ways, length))
+                self.earlier(
+                    ways,
+                    linear::first_reaches(system, ways, length, self.rounding(ways)),
+                )
             }
             How::Integrated(integrated) => {
                 let reach = |side: Side| integrated.first_reach(side, &ways[side], length);
                 self.earlier(ways, Both::of(reach))
             }
         }
+    }
+
+    /// The part by which two breaks may differ and still be at one moment: the rounding of what is stated, and behind the
+    /// first stretch also that of the strengths which were handed over, which is more of a short way down.
+    fn rounding(&self, ways: &Both<WayDown>) -> f64 {
+        if self.from == 0.0 {
+            return TIE;
+        }
+        let of_way = |side: Side| self.start[side] / f64::from(ways[side].descent.by);
+        TIE * (1.0 + 2.0 * of_way(Side::X).max(of_way(Side::Y))).min(MOST_ROUNDING)
     }
 
     /// The earlier of two breaks, or both where they are the same to rounding.
@@ -287,7 +305,8 @@ impl Stretch {
             (x, y) => x.unwrap_or(f64::INFINITY).min(y.unwrap_or(f64::INFINITY)),
         };
         let mut standing = self.at(time);
-        let broken = Both::of(|side| times[side].is_some_and(|at| at <= time * (1.0 + TIE)));
+        let rounding = self.rounding(ways);
+        let broken = Both::of(|side| times[side].is_some_and(|at| at <= time * (1.0 + rounding)));
         for side in Side::BOTH.into_iter().filter(|side| broken[*side]) {
             standing.left[side] = f64::from(ways[side].descent.to) + ways[side].rising * time;
         }

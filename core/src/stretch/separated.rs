@@ -10,12 +10,14 @@ use crate::piece::{Motion, Piece};
 use crate::sides::{Both, Side};
 use crate::state::{StateEquation, TIE, is_endless};
 
-/// Which side of a piece reaches its line first, by the state equation, and when.
+/// Which side of a piece reaches its line first, by the state equation, and when; both where they differ by less than the
+/// part `rounding`.
 pub(super) fn first_break(
     piece: &Piece,
     growth: Option<&Growth>,
     ways: &Both<WayDown>,
     length: f64,
+    rounding: f64,
 ) -> Option<FirstBreak> {
     if piece.motion == Motion::Still {
         return None;
@@ -25,7 +27,7 @@ pub(super) fn first_break(
     if is_endless(cost.x) && is_endless(cost.y) {
         return None;
     }
-    let (breaks, loser) = if StateEquation::tie(cost) {
+    let (breaks, loser) = if StateEquation::tie_within(cost, rounding) {
         (Breaks::Both, Side::X)
     } else if cost.x > cost.y {
         (Breaks::Y, Side::Y)
