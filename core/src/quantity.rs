@@ -36,6 +36,18 @@ impl Quantity {
     /// A hint in words, without a full stop.
     pub fn read(text: &str) -> Result<Quantity, String> {
         let text = text.trim();
+        Quantity::strictly(text).map_err(|hint| {
+            let close = text.replace(char::is_whitespace, "");
+            match Quantity::strictly(&close) {
+                Ok(Quantity::Question { .. } | Quantity::Interval { .. }) => {
+                    format!("write {close}, without blanks")
+                }
+                _ => hint,
+            }
+        })
+    }
+
+    fn strictly(text: &str) -> Result<Quantity, String> {
         if let Some((now, between)) = text.split_once('?') {
             let now = if now.is_empty() {
                 None
@@ -103,7 +115,10 @@ impl Quantity {
 }
 
 fn range(text: &str) -> Result<(f64, f64), String> {
-    let Some((low, high)) = text.split_once("..") else {
+    let ends = text
+        .split_once("..")
+        .filter(|(low, high)| !low.is_empty() && !high.is_empty());
+    let Some((low, high)) = ends else {
         return Err("write the range of a question as low..high".into());
     };
     let (low, high) = (number::read(low)?, number::read(high)?);
@@ -128,6 +143,16 @@ fn ordered(values: &[f64], likely: Option<f64>) -> Result<Quantity, String> {
 #[cfg(test)]
 mod tests {
     use super::*;
+
+    #[test]
+    fn hints_keep_the_mark() {
+        let hint = |text: &str| Quantity::read(text).expect_err(text);
+        assert_eq!(hint("850 ?"), "write 850?, without blanks");
+        assert_eq!(hint("850? 700 .. 900"), "write 850?700..900, without blanks");
+        assert_eq!(hint("4 .. 6"), "write 4..6, without blanks");
+        assert_eq!(hint("850?700.."), "write the range of a question as low..high");
+        assert_eq!(hint("8 50"), "write 850, without blanks");
+    }
 
     #[test]
     fn the_three_kinds_are_told_apart() {
