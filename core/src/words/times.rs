@@ -60,17 +60,52 @@ fn linear(piece: &Piece, point: &OrbitPoint) -> Math {
     over(&function("ln", &quotient), &lead)
 }
 
-/// With K = b·h₀ − a·o₀²/2 and c = √(2|K|/a): an arc tangent for K > 0, an inverse hyperbolic tangent for K < 0.
-fn ambush(piece: &Piece, engagement: &Engagement, point: &OrbitPoint) -> Math {
-    let hidden = if engagement.sides[Side::X].fire.per_target()[0].exponent == 0.0 {
+/// The side whose fire is aimed, of aimed fire against area fire.
+fn hidden(engagement: &Engagement) -> Side {
+    if engagement.sides[Side::X].fire.per_target()[0].exponent == 0.0 {
         Side::X
     } else {
         Side::Y
-    };
+    }
+}
+
+/// K = b·h₀ − a·o₀²/2, and c = √(2|K|/a).
+fn of_ambush(piece: &Piece, hidden: Side) -> (f64, f64) {
     let open = hidden.enemy();
     let (aimed, area) = (piece.equation.rate[hidden], piece.equation.rate[open]);
     let lead = aimed * piece.start[hidden] - area * piece.start[open] * piece.start[open] / 2.0;
-    let c = libm::sqrt(2.0 * lead.abs() / area);
+    (lead, libm::sqrt(2.0 * lead.abs() / area))
+}
+
+/// What stands before that number.
+pub(super) const CONSTANT: &str = "In the time stands a number that the first strengths give";
+
+/// The number in the time of aimed fire against area fire that stands nowhere else: c, with how it comes about; `None` for
+/// every other motion.
+pub(super) fn constant(piece: &Piece, engagement: &Engagement) -> Option<Math> {
+    let Motion::Ambush(_) = &piece.motion else {
+        return None;
+    };
+    let hidden = hidden(engagement);
+    let (lead, c) = of_ambush(piece, hidden);
+    let strength = |side: Side| number(piece.start[side]);
+    let rates = [number(2.0), number(piece.equation.rate[hidden]), strength(hidden)];
+    let reached = over(&times(&rates), &number(piece.equation.rate[hidden.enemy()]));
+    let open = power(&strength(hidden.enemy()), 2.0);
+    let inside = if lead > 0.0 {
+        minus(&reached, &open)
+    } else {
+        minus(&open, &reached)
+    };
+    Some(equal(&[letter("c"), root(&inside), number(c)]))
+}
+
+/// With K = b·h₀ − a·o₀²/2 and c = √(2|K|/a): an arc tangent for K > 0, an inverse hyperbolic tangent for K < 0.
+fn ambush(piece: &Piece, engagement: &Engagement, point: &OrbitPoint) -> Math {
+    let hidden = hidden(engagement);
+    let open = hidden.enemy();
+    let area = piece.equation.rate[open];
+    let (lead, c) = of_ambush(piece, hidden);
     let (first, last) = (piece.start[open], point.left[open]);
     if c == 0.0 {
         let parts = minus(
@@ -152,4 +187,41 @@ fn along_orbit(piece: &Piece, engagement: &Engagement, point: &OrbitPoint, loser
         &integrand,
         names[loser],
     )
+}
+
+#[cfg(test)]
+mod tests {
+    use crate::answer::{Answer, Besides, answer_with};
+
+    fn working(link: &str) -> Vec<String> {
+        let besides = Besides {
+            working: true,
+            ..Besides::default()
+        };
+        match answer_with(link, besides) {
+            Answer::Outcome {
+                working: Some(lines), ..
+            } => lines,
+            _ => panic!("{link}"),
+        }
+    }
+
+    /// √(2·0.03·850/0.0001 − 620²) = √125600, and with the sides' luck turned √(620² − 2·0.01·850/0.0001) = √214400.
+    #[test]
+    fn the_constant_of_aimed_against_area_is_shown_before_it_is_used() {
+        for (rate, constant) in [
+            ("0.03", "c = √(2·0.03·850/0.0001 − 620²) = 354.401"),
+            ("0.01", "c = √(620² − 2·0.01·850/0.0001) = 463.033"),
+        ] {
+            for reserve in ["", "&x.join=1@0.5"] {
+                let lines = working(&format!(
+                    "x.start=850&x.rate={rate}&y.start=620&y.fire=area&y.rate=0.0001&x.break=0.3&y.break=0.3{reserve}"
+                ));
+                let shown = lines.iter().position(|line| line.contains(constant));
+                let number = constant.rsplit(' ').next().expect("a number");
+                let used = lines.iter().position(|line| line.contains(&format!("{number}·")));
+                assert!(shown.is_some() && shown < used, "{lines:#?}");
+            }
+        }
+    }
 }

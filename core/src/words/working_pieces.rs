@@ -193,7 +193,9 @@ fn method(statement: &Statement, stretch: &Stretch) -> Vec<WorkingLine> {
     lines.extend(
         stretch
             .piece()
-            .and_then(|piece| time_formula(statement, piece, stretch)),
+            .and_then(|piece| time_formula(statement, piece, stretch))
+            .into_iter()
+            .flatten(),
     );
     lines
 }
@@ -214,7 +216,7 @@ fn state_equation(piece: &Piece, stretch: &Stretch) -> Option<Math> {
 }
 
 /// How long the stretch is, from the strengths at both its ends, where it ends with a break at full rates.
-fn time_formula(statement: &Statement, piece: &Piece, stretch: &Stretch) -> Option<WorkingLine> {
+fn time_formula(statement: &Statement, piece: &Piece, stretch: &Stretch) -> Option<Vec<WorkingLine>> {
     let length = stretch.to? - stretch.from;
     let plain = stretch.conditions.are_plain() && stretch.conditions.shared_growth() == Some(None);
     if !plain || piece.motion == Motion::Still {
@@ -236,12 +238,15 @@ fn time_formula(statement: &Statement, piece: &Piece, stretch: &Stretch) -> Opti
     } else {
         Side::Y
     };
+    let constant = super::times::constant(piece, &engagement);
+    let constant = constant.map(|constant| line("", super::times::CONSTANT, Some(constant)));
     let formula = super::times::formula(piece, &engagement, &point, loser);
-    Some(line(
+    let time = line(
         "",
-        "From its first strengths to its last it takes",
+        "From its first strengths to its last, which come next, it takes",
         Some(equal(&[letter("t"), formula, number(length)])),
-    ))
+    );
+    Some(constant.into_iter().chain([time]).collect())
 }
 
 /// The eigenvalues of a linear system, and its strengths as sums of exponentials.

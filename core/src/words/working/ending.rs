@@ -107,6 +107,9 @@ impl Writer<'_> {
             );
             self.line("time", words, None);
         } else {
+            if let Some(constant) = times::constant(&self.piece, &self.engagement) {
+                self.line("", times::CONSTANT, Some(constant));
+            }
             let formula = times::formula(&self.piece, &self.engagement, &point, loser);
             let math = equal(&[letter("t"), formula, number(at)]);
             let words = format!("The time of it, {}", time_in_words(at, unit));
