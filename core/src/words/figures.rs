@@ -1,6 +1,6 @@
-//! The figures under the sentence, to six significant digits.
+//! The figures under the sentence, to six significant digits, and no less than whole combatants.
 
-use super::format::{per_cent, six, three};
+use super::format::{amount, per_cent, six, three};
 use crate::double::Double;
 use crate::fight::{break_line, plain_piece};
 use crate::outcome::{Breaks, Ended, Method, Outcome, ToTheLast};
@@ -53,7 +53,7 @@ pub fn figures(statement: &Statement, outcome: &Outcome) -> Figures {
         lines: Both::default(),
     };
     let mut rows = vec![row(format!("At the start ({counted})"), &|side| {
-        six(sides[side].start)
+        amount(sides[side].start)
     })];
     let still = is_still(&engagement, outcome);
     let line = Both::of(|side| (!still).then_some(line_of_break(side)));
@@ -63,7 +63,7 @@ pub fn figures(statement: &Statement, outcome: &Outcome) -> Figures {
         row(
             format!("Breaks at ({counted} left)"),
             &|side| match line_in_the_end(&engagement, outcome, side) {
-                line if line > 0.0 && line.is_finite() => six(line),
+                line if line > 0.0 && line.is_finite() => amount(line),
                 line if line > 0.0 => "rises for ever".into(),
                 _ => "to the last".into(),
             },
@@ -77,9 +77,11 @@ pub fn figures(statement: &Statement, outcome: &Outcome) -> Figures {
     };
     let ends = [
         row(format!("{left} ({counted})"), &|side| {
-            sides[side].end.map_or("without bound".into(), six)
+            sides[side].end.map_or("without bound".into(), amount)
         }),
-        row(format!("Losses ({counted})"), &|side| six(sides[side].losses.all)),
+        row(format!("Losses ({counted})"), &|side| {
+            amount(sides[side].losses.all)
+        }),
         row("Lost, of all committed".into(), &|side| {
             let lost = sides[side].losses.all + engagement.sides[side].lost;
             if sides[side].committed.is_finite() {
@@ -136,7 +138,7 @@ fn brought_in(engagement: &Engagement, outcome: &Outcome, counted: &str) -> Vec<
     let rows = parts.into_iter().filter(|(label, values)| shown(label, values));
     rows.map(|(label, values)| Row {
         label: format!("{label} ({counted})"),
-        values: Both::of(|side| six(values[side])),
+        values: Both::of(|side| amount(values[side])),
         lines: Both::default(),
     })
     .collect()
@@ -171,7 +173,7 @@ fn losses_by_cause(outcome: &Outcome, counted: &str) -> Vec<Row> {
     let rows = parts.into_iter().filter(|(_, values)| any(values));
     rows.map(|(label, values)| Row {
         label: format!("Losses {label} ({counted})"),
-        values: Both::of(|side| six(values[side])),
+        values: Both::of(|side| amount(values[side])),
         lines: Both::default(),
     })
     .collect()
@@ -273,6 +275,7 @@ fn both(statement: &Statement, outcome: &Outcome, still: bool) -> Vec<Figure> {
         let at = format!("{} {unit}", six(clock));
         let (label, line) = match outcome.ended {
             Ended::Unfinished => ("Worked out up to", None),
+            Ended::Withdrawn => ("Nobody of a side left from", None),
             _ => ("Cut off by the clock at", Some("clock")),
         };
         figure(label, at, line);

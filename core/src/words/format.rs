@@ -46,6 +46,15 @@ pub fn six(value: f64) -> String {
     significant(value, 6)
 }
 
+/// A strength in a table: to six significant digits, and no less than whole, as the sentence has it.
+pub fn amount(value: f64) -> String {
+    if (1e6..1e18).contains(&value) {
+        strength(value)
+    } else {
+        six(value)
+    }
+}
+
 /// A strength in a sentence: whole from 10 up, else to three significant digits.
 pub fn strength(value: f64) -> String {
     if (9.95..1e18).contains(&value) {
@@ -178,6 +187,8 @@ mod tests {
         assert_eq!(three(0.04), "0.04");
         assert_eq!(three(12345.0), "12\u{202f}300");
         assert_eq!(six(1234567.0), "1\u{202f}234\u{202f}570");
+        assert_eq!(amount(1234567.0), "1\u{202f}234\u{202f}567");
+        assert_eq!(amount(12345.678), "12\u{202f}345.7");
         assert_eq!(three(1.5e-9), "1.5 × 10⁻⁹");
         assert_eq!(three(0.0), "0");
         assert_eq!(strength(9.951), "10");

@@ -59,7 +59,11 @@ fn left(statement: &Statement, outcome: &Outcome, side: Side) -> String {
     let end = strength(outcome.end.unwrap_or(f64::INFINITY));
     let name = &statement.names[side];
     if outcome.committed.is_finite() {
-        format!("{name} {end} of {}", strength(outcome.committed))
+        let withdrawn = match outcome.withdrawn {
+            0.0 => String::new(),
+            withdrawn => format!(" ({} withdrawn)", strength(withdrawn)),
+        };
+        format!("{name} {end} of {}{withdrawn}", strength(outcome.committed))
     } else {
         format!("{name} {end}, reinforced without end")
     }
