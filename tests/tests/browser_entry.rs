@@ -150,7 +150,19 @@ fn a_rate_is_written_from_what_it_takes_at_the_start() {
     );
     browser.script(script, vec![json!("seven")]);
     browser.wait_text("[id='x.share.problem']", "write a number");
-    assert_eq!(browser.link(), link, "what cannot be read writes nothing");
+    assert_eq!(
+        browser.value("x.rate"),
+        "seven %",
+        "no rate stands that was not meant"
+    );
+    assert_eq!(
+        browser.text("[id='x.rate.problem']"),
+        "write a number, such as 600 or 0.04."
+    );
+    browser.script(script, vec![json!("")]);
+    assert_eq!(browser.value("x.rate"), "");
+    browser.script(script, vec![json!("7.5")]);
+    assert_eq!(browser.settle(&link), native(&link));
     browser.write("x.start", "");
     browser.script(script, vec![json!("7")]);
     browser.wait_text("[id='x.share.problem']", "x.start is missing");

@@ -244,13 +244,10 @@ impl Page {
     /// The per cent that a rate is to take at the start was typed: it writes the rate.
     pub(crate) fn share_typed(&mut self, side: Side, text: &str) {
         let key = format!("{}.rate", side.letter());
-        match self.shares.typed(&self.pairs, side, text) {
-            Some(rate) => {
-                self.typed(&key, &rate);
-                form::fill(&self.dom, &self.pairs);
-            }
-            None => self.show_share.start(PATIENCE),
-        }
+        let rate = self.shares.typed(&self.pairs, side, text);
+        self.typed(&key, &rate);
+        form::fill(&self.dom, &self.pairs);
+        self.show_share.start(PATIENCE);
     }
 
     fn show_share(&mut self) {

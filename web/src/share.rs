@@ -40,19 +40,24 @@ impl Shares {
         if open { id("") } else { id(".open") }
     }
 
-    /// The rate that an entry stands for, as it is written; `None` where there is none, and then why waits to be shown.
-    pub(crate) fn typed(&mut self, pairs: &Pairs, side: Side, text: &str) -> Option<String> {
+    /// What is to stand as the rate for an entry: the rate, as it is written; of an entry that is no number its own text as
+    /// per cent, which no rate is, and of one that cannot be turned into a rate nothing, and why waits to be shown. So no
+    /// rate stands that was not meant.
+    pub(crate) fn typed(&mut self, pairs: &Pairs, side: Side, text: &str) -> String {
         self.settle(side);
-        if text.trim().is_empty() {
-            return None;
+        let plain = text.trim().trim_end_matches('%').trim_end();
+        if plain.is_empty() {
+            return String::new();
         }
-        match rate_of_per_cent(pairs, side, text) {
-            Ok(rate) => Some(rate),
-            Err(problem) => {
-                self.waiting = Some((side, problem));
-                None
+        rate_of_per_cent(pairs, side, text).unwrap_or_else(|problem| {
+            self.waiting = Some((side, problem));
+            let is_number = aftercount_core::number::read(plain).is_ok();
+            if is_number {
+                String::new()
+            } else {
+                format!("{plain} %")
             }
-        }
+        })
     }
 
     /// Shows what waits.
