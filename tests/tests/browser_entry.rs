@@ -157,7 +157,7 @@ fn a_rate_is_written_from_what_it_takes_at_the_start() {
     );
     assert_eq!(
         browser.text("[id='x.rate.problem']"),
-        "write a number, such as 600 or 0.04."
+        "seven %: write a number, such as 600 or 0.04."
     );
     browser.script(script, vec![json!("")]);
     assert_eq!(browser.value("x.rate"), "");

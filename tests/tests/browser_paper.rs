@@ -1,5 +1,6 @@
 //! The sheet on paper: printed by the browser itself, and read back from the document.
 
+use aftercount_core::caution;
 use aftercount_core::mark::text_mark;
 use aftercount_core::pairs::Pairs;
 use aftercount_tests::browser::{Browser, Paper, changed, native_sentence, wiki_url};
@@ -35,6 +36,7 @@ fn assert_every_page(pages: &[String], link: &str) {
         );
         assert_eq!(at(&mark), 1, "page {number}:\n{page}");
         assert!(at("Aftercount 0.") >= 1, "page {number}:\n{page}");
+        assert!(at(caution::SHORT) >= 1, "page {number}:\n{page}");
         assert_eq!(
             at(&format!("page {number} of {}", pages.len())),
             1,

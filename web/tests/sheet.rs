@@ -147,6 +147,7 @@ fn formulas_are_markup_of_the_core_alone() {
 fn fixed_words_are_those_of_the_core() {
     for (id, text) in [
         ("short-caution", caution::SHORT),
+        ("paper-caution", caution::SHORT),
         ("stale", words::STALE),
         ("empty-words", words::BLANK),
         ("text-care", words::HANDLE),
