@@ -3,6 +3,10 @@
 //! `reference/questions.py` made the table.
 
 use aftercount_core::answer::answer;
+use aftercount_core::asked::Inquiry;
+use aftercount_core::pairs::Pairs;
+use aftercount_core::statement::Statement;
+use aftercount_core::words;
 use aftercount_tests::tables::{self, Row};
 use serde_json::Value;
 use std::collections::BTreeMap;
@@ -276,4 +280,27 @@ fn what_is_asked_wrongly_is_named() {
             .collect();
         assert_eq!(found.join(" | "), row.text("problems"), "{link}");
     }
+}
+
+/// Both sides of a change are offered, each with what happens there.
+#[test]
+fn either_side_of_a_change_can_be_put() {
+    let pairs =
+        Pairs::parse("x.start=600&x.rate=0.04&x.break=0.3&y.start=400&y.rate=0.06&y.break=0.39&y.join=64@3?");
+    let statement = Statement::read(&pairs).expect("a good text");
+    let mut inquiry = Inquiry::new(&pairs, &statement).expect("one question");
+    while !inquiry.go_on(u32::MAX) {}
+    let asked = inquiry.answer();
+    let puttings = asked.puttings();
+    let labels: Vec<String> = puttings
+        .iter()
+        .map(|putting| words::asked::putting(&statement, &asked, putting.value))
+        .collect();
+    assert_eq!(
+        labels,
+        [
+            "put 4.53\u{a0}h into the field: Side X breaks first",
+            "put 4.54\u{a0}h into the field: Side Y breaks first"
+        ]
+    );
 }

@@ -16,7 +16,8 @@ pub struct Putting {
 
 impl Asked {
     /// What can be put into the field, in order: with conditions, a value of each interval that meets them; else one of each
-    /// part of the story. Next to the change, on its right side, in few digits; nearest to the value now.
+    /// part of the story. Next to the change, on its right side, in few digits; nearest to the value now, or that value
+    /// itself where it meets all conditions.
     pub fn puttings(&self) -> Vec<Putting> {
         let ends: Vec<(End, End)> = match &self.met {
             Some(met) => met.iter().map(|met| (met.from, met.to)).collect(),
@@ -48,12 +49,12 @@ impl Asked {
         }
         let now = self.slot.value();
         let inside = now.filter(|now| low < *now && *now < high);
-        if inside.is_some() {
+        if inside.is_some() && self.met.is_some() {
             return inside;
         }
         let is_change = |end: End| matches!(end, End::Crossing(_));
         let from_below = match (is_change(from), is_change(to)) {
-            (true, true) => now.is_none_or(|now| now <= low),
+            (true, true) => now.is_none_or(|now| now - low <= high - now),
             (from, _) => from,
         };
         let near = if from_below { low } else { high };

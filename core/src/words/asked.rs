@@ -136,12 +136,17 @@ fn range(statement: &Statement, asked: &Asked, met: &Met) -> String {
     }
 }
 
-/// What a button that puts a value into the field says: "put 608 into the field".
+/// What a button that puts a value into the field says: "put 608 into the field", and without conditions what happens then.
 pub fn putting(statement: &Statement, asked: &Asked, value: f64) -> String {
-    format!(
+    let put = format!(
         "put {} into the field",
         slot::six_with_unit(statement, asked.slot.unit, value)
-    )
+    );
+    let holds = |segment: &&Segment| segment.from.at() <= value && value <= segment.to.at();
+    match asked.outcomes.iter().find(holds).filter(|_| asked.met.is_none()) {
+        Some(segment) => format!("{put}: {}", happens(statement, &segment.story)),
+        None => put,
+    }
 }
 
 /// Why it was looked for where it was.
