@@ -721,9 +721,8 @@ impl Page {
         } else {
             self.problems.aloud().to_owned()
         };
-        if !words.is_empty() {
-            self.live.speak(&words);
-        }
+        // Where there is nothing to say, nothing that was wrong before stays said.
+        self.live.speak(&words);
     }
 
     /// Says what decided the engagement, once nobody is waiting for the pictures.
