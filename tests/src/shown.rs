@@ -37,6 +37,8 @@ pub fn worked(link: &str) -> Worked {
 pub fn links() -> Vec<String> {
     let absurd = [
         DEMO,
+        // Its break line begins with a step.
+        "x.start=0&x.break=0.2&x.fire=logarithmic&y.start=621&y.break=0.5&x.rate=0.017369&y.rate=0.057282&x.flow=280.67@1.118/4.118&y.wastage=0.0083757",
         "x.start=600&x.rate=0.04&y.start=400&y.rate=0.09",
         "x.start=600&x.rate=0.04&x.break=0.3&y.start=400&y.rate=0.09&y.break=0.3",
         "x.start=1e9&x.rate=1e9&y.start=1&y.rate=1e-9",

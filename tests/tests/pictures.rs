@@ -207,3 +207,21 @@ fn tables_run_from_start_to_end() {
         }
     }
 }
+
+/// What jumps has both its ends in the table, so that nobody seems to appear between two rows.
+#[test]
+fn a_jump_has_two_rows() {
+    let worked = worked("x.start=600&x.rate=0.04&y.start=400&y.rate=0.06&y.break=0.39&y.join=64@4");
+    let rows = &worked.strength.table.rows;
+    let before = rows
+        .iter()
+        .position(|row| row[0] == "just before 4")
+        .expect("a row before");
+    let number = |row: usize| rows[row][2].parse::<f64>().expect("a number");
+    assert_eq!(rows[before + 1][0], "4");
+    assert!(
+        (number(before + 1) - number(before) - 64.0).abs() < 1e-3,
+        "{rows:?}"
+    );
+    assert_eq!(rows[before][1], rows[before + 1][1]);
+}

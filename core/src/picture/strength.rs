@@ -2,6 +2,7 @@
 
 use super::{Axes, Axis, Line, POINTS, Picture, Role, STEPS, Spot, Table, steps};
 use crate::fight::{Fight, break_line as break_line_at_start};
+use crate::order::sort_by;
 use crate::outcome::{Breaks, Ended};
 use crate::sides::{Both, Side};
 use crate::statement::{Statement, Values};
@@ -137,7 +138,7 @@ fn break_lines(
         let named = match place + 1 == count {
             true => format!("{}: {} breaks", in_words(level), statement.names[side]),
             // One that moves all the while has no number.
-            false if points[points.len() - 2].1 == level => in_words(level),
+            false if points.iter().rev().nth(1).is_some_and(|before| before.1 == level) => in_words(level),
             false => String::new(),
         };
         Line {
@@ -149,7 +150,8 @@ fn break_lines(
     levels.into_iter().enumerate().map(line).collect()
 }
 
-/// A line over time cut where it steps at one moment; each part but the first begins with the step.
+/// A line over time cut where it steps at one moment; each part but the first begins with the step. What lasts for a moment
+/// only is no part.
 fn levels(points: Vec<(f64, f64)>) -> Vec<Vec<(f64, f64)>> {
     let mut levels: Vec<Vec<(f64, f64)>> = Vec::new();
     let mut before: Option<(f64, f64)> = None;
@@ -161,6 +163,7 @@ fn levels(points: Vec<(f64, f64)>) -> Vec<Vec<(f64, f64)>> {
         }
         before = Some(point);
     }
+    levels.retain(|level| level.len() > 1);
     levels
 }
 
@@ -203,13 +206,30 @@ fn table(statement: &Statement, trajectory: &Trajectory, shown: f64) -> Table {
         format!("{} ({})", names.x, statement.counted),
         format!("{} ({})", names.y, statement.counted),
     ];
-    let row = |part: f64| {
-        let at = trajectory.strengths_at(shown * part);
-        vec![six(shown * part), six(at.x), six(at.y)]
+    // A jump has two rows, its former end first.
+    let mut rows: Vec<(f64, bool, Both<f64>)> = Vec::new();
+    for (place, stretch) in trajectory.stretches.iter().enumerate().skip(1) {
+        let (time, before) = (stretch.from, trajectory.strengths_before(place));
+        let after = trajectory.strengths_at(time);
+        if before != after && time <= shown {
+            rows.extend([(time, false, before), (time, true, after)]);
+        }
+    }
+    let even = steps(STEPS).map(|part| shown * part);
+    rows.extend(even.map(|time| (time, true, trajectory.strengths_at(time))));
+    sort_by(&mut rows, |a, b| a.0.total_cmp(&b.0).then(a.1.cmp(&b.1)));
+    rows.dedup_by_key(|row| (row.0, row.1));
+    let row = |(time, behind, at): (f64, bool, Both<f64>)| {
+        let when = if behind {
+            six(time)
+        } else {
+            format!("just before {}", six(time))
+        };
+        vec![when, six(at.x), six(at.y)]
     };
     Table {
         heads,
-        rows: steps(STEPS).map(row).collect(),
+        rows: rows.into_iter().map(row).collect(),
     }
 }
 
