@@ -141,6 +141,8 @@ fn the_example_shows_what_it_is_told() {
     assert_eq!(browser.text("#sentence"), native_sentence(&text));
     assert_eq!(browser.text("#caution"), caution::SHORT);
     assert_eq!(browser.text("#marking"), "EXERCISE");
+    let mark = text_mark(&Pairs::parse(&text));
+    assert_eq!(browser.text("#mark"), format!("Text mark {mark}"));
     let script = "document.getElementById('text').value = arguments[0];";
     browser.script(script, vec!["x.start=1,000&x.rate=1&y.start=4&y.rate=<b>".into()]);
     browser.click("#work");
@@ -149,7 +151,22 @@ fn the_example_shows_what_it_is_told() {
         shown.contains("x.start: write 1000, without marks for thousands"),
         "{shown}"
     );
+    assert!(!shown.contains('`'), "{shown}");
     assert_eq!(browser.text("#figures"), "", "no figures of another text");
+    assert_eq!(browser.text("#mark"), "");
+    // A question about a number that has no value now has an answer and no figures.
+    let question = "x.start=?&x.rate=0.04&y.start=464&y.rate=0.05";
+    browser.script(script, vec![LINK.into()]);
+    browser.click("#work");
+    browser.wait_text("#figures", "600.0");
+    browser.script(script, vec![question.into()]);
+    browser.click("#work");
+    assert_eq!(
+        browser.text("#sentence"),
+        sentence_of(&answer(question), question)
+    );
+    assert_eq!(browser.text("#figures"), "", "no figures of another text");
+    assert_eq!(browser.text("#caution"), caution::SHORT);
     browser.picture("interface");
     browser.assert_clean();
 }

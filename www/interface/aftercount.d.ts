@@ -3,23 +3,36 @@ declare const aftercount: {
   /** Settles once texts can be worked out; fails where the browser has no WebAssembly, or a policy forbids it. */
   readonly ready: Promise<void>;
   /** Works out the text of an engagement. It never throws: what is wrong is a value. */
-  outcome(text: string): AftercountOutcome | AftercountProblems;
+  outcome(text: string): AftercountOutcome | AftercountQuestion | AftercountProblems;
   /** The version, with a fingerprint of the build. */
   readonly version: string;
 };
 
 type AftercountMethod = "closed form" | "quadrature" | "integration";
 
-/** Where a number in question has no value now, only `asked`, `caution` and the words about the text are there. */
-interface AftercountOutcome {
+/** What every answer to a text that can be worked out has. */
+interface AftercountWords {
   ok: true;
+  /** Belongs wherever the outcome is shown. */
+  caution: string;
+  /** The outcome in words, and the answer to each question. */
+  sentence: string;
+  /** The handling marking of the text; show it with the outcome. */
+  marking: string | null;
+  /** The text as Aftercount writes it. */
+  link: string;
+  /** The fingerprint of that text, as on the page. */
+  text_mark: string;
+}
+
+interface AftercountOutcome extends AftercountWords {
   /** The answers to numbers in question, as on the command line; only where the text has such. */
   asked?: object[];
   /** Who breaks first. */
   breaks: "x" | "y" | "both" | "neither";
   /** When, in the text's unit of time; null if nobody breaks. */
   time: number | null;
-  ended: "break" | "clock" | "limit" | "equilibrium" | "growth" | "withdrawn";
+  ended: "break" | "clock" | "limit" | "equilibrium" | "growth" | "withdrawn" | "unfinished";
   /** Who would be left if no side broke and no clock ran. */
   to_the_last: "x" | "y" | "parity" | null;
   /** When a side that fades without ever reaching 0 falls below one. */
@@ -33,16 +46,14 @@ interface AftercountOutcome {
   /** The weakest method used. */
   method: AftercountMethod;
   pieces: { from: number; to: number | null; method: AftercountMethod }[];
-  /** Belongs wherever the outcome is shown. */
-  caution: string;
-  /** The outcome in words. */
-  sentence: string;
-  /** The handling marking of the text; show it with the outcome. */
-  marking: string | null;
-  /** The text as Aftercount writes it. */
-  link: string;
-  /** The fingerprint of that text, as on the page. */
-  text_mark: string;
+}
+
+/** Where a number in question has no value now there is an answer to the question, and no outcome: `breaks` tells. */
+interface AftercountQuestion extends AftercountWords {
+  asked: object[];
+  breaks?: undefined;
+  x?: undefined;
+  y?: undefined;
 }
 
 interface AftercountSide {

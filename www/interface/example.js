@@ -3,23 +3,31 @@
   "use strict";
   const at = (id) => document.getElementById(id);
 
+  // Text, never markup: a name may hold anything. What stands between grave accents is code.
+  function line({ key, problem }) {
+    const item = document.createElement("li");
+    (key ? "`" + key + "`: " + problem : problem).split("`").forEach((part, place) => {
+      const piece = document.createElement(place % 2 ? "code" : "span");
+      piece.textContent = part;
+      item.append(piece);
+    });
+    return item;
+  }
+
+  const shown = (figure) => (Number.isFinite(figure) ? figure.toFixed(1) : "without bound");
+
   function show(answer) {
     at("sentence").textContent = answer.ok ? answer.sentence : "This text cannot be worked out:";
     at("marking").textContent = (answer.ok && answer.marking) || "";
+    at("mark").textContent = answer.ok ? "Text mark " + answer.text_mark : "";
     at("caution").textContent = answer.ok ? answer.caution : "";
-    at("figures").hidden = !answer.ok;
-    at("problems").replaceChildren(...(answer.problems || []).map((problem) => {
-      const line = document.createElement("li");
-      // Text, never markup: a name may hold anything.
-      line.textContent = (problem.key ? problem.key + ": " : "") + problem.problem;
-      return line;
-    }));
-    for (const side of answer.ok ? ["x", "y"] : []) {
-      const cells = at(side).querySelectorAll("td");
-      const { start, losses, end } = answer[side];
-      [start, losses.all, end].forEach((figure, place) => {
-        cells[place].textContent = figure === null ? "without bound" : figure.toFixed(1);
-      });
+    at("problems").replaceChildren(...(answer.problems || []).map(line));
+    // Where a number in question has no value now, there is an answer to it and no figures.
+    at("figures").hidden = !answer.x;
+    for (const side of ["x", "y"]) {
+      const left = answer[side];
+      const figures = left ? [left.start, left.losses.all, left.end].map(shown) : ["", "", ""];
+      at(side).querySelectorAll("td").forEach((cell, place) => { cell.textContent = figures[place]; });
     }
   }
 
