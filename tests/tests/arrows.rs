@@ -166,7 +166,7 @@ fn the_core_calls_no_function_whose_bits_differ() {
         assert_eq!(core_lines_with(&[called.as_str()]), Vec::<String>::new());
     }
     let mut past_it = core_lines_with(&["disallowed_methods", "disallowed_types", "f32"]);
-    // serde's trait asks for a way to write one; it is left to serde_json, as no answer holds any.
+    // serde's trait asks for a way to write one, which is none, as no answer holds any.
     past_it.retain(|line| !line.contains("serialize_f32("));
     assert_eq!(past_it, Vec::<String>::new());
 }
