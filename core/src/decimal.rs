@@ -2,6 +2,8 @@
 //!
 //! 0.04 times 24 is 0.96. As doubles it would be 0.9600000000000001, which nobody typed.
 
+use crate::number;
+
 /// The significant digits that are kept of a text; a double has fewer than 18.
 const MOST_DIGITS: usize = 28;
 
@@ -26,7 +28,7 @@ struct Decimal {
 ///
 /// `None` for a text that is no number of the link.
 pub(crate) fn multiplied(text: &str, by: (u32, u32)) -> Option<String> {
-    let value = crate::number::read(text).ok()?;
+    let value = number::read(text).ok()?;
     if value == 0.0 || by.0 == by.1 {
         return Some(text.to_owned());
     }
@@ -104,7 +106,7 @@ impl Decimal {
             return Some(exact);
         }
         // A last 1 for all that is cut off keeps a half from being taken for one.
-        let nearest: f64 = format!("{digits}1e{}", exponent - 1).parse().ok()?;
+        let nearest = number::plain(&format!("{digits}1e{}", exponent - 1))?;
         let nearest = Decimal::of(&format!("{nearest:e}"))?;
         Some(Decimal {
             negative: self.negative,

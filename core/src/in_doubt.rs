@@ -2,6 +2,7 @@
 
 use crate::decimal::written as written_number;
 use crate::keys::{self, Kind, LARGEST};
+use crate::number;
 use crate::quantity::Quantity;
 
 /// The limits of a number: the least, whether that itself is excluded, and the greatest.
@@ -94,14 +95,14 @@ fn around(value: f64, limits: Limits) -> Option<String> {
         .1
         .parse::<i32>()
         .ok()?;
-    let whole: f64 = format!("{size}e{}", -decade).parse().ok()?;
+    let whole = number::plain(&format!("{size}e{}", -decade))?;
     let step = if whole * STEP >= 5.0 { 5.0 } else { 1.0 };
     let reach = |part: f64| whole * part / step;
     // What is a whole number of steps but for rounding is that number.
     let near = reach(1.0) * 1e-12;
     let least = libm::floor(reach(1.0 - DOUBT) + near) * step;
     let most = libm::ceil(reach(1.0 + DOUBT) - near) * step;
-    let written = |count: f64| -> Option<f64> { format!("{count}e{decade}").parse().ok() };
+    let written = |count: f64| number::plain(&format!("{count}e{decade}"));
     let (small, large) = (written(least)?, written(most)?);
     let (low, high) = if value < 0.0 {
         (-large, -small)
@@ -116,7 +117,6 @@ fn around(value: f64, limits: Limits) -> Option<String> {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::number;
 
     const ANY: Limits = Limits {
         low: 0.0,

@@ -24,6 +24,7 @@ pub mod laws;
 pub mod ledger;
 pub mod linear_system;
 pub mod mark;
+mod nearest_double;
 pub mod number;
 pub mod orbit_point;
 pub mod order;

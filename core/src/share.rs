@@ -134,8 +134,7 @@ fn first(problem: &Problem) -> String {
 }
 
 fn rounded(value: f64) -> String {
-    let rounded = format!("{value:.*e}", DIGITS - 1).parse().unwrap_or(value);
-    decimal::written(rounded)
+    decimal::written(number::rounded(value, DIGITS))
 }
 
 #[cfg(test)]

@@ -2,6 +2,7 @@
 
 use crate::dom::Dom;
 use crate::draw::{Ink, Measure, Measured, parse_colour};
+use aftercount_core::number;
 use plotters_canvas::CanvasBackend;
 use wasm_bindgen::JsCast;
 use web_sys::{CanvasRenderingContext2d, HtmlCanvasElement};
@@ -70,7 +71,7 @@ pub(crate) fn prepare(dom: &Dom, id: &str) -> Option<Canvas> {
 fn text_size(dom: &Dom) -> f64 {
     let style = dom.window.get_computed_style(&dom.root).ok().flatten();
     let size = style.and_then(|style| style.get_property_value("font-size").ok());
-    size.and_then(|size| size.trim_end_matches("px").parse().ok())
+    size.and_then(|size| number::plain(size.trim_end_matches("px")))
         .unwrap_or(USUAL_TEXT)
 }
 

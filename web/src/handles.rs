@@ -3,6 +3,7 @@
 use crate::dom::{Dom, append, set};
 use crate::draw::Layout;
 use crate::outcome::Good;
+use aftercount_core::number;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::picture::Axes;
 use aftercount_core::picture::handles::{Grip, Handle, dragged, handles, nudged};
@@ -204,7 +205,7 @@ fn written(pairs: &Pairs, good: &Good, numbers: Vec<(Place, String)>) -> Option<
     for (place, text) in numbers {
         let slot = all.iter().find(|slot| slot.place == place)?;
         // The same number stays as it was typed.
-        if text.parse().ok() != slot.value() {
+        if number::plain(&text) != slot.value() {
             put(&mut changed, slot, &text);
         }
     }

@@ -5,6 +5,7 @@ use crate::canvas;
 use crate::dom::{Dom, append, append_words, set};
 use crate::draw::{self, Ink};
 use aftercount_core::mark::text_mark;
+use aftercount_core::number;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::picture::Picture;
 use aftercount_core::problem::seen;
@@ -166,7 +167,7 @@ impl Paper {
         for math in (0..found.length()).filter_map(|at| found.item(at)?.dyn_into::<Element>().ok()) {
             let style = self.dom.window.get_computed_style(&math).ok().flatten();
             let letter = style.and_then(|style| style.get_property_value("font-size").ok());
-            let letter = letter.and_then(|size| size.trim_end_matches("px").parse::<f64>().ok());
+            let letter = letter.and_then(|size| number::plain(size.trim_end_matches("px")));
             let holder = math
                 .parent_element()
                 .and_then(|holder| holder.dyn_into::<HtmlElement>().ok());

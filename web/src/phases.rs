@@ -5,6 +5,7 @@ use crate::dom::{Dom, append, set};
 use crate::form;
 use aftercount_core::keys::{self, KEYS, Key, Place};
 use aftercount_core::laws::FireLaw;
+use aftercount_core::number;
 use aftercount_core::order::sort_by;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::sides::Side;
@@ -439,11 +440,7 @@ fn unit_of(pairs: &Pairs, number: u8, change: &str, unit: TimeUnit) -> String {
 
 /// The law of fire of a side in a phase: its own, or the last one given before it.
 fn law_in(pairs: &Pairs, number: u8, letter: &str) -> Option<FireLaw> {
-    let from = |number: u8| {
-        written(pairs, &format!("phase{number}.from"))?
-            .parse::<f64>()
-            .ok()
-    };
+    let from = |number: u8| number::plain(written(pairs, &format!("phase{number}.from"))?);
     let here = (from(number)?, number);
     let mut before: Vec<(f64, u8)> = (1..=MOST)
         .filter_map(|number| Some((from(number)?, number)))

@@ -2,6 +2,7 @@
 
 use super::answer::{Asked, End};
 use crate::decimal::written;
+use crate::number;
 use crate::quantity::Quantity;
 use crate::slots::Slot;
 
@@ -79,14 +80,14 @@ fn in_question(slot: &Slot, value: f64) -> String {
 
 /// What is written for a number in question that a place on a map is put into: to three digits, within its limits.
 pub fn near_text(slot: &Slot, value: f64) -> String {
-    let rounded: f64 = format!("{value:.2e}").parse().unwrap_or(value);
+    let rounded = number::rounded(value, 3);
     let kept = if slot.limits.hold(rounded) { rounded } else { value };
     in_question(slot, kept)
 }
 
 /// The number of so many digits behind the first next to `value`, above it or below it.
 fn rounded(value: f64, digits: usize, up: bool) -> f64 {
-    let near: f64 = format!("{value:.digits$e}").parse().unwrap_or(value);
+    let near = number::rounded(value, digits + 1);
     let right = if up { near > value } else { near < value };
     if right {
         return near;
@@ -96,7 +97,7 @@ fn rounded(value: f64, digits: usize, up: bool) -> f64 {
         libm::floor(libm::log10(value.abs().max(f64::MIN_POSITIVE))) - digits as f64,
     );
     let next = if up { near + unit } else { near - unit };
-    format!("{next:.digits$e}").parse().unwrap_or(next)
+    number::rounded(next, digits + 1)
 }
 
 #[cfg(test)]

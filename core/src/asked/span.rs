@@ -179,5 +179,5 @@ fn rounded_up(value: f64) -> f64 {
     let step = libm::pow(10.0, libm::floor(libm::log10(value)) - 1.0);
     let up = libm::ceil(value / step * (1.0 - 1e-12)) * step;
     // Without the last bits that the powers of ten left.
-    format!("{up:.1e}").parse().unwrap_or(up)
+    crate::number::rounded(up, 2)
 }

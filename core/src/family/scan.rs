@@ -1,5 +1,6 @@
 //! Every change of a class along one number: scanned at given points, then halved down to the change itself.
 
+use crate::number;
 use crate::order::sort_by;
 
 /// Where the class changes between two values that are as near to each other as was asked.
@@ -204,7 +205,7 @@ fn middle(low: f64, high: f64, nothing: f64) -> f64 {
 /// The number of the fewest decimal digits from `low` to `high`, which are in order.
 pub(crate) fn shortest_between(low: f64, high: f64) -> f64 {
     let middle = 0.5 * low + 0.5 * high;
-    let written = (0..17).filter_map(|digits| format!("{middle:.digits$e}").parse::<f64>().ok());
+    let written = (1..=17).map(|digits| number::rounded(middle, digits));
     let mut inside = written.filter(|value| low <= *value && *value <= high);
     inside.next().unwrap_or(middle)
 }

@@ -82,7 +82,7 @@ pub fn usual_step(shown: f64) -> f64 {
     let exponent = exponent.split_once('e').map_or("0", |(_, exponent)| exponent);
     let candidates = ["1", "2", "5", "10"]
         .iter()
-        .filter_map(|digit| format!("{digit}e{exponent}").parse().ok());
+        .filter_map(|digit| number::plain(&format!("{digit}e{exponent}")));
     candidates
         .into_iter()
         .find(|step| *step >= least)

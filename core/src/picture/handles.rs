@@ -3,6 +3,7 @@
 
 use super::{Axes, Axis};
 use crate::fight::Fight;
+use crate::number;
 use crate::quantity::Quantity;
 use crate::sides::Side;
 use crate::slots::{Part, Place};
@@ -236,7 +237,7 @@ fn step(axis: &Axis) -> f64 {
 /// The power of ten that is no more than `least`.
 fn decade(least: f64) -> f64 {
     let exponent = libm::floor(libm::log10(least)) as i32;
-    format!("1e{exponent}").parse().unwrap_or(least)
+    number::plain(&format!("1e{exponent}")).unwrap_or(least)
 }
 
 /// A value in whole steps, without zeros at its end.

@@ -20,6 +20,8 @@ use crate::asked::outright;
 use crate::family::Tally;
 use crate::fight::{Effort, fight};
 use crate::keys::Unit;
+use crate::number;
+use crate::order::sort_by;
 use crate::outcome::{Breaks, Outcome};
 use crate::pairs::Pairs;
 use crate::sides::Side;
@@ -233,13 +235,13 @@ impl Reversal {
     /// first, strengths, rates and lengths that are 0 now behind the rest; then the numbers of which no value does.
     pub fn entries(&self) -> Vec<&Entry> {
         let mut entries: Vec<&Entry> = self.entries.iter().collect();
-        entries.sort_by(|a, b| a.before(b));
+        sort_by(&mut entries, |a, b| a.before(b));
         entries
     }
 
     /// The same, as a list of its own.
     pub fn into_entries(mut self) -> Vec<Entry> {
-        self.entries.sort_by(Entry::before);
+        sort_by(&mut self.entries, Entry::before);
         self.entries
     }
 
@@ -290,7 +292,7 @@ impl Reversal {
             ..FEWEST if least => written::beyond(now + SOME * whole * (found.value - now).signum(), now, 2),
             _ => written::beyond(found.value, now, digits),
         };
-        let value: f64 = text.parse().unwrap_or(found.value);
+        let value = number::plain(&text).unwrap_or(found.value);
         let near = if digits < FEWEST {
             least
         } else {

@@ -2,6 +2,7 @@
 
 use super::measure::Measure;
 use crate::keys::{LARGEST, Unit};
+use crate::order::sort_by;
 use crate::schedule::instants;
 use crate::slots::Slot;
 use crate::terms::Engagement;
@@ -55,7 +56,7 @@ pub(crate) fn outward(
     all.retain(|other| slot.limits.hold(*other) && *other <= furthest);
     let part = |keep: fn(f64, f64) -> bool| {
         let mut part: Vec<f64> = all.iter().copied().filter(|other| keep(*other, value)).collect();
-        part.sort_by(|a, b| (a - value).abs().total_cmp(&(b - value).abs()));
+        sort_by(&mut part, |a, b| (a - value).abs().total_cmp(&(b - value).abs()));
         part.dedup();
         part
     };

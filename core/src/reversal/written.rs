@@ -1,24 +1,22 @@
 //! A value rounded away from another, to the fewest digits that will do.
 
+use crate::number::rounded;
+
 /// `value` as it is written to `digits` significant digits, not on the side of `from`; plain decimals.
 pub(crate) fn beyond(value: f64, from: f64, digits: usize) -> String {
-    let nearest = decimal(value, digits);
+    let nearest = rounded(value, digits);
     if is_beyond(nearest, value, from) {
         return plain(nearest);
     }
     // The neighbour on the far side: a step of the last digit.
     let exponent = libm::floor(libm::log10(value.abs())) as i32;
     let step = libm::exp10(f64::from(exponent - digits as i32 + 1));
-    let stepped = decimal(nearest + (value - from).signum() * step, digits);
+    let stepped = rounded(nearest + (value - from).signum() * step, digits);
     plain(if is_beyond(stepped, value, from) {
         stepped
     } else {
         value
     })
-}
-
-fn decimal(value: f64, digits: usize) -> f64 {
-    format!("{value:.*e}", digits - 1).parse().unwrap_or(value)
 }
 
 fn is_beyond(written: f64, value: f64, from: f64) -> bool {

@@ -1,5 +1,6 @@
 //! How numbers are written for people: three significant digits in sentences, six in tables.
 
+use crate::number;
 use crate::statement::TimeUnit;
 
 /// The narrow space between thousands, which does not break a line.
@@ -32,7 +33,7 @@ pub fn significant(value: f64, digits: usize) -> String {
     }
     let decimals = usize::try_from(digits as i32 - 1 - exponent).unwrap_or(0);
     // Rounding to significant digits first: 12,345 to three is 12,300.
-    let rounded: f64 = scientific.parse().unwrap_or(value);
+    let rounded = number::plain(&scientific).unwrap_or(value);
     grouped(without_trailing_zeros(&format!("{rounded:.decimals$}")))
 }
 

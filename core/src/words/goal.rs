@@ -46,7 +46,7 @@ pub fn choices(statement: &Statement) -> Vec<Choice> {
 }
 
 fn two_digits(value: f64) -> f64 {
-    format!("{value:.1e}").parse().unwrap_or(value)
+    crate::number::rounded(value, 2)
 }
 
 /// A condition as a clause: "Ondrel prevails", "at least 80 of Ondrel are left".

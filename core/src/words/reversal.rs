@@ -3,6 +3,7 @@
 use super::format::{NARROW, NO_BREAK, per_cent, significant, three};
 use super::{sentence::breaks, slot};
 use crate::keys::Unit;
+use crate::number;
 use crate::outcome::Breaks;
 use crate::reversal::{A_DECADE, A_DECADE_INTEGRATED, Change, Entry, Kind, Reversal, Told};
 use crate::sides::{Both, Side};
@@ -143,9 +144,7 @@ fn row(statement: &Statement, entry: &Entry) -> Row {
 
 /// A value as it is written, with the short unit that it needs to be understood.
 fn value(statement: &Statement, slot: &Slot, written: &str) -> String {
-    let number = written
-        .parse()
-        .map_or(written.into(), |number| significant(number, 12));
+    let number = number::plain(written).map_or(written.into(), |number| significant(number, 12));
     with_unit(statement, slot, number)
 }
 

@@ -1,5 +1,6 @@
 //! The colours and the face of a picture.
 
+use aftercount_core::number::plain;
 use plotters::style::RGBColor;
 
 /// What a picture is drawn with. On the page it is read from the style sheet, so that both agree.
@@ -48,11 +49,8 @@ pub fn parse_colour(css: &str) -> Option<RGBColor> {
     let inside = inside.strip_prefix('(')?.strip_suffix(')')?;
     let mut parts = inside.split([',', ' ', '/']).filter(|part| !part.is_empty());
     let mut next = || {
-        parts
-            .next()?
-            .parse::<f64>()
-            .ok()
-            .map(|value| value.clamp(0.0, 255.0) as u8)
+        let value = plain(parts.next()?)?;
+        Some(value.clamp(0.0, 255.0) as u8)
     };
     Some(RGBColor(next()?, next()?, next()?))
 }

@@ -1,6 +1,7 @@
 //! Lines of equal value of a second reading, within the parts of a map that come out alike.
 
 use super::lattice::{At, FINEST, Lattice, cells};
+use crate::order::sort_by;
 
 /// The pieces of the line at `level`, in places of the lattice, from every cell whose corners are of one class and have a
 /// value each.
@@ -96,7 +97,7 @@ pub(super) fn chained(pieces: &[[(f64, f64); 2]]) -> Vec<Vec<(f64, f64)>> {
     for (place, piece) in pieces.iter().enumerate() {
         meeting.extend(piece.iter().map(|end| (key(*end), place as u32)));
     }
-    meeting.sort_unstable();
+    sort_by(&mut meeting, Ord::cmp);
     let mut used = vec![false; pieces.len()];
     let mut lines = Vec::new();
     for first in 0..pieces.len() {

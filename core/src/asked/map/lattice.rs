@@ -1,5 +1,7 @@
 //! A square lattice of points that is filled coarsely first, and finely only where neighbours differ.
 
+use crate::order::sort_by;
+
 /// Cells of the coarsest lattice along each axis.
 pub(super) const BASE: usize = 38;
 
@@ -113,7 +115,7 @@ pub(super) fn halving<P: Copy>(lattice: &Lattice<P>, step: usize, same: impl Fn(
         }
     }
     wanted.retain(|at| lattice.get(*at).is_none());
-    wanted.sort_unstable();
+    sort_by(&mut wanted, Ord::cmp);
     wanted.dedup();
     wanted
 }

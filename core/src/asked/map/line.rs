@@ -3,6 +3,7 @@
 //! Edges are numbers, and what is known of them stands in tables by that number.
 
 use super::lattice::{At, FINEST, Lattice, cells};
+use crate::order::sort_by;
 
 /// An edge of the finest lattice between two neighbouring points: twice the number of the point where it begins, and one more
 /// where it goes up.
@@ -83,7 +84,7 @@ impl Crossings {
                 }
             }
         }
-        found.edges.sort_unstable();
+        sort_by(&mut found.edges, Ord::cmp);
         found.edges.dedup();
         found
     }

@@ -16,6 +16,7 @@ use super::span::{Why, span};
 use super::story::{Sample, Story};
 use crate::family::{Family, Span, Tally};
 use crate::fight::Effort;
+use crate::order::sort_by;
 use crate::outcome::{Breaks, Ended, Outcome, ToTheLast};
 use crate::pairs::Pairs;
 use crate::sides::Both;
@@ -418,7 +419,7 @@ impl Chart {
             .filter(|(_, count)| *count > 0)
             .map(|(story, count)| (story, share(count)))
             .collect();
-        shares.sort_by(|a, b| b.1.total_cmp(&a.1));
+        sort_by(&mut shares, |a, b| b.1.total_cmp(&a.1));
         shares
     }
 
