@@ -157,9 +157,26 @@ fn texts(folder: &Path, passed_over: &[String]) -> Vec<String> {
     names
         .iter()
         .filter_map(read)
-        .map(|text| text.replace('\r', ""))
+        .map(|text| without_apache(&text.replace('\r', "")))
         .filter(|text| text.len() >= SHORTEST_TEXT)
         .collect()
+}
+
+/// A text that holds the MIT licence, and then the whole of the Apache License for those who contribute, without the latter:
+/// it is not what this copy is under.
+fn without_apache(text: &str) -> String {
+    const TITLE: &str = "Apache License";
+    const LAST: &str = "limitations under the License.";
+    let parts = text.split_once(MIT_BEGINS).and_then(|(_, after)| {
+        let (_, apache) = after.split_once(TITLE)?;
+        let (_, rest) = apache.split_once(LAST)?;
+        let before = text.len() - apache.len() - TITLE.len();
+        Some((text[..before].trim_end(), rest.trim_start()))
+    });
+    match parts {
+        Some((before, rest)) => format!("{before}\n(the text of the {TITLE} 2.0 is left out here)\n{rest}"),
+        None => text.to_owned(),
+    }
 }
 
 fn is_licence(name: &str) -> bool {
@@ -192,7 +209,27 @@ fn letters(text: &str) -> String {
 
 #[cfg(test)]
 mod tests {
-    use super::{is_licence, letters, passed_over, split_mit};
+    use super::{is_licence, letters, passed_over, split_mit, without_apache};
+
+    #[test]
+    fn the_licence_of_contributions_is_left_out_beside_that_of_the_copy() {
+        let apache = "   Apache License\n   Version 2.0\n\n long text; the Apache License again\n limitations under the License.";
+        let both = format!(
+            "Available under MIT:\n\nPermission is hereby granted, free\n---\n{apache}\n---\nCopyright A. Maker"
+        );
+        assert_eq!(
+            without_apache(&both),
+            "Available under MIT:\n\nPermission is hereby granted, free\n---\n\
+             (the text of the Apache License 2.0 is left out here)\n---\nCopyright A. Maker"
+        );
+        for whole in [
+            apache,
+            "Permission is hereby granted, free",
+            "Permission is hereby granted. Apache License or MIT",
+        ] {
+            assert_eq!(without_apache(whole), whole);
+        }
+    }
 
     #[test]
     fn mit_is_chosen_where_it_may_be() {
