@@ -5,7 +5,7 @@
 var aftercount = (function () {
   "use strict";
   const packed = "{{wasm}}";
-  const first = "{{unpacker}}"; // unpacks the rest
+  const first = "{{unpacker}}"; // unpacks the rest; in hexadecimal digits
   let compiled;
   let engine; // nothing until it is ready, and after it could not be started
 
@@ -38,9 +38,10 @@ var aftercount = (function () {
   async function unpack() {
     await null; // while this script runs, the glue would ask for its address, which it may not have
     {{unpacker-glue}}
-    const bytes = (text) => Uint8Array.from(atob(text), (letter) => letter.charCodeAt(0));
-    unpacker.initSync({ module: await WebAssembly.compile(bytes(first)) });
-    compiled = await WebAssembly.compile(unpacker.unpack(bytes(packed)));
+    const program = Uint8Array.from(first.match(/../g), (pair) => parseInt(pair, 16));
+    unpacker.initSync({ module: await WebAssembly.compile(program) });
+    const bytes = Uint8Array.from(atob(packed), (letter) => letter.charCodeAt(0));
+    compiled = await WebAssembly.compile(unpacker.unpack(bytes));
     start();
   }
 

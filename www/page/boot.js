@@ -14,6 +14,10 @@
     return bytes;
   }
 
+  function fromHex(text) {
+    return Uint8Array.from(text.match(/../g), (pair) => parseInt(pair, 16));
+  }
+
   // An instance of its own: the glue keeps its state in itself, so its text has to run again. The policy knows the text.
   function freshGlue() {
     if (traps === 0) return; // the page's own element has just run
@@ -62,7 +66,7 @@
   window.addEventListener("unhandledrejection", (event) => look(event.reason));
 
   Promise.resolve()
-    .then(() => WebAssembly.compile(decode(document.getElementById("unpacker").textContent)))
+    .then(() => WebAssembly.compile(fromHex(document.getElementById("unpacker").textContent)))
     .then((module) => unpacker.initSync({ module }))
     .then(() => WebAssembly.compile(unpacker.unpack(decode(document.getElementById("wasm").textContent))))
     .then((module) => { compiled = module; start(undefined); })

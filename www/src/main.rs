@@ -12,6 +12,7 @@ mod pack;
 mod policy;
 mod sides;
 mod sizes;
+mod tighten;
 mod toolchain;
 mod wasm;
 mod workspace;
@@ -92,8 +93,9 @@ fn build(workspace: &Workspace) -> Result<Finished> {
 
     let sheet = read(&workspace.page_source("index.html"))?;
     let template = sides::with_sides(&sheet, &read(&workspace.page_source("side.html"))?);
-    let style = read(&workspace.page_source("style.css"))?;
-    let boot = read(&workspace.page_source("boot.js"))?;
+    let template = tighten::page(&template)?;
+    let style = tighten::style(&read(&workspace.page_source("style.css"))?);
+    let boot = tighten::script("boot.js", &read(&workspace.page_source("boot.js"))?)?;
     inline::check("style.css", &style)?;
     inline::check("boot.js", &boot)?;
     inline::check("the glue", &bound.glue)?;
@@ -102,7 +104,7 @@ fn build(workspace: &Workspace) -> Result<Finished> {
 
     // Packed, since base64 makes it a third larger again; what unpacks it stands before it as it is.
     let encoded = BASE64.encode(pack::packed(&bound.wasm)?);
-    let first = BASE64.encode(&unpacker.wasm);
+    let first = pack::hex(&unpacker.wasm);
     let version = version(&[
         template.as_bytes(),
         style.as_bytes(),

@@ -17,9 +17,15 @@ pub(crate) fn packed(bytes: &[u8]) -> Result<Vec<u8>> {
     Ok(writer.finish()?)
 }
 
+/// Bytes as pairs of hexadecimal digits. What stands in the page as it is, and not packed, stands there so: gzip finds
+/// again in them what base64, which begins bytes at four places, hides.
+pub(crate) fn hex(bytes: &[u8]) -> String {
+    bytes.iter().map(|byte| format!("{byte:02x}")).collect()
+}
+
 #[cfg(test)]
 mod tests {
-    use super::packed;
+    use super::{hex, packed};
     use aftercount_unpack::unpacked;
 
     #[test]
@@ -47,6 +53,11 @@ mod tests {
             let small = packed(bytes).expect("it packs");
             assert!(unpacked(&small) == bytes, "{} bytes", bytes.len());
         }
+    }
+
+    #[test]
+    fn every_byte_has_two_digits() {
+        assert_eq!(hex(&[0, 7, 0x80, 0xff]), "000780ff");
     }
 
     #[test]

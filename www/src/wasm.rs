@@ -1,5 +1,6 @@
 //! Compiles the web crate to WebAssembly and makes its JavaScript glue.
 
+use std::collections::{BTreeMap, BTreeSet};
 use std::ffi::OsString;
 use std::io::BufReader;
 use std::path::{Path, PathBuf};
@@ -10,6 +11,7 @@ use cargo_metadata::camino::Utf8PathBuf;
 use cargo_metadata::{Artifact, Message, PackageId};
 use wasm_bindgen_cli_support::Bindgen;
 
+use crate::tighten;
 use crate::toolchain::{TARGET, rustc_prints};
 use crate::workspace::{Workspace, cargo};
 
@@ -171,10 +173,66 @@ pub(crate) fn bind(input: &Path, name: &str) -> Result<Bound> {
             "{package} brings JavaScript of its own, which the page has no place for"
         );
     }
+    let glue = tighten::script("the glue", &redeclarable(output.js(), name)?)?;
+    let module = output.wasm_mut();
+    let mut names = Names::default();
+    for import in module.imports.iter_mut() {
+        import.name = names.plain(&import.name);
+    }
     Ok(Bound {
-        glue: redeclarable(output.js(), name)?,
-        wasm: output.wasm_mut().emit_wasm(),
+        glue: names.put_into(&glue)?,
+        wasm: module.emit_wasm(),
     })
+}
+
+/// Names of imports without the fingerprints that wasm-bindgen gives them, since glue and program need no telling apart
+/// from other ones: what cannot be foretold cannot be packed, and they weighed as much as all the keys.
+#[derive(Default)]
+struct Names {
+    /// Each name that there was, with the one that it has now.
+    known: BTreeMap<String, String>,
+    taken: BTreeSet<String>,
+}
+
+impl Names {
+    /// `__wbg_arc_0123456789abcdef` is `arc`; a second one of a name has a number behind it.
+    fn plain(&mut self, name: &str) -> String {
+        let short = name.strip_prefix("__wbg_").unwrap_or(name);
+        let short = match short.rsplit_once('_') {
+            Some((short, print)) if is_fingerprint(print) && !short.is_empty() => short,
+            _ => short,
+        };
+        let numbered = (2..).map(|number| format!("{short}{number}"));
+        let mut choices = std::iter::once(short.to_owned()).chain(numbered);
+        let plain = choices
+            .find(|choice| !self.taken.contains(choice))
+            .unwrap_or_default();
+        self.taken.insert(plain.clone());
+        self.known.insert(name.to_owned(), plain.clone());
+        plain
+    }
+
+    /// Renames in the glue, where each name begins a line of its own.
+    fn put_into(&self, glue: &str) -> Result<String> {
+        let mut left = self.known.clone();
+        let mut renamed = String::with_capacity(glue.len());
+        for line in glue.lines() {
+            match line
+                .split_once(": ")
+                .map(|(name, rest)| (left.remove(name), rest))
+            {
+                Some((Some(plain), rest)) => renamed.extend([&plain, ": ", rest]),
+                _ => renamed.push_str(line),
+            }
+            renamed.push('\n');
+        }
+        ensure!(left.is_empty(), "the glue has no line for {:?}", left.keys());
+        Ok(renamed)
+    }
+}
+
+fn is_fingerprint(text: &str) -> bool {
+    text.len() == 16 && text.bytes().all(|byte| byte.is_ascii_hexdigit())
 }
 
 /// Turns the glue's `let` into `var`.
@@ -194,7 +252,37 @@ fn redeclarable(glue: &str, name: &str) -> Result<String> {
 
 #[cfg(test)]
 mod tests {
-    use super::redeclarable;
+    use super::{Names, redeclarable};
+
+    #[test]
+    fn imports_have_plain_names_on_both_sides() {
+        let mut names = Names::default();
+        for (name, plain) in [
+            ("__wbg_arc_df3f7eb77e59876f", "arc"),
+            ("__wbg_arc_0000000000000000", "arc2"),
+            ("__wbg_arc2_0000000000000001", "arc22"),
+            ("__wbg___wbindgen_throw_4c88d8bf264fd984", "__wbindgen_throw"),
+            ("__wbindgen_cast_0000000000000001", "__wbindgen_cast"),
+            (
+                "__wbindgen_init_externref_table",
+                "__wbindgen_init_externref_table",
+            ),
+            ("__wbg_short_df3f", "short_df3f"),
+        ] {
+            assert_eq!(names.plain(name), plain, "{name}");
+        }
+        let keys = [
+            "__wbg_arc_df3f7eb77e59876f",
+            "__wbg_arc_0000000000000000",
+            "__wbg_short_df3f",
+        ];
+        names.known.retain(|name, _| keys.contains(&name.as_str()));
+        let glue = "a: 1,\n__wbg_arc_df3f7eb77e59876f: function(a) {\n__wbg_arc_0000000000000000: b: c\n\
+                    __wbg_short_df3f: 1\n";
+        let renamed = names.put_into(glue).expect("all are there");
+        assert_eq!(renamed, "a: 1,\narc: function(a) {\narc2: b: c\nshort_df3f: 1\n");
+        assert!(names.put_into("a: 1").is_err(), "an import without its function");
+    }
 
     #[test]
     fn glue_can_run_twice() {

@@ -9,6 +9,11 @@ pub use lzma::unpacked;
 
 use wasm_bindgen::prelude::wasm_bindgen;
 
+/// Memory is asked for a few times in all and never given back: the usual allocator would be half of this program.
+#[cfg(target_arch = "wasm32")]
+#[global_allocator]
+static MEMORY: lol_alloc::LeakingPageAllocator = lol_alloc::LeakingPageAllocator;
+
 /// The bytes that were packed: see [`unpacked`].
 #[wasm_bindgen]
 pub fn unpack(packed: &[u8]) -> Vec<u8> {
