@@ -79,6 +79,14 @@ fn a_text_in_and_an_outcome_out() {
     ] {
         assert_eq!(outcome(&browser, text), native(text), "{text}");
     }
+    // What the driver could not hand on: numbers without bound.
+    let script = "const { x } = aftercount.outcome(arguments[0]);
+        return [x.joined, x.committed, x.losses.all, x.end].map(String);";
+    let endless = browser.script(
+        script,
+        vec!["x.start=600&x.fire=none&y.start=400&y.fire=none&x.flow=5@0/".into()],
+    );
+    assert_eq!(endless, json!(["Infinity", "Infinity", "0", "null"]));
     let good = outcome(&browser, LINK);
     assert_eq!(good["caution"], caution::SHORT);
     assert_eq!(good["marking"], "EXERCISE");

@@ -8,6 +8,8 @@ use aftercount_core::statement::Statement;
 use aftercount_core::words::asked;
 use aftercount_core::words::sentence::sentence;
 use js_sys::Reflect;
+use serde::Serialize;
+use serde_wasm_bindgen::Serializer;
 use wasm_bindgen::JsValue;
 use wasm_bindgen::prelude::wasm_bindgen;
 
@@ -30,10 +32,12 @@ pub fn outcome(text: &JsValue) -> JsValue {
     object
 }
 
-/// The object that the line of the command line stands for: by way of its text, since that is there anyhow, and a second
-/// way to write an answer would weigh some kilobytes.
+/// The object that the line of the command line stands for; what has no bound is `Infinity`, which JSON has no number for.
 fn object(answer: &Answer) -> JsValue {
-    js_sys::JSON::parse(&answer.to_json()).unwrap_or(JsValue::NULL)
+    // Every kind of value in an answer has one in JavaScript.
+    answer
+        .serialize(&Serializer::json_compatible())
+        .unwrap_or(JsValue::NULL)
 }
 
 fn add_words(object: &JsValue, answer: &Answer, statement: &Statement, pairs: &Pairs) {

@@ -58,6 +58,7 @@ interface AftercountQuestion extends AftercountWords {
 
 interface AftercountSide {
   start: number;
+  /** Infinity where reinforcement never ends; so are what was committed and lost then. */
   joined: number;
   withdrawn: number;
   committed: number;
