@@ -196,6 +196,49 @@ fn two_questions_make_a_map_that_is_read_and_put() {
     browser.assert_clean();
 }
 
+/// Of two questions with what is wanted: the field for it is there, the map says where all of it holds, and whether it does at
+/// the place that is read; the sentence and the pictures go on paper and into a file.
+#[test]
+fn what_is_wanted_of_two_numbers_is_marked_and_read() {
+    let link = changed(&changed(LINK, "x.start", "600?"), "y.start", "400?");
+    let browser = Browser::opened(&link);
+    browser.settle(&link);
+    assert!(is_shown(&browser, "sothat") && !is_shown(&browser, "map-key-met"));
+    choose(&browser, "sothat.choice", "x.prevails");
+    browser.click("[id='sothat.add']");
+    let link = changed(&link, "sothat", "x.prevails");
+    browser.settle(&link);
+    assert_eq!(browser.text("#map-sentence"), mapped(&link));
+    assert!(
+        browser
+            .text("#map-sentence")
+            .contains("what is wanted, that Ondrel prevails, holds on ")
+    );
+    assert!(is_shown(&browser, "map-key-met"));
+    assert!(
+        browser
+            .text("#map-reading")
+            .contains("Not all that is wanted holds here: it leaves Vessary ")
+    );
+    for _ in 0..20 {
+        browser.press("#map-at", Key::Right);
+    }
+    let reading = browser.text("#map-reading");
+    assert!(reading.ends_with("All that is wanted holds here."), "{reading}");
+    assert!(
+        browser
+            .text("#map-table")
+            .contains("Vessary breaks first, as wanted")
+    );
+    let put = "dispatchEvent(new Event('beforeprint')); return document.querySelector('#map ~ .drawn svg title')?.textContent;";
+    let printed = browser.script(put, Vec::new());
+    assert_eq!(printed, browser.text("#map-words").as_str());
+    browser.script("dispatchEvent(new Event('afterprint'));", Vec::new());
+    browser.write("sothat", "x.wins");
+    browser.wait_text("[id='sothat.problem']", "is no condition");
+    browser.assert_clean();
+}
+
 /// Three questions are a problem beside the last of them.
 #[test]
 fn a_third_question_is_refused_in_place() {

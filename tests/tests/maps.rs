@@ -54,6 +54,15 @@ const MAPS: &[(&str, &str, &str)] = &[
     ),
 ];
 
+/// What may be wanted on each of them.
+const WANTED: &[&str] = &[
+    "y.prevails,y.end:280..",
+    "x.breaks,time:..8",
+    "x.end:430..",
+    "y.holds,x.lost:..150",
+    "x.prevails,time:..10",
+];
+
 fn link(row: &(&str, &str, &str)) -> String {
     row.0.replace("{}", row.1).replace("[]", row.2)
 }
@@ -118,6 +127,154 @@ fn parity_of_the_square_law_is_one_straight_line() {
         assert!((y - x / 1.5).abs() <= 1e-9 * 2400.0, "{x} {y}");
     }
     assert_eq!(flips[0]["between"].as_array().map(Vec::len), Some(2));
+}
+
+fn points(line: &Value) -> Vec<(f64, f64)> {
+    let points = line["points"].as_array().expect("a list").iter();
+    points
+        .map(|point| {
+            let [x, y] = [0, 1].map(|at| point[at].as_f64().expect("a number"));
+            (x, y)
+        })
+        .collect()
+}
+
+/// Every point of a line within which all conditions hold is an end of an interval of one number on which they do, and they
+/// hold on its left hand and not on its right.
+#[test]
+fn the_line_of_what_is_wanted_agrees_with_the_intervals_of_one_number() {
+    for (row, wanted) in MAPS.iter().zip(WANTED) {
+        let question = |text: &str| text.split_once('?').expect("a question").1.to_owned();
+        let (across, up) = (question(row.1), question(row.2));
+        let whole = format!("{}&sothat={wanted}", link(row));
+        let map = json(&whole)["asked"][0].clone();
+        let lines: Vec<Vec<(f64, f64)>> = map["met"]
+            .as_array()
+            .expect("a list")
+            .iter()
+            .map(points)
+            .collect();
+        let count: usize = lines.iter().map(Vec::len).sum();
+        assert!(count > 60 && map.get("nearest").is_none(), "{row:?}: {count}");
+        let share = map["met_share"].as_f64().expect("a number");
+        assert!(0.01 < share && share < 0.99, "{row:?}: {share}");
+        let ends = |link: &str| -> Vec<f64> {
+            let asked = json(link)["asked"][0].clone();
+            let met = asked["met"].as_array().expect("a list").clone();
+            let ends = met
+                .iter()
+                .flat_map(|met| [met["from"].as_f64(), met["to"].as_f64()]);
+            ends.flatten().collect()
+        };
+        let off = |link: &str, value: f64| {
+            ends(link)
+                .iter()
+                .map(|end| apart(*end, value))
+                .fold(1.0, f64::min)
+        };
+        for (a, b) in lines.iter().flatten().step_by(count / 12) {
+            let with = |x: String, y: String| {
+                format!("{}&sothat={wanted}", row.0.replace("{}", &x).replace("[]", &y))
+            };
+            let along = off(&with(format!("?{across}"), b.to_string()), *a);
+            let upwards = off(&with(a.to_string(), format!("?{up}")), *b);
+            assert!(
+                along.min(upwards) < 1e-9,
+                "{whole} at {a}, {b}: {along:e}, {upwards:e}"
+            );
+        }
+        let (_, mut chart) = chart(&whole);
+        let [width, height] = chart.spans().map(|span| span.high - span.low);
+        let mut holds = |x: f64, y: f64| {
+            let outcome = chart.outcome([x, y]);
+            chart.missing([x, y], &outcome).is_none()
+        };
+        let (mut wrong, mut seen) = (0, 0);
+        for pair in lines.iter().flat_map(|line| line.windows(2)).step_by(count / 40) {
+            let ((x, y), (to_x, to_y)) = (pair[0], pair[1]);
+            let (dx, dy) = ((to_x - x) / width, (to_y - y) / height);
+            let (half_x, half_y) = (x + (to_x - x) / 2.0, y + (to_y - y) / 2.0);
+            let part = 0.1;
+            let left = holds(half_x - part * dy * width, half_y + part * dx * height);
+            let right = holds(half_x + part * dy * width, half_y - part * dx * height);
+            seen += 1;
+            wrong += u32::from(!left || right);
+        }
+        // Where two conditions meet the line has a corner, and no sides at it.
+        assert!(seen > 30 && wrong <= 2, "{whole}: {wrong} of {seen}");
+    }
+}
+
+/// The marked ground agrees with the conditions at every place that is looked at, but for those next to a line.
+#[test]
+fn what_is_wanted_holds_where_the_ground_says_so() {
+    for (row, wanted) in MAPS.iter().zip(WANTED) {
+        let (statement, mut chart) = chart(&format!("{}&sothat={wanted}", link(row)));
+        let (mut wrong, mut met, mut count) = (0, 0, 0);
+        for up in (3..FINEST).step_by(13) {
+            for across in (5..FINEST).step_by(13) {
+                let values = chart.values([across, up].map(|place| place as f64 / FINEST as f64));
+                let outcome = chart.outcome(values);
+                let holds = statement.so_that.iter().all(|goal| goal.holds(&outcome));
+                assert_eq!(chart.missing(values, &outcome).is_none(), holds);
+                count += 1;
+                met += u32::from(holds);
+                wrong += u32::from(holds != chart.is_met_at(across, up));
+            }
+        }
+        assert!(wrong <= 4, "{row:?}: {wrong} of {count}");
+        let share = chart.met_share().expect("there are conditions");
+        let counted = f64::from(met) / f64::from(count);
+        assert!((share - counted).abs() < 0.03, "{row:?}: {share} {counted}");
+        assert!(chart.fights() < 60_000, "{row:?}: {}", chart.fights());
+    }
+}
+
+/// Square law with conditions: at least 300 left of X is a hyperbola, 0.04·(x² − 300²) = 0.09·y².
+#[test]
+fn what_is_wanted_of_the_square_law_is_a_hyperbola() {
+    let link = "x.start=600?0..2400&y.start=400?0..1200&x.rate=0.04&y.rate=0.09&sothat=x.end:300..";
+    let map = json(link)["asked"][0].clone();
+    let lines = map["met"].as_array().expect("a list");
+    assert_eq!(lines.len(), 1);
+    for (x, y) in points(&lines[0]) {
+        let off = 0.04 * (x * x - 90_000.0) - 0.09 * y * y;
+        assert!(off.abs() <= 1e-9 * 0.04 * 2400.0 * 2400.0, "{x} {y}: {off:e}");
+    }
+}
+
+/// In words: on how much of the map, or nowhere and how near the best comes; and at the place that is read.
+#[test]
+fn what_is_wanted_is_said_in_words() {
+    let base = "x.name=Ondrel&y.name=Vessary&x.start=600?100..400&y.start=?300..500&x.rate=0.05&y.rate=0.06&x.break=0.3&y.break=0.4";
+    let say = |wanted: &str| {
+        let (statement, chart) = chart(&format!("{base}&sothat={wanted}"));
+        words::map::sentence(&statement, &chart)
+    };
+    assert!(say("x.end:1000..").contains(
+        "what is wanted, that at least 1000 of Ondrel are left, holds nowhere on the map: the nearest place, 400 and"
+    ), "{}", say("x.end:1000.."));
+    assert!(say("x.end:0..").contains("at least 0 of Ondrel are left, holds all over the map; "));
+    assert!(say("x.prevails").contains("that Ondrel prevails, holds on "));
+    let none = json(&format!("{base}&sothat=x.end:1000.."))["asked"][0].clone();
+    assert_eq!(
+        (&none["met"], none["met_share"].as_f64()),
+        (&Value::Array(Vec::new()), Some(0.0))
+    );
+    assert!(
+        none["nearest"]["short"]
+            .as_f64()
+            .is_some_and(|short| short > 600.0)
+    );
+    assert_eq!(none["nearest"]["condition"], 1);
+    let (statement, mut chart) = chart(&format!("{base}&sothat=x.end:250.."));
+    let mut read = |values: [f64; 2]| {
+        let outcome = chart.outcome(values);
+        let missing = chart.missing(values, &outcome);
+        words::map::reading(&statement, &chart, values, &outcome, missing.as_ref())
+    };
+    assert!(read([390.0, 310.0]).ends_with("All that is wanted holds here."));
+    assert!(read([300.0, 450.0]).ends_with("Not all that is wanted holds here: it leaves Ondrel 40 short."));
 }
 
 /// The ground agrees with a fight at every place that is looked at, but for those next to a line.

@@ -387,6 +387,67 @@ fn closed_forms_of_parity_are_met() {
     assert!((rate - 1.96).abs() < 1e-10, "{rate}");
 }
 
+/// What small changes do, by formulas written out by hand: the square law to the last, b·x² − a·y² = b·w², and
+/// √b·x + √a·y falls as e^(−√(ab)·t); the linear law, b·(x − w) = a·(y − n).
+#[test]
+fn small_changes_are_as_the_formulas_say() {
+    let near = |found: Option<f64>, value: f64| {
+        let found = found.expect("it has one");
+        assert!(
+            (found - value).abs() <= 1e-11 * value.abs().max(1.0),
+            "{found}, not {value}"
+        );
+    };
+    let (x, y, b, a) = (600.0_f64, 400.0_f64, 0.04_f64, 0.05_f64);
+    let entries = reversal("x.start=600&x.rate=0.04&y.start=400&y.rate=0.05");
+    let left = (x * x - a / b * y * y).sqrt();
+    let pace = (a * b).sqrt();
+    let sum = b.sqrt() * x + a.sqrt() * y;
+    let time = (sum / (b.sqrt() * left)).ln() / pace;
+    for (slot, of_left, of_time) in [
+        (
+            "x.start",
+            x * x / (left * left),
+            (b.sqrt() * x / sum - x * x / (left * left)) / (pace * time),
+        ),
+        (
+            "y.start",
+            -a / b * y * y / (left * left),
+            (a.sqrt() * y / sum + a / b * y * y / (left * left)) / (pace * time),
+        ),
+        (
+            "x.rate",
+            a / b * y * y / (2.0 * left * left),
+            (0.5 * b.sqrt() * x / sum - 0.5 - a / b * y * y / (2.0 * left * left)) / (pace * time) - 0.5,
+        ),
+        (
+            "y.rate",
+            -a / b * y * y / (2.0 * left * left),
+            (0.5 * a.sqrt() * y / sum + a / b * y * y / (2.0 * left * left)) / (pace * time) - 0.5,
+        ),
+    ] {
+        let small = entry(&entries, slot).elasticity;
+        near(small.x, of_left);
+        near(small.time, of_time);
+        assert_eq!(small.y, None, "nothing is left of y");
+    }
+    // y breaks at half: of 100 lost by fire at an area, x has lost 0.0015/0.001 as many.
+    let entries =
+        reversal("x.start=600&x.fire=area&x.rate=0.001&y.start=200&y.fire=area&y.rate=0.0015&y.break=0.5");
+    let left = 600.0 - 150.0;
+    for (slot, of_left) in [
+        ("x.start", 600.0 / left),
+        ("y.start", -150.0 / left),
+        ("x.rate", 150.0 / left),
+        ("y.rate", -150.0 / left),
+        ("y.break", -150.0 / left),
+    ] {
+        near(entry(&entries, slot).elasticity.x, of_left);
+    }
+    near(entry(&entries, "y.break").elasticity.y, -1.0);
+    near(entry(&entries, "y.start").elasticity.y, 1.0);
+}
+
 /// The moments and strengths of the demo by the square law: from the start to the reserve, and from there.
 struct Demo;
 

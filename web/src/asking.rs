@@ -2,7 +2,7 @@
 
 use crate::canvas;
 use crate::dom::{Dom, append, append_words, set};
-use crate::draw::{self, Ink};
+use crate::draw::Ink;
 use crate::mapping::Mapping;
 use crate::outcome::show_table;
 use aftercount_core::asked::{Asked, Inquiry, Putting};
@@ -14,6 +14,9 @@ use aftercount_core::statement::Statement;
 use aftercount_core::words::asked as words;
 use aftercount_core::words::goal;
 use web_sys::HtmlSelectElement;
+
+/// The canvas of the picture.
+const PICTURE: &str = "asked-picture";
 
 /// How long the page works at a stretch, in milliseconds.
 const SLICE: f64 = 12.0;
@@ -56,6 +59,9 @@ impl Asking {
                 return;
             }
         }
+        self.show_choices(statement);
+        let echo = goal::goals(statement, &statement.so_that);
+        self.dom.set_text("sothat.echo", &sentence_of(&echo));
         self.dom.set_shown("asked-how", false);
         self.dom.mark_root(
             "data-asked",
@@ -67,14 +73,11 @@ impl Asking {
         self.statement = Some(statement.clone());
         self.dom.set_shown("asked", true);
         self.dom.set_attribute("asked", "aria-busy", "true");
-        self.show_choices(statement);
         for side in Side::BOTH {
             let id = format!("asked.{}.who", side.letter());
             self.dom.set_text(&id, &statement.names[side]);
         }
         self.dom.set_shown("met-key", !statement.so_that.is_empty());
-        let echo = goal::goals(statement, &statement.so_that);
-        self.dom.set_text("sothat.echo", &sentence_of(&echo));
     }
 
     /// Takes the answer off the page.
@@ -163,16 +166,14 @@ impl Asking {
     /// Draws the picture.
     pub(crate) fn draw(&mut self, ink: &Ink) -> Result<(), String> {
         self.mapping.draw(ink)?;
-        let (Some(picture), Some(mut canvas)) = (&self.picture, canvas::prepare(&self.dom, "asked-picture"))
-        else {
-            return Ok(());
-        };
-        draw::draw(&mut canvas.backend, canvas.scale, ink, picture).map(|_| ())
+        canvas::draw(&self.dom, PICTURE, ink, self.picture.as_ref()).map(|_| ())
     }
 
-    /// The picture of the answer, where there is one.
-    pub(crate) fn picture(&self) -> Option<&Picture> {
-        self.picture.as_ref()
+    /// The picture of the answer, or the map, with the canvas on which it stands and what was stated; where there is one.
+    pub(crate) fn picture(&self) -> Option<(&'static str, &Picture, &Statement)> {
+        let asked = self.picture.as_ref().zip(self.statement.as_ref());
+        let asked = asked.map(|(picture, statement)| (PICTURE, picture, statement));
+        asked.or_else(|| self.mapping.picture())
     }
 
     fn show(&mut self, pairs: &Pairs) {

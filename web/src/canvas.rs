@@ -1,8 +1,9 @@
 //! The page's canvases: more pixels than they show, and text measured by the canvas itself.
 
 use crate::dom::Dom;
-use crate::draw::{Ink, Measure, Measured, parse_colour};
+use crate::draw::{self, Ink, Layout, Measure, Measured, parse_colour};
 use aftercount_core::number;
+use aftercount_core::picture::Picture;
 use plotters_canvas::CanvasBackend;
 use wasm_bindgen::JsCast;
 use web_sys::{CanvasRenderingContext2d, HtmlCanvasElement};
@@ -65,6 +66,23 @@ pub(crate) fn prepare(dom: &Dom, id: &str) -> Option<Canvas> {
         scale,
         zoom: (text_size(dom) / USUAL_TEXT).min(width / LEAST_WIDTH).max(1.0),
     })
+}
+
+/// Draws a picture on the canvas under `id`; where its values stand, if it is shown at all.
+///
+/// # Errors
+/// In words, where it cannot be drawn.
+pub(crate) fn draw(
+    dom: &Dom,
+    id: &str,
+    ink: &Ink,
+    picture: Option<&Picture>,
+) -> Result<Option<Layout>, String> {
+    let (Some(picture), Some(mut canvas)) = (picture, prepare(dom, id)) else {
+        return Ok(None);
+    };
+    let field = draw::draw(&mut canvas.backend, canvas.scale * canvas.zoom, ink, picture)?;
+    Ok(Some(field.times(canvas.zoom)))
 }
 
 /// The size of the page's text, in CSS pixels.

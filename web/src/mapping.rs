@@ -16,6 +16,9 @@ use web_sys::HtmlSelectElement;
 /// How far an arrow key goes, as a part of an axis; with Shift ten times as far.
 const STEP: f64 = 0.01;
 
+/// The canvas of the map.
+const MAP: &str = "map";
+
 /// The map of the text.
 pub(crate) struct Mapping {
     dom: Dom,
@@ -130,6 +133,8 @@ impl Mapping {
                 let there = picture.ground.as_ref().is_some_and(|ground| ground.has(tone));
                 dom.set_shown(id, there);
             }
+            let wanted = chart.met_share().is_some_and(|share| share > 0.0);
+            dom.set_shown("map-key-met", wanted);
         }
         for side in Side::BOTH {
             let id = format!("map.{}.who", side.letter());
@@ -147,12 +152,15 @@ impl Mapping {
         chart.has_ground().then(|| words::sentence(statement, chart))
     }
 
+    /// The map as a picture, its canvas, and what was stated.
+    pub(crate) fn picture(&self) -> Option<(&'static str, &Picture, &Statement)> {
+        Some((MAP, self.picture.as_ref()?, self.statement.as_ref()?))
+    }
+
     /// Draws the map and the place that is read.
     pub(crate) fn draw(&mut self, ink: &Ink) -> Result<(), String> {
-        if let (Some(picture), Some(mut canvas)) = (&self.picture, canvas::prepare(&self.dom, "map")) {
-            let field = draw::draw(&mut canvas.backend, canvas.scale, ink, picture)?;
-            self.field = Some(field);
-        }
+        let field = canvas::draw(&self.dom, MAP, ink, self.picture.as_ref())?;
+        self.field = field.or(self.field);
         self.draw_place(ink)
     }
 
@@ -207,7 +215,8 @@ impl Mapping {
         };
         let values = chart.values(self.at);
         let outcome = chart.outcome(values);
-        let words = words::reading(statement, chart, values, &outcome);
+        let missing = chart.missing(values, &outcome);
+        let words = words::reading(statement, chart, values, &outcome, missing.as_ref());
         self.dom.set_text("map-reading", &words);
     }
 

@@ -17,7 +17,7 @@ use crate::listen::After;
 use crate::lists::{self, Act, Cell};
 use crate::live::{Live, QUIET};
 use crate::outcome::{self, Good};
-use crate::paper::{ASKED, Paper};
+use crate::paper::Paper;
 use crate::passing::Passing;
 use crate::phases::{Ask, Phases};
 use crate::plates::Plates;
@@ -35,6 +35,7 @@ use aftercount_core::demo::DEMO;
 use aftercount_core::mark::text_mark;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::passing::words::room;
+use aftercount_core::picture::Picture;
 use aftercount_core::problem::{Problem, seen};
 use aftercount_core::sides::Side;
 use aftercount_core::statement::Statement;
@@ -435,10 +436,12 @@ impl Page {
             .flatten()
             .find_map(|pairs| Some((pairs, Statement::read(pairs).ok()?)));
         let good = self.good.as_ref();
+        let asked = self.asking.picture();
+        let asked = asked.map(|(id, picture, _)| (id, Some(picture)));
         let pictures = [
             ("strength", good.and_then(|good| good.strength.as_ref())),
             ("orbit", good.and_then(|good| good.orbit.as_ref())),
-            (ASKED, self.asking.picture()),
+            asked.unwrap_or_default(),
         ];
         let stated = stated.as_ref().map(|(pairs, statement)| (*pairs, statement));
         self.paper.fill(&self.pairs, stated, &pictures);
@@ -552,6 +555,12 @@ impl Page {
         if news || self.asking.is_done() {
             self.frame.ask();
         }
+    }
+
+    /// The picture of the answer with what was stated, where the text as it stands has one.
+    pub(crate) fn asked_picture(&self) -> Option<(&Picture, &Statement)> {
+        let asked = self.asking.picture().filter(|_| self.current);
+        asked.map(|(_, picture, statement)| (picture, statement))
     }
 
     /// The pointer is over the map.

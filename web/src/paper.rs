@@ -22,9 +22,6 @@ const SIZE: (u32, u32) = (350, 300);
 /// That of a picture that has the sheet's whole width.
 const LARGE: (u32, u32) = (560, 340);
 
-/// The canvas of the picture of a question.
-pub(crate) const ASKED: &str = "asked-picture";
-
 /// The most CSS pixels that a picture of a frame is wide: then its letters are not smaller than others on the paper.
 const WIDEST: i32 = 600;
 
@@ -213,8 +210,8 @@ impl Paper {
                 let narrowed = width.min(WIDEST);
                 (narrowed as u32, (height * narrowed / width).max(120) as u32)
             }
-            None if id == ASKED => LARGE,
-            None => SIZE,
+            None if matches!(id, "strength" | "orbit") => SIZE,
+            None => LARGE,
         }
     }
 }

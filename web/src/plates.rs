@@ -5,7 +5,6 @@ use crate::dom::Dom;
 use crate::draw::{self, Ink, Layout};
 use crate::outcome::Good;
 use crate::reading::{Pointer, Reading};
-use aftercount_core::picture::Picture;
 use aftercount_core::words::reading;
 use web_sys::{HtmlButtonElement, HtmlElement};
 
@@ -32,24 +31,14 @@ impl Plates {
     /// Draws both pictures anew, and the reading line over them.
     pub(crate) fn draw(&mut self, good: &Good) -> Result<(), String> {
         self.ink = canvas::ink(&self.dom);
-        self.strength = self.draw_one("strength", good.strength.as_ref())?;
-        self.orbit = self.draw_one("orbit", good.orbit.as_ref())?;
+        let draw = |id: &str, picture| canvas::draw(&self.dom, id, &self.ink, picture);
+        (self.strength, self.orbit) = (
+            draw("strength", good.strength.as_ref())?,
+            draw("orbit", good.orbit.as_ref())?,
+        );
         self.reading.keep_within(good);
         self.show_reading(good);
         Ok(())
-    }
-
-    fn draw_one(&self, id: &str, picture: Option<&Picture>) -> Result<Option<Layout>, String> {
-        let (Some(picture), Some(mut canvas)) = (picture, canvas::prepare(&self.dom, id)) else {
-            return Ok(None);
-        };
-        draw::draw(
-            &mut canvas.backend,
-            canvas.scale * canvas.zoom,
-            &self.ink,
-            picture,
-        )
-        .map(|field| Some(field.times(canvas.zoom)))
     }
 
     /// Where the values of both pictures stand, as they were drawn last.

@@ -15,10 +15,10 @@ mod story;
 
 pub use answer::{Asked, Boundary, End, Met, Nearest, Segment};
 pub use inquiry::{Inquiry, STEPS};
-pub use map::{Chart, FINEST, Flip, Second};
+pub use map::{Chart, FINEST, Flip, Miss, Second};
 pub use outright::outright;
 pub use put::{Putting, near_text};
-pub use reply::{FlipLine, Mapped, Reply};
+pub use reply::{FlipLine, Mapped, MetLine, Reply};
 pub use span::Why;
 pub use story::{Sample, Story, Worst};
 

@@ -105,7 +105,8 @@ impl Sample {
     }
 }
 
-fn worst(engagement: &Engagement, outcome: &Outcome, goals: &[Goal]) -> Option<Worst> {
+/// The condition that is missed most; `None` where all are met.
+pub(super) fn worst(engagement: &Engagement, outcome: &Outcome, goals: &[Goal]) -> Option<Worst> {
     let short = goals.iter().enumerate().filter_map(|(goal, one)| {
         let short = one.short(engagement, outcome)?;
         Some(Worst {

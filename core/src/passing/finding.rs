@@ -25,6 +25,11 @@ pub struct Finding<'a> {
     pub version: &'a str,
 }
 
+/// "Text mark 6Z3K-X0PW, Aftercount 0.1.0".
+pub fn mark_and_version(pairs: &Pairs, version: &str) -> String {
+    format!("Text mark {}, Aftercount {version}", text_mark(pairs))
+}
+
 impl Finding<'_> {
     /// The finding with plain digits, a line each: the marking, the sentence, the answer to a question, the nearest
     /// reversal, the text mark with the version, the caution. What there is none of is left out.
@@ -36,16 +41,11 @@ impl Finding<'_> {
             &sentence,
             &asked,
             &reversal,
-            &self.mark_and_version(),
+            &mark_and_version(self.pairs, self.version),
             caution::SHORT,
         ];
         let lines = lines.into_iter().filter(|line| !line.is_empty());
         lines.collect::<Vec<_>>().join("\n")
-    }
-
-    /// "Text mark 6Z3K-X0PW, Aftercount 0.1.0".
-    pub fn mark_and_version(&self) -> String {
-        format!("Text mark {}, Aftercount {}", text_mark(self.pairs), self.version)
     }
 
     /// Lines for a wiki: a frame with title and size; and the plain link, the finding and the caution as text, which

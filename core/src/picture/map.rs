@@ -35,36 +35,46 @@ impl Tone {
 /// How every place of a map comes out.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Ground {
-    tones: Vec<Tone>,
+    /// How it comes out, and whether all that is wanted holds.
+    tones: Vec<(Tone, bool)>,
 }
 
 impl Ground {
     fn of(chart: &Chart) -> Ground {
         let tones: Vec<Tone> = chart.stories().iter().map(Tone::of).collect();
         let tone = |across: usize, up: usize| {
-            let story = chart.story_at(across, up)?;
-            tones.get(story).copied()
+            let tone = tones.get(chart.story_at(across, up)?).copied()?;
+            Some((tone, chart.is_met_at(across, up)))
         };
         let places = (0..=FINEST).flat_map(|up| (0..=FINEST).map(move |across| (across, up)));
         Ground {
             tones: places
-                .map(|(across, up)| tone(across, up).unwrap_or(Tone::Neither))
+                .map(|(across, up)| tone(across, up).unwrap_or((Tone::Neither, false)))
                 .collect(),
         }
     }
 
     /// The tone at parts of both axes, each from 0 to 1.
     pub fn tone(&self, across: f64, up: f64) -> Tone {
+        self.at(across, up).0
+    }
+
+    /// Whether all that is wanted holds there.
+    pub fn is_wanted(&self, across: f64, up: f64) -> bool {
+        self.at(across, up).1
+    }
+
+    fn at(&self, across: f64, up: f64) -> (Tone, bool) {
         let place = |part: f64| (part.clamp(0.0, 1.0) * FINEST as f64).round() as usize;
         self.tones
             .get(place(up) * (FINEST + 1) + place(across))
             .copied()
-            .unwrap_or(Tone::Neither)
+            .unwrap_or((Tone::Neither, false))
     }
 
     /// Whether anything has this tone.
     pub fn has(&self, tone: Tone) -> bool {
-        self.tones.contains(&tone)
+        self.tones.iter().any(|(one, _)| *one == tone)
     }
 }
 
@@ -90,6 +100,11 @@ pub fn map(statement: &Statement, chart: &Chart, second: Option<Second>) -> Opti
     lines.extend(chart.flips().into_iter().map(|flip| Line {
         role: Role::Flip,
         points: flip.points,
+        label: String::new(),
+    }));
+    lines.extend(chart.met_lines().into_iter().map(|points| Line {
+        role: Role::Wanted,
+        points,
         label: String::new(),
     }));
     let now = one.value().zip(other.value());

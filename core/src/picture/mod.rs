@@ -47,6 +47,8 @@ pub enum Role {
     Met,
     /// Where the outcome flips, on a map.
     Flip,
+    /// The edge of where all that is wanted holds, on a map.
+    Wanted,
     /// Where a second reading has the same value, on a map.
     Contour,
 }

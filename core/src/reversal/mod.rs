@@ -8,6 +8,7 @@
 mod aim;
 mod close_in;
 mod elasticity;
+mod exact;
 mod measure;
 mod outward;
 mod search;

@@ -14,7 +14,7 @@ pub struct Term {
 
 impl Term {
     /// The value at `strength`.
-    pub(super) fn at(&self, strength: f64) -> f64 {
+    pub(crate) fn at(&self, strength: f64) -> f64 {
         Power {
             coefficient: self.weight.into(),
             exponent: f64::from(self.order - 1.0),

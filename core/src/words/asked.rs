@@ -22,7 +22,10 @@ pub fn sentence(statement: &Statement, asked: &Asked) -> String {
 pub fn reply(statement: &Statement, reply: &Reply) -> String {
     match reply {
         Reply::One(asked) => sentence(statement, asked),
-        Reply::Two(map) => super::map::of_shares(statement, &map.slots, &map.shares),
+        Reply::Two(map) => {
+            let wanted = map.met_share.map(|share| (share, map.nearest));
+            super::map::of_shares(statement, &map.slots, &map.shares, wanted.as_ref())
+        }
     }
 }
 

@@ -2,8 +2,9 @@
 
 use super::asked::happens;
 use super::format::{per_cent, strength, three, time};
+use super::goal::{goals, short};
 use super::slot;
-use crate::asked::{Chart, FINEST, Second, Story};
+use crate::asked::{Chart, FINEST, Miss, Second, Story, Worst};
 use crate::outcome::Outcome;
 use crate::picture::Table;
 use crate::sides::Side;
@@ -12,32 +13,60 @@ use crate::statement::Statement;
 
 /// What the map shows in one sentence. It begins "In this model", so that it stays true when it is copied alone.
 pub fn sentence(statement: &Statement, chart: &Chart) -> String {
-    of_shares(statement, chart.slots(), &chart.shares())
+    let wanted = chart.met_share().map(|share| (share, chart.miss()));
+    of_shares(statement, chart.slots(), &chart.shares(), wanted.as_ref())
 }
 
-/// The same of a map as the batch door has it.
-pub fn of_shares(statement: &Statement, slots: &[Slot; 2], shares: &[(Story, f64)]) -> String {
-    let [one, other] = slots;
-    let (one, other) = (slot::name(statement, one), slot::name(statement, other));
+/// The same of a map as the batch door has it; `wanted` is on how much of it all conditions are met, and what comes nearest.
+pub fn of_shares(
+    statement: &Statement,
+    slots: &[Slot; 2],
+    shares: &[(Story, f64)],
+    wanted: Option<&(f64, Option<Miss>)>,
+) -> String {
+    let [one, other] = slots.each_ref().map(|slot| slot::name(statement, slot));
     let part = |(story, share): &(Story, f64)| {
         format!("{} on {} of the map", happens(statement, story), per_cent(*share))
     };
-    let parts: Vec<String> = shares.iter().map(part).collect();
-    if parts.is_empty() {
+    if shares.is_empty() {
         return format!(
             "In this model, with {one} and {other} in question, each fight takes too much work for a map: ask for one of them, or \
              in a smaller range."
         );
     }
+    let wanted = wanted.map(|(share, miss)| self::wanted(statement, slots, *share, miss.as_ref()));
+    let parts: Vec<String> = wanted.into_iter().chain(shares.iter().map(part)).collect();
     format!(
         "In this model, with {one} and {other} in question: {}.",
         parts.join("; ")
     )
 }
 
+/// "all that is wanted, that Ondrel prevails and at least 80 of Ondrel are left, holds on 31 % of the map".
+fn wanted(statement: &Statement, slots: &[Slot; 2], share: f64, miss: Option<&Miss>) -> String {
+    let all = goals(statement, &statement.so_that);
+    let holds = match miss {
+        Some(miss) => {
+            let [one, other] =
+                [0, 1].map(|which| slot::value(statement, slots[which].unit, miss.values[which]));
+            let short = short(statement, &statement.so_that, &miss.worst);
+            format!("nowhere on the map: the nearest place, {one} and {other}, {short}")
+        }
+        None if share >= 1.0 => "all over the map".into(),
+        None => format!("on {} of the map", per_cent(share)),
+    };
+    format!("what is wanted, that {all}, holds {holds}")
+}
+
 /// The place on the map and how it comes out there: "Ondrel's strength at the start 620, Vessary's strength at the start 410:
-/// Vessary breaks first, after 8.2 h; left: Ondrel 455, Vessary 246; …".
-pub fn reading(statement: &Statement, chart: &Chart, values: [f64; 2], outcome: &Outcome) -> String {
+/// Vessary breaks first, after 8.2 h; left: Ondrel 455, Vessary 246; …"; `missing` is what is missing of the conditions there.
+pub fn reading(
+    statement: &Statement,
+    chart: &Chart,
+    values: [f64; 2],
+    outcome: &Outcome,
+    missing: Option<&Worst>,
+) -> String {
     let place = chart.slots().iter().zip(values).map(|(one, value)| {
         format!(
             "{} {}",
@@ -62,8 +91,16 @@ pub fn reading(statement: &Statement, chart: &Chart, values: [f64; 2], outcome: 
             statement.names.x
         )
     });
+    let wanted = match missing {
+        _ if statement.so_that.is_empty() => String::new(),
+        None => ". All that is wanted holds here".into(),
+        Some(worst) => format!(
+            ". Not all that is wanted holds here: it {}",
+            short(statement, &statement.so_that, worst)
+        ),
+    };
     format!(
-        "{}: {}{}; left: {}, {}{}.",
+        "{}: {}{}; left: {}, {}{}{wanted}.",
         place.join(", "),
         happens(statement, &story),
         when.unwrap_or_default(),
@@ -107,9 +144,14 @@ pub fn where_looked(statement: &Statement, chart: &Chart) -> String {
         ""
     };
     format!(
-        "Looked at: {}; write `?low..high` behind a number to look elsewhere. {FINEST} × {FINEST} places where the outcome flips, \
-         fewer elsewhere, {} fights in all: an island smaller than a fortieth of the map may be missed.{cut_short}",
+        "Looked at: {}; write `?low..high` behind a number to look elsewhere. {FINEST} × {FINEST} places where the outcome \
+         flips{}, fewer elsewhere, {} fights in all: an island smaller than a fortieth of the map may be missed.{cut_short}",
         looked.join("; "),
+        if chart.goals().is_empty() {
+            ""
+        } else {
+            " or what is wanted begins to hold"
+        },
         chart.fights()
     )
 }
@@ -132,7 +174,12 @@ pub fn table(statement: &Statement, chart: &Chart) -> Table {
         let cells = (0..=STEPS).map(|across| {
             let story = chart.story_at(place(across), place(up));
             let story = story.and_then(|story| chart.stories().get(story));
-            story.map_or(String::new(), |story| happens(statement, story))
+            let wanted = if chart.is_met_at(place(across), place(up)) {
+                ", as wanted"
+            } else {
+                ""
+            };
+            story.map_or(String::new(), |story| happens(statement, story) + wanted)
         });
         let first = slot::six_with_unit(statement, other.unit, values(up)[1]);
         std::iter::once(first).chain(cells).collect()

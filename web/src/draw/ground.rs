@@ -13,6 +13,10 @@ const ROW: f64 = 1.0;
 /// Between two lines of a hatch, in CSS pixels.
 const HATCH: f64 = 9.0;
 
+/// Between two of the dots that say where all that is wanted holds, and half of what one is wide, in CSS pixels.
+const APART: f64 = 12.0;
+const DOT: f64 = 1.5;
+
 /// How far the tone is from the paper, out of 100.
 fn depth(tone: Tone) -> u16 {
     match tone {
@@ -34,6 +38,26 @@ pub(crate) fn draw(pen: &mut Pen<'_>, field: &Layout, ground: &Ground) -> Drawn 
         for piece in hatch(field, ground, rises, &tones) {
             pen.line(&piece, colour, 0.7, SOLID)?;
         }
+    }
+    dots(pen, field, ground)
+}
+
+/// Dots in rows, each row between those of the row before, where all that is wanted holds.
+fn dots(pen: &mut Pen<'_>, field: &Layout, ground: &Ground) -> Drawn {
+    let mut y = field.top + APART / 2.0;
+    let mut shift = 0.0;
+    while y < field.foot {
+        let mut x = field.left + APART / 2.0 + shift;
+        while x < field.right {
+            let (across, up) = parts(field, (x, y));
+            if ground.is_wanted(across, up) {
+                let (x, y) = (x - DOT, y - DOT);
+                pen.patch((x, y), (x + 2.0 * DOT, y + 2.0 * DOT), pen.ink.ink)?;
+            }
+            x += APART;
+        }
+        y += APART;
+        shift = APART / 2.0 - shift;
     }
     Ok(())
 }
@@ -102,10 +126,17 @@ fn hatch(field: &Layout, ground: &Ground, rises: bool, tones: &[Tone]) -> Vec<[P
     pieces
 }
 
-fn tone_at(field: &Layout, ground: &Ground, (x, y): Point) -> Tone {
-    let across = (x - field.left) / (field.right - field.left);
-    let up = (field.foot - y) / (field.foot - field.top);
+fn tone_at(field: &Layout, ground: &Ground, at: Point) -> Tone {
+    let (across, up) = parts(field, at);
     ground.tone(across, up)
+}
+
+/// A place as parts of both axes.
+fn parts(field: &Layout, (x, y): Point) -> (f64, f64) {
+    (
+        (x - field.left) / (field.right - field.left),
+        (field.foot - y) / (field.foot - field.top),
+    )
 }
 
 /// So much ink out of 100 on the paper.

@@ -30,6 +30,10 @@ pub(crate) fn draw(pen: &mut Pen<'_>, field: &Layout, picture: &Picture) -> Draw
         let points: Vec<Point> = line.points.iter().map(|point| field.place(*point)).collect();
         let (colour, width, dash) = hand(pen, line.role);
         pen.line(&points, colour, width, dash)?;
+        if line.role == Role::Wanted {
+            // Two thin lines side by side.
+            pen.line(&points, pen.ink.paper, width - 2.4, SOLID)?;
+        }
     }
     for line in &picture.lines {
         match line.role {
@@ -63,6 +67,7 @@ fn hand(pen: &Pen<'_>, role: Role) -> (RGBColor, f64, Dash) {
         Role::Now => (pen.ink.ink, 1.0, SHORT_DASH),
         Role::Met => (pen.ink.ink, 6.0, SOLID),
         Role::Flip => (pen.ink.ink, 2.4, SOLID),
+        Role::Wanted => (pen.ink.ink, 5.0, SOLID),
         Role::Contour => (pen.ink.ink, 0.9, SHORT_DASH),
     }
 }

@@ -157,9 +157,14 @@ impl<'a> Pen<'a> {
 
     /// A piece of blank paper between two corners.
     pub(crate) fn paper(&mut self, from: Point, to: Point) -> Drawn {
-        let paper = ShapeStyle::from(&self.ink.paper).filled();
+        self.patch(from, to, self.ink.paper)
+    }
+
+    /// A patch of one colour between two corners.
+    pub(crate) fn patch(&mut self, from: Point, to: Point, colour: RGBColor) -> Drawn {
+        let style = ShapeStyle::from(&colour).filled();
         let (from, to) = (self.coord(from), self.coord(to));
-        self.surface.rectangle(from, to, &paper)
+        self.surface.rectangle(from, to, &style)
     }
 
     /// The width of a label in CSS pixels.

@@ -1,13 +1,13 @@
 //! The pictures as files, with the marking, the outcome, the caution and the text mark inside.
 
-use super::{file_name, offer_text, with_finding};
+use super::{file_name, offer_text, version};
 use crate::canvas;
 use crate::dom::Dom;
 use crate::draw::{self, Around, Ink};
 use crate::listen::{After, Shared};
-use crate::outcome::Good;
 use crate::page::Page;
 use aftercount_core::caution;
+use aftercount_core::passing::finding::mark_and_version;
 use aftercount_core::passing::words;
 use aftercount_core::picture::Picture;
 use aftercount_core::problem::seen;
@@ -21,7 +21,7 @@ const SIZE: (u32, u32) = (800, 760);
 /// Pixels of the picture for each CSS pixel.
 const SCALE: f64 = 2.0;
 
-/// Offers the picture `strength` or `orbit` as SVG.
+/// Offers the picture `strength`, `orbit` or `asked` as SVG.
 pub(super) fn save_svg(page: &mut Page, name: &str) -> After {
     page.field_left();
     let ink = light(page.dom());
@@ -85,20 +85,24 @@ fn refuse(page: &mut Page) -> After {
 
 /// Does something with a picture and what stands around it; `None` where there is none.
 fn with_picture<T>(page: &Page, name: &str, act: impl FnOnce(&Picture, &Around) -> T) -> Option<T> {
-    let picture = |good: &Good| match name {
-        "strength" => good.strength.clone(),
-        "orbit" => good.orbit.clone(),
-        _ => None,
-    };
-    with_finding(page, |finding, good| {
-        let around = Around {
-            marking: seen(&good.statement.marking),
-            title: seen(&good.statement.title),
-            sentence: plain(&good.sentence()),
-            mark: finding.mark_and_version(),
-            caution: caution::SHORT.into(),
+    let (picture, statement, sentence) = if name == "asked" {
+        let (picture, statement) = page.asked_picture()?;
+        (picture, statement, page.asked()?)
+    } else {
+        let good = page.outcome()?;
+        let picture = if name == "orbit" {
+            &good.orbit
+        } else {
+            &good.strength
         };
-        picture(good).map(|picture| act(&picture, &around))
-    })
-    .flatten()
+        (picture.as_ref()?, &good.statement, good.sentence())
+    };
+    let around = Around {
+        marking: seen(&statement.marking),
+        title: seen(&statement.title),
+        sentence: plain(&sentence),
+        mark: mark_and_version(page.pairs(), &version(page.dom())),
+        caution: caution::SHORT.into(),
+    };
+    Some(act(picture, &around))
 }

@@ -13,7 +13,7 @@ pub(super) type Edge = u32;
 const NONE: Edge = Edge::MAX;
 
 /// One more than the largest edge.
-pub(super) const EDGES: usize = 2 * (FINEST + 1) * (FINEST + 1);
+const EDGES: usize = 2 * (FINEST + 1) * (FINEST + 1);
 
 fn edge((across, up): At, goes_up: bool) -> Edge {
     (2 * (up * (FINEST + 1) + across) + usize::from(goes_up)) as Edge
@@ -41,18 +41,59 @@ fn around((across, up): At) -> [Edge; 4] {
     ]
 }
 
+/// Lines through the lattice where classes meet, and where on each edge.
+#[derive(Clone, Debug, Default)]
+pub(super) struct Traced {
+    crossed: Crossings,
+    /// The part of each edge at which it is crossed; half-way where that is not known yet.
+    closed: Vec<f64>,
+}
+
+impl Traced {
+    /// Where the classes of neighbouring points differ.
+    pub(super) fn of<P: Copy>(lattice: &Lattice<P>, class: impl Fn(&P) -> u8) -> Traced {
+        Traced {
+            crossed: Crossings::of(lattice, class),
+            closed: vec![0.5; EDGES],
+        }
+    }
+
+    /// Every edge that is crossed, in order.
+    pub(super) fn edges(&self) -> impl Iterator<Item = Edge> {
+        self.crossed.edges.iter().copied()
+    }
+
+    /// Where an edge is crossed, as a part of it.
+    pub(super) fn put(&mut self, edge: Edge, part: f64) {
+        self.closed[edge as usize] = part;
+    }
+
+    /// The same, as parts of both axes.
+    pub(super) fn place(&self, edge: Edge) -> (f64, f64) {
+        let [from, to] = ends(edge);
+        let along =
+            |from: usize, to: usize| part(from) + (part(to) - part(from)) * self.closed[edge as usize];
+        (along(from.0, to.0), along(from.1, to.1))
+    }
+
+    /// The edges in order along each line; a line that closes ends with its first.
+    pub(super) fn chains(&self) -> Vec<Vec<Edge>> {
+        self.crossed.chains()
+    }
+}
+
 /// Where classes meet.
 #[derive(Clone, Debug, Default)]
-pub(super) struct Crossings {
+struct Crossings {
     /// Every edge whose ends are of two classes, in order.
-    pub(super) edges: Vec<Edge>,
+    edges: Vec<Edge>,
     /// The edges that an edge is connected with through the cells on its two sides.
     next: Vec<[Edge; 2]>,
 }
 
 impl Crossings {
     /// Every edge of the finest lattice whose ends are of two classes.
-    pub(super) fn of<P: Copy>(lattice: &Lattice<P>, class: impl Fn(&P) -> u8) -> Crossings {
+    fn of<P: Copy>(lattice: &Lattice<P>, class: impl Fn(&P) -> u8) -> Crossings {
         let mut found = Crossings {
             edges: Vec::new(),
             next: vec![[NONE; 2]; EDGES],
@@ -102,7 +143,7 @@ impl Crossings {
     }
 
     /// The edges in order along each line; a line that closes ends with its first.
-    pub(super) fn chains(&self) -> Vec<Vec<Edge>> {
+    fn chains(&self) -> Vec<Vec<Edge>> {
         let mut used = vec![false; EDGES];
         let mut chains = Vec::new();
         // Lines with ends first, so that none is begun in its middle; then those that close.

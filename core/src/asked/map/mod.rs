@@ -8,14 +8,17 @@
 mod contour;
 mod lattice;
 mod line;
+mod wanted;
 
 pub use lattice::FINEST;
+pub use wanted::Miss;
 
 use super::MOST_EVALUATIONS;
 use super::span::{Why, span};
-use super::story::{Sample, Story};
+use super::story::{Sample, Story, Worst};
 use crate::family::{Family, Span, Tally};
 use crate::fight::Effort;
+use crate::goals::Goal;
 use crate::order::sort_by;
 use crate::outcome::{Breaks, Ended, Outcome, ToTheLast};
 use crate::pairs::Pairs;
@@ -23,7 +26,7 @@ use crate::sides::Both;
 use crate::slots::{Slot, slots};
 use crate::statement::{Statement, Values};
 use lattice::{At, BASE, Lattice};
-use line::{Crossings, EDGES, Edge, ends};
+use line::{Edge, Traced, ends};
 
 /// How near, as a part of the axis, a flip is closed in on.
 const PRECISION: f64 = 1e-12;
@@ -54,12 +57,19 @@ impl Second {
 struct Point {
     class: u8,
     near: f64,
+    /// What is missing, where conditions are not met.
+    worst: Option<Worst>,
     time: Option<f64>,
     end: Both<f64>,
     ratio: Option<f64>,
 }
 
 impl Point {
+    /// What is told apart: how it comes out, and whether all conditions are met.
+    fn told(&self) -> (u8, bool) {
+        (self.class, self.worst.is_none())
+    }
+
     fn second(&self, second: Second) -> Option<f64> {
         let value = match second {
             Second::Time => self.time,
@@ -95,8 +105,17 @@ enum Stage {
         middles: Vec<At>,
         around: Vec<At>,
     },
-    Closing(Vec<Edge>),
+    Closing(Vec<(Kind, Edge)>),
     Done,
+}
+
+/// What a line is between.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+enum Kind {
+    /// Two stories.
+    Flip,
+    /// Where all conditions are met, and where they are not.
+    Met,
 }
 
 /// The search for the map of two numbers.
@@ -108,10 +127,10 @@ pub struct Chart {
     family: Family<2>,
     lattice: Lattice<Point>,
     stories: Vec<Story>,
+    goals: Vec<Goal>,
     stage: Stage,
-    crossed: Crossings,
-    /// The part of each edge at which the outcome flips; half-way where that is not known yet.
-    closed: Vec<f64>,
+    flips: Traced,
+    met: Traced,
     tally: Tally,
     most: u64,
     cut_short: bool,
@@ -143,8 +162,9 @@ impl Chart {
                 step: FINEST / BASE,
                 islands: true,
             },
-            crossed: Crossings::default(),
-            closed: vec![0.5; EDGES],
+            goals: statement.so_that.clone(),
+            flips: Traced::default(),
+            met: Traced::default(),
             tally: Tally::default(),
             most: MOST_EVALUATIONS,
             cut_short: false,
@@ -185,7 +205,7 @@ impl Chart {
     /// Ends the search with what is known: a flip that is not closed in on yet is put half-way.
     fn cut_short(&mut self) {
         if matches!(self.stage, Stage::Fighting { .. } | Stage::Islands { .. }) {
-            self.crossed = Crossings::of(&self.lattice, |point| point.class);
+            self.trace();
         }
         self.cut_short = true;
         self.stage = Stage::Done;
@@ -237,9 +257,13 @@ impl Chart {
                 }
             },
             Stage::Closing(edges) => match edges.pop() {
-                Some(edge) => {
-                    let part = self.close_in(edge);
-                    self.closed[edge as usize] = part;
+                Some((kind, edge)) => {
+                    let part = self.close_in(kind, edge);
+                    let traced = match kind {
+                        Kind::Flip => &mut self.flips,
+                        Kind::Met => &mut self.met,
+                    };
+                    traced.put(edge, part);
                 }
                 None => self.stage = Stage::Done,
             },
@@ -257,7 +281,7 @@ impl Chart {
     fn finer(&mut self, step: usize, islands: bool) -> Stage {
         if step > 1 {
             return Stage::Fighting {
-                places: lattice::halving(&self.lattice, step, |a, b| a.class == b.class),
+                places: lattice::halving(&self.lattice, step, |a, b| a.told() == b.told()),
                 step: step / 2,
                 islands,
             };
@@ -268,8 +292,16 @@ impl Chart {
                 around: Vec::new(),
             };
         }
-        self.crossed = Crossings::of(&self.lattice, |point| point.class);
-        Stage::Closing(self.crossed.edges.clone())
+        self.trace();
+        let flips = self.flips.edges().map(|edge| (Kind::Flip, edge));
+        let met = self.met.edges().map(|edge| (Kind::Met, edge));
+        Stage::Closing(flips.chain(met).collect())
+    }
+
+    /// The lines, as far as the lattice is known.
+    fn trace(&mut self) {
+        self.flips = Traced::of(&self.lattice, |point| point.class);
+        self.met = Traced::of(&self.lattice, |point| u8::from(point.worst.is_none()));
     }
 
     /// Looks at the middle of a coarse cell that was not halved; where it comes out otherwise than around it, the cell is
@@ -280,9 +312,9 @@ impl Chart {
         }
         let half = FINEST / BASE / 2;
         let (across, up) = (at.0 - half, at.1 - half);
-        let outside = self.lattice.get((across, up)).map(|point| point.class);
+        let outside = self.lattice.get((across, up)).map(|point| point.told());
         let middle = self.point(parts(at));
-        if Some(middle.class) == outside {
+        if Some(middle.told()) == outside {
             // Not put into the lattice: a middle without its edges would make a cell that is known in part.
             return;
         }
@@ -330,10 +362,11 @@ impl Chart {
                 outcome = aside;
             }
         }
-        let sample = Sample::of(values[0], self.family.member(values), &outcome, &[]);
+        let sample = Sample::of(values[0], self.family.member(values), &outcome, &self.goals);
         Point {
             class: self.class(sample.story),
             near: sample.near,
+            worst: sample.worst,
             time: sample.time,
             end: sample.end,
             ratio: outcome.loss_exchange_ratio,
@@ -349,12 +382,13 @@ impl Chart {
         u8::try_from(place).unwrap_or(u8::MAX)
     }
 
-    /// The part of an edge at which the outcome flips.
+    /// The part of an edge at which the outcome flips, or conditions begin to be met.
     ///
     /// How near the outcome is to the other falls smoothly to 0 on either side, with a bend between them: so the next guess
     /// is by the secant through the last two points of one side, and every fourth a halving, which is all that helps at a
-    /// jump.
-    fn close_in(&mut self, edge: Edge) -> f64 {
+    /// jump. What is missing of a condition is known on one side alone: a guess from there that went too far is tried again a
+    /// hair less far.
+    fn close_in(&mut self, kind: Kind, edge: Edge) -> f64 {
         let [begin, end] = ends(edge);
         let (from, to) = (parts(begin), parts(end));
         let (Some(first), Some(last)) = (self.lattice.get(begin), self.lattice.get(end)) else {
@@ -366,7 +400,14 @@ impl Chart {
                 from[1] + (to[1] - from[1]) * part,
             ]
         };
-        let (mut low, mut high) = (Nearing::from(0.0, first.near), Nearing::from(1.0, last.near));
+        // Where the story changes too, conditions mostly do because of it.
+        let one_sided = kind == Kind::Met && first.class == last.class;
+        let near = |point: &Point| match point.worst {
+            _ if !one_sided => point.near,
+            Some(worst) => worst.part,
+            None => f64::NAN,
+        };
+        let (mut low, mut high) = (Nearing::from(0.0, near(&first)), Nearing::from(1.0, near(&last)));
         let narrow = PRECISION * FINEST as f64;
         let mut on_low = false;
         for round in 0..90 {
@@ -374,27 +415,38 @@ impl Chart {
             if to - from <= narrow {
                 break;
             }
-            let side = if on_low { &low } else { &high };
-            let guess = side
-                .meets()
-                .filter(|guess| round % 4 != 3 && from < *guess && *guess < to);
+            let from_low = if one_sided { first.worst.is_some() } else { on_low };
+            let side = if from_low { &low } else { &high };
+            let guess = side.meets().map(|guess| match guess {
+                _ if one_sided && from_low && guess == to => to - narrow,
+                _ if one_sided && !from_low && guess == from => from + narrow,
+                _ => guess,
+            });
+            let guess = guess.filter(|guess| round % 4 != 3 && from < *guess && *guess < to);
             let part = guess.unwrap_or(from + (to - from) / 2.0);
             let point = self.point(along(part));
-            if point.near < TOUCHES && guess.is_some() {
+            if near(&point) < TOUCHES && guess.is_some() {
                 return part;
             }
-            on_low = point.class == first.class;
+            on_low = match kind {
+                Kind::Flip => point.class == first.class,
+                Kind::Met => point.worst.is_none() == first.worst.is_none(),
+            };
             let moved = if on_low { &mut low } else { &mut high };
-            moved.come_to(part, point.near);
+            moved.come_to(part, near(&point));
         }
         low.now.0 + (high.now.0 - low.now.0) / 2.0
     }
 
     /// How it comes out in a cell of the finest lattice; `None` before the coarsest is filled.
     pub fn story_at(&self, across: usize, up: usize) -> Option<usize> {
-        let (cell, _) = self.lattice.cell_around((across, up))?;
-        let nearest = self.lattice.get((across, up)).or(self.lattice.get(cell))?;
-        Some(usize::from(nearest.class))
+        self.nearest_to((across, up))
+            .map(|point| usize::from(point.class))
+    }
+
+    fn nearest_to(&self, at: At) -> Option<Point> {
+        let (cell, _) = self.lattice.cell_around(at)?;
+        self.lattice.get(at).or(self.lattice.get(cell))
     }
 
     /// How much of the map comes out in each way, the most first; empty before there is something to show.
@@ -403,11 +455,7 @@ impl Chart {
             return Vec::new();
         }
         let mut counts = vec![0_u32; self.stories.len()];
-        let places = (0..FINEST).step_by(2);
-        for (across, up) in places
-            .clone()
-            .flat_map(|up| places.clone().map(move |across| (across, up)))
-        {
+        for (across, up) in lattice::cells(2) {
             if let Some(count) = self.story_at(across, up).and_then(|story| counts.get_mut(story)) {
                 *count += 1;
             }
@@ -430,7 +478,7 @@ impl Chart {
 
     /// The lines along which the outcome flips.
     pub fn flips(&self) -> Vec<Flip> {
-        let chains = self.crossed.chains().into_iter();
+        let chains = self.flips.chains().into_iter();
         let story = |at: At| {
             self.stories
                 .get(usize::from(self.lattice.get(at)?.class))
@@ -439,7 +487,10 @@ impl Chart {
         chains
             .filter_map(|chain| {
                 let [begin, end] = ends(*chain.first()?);
-                let points = chain.iter().map(|edge| self.crossing(*edge)).collect();
+                let points = chain
+                    .iter()
+                    .map(|edge| self.crossing(&self.flips, *edge))
+                    .collect();
                 Some(Flip {
                     between: [story(begin)?, story(end)?],
                     points,
@@ -448,11 +499,8 @@ impl Chart {
             .collect()
     }
 
-    fn crossing(&self, edge: Edge) -> (f64, f64) {
-        let part = self.closed[edge as usize];
-        let [from, to] = ends(edge).map(parts);
-        let along = |axis: usize| from[axis] + (to[axis] - from[axis]) * part;
-        let values = self.values([along(0), along(1)]);
+    fn crossing(&self, traced: &Traced, edge: Edge) -> (f64, f64) {
+        let values = self.values(traced.place(edge).into());
         (values[0], values[1])
     }
 
