@@ -157,6 +157,55 @@ fn the_table_has_the_rows_that_were_asked_for() {
     browser.assert_clean();
 }
 
+/// The picture of what is asked, and the map, also where there is no outcome beside it.
+#[test]
+fn the_answer_to_a_question_is_passed_on_as_a_picture() {
+    let browser = opened();
+    let one = changed(LINK, "x.start", "?400..900");
+    let two = changed(
+        &changed(LINK, "x.start", "600?400..900"),
+        "y.start",
+        "400?200..600",
+    );
+    assert!(
+        !browser
+            .script(
+                "return document.getElementById('asked-files').checkVisibility();",
+                vec![]
+            )
+            .as_bool()
+            .unwrap_or(true)
+    );
+    for (link, axis) in [
+        (&one, "combatants left at the end"),
+        (&two, "Vessary's strength at the start"),
+    ] {
+        let link = changed(link, "sothat", "x.prevails");
+        browser.open(&link);
+        browser.settle(&link);
+        browser.press("[data-pass='asked.svg']", Key::Enter);
+        let mark = text_mark(&Pairs::parse(&link));
+        let svg = text_of(&browser, &format!("{mark}-asked.svg"));
+        let document = roxmltree::Document::parse(&svg).expect("SVG");
+        let texts: String = document.descendants().filter_map(|node| node.text()).collect();
+        for part in [
+            "EXERCISE – invented",
+            caution::SHORT,
+            &mark,
+            axis,
+            "In this model",
+        ] {
+            assert!(texts.contains(part), "{part}: {texts}");
+        }
+        browser.press("[data-pass='asked.png']", Key::Enter);
+        let png = browser.downloaded(&format!("{mark}-asked.png"));
+        assert_eq!(&png[..8], b"\x89PNG\r\n\x1a\n");
+        keep(&format!("passed-asked-{mark}.png"), &png);
+        keep(&format!("passed-asked-{mark}.svg"), svg.as_bytes());
+    }
+    browser.assert_clean();
+}
+
 #[test]
 fn pictures_carry_marking_caution_and_mark() {
     let browser = opened();

@@ -234,7 +234,45 @@ fn a_question_is_printed_with_its_answer() {
         // An axis of its picture.
         assert_has(&all, "Ondrel's strength at the start");
         assert!(!bare(&all).contains("addtowhatiswanted"));
+        let reversed = bare(&all).contains("Nearestreversal:Vessarybreaksfirstif");
+        assert_eq!(reversed, name == "beside", "{all}");
     }
+    browser.assert_clean();
+}
+
+/// The map of two questions too, with its sentence; drawn for paper, and not as it stands on a dark screen.
+#[test]
+fn a_map_is_printed_with_its_sentence() {
+    let browser = Browser::start();
+    let link = changed(
+        &changed(LINK, "x.start", "600?400..900"),
+        "x.break",
+        "0.3?0.1..0.6",
+    );
+    let link = changed(&changed(&link, "sothat", "x.prevails"), "paper", "dark");
+    browser.open(&link);
+    browser.settle(&link);
+    let pages = browser.print("map-a4", Paper::A4);
+    assert_every_page(&pages, &link);
+    let all = pages.join(" ");
+    assert_has(&all, &browser.text("#map-sentence"));
+    assert_has(
+        &all,
+        "all that is wanted holds, on the dotted side of the double line",
+    );
+    // Its axes.
+    assert_has(&all, "Ondrel's break point");
+    for left_out in ["addtowhatiswanted", "Contoursof", "Moveoverthemap"] {
+        assert!(!bare(&all).contains(left_out), "{left_out}: {all}");
+    }
+    let drawn = "const canvas = document.getElementById('map');
+        dispatchEvent(new Event('beforeprint'));
+        const svg = canvas.parentElement.querySelector('.drawn > svg');
+        const size = svg && [svg.querySelectorAll('rect').length, svg.outerHTML.length];
+        dispatchEvent(new Event('afterprint')); return size;";
+    let size = browser.script(drawn, vec![]);
+    let (dots, letters) = (size[0].as_u64().unwrap_or(0), size[1].as_u64().unwrap_or(0));
+    assert!(dots > 50 && letters < 1_000_000, "{dots} dots, {letters} letters");
     browser.assert_clean();
 }
 

@@ -535,6 +535,69 @@ fn the_demos_table_is_as_it_was_read_by_hand() {
     }
 }
 
+/// A reserve that is useful only in a window, by its time and by its size: the nearer end of the window is found from both
+/// sides of it and from within, and on both sides of each value it comes out as it should.
+#[test]
+fn the_nearer_end_of_a_window_is_found_from_everywhere() {
+    // The ends by time are those of a search from outside (`reference/questions.tsv`): too early, and fire at an area
+    // finds them; too late, and x has broken.
+    let by_time = "x.start=799&x.break=0.5&x.rate=0.0208&y.start=343&y.fire=area&y.break=0.5&y.rate=0.001109&\
+                   phase1.from=1.401&phase1.y.rate=0.0001309&x.join=572.6@{}";
+    // Too few, and y's support wears x down; too many, and y's fire, by the square of its targets, does.
+    let by_size = "x.start=20&x.fire=power&x.p=0.5&x.q=0&x.rate=25&x.break=0.5&x.join={}@0&\
+                   y.start=100&y.fire=power&y.p=1&y.q=2&y.rate=0.0005&y.break=0.5&y.support.aimed=20";
+    let time = (
+        "x.join.1.time",
+        by_time,
+        [0.611_834_677_468_914_5, 5.807_340_542_039_189],
+    );
+    let (_, statement) = read(&by_size.replace("{}", "40"));
+    let end = |low: f64, high: f64| {
+        let wins = |size: f64| match with(&statement, "x.join.1.size", size).breaks {
+            Breaks::Y => 1.0,
+            _ => -1.0,
+        };
+        Demo::root(&wins, low, high)
+    };
+    let size = ("x.join.1.size", by_size, [end(10.0, 40.0), end(40.0, 200.0)]);
+    for ((slot, link, ends), nows) in [
+        (time, [(0.3, 0), (3.0, 0), (5.4, 1), (7.0, 1)]),
+        (size, [(10.0, 0), (40.0, 0), (60.0, 1), (90.0, 1)]),
+    ] {
+        for (now, nearer) in nows {
+            let link = link.replace("{}", &now.to_string());
+            let (_, statement) = read(&link);
+            let (found, expected) = (change(&link, slot), ends[nearer]);
+            assert!(
+                (found.value - expected).abs() <= 1e-9 * expected,
+                "{slot} from {now} is {}, not {expected}",
+                found.value
+            );
+            let within = ends[0] < now && now < ends[1];
+            let (as_it_is, reversed) = if within {
+                (Breaks::Y, Breaks::X)
+            } else {
+                (Breaks::X, Breaks::Y)
+            };
+            assert_eq!(
+                (found.kind, found.breaks),
+                (Kind::Reversed, reversed),
+                "{slot} from {now}"
+            );
+            let hair = 1e-8 * expected * (expected - now).signum();
+            let beyond = with(&statement, slot, expected + hair).breaks;
+            let before = with(&statement, slot, expected - hair).breaks;
+            assert_eq!((before, beyond), (as_it_is, reversed), "{slot} from {now}");
+            let written: f64 = found.written.parse().expect("a number");
+            assert_eq!(
+                with(&statement, slot, written).breaks,
+                reversed,
+                "{slot} = {written}"
+            );
+        }
+    }
+}
+
 /// Where nothing makes the other side break, that nobody does; where neither breaks, what makes one.
 #[test]
 fn what_only_leaves_it_undecided_says_so() {

@@ -5,6 +5,7 @@ use crate::dom::{Dom, append, append_words, set};
 use crate::draw::Ink;
 use crate::mapping::Mapping;
 use crate::outcome::show_table;
+use crate::stopwatch::{ASKING, Stopwatch};
 use aftercount_core::asked::{Asked, Inquiry, Putting};
 use aftercount_core::pairs::Pairs;
 use aftercount_core::picture::{self, Picture};
@@ -115,6 +116,7 @@ impl Asking {
 
     /// Works for a slice, and shows what there is to be shown; whether there is something new to draw.
     pub(crate) fn go_on(&mut self, pairs: &Pairs) -> bool {
+        let _watch = Stopwatch::start(&self.dom, ASKING);
         let clock = self.dom.window.performance();
         let now = || clock.as_ref().map_or(0.0, web_sys::Performance::now);
         let from = now();

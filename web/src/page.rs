@@ -430,6 +430,12 @@ impl Page {
 
     /// The printer is about to look.
     pub(crate) fn put_on_paper(&mut self) {
+        // What would reverse the outcome belongs on it, where it can be found while the printer waits.
+        for _ in 0..SLICES_ON_PAPER {
+            if !self.reversals.go_on() {
+                break;
+            }
+        }
         // Beside a problem it is the last text that could be worked out, as on the screen.
         let stated = [Some(&self.pairs), self.good_pairs.as_ref()]
             .into_iter()
@@ -773,6 +779,9 @@ impl Page {
         }
     }
 }
+
+/// So many slices of the search for what reverses the outcome a printer waits for.
+const SLICES_ON_PAPER: u32 = 60;
 
 /// Whether a text is that of a blank form, which "Start from blank" leaves: only keys that say how it is shown.
 fn is_blank(pairs: &Pairs) -> bool {

@@ -7,7 +7,9 @@ use web_sys::Performance;
 pub(crate) const WORK: &str = "aftercount.work";
 /// A slice of the search for what would reverse the outcome.
 pub(crate) const REVERSAL: &str = "aftercount.reversal";
-/// Drawing both pictures.
+/// A slice of what is asked.
+pub(crate) const ASKING: &str = "aftercount.asking";
+/// Drawing all pictures.
 pub(crate) const DRAW: &str = "aftercount.draw";
 
 /// Measures from its start until it is dropped. Only the last measure of a name is kept.

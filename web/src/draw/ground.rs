@@ -14,8 +14,8 @@ const ROW: f64 = 1.0;
 const HATCH: f64 = 9.0;
 
 /// Between two of the dots that say where all that is wanted holds, and half of what one is wide, in CSS pixels.
-const APART: f64 = 12.0;
-const DOT: f64 = 1.5;
+const APART: f64 = 13.0;
+const DOT: f64 = 1.2;
 
 /// How far the tone is from the paper, out of 100.
 fn depth(tone: Tone) -> u16 {
