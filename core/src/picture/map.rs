@@ -5,6 +5,7 @@ use crate::asked::{Chart, FINEST, Second, Story};
 use crate::outcome::Breaks;
 use crate::sides::Side;
 use crate::statement::Statement;
+use crate::words::asked::happens;
 use crate::words::format::three;
 use crate::words::map::{sentence, table};
 use crate::words::slot;
@@ -107,6 +108,7 @@ pub fn map(statement: &Statement, chart: &Chart, second: Option<Second>) -> Opti
         points,
         label: String::new(),
     }));
+    lines.extend(regions(statement, chart));
     let now = one.value().zip(other.value());
     let inside = |(a, b): &(f64, f64)| across.low <= *a && *a <= across.high && up.low <= *b && *b <= up.high;
     let spots = now.filter(inside).map(|at| Spot {
@@ -124,6 +126,52 @@ pub fn map(statement: &Statement, chart: &Chart, second: Option<Second>) -> Opti
         names: statement.names.clone(),
         ground: Some(Ground::of(chart)),
     })
+}
+
+/// Steps along each axis by which a place for words is looked for.
+const STEPS: i32 = 16;
+
+/// How much wider than high words are, and the least room for them in steps across.
+const WIDER: i32 = 4;
+const ROOM: i32 = 2;
+
+/// What happens, and whether that is wanted, in the middle of each part of the map with room for the words: a picture that is
+/// passed on has no legend beside it.
+fn regions(statement: &Statement, chart: &Chart) -> Vec<Line> {
+    let at = |step: i32| step as usize * FINEST / STEPS as usize;
+    let steps = (0..=STEPS).flat_map(|up| (0..=STEPS).map(move |across| (across, up)));
+    let told = |(across, up): (i32, i32)| {
+        let (right, high) = (at(across), at(up));
+        Some((
+            (across, up),
+            (chart.story_at(right, high)?, chart.is_met_at(right, high)),
+        ))
+    };
+    let places: Vec<_> = steps.filter_map(told).collect();
+    let mut best: Vec<((usize, bool), i32, (i32, i32))> = Vec::new();
+    for (place, class) in &places {
+        let others = places.iter().filter(|(_, other)| other != class);
+        let off = others.map(|(other, _)| (other.0 - place.0).abs().max(WIDER * (other.1 - place.1).abs()));
+        let across = place.0.min(STEPS - place.0);
+        let up = WIDER * place.1.min(STEPS - place.1);
+        let room = off.fold(across.min(up), i32::min);
+        match best.iter_mut().find(|(known, ..)| known == class) {
+            Some(known) if room > known.1 => *known = (*class, room, *place),
+            Some(_) => {}
+            None => best.push((*class, room, *place)),
+        }
+    }
+    let line = |((story, met), _, place): ((usize, bool), i32, (i32, i32))| {
+        let part = |step: i32| f64::from(step) / f64::from(STEPS);
+        let [across, up] = chart.values([part(place.0), part(place.1)]);
+        Some(Line {
+            role: Role::Region,
+            points: vec![(across, up)],
+            label: happens(statement, chart.stories().get(story)?) + if met { ", as wanted" } else { "" },
+        })
+    };
+    let roomy = best.into_iter().filter(|(_, room, _)| *room >= ROOM);
+    roomy.filter_map(line).collect()
 }
 
 /// Contours at round values, the longest of each named.

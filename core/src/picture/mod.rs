@@ -49,6 +49,8 @@ pub enum Role {
     Flip,
     /// The edge of where all that is wanted holds, on a map.
     Wanted,
+    /// How it comes out around a point of a map: words alone.
+    Region,
     /// Where a second reading has the same value, on a map.
     Contour,
 }

@@ -15,7 +15,7 @@ pub fn sentence(statement: &Statement, asked: &Asked) -> String {
         Some(met) => wanted(statement, asked, met),
         None => story(statement, asked),
     };
-    format!("In this model {answer}.")
+    format!("In this model{answer}.")
 }
 
 /// The answer to one question or to two in one sentence.
@@ -48,7 +48,7 @@ fn story(statement: &Statement, asked: &Asked) -> String {
     let name = slot::name(statement, &asked.slot);
     if let [only] = &asked.outcomes[..] {
         return format!(
-            "{} whatever {name} is, {}",
+            " {} whatever {name} is, {}",
             happens(statement, &only.story),
             looked(statement, asked)
         );
@@ -64,7 +64,7 @@ fn story(statement: &Statement, asked: &Asked) -> String {
         }
     };
     let parts: Vec<String> = asked.outcomes.iter().enumerate().map(part).collect();
-    format!("with {name} in question: {}", parts.join("; "))
+    format!(", with {name} in question: {}", parts.join("; "))
 }
 
 /// What happens along a part of the story: "Ondrel breaks first".
@@ -106,7 +106,7 @@ fn wanted(statement: &Statement, asked: &Asked, met: &[Met]) -> String {
                 )
             });
             format!(
-                "no value of {name} {looked} does so that {all}{}",
+                " no value of {name} {looked} does so that {all}{}",
                 nearest.unwrap_or_default()
             )
         }
@@ -115,10 +115,10 @@ fn wanted(statement: &Statement, asked: &Asked, met: &[Met]) -> String {
                 from: End::Edge(_),
                 to: End::Edge(_),
             },
-        ] => format!("every value of {name} {looked} does so that {all}"),
+        ] => format!(" every value of {name} {looked} does so that {all}"),
         _ => {
             let ranges: Vec<String> = met.iter().map(|met| range(statement, asked, met)).collect();
-            format!("so that {all}, {name} must be {}", ranges.join(", or "))
+            format!(", so that {all}, {name} must be {}", ranges.join(", or "))
         }
     }
 }

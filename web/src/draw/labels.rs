@@ -61,6 +61,8 @@ pub(crate) struct Labels {
     taken: Vec<Box>,
     /// Points that words should not cover, and how much it matters.
     curves: Vec<(Point, f64)>,
+    /// Whether there is the ground of a map behind them.
+    on_ground: bool,
 }
 
 impl Labels {
@@ -79,6 +81,7 @@ impl Labels {
             field: *field,
             taken: Vec::new(),
             curves,
+            on_ground: picture.ground.is_some(),
         }
     }
 
@@ -91,6 +94,7 @@ impl Labels {
             match line.role {
                 Role::Defeat | Role::Clock | Role::Change => self.moment(pen, line)?,
                 Role::BreakLine(side) => self.break_line(pen, picture, line, side)?,
+                Role::Region => self.region(pen, line)?,
                 Role::Parity | Role::Contour => self.along(pen, line, pen.ink.ink, true)?,
                 _ => {}
             }
@@ -205,6 +209,16 @@ impl Labels {
         self.set(pen, &line.label, Hand::italic(side_colour(pen, side)), &places)
     }
 
+    /// Words around a point of a map.
+    fn region(&mut self, pen: &mut Pen<'_>, line: &Line) -> Drawn {
+        let points = line.points.iter().map(|point| self.field.place(*point));
+        let heights = [0.0, -16.0, 16.0, -32.0, 32.0];
+        let places: Vec<_> = points
+            .flat_map(|(x, y)| heights.map(|height| ((x, y + height), HPos::Center, VPos::Center)))
+            .collect();
+        self.set(pen, &line.label, Hand::italic(pen.ink.ink), &places)
+    }
+
     /// Words beside a curve: its name.
     fn along(&mut self, pen: &mut Pen<'_>, line: &Line, colour: RGBColor, italic: bool) -> Drawn {
         let mut places = Vec::new();
@@ -252,7 +266,7 @@ impl Labels {
             return Ok(());
         }
         self.taken.push(extent);
-        if cost >= 1.0 {
+        if cost >= 1.0 || self.on_ground {
             pen.label_on_paper(&text, at, set)
         } else {
             pen.label(&text, at, set)

@@ -68,7 +68,8 @@ fn hand(pen: &Pen<'_>, role: Role) -> (RGBColor, f64, Dash) {
         Role::Met => (pen.ink.ink, 6.0, SOLID),
         Role::Flip => (pen.ink.ink, 2.4, SOLID),
         Role::Wanted => (pen.ink.ink, 5.0, SOLID),
-        Role::Contour => (pen.ink.ink, 0.9, SHORT_DASH),
+        // Words without a line.
+        Role::Region | Role::Contour => (pen.ink.ink, 0.9, SHORT_DASH),
     }
 }
 
