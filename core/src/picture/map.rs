@@ -135,42 +135,61 @@ const STEPS: i32 = 16;
 const WIDER: i32 = 4;
 const ROOM: i32 = 2;
 
+/// A place on the map, in steps across and up, with the number of its story and whether all that is wanted holds there.
+#[derive(Clone, Copy)]
+struct Place {
+    step: (i32, i32),
+    told: (usize, bool),
+    /// How many steps across are free for words around it, as far as that is known.
+    room: i32,
+}
+
+impl Place {
+    fn of(chart: &Chart, step: (i32, i32)) -> Option<Place> {
+        let [across, up] = [step.0, step.1].map(|step| step as usize * FINEST / STEPS as usize);
+        Some(Place {
+            step,
+            told: (chart.story_at(across, up)?, chart.is_met_at(across, up)),
+            room: step.0.min(STEPS - step.0).min(WIDER * step.1.min(STEPS - step.1)),
+        })
+    }
+
+    fn among(self, places: &[Place]) -> Place {
+        let others = places.iter().filter(|other| other.told != self.told);
+        let off = |other: &Place| {
+            let (across, up) = (other.step.0 - self.step.0, other.step.1 - self.step.1);
+            across.abs().max(WIDER * up.abs())
+        };
+        Place {
+            room: others.map(off).fold(self.room, i32::min),
+            ..self
+        }
+    }
+}
+
 /// What happens, and whether that is wanted, in the middle of each part of the map with room for the words: a picture that is
 /// passed on has no legend beside it.
 fn regions(statement: &Statement, chart: &Chart) -> Vec<Line> {
-    let at = |step: i32| step as usize * FINEST / STEPS as usize;
     let steps = (0..=STEPS).flat_map(|up| (0..=STEPS).map(move |across| (across, up)));
-    let told = |(across, up): (i32, i32)| {
-        let (right, high) = (at(across), at(up));
-        Some((
-            (across, up),
-            (chart.story_at(right, high)?, chart.is_met_at(right, high)),
-        ))
-    };
-    let places: Vec<_> = steps.filter_map(told).collect();
-    let mut best: Vec<((usize, bool), i32, (i32, i32))> = Vec::new();
-    for (place, class) in &places {
-        let others = places.iter().filter(|(_, other)| other != class);
-        let off = others.map(|(other, _)| (other.0 - place.0).abs().max(WIDER * (other.1 - place.1).abs()));
-        let across = place.0.min(STEPS - place.0);
-        let up = WIDER * place.1.min(STEPS - place.1);
-        let room = off.fold(across.min(up), i32::min);
-        match best.iter_mut().find(|(known, ..)| known == class) {
-            Some(known) if room > known.1 => *known = (*class, room, *place),
+    let places: Vec<Place> = steps.filter_map(|step| Place::of(chart, step)).collect();
+    let mut best: Vec<Place> = Vec::new();
+    for place in places.iter().map(|place| place.among(&places)) {
+        match best.iter_mut().find(|known| known.told == place.told) {
+            Some(known) if place.room > known.room => *known = place,
             Some(_) => {}
-            None => best.push((*class, room, *place)),
+            None => best.push(place),
         }
     }
-    let line = |((story, met), _, place): ((usize, bool), i32, (i32, i32))| {
-        let part = |step: i32| f64::from(step) / f64::from(STEPS);
-        let [across, up] = chart.values([part(place.0), part(place.1)]);
+    let line = |Place { step, told, .. }: Place| {
+        let story = chart.stories().get(told.0)?;
+        let [across, up] = chart.values([step.0, step.1].map(|step| f64::from(step) / f64::from(STEPS)));
         Some(Line {
             role: Role::Region,
             points: vec![(across, up)],
-            label: happens(statement, chart.stories().get(story)?) + if met { ", as wanted" } else { "" },
+            label: happens(statement, story) + if told.1 { ", as wanted" } else { "" },
         })
     };
-    let roomy = best.into_iter().filter(|(_, room, _)| *room >= ROOM);
+    let roomy = best.into_iter().filter(|place| place.room >= ROOM);
     roomy.filter_map(line).collect()
 }
 
