@@ -1,15 +1,18 @@
 //! The engagement that goes on from a time under the reading line, as the text of a link.
 
+use crate::keys::{Kind, find};
 use crate::ledger::Ledger;
+use crate::mark::text_mark;
 use crate::pairs::Pairs;
 use crate::schedule::instants;
 use crate::sides::{Both, Side};
 use crate::statement::{Statement, Values};
 use crate::terms::Engagement;
 use crate::trajectory::Trajectory;
+use crate::words::format::{plain, with_unit};
 
 /// The pairs of the engagement that goes on from the time `t`: strengths, losses so far, reserves and flows still due,
-/// phases, the rest of the clock, the range. Its outcome is that of the whole.
+/// phases, the rest of the clock, the range. Its outcome is that of the whole, and its note says which that is.
 ///
 /// `pairs` are those that `statement` was read from, and `trajectory` is its fight's; `t` is from 0 to the end.
 pub fn continued(pairs: &Pairs, statement: &Statement, trajectory: &Trajectory, t: f64) -> Pairs {
@@ -50,7 +53,38 @@ pub fn continued(pairs: &Pairs, statement: &Statement, trajectory: &Trajectory, 
             &number((closing.range - closing.speed * t).max(closing.least.min(closing.range))),
         );
     }
+    let words = format!(
+        "goes on from {} of the text with the mark {}.",
+        plain(&with_unit(t, statement.unit)),
+        text_mark(pairs)
+    );
+    trace(&mut text, &words);
     text
+}
+
+/// Adds where an engagement comes from to its note, or to its title where that has no room left; to neither where a word
+/// of the user's own would be lost.
+fn trace(text: &mut Pairs, words: &str) {
+    for key in ["note", "title"] {
+        let before = text.get(key).unwrap_or_default().trim();
+        let gap = match before.chars().last() {
+            None => "",
+            Some('.' | '!' | '?') => " ",
+            _ => ". ",
+        };
+        // One that went on itself has said so.
+        let it = if before.contains("t goes on from ") {
+            "Then it"
+        } else {
+            "It"
+        };
+        let traced = format!("{before}{gap}{it} {words}");
+        if let Some(Kind::Text(most)) = find(key).map(|row| row.kind)
+            && traced.chars().count() <= most
+        {
+            return text.set(key, &traced);
+        }
+    }
 }
 
 /// A number in the grammar of the link, which reads back the same.
@@ -104,6 +138,48 @@ fn phases(text: &mut Pairs, pairs: &Pairs, engagement: &Engagement, t: f64) {
 mod tests {
     use super::*;
     use crate::fight::{Effort, fight};
+
+    #[test]
+    fn what_goes_on_says_from_what() {
+        let sides = "x.start=600&x.rate=0.04&y.start=400&y.rate=0.05";
+        let on = |link: &str, t: f64| {
+            let pairs = Pairs::parse(link);
+            let statement = Statement::read(&pairs).expect(link);
+            let whole = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+            let text = continued(
+                &pairs,
+                &statement,
+                whole.trajectory.as_ref().expect("was asked for"),
+                t,
+            );
+            assert!(Statement::read(&text).is_ok(), "{}", text.link());
+            (text, text_mark(&pairs))
+        };
+        let (text, mark) = on(sides, 4.1);
+        let first = format!("It goes on from 4.1 h of the text with the mark {mark}.");
+        assert_eq!(text.get("note"), Some(first.as_str()));
+        let (text, mark) = on(&text.link(), 2.0);
+        let then = format!("{first} Then it goes on from 2 h of the text with the mark {mark}.");
+        assert_eq!(text.get("note"), Some(then.as_str()));
+        for (note, gap) in [("A source", ". "), ("A source!", " ")] {
+            let (text, mark) = on(&format!("{sides}&note={note}"), 1.5);
+            let words = format!("{note}{gap}It goes on from 1.5 h of the text with the mark {mark}.");
+            assert_eq!(text.get("note"), Some(words.as_str()));
+        }
+        // Nothing of the user's own is lost for it.
+        let (note, title) = ("n".repeat(990), "t".repeat(190));
+        let (text, mark) = on(&format!("{sides}&note={note}&title=Turn 3"), 1.5);
+        let words = format!("Turn 3. It goes on from 1.5 h of the text with the mark {mark}.");
+        assert_eq!(
+            [text.get("note"), text.get("title")],
+            [Some(note.as_str()), Some(words.as_str())]
+        );
+        let (text, _) = on(&format!("{sides}&note={note}&title={title}"), 1.5);
+        assert_eq!(
+            [text.get("note"), text.get("title")],
+            [Some(note.as_str()), Some(title.as_str())]
+        );
+    }
 
     #[test]
     fn what_goes_on_ends_as_the_whole_does() {

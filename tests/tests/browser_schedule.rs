@@ -1,6 +1,8 @@
 //! Reserves, flows and phases in the page: tables that are the link's text, and what follows from it.
 
 use aftercount_core::demo::DEMO;
+use aftercount_core::mark::text_mark;
+use aftercount_core::pairs::Pairs;
 use aftercount_tests::browser::{Browser, Key, changed, native, native_sentence};
 
 const LINK: &str = "x.name=Ondrel&x.start=600&x.rate=0.04&x.break=0.3&y.name=Vessary&y.start=400&y.rate=0.06&y.break=0.4\
@@ -206,6 +208,13 @@ fn continue_from_here_is_one_step_that_undo_takes_back() {
         "{from} and {time} are not {all}"
     );
     assert_ne!(browser.value("x.lost"), "");
+    let note = browser.value("note");
+    let mark = text_mark(&Pairs::parse(LINK));
+    assert!(
+        note.starts_with("It goes on from 4.")
+            && note.ends_with(&format!("of the text with the mark {mark}.")),
+        "{note}"
+    );
     browser.click("#undo");
     assert_eq!(browser.settle(LINK), whole);
     assert_eq!(browser.value("x.lost"), "");
