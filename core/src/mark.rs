@@ -24,6 +24,18 @@ pub fn text_mark(pairs: &Pairs) -> String {
     format!("{}-{}", &mark[..4], &mark[4..])
 }
 
+/// Whether a word could be a text mark.
+pub fn is_mark(word: &str) -> bool {
+    let of_mark = |(place, letter)| {
+        if place == 4 {
+            letter == b'-'
+        } else {
+            LETTERS.contains(&letter)
+        }
+    };
+    word.len() == 9 && word.bytes().enumerate().all(of_mark)
+}
+
 /// The 64-bit FNV-1a hash (Fowler, Noll and Vo).
 pub(crate) fn fnv1a(bytes: &[u8]) -> u64 {
     bytes.iter().fold(0xcbf2_9ce4_8422_2325, |hash, byte| {

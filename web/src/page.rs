@@ -658,8 +658,13 @@ impl Page {
         if let Some(area) = self.dom.typed::<web_sys::HtmlTextAreaElement>("text") {
             area.set_value(&link);
         }
-        self.dom.set_text("copied", "");
-        self.dom.set_text("working-copied", "");
+        // What was said of the text before.
+        for said in ["copied", "working-copied", "file-said", "kept-said"] {
+            self.dom.set_text(said, "");
+        }
+        for part in ["file-copy", "opened-said"] {
+            self.dom.set_shown(part, false);
+        }
         self.dom.set_text("text-mark", &text_mark(&self.pairs));
         let note = self.pairs.get("note").unwrap_or_default();
         self.dom

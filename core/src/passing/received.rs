@@ -3,7 +3,7 @@
 //!
 //! [`Pairs`] reads strictly what is written; all forgiving is here, and ends in a text that `Pairs` reads.
 
-use super::saved;
+use super::{mailed, saved};
 use crate::keys;
 use crate::pairs::Pairs;
 
@@ -44,11 +44,12 @@ pub fn received(text: &str) -> Result<Pairs, &'static str> {
     if text.len() > LONGEST {
         return Err(TOO_LONG);
     }
+    let text = mailed::without_quoting(text);
     let text: String = text.chars().filter(|letter| !UNSEEN.contains(letter)).collect();
     let mut lines: Vec<&str> = text.lines().map(unquoted).collect();
     lines.dedup_by(|line, before| line.is_empty() && before.is_empty());
     let lines = saved::engagement(&lines).unwrap_or(&lines);
-    let joined = joined(with_keys(lines));
+    let joined = joined(&mailed::without_message(with_keys(lines)));
     let plain = without_entities(in_markup(&joined).unwrap_or(&joined));
     let decoded = decoded_whole(&plain);
     let pairs = Pairs::parse(without_words(decoded.as_deref().unwrap_or(&plain)));
@@ -63,7 +64,7 @@ fn has_key(pairs: &Pairs) -> bool {
 }
 
 /// A line without the marks by which mailers show that it is quoted.
-fn unquoted(line: &str) -> &str {
+pub(super) fn unquoted(line: &str) -> &str {
     line.trim_start_matches(['>', ' ', '\t']).trim_end()
 }
 
@@ -104,7 +105,7 @@ fn joined(lines: &[&str]) -> String {
     };
     let has_blanks = lines.iter().enumerate().any(inside);
     let mut whole = String::new();
-    for line in lines.iter().filter(|line| !line.is_empty()) {
+    for line in lines {
         if begins_with_key(line) && whole.contains('=') && !whole.ends_with(['&', '#', '?']) {
             whole.push('&');
         } else if has_blanks && !whole.is_empty() && !whole.ends_with('&') && !line.starts_with('&') {
@@ -137,7 +138,7 @@ fn in_markup(text: &str) -> Option<&str> {
 }
 
 /// Each `&` that a program has written out as an entity, put back; also where two programs did, one after the other.
-fn without_entities(text: &str) -> String {
+pub(super) fn without_entities(text: &str) -> String {
     let mut plain = text.to_owned();
     for _ in 0..3 {
         for entity in ["&amp;", "&#38;", "&#x26;", "&AMP;"] {
@@ -239,17 +240,23 @@ fn without_end(text: &str, quoted: bool) -> &str {
 }
 
 /// Whether a text begins with a known key and its `=`, or `#` and such.
-fn begins_with_key(text: &str) -> bool {
+pub(super) fn begins_with_key(text: &str) -> bool {
     let text = text.trim_start_matches(['#', '?', '&']);
     text.split_once('=')
         .is_some_and(|(key, _)| is_known(key.trim_end()))
+}
+
+/// Whether a text ends in a known key.
+pub(super) fn ends_in_key(text: &str) -> bool {
+    let key = text.rsplit(|letter| !is_key_letter(letter)).next();
+    key.is_some_and(is_known)
 }
 
 fn is_known(key: &str) -> bool {
     keys::find(key).is_some() || keys::is_numbered(key)
 }
 
-fn is_key_letter(letter: char) -> bool {
+pub(super) fn is_key_letter(letter: char) -> bool {
     letter.is_ascii_alphanumeric() || letter == '.'
 }
 

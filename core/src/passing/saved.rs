@@ -1,9 +1,10 @@
 //! The saved file: a text that people can read, with the engagement between two lines that only it has.
 
 use super::finding::Finding;
+use super::received::unquoted;
 use super::words::HANDLE;
 use crate::caution;
-use crate::mark::text_mark;
+use crate::mark::{is_mark, text_mark};
 use crate::pairs::Pairs;
 use crate::problem::seen;
 use crate::words::format::plain;
@@ -13,6 +14,9 @@ use crate::words::sentence::sentence;
 const BEGINS: &str = "---- engagement ----";
 /// Stands behind it.
 const ENDS: &str = "---- end ----";
+
+/// What the mark is labelled with.
+const MARK: &str = "Text mark";
 
 /// The file's text. `finding` is there where the text was worked out, and `when` says when the file was made.
 pub fn saved(pairs: &Pairs, finding: Option<&Finding<'_>>, version: &str, when: &str) -> String {
@@ -35,7 +39,7 @@ pub fn saved(pairs: &Pairs, finding: Option<&Finding<'_>>, version: &str, when: 
         &labelled("Outcome", &outcome),
         &labelled("Asked", &line(finding.and_then(|finding| finding.asked))),
         &labelled("Also", &line(finding.and_then(|finding| finding.reversal))),
-        &labelled("Text mark", &text_mark(pairs)),
+        &labelled(MARK, &text_mark(pairs)),
         &labelled("Saved", &seen(when)),
         &labelled("By", &format!("Aftercount {}", seen(version))),
         "\n",
@@ -59,6 +63,16 @@ pub(super) fn engagement<'a, 'b>(lines: &'b [&'a str]) -> Option<&'b [&'a str]> 
     let begins = lines.iter().position(|line| *line == BEGINS)? + 1;
     let length = lines[begins..].iter().position(|line| *line == ENDS);
     Some(&lines[begins..begins + length.unwrap_or(lines.len() - begins)])
+}
+
+/// The text mark that a saved file names before its engagement.
+pub(super) fn named_mark(text: &str) -> Option<&str> {
+    let lines = || text.lines().map(unquoted);
+    let begins = lines().position(|line| line == BEGINS)?;
+    let mark = lines()
+        .take(begins)
+        .find_map(|line| line.strip_prefix(MARK)?.strip_prefix(": "));
+    mark.filter(|mark| is_mark(mark))
 }
 
 #[cfg(test)]

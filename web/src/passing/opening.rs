@@ -4,7 +4,7 @@ use crate::dom::Dom;
 use crate::listen::{After, Shared};
 use crate::page::Page;
 use aftercount_core::passing::received::{LONGEST, TOO_LONG, received};
-use aftercount_core::passing::words;
+use aftercount_core::passing::{remarks, words};
 use wasm_bindgen::closure::Closure;
 use wasm_bindgen::{JsCast, JsValue};
 use web_sys::{DataTransfer, DragEvent, Element, Event, File, HtmlInputElement, HtmlTextAreaElement};
@@ -13,6 +13,8 @@ pub(super) const DIALOG: &str = "open-dialog";
 pub(super) const FILE: &str = "open-file";
 const BOX: &str = "open-text";
 const SAID: &str = "open-said";
+/// Says what is odd about what was opened.
+const OPENED: &str = "opened-said";
 
 /// The text in the box is to be opened.
 pub(super) fn take_up_typed(page: &mut Page) -> After {
@@ -91,6 +93,9 @@ fn take_up(page: &mut Page, text: &str) -> After {
     match received(text) {
         Ok(pairs) => {
             page.take_up(&pairs);
+            let remark = remarks::beside(text, &pairs);
+            page.dom().set_text(OPENED, remark.as_deref().unwrap_or_default());
+            page.dom().set_shown(OPENED, remark.is_some());
             clear(page.dom());
             After::Do(Box::new(|page: &Shared| {
                 let dom = page.borrow().dom().clone();
@@ -99,7 +104,10 @@ fn take_up(page: &mut Page, text: &str) -> After {
             }))
         }
         Err(why) => {
-            say(page.dom(), why);
+            say(
+                page.dom(),
+                &remarks::in_place_of(text).unwrap_or_else(|| why.into()),
+            );
             super::show_dialog(DIALOG)
         }
     }
