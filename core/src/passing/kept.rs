@@ -1,8 +1,14 @@
 //! What the user has asked the browser to keep: a list of texts with the times at which they were kept.
 
+use crate::fight::{Effort, fight};
 use crate::mark::text_mark;
 use crate::pairs::Pairs;
 use crate::problem::seen;
+use crate::statement::{Statement, Values};
+use crate::words::sentence::sentence;
+
+/// What is said in place of an outcome where a number in question has no value now.
+const NO_VALUE: &str = "It asks for a number that has no value now.";
 
 /// An engagement that is kept.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -24,6 +30,23 @@ impl Kept {
             &title
         };
         format!("{}: {title}, text mark {}", seen(&self.when), text_mark(&pairs))
+    }
+
+    /// What it leaves, in the sentence; where it cannot be worked out, the first reason.
+    pub fn outcome(&self) -> String {
+        match Statement::read(&Pairs::parse(&self.text)) {
+            Ok(statement) if statement.has_base() => {
+                let fight = fight(&statement.engagement(&Values::new()), Effort::Outcome);
+                sentence(&statement, &fight.outcome)
+            }
+            Ok(_) => NO_VALUE.into(),
+            Err(problems) => problems
+                .first()
+                .map_or(String::new(), |problem| match &problem.key {
+                    Some(key) if problem.found.is_some() => format!("`{}`: {}", seen(key), problem.line()),
+                    _ => problem.line(),
+                }),
+        }
     }
 }
 
@@ -52,6 +75,33 @@ pub fn written(kept: &[Kept]) -> String {
 #[cfg(test)]
 mod tests {
     use super::*;
+
+    #[test]
+    fn two_that_are_kept_can_be_compared() {
+        for (text, words) in [
+            (
+                "x.start=600&x.rate=0.04&y.start=400&y.rate=0.05",
+                "In this model Side Y is brought to 0 first, after ",
+            ),
+            (
+                "x.start=600?&x.rate=0.04&y.start=400&y.rate=0.05",
+                "In this model Side Y is brought to 0 first, after ",
+            ),
+            ("x.start=?&x.rate=0.04&y.start=400&y.rate=0.05", NO_VALUE),
+            (
+                "x.start=6,0&x.rate=0.04&y.start=400&y.rate=0.05",
+                "`x.start`: `6,0`: write 6.0",
+            ),
+            ("x.start=600&x.rate=0.04&y.start=400", "`y.rate` is missing"),
+        ] {
+            let kept = Kept {
+                when: String::new(),
+                text: text.into(),
+            };
+            let outcome = kept.outcome();
+            assert!(outcome.starts_with(words), "{text}: {outcome}");
+        }
+    }
 
     #[test]
     fn the_list_reads_back_and_nonsense_is_none() {

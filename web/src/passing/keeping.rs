@@ -1,6 +1,6 @@
 //! What the browser keeps for the page, once the user asks for it, and how all of it is forgotten.
 
-use crate::dom::{Dom, append, set};
+use crate::dom::{Dom, append, append_words, set};
 use aftercount_core::pairs::Pairs;
 use aftercount_core::passing::kept::{self, Kept};
 use aftercount_core::passing::words;
@@ -105,6 +105,9 @@ impl Keeping {
             set(&button, "aria-label", &format!("{action}: {words}"));
             append(&line, &button);
         }
+        let outcome = self.dom.make("p", "")?;
+        append_words(&self.dom, &outcome, &kept.outcome());
+        append(&line, &outcome);
         Some(line)
     }
 
