@@ -15,6 +15,7 @@ mod input;
 mod keyboard;
 mod native;
 mod paper;
+mod server;
 mod sheet;
 mod text;
 mod watch;
@@ -38,6 +39,7 @@ pub use input::Key;
 pub use keyboard::Struck;
 pub use native::{changed, native, native_sentence};
 pub use paper::Paper;
+pub use server::serve;
 pub use sheet::Shown;
 use wire::Wire;
 

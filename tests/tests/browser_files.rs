@@ -7,7 +7,7 @@ use aftercount_core::caution;
 use aftercount_core::mark::text_mark;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::passing::received::received;
-use aftercount_core::passing::words::{FRAMED, NO_OUTCOME};
+use aftercount_core::passing::words::{FRAMED, FRAMED_PICTURE, NO_OUTCOME};
 use aftercount_core::words::format::plain;
 use aftercount_tests::browser::{Browser, Key, changed, native, native_sentence, page_url};
 use serde_json::{Value, json};
@@ -74,7 +74,7 @@ fn a_text_with_a_problem_can_be_saved_and_its_outcome_cannot() {
 fn json_is_the_batch_door_s_object() {
     let browser = opened();
     browser.press("[data-pass=json-line]", Key::Enter);
-    let line = text_of(&browser, ".json");
+    let line = text_of(&browser, "-line.json");
     assert_eq!(line.lines().count(), 1);
     assert!(
         line.starts_with(answer(LINK).to_json().trim_end_matches('}')),
@@ -308,7 +308,7 @@ fn a_frame_without_downloads_gives_the_text_to_copy() {
     browser.press("#keep", Key::Enter);
     browser.wait_text("#kept-said", "does not let the page keep anything");
     browser.press("[data-pass='strength.png']", Key::Enter);
-    browser.wait_text("#file-said", "Open the page by itself.");
+    browser.wait_text("#file-said", FRAMED_PICTURE);
     browser.press("[data-pass=csv]", Key::Enter);
     browser.wait(
         "the table",

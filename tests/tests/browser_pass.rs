@@ -1,8 +1,6 @@
 //! Passing an engagement on by hand: opening what comes, copying what goes, and what the browser keeps.
 
-use std::io::{Read as _, Write as _};
-use std::net::{TcpListener, TcpStream};
-use std::{fs, thread};
+use std::fs;
 
 use aftercount_core::caution;
 use aftercount_core::demo::DEMO;
@@ -11,7 +9,7 @@ use aftercount_core::pairs::Pairs;
 use aftercount_core::passing::received::NOTHING;
 use aftercount_core::passing::words::{NO_ADDRESS, NO_ROOM, NO_STORAGE};
 use aftercount_core::words::format::plain;
-use aftercount_tests::browser::{Browser, Key, Screen, changed, native, native_sentence, page_url};
+use aftercount_tests::browser::{Browser, Key, Screen, changed, native, native_sentence, serve};
 use serde_json::json;
 
 const LINK: &str = "title=Turn%203&x.name=Ondrel&x.start=60000&x.rate=0.04&x.break=0.3&y.name=Vessary&y.start=40000\
@@ -215,36 +213,9 @@ fn the_answer_to_a_question_is_part_of_the_finding() {
     browser.assert_clean();
 }
 
-/// One page from a server on this machine, to see what a page that has an address does.
-fn serve(listener: TcpListener) {
-    let page = fs::read(page_url().to_file_path().expect("a file")).expect("the page is built");
-    for stream in listener.incoming() {
-        let Ok(mut stream) = stream else { return };
-        answer(&mut stream, &page);
-    }
-}
-
-fn answer(stream: &mut TcpStream, page: &[u8]) {
-    let mut request = [0; 4096];
-    let head = format!(
-        "HTTP/1.1 200 OK\r\nContent-Type: text/html\r\nContent-Length: {}\r\nConnection: close\r\n\r\n",
-        page.len()
-    );
-    // A browser that hangs up has what it wanted.
-    let _ = stream.read(&mut request);
-    let _ = stream
-        .write_all(head.as_bytes())
-        .and_then(|()| stream.write_all(page));
-}
-
 #[test]
 fn a_page_from_a_server_passes_its_address_on() {
-    let listener = TcpListener::bind("127.0.0.1:0").expect("a port");
-    let address = format!(
-        "http://{}/tools/aftercount.html",
-        listener.local_addr().expect("it has one")
-    );
-    thread::spawn(move || serve(listener));
+    let address = serve("");
     let browser = Browser::start();
     browser.before_each_page(CLIPBOARD);
     browser.open_address(&format!("{address}?from=wiki#{LINK}"));

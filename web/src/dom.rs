@@ -99,6 +99,12 @@ impl Dom {
         matches!(self.window.match_media(query), Ok(Some(media)) if media.matches())
     }
 
+    /// Whether the page may be in a sandbox: in a frame, or in a window of no origin of its own, which may store nothing
+    /// either.
+    pub(crate) fn is_confined(&self) -> bool {
+        self.is_framed() || self.window.local_storage().is_err()
+    }
+
     /// Whether the page stands in a frame of another page.
     pub(crate) fn is_framed(&self) -> bool {
         match self.window.top() {

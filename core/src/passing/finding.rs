@@ -62,7 +62,8 @@ impl Finding<'_> {
         let name = escaped(&name);
         let lines: Vec<String> = self.lines().lines().map(escaped).collect();
         format!(
-            "<iframe title=\"{name}\" width=\"800\" height=\"420\" sandbox=\"allow-scripts\" src=\"{framed}\"></iframe>\n\
+            "<iframe title=\"{name}\" width=\"800\" height=\"420\" sandbox=\"allow-scripts allow-popups\" \
+             src=\"{framed}\"></iframe>\n\
              <p><a href=\"{whole}\">{name}</a></p>\n<p>{}</p>\n",
             lines.join("<br>\n")
         )
@@ -153,7 +154,7 @@ pub(super) mod tests {
         };
         let wiki = finding.wiki("aftercount.html");
         for part in [
-            "<iframe title=\"Aftercount: Turn &lt;3&gt;\" width=\"800\" height=\"420\" sandbox=\"allow-scripts\" \
+            "<iframe title=\"Aftercount: Turn &lt;3&gt;\" width=\"800\" height=\"420\" sandbox=\"allow-scripts allow-popups\" \
              src=\"aftercount.html#title=Turn%20%3C3%3E&amp;",
             "&amp;view=frame&amp;v=1\"></iframe>",
             "&amp;y.break=0.4&amp;v=1\">Aftercount: Turn &lt;3&gt;</a>",

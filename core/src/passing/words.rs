@@ -6,20 +6,19 @@ use crate::keys::{Kind, find};
 pub use crate::words::HANDLE;
 
 /// Stands in place of the address of a page that was opened from a file.
-pub const NO_ADDRESS: &str =
-    "This copy was opened from a file: its path means nothing on another machine, and tells too much.";
+pub const NO_ADDRESS: &str = "This copy was opened from a file: its path means nothing on another machine, and tells too much. Use \
+     “The text” instead.";
 
 /// Stands in place of what needs an outcome.
 pub const NO_OUTCOME: &str =
     "There is no outcome for the text as it stands: only the text itself can be passed on.";
 
-/// Stands beside a download in a frame, which may not be allowed.
-pub const FRAMED: &str = "If no file came: this frame does not allow downloads. Open the page by itself, or copy what \
-stands below.";
+/// Stands behind the name of a file in a frame, or in a window that a frame has opened: either may allow no downloads.
+pub const FRAMED: &str = "may not have come: a frame, or a window opened from one, often allows no downloads. Then open \
+the page by itself, or copy what stands below.";
 
 /// The same where there is nothing to copy.
-pub const FRAMED_PICTURE: &str =
-    "If no file came: this frame does not allow downloads. Open the page by itself.";
+pub const FRAMED_PICTURE: &str = "may not have come: a frame, or a window opened from one, often allows no downloads. Then open the page by itself.";
 
 /// Stands beside a file that was offered.
 pub const OFFERED: &str = "The file went to the browser's downloads.";

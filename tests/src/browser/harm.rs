@@ -4,9 +4,11 @@
 //! has at hand, is asked for more than there is, in the middle of one of the program's calls to the browser. So the
 //! page that is tested is the very page that is shipped.
 
+use std::time::Instant;
+
 use fantoccini::wd::WindowHandle;
 
-use super::Browser;
+use super::{Browser, PATIENCE};
 
 /// Defines `trapIn(object, method, which)`: the next call of the method for whose arguments `which` is true traps.
 const TRAP: &str = "window.trapIn = (object, method, which) => {
@@ -81,6 +83,23 @@ impl Browser {
         let fresh = self.run("another tab", self.client().new_window(true)).handle;
         self.go_to_tab(&fresh);
         (before, fresh)
+    }
+
+    /// Goes to the window that the page has opened.
+    ///
+    /// # Panics
+    /// Where there is none but the first.
+    pub fn go_to_opened_window(&self) {
+        let before = self.run("this window", self.client().window());
+        let end = Instant::now() + PATIENCE;
+        let opened = loop {
+            let windows = self.run("the windows", self.client().windows());
+            if let Some(opened) = windows.into_iter().find(|window| *window != before) {
+                break opened;
+            }
+            assert!(Instant::now() < end, "no window was opened");
+        };
+        self.go_to_tab(&opened);
     }
 
     /// Goes to a tab.

@@ -1,4 +1,4 @@
-//! Files for the browser's downloads. A page cannot see whether a frame allows them, so that in one the text also
+//! Files for the browser's downloads. A page cannot see whether a sandbox allows them, so that in one the text also
 //! stands in a box.
 
 use crate::dom::Dom;
@@ -30,11 +30,11 @@ impl Downloads {
         else {
             return After::Nothing;
         };
-        let framed = self.dom.is_framed();
+        let confined = self.dom.is_confined();
         if let Some(area) = self.dom.typed::<HtmlTextAreaElement>("file-text") {
-            area.set_value(if framed { &text } else { "" });
+            area.set_value(if confined { &text } else { "" });
         }
-        self.dom.set_shown("file-copy", framed);
+        self.dom.set_shown("file-copy", confined);
         self.file(name, &blob, words::FRAMED);
         After::Nothing
     }
@@ -50,7 +50,7 @@ impl Downloads {
         self.dom.set_text("file-said", words);
     }
 
-    fn file(&mut self, name: &str, blob: &Blob, in_frame: &str) {
+    fn file(&mut self, name: &str, blob: &Blob, confined: &str) {
         let Ok(address) = Url::create_object_url_with_blob(blob) else {
             return;
         };
@@ -67,11 +67,10 @@ impl Downloads {
             // An address that is gone already is no loss.
             let _ = Url::revoke_object_url(&last);
         }
-        let offered = format!("{name}: {}", words::OFFERED);
-        if self.dom.is_framed() {
-            self.say(&format!("{offered} {in_frame}"));
+        self.say(&if self.dom.is_confined() {
+            format!("{name} {confined}")
         } else {
-            self.say(&offered);
-        }
+            format!("{name}: {}", words::OFFERED)
+        });
     }
 }

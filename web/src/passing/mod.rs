@@ -173,7 +173,8 @@ fn save_json(page: &mut Page, pretty: bool) -> After {
     page.field_left();
     let answer = aftercount_core::answer::answer(&page.pairs().link());
     let text = json::json(&answer, page.pairs(), &version(page.dom()), pretty);
-    offer_text(page, "", "json", "application/json", text)
+    let part = if pretty { "" } else { "line" };
+    offer_text(page, part, "json", "application/json", text)
 }
 
 /// Offers a text as a file that bears the text mark, and nothing else that tells what is in it.
