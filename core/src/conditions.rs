@@ -67,7 +67,7 @@ impl Growth {
 }
 
 /// A part of a number; no part of a number without bound is nothing.
-fn part_of(part: f64, number: f64) -> f64 {
+pub(crate) fn part_of(part: f64, number: f64) -> f64 {
     if part == 0.0 { 0.0 } else { part * number }
 }
 

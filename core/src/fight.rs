@@ -1,5 +1,6 @@
 //! From an engagement to its outcome: the one function through which all questions go.
 
+use crate::course::TOLERANCE;
 use crate::double::Double;
 use crate::ledger::Ledger;
 use crate::outcome::Outcome;
@@ -27,6 +28,9 @@ pub enum Effort {
 /// its outcome says how far it was worked out.
 pub const MOST_EVALUATIONS: u32 = 500_000;
 
+/// The loosest tolerance of an integration: with less than three digits a step it would not know who breaks.
+const LOOSEST: f64 = 1e-3;
+
 /// A fight worked out.
 #[derive(Clone, Debug)]
 pub struct Fight {
@@ -38,11 +42,19 @@ pub struct Fight {
     pub work: Work,
 }
 
-/// Works out what `engagement` leaves.
+/// Works out what `engagement` leaves, to the rounding of doubles.
 ///
 /// Its numbers keep the limits of their keys: `Statement::read` sees to that.
 pub fn fight(engagement: &Engagement, effort: Effort) -> Fight {
-    let run = Run::of(engagement);
+    fight_to(engagement, effort, TOLERANCE)
+}
+
+/// The same, where what must be integrated keeps the error of each step to the part `tolerance` of the strengths.
+///
+/// A number without unit, from [`TOLERANCE`], below which a double has no digits, up to 1e-3; what is outside is taken as
+/// the nearer of both. What has a formula or a state equation keeps its own accuracy.
+pub fn fight_to(engagement: &Engagement, effort: Effort, tolerance: f64) -> Fight {
+    let run = Run::of(engagement, tolerance.clamp(TOLERANCE, LOOSEST));
     let (outcome, further) = run.outcome(engagement, effort);
     let work = run.work().and(further);
     let trajectory = (effort == Effort::Trajectory).then(|| run.into_trajectory());

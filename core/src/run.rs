@@ -19,6 +19,7 @@ const MOST_ROUNDS: u32 = 4;
 const MOST_CUTS: u32 = 16;
 
 /// The time between two instants, or from the last one on.
+#[derive(Clone, Copy)]
 struct Span {
     until: f64,
     /// Whether something arrives at its end.
@@ -50,6 +51,15 @@ enum Next {
 
 /// The part by which losses must outweigh reinforcement for a side to be pinned at nothing.
 const PINNED: f64 = 1e-12;
+
+/// When the first line that is below 0 has risen above it, a hair later; `None` where none does.
+fn surfaces(at: f64, ways: &Both<WayDown>) -> Option<f64> {
+    Side::BOTH
+        .into_iter()
+        .filter(|side| ways[*side].sunk > 0.0 && ways[*side].rising > 0.0)
+        .map(|side| (at + ways[side].sunk / ways[side].rising * (1.0 + PINNED)) * (1.0 + TIE))
+        .reduce(f64::min)
+}
 
 /// What comes of a stretch.
 enum Comes {
@@ -121,11 +131,13 @@ pub(crate) struct Run {
     verdict: bool,
     /// How many stretches were cut short.
     cuts: u32,
+    /// The part of the strengths to which each step of an integration keeps its error.
+    tolerance: f64,
 }
 
 impl Run {
-    /// The fight of `engagement`.
-    pub(crate) fn of(engagement: &Engagement) -> Run {
+    /// The fight of `engagement`, integrated to that tolerance where it must be.
+    pub(crate) fn of(engagement: &Engagement, tolerance: f64) -> Run {
         let left = Both::of(|side| engagement.sides[side].start);
         let ledger = Both::of(|side| Ledger {
             committed: Double::sum(engagement.sides[side].start, engagement.sides[side].lost),
@@ -148,6 +160,7 @@ impl Run {
             time: None,
             verdict: false,
             cuts: 0,
+            tolerance,
         };
         run.go(0);
         run
@@ -175,6 +188,7 @@ impl Run {
             time: None,
             verdict: true,
             cuts: 0,
+            tolerance: self.tolerance,
         };
         let next = run.instants.get(1).map(|instant| instant.time);
         if run.gone_with(0) {
@@ -291,7 +305,16 @@ impl Run {
                     Next::Over => return true,
                 }
             }
-            let (stretch, due, comes) = self.solve(&span, at, conditions, &ways);
+            let surfaces = surfaces(at, &ways).filter(|time| *time < span.until);
+            let here = match surfaces {
+                Some(until) => Span {
+                    until,
+                    arrivals: false,
+                    after: After::More,
+                },
+                None => span,
+            };
+            let (stretch, due, comes) = self.solve(&here, at, conditions, &ways);
             if let Some(side) = stretch.doomed() {
                 self.stretches.push(stretch);
                 self.finish(Breaks::only(side), Ended::Break, at);
@@ -309,13 +332,17 @@ impl Run {
                     let comes = Comes::through(&stretch, span.until - at);
                     return self.run_out(stretch, &conditions, comes, span.until);
                 }
+                Comes::Through(length, standing) if surfaces.is_some() => {
+                    at += length;
+                    self.close(stretch, &conditions, &standing, length, at);
+                    continue;
+                }
                 Comes::Cut(length, standing) => {
                     // The integrator goes on in a stretch of its own, as long as it gets anywhere.
-                    let before = at;
                     self.cuts += 1;
                     at += length;
                     self.close(stretch, &conditions, &standing, length, at);
-                    if at == before || self.cuts > MOST_CUTS {
+                    if length == 0.0 || self.cuts > MOST_CUTS {
                         self.finish(Breaks::Neither, Ended::Unfinished, at);
                         return true;
                     }
@@ -381,13 +408,14 @@ impl Run {
             };
             (due, comes)
         };
-        let mut stretch = Stretch::new(at, length, self.left, conditions, &level, span.after);
+        let (after, tolerance) = (span.after, self.tolerance);
+        let mut stretch = Stretch::new(at, length, self.left, conditions, &level, after, tolerance);
         stretch.ledger = self.ledger;
         let (due, comes) = what_comes(&stretch);
         if stretch.method() == Method::Integration || comes.keeps_books(&stretch) {
             return (stretch, due, comes);
         }
-        let stretch = stretch.integrated(length, span.after);
+        let stretch = stretch.integrated(length, after, tolerance);
         let (due, comes) = what_comes(&stretch);
         (stretch, due, comes)
     }
@@ -466,7 +494,8 @@ impl Run {
             return f64::INFINITY;
         }
         let strength = self.left[enemy] * libm::pow(part, 1.0 / exponent) * (1.0 - PINNED);
-        Stretch::new(0.0, span.until, self.left, *alone, ways, After::More)
+        let (until, after, tolerance) = (span.until, After::More, self.tolerance);
+        Stretch::new(0.0, until, self.left, *alone, ways, after, tolerance)
             .time_to_strength(enemy, strength)
             .unwrap_or(f64::INFINITY)
     }

@@ -177,8 +177,8 @@ fn reinforcement_that_is_lost_as_it_comes() {
 /// Where an answer would take more evaluations than it may, it says how far it was worked out.
 #[test]
 fn what_would_take_too_long_says_how_far_it_is_known() {
-    // A side that is lost as fast as it comes, ten billion times faster than its enemy changes.
-    let link = "x.start=400&x.fire=search&x.half=80&x.rate=1e9&x.wastage=1e-3&y.start=2&y.fire=area&y.rate=1e-5&y.flow=50@0/&y.break=0.999999999&until=1e6";
+    // Y holds X in a balance of his own for longer than a double has time: 1e302 hours at the least.
+    let link = "x.start=400&x.fire=power&x.rate=1e-300&x.p=2&x.q=3&x.flow=1@0/&y.start=0.3&y.fire=area&y.rate=0.4323&y.break=0.999999999&y.support.area=0.0117";
     let found = ended(link);
     if found.ended == Ended::Unfinished {
         let to = found

@@ -1,5 +1,6 @@
 //! The first moment of a course where a series does not exist: a strength of 0 or a growth of 0 under a broken exponent.
 
+use super::LEAST;
 use crate::conditions::Conditions;
 use crate::sides::{Both, Side};
 
@@ -71,8 +72,10 @@ fn has_series(side: Side, start: Both<f64>, conditions: &Conditions) -> bool {
     let broken = |exponent: f64| ![0.0, 1.0, 2.0].contains(&exponent);
     let fire = &conditions.fire[side];
     let growth = conditions.growth[side].is_some_and(|growth| growth.value <= 0.0 && broken(growth.power));
-    let shooters = start[side] == 0.0 && broken(fire.shooters().exponent);
+    // Of next to nobody a broken power has no digits, and the first who come are far more.
+    let none = |side: Side| start[side] == 0.0 || start[side] <= LEAST && conditions.flow[side] > 0.0;
+    let shooters = none(side) && broken(fire.shooters().exponent);
     let [first, second] = fire.per_target();
-    let targets = start[side.enemy()] == 0.0 && (broken(-first.exponent) || second.coefficient > 0.0);
+    let targets = none(side.enemy()) && (broken(-first.exponent) || second.coefficient > 0.0);
     !fire.takes_effect() || !(growth || shooters || targets)
 }

@@ -5,16 +5,18 @@
 //! and events are located on it. Near a strength of 0 reached in finite time the steps shrink with what is left of the
 //! time, in a geometric row.
 
+mod balance;
 mod first_moment;
 mod series;
 
 pub use series::ORDER;
 
-use crate::conditions::Conditions;
+use crate::conditions::{Conditions, part_of};
 use crate::outcome::Losses;
 use crate::root::{newton, root};
 use crate::sides::{Both, Side};
 use crate::terms::Fire;
+use balance::Balanced;
 use first_moment::FirstMoment;
 use series::Expansion;
 
@@ -26,10 +28,23 @@ pub(crate) const LEAST: f64 = 1e-280;
 
 /// The longest step in its own unit: what is next to nothing has coefficients that no double holds, and would else be
 /// taken to have a series without end.
-const LONGEST_STEP: f64 = 6.0;
+const MOST_UNITS: f64 = 6.0;
 
-/// The accuracy of each step as a part of the strengths, unless another is asked for: far below the 1e-11 that is asked
-/// of what is integrated, since a series has digits for little more.
+/// The part of a strength down to which a step goes that may else pass the moment at which it comes to nothing.
+const NEXT_TO_NOTHING: f64 = 0.02;
+
+/// A unit in which a series has no digits is made shorter by this.
+const SHORTER_UNIT: f64 = 1e-20;
+
+/// So many steps lie between one look for a balance and the next.
+const BETWEEN_LOOKS: usize = 16;
+
+/// So many times as far may it go where gains and losses balance: beyond that, coefficients would be too small for a double.
+const MOST_BALANCED: f64 = 1e10;
+
+/// The accuracy of each step as a part of the strengths, unless another is asked for ([`crate::fight::fight_to`]): far below
+/// the 1e-11 that is asked of what is integrated. A series doubles its digits for little more work, and next to a tie, or
+/// over many steps, 1e-11 a step is not 1e-11 at the end.
 pub const TOLERANCE: f64 = f64::EPSILON;
 
 /// What is summed along a course: losses are never taken as a remainder.
@@ -88,6 +103,8 @@ pub struct Course {
     now: Both<f64>,
     summed: Both<Summed>,
     stopped: Stopped,
+    /// The number of the step before which a balance is looked for again.
+    look_at: usize,
 }
 
 /// A line that a strength may come down to: its distance below the start, and how it rises.
@@ -141,6 +158,7 @@ impl Course {
             now: start,
             summed: Both::default(),
             stopped: Stopped::Horizon,
+            look_at: BETWEEN_LOOKS,
         };
         if course.is_gone() {
             course.stopped = Stopped::Gone;
@@ -185,13 +203,9 @@ impl Course {
     /// Takes one step towards `until`; says whether there was one to take.
     fn step(&mut self, until: f64, tolerance: f64, onto_orbit: &impl Fn(Both<f64>) -> Both<f64>) -> bool {
         let at = self.until;
-        let (unit, most) = unit_of(self.now, at, &self.conditions);
-        let short = ((until - at) / unit).min(most);
-        let (series, is_short) = Expansion::new(self.now, at, &self.conditions, unit, short, tolerance);
-        let length = if is_short {
-            short
-        } else {
-            series.step_length(tolerance).min(short)
+        let (unit, series, length) = match self.balanced(until, tolerance) {
+            Some(Balanced { unit, series, length }) => (unit, series, length),
+            None => self.series(until, tolerance),
         };
         let comes_to = if length * unit >= until - at {
             until
@@ -211,6 +225,83 @@ impl Course {
         (self.until, self.now, self.summed) = (comes_to, now, step.summed(length));
         self.steps.push(step);
         true
+    }
+
+    /// The series from where the sides stand, its unit, and how many of it the next step takes.
+    fn series(&self, until: f64, tolerance: f64) -> (f64, Expansion, f64) {
+        let at = self.until;
+        let (mut unit, most) = unit_of(self.now, at, &self.conditions);
+        loop {
+            let short = ((until - at) / unit).min(most);
+            let (series, is_short) = Expansion::new(self.now, at, &self.conditions, unit, short, tolerance);
+            let length = if is_short {
+                short
+            } else {
+                series.step_length(tolerance).min(short)
+            };
+            let length = self.before_nothing(&series, unit, length);
+            let now = series.strengths(length);
+            let holds = length > 0.0 && now.x.is_finite() && now.y.is_finite();
+            if holds || unit < LEAST {
+                return (unit, series, length);
+            }
+            // Where nothing happens at first the unit says little, and coefficients may outgrow a double.
+            unit *= SHORTER_UNIT;
+        }
+    }
+
+    /// The length of a step, or less where a side would pass the moment at which it comes to nothing.
+    fn before_nothing(&self, series: &Expansion, unit: f64, length: f64) -> f64 {
+        let mut length = length;
+        for side in Side::BOTH
+            .into_iter()
+            .filter(|side| self.may_rise_from_nothing(*side))
+        {
+            while length > 0.0 && self.has_passed_nothing(side, series, unit, length) {
+                length *= 0.5;
+            }
+        }
+        length
+    }
+
+    /// Whether a side has come to next to nothing by so much of a step, or its series has left what its losses make of it.
+    fn has_passed_nothing(&self, side: Side, series: &Expansion, unit: f64, length: f64) -> bool {
+        let (left, slope) = series.above(side, 0.0, 0.0, length);
+        let enemy = side.enemy();
+        let conditions = &self.conditions;
+        let growth = conditions.growth_at(enemy, self.until + length * unit);
+        let enemies = series.strengths(length)[enemy];
+        let fire = conditions.fire[enemy].losses_per_time(enemies, left) * growth;
+        let lost = fire + conditions.part_lost(side) * left + conditions.steadily_lost(side);
+        let flow = conditions.flow[side];
+        let off = (slope - (flow - lost) * unit).abs() * length;
+        left < NEXT_TO_NOTHING * series.strength[side][0] || off > 0.1 * left
+    }
+
+    /// Whether the series of a side goes on where its strength has come to nothing, and has it rise again: so it does where
+    /// the strength falls as a whole power of the time that is left.
+    fn may_rise_from_nothing(&self, side: Side) -> bool {
+        let [first, second] = self.conditions.fire[side.enemy()].per_target();
+        let falls = -1.0 < first.exponent && first.exponent < 0.0 && second.coefficient == 0.0;
+        falls && self.now[side] > 0.0
+    }
+
+    /// A step along a balance, where there is one; looked for after some steps to get there.
+    fn balanced(&mut self, until: f64, tolerance: f64) -> Option<Balanced> {
+        if self.steps.len() < self.look_at {
+            return None;
+        }
+        let balanced = Balanced::step(
+            self.now,
+            self.until,
+            &self.conditions,
+            until - self.until,
+            tolerance,
+        );
+        if balanced.is_none() {
+            self.look_at = self.steps.len() + BETWEEN_LOOKS;
+        }
+        balanced
     }
 
     /// Whether a side to which nobody comes has no digits left to go on with, or one that had somebody has nobody.
@@ -254,8 +345,10 @@ impl Course {
 
     /// The strengths at the time `t`, from 0 to the horizon.
     pub fn strengths_at(&self, t: f64) -> Both<f64> {
-        let Some((step, t)) = self.step_at(t) else {
-            return self.end();
+        let (step, t) = match self.step_at(t) {
+            // To the digit, which the difference of two times may not have.
+            Some(found) if t != self.until => found,
+            _ => return self.end(),
         };
         let left = step.series.strengths(t);
         Both::of(|side| left[side].max(0.0))
@@ -271,17 +364,9 @@ impl Course {
         Both::of(|side: Side| {
             let support = self.conditions.support[side.enemy()];
             let Summed { fire, exposure } = summed[side];
-            let support = support.area * exposure + support.aimed * t;
-            Losses::of(fire, support, self.conditions.wastage[side] * exposure)
+            let support = part_of(support.area, exposure) + support.aimed * t;
+            Losses::of(fire, support, part_of(self.conditions.wastage[side], exposure))
         })
-    }
-
-    /// The highest strength of a side at the beginning of a step.
-    pub fn highest(&self, side: Side) -> f64 {
-        self.steps
-            .iter()
-            .map(|step| step.series.strength[side][0])
-            .fold(0.0, f64::max)
     }
 
     /// The changes of the strengths per unit of time at the time `t`.
@@ -366,21 +451,31 @@ fn reach_in(series: &Expansion, side: Side, at: f64, rising: f64, end: f64) -> O
     None
 }
 
-/// The time in which the changes of the first moment would use a side up, and how many of them a step takes at most.
+/// The time in which the gains and losses of the first moment would each use a side up, and how many of it a step takes at
+/// most: what nearly balances is held to what is left over.
 fn unit_of(now: Both<f64>, at: f64, conditions: &Conditions) -> (f64, f64) {
-    let share = |side: Side| {
+    // Of nobody the parts are no numbers.
+    let number = |part: f64| if part.is_finite() { part } else { 0.0 };
+    let shares = |side: Side| {
         let enemy = side.enemy();
         let growth = conditions.growth_at(enemy, at);
         let fire = conditions.fire[enemy].share_per_time(now[enemy], now[side]) * growth;
-        let steady = conditions.steadily_lost(side) + conditions.flow[side];
-        fire + conditions.part_lost(side) + if steady > 0.0 { steady / now[side] } else { 0.0 }
+        let lost = number(fire) + conditions.part_lost(side);
+        let steady = number((conditions.steadily_lost(side) - conditions.flow[side]) / now[side]);
+        (lost + steady.abs(), (lost + steady).abs())
     };
-    let share = [share(Side::X), share(Side::Y)]
-        .into_iter()
-        .filter(|share| share.is_finite())
-        .fold(0.0, f64::max);
+    // A broken power of what grows has a series no longer than it takes to double.
+    let doubles = |side: Side| match conditions.growth[side] {
+        Some(growth) if growth.power.fract() != 0.0 && conditions.fire[side].takes_effect() => {
+            growth.slope / (growth.value + growth.slope * at)
+        }
+        _ => 0.0,
+    };
+    let doubles = doubles(Side::X).max(doubles(Side::Y));
+    let (x, y) = (shares(Side::X), shares(Side::Y));
+    let (share, net) = (x.0.max(y.0).max(doubles), x.1.max(y.1).max(doubles));
     if share > 0.0 {
-        (1.0 / share, LONGEST_STEP)
+        (1.0 / share, MOST_UNITS * (share / net).min(MOST_BALANCED))
     } else {
         (1.0, f64::INFINITY)
     }

@@ -70,6 +70,19 @@ impl Expansion {
         }
     }
 
+    /// Strengths that do not change.
+    pub(crate) fn constant(now: Both<f64>) -> Expansion {
+        Expansion {
+            order: ORDER,
+            strength: Both::of(|side| {
+                let mut series = NOTHING;
+                series[0] = now[side];
+                series
+            }),
+            fire: Both::of(|_| NOTHING),
+        }
+    }
+
     /// The series from the strengths `now` on, at the time `at` of the stretch, in time measured in `unit`.
     ///
     /// It stops at the order whose last two terms are below the part `tolerance` of the strengths all through the time
@@ -82,15 +95,7 @@ impl Expansion {
         short: f64,
         tolerance: f64,
     ) -> (Expansion, bool) {
-        let mut found = Expansion {
-            order: ORDER,
-            strength: Both::of(|side| {
-                let mut series = NOTHING;
-                series[0] = now[side];
-                series
-            }),
-            fire: Both::of(|_| NOTHING),
-        };
+        let mut found = Expansion::constant(now);
         let mut fires = Both::of(|side: Side| FireSeries::new(conditions, side.enemy(), at, unit));
         let part = Both::of(|side| conditions.part_lost(side));
         let steady = Both::of(|side| conditions.flow[side] - conditions.steadily_lost(side));
@@ -118,7 +123,7 @@ impl Expansion {
             } else {
                 0
             };
-            if small >= 2 && n + 1 >= least {
+            if small >= 2 && n + 1 >= least && short.is_finite() {
                 found.order = n + 1;
                 return (found, true);
             }
@@ -242,7 +247,7 @@ fn least_order(conditions: &Conditions) -> usize {
 }
 
 /// The series of the losses by one side's fire: rate × growth × S(shooters) × T(targets).
-struct FireSeries {
+pub(crate) struct FireSeries {
     rate: f64,
     growth: Option<Series>,
     shooters: Raised,
@@ -259,7 +264,7 @@ enum Targets {
 }
 
 impl FireSeries {
-    fn new(conditions: &Conditions, shooters: Side, at: f64, unit: f64) -> FireSeries {
+    pub(crate) fn new(conditions: &Conditions, shooters: Side, at: f64, unit: f64) -> FireSeries {
         let fire: &Fire<f64> = &conditions.fire[shooters];
         let rate = if fire.takes_effect() { fire.rate } else { 0.0 };
         let per_target = fire.per_target();
@@ -284,8 +289,9 @@ impl FireSeries {
         }
     }
 
-    /// The coefficient of order `n`, from the strengths up to that order; orders come one after another.
-    fn coefficient(&mut self, n: usize, shooters: &Series, targets: &Series) -> f64 {
+    /// The coefficient of order `n`, from the strengths up to that order; orders come one after another, each as often as
+    /// the strengths of that order change.
+    pub(crate) fn coefficient(&mut self, n: usize, shooters: &Series, targets: &Series) -> f64 {
         if self.rate == 0.0 {
             return 0.0;
         }
@@ -343,6 +349,7 @@ impl Quotient {
         self.divisor[n] = first.coefficient(n, targets) + second.coefficient(n, targets);
         let weighted = product(weight, &self.above.series, n);
         // The coefficient sought is 0 so far, and so its product with the divisor's first.
+        self.quotient[n] = 0.0;
         let carried = product(&self.quotient, &self.divisor, n);
         self.quotient[n] = (weighted - carried) / self.divisor[0];
         self.quotient[n]

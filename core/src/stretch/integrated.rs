@@ -14,6 +14,9 @@ const GONE: f64 = 1e-200;
 /// The part of its start to which a side that is on its way to nothing is followed.
 const FADED: f64 = 1e-13;
 
+/// The part of the time so far in which a side is gone that has come to its last moment.
+const LAST_MOMENT: f64 = 1e-13;
+
 /// An integrated stretch.
 #[derive(Clone, Debug)]
 pub(super) struct Integrated {
@@ -33,6 +36,7 @@ impl Integrated {
         length: f64,
         ways: &Both<WayDown>,
         after: After,
+        tolerance: f64,
     ) -> Integrated {
         let enough = |course: &Course| {
             let t = course.until();
@@ -41,7 +45,7 @@ impl Integrated {
             let decided = after == After::Verdict && doomed(conditions, now, t).is_some();
             decided || down(Side::X) || down(Side::Y) || has_settled(course, start, conditions, length)
         };
-        let course = Course::under(start, conditions, length, TOLERANCE, enough);
+        let course = Course::under(start, conditions, length, tolerance, enough);
         let doomed = match after {
             After::Verdict => doomed(conditions, course.end(), course.until()),
             _ => None,
@@ -100,23 +104,36 @@ impl Integrated {
     }
 
     /// The moment at which a side comes to 0 where its losses do not vanish with it: the integrator's steps shrink with
-    /// what is left of the time, and end a hair before.
+    /// what is left of the time, and end a hair before. So near to it the enemy no longer changes, and what is left falls as
+    /// the power 1/(1 − q) of the time that is left.
     fn last_moment(&self, side: Side, line: Line, length: f64) -> Option<f64> {
         let end = self.course.until();
-        let fire = &self.conditions.fire[side.enemy()];
-        let [first, second] = fire.per_target();
-        let vanishes = second.coefficient > 0.0 || first.exponent <= -1.0 || !fire.takes_effect();
-        let comes = !vanishes || self.conditions.steadily_lost(side) > 0.0;
+        let enemy = side.enemy();
+        let fire = &self.conditions.fire[enemy];
+        let [first, _] = fire.per_target();
+        let steady = self.conditions.steadily_lost(side);
+        let comes = comes_to_nothing(side, &self.conditions);
         let left = self.course.end();
-        let next_to_nothing = left[side] <= LEAST.max(1e-9 * self.course.highest(side));
-        let lost = self.conditions.losses_per_time(side, left).all;
-        let falls = lost * self.conditions.growth_at(side.enemy(), end) > self.conditions.flow[side];
+        let growth = self.conditions.growth_at(enemy, end);
+        let pace = self.conditions.losses_per_time(side, left);
+        // What is lost whatever the strength is lost down to the very last, which may be rounded to nobody.
+        let coming = (pace.fire * growth).max(steady);
+        let flow = self.conditions.flow[side];
+        let falls = (pace.all * growth).max(steady) - flow;
         // Of so few the powers have no digits: whatever they lose is all of them.
-        if self.start[side] <= LEAST && line.at > 0.0 && falls {
+        if self.start[side] <= LEAST && line.at > 0.0 && falls > 0.0 {
             return Some(end);
         }
-        (end < length && line.at == 0.0 && line.rising == 0.0 && comes && falls && next_to_nothing)
-            .then_some(end)
+        let order = if steady > 0.0 { 1.0 } else { 1.0 + first.exponent };
+        let is_next = left[side] <= LEAST || left[side] <= LAST_MOMENT * end * falls * order;
+        let goes_on = self.start[side] > LEAST && flow == 0.0 && pace.all <= 2.0 * coming;
+        let rest = if goes_on {
+            left[side] / (falls * order)
+        } else {
+            0.0
+        };
+        (end < length && line.at == 0.0 && line.rising == 0.0 && comes && falls > 0.0 && is_next)
+            .then_some((end + rest).min(length))
     }
 
     /// When a side comes to its line after the end of the integrator's course: alone, or since the line rises to it.
@@ -157,7 +174,11 @@ impl Integrated {
             Some((start, system)) => linear::standing(&self.conditions.without_fire(), start, &system, on),
             None => Standing {
                 left: course.end(),
-                losses: steady_losses(&self.conditions, course.end(), on),
+                // What comes in is lost; a side to which nobody comes loses nothing that counts.
+                losses: Both::of(|side| match self.conditions.flow[side] {
+                    0.0 => Losses::default(),
+                    _ => steady_losses(&self.conditions, course.end(), on)[side],
+                }),
             },
         };
         Standing {
@@ -219,6 +240,9 @@ impl Integrated {
 }
 
 /// Whether nothing moves any more at the end of `course`, so that what comes after is known.
+///
+/// A side is at rest where what comes in and what is lost balance, where no more than a rounding of it is lost up to the
+/// end, where it has faded, or where it loses less and less since the enemy has.
 fn has_settled(course: &Course, start: Both<f64>, conditions: &Conditions, length: f64) -> bool {
     let steady = conditions.growth.x.is_none() && conditions.growth.y.is_none();
     let endless = length.is_infinite();
@@ -226,24 +250,31 @@ fn has_settled(course: &Course, start: Both<f64>, conditions: &Conditions, lengt
         return false;
     }
     let (t, now) = (course.until(), course.end());
-    let slopes = course.slopes_at(t);
-    let still =
-        |side: Side| (slopes[side] * t).abs() <= 1e-13 * now[side] || now[side] <= FADED * start[side];
     let huge = |side: Side| now[side] > 1e15 * (1.0 + start.x + start.y);
     if endless && (huge(Side::X) || huge(Side::Y)) {
         return true;
     }
-    if !(still(Side::X) && still(Side::Y)) {
-        return false;
-    }
-    // Up to a clock or an instant only what has come to rest is left alone: what comes in and what is lost balance.
+    let slopes = course.slopes_at(t);
+    let part = if endless { FADED } else { 1e-40 };
+    let faded = |side: Side| {
+        conditions.flow[side] == 0.0 && now[side] <= part * start[side] && !comes_to_nothing(side, conditions)
+    };
     let rests = |side: Side| {
         let lost = steady_losses(conditions, now, 1.0)[side].all;
         let slope = slopes[side].abs();
-        let small = slope <= 1e-13 * (lost + conditions.flow[side]) || slope * length <= 1e-13 * now[side];
-        small || now[side] <= 1e-40 * start[side]
+        let fades_out = endless && faded(side.enemy()) && slope * t <= 1e-13 * now[side];
+        let still = slope == 0.0 || slope * length <= 1e-13 * now[side];
+        slope <= 1e-13 * (lost + conditions.flow[side]) || still || faded(side) || fades_out
     };
-    endless || (rests(Side::X) && rests(Side::Y))
+    rests(Side::X) && rests(Side::Y)
+}
+
+/// Whether the losses of `side` do not vanish with it, so that it may be gone in finite time.
+fn comes_to_nothing(side: Side, conditions: &Conditions) -> bool {
+    let fire = &conditions.fire[side.enemy()];
+    let [first, second] = fire.per_target();
+    let vanishes = second.coefficient > 0.0 || first.exponent <= -1.0 || !fire.takes_effect();
+    !vanishes || conditions.steadily_lost(side) > 0.0
 }
 
 /// What is lost in the time `t` at steady strengths and full rates.

@@ -121,7 +121,8 @@ pub struct FirstBreak {
 }
 
 impl Stretch {
-    /// The stretch from the time `from`, no longer than `length`, where both sides' ways down are `ways`.
+    /// The stretch from the time `from`, no longer than `length`, where both sides' ways down are `ways`; where it must be
+    /// integrated, each step keeps its error to the part `tolerance` of the strengths.
     pub fn new(
         from: f64,
         length: f64,
@@ -129,6 +130,7 @@ impl Stretch {
         conditions: Conditions,
         ways: &Both<WayDown>,
         after: After,
+        tolerance: f64,
     ) -> Stretch {
         let absent = Side::BOTH
             .into_iter()
@@ -164,7 +166,8 @@ impl Stretch {
             linear().or_else(piece)
         };
         let how = solved.unwrap_or_else(|| {
-            How::Integrated(Box::new(Integrated::new(start, &conditions, length, ways, after)))
+            let integrated = Integrated::new(start, &conditions, length, ways, after, tolerance);
+            How::Integrated(Box::new(integrated))
         });
         Stretch {
             from,
@@ -178,8 +181,9 @@ impl Stretch {
     }
 
     /// The same, solved by the integrator.
-    pub(crate) fn integrated(self, length: f64, after: After) -> Stretch {
-        let integrated = Integrated::new(self.start, &self.conditions, length, &self.ways, after);
+    pub(crate) fn integrated(self, length: f64, after: After, tolerance: f64) -> Stretch {
+        let (start, ways) = (self.start, &self.ways);
+        let integrated = Integrated::new(start, &self.conditions, length, ways, after, tolerance);
         Stretch {
             how: How::Integrated(Box::new(integrated)),
             ..self
