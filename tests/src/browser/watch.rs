@@ -2,8 +2,8 @@
 
 use serde_json::Value;
 
-use super::Browser;
 use super::command::Command;
+use super::{Browser, Engine};
 
 /// Tells the console of what else a page could hide.
 const LISTENERS: &str = "
@@ -11,12 +11,19 @@ const LISTENERS: &str = "
       console.error('policy violation: ' + event.violatedDirective + ' ' + event.blockedURI), true);
     addEventListener('unhandledrejection', (event) => console.error('unhandled: ' + event.reason));";
 
+/// Has Firefox tell an error that a page writes to the console in words: it would tell of an object.
+const IN_WORDS: &str = "const write = console.error;
+    console.error = (...all) => write.apply(console, all.map(String));";
+
 /// Schemes that stay on the machine.
 const LOCAL: [&str; 6] = ["file:", "data:", "blob:", "about:", "chrome:", "resource:"];
 
 impl Browser {
     /// Listens to every document from now on.
     pub(super) fn watch(&self) {
+        if self.engine == Engine::Firefox {
+            self.before_each_page(IN_WORDS);
+        }
         self.before_each_page(LISTENERS);
     }
 
