@@ -68,6 +68,56 @@ fn a_focused_number_has_two_buttons_and_nothing_moves() {
     browser.assert_clean();
 }
 
+/// The label says what is being filled in, so its buttons cover nothing of it; nor do they stick out, or lie under anything.
+#[test]
+fn the_buttons_cover_no_label_of_their_own() {
+    let link = "x.start=600&x.fire=search&x.half=30&x.rate=0.04&x.break=0.3&x.flow=5@2/8&y.start=464&y.fire=power&y.p=1&\
+                y.q=0.5&y.rate=0.05&y.join=64@4,20@6&phase1.from=3&phase1.x.rate=0.05&v=1";
+    let browser = Browser::start();
+    for (screen, large) in [
+        (Screen::DESK, false),
+        (Screen::DESK, true),
+        (Screen::SMALL, false),
+    ] {
+        browser.screen(screen);
+        browser.open(link);
+        browser.settle(link);
+        if large {
+            browser.text_size(2.0, false);
+        }
+        let script = "
+            document.querySelectorAll('#engagement details').forEach((d) => { d.open = true; });
+            const wrong = []; let seen = 0;
+            for (const field of document.querySelectorAll('#engagement input')) {
+              if (!field.checkVisibility()) continue;
+              field.focus();
+              const buttons = document.querySelector('.hand > span');
+              if (!buttons) continue;
+              seen += 1;
+              const cell = field.closest('.rows:not(.changes) td');
+              const label = document.querySelector(`label[for='${field.id}']`) ||
+                (cell && cell.closest('table').querySelectorAll('th')[cell.cellIndex]);
+              const a = buttons.getBoundingClientRect();
+              if (a.left < 0 || a.right > innerWidth) wrong.push(`${field.id}: sticks out`);
+              const b = label ? label.getBoundingClientRect() : {right: 0};
+              if (a.left < b.right - 1 && b.left < a.right - 1 && a.top < b.bottom - 1 && b.top < a.bottom - 1)
+                wrong.push(`${field.id}: its label is covered`);
+              buttons.scrollIntoView({block: 'center'});
+              for (const button of buttons.children) {
+                const r = button.getBoundingClientRect();
+                const top = document.elementFromPoint(r.left + r.width / 2, r.top + r.height / 2);
+                if (top !== button) wrong.push(`${field.id}: ${button.innerText} lies under ${top && top.outerHTML.slice(0, 80)}`);
+              }
+            }
+            return [seen, wrong];";
+        let found = browser.script(script, vec![]);
+        assert!(found[0].as_u64() > Some(25), "{screen:?}: {found}");
+        assert_eq!(found[1], json!([]), "{screen:?}, large: {large}");
+        browser.picture(&format!("buttons-{}-{large}", screen.width));
+    }
+    browser.assert_clean();
+}
+
 #[test]
 fn ask_and_in_doubt_write_where_the_number_stands() {
     let browser = Browser::opened(LINK);

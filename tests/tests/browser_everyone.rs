@@ -211,6 +211,46 @@ fn text_twice_as_large_has_room() {
     assert!(found.is_empty(), "{}", found.join("\n"));
 }
 
+/// The words of the chosen law are read whole, in the list or under it, whatever the size of the screen and the text.
+#[test]
+fn the_words_of_a_law_have_room() {
+    let browser = Browser::start();
+    // What some of them need.
+    let needs = [("x.half", "30"), ("x.p", "1"), ("x.q", "0.5")];
+    let demo = needs
+        .iter()
+        .fold(DEMO.to_owned(), |link, (key, text)| changed(&link, key, text));
+    for (screen, times) in [
+        (Screen::SMALL, 1.0),
+        (Screen::SMALL, 2.0),
+        (Screen::DESK, 1.0),
+        (Screen::DESK, 2.0),
+    ] {
+        browser.screen(screen);
+        for law in ["aimed", "area", "logarithmic", "search", "power", "none"] {
+            let link = changed(&demo, "x.fire", law);
+            browser.open(&link);
+            browser.settle(&link);
+            browser.text_size(times, false);
+            let script = "
+                const list = document.getElementById('x.fire'), under = document.getElementById('x.fire.chosen');
+                const words = list.selectedOptions[0].text, style = getComputedStyle(list);
+                const pen = document.createElement('canvas').getContext('2d');
+                pen.font = `${style.fontSize} ${style.fontFamily}`;
+                // The list's own mark takes room too.
+                const room = list.clientWidth - parseFloat(style.paddingLeft) - parseFloat(style.paddingRight) - 18;
+                return [words, pen.measureText(words).width <= room || (under.checkVisibility() && under.innerText === words)];";
+            let found = browser.script(script, vec![]);
+            assert_eq!(
+                found[1], true,
+                "{} at {screen:?}, text {times} times as large",
+                found[0]
+            );
+        }
+    }
+    browser.assert_clean();
+}
+
 /// What is pressed, dragged or typed in on a small screen is large enough for a finger.
 #[test]
 fn a_finger_hits_what_it_means() {

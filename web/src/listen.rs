@@ -7,6 +7,7 @@ use crate::page::Page;
 use crate::passing;
 use crate::phases::Ask;
 use crate::reading::Pointer;
+use crate::rolling;
 use aftercount_core::sides::Side;
 use std::cell::RefCell;
 use std::rc::Rc;
@@ -48,6 +49,7 @@ pub(crate) fn all(dom: &Dom, page: &Shared, signal: &AbortSignal) -> Result<(), 
     on(document, "focusin", focused)?;
     on(document, "click", click)?;
     on(document, "keydown", key)?;
+    on(document, "keyup", came)?;
     on(document, "submit", submit)?;
     on(document, "dragover", passing::dragged)?;
     on(document, "drop", passing::dropped)?;
@@ -210,6 +212,17 @@ fn focused(page: &mut Page, event: &Event) -> After {
         && area.read_only()
     {
         area.select();
+    }
+    After::Nothing
+}
+
+/// The way by the keyboard has come to another stop.
+fn came(page: &mut Page, event: &Event) -> After {
+    if event
+        .dyn_ref::<KeyboardEvent>()
+        .is_some_and(|event| event.key() == "Tab")
+    {
+        rolling::bring_into_sight(page.dom());
     }
     After::Nothing
 }

@@ -60,6 +60,7 @@ impl Paper {
         for (id, picture) in pictures {
             self.picture(id, *picture);
         }
+        self.set_timeline_apart(true);
         // The working is opened, so that it is on the paper.
         if let Some(details) = self.dom.typed::<HtmlDetailsElement>("working-details") {
             self.opened = !details.open();
@@ -76,11 +77,30 @@ impl Paper {
         for drawn in self.drawn.drain(..) {
             drawn.remove();
         }
+        self.set_timeline_apart(false);
         if let Some(details) = self.dom.typed::<HtmlDetailsElement>("working-details")
             && std::mem::take(&mut self.opened)
         {
             details.set_open(false);
         }
+    }
+
+    /// On paper the timeline stands below the pictures and not among them: where it goes on for pages, Firefox would leave
+    /// out their foot within the grid that holds the pictures.
+    fn set_timeline_apart(&self, apart: bool) -> Option<()> {
+        let (timeline, plate) = (
+            self.dom.element("timeline-part")?,
+            self.dom.element("strength-plate")?,
+        );
+        let moved = if apart {
+            plate
+                .parent_element()?
+                .insert_adjacent_element("afterend", &timeline)
+        } else {
+            let table = plate.query_selector(".as-table").ok()??;
+            table.insert_adjacent_element("beforebegin", &timeline)
+        };
+        moved.ok()?.map(drop)
     }
 
     /// What stands at the top and the foot of every page.

@@ -1,9 +1,9 @@
-//! What gets in the way of a reader with a keyboard: parts that roll within themselves, and the sentence that stays in
-//! sight, under which the browser would otherwise bring a field that takes the focus.
+//! What gets in the way of a reader with a keyboard: parts that roll within themselves, the sentence that stays in sight,
+//! under which the browser would otherwise bring a field that takes the focus, and a field that is seen in part.
 
 use crate::dom::{Dom, set};
 use wasm_bindgen::JsCast;
-use web_sys::{Element, HtmlElement};
+use web_sys::{Element, HtmlElement, ScrollIntoViewOptions, ScrollLogicalPosition};
 
 /// What may be larger than its place, and what it is called where it is.
 const MAY_ROLL: [(&str, &str); 2] = [
@@ -20,6 +20,22 @@ pub(crate) fn leave_room(dom: &Dom) {
             .style()
             .set_property("--said", &format!("{}px", said.client_height()));
     }
+}
+
+/// Brings the whole of what has the focus into sight; of what is higher than the window its beginning. Firefox leaves what
+/// it has come to where it is, if any part of it can be seen.
+pub(crate) fn bring_into_sight(dom: &Dom) {
+    let Some(stop) = dom.document.active_element() else {
+        return;
+    };
+    let options = ScrollIntoViewOptions::new();
+    options.set_block(if stop.get_bounding_client_rect().top() < 0.0 {
+        ScrollLogicalPosition::Start
+    } else {
+        ScrollLogicalPosition::Nearest
+    });
+    options.set_inline(ScrollLogicalPosition::Nearest);
+    stop.scroll_into_view_with_scroll_into_view_options(&options);
 }
 
 /// Makes a stop of each part that rolls as it is shown now, as a formula does that is wider than the page. It is rolled

@@ -58,7 +58,12 @@ impl Browser {
     /// Writes into a field in place of what stands there, key by key. An empty text clears it.
     #[track_caller]
     pub fn write(&self, name: &str, text: &str) {
-        let field = self.field(name);
+        self.write_at(&format!("[name='{name}']"), text);
+    }
+
+    /// The same, for a field without a name.
+    #[track_caller]
+    pub fn write_at(&self, selector: &str, text: &str) {
         let keys = if text.is_empty() {
             Key::Backspace.code().to_string()
         } else {
@@ -68,13 +73,16 @@ impl Browser {
         let chosen = match self.engine {
             Engine::Chromium => "\u{e009}a\u{e000}",
             Engine::Firefox => {
-                let script = "const field = document.getElementsByName(arguments[0])[0];
-                    field.focus(); field.select();";
-                self.script(script, vec![json!(name)]);
+                let script =
+                    "const field = document.querySelector(arguments[0]); field.focus(); field.select();";
+                self.script(script, vec![json!(selector)]);
                 ""
             }
         };
-        self.run(name, field.send_keys(&format!("{chosen}{keys}")));
+        self.run(
+            selector,
+            self.element(selector).send_keys(&format!("{chosen}{keys}")),
+        );
     }
 
     /// Writes on after what stands in a field.
@@ -173,11 +181,13 @@ impl Browser {
                 touch("touchEnd", json!([]));
             }
             Engine::Firefox => {
-                let (down, up) = (
-                    json!({"type": "pointerDown", "button": 0}),
-                    json!({"type": "pointerUp", "button": 0}),
-                );
-                self.point("touch", json!([move_to(from), down, move_to(to), up]));
+                let actions = json!([
+                    move_to(from),
+                    pointer("pointerDown"),
+                    move_to(to),
+                    pointer("pointerUp")
+                ]);
+                self.point("touch", actions);
             }
         }
     }
@@ -195,16 +205,27 @@ impl Browser {
     #[track_caller]
     pub fn drag(&self, selector: &str, by: &[(f64, f64)]) {
         let (x, y) = self.place(selector, 0.5, 0.5);
-        let mouse = |kind: &str, (dx, dy): (f64, f64), buttons: u32| {
-            let event = json!({"type": kind, "x": x + dx, "y": y + dy, "button": "left", "buttons": buttons,
-                               "clickCount": 1});
-            self.devtools("Input.dispatchMouseEvent", event);
-        };
-        mouse("mousePressed", (0.0, 0.0), 1);
-        for step in by {
-            mouse("mouseMoved", *step, 1);
+        let mut way = by.iter().map(|(dx, dy)| (x + dx, y + dy));
+        match self.engine {
+            Engine::Chromium => {
+                let mouse = |kind: &str, (x, y): (f64, f64), buttons: u32| {
+                    let event = json!({"type": kind, "x": x, "y": y, "button": "left", "buttons": buttons,
+                                       "clickCount": 1});
+                    self.devtools("Input.dispatchMouseEvent", event);
+                };
+                mouse("mousePressed", (x, y), 1);
+                for place in way.clone() {
+                    mouse("mouseMoved", place, 1);
+                }
+                mouse("mouseReleased", way.next_back().unwrap_or((x, y)), 0);
+            }
+            Engine::Firefox => {
+                let mut actions = vec![move_to((x, y)), pointer("pointerDown")];
+                actions.extend(way.map(move_to));
+                actions.push(pointer("pointerUp"));
+                self.point("mouse", Value::Array(actions));
+            }
         }
-        mouse("mouseReleased", by.last().copied().unwrap_or_default(), 0);
     }
 
     fn place(&self, selector: &str, across: f64, down: f64) -> (f64, f64) {
@@ -229,4 +250,9 @@ impl Browser {
 /// A pointer's way to a place of the window, which is a whole number of pixels.
 fn move_to((x, y): (f64, f64)) -> Value {
     json!({"type": "pointerMove", "x": x.round() as i64, "y": y.round() as i64})
+}
+
+/// A press or a release where the pointer is.
+fn pointer(kind: &str) -> Value {
+    json!({"type": kind, "button": 0})
 }

@@ -47,13 +47,14 @@ impl Browser {
         let read = Command::new("pdftotext").arg(&path).arg("-").output();
         let read = read.expect("pdftotext is installed (Debian: poppler-utils)");
         assert!(read.status.success(), "{}", String::from_utf8_lossy(&read.stderr));
-        let text = String::from_utf8(read.stdout).expect("text is UTF-8");
+        let text = apart(&String::from_utf8(read.stdout).expect("text is UTF-8"));
         // Each page ends with a form feed.
         let pages = text.trim_end_matches('\u{c}').split('\u{c}');
         pages
             .map(|page| page.split_whitespace().collect::<Vec<_>>().join(" "))
             .collect()
     }
+
     /// Every word of a document that [`Browser::print`] left lies at least a centimetre from each edge of its page.
     ///
     /// # Panics
@@ -94,4 +95,12 @@ impl Browser {
         }
         assert!(count > 50, "{name} has {count} words");
     }
+}
+
+/// The text with letters that a font joins as letters of their own: what Firefox prints says which form it took.
+fn apart(text: &str) -> String {
+    let joined = [("ﬀ", "ff"), ("ﬁ", "fi"), ("ﬂ", "fl"), ("ﬃ", "ffi"), ("ﬄ", "ffl")];
+    joined
+        .into_iter()
+        .fold(text.to_owned(), |text, (one, several)| text.replace(one, several))
 }
