@@ -1,5 +1,5 @@
-//! The two small buttons of a focused number: "ask" and "in doubt". They lie over the line of the label, so that nothing
-//! moves when they come, and stand behind the field in the order of the keys.
+//! The two small buttons of a focused number: "ask" and "in doubt". They lie over the line of the label, or above it where
+//! they would cover the label, so that nothing moves when they come, and stand behind the field in the order of the keys.
 
 use crate::dom::{Dom, append, set};
 use crate::list_text::{List, items};
@@ -8,7 +8,8 @@ use aftercount_core::in_doubt::{Limits, asked, doubted};
 use aftercount_core::keys;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::words::entry;
-use web_sys::Element;
+use wasm_bindgen::JsCast;
+use web_sys::{Element, HtmlElement};
 
 /// What one of the buttons writes.
 #[derive(Clone, Copy, PartialEq, Eq)]
@@ -123,6 +124,7 @@ impl Hand {
         let _ = element.insert_adjacent_element("afterend", bar);
         let name = spoken(&self.dom, element);
         set(bar, "aria-label", &name);
+        keep_clear(&self.dom, bar, element);
         self.field = Some((element.id(), place));
         self.show(pairs);
         for (writes, stop) in Writes::BOTH.into_iter().zip(["0", "-1"]) {
@@ -218,6 +220,45 @@ fn bar(dom: &Dom) -> Option<Element> {
     Some(bar)
 }
 
+/// Where the buttons would cover the label of a field they go to its right, if what stands beside the field leaves the
+/// line free there, and else above it.
+fn keep_clear(dom: &Dom, bar: &Element, field: &Element) -> Option<()> {
+    let buttons: HtmlElement = bar.first_element_child()?.dyn_into().ok()?;
+    // No call fails on a name that the style sheets have.
+    let style = buttons.style();
+    let put = |name: &str, value: &str| drop(style.set_property(name, value));
+    for name in ["left", "right", "bottom"] {
+        let _ = style.remove_property(name);
+    }
+    let label = label(dom, field)?.get_bounding_client_rect();
+    let (over, from) = (buttons.get_bounding_client_rect(), bar.get_bounding_client_rect());
+    if over.left() >= label.right() || over.right() <= label.left() || over.bottom() <= label.top() {
+        return None;
+    }
+    let beside = field.parent_element()?.next_element_sibling();
+    let beside = beside.filter(|beside| beside.matches(".beside").unwrap_or(false));
+    let free = beside.map(|beside| beside.get_bounding_client_rect().left());
+    match free.filter(|left| *left >= label.right()) {
+        Some(left) => {
+            put("left", &format!("{}px", left - from.left()));
+            put("right", "auto");
+        }
+        None => put("bottom", &format!("{}px", from.bottom() - label.top())),
+    }
+    Some(())
+}
+
+/// The label of a field: its own, or in a table the head of its column.
+fn label(dom: &Dom, field: &Element) -> Option<Element> {
+    let own = format!("label[for='{}']", field.id());
+    if let Ok(Some(label)) = dom.document.query_selector(&own) {
+        return Some(label);
+    }
+    let column = field.get_attribute("data-part")?.parse::<u32>().ok()? + 1;
+    let table = field.closest("table").ok()??;
+    table.query_selector(&format!("th:nth-child({column})")).ok()?
+}
+
 /// What a field is called when it is read aloud: its own label, or the words of those that it names.
 fn spoken(dom: &Dom, field: &Element) -> String {
     if let Some(label) = field.get_attribute("aria-label") {
@@ -231,8 +272,5 @@ fn spoken(dom: &Dom, field: &Element) -> String {
             .collect();
         return parts.join(": ");
     }
-    let label = dom
-        .document
-        .query_selector(&format!("label[for='{}']", field.id()));
-    words(label.ok().flatten()).unwrap_or_default()
+    words(label(dom, field)).unwrap_or_default()
 }

@@ -1,5 +1,6 @@
 //! The fields that only some laws of fire need: shown where the chosen one needs them, or where they hold what is to be
-//! put right. What a field holds stays in the text while it is out of sight.
+//! put right. What a field holds stays in the text while it is out of sight. And the law's own words once more, for where
+//! the list has no room for them.
 
 use crate::dom::Dom;
 use aftercount_core::laws::FireLaw;
@@ -7,6 +8,9 @@ use aftercount_core::pairs::Pairs;
 use aftercount_core::problem::Problem;
 use aftercount_core::sides::Side;
 use std::collections::BTreeSet;
+
+/// The most letters of a law's words that a list on a small screen has room for.
+const ROOM: usize = 36;
 
 /// The fields, and which of them have a problem.
 pub(crate) struct LawFields {
@@ -36,6 +40,18 @@ impl LawFields {
         let focused = self.dom.document.active_element().map(|element| element.id());
         for side in Side::BOTH {
             let law = law_of(pairs, side);
+            let words = law.map_or("", |law| law.law().label);
+            let chosen = format!("{}.fire.chosen", side.letter());
+            self.dom.set_text(&chosen, words);
+            self.dom.set_attribute(
+                &chosen,
+                "data-long",
+                if words.chars().count() > ROOM {
+                    "true"
+                } else {
+                    "false"
+                },
+            );
             for name in names() {
                 let key = format!("{}.{name}", side.letter());
                 let needed = law.is_some_and(|law| law.law().needs.contains(&name));
