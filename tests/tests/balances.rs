@@ -84,7 +84,7 @@ fn no_step_passes_the_moment_at_which_a_side_is_gone() {
             "{found:?}"
         );
         assert!(
-            off(found.x.end.expect("an end"), 57.054_329_266_376_105) < 1e-12,
+            off(found.x.end.expect("an end"), 57.054_329_266_376_11) < 1e-12,
             "{found:?}"
         );
     }

@@ -104,7 +104,7 @@ fn sweep(series: &mut Expansion, side: Side, at: f64, conditions: &Conditions, u
     let pace = pace(conditions, side, now, at);
     let mut fires = Both::of(|side: Side| FireSeries::new(conditions, side.enemy(), at, unit));
     let mut moved = Series::default();
-    for n in 0..=ORDER {
+    for (n, moves) in moved.iter_mut().enumerate() {
         let inflow = |side: Side| {
             if n == 0 {
                 conditions.flow[side] - conditions.steadily_lost(side)
@@ -121,8 +121,8 @@ fn sweep(series: &mut Expansion, side: Side, at: f64, conditions: &Conditions, u
         };
         let gains =
             inflow(side) - fire_on(series, side) - conditions.part_lost(side) * series.strength[side][n];
-        moved[n] = (gains - change) / pace;
-        series.strength[side][n] += moved[n];
+        *moves = (gains - change) / pace;
+        series.strength[side][n] += *moves;
         let by_fire = Both::of(|on| fire_on(series, on));
         if n < ORDER {
             for on in Side::BOTH {
