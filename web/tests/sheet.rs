@@ -147,7 +147,6 @@ fn formulas_are_markup_of_the_core_alone() {
 fn fixed_words_are_those_of_the_core() {
     for (id, text) in [
         ("short-caution", caution::SHORT),
-        ("paper-caution", caution::SHORT),
         ("stale", words::STALE),
         ("empty-words", words::BLANK),
         ("text-care", words::HANDLE),
@@ -159,6 +158,13 @@ fn fixed_words_are_those_of_the_core() {
         assert!(SHEET.contains(&format!("id=\"{id}\">{text}</p>")), "{id}: {text}");
     }
     assert!(SHEET.contains(&format!("<p class=\"caution\">{}</p>", caution::FULL)));
+    let foot = SHEET.split_once("id=\"paper-foot\"").expect("a foot for paper").1;
+    assert!(
+        foot.split_once("</div>")
+            .expect("its end")
+            .0
+            .contains(caution::SHORT)
+    );
 }
 
 #[test]
