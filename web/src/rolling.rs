@@ -46,8 +46,10 @@ pub(crate) fn mark(dom: &Dom) {
             continue;
         };
         let elements = (0..found.length()).filter_map(|at| found.item(at)?.dyn_into::<Element>().ok());
-        // All are measured before any is changed, so that the browser lays the page out once.
+        // All are measured before any is changed, so that the browser lays the page out once; and what is folded away is not
+        // measured, since it would be laid out for that alone.
         let measured: Vec<(Element, bool)> = elements
+            .filter(|element| matches!(element.closest("details:not([open])"), Ok(None)))
             .map(|element| (element.clone(), rolls(&element)))
             .collect();
         for (element, rolls) in measured {
