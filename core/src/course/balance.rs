@@ -20,6 +20,12 @@ const SHORTEST: f64 = 40.0;
 /// The part of a strength by which it may be off its balance at the start of a step.
 const OFF: f64 = 1e-13;
 
+/// The same in parts of the tolerance, where that is looser: so far off the steps before may have left it.
+const OFF_BY_STEPS: f64 = 100.0;
+
+/// The loosest tolerance that sets the length of a step along a balance: sweeps over a longer one do not come to rest.
+const LOOSEST: f64 = 1e-11;
+
 /// What a side that is in a balance gains or loses in all is no more than this part of what comes in.
 const NEAR: f64 = 0.01;
 
@@ -80,14 +86,14 @@ impl Balanced {
             if !is_near {
                 return None;
             }
-            let length = series.step_length(tolerance).min(MOST_UNITS);
+            let length = series.step_length(tolerance.min(LOOSEST)).min(MOST_UNITS);
             let moves = moved
                 .iter()
                 .rev()
                 .fold(0.0, |sum, term| sum * length + term.abs())
                 / scale;
             if moves <= f64::EPSILON || (moves <= MOVES && moves >= 0.5 * before) {
-                let is_there = (start - now[side]).abs() <= OFF * scale;
+                let is_there = (start - now[side]).abs() <= OFF.max(OFF_BY_STEPS * tolerance) * scale;
                 return is_there.then_some(Balanced { unit, series, length });
             }
             before = moves;
