@@ -55,6 +55,12 @@ fn a_number_is_asked_for_and_its_outcome_stays() {
     assert_eq!(browser.settle(&link), native(&link));
     assert_eq!(browser.text("#sentence"), native_sentence(&link));
     assert_eq!(browser.text("#asked-sentence"), answered(&link));
+    // Whoever asks at a field sees the answer beside the outcome, and goes to all of it from there.
+    assert_eq!(browser.text("#asked-brief"), answered(&link));
+    browser.click("#asked-brief-words");
+    let focus = browser.script("return document.activeElement.id;", vec![]);
+    assert_eq!(focus, "takes-head");
+    assert_eq!(browser.link(), link, "to go there is no change of the text");
     assert!(
         is_shown(&browser, "figures")
             && is_shown(&browser, "pictures")

@@ -95,6 +95,7 @@ impl Asking {
         self.answer = None;
         self.picture = None;
         self.dom.set_shown("asked", false);
+        self.dom.set_shown("asked-brief", false);
     }
 
     /// The map, where two numbers are in question.
@@ -112,6 +113,7 @@ impl Asking {
         self.inquiry = None;
         self.mapping.stop();
         self.dom.set_attribute("asked", "aria-busy", "false");
+        self.dom.set_shown("asked-brief", false);
     }
 
     /// Works for a slice, and shows what there is to be shown; whether there is something new to draw.
@@ -185,7 +187,9 @@ impl Asking {
         let dom = &self.dom;
         dom.set_attribute("asked", "aria-busy", "false");
         dom.set_text("asked-working", "");
-        dom.set_text("asked-sentence", &words::sentence(statement, answer));
+        let sentence = words::sentence(statement, answer);
+        dom.set_text("asked-sentence", &sentence);
+        show_in_brief(dom, statement, &sentence);
         if let Some(place) = dom.element("asked-where") {
             place.set_text_content(None);
             append_words(dom, &place, &words::where_looked(statement, answer));
@@ -263,4 +267,11 @@ fn sentence_of(clause: &str) -> String {
     } else {
         format!("So that {clause}.")
     }
+}
+
+/// The answer beside the outcome, where that stays in sight: whoever asks at a field sees it come, and goes to it from there.
+/// Without an outcome the answer itself stands there.
+pub(crate) fn show_in_brief(dom: &Dom, statement: &Statement, sentence: &str) {
+    dom.set_text("asked-brief-words", sentence);
+    dom.set_shown("asked-brief", statement.has_base());
 }

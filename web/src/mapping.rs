@@ -1,5 +1,6 @@
 //! The map of two numbers in question: worked out in slices, drawn, read by pointer and keys, and put into the fields.
 
+use crate::asking::show_in_brief;
 use crate::canvas;
 use crate::dom::{Dom, append, append_words, set};
 use crate::draw::{self, Ink, Layout};
@@ -116,7 +117,9 @@ impl Mapping {
         };
         self.picture = picture::map(statement, chart, self.second);
         let dom = &self.dom;
-        dom.set_text("map-sentence", &words::sentence(statement, chart));
+        let sentence = words::sentence(statement, chart);
+        dom.set_text("map-sentence", &sentence);
+        show_in_brief(dom, statement, &sentence);
         if let Some(place) = dom.element("map-where") {
             place.set_text_content(None);
             append_words(dom, &place, &words::where_looked(statement, chart));
