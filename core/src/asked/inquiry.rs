@@ -120,12 +120,11 @@ impl Inquiry {
 
     /// Ends the search with what is known; what is not looked at yet is no part of what was asked any more.
     fn cut_short(&mut self) {
+        self.scan.end();
         if matches!(self.stage, Stage::Scanning) {
-            self.scan.end();
             let last = self.scan.seen().last();
             self.span.high = last.map_or(self.span.high, |(value, _)| value);
         }
-        self.scan.end();
         self.cut_short = true;
         self.stage = Stage::Done;
     }

@@ -32,6 +32,18 @@ struct Bracket<C> {
     to: C,
 }
 
+impl<C> Bracket<C> {
+    /// A change that is closed in on no further.
+    fn change(self) -> Change<C> {
+        Change {
+            below: self.low,
+            above: self.high,
+            from: self.from,
+            to: self.to,
+        }
+    }
+}
+
 /// A search for every change of a class, in slices.
 ///
 /// A change and its undoing between two neighbouring points are not seen: that is the resolution.
@@ -77,13 +89,7 @@ impl<C: Copy + PartialEq> Scan<C> {
     /// Ends the search with what is known: changes that are not closed in on yet are as wide as their brackets.
     pub fn end(&mut self) {
         self.points.truncate(self.classes.len());
-        let known = self.brackets.drain(..).map(|bracket| Change {
-            below: bracket.low,
-            above: bracket.high,
-            from: bracket.from,
-            to: bracket.to,
-        });
-        self.changes.extend(known);
+        self.changes.extend(self.brackets.drain(..).map(Bracket::change));
     }
 
     /// Takes in that between `low` and `high`, two points of the same class with no change between them so far, there is
@@ -168,18 +174,13 @@ impl<C: Copy + PartialEq> Scan<C> {
     /// The next bracket that is not yet narrow enough; those that are become changes.
     fn next_bracket(&mut self) -> Option<Bracket<C>> {
         while let Some(bracket) = self.brackets.pop() {
-            let Bracket { low, high, from, to } = bracket;
+            let Bracket { low, high, .. } = bracket;
             let near = (high - low) <= self.precision * low.abs().max(high.abs());
             let is_one_of_many = self.changes.len() + self.brackets.len() >= MOST_CHANGES;
             if !near && !is_one_of_many && high - low > self.nothing() && low.next_up() < high {
                 return Some(bracket);
             }
-            self.changes.push(Change {
-                below: low,
-                above: high,
-                from,
-                to,
-            });
+            self.changes.push(bracket.change());
         }
         None
     }

@@ -81,10 +81,10 @@ pub struct Entry {
 
 /// The digits that a value is written with.
 const FEWEST: usize = 4;
+const MOST: usize = 17;
 
 /// A hair, in parts of a value or of its change: on either side of it the outcome must be clear.
 const HAIR: f64 = 1e-9;
-const MOST: usize = 17;
 
 /// What is being done for the number at hand.
 #[derive(Clone, Debug)]
