@@ -136,6 +136,12 @@ impl Conditions {
         self.growth[side].map_or(1.0, |growth| growth.at(t))
     }
 
+    /// What `side` loses per unit of time by the enemy's fire, at the strengths `left` and the time `t`.
+    pub fn fire_on(&self, side: Side, left: Both<f64>, t: f64) -> f64 {
+        let enemy = side.enemy();
+        self.fire[enemy].losses_per_time(left[enemy], left[side]) * self.growth_at(enemy, t)
+    }
+
     /// Whether nothing but the two fires changes any strength.
     pub fn are_plain(&self) -> bool {
         Side::BOTH.into_iter().all(|side| {

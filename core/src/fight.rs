@@ -4,13 +4,14 @@ use crate::course::TOLERANCE;
 use crate::double::Double;
 use crate::ledger::Ledger;
 use crate::outcome::Outcome;
-use crate::piece::{Piece, Work};
+use crate::piece::Piece;
 use crate::run::Run;
 use crate::schedule::instants;
 use crate::sides::{Both, Side};
 use crate::state::{Descent, StateEquation};
 use crate::terms::Engagement;
 use crate::trajectory::Trajectory;
+use crate::work::Work;
 
 /// How much is asked of a fight.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -80,17 +81,9 @@ pub fn plain_piece(engagement: &Engagement) -> Option<Box<Piece>> {
 
 /// The way of `side` from its start down to the strength at which it breaks; a descent of 0 or less is behind it.
 pub fn descent(engagement: &Engagement, side: Side) -> Descent {
-    let ledger = Ledger {
-        committed: Double::sum(engagement.sides[side].start, engagement.sides[side].lost),
-        lost_before: engagement.sides[side].lost,
-        ..Ledger::default()
-    };
-    ledger
-        .way_down(
-            engagement.sides[side].start,
-            engagement.sides[side].break_point,
-            0.0,
-        )
+    let terms = &engagement.sides[side];
+    Ledger::at_start(terms)
+        .way_down(terms.start, terms.break_point, 0.0)
         .descent
 }
 

@@ -4,6 +4,7 @@ use crate::double::Double;
 use crate::outcome::Losses;
 use crate::state::{Descent, TIE};
 use crate::stretch::WayDown;
+use crate::terms::SideTerms;
 
 /// What a side has put in, taken out and lost so far.
 #[derive(Clone, Copy, Debug, Default, PartialEq)]
@@ -21,6 +22,15 @@ pub struct Ledger {
 }
 
 impl Ledger {
+    /// That of a side at time 0, before anything arrives.
+    pub(crate) fn at_start(terms: &SideTerms<f64>) -> Ledger {
+        Ledger {
+            committed: Double::sum(terms.start, terms.lost),
+            lost_before: terms.lost,
+            ..Ledger::default()
+        }
+    }
+
     /// The way from `left` down to the break line; a height of 0 or less is behind.
     ///
     /// A side breaks where lost = break × committed. What is left is committed − withdrawn − lost, so the line stands at

@@ -2,132 +2,19 @@
 //! its motion in time.
 
 use crate::conditions::Conditions;
-use crate::course::{Course, ORDER, TOLERANCE};
+use crate::course::{Course, TOLERANCE};
 use crate::double::Double;
 use crate::laws::Power;
-use crate::laws::aimed::Square;
 use crate::laws::alone::Alone;
 use crate::laws::along_orbit::AlongOrbit;
-use crate::laws::ambush::Ambush;
-use crate::laws::area::Linear;
+use crate::motion::Motion;
 use crate::orbit_point::OrbitPoint;
-use crate::outcome::{Losses, Method, ToTheLast};
+use crate::outcome::{Losses, ToTheLast};
 use crate::sides::{Both, Side};
 use crate::state::{Descent, Origin, StateEquation};
 use crate::terms::Fire;
+use crate::work::Work;
 use std::cell::Cell;
-
-/// How strengths move from the start of a piece on.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub enum Motion {
-    /// Neither side's fire has any effect.
-    Still,
-    /// One side fades by itself.
-    Alone(Alone),
-    /// Aimed against aimed, or powers that come to it.
-    Square(Square),
-    /// Area against area.
-    Linear(Linear),
-    /// Aimed against area.
-    Ambush(Ambush),
-    /// Any other pairing.
-    AlongOrbit,
-}
-
-impl Motion {
-    /// The motion of a piece that starts at `start`.
-    ///
-    /// `ahead` is the difference of the costs of bringing each side down to the last: X's less Y's.
-    fn new(start: Both<f64>, fire: &Both<Fire<f64>>, equation: &StateEquation, ahead: Double) -> Motion {
-        let rate = equation.rate;
-        let shooters = Both::of(|side| fire[side].shooters().exponent);
-        // A target fades by itself where its enemy is not shot at, or does not count.
-        let alone = |target: Side| {
-            let enemy = target.enemy();
-            rate[enemy] > 0.0 && (rate[target] == 0.0 || shooters[enemy] == 0.0)
-        };
-        if rate.x == 0.0 && rate.y == 0.0 {
-            return Motion::Still;
-        }
-        // Of two that fade by themselves: one that is gone in finite time ends the fight, and of two that never are the
-        // slower still has digits when the other has none.
-        let share = |side: Side| fire[side.enemy()].share_per_time(start[side.enemy()], start[side]);
-        let to_follow = |one: Side, other: Side| {
-            let lasts = |side: Side| {
-                if equation.is_last_reached(side) {
-                    f64::INFINITY
-                } else {
-                    equation.vanishing(side)
-                }
-            };
-            let slower =
-                lasts(other) > lasts(one) || (lasts(other) == lasts(one) && share(other) < share(one));
-            if slower { other } else { one }
-        };
-        if let Some(target) = [Side::Y, Side::X]
-            .into_iter()
-            .filter(|side| alone(*side))
-            .reduce(to_follow)
-        {
-            let fire = &fire[target.enemy()];
-            let steady = fire.rate * fire.shooters().at(start[target.enemy()]);
-            return Motion::Alone(Alone::new(target, start[target], steady, fire.per_target()));
-        }
-        // The exponent of a side as targets, where that is a single power.
-        let single = |side: Side| {
-            let [first, second]: [Power; 2] = fire[side.enemy()].per_target();
-            (second.coefficient == 0.0).then_some(-first.exponent)
-        };
-        let (Some(x), Some(y)) = (single(Side::X), single(Side::Y)) else {
-            return Motion::AlongOrbit;
-        };
-        let linear = shooters.x == 1.0 && shooters.y == 1.0;
-        if shooters.x == 1.0 - x && shooters.y == 1.0 - y {
-            Motion::Square(Square::new(start, shooters, rate, ahead))
-        } else if linear && x == 1.0 && y == 1.0 {
-            Motion::Linear(Linear::new(start, rate, ahead))
-        } else if linear && x == 1.0 && y == 0.0 {
-            Motion::Ambush(Ambush::new(Side::X, start, rate, ahead))
-        } else if linear && x == 0.0 && y == 1.0 {
-            Motion::Ambush(Ambush::new(Side::Y, start, rate, -ahead))
-        } else {
-            Motion::AlongOrbit
-        }
-    }
-
-    /// How it is solved.
-    pub fn method(&self) -> Method {
-        match self {
-            Motion::AlongOrbit => Method::Quadrature,
-            _ => Method::ClosedForm,
-        }
-    }
-}
-
-/// What it took to solve a piece: for tests that a change has not made it dearer, without a clock.
-#[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
-pub struct Work {
-    /// Evaluations of integrands and of the exponentials of linear systems.
-    pub evaluations: u32,
-    /// Steps of the integrator.
-    pub steps: u32,
-}
-
-impl Work {
-    /// Both together.
-    pub fn and(self, other: Work) -> Work {
-        Work {
-            evaluations: self.evaluations.saturating_add(other.evaluations),
-            steps: self.steps.saturating_add(other.steps),
-        }
-    }
-
-    /// All evaluations of functions: a step of the integrator takes the right-hand sides once for each order of its series.
-    pub fn evaluations(self) -> u32 {
-        self.evaluations
-            .saturating_add(self.steps.saturating_mul(ORDER as u32))
-    }
-}
 
 /// How nearly the integrator finds strengths that are polished afterwards.
 const GUESS: f64 = 1e-9;
@@ -170,8 +57,8 @@ impl Piece {
     /// The piece that begins with the strengths `start`; `None` where the losses under `conditions` do not separate.
     ///
     /// Fire is taken at its full rate; a growth that both sides share is a change of the time, and the caller's.
-    /// `ahead` is the difference of the costs of bringing X and Y down to the last; `None` where they are at parity to
-    /// the rounding of the inputs, and stay so.
+    /// `parity` says of the costs of bringing X and Y down to the last whether they are the same to the rounding of the
+    /// inputs, and stay so.
     pub fn new(
         start: Both<f64>,
         conditions: &Conditions,
@@ -363,13 +250,7 @@ impl Piece {
         Both::of(|side: Side| {
             let enemy = side.enemy();
             if self.besides[side] == 0.0 {
-                let fire = point.fallen[side];
-                return Losses {
-                    fire,
-                    support: 0.0,
-                    wastage: 0.0,
-                    all: fire,
-                };
+                return Losses::of(point.fallen[side], 0.0, 0.0);
             }
             if t == 0.0 {
                 return Losses::default();
@@ -393,12 +274,7 @@ impl Piece {
             let support = self.conditions.support[enemy];
             let support = support.area * exposure + support.aimed * t;
             let wastage = self.conditions.wastage[side] * exposure;
-            let losses = Losses {
-                fire: by_fire,
-                support,
-                wastage,
-                all: by_fire + support + wastage,
-            };
+            let losses = Losses::of(by_fire, support, wastage);
             if losses.all.is_finite() {
                 losses
             } else {

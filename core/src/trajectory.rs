@@ -1,9 +1,9 @@
 //! Strength over time: a list of stretches, with the instants between them.
 
-use crate::piece::Work;
 use crate::schedule::Instant;
 use crate::sides::{Both, Side};
 use crate::stretch::Stretch;
+use crate::work::Work;
 
 /// A whole fight in time.
 #[derive(Clone, Debug)]

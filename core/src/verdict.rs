@@ -3,11 +3,11 @@
 use crate::caution;
 use crate::fight::Effort;
 use crate::outcome::{Breaks, Ended, Method, Outcome, PieceOutcome, SideOutcome, ToTheLast};
-use crate::piece::Work;
 use crate::run::Run;
 use crate::sides::{Both, Side};
 use crate::stretch::Stretch;
 use crate::terms::Engagement;
+use crate::work::Work;
 
 impl Run {
     /// What it leaves, and the work that it took to find out who would be left in the end.

@@ -6,8 +6,8 @@
 //! singularly perturbed problem). That has a series of its own, held to the pace of the enemy: each coefficient of the
 //! balanced side is what makes its losses equal to what comes in less its own change, which the sweep before has given.
 
-use super::MOST_UNITS;
 use super::series::{Expansion, FireSeries, ORDER, Series};
+use super::unit::MOST_UNITS;
 use crate::conditions::Conditions;
 use crate::sides::{Both, Side};
 
@@ -143,9 +143,8 @@ fn sweep(series: &mut Expansion, side: Side, at: f64, conditions: &Conditions, u
 
 /// How fast `side` comes back to its balance: the slope of its losses over its own strength.
 fn pace(conditions: &Conditions, side: Side, now: Both<f64>, at: f64) -> f64 {
-    let enemy = side.enemy();
-    let fire = &conditions.fire[enemy];
-    let lost = fire.losses_per_time(now[enemy], now[side]) * conditions.growth_at(enemy, at);
+    let fire = &conditions.fire[side.enemy()];
+    let lost = conditions.fire_on(side, now, at);
     let (mut sum, mut slope) = (0.0, 0.0);
     for power in fire.per_target().iter().filter(|power| power.coefficient > 0.0) {
         let value = power.at(now[side]);
@@ -162,9 +161,7 @@ fn pace(conditions: &Conditions, side: Side, now: Both<f64>, at: f64) -> f64 {
 
 /// What comes in of `side` less what it loses, per unit of time.
 fn net(conditions: &Conditions, side: Side, now: Both<f64>, at: f64) -> f64 {
-    let enemy = side.enemy();
-    let fire =
-        conditions.fire[enemy].losses_per_time(now[enemy], now[side]) * conditions.growth_at(enemy, at);
+    let fire = conditions.fire_on(side, now, at);
     conditions.flow[side] - fire - conditions.part_lost(side) * now[side] - conditions.steadily_lost(side)
 }
 

@@ -7,28 +7,28 @@
 
 mod balance;
 mod first_moment;
+mod line;
 mod series;
+mod unit;
 
+pub use line::Line;
 pub use series::ORDER;
 
 use crate::conditions::{Conditions, part_of};
 use crate::outcome::Losses;
-use crate::root::{newton, root};
 use crate::sides::{Both, Side};
 use crate::terms::Fire;
 use balance::Balanced;
 use first_moment::FirstMoment;
+use line::reach_in;
 use series::Expansion;
+use unit::unit_of;
 
 /// Steps of one course at most; a fight that needs more goes on in another.
 pub const MOST_STEPS: usize = 600;
 
 /// With less left of a side than this, its powers have no digits to go on with.
 pub(crate) const LEAST: f64 = 1e-280;
-
-/// The longest step in its own unit: what is next to nothing has coefficients that no double holds, and would else be
-/// taken to have a series without end.
-const MOST_UNITS: f64 = 6.0;
 
 /// The part of a strength down to which a step goes that may else pass the moment at which it comes to nothing.
 const NEXT_TO_NOTHING: f64 = 0.02;
@@ -38,9 +38,6 @@ const SHORTER_UNIT: f64 = 1e-20;
 
 /// So many steps lie between one look for a balance and the next.
 const BETWEEN_LOOKS: usize = 16;
-
-/// So many times as far may it go where gains and losses balance: beyond that, coefficients would be too small for a double.
-const MOST_BALANCED: f64 = 1e10;
 
 /// The accuracy of each step as a part of the strengths, unless another is asked for ([`crate::fight::fight_to`]): far below
 /// the 1e-11 that is asked of what is integrated. A series doubles its digits for little more work, and next to a tie, or
@@ -105,15 +102,6 @@ pub struct Course {
     stopped: Stopped,
     /// The number of the step before which a balance is looked for again.
     look_at: usize,
-}
-
-/// A line that a strength may come down to: its distance below the start, and how it rises.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct Line {
-    /// Where it stands at the start.
-    pub at: f64,
-    /// Its rise per unit of time.
-    pub rising: f64,
 }
 
 impl Course {
@@ -404,79 +392,5 @@ impl Course {
             let reached = reach_in(&step.series, side, at, line.rising * step.unit, end)?;
             Some(step.from + reached * step.unit)
         })
-    }
-}
-
-/// The first time up to `end` at which a strength is down to a line from `at` on, all in the unit of the series.
-///
-/// A step is no longer than its series' radius of convergence over e², so the first terms rule it. Where the sum of all
-/// terms that fall does not come to the line nothing does; where no slope is above 0 there is one root at most; else eight
-/// parts of the step, and the low points in them, leave none unseen.
-fn reach_in(series: &Expansion, side: Side, at: f64, rising: f64, end: f64) -> Option<f64> {
-    const PARTS: u32 = 8;
-    let start = series.strength[side][0];
-    if series.least_above(side, at, rising, end) > 1e-14 * start {
-        return None;
-    }
-    let above = |t: f64| series.above(side, at, rising, t);
-    // A side that begins with nobody, or at its line, may be on its way up.
-    if start <= at && series.strength[side][1] <= rising {
-        return Some(0.0);
-    }
-    if series.greatest_slope(side, rising, end) < 0.0 {
-        if above(end).0 > 0.0 {
-            return None;
-        }
-        let first = (at - start) / (series.strength[side][1] - rising);
-        return Some(newton(0.0, end, first, &above));
-    }
-    for part in 0..PARTS {
-        let low = end * f64::from(part) / f64::from(PARTS);
-        let high = if part + 1 == PARTS {
-            end
-        } else {
-            end * f64::from(part + 1) / f64::from(PARTS)
-        };
-        let dip = if above(low).1 < 0.0 && above(high).1 > 0.0 {
-            root(low, high, &|t| above(t).1)
-        } else {
-            None
-        };
-        for (from, to) in [(low, dip.unwrap_or(high)), (dip.unwrap_or(high), high)] {
-            if above(to).0 <= 0.0 {
-                return Some(root(from, to, &|t| above(t).0).unwrap_or(from));
-            }
-        }
-    }
-    None
-}
-
-/// The time in which the gains and losses of the first moment would each use a side up, and how many of it a step takes at
-/// most: what nearly balances is held to what is left over.
-fn unit_of(now: Both<f64>, at: f64, conditions: &Conditions) -> (f64, f64) {
-    // Of nobody the parts are no numbers.
-    let number = |part: f64| if part.is_finite() { part } else { 0.0 };
-    let shares = |side: Side| {
-        let enemy = side.enemy();
-        let growth = conditions.growth_at(enemy, at);
-        let fire = conditions.fire[enemy].share_per_time(now[enemy], now[side]) * growth;
-        let lost = number(fire) + conditions.part_lost(side);
-        let steady = number((conditions.steadily_lost(side) - conditions.flow[side]) / now[side]);
-        (lost + steady.abs(), (lost + steady).abs())
-    };
-    // A broken power of what grows has a series no longer than it takes to double.
-    let doubles = |side: Side| match conditions.growth[side] {
-        Some(growth) if growth.power.fract() != 0.0 && conditions.fire[side].takes_effect() => {
-            growth.slope / (growth.value + growth.slope * at)
-        }
-        _ => 0.0,
-    };
-    let doubles = doubles(Side::X).max(doubles(Side::Y));
-    let (x, y) = (shares(Side::X), shares(Side::Y));
-    let (share, net) = (x.0.max(y.0).max(doubles), x.1.max(y.1).max(doubles));
-    if share > 0.0 {
-        (1.0 / share, MOST_UNITS * (share / net).min(MOST_BALANCED))
-    } else {
-        (1.0, f64::INFINITY)
     }
 }

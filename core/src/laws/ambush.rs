@@ -12,7 +12,8 @@ use crate::sides::{Both, Side};
 /// Aimed fire against area fire, in time. Both rates are above 0.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Ambush {
-    hidden: Side,
+    /// The side whose fire is aimed.
+    pub hidden: Side,
     start: Both<f64>,
     /// a: the rate of the area fire on the hidden side.
     area_rate: f64,
@@ -38,6 +39,11 @@ impl Ambush {
             square,
             c: libm::sqrt(square.abs()),
         }
+    }
+
+    /// c, and whether K is above 0, so that the open side falls to the last.
+    pub fn constant(&self) -> (f64, bool) {
+        (self.c, self.square > 0.0)
     }
 
     /// The time at which the fight is at `point`, which lies on its orbit.

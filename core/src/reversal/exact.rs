@@ -8,8 +8,9 @@
 
 use crate::fight::plain_piece;
 use crate::laws::{FireLaw, Power};
+use crate::motion::Motion;
 use crate::outcome::{Breaks, Outcome};
-use crate::piece::{Motion, Piece};
+use crate::piece::Piece;
 use crate::sides::{Both, Side};
 use crate::slots::{Part, Place};
 use crate::state::Descent;

@@ -9,9 +9,10 @@ use crate::double::Double;
 use crate::ledger::Ledger;
 use crate::linear_system::LinearSystem;
 use crate::outcome::{Breaks, Ended, Losses, Method};
-use crate::piece::{Piece, Work};
+use crate::piece::Piece;
 use crate::sides::{Both, Side};
 use crate::state::{Descent, StateEquation, TIE};
+use crate::work::Work;
 use integrated::Integrated;
 
 /// How a stretch is solved.
@@ -354,9 +355,7 @@ impl Stretch {
         let left = self.strengths_at(t);
         let conditions = &self.conditions;
         Both::of(|side: Side| {
-            let enemy = side.enemy();
-            let growth = conditions.growth_at(enemy, t);
-            let fire = conditions.fire[enemy].losses_per_time(left[enemy], left[side]) * growth;
+            let fire = conditions.fire_on(side, left, t);
             let steady = if left[side] > 0.0 {
                 conditions.steadily_lost(side)
             } else {

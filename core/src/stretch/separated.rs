@@ -4,9 +4,10 @@ use super::integrated::Integrated;
 use super::{FirstBreak, Standing, TheEnd, WayDown};
 use crate::conditions::Growth;
 use crate::double::Double;
+use crate::motion::Motion;
 use crate::orbit_point::OrbitPoint;
 use crate::outcome::{Breaks, Ended};
-use crate::piece::{Motion, Piece};
+use crate::piece::Piece;
 use crate::sides::{Both, Side};
 use crate::state::{StateEquation, TIE, is_endless};
 

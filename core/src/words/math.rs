@@ -96,6 +96,18 @@ pub fn equal(parts: &[Math]) -> Math {
     joined(parts, "=", true)
 }
 
+/// Two statements side by side.
+pub fn beside(first: &Math, second: &Math) -> Math {
+    Math {
+        mathml: format!(
+            "{}<mo>,</mo><mspace width=\"1em\"/>{}",
+            first.mathml, second.mathml
+        ),
+        text: format!("{}, {}", first.text, second.text),
+        ..first.clone()
+    }
+}
+
 /// a + b.
 pub fn plus(parts: &[Math]) -> Math {
     if parts.len() == 1 {

@@ -2,20 +2,21 @@
 
 use super::math::*;
 use crate::laws::Power;
+use crate::laws::ambush::Ambush;
+use crate::motion::Motion;
 use crate::orbit_point::OrbitPoint;
-use crate::piece::{Motion, Piece};
+use crate::piece::Piece;
 use crate::sides::{Both, Side};
-use crate::terms::Engagement;
 
 /// The time at which `piece` is at `point`, where `loser` is at its line.
-pub(super) fn formula(piece: &Piece, engagement: &Engagement, point: &OrbitPoint, loser: Side) -> Math {
+pub(super) fn formula(piece: &Piece, point: &OrbitPoint, loser: Side) -> Math {
     match &piece.motion {
         Motion::Still => number(0.0),
-        Motion::Alone(motion) => alone(piece, engagement, point, motion.target),
+        Motion::Alone(motion) => alone(piece, point, motion.target),
         Motion::Square(_) => square(piece, point),
         Motion::Linear(_) => linear(piece, point),
-        Motion::Ambush(_) => ambush(piece, engagement, point),
-        Motion::AlongOrbit => along_orbit(piece, engagement, point, loser),
+        Motion::Ambush(motion) => ambush(piece, motion, point),
+        Motion::AlongOrbit => along_orbit(piece, point, loser),
     }
 }
 
@@ -60,39 +61,22 @@ fn linear(piece: &Piece, point: &OrbitPoint) -> Math {
     over(&function("ln", &quotient), &lead)
 }
 
-/// The side whose fire is aimed, of aimed fire against area fire.
-fn hidden(engagement: &Engagement) -> Side {
-    if engagement.sides[Side::X].fire.per_target()[0].exponent == 0.0 {
-        Side::X
-    } else {
-        Side::Y
-    }
-}
-
-/// K = b·h₀ − a·o₀²/2, and c = √(2|K|/a).
-fn of_ambush(piece: &Piece, hidden: Side) -> (f64, f64) {
-    let open = hidden.enemy();
-    let (aimed, area) = (piece.equation.rate[hidden], piece.equation.rate[open]);
-    let lead = aimed * piece.start[hidden] - area * piece.start[open] * piece.start[open] / 2.0;
-    (lead, libm::sqrt(2.0 * lead.abs() / area))
-}
-
 /// What stands before that number.
 pub(super) const CONSTANT: &str = "In the time stands a number that the first strengths give";
 
 /// The number in the time of aimed fire against area fire that stands nowhere else: c, with how it comes about; `None` for
 /// every other motion.
-pub(super) fn constant(piece: &Piece, engagement: &Engagement) -> Option<Math> {
-    let Motion::Ambush(_) = &piece.motion else {
+pub(super) fn constant(piece: &Piece) -> Option<Math> {
+    let Motion::Ambush(motion) = &piece.motion else {
         return None;
     };
-    let hidden = hidden(engagement);
-    let (lead, c) = of_ambush(piece, hidden);
+    let hidden = motion.hidden;
+    let (c, open_falls) = motion.constant();
     let strength = |side: Side| number(piece.start[side]);
     let rates = [number(2.0), number(piece.equation.rate[hidden]), strength(hidden)];
     let reached = over(&times(&rates), &number(piece.equation.rate[hidden.enemy()]));
     let open = power(&strength(hidden.enemy()), 2.0);
-    let inside = if lead > 0.0 {
+    let inside = if open_falls {
         minus(&reached, &open)
     } else {
         minus(&open, &reached)
@@ -101,11 +85,10 @@ pub(super) fn constant(piece: &Piece, engagement: &Engagement) -> Option<Math> {
 }
 
 /// With K = b·h₀ − a·o₀²/2 and c = √(2|K|/a): an arc tangent for K > 0, an inverse hyperbolic tangent for K < 0.
-fn ambush(piece: &Piece, engagement: &Engagement, point: &OrbitPoint) -> Math {
-    let hidden = hidden(engagement);
-    let open = hidden.enemy();
+fn ambush(piece: &Piece, motion: &Ambush, point: &OrbitPoint) -> Math {
+    let open = motion.hidden.enemy();
     let area = piece.equation.rate[open];
-    let (lead, c) = of_ambush(piece, hidden);
+    let (c, open_falls) = motion.constant();
     let (first, last) = (piece.start[open], point.left[open]);
     if c == 0.0 {
         let parts = minus(
@@ -117,7 +100,7 @@ fn ambush(piece: &Piece, engagement: &Engagement, point: &OrbitPoint) -> Math {
     let fallen = times(&[number(c), minus(&number(first), &number(last))]);
     let product = times(&[number(first), number(last)]);
     let square = power(&number(c), 2.0);
-    let (name, across) = if lead > 0.0 {
+    let (name, across) = if open_falls {
         ("arctan", plus(&[product, square]))
     } else {
         ("artanh", minus(&product, &square))
@@ -127,9 +110,9 @@ fn ambush(piece: &Piece, engagement: &Engagement, point: &OrbitPoint) -> Math {
 }
 
 /// ∫ dn/T(n) over a steady s.
-fn alone(piece: &Piece, engagement: &Engagement, point: &OrbitPoint, target: Side) -> Math {
+fn alone(piece: &Piece, point: &OrbitPoint, target: Side) -> Math {
     let shooter = target.enemy();
-    let fire = &engagement.sides[shooter].fire;
+    let fire = &piece.fire[shooter];
     let steady = match fire.shooters().exponent {
         0.0 => number(fire.rate),
         exponent => times(&[number(fire.rate), power(&number(piece.start[shooter]), exponent)]),
@@ -163,10 +146,10 @@ fn whole(term: Power, from: f64, to: f64) -> Math {
 }
 
 /// ∫ dn/(losses of the loser per unit of time), with the winner's strength from the state equation at each n.
-fn along_orbit(piece: &Piece, engagement: &Engagement, point: &OrbitPoint, loser: Side) -> Math {
+fn along_orbit(piece: &Piece, point: &OrbitPoint, loser: Side) -> Math {
     let winner = loser.enemy();
     let names = Both { x: "x", y: "y" };
-    let fire = &engagement.sides[winner].fire;
+    let fire = &piece.fire[winner];
     let mut factors = vec![number(fire.rate)];
     let shooters = fire.shooters().exponent;
     if shooters != 0.0 {

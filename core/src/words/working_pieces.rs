@@ -4,16 +4,17 @@
 use super::format::{time as time_in_words, with_unit};
 use super::math::*;
 use super::timeline::timeline;
+use super::times;
 use super::working::{WorkingLine, area};
 use crate::conditions::Conditions;
 use crate::fight::{Effort, fight};
 use crate::linear_system::LinearSystem;
+use crate::motion::Motion;
 use crate::outcome::{Method, Outcome};
-use crate::piece::{Motion, Piece};
+use crate::piece::Piece;
 use crate::sides::{Both, Side};
 use crate::statement::{Statement, Values};
 use crate::stretch::Stretch;
-use crate::terms::{Engagement, SideTerms};
 use crate::trajectory::Trajectory;
 
 const NAMES: Both<&str> = Both { x: "x", y: "y" };
@@ -82,7 +83,7 @@ fn stretch_lines(
         lines.push(line("", words, Some(equation(&stretch.conditions, side))));
     }
     lines.extend(ways(statement, stretch));
-    lines.extend(method(statement, stretch));
+    lines.extend(method(stretch));
     if let Some(to) = stretch.to {
         let length = to - stretch.from;
         let last = place + 1 == trajectory.stretches.len();
@@ -98,13 +99,9 @@ fn stretch_lines(
     lines
 }
 
-/// Two statements side by side.
+/// What is said of both sides.
 fn both(of: impl Fn(Side) -> Math) -> Math {
-    let (x, y) = (of(Side::X), of(Side::Y));
-    let mut both = x.clone();
-    both.mathml = format!("{}<mo>,</mo><mspace width=\"1em\"/>{}", x.mathml, y.mathml);
-    both.text = format!("{}, {}", x.text, y.text);
-    both
+    beside(&of(Side::X), &of(Side::Y))
 }
 
 /// dx/dt with this stretch's numbers.
@@ -172,7 +169,7 @@ fn ways(statement: &Statement, stretch: &Stretch) -> Vec<WorkingLine> {
 }
 
 /// The method of a stretch, and its formula with numbers.
-fn method(statement: &Statement, stretch: &Stretch) -> Vec<WorkingLine> {
+fn method(stretch: &Stretch) -> Vec<WorkingLine> {
     if let Some(system) = stretch.linear() {
         return linear(system);
     }
@@ -193,7 +190,7 @@ fn method(statement: &Statement, stretch: &Stretch) -> Vec<WorkingLine> {
     lines.extend(
         stretch
             .piece()
-            .and_then(|piece| time_formula(statement, piece, stretch))
+            .and_then(|piece| time_formula(piece, stretch))
             .into_iter()
             .flatten(),
     );
@@ -216,31 +213,21 @@ fn state_equation(piece: &Piece, stretch: &Stretch) -> Option<Math> {
 }
 
 /// How long the stretch is, from the strengths at both its ends, where it ends with a break at full rates.
-fn time_formula(statement: &Statement, piece: &Piece, stretch: &Stretch) -> Option<Vec<WorkingLine>> {
+fn time_formula(piece: &Piece, stretch: &Stretch) -> Option<Vec<WorkingLine>> {
     let length = stretch.to? - stretch.from;
     let plain = stretch.conditions.are_plain() && stretch.conditions.shared_growth() == Some(None);
     if !plain || piece.motion == Motion::Still {
         return None;
     }
-    let engagement = Engagement {
-        sides: Both::of(|side| {
-            let terms = &statement.engagement(&Values::new()).sides[side];
-            SideTerms {
-                fire: stretch.conditions.fire[side],
-                ..terms.clone()
-            }
-        }),
-        ..statement.engagement(&Values::new())
-    };
     let point = piece.point_at(length);
     let loser = if point.fallen.x / stretch.start.x > point.fallen.y / stretch.start.y {
         Side::X
     } else {
         Side::Y
     };
-    let constant = super::times::constant(piece, &engagement);
-    let constant = constant.map(|constant| line("", super::times::CONSTANT, Some(constant)));
-    let formula = super::times::formula(piece, &engagement, &point, loser);
+    let constant = times::constant(piece);
+    let constant = constant.map(|constant| line("", times::CONSTANT, Some(constant)));
+    let formula = times::formula(piece, &point, loser);
     let time = line(
         "",
         "From its first strengths to its last, which come next, it takes",

@@ -5,7 +5,6 @@ use aftercount_core::continued::continued;
 use aftercount_core::fight::{Effort, Fight, fight};
 use aftercount_core::outcome::{Breaks, Ended, Outcome, SideOutcome};
 use aftercount_core::pairs::{LONGEST_LINK, Pairs};
-use aftercount_core::piece::Work;
 use aftercount_core::problem::{Problem, is_hidden};
 use aftercount_core::sides::Side;
 use aftercount_core::statement::{Statement, Values};
@@ -14,6 +13,7 @@ use aftercount_core::words::decided::decided;
 use aftercount_core::words::figures::figures;
 use aftercount_core::words::working::{WorkingLine, working};
 use aftercount_core::words::{meaning, reading, sentence, timeline};
+use aftercount_core::work::Work;
 use aftercount_core::{keys, picture};
 
 /// How much is looked at.

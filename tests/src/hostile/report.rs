@@ -4,7 +4,7 @@ use std::collections::BTreeMap;
 use std::fmt;
 use std::time::{Duration, Instant};
 
-use aftercount_core::piece::Work;
+use aftercount_core::work::Work;
 
 use super::{Depth, Generator, MOST_SHOWN, MOST_WORK, Verdict, judge};
 

@@ -107,10 +107,10 @@ impl Writer<'_> {
             );
             self.line("time", words, None);
         } else {
-            if let Some(constant) = times::constant(&self.piece, &self.engagement) {
+            if let Some(constant) = times::constant(&self.piece) {
                 self.line("", times::CONSTANT, Some(constant));
             }
-            let formula = times::formula(&self.piece, &self.engagement, &point, loser);
+            let formula = times::formula(&self.piece, &point, loser);
             let math = equal(&[letter("t"), formula, number(at)]);
             let words = format!("The time of it, {}", time_in_words(at, unit));
             self.line("time", words, Some(math));
@@ -133,7 +133,7 @@ impl Writer<'_> {
             let name = marked(LETTERS[side].strength, "t");
             equal(&[name, number(sides[side].end.unwrap_or(f64::INFINITY))])
         };
-        let math = times_apart(&end(Side::X), &end(Side::Y));
+        let math = beside(&end(Side::X), &end(Side::Y));
         let how = match self.piece.motion.method() {
             Method::ClosedForm => "the formula of the time, turned round",
             Method::Integration => "the integrator",
@@ -218,15 +218,4 @@ fn left_of(term: &Term, from: &Math, spent: &Math) -> Math {
     } else {
         power(&rest, 1.0 / order)
     }
-}
-
-/// Two statements side by side.
-fn times_apart(first: &Math, second: &Math) -> Math {
-    let mut both = first.clone();
-    both.mathml = format!(
-        "{}<mo>,</mo><mspace width=\"1em\"/>{}",
-        first.mathml, second.mathml
-    );
-    both.text = format!("{}, {}", first.text, second.text);
-    both
 }

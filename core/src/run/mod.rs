@@ -1,16 +1,20 @@
 //! A fight in the making: through the instants one after another, and along the stretches between them.
 
+mod comes;
+mod pinned;
+
 use crate::conditions::Conditions;
-use crate::double::Double;
 use crate::ledger::Ledger;
-use crate::outcome::{Breaks, Ended, Losses, Method};
-use crate::piece::Work;
+use crate::outcome::{Breaks, Ended, Method};
 use crate::schedule::{Instant, instants};
 use crate::sides::{Both, Side};
 use crate::state::TIE;
 use crate::stretch::{After, FirstBreak, Standing, Stretch, TheEnd, WayDown};
 use crate::terms::Engagement;
 use crate::trajectory::Trajectory;
+use crate::work::Work;
+use comes::Comes;
+use pinned::Next;
 
 /// How often between two instants a side is found gone, at most; each side can be so once, and once more with what flows in.
 const MOST_ROUNDS: u32 = 4;
@@ -39,16 +43,6 @@ impl Span {
     }
 }
 
-/// What comes after a side was pinned at nothing.
-enum Next {
-    /// The fight is over.
-    Over,
-    /// The next instant.
-    Instant,
-    /// It goes on from this time.
-    At(f64),
-}
-
 /// The part by which losses must outweigh reinforcement for a side to be pinned at nothing.
 const PINNED: f64 = 1e-12;
 
@@ -59,53 +53,6 @@ fn surfaces(at: f64, ways: &Both<WayDown>) -> Option<f64> {
         .filter(|side| ways[*side].sunk > 0.0 && ways[*side].rising > 0.0)
         .map(|side| (at + ways[side].sunk / ways[side].rising * (1.0 + PINNED)) * (1.0 + TIE))
         .reduce(f64::min)
-}
-
-/// What comes of a stretch.
-enum Comes {
-    /// A side reaches its line.
-    Break(FirstBreak),
-    /// The integrator went no further than this from its beginning.
-    Cut(f64, Standing),
-    /// It comes to its end, so far from its beginning.
-    Through(f64, Standing),
-    /// It never ends.
-    Forever(TheEnd),
-}
-
-impl Comes {
-    /// What comes of a stretch of so great a length in which nobody breaks.
-    fn through(stretch: &Stretch, length: f64) -> Comes {
-        if let Some(cut) = stretch.cut_short(length) {
-            Comes::Cut(cut, stretch.at(cut))
-        } else if length.is_finite() {
-            Comes::Through(length, stretch.at(length))
-        } else {
-            Comes::Forever(stretch.endless())
-        }
-    }
-
-    /// Whether nobody has appeared or vanished, and no number is none.
-    fn keeps_books(&self, stretch: &Stretch) -> bool {
-        let keeps = |side: Side, length: f64, end: f64, losses: &Losses| {
-            let came = stretch.conditions.flow[side];
-            let there = stretch.start[side] + if came > 0.0 { came * length } else { 0.0 };
-            let off = (there - end - losses.all).abs();
-            end >= 0.0 && losses.all >= 0.0 && (off <= 1e-9 * there || there.is_infinite())
-        };
-        Side::BOTH.into_iter().all(|side| match self {
-            Comes::Break(FirstBreak { time, standing, .. }) => {
-                keeps(side, *time, standing.left[side], &standing.losses[side])
-            }
-            Comes::Cut(length, standing) | Comes::Through(length, standing) => {
-                keeps(side, *length, standing.left[side], &standing.losses[side])
-            }
-            Comes::Forever(TheEnd { end, losses, .. }) => {
-                let end = end[side].unwrap_or(f64::INFINITY);
-                keeps(side, f64::INFINITY, end, &losses[side])
-            }
-        })
-    }
 }
 
 /// A fight in the making.
@@ -138,30 +85,20 @@ pub(crate) struct Run {
 impl Run {
     /// The fight of `engagement`, integrated to that tolerance where it must be.
     pub(crate) fn of(engagement: &Engagement, tolerance: f64) -> Run {
-        let left = Both::of(|side| engagement.sides[side].start);
-        let ledger = Both::of(|side| Ledger {
-            committed: Double::sum(engagement.sides[side].start, engagement.sides[side].lost),
-            lost_before: engagement.sides[side].lost,
-            ..Ledger::default()
-        });
-        let instants = instants(engagement);
+        let sides = &engagement.sides;
         let mut run = Run {
-            stretches: Vec::with_capacity(instants.len()),
-            instants,
-            break_point: Both::of(|side| engagement.sides[side].break_point),
+            break_point: Both::of(|side| sides[side].break_point),
             clock: engagement.until.unwrap_or(f64::INFINITY),
-            left,
-            end: Both::default(),
-            ledger,
             // Losses before time 0 may have reached a line already.
             due: Both { x: true, y: true },
-            breaks: Breaks::Neither,
-            ended: Ended::Limit,
-            time: None,
-            verdict: false,
-            cuts: 0,
-            tolerance,
+            ..Run::beginning(
+                instants(engagement),
+                Both::of(|side| sides[side].start),
+                Both::of(|side| Ledger::at_start(&sides[side])),
+                tolerance,
+            )
         };
+        run.stretches.reserve_exact(run.instants.len());
         run.go(0);
         run
     }
@@ -174,29 +111,39 @@ impl Run {
             .iter()
             .rposition(|instant| instant.time <= time)
             .unwrap_or(0);
+        let instants = self.instants[place..].to_vec();
+        let next = instants.get(1).map(|instant| instant.time);
         let mut run = Run {
-            stretches: Vec::new(),
-            instants: self.instants[place..].to_vec(),
-            break_point: Both { x: 1.0, y: 1.0 },
-            clock: f64::INFINITY,
-            left: self.left,
-            end: Both::default(),
-            ledger: self.ledger,
-            due: Both::default(),
-            breaks: Breaks::Neither,
-            ended: Ended::Limit,
-            time: None,
             verdict: true,
-            cuts: 0,
-            tolerance: self.tolerance,
+            ..Run::beginning(instants, self.left, self.ledger, self.tolerance)
         };
-        let next = run.instants.get(1).map(|instant| instant.time);
         if run.gone_with(0) {
             run.finish(Breaks::Neither, Ended::Withdrawn, time);
         } else if !run.run_stretch(0, time, next) {
             run.go(1);
         }
         run
+    }
+
+    /// A fight at its beginning, to the last and without a clock: the sides have `left`, and have put in and lost what
+    /// `ledger` says.
+    fn beginning(instants: Vec<Instant>, left: Both<f64>, ledger: Both<Ledger>, tolerance: f64) -> Run {
+        Run {
+            stretches: Vec::new(),
+            instants,
+            break_point: Both { x: 1.0, y: 1.0 },
+            clock: f64::INFINITY,
+            left,
+            end: Both::default(),
+            ledger,
+            due: Both::default(),
+            breaks: Breaks::Neither,
+            ended: Ended::Limit,
+            time: None,
+            verdict: false,
+            cuts: 0,
+            tolerance,
+        }
     }
 
     /// What it took so far.
@@ -418,86 +365,6 @@ impl Run {
         let stretch = stretch.integrated(length, after, tolerance);
         let (due, comes) = what_comes(&stretch);
         (stretch, due, comes)
-    }
-
-    /// A side with nobody there whose reinforcement is lost as fast as it comes breaks with the first that comes, unless its
-    /// line is below 0 since some were withdrawn: then its enemy goes on alone, until its losses have brought the line up
-    /// to 0, or the enemy has become too weak. Says what comes after; `None` where no side is so.
-    fn pinned(
-        &mut self,
-        span: &Span,
-        at: f64,
-        conditions: &Conditions,
-        ways: &Both<WayDown>,
-    ) -> Option<Next> {
-        let fire_on = |side: Side| {
-            let enemy = side.enemy();
-            let fire = conditions.fire[enemy].losses_per_time(self.left[enemy], 0.0);
-            fire * conditions.growth_at(enemy, 0.0)
-        };
-        let side = Side::BOTH.into_iter().find(|side| {
-            let (flow, lost) = (
-                conditions.flow[*side],
-                fire_on(*side) + conditions.steadily_lost(*side),
-            );
-            self.left[*side] == 0.0 && flow > 0.0 && lost > flow * (1.0 + PINNED)
-        })?;
-        if ways[side].sunk == 0.0 {
-            self.finish(Breaks::only(side), Ended::Break, at);
-            return Some(Next::Over);
-        }
-        let (fire, steady) = (fire_on(side), conditions.steadily_lost(side));
-        let mut alone = *conditions;
-        alone.flow[side] = 0.0;
-        let breaks = at + ways[side].sunk / ways[side].rising;
-        let until = breaks
-            .min(span.until)
-            .min(at + self.too_weak(span, side, &alone, ways, (conditions.flow[side] - steady) / fire));
-        let until_then = Span { until, ..*span };
-        let (stretch, _, comes) = self.solve(&until_then, at, alone, ways);
-        let broken = match &comes {
-            Comes::Break(first) => Some(first.breaks),
-            _ => None,
-        };
-        let end = match &comes {
-            Comes::Break(first) => at + first.time,
-            _ => until,
-        };
-        self.run_out(stretch, &alone, comes, end);
-        let came = conditions.flow[side] * (end - at);
-        let by = |pace: f64| {
-            if pace > 0.0 {
-                came * (pace / (fire + steady))
-            } else {
-                0.0
-            }
-        };
-        let ledger = &mut self.ledger[side];
-        ledger.join(came);
-        ledger.add(&Losses::of(by(fire), by(steady), 0.0));
-        match broken {
-            Some(broken) if ways[side.enemy()].sunk == 0.0 => self.finish(broken, Ended::Break, end),
-            _ if end.is_infinite() => {}
-            _ if end == breaks => self.finish(Breaks::only(side), Ended::Break, end),
-            _ if end == span.until => return Some(Next::Instant),
-            _ => return Some(Next::At(end)),
-        }
-        Some(Next::Over)
-    }
-
-    /// How long it takes until the enemy of `side`, going on alone, is down to where his fire is the part `part` of what it
-    /// is now; infinite where he never is.
-    fn too_weak(&self, span: &Span, side: Side, alone: &Conditions, ways: &Both<WayDown>, part: f64) -> f64 {
-        let enemy = side.enemy();
-        let exponent = alone.fire[enemy].shooters().exponent;
-        if part <= 0.0 || exponent == 0.0 {
-            return f64::INFINITY;
-        }
-        let strength = self.left[enemy] * libm::pow(part, 1.0 / exponent) * (1.0 - PINNED);
-        let (until, after, tolerance) = (span.until, After::More, self.tolerance);
-        Stretch::new(0.0, until, self.left, *alone, ways, after, tolerance)
-            .time_to_strength(enemy, strength)
-            .unwrap_or(f64::INFINITY)
     }
 
     /// Enters a stretch in which nobody breaks, up to `until` or for ever; says whether the fight is over.

@@ -4,9 +4,12 @@
 //! μ ± δ with μ = −(A + C)/2 and δ = √((A − C)²/4 + B·D), real since no rate is below 0; functions of the matrix follow
 //! from their values at the eigenvalues (N. J. Higham, *Functions of Matrices*, 2008, ch. 1).
 
+mod crossing;
+mod exponential;
+
 use crate::double::Double;
-use crate::root::{newton, root};
 use crate::sides::{Both, Side};
+use exponential::{Exponential, ONE_OVER};
 use std::cell::{Cell, OnceCell};
 
 /// A linear system, from the strengths at its start.
@@ -46,15 +49,6 @@ pub struct Moment {
     pub means: Both<f64>,
 }
 
-/// e^(λt), its integral from 0, and the integral of that: at an eigenvalue, or their divided differences.
-#[derive(Clone, Copy, Debug)]
-struct Exponential {
-    none: f64,
-    once: f64,
-    /// Over the time, since it may be beyond a double.
-    twice_by_t: f64,
-}
-
 /// How functions of the matrix are taken at a time.
 enum Shape {
     /// By their series, so many terms of it.
@@ -63,39 +57,6 @@ enum Shape {
     Near(Exponential, Exponential),
     /// By the values at both eigenvalues.
     Apart([Exponential; 2]),
-}
-
-/// The eigenvalues, the greater first, and half of their distance.
-fn eigenvalues(own: Both<f64>, by_enemy: Both<f64>) -> [Double; 3] {
-    let scale = scale_for(own, by_enemy);
-    if scale > 1.0 {
-        let scaled = |rates: Both<f64>| Both::of(|side| rates[side] * scale);
-        return eigenvalues(scaled(own), scaled(by_enemy)).map(|value| value * (1.0 / scale));
-    }
-    let half = Double::difference(own.x, own.y) * 0.5;
-    let delta = (half * half + Double::product(by_enemy.x, by_enemy.y)).sqrt();
-    let mu = -Double::sum(own.x, own.y) * 0.5;
-    // The product of the eigenvalues is A·C − B·D: the smaller one is found from it, since its sum may cancel.
-    let determinant = Double::product(own.x, own.y) - Double::product(by_enemy.x, by_enemy.y);
-    let low = mu - delta;
-    let high = if low == 0.0 {
-        Double::from(0.0)
-    } else {
-        determinant / low
-    };
-    [high, low, delta]
-}
-
-/// A power of two that brings rates so low that their squares would be below the smallest double into its reach.
-fn scale_for(own: Both<f64>, by_enemy: Both<f64>) -> f64 {
-    const TINY: f64 = f64::from_bits((1023 - 400) << 52);
-    let greatest = own.x.max(own.y).max(by_enemy.x).max(by_enemy.y);
-    match greatest {
-        0.0 => 1.0,
-        _ if greatest < TINY * TINY => 1.0 / (TINY * TINY),
-        _ if greatest < TINY => 1.0 / TINY,
-        _ => 1.0,
-    }
 }
 
 /// Where the greater eigenvalue times the time is below this, a series is taken: whatever the eigenvectors.
@@ -409,190 +370,40 @@ impl LinearSystem {
             .filter(|value| *value > 0.0);
         60.0 / moving.fold(f64::INFINITY, f64::min)
     }
-
-    /// The first time up to `horizon` at which `side` is down to a line that starts `above` below it and rises by
-    /// `rising` per unit of time; `None` where it never is.
-    ///
-    /// The second derivative of a strength has one zero at most, the first then two and the distance from the line
-    /// three: between them all is monotone, and no root can be missed.
-    pub fn first_reach(&self, side: Side, above: Double, rising: f64, horizon: f64) -> Option<f64> {
-        if self.own[side] == 0.0 && self.by_enemy[side] == 0.0 {
-            // At a steady pace.
-            let pace = rising - self.inflow[side];
-            let time = f64::from(above) / pace;
-            return (pace > 0.0 && time <= horizon && time.is_finite()).then_some(time);
-        }
-        // No side is ever stronger than its start and all that flows in: at the pace of that most do not get near the line.
-        let most = |side: Side| self.start[side] + self.inflow[side].max(0.0) * horizon;
-        let pace = self.own[side] * most(side)
-            + self.by_enemy[side] * most(side.enemy())
-            + (-self.inflow[side]).max(0.0)
-            + rising;
-        if pace * horizon * (1.0 + 1e-9) < f64::from(above) {
-            return None;
-        }
-        let start = self.start[side];
-        let line = f64::from(Double::from(start) - above);
-        if self.fades_alone(side) && rising == 0.0 {
-            let part = f64::from(above) / start;
-            let span = if part < 0.5 {
-                -libm::log1p(-part)
-            } else {
-                libm::log(start / line)
-            };
-            let time = span / self.own[side];
-            return (line > 0.0 && time <= horizon).then_some(time);
-        }
-        // How far above the line a strength is, and how that changes.
-        let above_line = |t: f64| {
-            let now = self.at(t);
-            let left = now.strengths[side];
-            let height = if left < 0.5 * start && rising == 0.0 {
-                left - line
-            } else {
-                f64::from(above) + now.change[side] - rising * t
-            };
-            (height, now.slopes[side] - rising)
-        };
-        let mut from = Place {
-            t: 0.0,
-            height: above.into(),
-            slope: self.first[side] - rising,
-        };
-        let bend = self.inflection(side).filter(|t| *t < horizon);
-        let bend = bend.map(|t| Place::at(t, &above_line));
-        let last = bend.map_or(0.0, |bend| bend.t);
-        let far = if horizon.is_finite() {
-            Place::at(horizon.min(self.beyond_digits(last, rising)), &above_line)
-        } else {
-            self.far(side, &from, last, &above_line)
-        };
-        for end in bend.into_iter().chain([far]) {
-            // Between two bends the slope has one zero at most.
-            let turn = (from.slope < 0.0) != (end.slope < 0.0);
-            let turn = turn.then(|| root(from.t, end.t, &|t| above_line(t).1)).flatten();
-            for mark in turn.map(|t| Place::at(t, &above_line)).into_iter().chain([end]) {
-                if mark.is_down() {
-                    return Some(from.reach(&mark, &above_line));
-                }
-                from = mark;
-            }
-        }
-        None
-    }
-
-    /// The time at which the second derivative of a strength is 0: tanh(δt)/δ = −c/s.
-    fn inflection(&self, side: Side) -> Option<f64> {
-        if self.by_enemy[side] == 0.0 {
-            // It moves by itself, as one exponential.
-            return None;
-        }
-        let second = self.times(self.first);
-        let mu = 0.5 * (self.eigenvalues[0] + self.eigenvalues[1]);
-        let third = self.times(second)[side] - mu * second[side];
-        let ratio = -second[side] / third;
-        let t = if self.delta == 0.0 {
-            ratio
-        } else {
-            libm::atanh(self.delta * ratio) / self.delta
-        };
-        (t.is_finite() && t > 0.0).then_some(t)
-    }
-
-    /// The time at which all has long decayed since the time `from`, or grown beyond any strength, so that a double holds
-    /// nothing of it, not even which way it went; to a line that still rises what has decayed may come later.
-    fn beyond_digits(&self, from: f64, rising: f64) -> f64 {
-        match self.eigenvalues {
-            [high, _] if high > 0.0 => from + 600.0 / high,
-            [high, low] if high < 0.0 && low < 0.0 && rising == 0.0 => from + 8.0 * self.settled(),
-            _ => f64::INFINITY,
-        }
-    }
-
-    /// A place after `least` at which a strength has come to its line, or never will.
-    fn far(&self, side: Side, start: &Place, least: f64, above_line: &impl Fn(f64) -> (f64, f64)) -> Place {
-        // Beyond it what grows has no digits left.
-        let most = if self.eigenvalues[0] > 0.0 {
-            f64::min(600.0 / self.eigenvalues[0], FAR)
-        } else {
-            FAR
-        };
-        let scales = Side::BOTH.map(|side| self.start[side] / self.first[side].abs());
-        let mut scales = [-2.0 * start.height / start.slope].into_iter().chain(scales);
-        let scale = scales.find(|scale| *scale > 0.0 && *scale < FAR);
-        let mut t = scale.unwrap_or(1.0).min(most).max(least).max(1e-200);
-        let settled = least + self.settled();
-        // With both eigenvalues 0 a slope may change for ever: nothing settles.
-        let settles = self.delta > 0.0 || self.eigenvalues[0] < 0.0;
-        let pace = self.first[side].abs().max(self.first[side.enemy()].abs()) * SETTLED;
-        let mut factor = 2.0;
-        loop {
-            let place = Place::at(t, above_line);
-            // What decays has decayed: only a steady pace can still bring it down.
-            let rests = settles && t > settled && place.slope >= -pace;
-            if rests || t >= most || place.height <= 0.0 || place.height.is_nan() {
-                return place;
-            }
-            t = f64::min(t * factor, most);
-            // It is a long way, or none.
-            factor = f64::min(factor * 1.25, 1e6);
-        }
-    }
 }
 
-/// No time later than this is asked for.
-const FAR: f64 = 1e300;
-
-/// The part of the first pace below which nothing moves any more, once what decays has decayed.
-const SETTLED: f64 = 1e-22;
-
-/// A time, and how matters stand there.
-#[derive(Clone, Copy)]
-struct Place {
-    t: f64,
-    height: f64,
-    slope: f64,
+/// The eigenvalues, the greater first, and half of their distance.
+fn eigenvalues(own: Both<f64>, by_enemy: Both<f64>) -> [Double; 3] {
+    let scale = scale_for(own, by_enemy);
+    if scale > 1.0 {
+        let scaled = |rates: Both<f64>| Both::of(|side| rates[side] * scale);
+        return eigenvalues(scaled(own), scaled(by_enemy)).map(|value| value * (1.0 / scale));
+    }
+    let half = Double::difference(own.x, own.y) * 0.5;
+    let delta = (half * half + Double::product(by_enemy.x, by_enemy.y)).sqrt();
+    let mu = -Double::sum(own.x, own.y) * 0.5;
+    // The product of the eigenvalues is A·C − B·D: the smaller one is found from it, since its sum may cancel.
+    let determinant = Double::product(own.x, own.y) - Double::product(by_enemy.x, by_enemy.y);
+    let low = mu - delta;
+    let high = if low == 0.0 {
+        Double::from(0.0)
+    } else {
+        determinant / low
+    };
+    [high, low, delta]
 }
 
-impl Place {
-    fn at(t: f64, above_line: &impl Fn(f64) -> (f64, f64)) -> Place {
-        let (height, slope) = above_line(t);
-        Place { t, height, slope }
-    }
-
-    /// What has faded below the smallest double has not reached a line at 0.
-    fn is_down(&self) -> bool {
-        self.height < 0.0 || (self.height == 0.0 && self.slope < 0.0)
-    }
-
-    /// When the line is met between this place, above it, and `down`, with a monotone way between them: from where the
-    /// cubic through both places, time over height, crosses it.
-    fn reach(&self, down: &Place, above_line: &impl Fn(f64) -> (f64, f64)) -> f64 {
-        if self.height <= 0.0 {
-            return if down.height == 0.0 { down.t } else { self.t };
-        }
-        let part = self.height / (self.height - down.height);
-        let rest = 1.0 - part;
-        let span = down.height - self.height;
-        let (start, end) = (span / self.slope, span / down.slope);
-        let first = self.t * rest * rest * (1.0 + 2.0 * part)
-            + down.t * part * part * (1.0 + 2.0 * rest)
-            + start * part * rest * rest
-            - end * part * part * rest;
-        newton(self.t, down.t, first, above_line)
+/// A power of two that brings rates so low that their squares would be below the smallest double into its reach.
+fn scale_for(own: Both<f64>, by_enemy: Both<f64>) -> f64 {
+    const TINY: f64 = f64::from_bits((1023 - 400) << 52);
+    let greatest = own.x.max(own.y).max(by_enemy.x).max(by_enemy.y);
+    match greatest {
+        0.0 => 1.0,
+        _ if greatest < TINY * TINY => 1.0 / (TINY * TINY),
+        _ if greatest < TINY => 1.0 / TINY,
+        _ => 1.0,
     }
 }
-
-/// 1 over each whole number.
-const ONE_OVER: [f64; 24] = {
-    let mut parts = [0.0; 24];
-    let mut n = 1;
-    while n < 24 {
-        parts[n] = 1.0 / n as f64;
-        n += 1;
-    }
-    parts
-};
 
 /// How many terms of a series count for this greatest angle: they fall at least as angleⁿ·n/n!, and the first that is left
 /// out is below 1e-18 of the first.
@@ -601,36 +412,5 @@ fn terms_for(angle: f64) -> usize {
         _ if angle < 1.0 / 256.0 => 7,
         _ if angle < SHORT => 11,
         _ => 21,
-    }
-}
-
-impl Exponential {
-    /// That of an eigenvalue.
-    fn new(eigenvalue: f64, t: f64) -> Exponential {
-        let angle = eigenvalue * t;
-        // e^z − 1 keeps its digits near 0, e^z far below.
-        let (none, less_one) = if angle < -0.5 {
-            let none = libm::exp(angle);
-            (none, none - 1.0)
-        } else {
-            let less_one = libm::expm1(angle);
-            (1.0 + less_one, less_one)
-        };
-        let once = if angle == 0.0 { t } else { less_one / eigenvalue };
-        let twice_by_t = if angle.abs() < 0.5 {
-            // t·(1/2 + z/6 + z²/24 …), which (e^z − 1)/z − 1 would lose.
-            let series = ONE_OVER[3..16]
-                .iter()
-                .rev()
-                .fold(0.0, |sum, part| (sum * angle + 1.0) * part);
-            t * 0.5 * (1.0 + angle * series)
-        } else {
-            (less_one / angle - 1.0) / eigenvalue
-        };
-        Exponential {
-            none,
-            once,
-            twice_by_t,
-        }
     }
 }
