@@ -221,4 +221,33 @@ mod tests {
             }
         }
     }
+
+    /// What comes to a side that is pinned at nothing is lost at once, and counts: the engagement that went on had forgotten
+    /// all that was so lost, and waited the whole time once more.
+    #[test]
+    fn what_is_lost_as_it_comes_is_carried_on() {
+        // 100 gone at once; of the 10 an hour that come from 1 h on half brings the line up: it is at 0 at 11 h.
+        let link = "x.start=100&x.break=0.5&x.fire=none&x.join=-100@0&x.flow=10@1/&y.start=300&y.rate=0.1";
+        let pairs = Pairs::parse(link);
+        let statement = Statement::read(&pairs).expect(link);
+        let whole = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+        let trajectory = whole.trajectory.as_ref().expect("was asked for");
+        let ends = whole.outcome.time.expect("x breaks");
+        assert!((ends - 11.0).abs() <= 1e-12 * ends, "{ends}");
+        assert_eq!(trajectory.losses_per_time(6.0).x, 10.0);
+        let text = continued(&pairs, &statement, trajectory, 6.0);
+        let rest = Statement::read(&text).unwrap_or_else(|problems| panic!("{problems:?}"));
+        let rest = fight(&rest.engagement(&Values::new()), Effort::Outcome).outcome;
+        let time = rest.time.unwrap_or(f64::NAN) + 6.0;
+        assert!(
+            (time - ends).abs() <= 1e-12 * ends,
+            "{time} {ends}: {}",
+            text.link()
+        );
+        let committed = [rest.x.committed, whole.outcome.x.committed];
+        assert!(
+            (committed[0] - committed[1]).abs() <= 1e-12 * committed[1],
+            "{committed:?}"
+        );
+    }
 }

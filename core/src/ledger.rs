@@ -87,4 +87,9 @@ impl Ledger {
     pub(crate) fn add(&mut self, losses: &Losses) {
         self.losses = self.losses.and(losses);
     }
+    /// Enters what is lost as it comes.
+    pub(crate) fn pass(&mut self, losses: &Losses) {
+        self.join(losses.all);
+        self.add(losses);
+    }
 }

@@ -1,5 +1,6 @@
 //! What a fight leaves: the outcome, as the batch door, the page and its attributes give it.
 
+use crate::conditions::part_of;
 use crate::sides::{Both, Side};
 use serde::Serialize;
 
@@ -122,6 +123,12 @@ impl Losses {
             wastage,
             all: fire + support + wastage,
         }
+    }
+
+    /// What is lost in the time `time` at this pace.
+    pub(crate) fn over(&self, time: f64) -> Losses {
+        let lost = |pace: f64| part_of(pace, time);
+        Losses::of(lost(self.fire), lost(self.support), lost(self.wastage))
     }
 
     /// These and others, each cause summed on its own.

@@ -2,6 +2,7 @@
 
 use crate::caution;
 use crate::fight::Effort;
+use crate::linear_system::LinearSystem;
 use crate::outcome::{Breaks, Ended, Method, Outcome, PieceOutcome, SideOutcome, ToTheLast};
 use crate::run::Run;
 use crate::sides::{Both, Side};
@@ -71,8 +72,31 @@ impl Run {
             return None;
         }
         let last = self.stretches.last()?;
-        let time = last.from + last.below_one()?;
+        let fading = Side::BOTH.into_iter().filter(|side| last.fades(*side));
+        let time = fading
+            .filter_map(|side| self.comes_below_one(side))
+            .reduce(f64::min)?;
         self.time.is_none_or(|end| time <= end).then_some(time)
+    }
+
+    /// When `side`, which fades in the last stretch, falls below one for good: there, or in one before.
+    fn comes_below_one(&self, side: Side) -> Option<f64> {
+        let Some(place) = self
+            .stretches
+            .iter()
+            .rposition(|stretch| stretch.start[side] > 1.0)
+        else {
+            return Some(0.0);
+        };
+        let stretch = &self.stretches[place];
+        let time = stretch
+            .time_to_strength(side, 1.0)
+            .map(|time| stretch.from + time);
+        // Some may have been withdrawn at its end.
+        match self.stretches.get(place + 1) {
+            Some(next) => Some(time.map_or(next.from, |time| time.min(next.from))),
+            None => time,
+        }
     }
 
     /// Who would be left if no side broke and no clock ran, and the work that it took to find out.
@@ -117,9 +141,9 @@ impl Run {
 
     /// Whether both fade together because they are at parity, and not whatever their strengths.
     fn ends_at_parity(&self) -> bool {
-        self.stretches
-            .last()
-            .and_then(Stretch::piece)
-            .is_some_and(|piece| !piece.cost.x.is_infinite())
+        self.stretches.last().is_some_and(|last| {
+            let of_piece = last.piece().is_some_and(|piece| !piece.cost.x.is_infinite());
+            of_piece || last.linear().is_some_and(LinearSystem::is_at_parity)
+        })
     }
 }

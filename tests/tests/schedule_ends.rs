@@ -203,3 +203,84 @@ fn what_would_take_too_long_says_how_far_it_is_known() {
         panic!("it is worked out now: find another, {found:?}");
     }
 }
+
+/// Two sides of which whoever comes is lost at once, both from the same moment on: only the first was said to break.
+#[test]
+fn two_that_are_lost_as_they_come_break_together() {
+    let link = "x.start=0&x.fire=none&x.support.aimed=2&x.flow=1@3/&y.start=0&y.fire=none&y.support.aimed=2&y.flow=1@3/";
+    let found = ended(link);
+    assert_eq!((found.breaks, found.time), (Breaks::Both, Some(3.0)));
+    // One that was withdrawn before waits for its line to rise; the other breaks at once.
+    let found = ended(&link.replace("x.start=0", "x.start=10&x.break=0.5&x.join=-10@0"));
+    assert_eq!((found.breaks, found.time), (Breaks::Y, Some(3.0)));
+}
+
+/// A side that had fallen below one before the last stretch began was said to do so at its beginning.
+#[test]
+fn who_falls_below_one_does_so_in_whatever_stretch() {
+    let alone = "x.start=100&x.fire=none&y.start=300&y.fire=logarithmic&y.rate=1";
+    let at = 100_f64.ln();
+    for (later, known) in [("", at), ("&phase1.from=3", at), ("&phase1.from=10", at)] {
+        let found = ended(&format!("{alone}{later}"));
+        assert_close(found.below_one.expect("it fades"), known, 1e-13, later);
+    }
+    // 100·e⁻² are 13.53; with 13 of them gone less than one is left at once.
+    let leaves = ended(&format!("{alone}&x.join=-13@2"));
+    assert_eq!(leaves.below_one, Some(2.0));
+    let returns = ended(&format!("{alone}&x.join=50@8"));
+    let at_8 = 100.0 * (-8_f64).exp() + 50.0;
+    assert_close(
+        returns.below_one.expect("it fades"),
+        8.0 + at_8.ln(),
+        1e-13,
+        "a reserve",
+    );
+}
+
+/// At parity two sides that also waste alike wear each other out for ever: each was brought to nothing in 320 hours, by what
+/// rounding had left along the growing eigenvector, and which of them changed with a cut.
+#[test]
+fn parity_with_wastage_is_parity() {
+    let sides = "x.start=600&x.rate=0.04&x.wastage=0.01&y.start=400&y.rate=0.09&y.wastage=0.01";
+    for part in 0..40 {
+        let cut = match part {
+            0 => String::new(),
+            _ => format!("&phase1.from={}", f64::from(part) * 0.17),
+        };
+        let found = ended(&format!("{sides}{cut}"));
+        let how = (found.breaks, found.ended, found.to_the_last);
+        assert_eq!(
+            how,
+            (Breaks::Neither, Ended::Limit, Some(ToTheLast::Parity)),
+            "{cut}"
+        );
+        assert_eq!((found.x.end, found.y.end), (Some(0.0), Some(0.0)), "{cut}");
+        // x = 600·e^(−0.07·t), also where it is cut.
+        let below_one = found.below_one.expect("both fade");
+        assert_close(below_one, 400_f64.ln() / 0.07, 1e-12, &cut);
+        let broken = ended(&format!("{sides}&x.break=0.3&y.break=0.3{cut}"));
+        assert_eq!(
+            (broken.breaks, broken.to_the_last),
+            (Breaks::Both, Some(ToTheLast::Parity)),
+            "{cut}"
+        );
+    }
+    // Three roundings beside it, it is none.
+    let stronger = 400_f64.next_up().next_up().next_up();
+    let found = ended(&sides.replace("y.start=400", &format!("y.start={stronger}")));
+    assert_eq!((found.breaks, found.to_the_last), (Breaks::X, Some(ToTheLast::Y)));
+}
+
+/// What is at its line at the clock is there, wherever its way is cut: of 996 cuts 31 came a rounding of the time late.
+#[test]
+fn a_line_at_the_clock_is_reached_behind_a_cut() {
+    for (fire, clock, end) in [("x.rate=1", 10.0, 0.0), ("x.rate=1&y.break=0.3", 3.0, 700.0)] {
+        for part in 1..997 {
+            let cut = clock * f64::from(part) / 997.0;
+            let link =
+                format!("x.start=100&{fire}&y.start=1000&y.fire=none&until={clock}&phase1.from={cut:.6}");
+            let found = ended(&link);
+            assert_eq!((found.breaks, found.y.end), (Breaks::Y, Some(end)), "{link}");
+        }
+    }
+}

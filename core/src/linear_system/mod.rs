@@ -34,6 +34,8 @@ pub struct LinearSystem {
     inflow_parts: OnceCell<[Both<f64>; 2]>,
     /// How often it was asked how matters stand.
     evaluations: Cell<u32>,
+    /// Whether both sides wear each other out, and fade along the eigenvector of the smaller eigenvalue.
+    parity: bool,
 }
 
 /// How matters stand at one time.
@@ -82,12 +84,38 @@ impl LinearSystem {
             start_parts: OnceCell::new(),
             inflow_parts: OnceCell::new(),
             evaluations: Cell::default(),
+            parity: false,
         };
         let first = system.exact_first();
         LinearSystem {
             first: Both::of(|side| first[side].into()),
             ..system
         }
+    }
+
+    /// The same system, where its sides stand at parity to the part `part`: of what else there is of them, which is rounding,
+    /// nothing is followed.
+    ///
+    /// Along the eigenvector of the smaller eigenvalue λ the strengths keep their ratio, (−A − λ)·x = B·y.
+    pub(crate) fn at_parity_within(mut self, part: f64) -> LinearSystem {
+        let both_fire = self.by_enemy.x > 0.0 && self.by_enemy.y > 0.0;
+        if !both_fire || self.inflow != Both::default() {
+            return self;
+        }
+        let own = -(self.exact[1] + self.own.x) * self.start.x;
+        let enemys = Double::product(self.by_enemy.x, self.start.y);
+        // The margin is that of the strengths; of their squares, by which a tie is told, it is twice as much.
+        if (own - enemys).abs() * 2.0 <= enemys * part {
+            self.parity = true;
+            self.start_parts = OnceCell::from([Both::default(), self.start]);
+            self.first_parts = OnceCell::from([Both::default(), self.first]);
+        }
+        self
+    }
+
+    /// Whether both sides wear each other out.
+    pub(crate) fn is_at_parity(&self) -> bool {
+        self.parity
     }
 
     /// The first derivative at the start, in full.

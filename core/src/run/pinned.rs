@@ -39,8 +39,8 @@ impl Run {
             self.left[side] == 0.0 && flow > 0.0 && fire + steady > flow * (1.0 + PINNED)
         });
         let side = Side::BOTH.into_iter().find(|side| pinned[*side])?;
-        if ways[side].sunk == 0.0 {
-            self.finish(Breaks::only(side), Ended::Break, at);
+        if let Some(breaks) = Breaks::of(Both::of(|side| pinned[side] && ways[side].sunk == 0.0)) {
+            self.finish(breaks, Ended::Break, at);
             return Some(Next::Over);
         }
         let (fire, steady) = pace(side);
@@ -51,7 +51,7 @@ impl Run {
             .min(span.until)
             .min(at + self.too_weak(span, side, &alone, ways, (conditions.flow[side] - steady) / fire));
         let until_then = Span { until, ..*span };
-        let (stretch, _, comes) = self.solve(&until_then, at, alone, ways);
+        let (mut stretch, _, comes) = self.solve(&until_then, at, alone, ways);
         let broken = match &comes {
             Comes::Break(first) => Some(first.breaks),
             _ => None,
@@ -60,18 +60,11 @@ impl Run {
             Comes::Break(first) => at + first.time,
             _ => until,
         };
+        let part = |pace: f64| conditions.flow[side] * (pace / (fire + steady));
+        let lost = Losses::of(part(fire), part(steady), 0.0);
+        stretch.lost_as_it_comes[side] = lost;
         self.run_out(stretch, &alone, comes, end);
-        let came = conditions.flow[side] * (end - at);
-        let by = |pace: f64| {
-            if pace > 0.0 {
-                came * (pace / (fire + steady))
-            } else {
-                0.0
-            }
-        };
-        let ledger = &mut self.ledger[side];
-        ledger.join(came);
-        ledger.add(&Losses::of(by(fire), by(steady), 0.0));
+        self.ledger[side].pass(&lost.over(end - at));
         match broken {
             Some(broken) if ways[side.enemy()].sunk == 0.0 => self.finish(broken, Ended::Break, end),
             _ if end.is_infinite() => {}

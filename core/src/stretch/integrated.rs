@@ -279,10 +279,7 @@ fn comes_to_nothing(side: Side, conditions: &Conditions) -> bool {
 
 /// What is lost in the time `t` at steady strengths and full rates.
 fn steady_losses(conditions: &Conditions, left: Both<f64>, t: f64) -> Both<Losses> {
-    Both::of(|side: Side| {
-        let pace = conditions.losses_per_time(side, left);
-        Losses::of(pace.fire * t, pace.support * t, pace.wastage * t)
-    })
+    Both::of(|side: Side| conditions.losses_per_time(side, left).over(t))
 }
 
 /// The side that is sure to be brought to nothing in finite time while the other stands, from the strengths `now` at the

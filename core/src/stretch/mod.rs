@@ -84,6 +84,8 @@ pub struct Stretch {
     pub ways: Both<WayDown>,
     /// What each side has put in and lost by its beginning.
     pub ledger: Both<Ledger>,
+    /// What is lost per unit of time of a side with nobody there, as fast as it comes.
+    pub(crate) lost_as_it_comes: Both<Losses>,
     how: How,
 }
 
@@ -155,11 +157,14 @@ impl Stretch {
             let piece = Piece::new(start, &conditions, parity)?;
             Some(How::Piece(piece, growth))
         };
-        let linear = || match growth {
-            Some(None) => conditions
-                .linear(start)
-                .map(|system| How::Linear(Box::new(system))),
-            _ => None,
+        let linear = || {
+            let system = conditions.linear(start).filter(|_| growth == Some(None))?;
+            let system = if to_the_last {
+                system.at_parity_within(rounding(from, start, ways))
+            } else {
+                system
+            };
+            Some(How::Linear(Box::new(system)))
         };
         let solved = if conditions.are_plain() {
             piece().or_else(linear)
@@ -177,6 +182,7 @@ impl Stretch {
             conditions,
             ways: *ways,
             ledger: Both::default(),
+            lost_as_it_comes: Both::default(),
             how,
         }
     }
@@ -213,6 +219,7 @@ impl Stretch {
             let mut ledger = self.ledger[side];
             ledger.join(self.conditions.flow[side] * t);
             ledger.add(&losses[side]);
+            ledger.pass(&self.lost_as_it_comes[side].over(t));
             ledger
         })
     }
@@ -274,18 +281,18 @@ impl Stretch {
 
     /// The first break before `length` is over, from the beginning of the stretch; both sides have some way to go.
     pub fn first_break(&self, ways: &Both<WayDown>, length: f64) -> Option<FirstBreak> {
+        // What is at the end to rounding is at the end.
+        let nearly = length + (self.from + length) * TIE;
         match &self.how {
             How::Piece(piece, growth) => {
-                separated::first_break(piece, growth.as_ref(), ways, length, self.rounding(ways))
+                separated::first_break(piece, growth.as_ref(), ways, nearly, self.rounding(ways))
             }
-            How::Linear(system) => {
-                // What is at the end to rounding is at the end.
-                let length = length + (self.from + length) * TIE;
-                self.earlier(
-                    ways,
-                    linear::first_reaches(system, ways, length, self.rounding(ways)),
-                )
-            }
+            // Both fade for ever.
+            How::Linear(system) if system.is_at_parity() => None,
+            How::Linear(system) => self.earlier(
+                ways,
+                linear::first_reaches(system, ways, nearly, self.rounding(ways)),
+            ),
             How::Integrated(integrated) => {
                 let reach = |side: Side| integrated.first_reach(side, &ways[side], length);
                 self.earlier(ways, Both::of(reach))
@@ -293,14 +300,8 @@ impl Stretch {
         }
     }
 
-    /// The part by which two breaks may differ and still be at one moment: the rounding of what is stated, and behind the
-    /// first stretch also that of the strengths which were handed over, which is more of a short way down.
     fn rounding(&self, ways: &Both<WayDown>) -> f64 {
-        if self.from == 0.0 {
-            return TIE;
-        }
-        let of_way = |side: Side| self.start[side] / f64::from(ways[side].descent.by);
-        TIE * (1.0 + 2.0 * of_way(Side::X).max(of_way(Side::Y))).min(MOST_ROUNDING)
+        rounding(self.from, self.start, ways)
     }
 
     /// The earlier of two breaks, or both where they are the same to rounding.
@@ -361,7 +362,7 @@ impl Stretch {
             } else {
                 0.0
             };
-            fire + conditions.part_lost(side) * left[side] + steady
+            fire + conditions.part_lost(side) * left[side] + steady + self.lost_as_it_comes[side].all
         })
     }
 
@@ -407,22 +408,8 @@ impl Stretch {
         }
     }
 
-    /// When a side that fades without ever reaching 0 falls below one, from the beginning of the stretch.
-    pub fn below_one(&self) -> Option<f64> {
-        let fades = |side: Side| {
-            if !self.fades(side) {
-                return None;
-            }
-            if self.start[side] <= 1.0 {
-                return Some(0.0);
-            }
-            self.time_to_strength(side, 1.0)
-        };
-        Side::BOTH.into_iter().filter_map(fades).reduce(f64::min)
-    }
-
     /// Whether `side` tends to 0 and never reaches it.
-    fn fades(&self, side: Side) -> bool {
+    pub(crate) fn fades(&self, side: Side) -> bool {
         let zero = Double::from(0.0);
         match &self.how {
             How::Piece(piece, _) => {
@@ -437,4 +424,15 @@ impl Stretch {
             }
         }
     }
+}
+
+/// The part by which two breaks along a stretch from the time `from` may differ and still be at one moment: the rounding of
+/// what is stated, and behind the first stretch also that of the strengths which were handed over, which is more of a short
+/// way down.
+fn rounding(from: f64, start: Both<f64>, ways: &Both<WayDown>) -> f64 {
+    if from == 0.0 {
+        return TIE;
+    }
+    let of_way = |side: Side| start[side] / f64::from(ways[side].descent.by);
+    TIE * (1.0 + 2.0 * of_way(Side::X).max(of_way(Side::Y))).min(MOST_ROUNDING)
 }

@@ -9,10 +9,10 @@ use crate::orbit_point::OrbitPoint;
 use crate::outcome::{Breaks, Ended};
 use crate::piece::Piece;
 use crate::sides::{Both, Side};
-use crate::state::{StateEquation, TIE, is_endless};
+use crate::state::{StateEquation, is_endless};
 
-/// Which side of a piece reaches its line first, by the state equation, and when; both where they differ by less than the
-/// part `rounding`.
+/// Which side of a piece reaches its line first within `length`, by the state equation, and when; both where they differ by
+/// less than the part `rounding`.
 pub(super) fn first_break(
     piece: &Piece,
     growth: Option<&Growth>,
@@ -51,7 +51,7 @@ pub(super) fn first_break(
         f64::INFINITY
     };
     let time = growth.map_or(full, |growth| growth.when(full));
-    (time.is_finite() && time <= length * (1.0 + TIE)).then(|| FirstBreak {
+    (time.is_finite() && time <= length).then(|| FirstBreak {
         breaks,
         time,
         standing: Standing {
