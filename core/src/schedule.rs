@@ -12,8 +12,10 @@ pub struct Instant {
     pub time: f64,
     /// What joins each side.
     pub arrivals: Both<f64>,
-    /// What is withdrawn from each side, if it is there.
+    /// What is to be withdrawn from each side.
     pub withdrawals: Both<f64>,
+    /// What of it was there and went, where a fight came so far.
+    pub went: Both<f64>,
     /// The numbers of the phases that begin.
     pub phases: Vec<u8>,
     /// What holds from then on.
@@ -60,6 +62,7 @@ fn instant(engagement: &Engagement, phases: &[usize], time: f64) -> Instant {
         time,
         arrivals: Both::of(|side| sum(side, 1.0)),
         withdrawals: Both::of(|side| sum(side, -1.0)),
+        went: Both::default(),
         phases: beginning.map(|phase| phase.number).collect(),
         conditions: conditions(engagement, &begun, time),
     }

@@ -6,10 +6,12 @@
 
 mod crossing;
 mod exponential;
+mod solution;
 
 use crate::double::Double;
 use crate::sides::{Both, Side};
 use exponential::{Exponential, ONE_OVER};
+pub use solution::Part;
 use std::cell::{Cell, OnceCell};
 
 /// A linear system, from the strengths at its start.
@@ -176,21 +178,6 @@ impl LinearSystem {
     /// Its parts, for the working: what comes in, what each side loses of itself, what each loses for each of the enemy.
     pub fn parts(&self) -> (Both<f64>, Both<f64>, Both<f64>) {
         (self.inflow, self.own, self.by_enemy)
-    }
-
-    /// Each strength as a steady part and one for each exponential, for the working; `None` where an eigenvalue is 0 or
-    /// both agree, and the solution has other terms.
-    pub fn exponentials(&self) -> Option<Both<[f64; 3]>> {
-        let [high, low] = self.eigenvalues;
-        if high == 0.0 || low == 0.0 || self.delta == 0.0 {
-            return None;
-        }
-        // The first derivative is the sum of both parts, each over its eigenvalue a part of the strength.
-        let parts = self.first_parts();
-        Some(Both::of(|side| {
-            let (rising, falling) = (parts[0][side] / high, parts[1][side] / low);
-            [self.start[side] - rising - falling, rising, falling]
-        }))
     }
 
     /// Its eigenvalues, the greater first.

@@ -187,7 +187,7 @@ impl Run {
 
     /// What happens at an instant, arrivals first.
     fn arrive(&mut self, place: usize) {
-        let instant = &self.instants[place];
+        let instant = &mut self.instants[place];
         for side in Side::BOTH {
             let ledger = &mut self.ledger[side];
             self.left[side] += instant.arrivals[side];
@@ -196,6 +196,7 @@ impl Run {
             let going = instant.withdrawals[side].min(self.left[side]);
             self.left[side] -= going;
             ledger.withdrawn += going;
+            instant.went[side] = going;
         }
     }
 

@@ -43,7 +43,7 @@ pub fn timeline(statement: &Statement, fight: &Fight) -> Vec<Moment> {
         .filter(|(_, instant)| instant.time <= end)
     {
         let before = place.checked_sub(1).map(|before| &trajectory.instants[before]);
-        let parts = happenings(statement, trajectory, instant, before);
+        let parts = happenings(statement, instant, before);
         if !parts.is_empty() {
             let what = parts
                 .iter()
@@ -76,12 +76,7 @@ fn moment(statement: &Statement, trajectory: &Trajectory, time: f64, what: Strin
 }
 
 /// Each thing that happens at an instant, in words and as a mark.
-fn happenings(
-    statement: &Statement,
-    trajectory: &Trajectory,
-    instant: &Instant,
-    before: Option<&Instant>,
-) -> Vec<(String, String)> {
+fn happenings(statement: &Statement, instant: &Instant, before: Option<&Instant>) -> Vec<(String, String)> {
     let mut parts = Vec::new();
     let flow_before = before.map_or(Both::default(), |before| before.conditions.flow);
     for side in Side::BOTH {
@@ -107,7 +102,7 @@ fn happenings(
         let asked = instant.withdrawals[side];
         if asked > 0.0 {
             let name = &statement.names[side];
-            let there = withdrawn_at(trajectory, instant.time, side);
+            let there = instant.went[side];
             let short = if there < asked * (1.0 - 1e-12) {
                 format!(", of {} that were to go: no more were there", strength(asked))
             } else {
@@ -120,19 +115,6 @@ fn happenings(
         }
     }
     parts
-}
-
-/// How many of `side` went at the time `time`.
-fn withdrawn_at(trajectory: &Trajectory, time: f64, side: Side) -> f64 {
-    let place = trajectory
-        .stretches
-        .iter()
-        .position(|stretch| stretch.from == time);
-    let after = place.map_or(0.0, |place| trajectory.stretches[place].ledger[side].withdrawn);
-    let before = place
-        .and_then(|place| place.checked_sub(1))
-        .map(|place| &trajectory.stretches[place]);
-    after - before.map_or(0.0, |stretch| stretch.ledger[side].withdrawn)
 }
 
 /// The force ratio, and what each side loses per unit of time.
@@ -168,4 +150,33 @@ fn ending(statement: &Statement, fight: &Fight) -> Option<String> {
         (Breaks::Neither, Ended::Unfinished) => "not worked out further".into(),
         (Breaks::Neither, _) => return None,
     })
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::fight::{Effort, fight};
+    use crate::pairs::Pairs;
+    use crate::statement::Values;
+
+    /// A withdrawal at which the fight ends begins no stretch: it was said that nobody had gone.
+    #[test]
+    fn who_leaves_at_the_end_is_counted() {
+        let sides = "x.start=400&x.fire=none&y.start=100&y.fire=none&x.name=Tarn&y.name=Osk";
+        for (later, words) in [
+            ("y.join=-30@5&until=5", "30 leave Osk"),
+            (
+                "y.join=-150@5",
+                "100 leave Osk, of 150 that were to go: no more were there",
+            ),
+            ("y.join=-30@0,-30@5&until=9", "30 leave Osk"),
+        ] {
+            let link = format!("{sides}&{later}");
+            let statement = Statement::read(&Pairs::parse(&link)).expect("it is one");
+            let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+            let moments = timeline(&statement, &fight);
+            let at_five = moments.iter().find(|moment| moment.time == 5.0);
+            assert_eq!(at_five.map(|moment| moment.what.as_str()), Some(words), "{link}");
+        }
+    }
 }

@@ -8,7 +8,7 @@ use super::times;
 use super::working::{WorkingLine, area};
 use crate::conditions::Conditions;
 use crate::fight::{Effort, fight};
-use crate::linear_system::LinearSystem;
+use crate::linear_system::{LinearSystem, Part};
 use crate::motion::Motion;
 use crate::outcome::{Method, Outcome};
 use crate::piece::Piece;
@@ -27,14 +27,20 @@ pub(super) fn lines(statement: &Statement, outcome: &Outcome) -> Vec<WorkingLine
         return lines;
     };
     let moments = timeline(statement, &fight);
+    let happens_at = |time: f64| {
+        let moment = moments.iter().find(|moment| moment.time == time)?;
+        Some(line("", format!("At {}: {}", moment.at, moment.what), None))
+    };
+    let moved = moved_at_end(trajectory);
     for (place, stretch) in trajectory.stretches.iter().enumerate() {
-        if let Some(moment) = moments
-            .iter()
-            .find(|moment| moment.time == stretch.from && place > 0)
-        {
-            lines.push(line("", format!("At {}: {}", moment.at, moment.what), None));
-        }
-        lines.extend(stretch_lines(statement, trajectory, stretch, place));
+        lines.extend(happens_at(stretch.from).filter(|_| place > 0));
+        let is_last = place + 1 == trajectory.stretches.len();
+        let end = trajectory.end.filter(|_| is_last && moved.is_none());
+        lines.extend(stretch_lines(statement, stretch, place, end));
+    }
+    if let (Some(time), Some(end)) = (moved, trajectory.end) {
+        lines.extend(happens_at(time));
+        lines.push(line("left", "After that there are", Some(strengths(end))));
     }
     lines.extend(end_lines(statement, trajectory, outcome));
     lines
@@ -60,11 +66,25 @@ fn letters(statement: &Statement) -> String {
     )
 }
 
+/// When the fight ended, where at that very moment somebody still came or went.
+fn moved_at_end(trajectory: &Trajectory) -> Option<f64> {
+    let end = trajectory.ends().filter(|end| *end > 0.0)?;
+    let last = trajectory.instants.iter().find(|instant| instant.time == end)?;
+    let moves = |side: &Side| last.arrivals[*side] > 0.0 || last.went[*side] > 0.0;
+    Side::BOTH.iter().any(moves).then_some(end)
+}
+
+/// How many are left of each side.
+fn strengths(left: Both<f64>) -> Math {
+    both(|side| equal(&[letter(NAMES[side]), number(left[side])]))
+}
+
+/// The lines of a stretch, which hands over the strengths `end`, its own where there are none.
 fn stretch_lines(
     statement: &Statement,
-    trajectory: &Trajectory,
     stretch: &Stretch,
     place: usize,
+    end: Option<Both<f64>>,
 ) -> Vec<WorkingLine> {
     let unit = statement.unit;
     let until = match stretch.to {
@@ -86,15 +106,9 @@ fn stretch_lines(
     lines.extend(method(stretch));
     if let Some(to) = stretch.to {
         let length = to - stretch.from;
-        let last = place + 1 == trajectory.stretches.len();
-        let end = if last {
-            trajectory.end.unwrap_or_default()
-        } else {
-            stretch.strengths_at(length)
-        };
-        let hands = both(|side| equal(&[letter(NAMES[side]), number(end[side])]));
+        let hands = strengths(end.unwrap_or_else(|| stretch.strengths_at(length)));
         let words = format!("At its end, t = {}, it hands over", number(length).text);
-        lines.push(line(if last { "left" } else { "" }, words, Some(hands)));
+        lines.push(line(if end.is_some() { "left" } else { "" }, words, Some(hands)));
     }
     lines
 }
@@ -244,22 +258,35 @@ fn linear(system: &LinearSystem) -> Vec<WorkingLine> {
     math.mathml += &number(low).mathml;
     math.text += &format!(", {}", number(low).text);
     let words = "It is linear, and solved in closed form by the exponentials of its eigenvalues";
-    let mut lines = vec![line("", words, Some(math))];
-    if let Some(parts) = system.exponentials() {
-        let strength = |side: Side| {
-            let term = |part: f64, value: f64| {
-                times(&[
-                    number(part),
-                    function("exp", &times(&[number(value), letter("t")])),
-                ])
-            };
-            let [steady, rising, falling] = parts[side];
-            let sum = plus(&[number(steady), term(rising, high), term(falling, low)]);
-            equal(&[letter(NAMES[side]), sum])
+    let solution = system.solution();
+    let strength = |side: Side| {
+        let parts: Vec<Math> = solution[side].iter().map(part).collect();
+        let sum = if parts.is_empty() {
+            number(0.0)
+        } else {
+            plus(&parts)
         };
-        lines.push(line("", "Its strengths are", Some(both(strength))));
+        equal(&[letter(NAMES[side]), sum])
+    };
+    vec![
+        line("", words, Some(math)),
+        line("", "Its strengths are", Some(both(strength))),
+    ]
+}
+
+/// number · tⁿ · e^(λt), without what is 1.
+fn part(part: &Part) -> Math {
+    let mut factors = vec![number(part.number)];
+    if part.power > 0 {
+        factors.push(power(&letter("t"), f64::from(part.power)));
     }
-    lines
+    if part.eigenvalue != 0.0 {
+        factors.push(function("exp", &times(&[number(part.eigenvalue), letter("t")])));
+    }
+    match &factors[..] {
+        [only] => only.clone(),
+        _ => times(&factors),
+    }
 }
 
 fn end_lines(statement: &Statement, trajectory: &Trajectory, outcome: &Outcome) -> Vec<WorkingLine> {
@@ -324,5 +351,68 @@ fn who(statement: &Statement, outcome: &Outcome) -> String {
         crate::outcome::Breaks::X => format!("{} breaks first", statement.names.x),
         crate::outcome::Breaks::Y => format!("{} breaks first", statement.names.y),
         _ => "Both break at the same moment".into(),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::pairs::Pairs;
+
+    fn texts(link: &str) -> Vec<String> {
+        let statement = Statement::read(&Pairs::parse(link)).expect(link);
+        let outcome = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
+        let lines = lines(&statement, &outcome);
+        let texts = lines.iter().map(WorkingLine::text);
+        texts.map(|text| text.replace('\u{a0}', " ")).collect()
+    }
+
+    /// A stretch hands over what it leaves, and not also what comes at that very moment.
+    #[test]
+    fn who_comes_as_the_clock_ends_it_comes_after_the_last_stretch() {
+        let texts =
+            texts("x.start=400&x.rate=1&y.start=1000&y.fire=none&y.join=64@2&until=2&x.name=Tarn&y.name=Osk");
+        let place = |text: &str| texts.iter().position(|line| line.contains(text));
+        let (hands, joins) = (
+            place("hands over: x = 400, y = 200"),
+            place("At 2 h: 64 join Osk"),
+        );
+        let left = place("After that there are: x = 400, y = 264");
+        assert!(hands.is_some() && hands < joins && joins < left, "{texts:#?}");
+    }
+
+    /// A linear stretch shows its strengths in time also where an eigenvalue is 0 or both agree: they had no formula.
+    #[test]
+    fn every_linear_stretch_has_its_formula() {
+        let sides = "x.start=100&y.start=50&y.fire=none";
+        for (terms, formula) in [
+            // One eigenvalue 0: x gains 2 an hour, y fades.
+            (
+                "x.fire=none&y.wastage=0.5&x.flow=2@0/",
+                "x = 100 + 2·t, y = 50·exp((−0.5)·t)",
+            ),
+            // Both 0: what x's growing number takes of y.
+            (
+                "x.rate=0.01&x.flow=2@0/",
+                "x = 100 + 2·t, y = 50 + (−1)·t + (−0.01)·t²",
+            ),
+            // Both the same.
+            (
+                "x.rate=0.01&x.wastage=0.5&y.wastage=0.5",
+                "x = 100·exp((−0.5)·t), y = 50·exp((−0.5)·t) + (−1)·t·exp((−0.5)·t)",
+            ),
+            // Apart: y = 50·e^(−t) − 2·(e^(−0.5·t) − e^(−t)).
+            (
+                "x.rate=0.01&x.wastage=0.5&y.wastage=1",
+                "x = 100·exp((−0.5)·t), y = (−2)·exp((−0.5)·t) + 52·exp((−1)·t)",
+            ),
+        ] {
+            let texts = texts(&format!("{sides}&{terms}&until=9"));
+            let shown = texts.iter().find(|line| line.starts_with("Its strengths are"));
+            assert_eq!(
+                shown.map(String::as_str),
+                Some(format!("Its strengths are: {formula}").as_str())
+            );
+        }
     }
 }
