@@ -5,81 +5,31 @@
 //! work. The middles of the coarse cells are looked at too, for islands. Every flip is then closed in on along the edge of the
 //! lattice that it crosses, and the crossings are chained to lines.
 
+mod closing;
 mod contour;
 mod lattice;
 mod line;
+mod point;
 mod wanted;
 
 pub use lattice::FINEST;
+pub use point::Second;
 pub use wanted::Miss;
 
 use super::MOST_EVALUATIONS;
 use super::span::{Why, span};
-use super::story::{Sample, Story, Worst};
+use super::story::{Sample, Story};
 use crate::family::{Family, Span, Tally};
 use crate::fight::Effort;
 use crate::goals::Goal;
 use crate::order::sort_by;
-use crate::outcome::{Breaks, Ended, Outcome, ToTheLast};
+use crate::outcome::Outcome;
 use crate::pairs::Pairs;
-use crate::sides::Both;
 use crate::slots::{Slot, slots};
 use crate::statement::{Statement, Values};
 use lattice::{At, BASE, Lattice};
 use line::{Edge, Traced, ends};
-
-/// How near, as a part of the axis, a flip is closed in on.
-const PRECISION: f64 = 1e-12;
-
-/// How near an outcome must come to another, as a part of what is committed, to be taken as where it flips.
-const TOUCHES: f64 = 1e-12;
-
-/// What is read of an outcome besides its story.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-pub enum Second {
-    /// When it ends in a break.
-    Time,
-    /// What is left of X.
-    LeftX,
-    /// What is left of Y.
-    LeftY,
-    /// Y's losses for each of X's.
-    ExchangeRatio,
-}
-
-impl Second {
-    /// All of them, in the order of the page.
-    pub const ALL: [Second; 4] = [Second::Time, Second::LeftX, Second::LeftY, Second::ExchangeRatio];
-}
-
-/// What is known of one point.
-#[derive(Clone, Copy, Debug, PartialEq)]
-struct Point {
-    class: u8,
-    near: f64,
-    /// What is missing, where conditions are not met.
-    worst: Option<Worst>,
-    time: Option<f64>,
-    end: Both<f64>,
-    ratio: Option<f64>,
-}
-
-impl Point {
-    /// What is told apart: how it comes out, and whether all conditions are met.
-    fn told(&self) -> (u8, bool) {
-        (self.class, self.worst.is_none())
-    }
-
-    fn second(&self, second: Second) -> Option<f64> {
-        let value = match second {
-            Second::Time => self.time,
-            Second::LeftX => Some(self.end.x),
-            Second::LeftY => Some(self.end.y),
-            Second::ExchangeRatio => self.ratio,
-        };
-        value.filter(|value| value.is_finite())
-    }
-}
+use point::{ASIDE, Point, is_tie};
 
 /// A line along which the outcome flips.
 #[derive(Clone, Debug, PartialEq)]
@@ -356,8 +306,10 @@ impl Chart {
         let mut outcome = self.outcome(values);
         if is_tie(&outcome) {
             // A tie is a line without width: a place on it counts to one of its sides.
-            let [width, _] = self.spans.map(|span| span.high - span.low);
-            let aside = self.outcome([values[0] + width * ASIDE, values[1]]);
+            let Span { low, high } = self.spans[0];
+            let step = (high - low) * ASIDE;
+            let beside = if values[0] + step <= high { step } else { -step };
+            let aside = self.outcome([values[0] + beside, values[1]]);
             if !is_tie(&aside) {
                 outcome = aside;
             }
@@ -380,62 +332,6 @@ impl Chart {
             self.stories.len() - 1
         });
         u8::try_from(place).unwrap_or(u8::MAX)
-    }
-
-    /// The part of an edge at which the outcome flips, or conditions begin to be met.
-    ///
-    /// How near the outcome is to the other falls smoothly to 0 on either side, with a bend between them: so the next guess
-    /// is by the secant through the last two points of one side, and every fourth a halving, which is all that helps at a
-    /// jump. What is missing of a condition is known on one side alone: a guess from there that went too far is tried again a
-    /// hair less far.
-    fn close_in(&mut self, kind: Kind, edge: Edge) -> f64 {
-        let [begin, end] = ends(edge);
-        let (from, to) = (parts(begin), parts(end));
-        let (Some(first), Some(last)) = (self.lattice.get(begin), self.lattice.get(end)) else {
-            return 0.5;
-        };
-        let along = |part: f64| {
-            [
-                from[0] + (to[0] - from[0]) * part,
-                from[1] + (to[1] - from[1]) * part,
-            ]
-        };
-        // Where the story changes too, conditions mostly do because of it.
-        let one_sided = kind == Kind::Met && first.class == last.class;
-        let near = |point: &Point| match point.worst {
-            _ if !one_sided => point.near,
-            Some(worst) => worst.part,
-            None => f64::NAN,
-        };
-        let (mut low, mut high) = (Nearing::from(0.0, near(&first)), Nearing::from(1.0, near(&last)));
-        let narrow = PRECISION * FINEST as f64;
-        let mut on_low = false;
-        for round in 0..90 {
-            let (from, to) = (low.now.0, high.now.0);
-            if to - from <= narrow {
-                break;
-            }
-            let from_low = if one_sided { first.worst.is_some() } else { on_low };
-            let side = if from_low { &low } else { &high };
-            let guess = side.meets().map(|guess| match guess {
-                _ if one_sided && from_low && guess == to => to - narrow,
-                _ if one_sided && !from_low && guess == from => from + narrow,
-                _ => guess,
-            });
-            let guess = guess.filter(|guess| round % 4 != 3 && from < *guess && *guess < to);
-            let part = guess.unwrap_or(from + (to - from) / 2.0);
-            let point = self.point(along(part));
-            if near(&point) < TOUCHES && guess.is_some() {
-                return part;
-            }
-            on_low = match kind {
-                Kind::Flip => point.class == first.class,
-                Kind::Met => point.worst.is_none() == first.worst.is_none(),
-            };
-            let moved = if on_low { &mut low } else { &mut high };
-            moved.come_to(part, near(&point));
-        }
-        low.now.0 + (high.now.0 - low.now.0) / 2.0
     }
 
     /// How it comes out in a cell of the finest lattice; `None` before the coarsest is filled.
@@ -533,42 +429,6 @@ impl Chart {
             .map(|chain| chain.into_iter().map(value).collect())
             .collect()
     }
-}
-
-/// The last two points on one side of a flip: where, and how near the outcome is to the other.
-struct Nearing {
-    before: Option<(f64, f64)>,
-    now: (f64, f64),
-}
-
-impl Nearing {
-    fn from(part: f64, near: f64) -> Nearing {
-        Nearing {
-            before: None,
-            now: (part, near),
-        }
-    }
-
-    fn come_to(&mut self, part: f64, near: f64) {
-        self.before = Some(self.now);
-        self.now = (part, near);
-    }
-
-    /// Where the line through both comes to 0.
-    fn meets(&self) -> Option<f64> {
-        let before = self.before?;
-        let slope = (before.1 - self.now.1) / (before.0 - self.now.0);
-        Some(self.now.0 - self.now.1 / slope).filter(|meets| meets.is_finite())
-    }
-}
-
-/// How far, as a part of the axis, another place is looked at in place of one on a tie.
-const ASIDE: f64 = 1e-9;
-
-/// Whether the sides are even, to rounding, and not past their lines from the beginning.
-fn is_tie(outcome: &Outcome) -> bool {
-    let parity = outcome.ended == Ended::Limit && outcome.to_the_last == Some(ToTheLast::Parity);
-    parity || outcome.breaks == Breaks::Both && outcome.time > Some(0.0)
 }
 
 fn parts(at: At) -> [f64; 2] {
