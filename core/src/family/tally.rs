@@ -1,6 +1,6 @@
 //! How much the fights of one question took together, so that it ends whatever its numbers are.
 
-use crate::fight::{Effort, fight};
+use crate::fight::{Effort, Fight, fight};
 use crate::outcome::Outcome;
 use crate::terms::Engagement;
 
@@ -20,9 +20,14 @@ impl Tally {
     /// One fight more.
     pub fn fight(&mut self, engagement: &Engagement, effort: Effort) -> Outcome {
         let fight = fight(engagement, effort);
+        self.count(&fight);
+        fight.outcome
+    }
+
+    /// One more that was fought elsewhere.
+    pub fn count(&mut self, fight: &Fight) {
         self.fights += 1;
         self.evaluations += u64::from(fight.work.evaluations()) + PIECE * fight.outcome.pieces.len() as u64;
-        fight.outcome
     }
 
     /// Both together.

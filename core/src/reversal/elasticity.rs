@@ -3,7 +3,8 @@
 //! By exact derivatives where there are formulas (`exact`), else by differences that are well-conditioned.
 
 use super::exact::derivatives;
-use crate::fight::{Effort, fight};
+use crate::family::Tally;
+use crate::fight::Effort;
 use crate::outcome::Outcome;
 use crate::sides::{Both, Side};
 use crate::slots::Slot;
@@ -52,6 +53,7 @@ impl Search {
         outcome: &Outcome,
         slot: &Slot,
         now: f64,
+        tally: &mut Tally,
     ) -> bool {
         let here = logs(outcome);
         if !self.begun {
@@ -73,7 +75,7 @@ impl Search {
         let value = now * libm::exp(place);
         let look = if slot.limits.hold(value) {
             engagement.put(slot.place, value);
-            let other = fight(engagement, Effort::Ending).outcome;
+            let other = tally.fight(engagement, Effort::Ending);
             engagement.put(slot.place, now);
             is_alike(outcome, &other).then(|| logs(&other))
         } else {
@@ -153,6 +155,7 @@ fn is_alike(one: &Outcome, other: &Outcome) -> bool {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::fight::fight;
     use crate::pairs::Pairs;
     use crate::slots::slots;
     use crate::statement::{Statement, Values};
@@ -224,7 +227,8 @@ mod tests {
                     begun: true,
                     ..Search::default()
                 };
-                while search.step(&mut engagement, &outcome, &slot, now) {}
+                let mut tally = Tally::default();
+                while search.step(&mut engagement, &outcome, &slot, now, &mut tally) {}
                 for (which, (exact, near)) in exact.into_iter().zip(search.found).enumerate() {
                     let Some((exact, near)) = exact.zip(near) else {
                         continue;

@@ -139,6 +139,8 @@ impl Reversal {
     pub fn new(pairs: &Pairs, statement: &Statement) -> Reversal {
         let engagement = statement.engagement(&Values::new());
         let fight = fight(&engagement, Effort::Ending);
+        let mut tally = Tally::default();
+        tally.count(&fight);
         Reversal {
             aim: Aim::of(&fight.outcome),
             measure: Measure::of(&engagement, &fight.outcome),
@@ -148,10 +150,7 @@ impl Reversal {
             change: None,
             small: elasticity::Search::default(),
             entries: Vec::new(),
-            tally: Tally {
-                fights: 1,
-                evaluations: 0,
-            },
+            tally,
             most: MOST_EVALUATIONS,
             left_out: 0,
             outcome: fight.outcome,
@@ -276,10 +275,10 @@ impl Reversal {
             return false;
         };
         self.engagement.put(slot.place, other);
-        let work = fight(&self.engagement, Effort::Ending).work;
+        let fight = fight(&self.engagement, Effort::Ending);
         self.engagement.put(slot.place, now);
-        self.tally.fights += 1;
-        work.steps > 0
+        self.tally.count(&fight);
+        fight.work.steps > 0
     }
 
     /// One try at writing a value that was found.
@@ -355,9 +354,11 @@ impl Reversal {
     }
 
     fn small_change(&mut self, slot: Slot, now: f64) {
-        self.tally.fights += 1;
-        let goes_on = self.small.step(&mut self.engagement, &self.outcome, &slot, now);
-        if goes_on {
+        let tally = &mut self.tally;
+        if self
+            .small
+            .step(&mut self.engagement, &self.outcome, &slot, now, tally)
+        {
             self.stage = Some(Stage::Elasticity);
             return;
         }
