@@ -3,6 +3,7 @@
 use aftercount_core::demo::DEMO;
 use aftercount_core::fight::{Effort, Fight, fight};
 use aftercount_core::golden;
+use aftercount_core::outcome::Outcome;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::picture::{self, Picture};
 use aftercount_core::statement::{Statement, Values};
@@ -17,12 +18,28 @@ pub struct Worked {
     pub orbit: Picture,
 }
 
+/// What `link` states.
+///
+/// # Panics
+/// Where it cannot be read.
+pub fn read(link: &str) -> (Pairs, Statement) {
+    let pairs = Pairs::parse(link);
+    let statement = Statement::read(&pairs).unwrap_or_else(|problems| panic!("{link}: {problems:?}"));
+    (pairs, statement)
+}
+
+/// The outcome with a number changed, by the name of its slot.
+pub fn outcome_with(statement: &Statement, slot: &str, value: f64) -> Outcome {
+    let values = Values::from([(slot.to_owned(), value)]);
+    fight(&statement.engagement(&values), Effort::Outcome).outcome
+}
+
 /// Works `link` out.
 ///
 /// # Panics
 /// Where it cannot be worked out.
 pub fn worked(link: &str) -> Worked {
-    let statement = Statement::read(&Pairs::parse(link)).unwrap_or_else(|why| panic!("{link}: {why:?}"));
+    let (_, statement) = read(link);
     let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
     let strength = picture::strength(&statement, &fight).expect("a trajectory was asked for");
     let orbit = picture::orbit(&statement, &fight).expect("a trajectory was asked for");

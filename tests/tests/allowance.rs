@@ -1,19 +1,12 @@
 //! Questions whose fights are dear end all the same, and say that they were cut short.
 
 use aftercount_core::asked::{Chart, Inquiry};
-use aftercount_core::pairs::Pairs;
 use aftercount_core::reversal::Reversal;
-use aftercount_core::statement::Statement;
 use aftercount_core::words;
+use aftercount_tests::shown::read;
 
 const LINK: &str = "x.start=600&x.fire=search&x.half=80&x.rate=0.06&x.break=0.3&x.wastage=0.01&y.start=400&y.fire=power&y.p=0.9\
                     &y.q=0.2&y.rate=0.02&y.break=0.5&y.flow=3@0/9";
-
-fn read(link: &str) -> (Pairs, Statement) {
-    let pairs = Pairs::parse(link);
-    let statement = Statement::read(&pairs).unwrap_or_else(|problems| panic!("{link}: {problems:?}"));
-    (pairs, statement)
-}
 
 /// All that is known is told, up to where it was looked.
 #[test]

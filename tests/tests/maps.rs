@@ -2,9 +2,9 @@
 
 use aftercount_core::answer::answer;
 use aftercount_core::asked::{Chart, FINEST, Second};
-use aftercount_core::pairs::Pairs;
 use aftercount_core::statement::Statement;
 use aftercount_core::words;
+use aftercount_tests::shown::read;
 use serde_json::Value;
 
 fn json(link: &str) -> Value {
@@ -14,8 +14,7 @@ fn json(link: &str) -> Value {
 }
 
 fn chart(link: &str) -> (Statement, Chart) {
-    let pairs = Pairs::parse(link);
-    let statement = Statement::read(&pairs).unwrap_or_else(|problems| panic!("{link}: {problems:?}"));
+    let (pairs, statement) = read(link);
     let mut chart = Chart::new(&pairs, &statement).expect("two numbers in question");
     while !chart.go_on(500) {}
     (statement, chart)
