@@ -84,6 +84,9 @@ pub struct Asked {
 /// Two values this near, as a part of the larger end of what was asked, are one in the story.
 const ONE: f64 = 1e-9;
 
+/// What is no wider than this, by the same measure, is there by rounding alone.
+const ROUNDING: f64 = 1e-12;
+
 impl End {
     /// The value.
     pub fn at(&self) -> f64 {
@@ -121,18 +124,19 @@ impl Segment {
                 story: to.story,
             });
         }
-        without_single_values(all, span.scale() * ONE)
+        without_single_values(all, span.scale())
     }
 }
 
-fn without_single_values(all: Vec<Segment>, width: f64) -> Vec<Segment> {
+fn without_single_values(all: Vec<Segment>, scale: f64) -> Vec<Segment> {
     let mut kept: Vec<Segment> = Vec::new();
     let count = all.len();
     for (place, segment) in all.into_iter().enumerate() {
         let inside = 0 < place && place + 1 < count;
+        let width = segment.to.at() - segment.from.at();
         // Both break there, or both fade.
-        let narrow = segment.to.at() - segment.from.at() <= width;
-        if inside && narrow && segment.story.prevails.is_none() {
+        let is_one = width <= ONE * scale && segment.story.prevails.is_none();
+        if inside && (is_one || width <= ROUNDING * scale) {
             continue;
         }
         match kept.last_mut() {

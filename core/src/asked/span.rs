@@ -15,6 +15,8 @@ pub enum Why {
     Asked,
     /// It is all that the number can be.
     Whole,
+    /// Nothing in the engagement says on what scale it counts.
+    NoScale,
     /// Up to four times the larger side.
     LargerSide,
     /// Up to ten times the number it has now.
@@ -70,8 +72,7 @@ fn within(slot: &Slot, scale: f64, why: Why, now: f64) -> (Span, Why) {
     let (high, why) = match (beyond, now != 0.0) {
         (false, _) => (scale, why),
         (true, true) => (tenfold, Why::Now),
-        // Nothing in the engagement gives a scale.
-        (true, false) => (1.0, Why::Whole),
+        (true, false) => (1.0, Why::NoScale),
     };
     let high = if why == Why::Clock { high } else { rounded_up(high) };
     let limits = slot.limits;

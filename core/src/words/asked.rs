@@ -157,6 +157,7 @@ pub(super) fn why(why: Why) -> &'static str {
     match why {
         Why::Asked => "as asked",
         Why::Whole => "all that it can be",
+        Why::NoScale => "since nothing else stated says on what scale it counts",
         Why::LargerSide => "up to four times the larger side",
         Why::Now => "up to ten times what it is now",
         Why::EqualFire => {
