@@ -121,7 +121,7 @@ fn what_is_wanted_is_chosen_in_words_and_an_answer_is_put_into_the_field() {
     browser.click("#undo");
     assert_eq!(browser.settle(&link).breaks, "x");
     browser.write("sothat", "x.prevails,x.wins");
-    browser.wait_text("[id='sothat.problem']", "is no condition");
+    browser.wait_text("[id='sothat.problem']", "Condition 2: x.wins: is no condition");
     browser.assert_clean();
 }
 

@@ -99,7 +99,7 @@ impl Problems {
                 self.say(&beside, " ");
             }
             if let Some(item) = problem.item {
-                self.say(&beside, &format!("Row {item}: "));
+                self.say(&beside, &format!("{} {item}: ", item_of(key)));
             }
             self.tell(&beside, problem);
         }
@@ -182,6 +182,11 @@ impl Problems {
         // Text can always be appended to an element of our own.
         let _ = line.append_with_str_1(text);
     }
+}
+
+/// What an item of a key is: the conditions of `sothat` stand in one line.
+fn item_of(key: &str) -> &'static str {
+    if key == "sothat" { "Condition" } else { "Row" }
 }
 
 /// What a problem is of, in words, and the id of the field where it is put right.
