@@ -6,7 +6,7 @@ use aftercount_core::picture::{self, Picture, Role};
 use aftercount_core::sides::Side;
 use aftercount_core::statement::{Statement, Values};
 use aftercount_core::words::format::plain;
-use aftercount_web::draw::{Ink, Measured, UsualWidths, draw};
+use aftercount_web::draw::{Ink, Measure, Measured, UsualWidths, draw};
 use plotters::prelude::SVGBackend;
 use roxmltree::Document;
 
@@ -132,6 +132,45 @@ fn words_of_a_break_line_begin_clear_of_the_mark_that_moved_it() {
                 marks.iter().all(|mark| (at - f64::from(*mark)).abs() > 3.0),
                 "{join}: {:?} begins at {at}, marks at {marks:?}",
                 line.label
+            );
+        }
+    }
+}
+
+/// The words of an axis ran over the edge of a narrow picture where the names are long.
+#[test]
+fn the_words_of_the_axes_stay_within_the_picture() {
+    let long = "The%20second%20and%20the%20third%20of%20those%20that%20came%20over%20the%20hill";
+    let link = PLAIN
+        .replace("Ondrel", long)
+        .replace("Vessary", &format!("{long}s"));
+    let (strength, orbit) = pictures(&format!("{link}&counted=vehicles%20with%20their%20crews"));
+    let (width, height) = (300, 240);
+    for picture in [strength, orbit] {
+        let mut svg = String::new();
+        {
+            let mut backend = Measured::new(SVGBackend::with_string(&mut svg, (width, height)), UsualWidths);
+            draw(&mut backend, 1.0, &Ink::light(), &picture).expect("it can be drawn");
+        }
+        let document = Document::parse(&svg).expect("SVG is XML");
+        let words = document.descendants().filter(|node| node.has_tag_name("text"));
+        for node in words {
+            let number = |name: &str| -> f64 {
+                node.attribute(name)
+                    .and_then(|text| text.parse().ok())
+                    .expect(name)
+            };
+            let text = node.text().unwrap_or_default().trim();
+            let wide = UsualWidths.width(text, "serif", number("font-size"), true);
+            let left = match node.attribute("text-anchor") {
+                Some("end") => number("x") - wide,
+                Some("middle") => number("x") - wide / 2.0,
+                _ => number("x"),
+            };
+            assert!(
+                left >= -1.0 && left + wide <= f64::from(width) + 1.0,
+                "{text:?} stands from {left} to {}",
+                left + wide
             );
         }
     }

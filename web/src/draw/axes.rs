@@ -12,6 +12,8 @@ use plotters::style::text_anchor::{HPos, VPos};
 const NUMBERS: f64 = 12.5;
 /// The size of the words.
 const WORDS: f64 = 13.0;
+/// How far the words stay from the edges.
+const EDGE: f64 = 2.0;
 /// The length of a tick.
 const TICK: f64 = 5.0;
 /// The height under the field: the numbers, the words, and room for a finger on the reading line.
@@ -91,12 +93,12 @@ pub(crate) fn draw(pen: &mut Pen<'_>, field: &Layout, picture: &Picture) -> Draw
         false => (ink, ink),
     };
     let under = field.foot + TICK + NUMBERS + 7.0;
-    pen.label(
-        &picture.across.label,
-        (field.right, under),
-        words(across, HPos::Right),
-    )?;
-    pen.label(&picture.up.label, (2.0, 1.0), words(up, HPos::Left))
+    let (across, up) = (words(across, HPos::Right), words(up, HPos::Left));
+    // What is measured may be a name of sixty letters.
+    let label = pen.fitted(&picture.across.label, across, field.right - EDGE);
+    pen.label(&label, (field.right, under), across)?;
+    let label = pen.fitted(&picture.up.label, up, pen.size().0 - 2.0 * EDGE);
+    pen.label(&label, (EDGE, 1.0), up)
 }
 
 fn ticks_across(pen: &mut Pen<'_>, field: &Layout, axis: &Axis) -> Drawn {

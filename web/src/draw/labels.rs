@@ -241,12 +241,8 @@ impl Labels {
 
     fn set(&mut self, pen: &mut Pen<'_>, text: &str, hand: Hand, places: &[(Point, HPos, VPos)]) -> Drawn {
         let room = pen.size().0 - 6.0;
-        let text = fitting(
-            pen,
-            text,
-            hand,
-            room.min((self.field.right - self.field.left) * 0.8),
-        );
+        let room = room.min((self.field.right - self.field.left) * 0.8);
+        let text = pen.fitted(text, hand.at(HPos::Left, VPos::Top), room);
         // Measured once: a canvas takes its time over it.
         let width = pen.width(&text, hand.at(HPos::Left, VPos::Top));
         let mut best: Option<(f64, Point, Set, Box)> = None;
@@ -289,20 +285,6 @@ impl Labels {
         let curves: f64 = covered.map(|(_, weight)| weight).sum();
         (if inside { 0.0 } else { 1e4 }) + OTHER_WORDS * taken.count() as f64 + curves
     }
-}
-
-/// The text, shortened with an ellipsis where it is wider than its room.
-fn fitting(pen: &Pen<'_>, text: &str, hand: Hand, room: f64) -> String {
-    let set = hand.at(HPos::Left, VPos::Top);
-    if pen.width(text, set) <= room {
-        return text.to_owned();
-    }
-    let letters: Vec<char> = text.chars().collect();
-    let shortened = |count: usize| letters[..count].iter().chain(['…'].iter()).collect::<String>();
-    let count = (1..letters.len())
-        .rev()
-        .find(|count| pen.width(&shortened(*count), set) <= room);
-    shortened(count.unwrap_or(1))
 }
 
 /// Points along a line at most some pixels apart, so that a long straight stroke is not missed.

@@ -177,6 +177,19 @@ impl<'a> Pen<'a> {
             .map_or_else(guess, |width| f64::from(width) / self.scale)
     }
 
+    /// The text, shortened with an ellipsis where it is wider than its room.
+    pub(crate) fn fitted(&self, text: &str, set: Set, room: f64) -> String {
+        if self.width(text, set) <= room {
+            return text.to_owned();
+        }
+        let letters: Vec<char> = text.chars().collect();
+        let shortened = |count: usize| letters[..count].iter().chain(['…'].iter()).collect::<String>();
+        let count = (1..letters.len())
+            .rev()
+            .find(|count| self.width(&shortened(*count), set) <= room);
+        shortened(count.unwrap_or(1))
+    }
+
     /// Left, top, right and foot of a label.
     pub(crate) fn extent(&self, text: &str, at: Point, set: Set) -> (f64, f64, f64, f64) {
         set.extent(self.width(text, set), at)
