@@ -104,6 +104,24 @@ fn a_value_is_put_into_its_field_as_one_step() {
     browser.assert_clean();
 }
 
+/// What takes long: search against a power law with wastage and reserves, where every look is integrated.
+const SLOW: &str = "x.start=600&x.fire=search&x.half=100&x.rate=0.04&x.wastage=0.01&y.start=400&y.fire=power&y.p=0.9&y.q=0.3&y.rate=0.05&\
+     y.join=30@2,20@4,10@5&v=1";
+
+/// Once nothing can be worked out any more, the line went on to say that it was being worked out.
+#[test]
+fn a_search_that_is_left_off_is_not_said_to_go_on() {
+    let browser = Browser::opened(SLOW);
+    browser.write("x.start", "610");
+    browser.settle(&changed(SLOW, "x.start", "610"));
+    browser.write("x.start", "x");
+    browser.wait_state("stale");
+    let left = "return [...document.querySelectorAll('#nearest, #reversal, #reversal-working')]
+                  .every((part) => part.ariaBusy !== 'true' && !part.textContent.includes('eing worked out'));";
+    assert_eq!(browser.script(left, vec![]), true);
+    browser.assert_clean();
+}
+
 /// By the page's own stopwatch: the search in slices, and the rest of a keystroke beside it.
 #[test]
 fn the_search_never_holds_the_page_up() {
@@ -113,13 +131,10 @@ fn the_search_never_holds_the_page_up() {
            if (entry.name === 'aftercount.reversal') window.slices.push(entry.duration);
          })).observe({entryTypes: ['measure']});",
     );
-    // What takes long: search against a power law with wastage and reserves, where every look is integrated.
-    let link = "x.start=600&x.fire=search&x.half=100&x.rate=0.04&x.wastage=0.01&y.start=400&y.fire=power&y.p=0.9&y.q=0.3&\
-                y.rate=0.05&y.join=30@2,20@4,10@5&v=1";
-    browser.open(link);
-    browser.settle(link);
+    browser.open(SLOW);
+    browser.settle(SLOW);
     browser.write("x.start", "610");
-    browser.settle(&changed(link, "x.start", "610"));
+    browser.settle(&changed(SLOW, "x.start", "610"));
     wait_for_reversal(&browser);
     let slices = browser.script("return window.slices;", vec![]);
     let slices: Vec<f64> = slices

@@ -113,6 +113,7 @@ impl Asking {
         self.inquiry = None;
         self.mapping.stop();
         self.dom.set_attribute("asked", "aria-busy", "false");
+        self.dom.set_text("asked-working", "");
         self.dom.set_shown("asked-brief", false);
     }
 

@@ -80,6 +80,8 @@ impl Mapping {
     /// Leaves off: the text has changed to one that cannot be worked out.
     pub(crate) fn stop(&mut self) {
         self.done = true;
+        self.dom.set_attribute("mapped", "aria-busy", "false");
+        self.dom.set_text("map-working", "");
     }
 
     pub(crate) fn is_done(&self) -> bool {

@@ -48,9 +48,14 @@ impl Reversals {
 
     /// Leaves off: the text has changed to one that cannot be worked out.
     pub(crate) fn stop(&mut self) {
-        self.search = None;
+        if self.search.take().is_some() {
+            // What was being worked out does not come any more.
+            self.dom.set_text("nearest", "");
+            self.dom.set_text("reversal-working", "");
+        }
         self.rows.clear();
         self.line = None;
+        self.mark_busy(false);
         self.dom.mark_root("data-reversal", None);
     }
 
@@ -112,14 +117,18 @@ impl Reversals {
         self.line = Some(line);
         self.show_table(&words::heads(&statement));
         self.mark(false);
+        self.mark_busy(working);
+        let state = if working { "working" } else { "done" };
+        self.dom.mark_root("data-reversal", Some(state));
+    }
+
+    fn mark_busy(&self, working: bool) {
     }
 
     fn mark(&self, working: bool) {
         let busy = if working { "true" } else { "false" };
         self.dom.set_attribute("reversal", "aria-busy", busy);
         self.dom.set_attribute("nearest", "aria-busy", busy);
-        let state = if working { "working" } else { "done" };
-        self.dom.mark_root("data-reversal", Some(state));
     }
 
     fn show_table(&self, heads: &[String]) {
