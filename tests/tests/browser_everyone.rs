@@ -309,6 +309,37 @@ fn on_a_small_screen_the_sentence_stays_and_tables_are_cards() {
     browser.assert_clean();
 }
 
+/// The tables of what it would take rolled sideways there, without any hint that more stood beside.
+#[test]
+fn on_a_small_screen_the_tables_of_answers_are_cards() {
+    let browser = Browser::start();
+    browser.screen(Screen::SMALL);
+    let one = changed(&changed(DEMO, "x.start", "600?"), "sothat", "x.prevails");
+    let two = changed(&one, "y.start", "400?");
+    for link in [&one, &two] {
+        browser.open(link);
+        browser.settle(link);
+        browser.wait(
+            "all reversals are found",
+            "return document.documentElement.dataset.reversal === 'done';",
+        );
+        let rolls = "document.querySelectorAll('#takes details').forEach((part) => part.open = true);
+            const shown = [...document.querySelectorAll('#takes .roll')].filter((part) => part.checkVisibility());
+            return [shown.length, ...shown.filter((part) => part.scrollWidth > part.clientWidth)
+              .map((part) => part.firstChild.id)];";
+        let count = if link == &one { 4 } else { 2 };
+        assert_eq!(
+            browser.script(rolls, vec![]),
+            serde_json::json!([count]),
+            "{link}"
+        );
+        let head = "const cell = document.querySelector('#reversal-table td[data-head]');
+            return getComputedStyle(cell, '::before').content !== 'none' && cell.dataset.head;";
+        assert_eq!(browser.script(head, vec![]), "now");
+    }
+    browser.assert_clean();
+}
+
 /// Nothing moves by itself, so there is nothing to take out where a reader wants no movement.
 #[test]
 fn nothing_moves_by_itself() {

@@ -66,7 +66,7 @@ fn a_number_is_asked_for_and_its_outcome_stays() {
             && is_shown(&browser, "pictures")
             && is_drawn(&browser, "asked-picture")
     );
-    assert!(browser.text("#asked-story").contains("crosses over"));
+    assert!(browser.text("#asked-story").contains("a crossing"));
     assert!(
         browser
             .text("#asked-where")

@@ -273,6 +273,9 @@ pub(crate) fn show_table(dom: &Dom, id: &str, content: &Table) {
     let Some(table) = dom.element(id) else { return };
     table.set_text_content(None);
     let mut build = Build { dom, row: None };
+    if let Some(caption) = build.part(&table, "caption") {
+        caption.set_text_content(Some(&content.caption));
+    }
     if let Some(head) = build.part(&table, "thead") {
         build.row_in(&head);
         for text in &content.heads {
@@ -284,8 +287,8 @@ pub(crate) fn show_table(dom: &Dom, id: &str, content: &Table) {
     };
     for row in &content.rows {
         build.row_in(&body);
-        for text in row {
-            build.cell("td", text, &[]);
+        for (text, head) in row.iter().zip(&content.heads) {
+            build.cell("td", text, &[("data-head", head)]);
         }
     }
 }

@@ -141,7 +141,8 @@ impl Reversals {
             append(&table, &part);
             Some(part)
         };
-        let (Some(head), Some(body)) = (part("thead"), part("tbody")) else {
+        caption.set_text_content(Some(words::CAPTION));
+        let (Some(caption), Some(head), Some(body)) = (part("caption"), part("thead"), part("tbody")) else {
             return;
         };
         if let Some(line) = self.dom.make("tr", "") {

@@ -25,7 +25,8 @@ pub fn asked(statement: &Statement, asked: &Asked) -> Option<Picture> {
         .fold(0.0, f64::max);
     seen.first()?;
     let name = slot::name(statement, &asked.slot);
-    let across = Axis::between(named(statement, asked, &name), shown.low, shown.high, 6);
+    let named = slot::name_with_unit(statement, &asked.slot);
+    let across = Axis::between(named, shown.low, shown.high, 6);
     let up = Axis::new(
         format!("{} left at the end", statement.counted),
         if highest > 0.0 { highest * 1.08 } else { 1.0 },
@@ -46,16 +47,6 @@ pub fn asked(statement: &Statement, asked: &Asked) -> Option<Picture> {
         names: statement.names.clone(),
         ground: None,
     })
-}
-
-/// The name of the number with its unit, where the numbers on the axis do not carry it.
-fn named(statement: &Statement, asked: &Asked, name: &str) -> String {
-    let unit = slot::unit(statement, asked.slot.unit);
-    if unit.is_empty() {
-        name.to_owned()
-    } else {
-        format!("{name} ({unit})")
-    }
 }
 
 /// What is shown of the span: as asked, else no more than twice as far as anything happens.
@@ -151,7 +142,11 @@ fn summary(statement: &Statement, asked: &Asked, name: &str) -> String {
         Some((last, [])) => format!("the outcome changes at {last}"),
         Some((last, first)) => format!("the outcome changes at {} and {last}", first.join(", ")),
     };
-    format!("What is left of both sides at the end, against {name}: {what}.")
+    format!("{}: {what}.", against(name))
+}
+
+fn against(name: &str) -> String {
+    format!("What is left of both sides at the end, against {name}")
 }
 
 fn table(statement: &Statement, asked: &Asked, shown: Span) -> Table {
@@ -176,9 +171,11 @@ fn table(statement: &Statement, asked: &Asked, shown: Span) -> Table {
     let at = |part: f64| shown.low + (shown.high - shown.low) * part;
     let mut samples: Vec<&Sample> = steps(STEPS).filter_map(|part| near(at(part))).collect();
     samples.dedup_by(|a, b| a.value == b.value);
+    let name = slot::name(statement, &asked.slot);
     Table {
+        caption: against(&name),
         heads: vec![
-            slot::name(statement, &asked.slot),
+            name,
             format!("{} ({counted})", names.x),
             format!("{} ({counted})", names.y),
             "what happens".into(),

@@ -89,14 +89,6 @@ pub fn map(statement: &Statement, chart: &Chart, second: Option<Second>) -> Opti
     }
     let [one, other] = chart.slots();
     let [across, up] = chart.spans();
-    let named = |slot: &crate::slots::Slot| {
-        let (name, unit) = (slot::name(statement, slot), slot::unit(statement, slot.unit));
-        if unit.is_empty() {
-            name
-        } else {
-            format!("{name} ({unit})")
-        }
-    };
     let mut lines: Vec<Line> = second.map_or(Vec::new(), |second| contours(chart, second));
     lines.extend(chart.flips().into_iter().map(|flip| Line {
         role: Role::Flip,
@@ -117,8 +109,8 @@ pub fn map(statement: &Statement, chart: &Chart, second: Option<Second>) -> Opti
         label: "now".into(),
     });
     Some(Picture {
-        across: Axis::between(named(one), across.low, across.high, 6),
-        up: Axis::between(named(other), up.low, up.high, 5),
+        across: Axis::between(slot::name_with_unit(statement, one), across.low, across.high, 6),
+        up: Axis::between(slot::name_with_unit(statement, other), up.low, up.high, 5),
         lines,
         spots: spots.into_iter().collect(),
         summary: sentence(statement, chart),

@@ -80,6 +80,8 @@ pub struct Spot {
 /// The same picture as a table.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Table {
+    /// What it is, for whoever has it without its page.
+    pub caption: String,
     /// The heads of the columns, with their units.
     pub heads: Vec<String>,
     /// The rows of cells.

@@ -227,6 +227,7 @@ fn table(statement: &Statement, trajectory: &Trajectory, end: Both<f64>) -> Tabl
     let row = |at: &(f64, f64)| vec![six(at.0), six(at.1)];
     let rows = points.iter().map(row).collect();
     Table {
+        caption: "One side against the other".into(),
         heads: vec![
             format!("{} ({})", names.x, statement.counted),
             format!("{} ({})", names.y, statement.counted),

@@ -228,6 +228,7 @@ fn table(statement: &Statement, trajectory: &Trajectory, shown: f64) -> Table {
         vec![when, six(at.x), six(at.y)]
     };
     Table {
+        caption: "Strength over time".into(),
         heads,
         rows: rows.into_iter().map(row).collect(),
     }

@@ -198,10 +198,11 @@ pub fn table(statement: &Statement, asked: &Asked) -> Table {
             number(segment.from.at()),
             number(segment.to.at()),
             happens(statement, &segment.story),
-            until(&segment.to).into(),
+            what(&segment.to).into(),
         ]
     });
     Table {
+        caption: format!("What happens, by {}", slot::name(statement, &asked.slot)),
         heads: ["from", "to", "what happens", "at the upper end"]
             .map(String::from)
             .to_vec(),
@@ -216,11 +217,16 @@ pub fn met_table(statement: &Statement, asked: &Asked) -> Option<Table> {
         vec![
             number(met.from.at()),
             number(met.to.at()),
-            until(&met.from).into(),
-            until(&met.to).into(),
+            what(&met.from).into(),
+            what(&met.to).into(),
         ]
     });
     Some(Table {
+        caption: format!(
+            "Where {}, by {}",
+            goals(statement, &asked.goals),
+            slot::name(statement, &asked.slot)
+        ),
         heads: ["from", "to", "at the lower end", "at the upper end"]
             .map(String::from)
             .to_vec(),
@@ -229,11 +235,11 @@ pub fn met_table(statement: &Statement, asked: &Asked) -> Option<Table> {
 }
 
 /// What an end is.
-fn until(end: &End) -> &'static str {
+fn what(end: &End) -> &'static str {
     match end {
         End::Edge(_) => "the edge of what was asked",
-        End::Crossing(Boundary { by_formula: true, .. }) => "crosses over, by the state equation",
-        End::Crossing(Boundary { jump: true, .. }) => "jumps",
-        End::Crossing(_) => "crosses over",
+        End::Crossing(Boundary { by_formula: true, .. }) => "a crossing, by the state equation",
+        End::Crossing(Boundary { jump: true, .. }) => "a crossing, at which what is left jumps",
+        End::Crossing(_) => "a crossing",
     }
 }

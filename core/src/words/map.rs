@@ -164,11 +164,8 @@ pub fn table(statement: &Statement, chart: &Chart) -> Table {
     let place = |step: usize| step * FINEST / STEPS;
     let part = |step: usize| step as f64 / STEPS as f64;
     let values = |step: usize| chart.values([part(step), part(step)]);
-    let mut heads = vec![format!(
-        "{} ↓, {} →",
-        slot::name(statement, other),
-        slot::name(statement, one)
-    )];
+    let [across, up] = [one, other].map(|slot| slot::name(statement, slot));
+    let mut heads = vec![format!("{up} ↓, {across} →")];
     heads.extend((0..=STEPS).map(|step| slot::six_with_unit(statement, one.unit, values(step)[0])));
     let row = |up: usize| {
         let cells = (0..=STEPS).map(|across| {
@@ -185,6 +182,7 @@ pub fn table(statement: &Statement, chart: &Chart) -> Table {
         std::iter::once(first).chain(cells).collect()
     };
     Table {
+        caption: format!("How it comes out, by {across} and {up}"),
         heads,
         rows: (0..=STEPS).rev().map(row).collect(),
     }

@@ -19,6 +19,9 @@ first. The smallest change stands first: strengths, rates and lengths by per cen
 fractions and exponents by themselves; what is 0 now has no per cent, and comes behind them. The columns at the right say by \
 how many per cent what is left, and the time, change for 1 per cent of the number.";
 
+/// The caption of the table.
+pub const CAPTION: &str = "What would reverse the outcome, each number changed alone";
+
 /// A row of the table.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Row {

@@ -44,6 +44,16 @@ pub fn name(statement: &Statement, slot: &Slot) -> String {
     }
 }
 
+/// The same with its unit where that is short, for what is measured along an axis.
+pub fn name_with_unit(statement: &Statement, slot: &Slot) -> String {
+    let (name, unit) = (name(statement, slot), unit(statement, slot.unit));
+    if unit.is_empty() {
+        name
+    } else {
+        format!("{name} ({unit})")
+    }
+}
+
 fn part_in_words(part: Part) -> &'static str {
     match part {
         Part::Start => "strength at the start",
