@@ -1,7 +1,7 @@
 //! What a number in question must be: worked out in slices, so that typing is never held up, and put on the page.
 
 use crate::canvas;
-use crate::dom::{Dom, append, append_words, set};
+use crate::dom::{Dom, append, set};
 use crate::draw::Ink;
 use crate::mapping::Mapping;
 use crate::outcome::show_table;
@@ -119,12 +119,9 @@ impl Asking {
 
     /// Works for a slice, and shows what there is to be shown; whether there is something new to draw.
     pub(crate) fn go_on(&mut self, pairs: &Pairs) -> bool {
-        let _watch = Stopwatch::start(&self.dom, ASKING);
-        let clock = self.dom.window.performance();
-        let now = || clock.as_ref().map_or(0.0, web_sys::Performance::now);
-        let from = now();
+        let watch = Stopwatch::start(&self.dom, ASKING);
         let mut done = self.is_done();
-        while !done && now() - from < SLICE {
+        while !done && watch.elapsed() < SLICE {
             done = match &mut self.inquiry {
                 Some(inquiry) => inquiry.go_on(AT_ONCE),
                 None => self.mapping.go_on(AT_ONCE),
@@ -191,10 +188,7 @@ impl Asking {
         let sentence = words::sentence(statement, answer);
         dom.set_text("asked-sentence", &sentence);
         show_in_brief(dom, statement, &sentence);
-        if let Some(place) = dom.element("asked-where") {
-            place.set_text_content(None);
-            append_words(dom, &place, &words::where_looked(statement, answer));
-        }
+        dom.set_words("asked-where", &words::where_looked(statement, answer));
         show_table(dom, "asked-story", &words::table(statement, answer));
         let met = words::met_table(statement, answer).filter(|table| !table.rows.is_empty());
         dom.set_shown("asked-met-part", met.is_some());
@@ -214,15 +208,10 @@ impl Asking {
         let Some(select) = self.dom.typed::<HtmlSelectElement>("sothat.choice") else {
             return;
         };
-        let chosen = select.selected_index();
-        select.set_text_content(None);
-        for choice in goal::choices(statement) {
-            if let Some(option) = self.dom.make("option", &choice.words) {
-                set(&option, "value", &choice.text);
-                append(&select, &option);
-            }
-        }
-        select.set_selected_index(chosen.max(0));
+        let chosen = select.selected_index().max(0);
+        let choices = goal::choices(statement).into_iter();
+        let choices = choices.map(|choice| (choice.text, choice.words));
+        self.dom.set_choices(&select, choices, chosen);
     }
 
     /// The conditions with the chosen one added.

@@ -36,6 +36,31 @@ impl Dom {
         self.element(id)?.dyn_into().ok()
     }
 
+    /// Puts words into an element, what stands between grave accents as code.
+    pub(crate) fn set_words(&self, id: &str, words: &str) {
+        if let Some(place) = self.element(id) {
+            place.set_text_content(None);
+            append_words(self, &place, words);
+        }
+    }
+
+    /// Gives a list these choices, each a value and its words, of which one is chosen.
+    pub(crate) fn set_choices(
+        &self,
+        list: &HtmlSelectElement,
+        choices: impl Iterator<Item = (String, String)>,
+        chosen: i32,
+    ) {
+        list.set_text_content(None);
+        for (value, words) in choices {
+            if let Some(option) = self.make("option", &words) {
+                set(&option, "value", &value);
+                append(list, &option);
+            }
+        }
+        list.set_selected_index(chosen);
+    }
+
     /// Sets the text of an element where it differs, so that unchanged live regions stay silent.
     pub(crate) fn set_text(&self, id: &str, text: &str) {
         if let Some(element) = self.element(id)

@@ -2,7 +2,7 @@
 
 use crate::asking::show_in_brief;
 use crate::canvas;
-use crate::dom::{Dom, append, append_words, set};
+use crate::dom::Dom;
 use crate::draw::{self, Ink, Layout};
 use crate::outcome::show_table;
 use aftercount_core::asked::{Chart, Second, near_text};
@@ -122,10 +122,7 @@ impl Mapping {
         let sentence = words::sentence(statement, chart);
         dom.set_text("map-sentence", &sentence);
         show_in_brief(dom, statement, &sentence);
-        if let Some(place) = dom.element("map-where") {
-            place.set_text_content(None);
-            append_words(dom, &place, &words::where_looked(statement, chart));
-        }
+        dom.set_words("map-where", &words::where_looked(statement, chart));
         if let Some(picture) = &self.picture {
             dom.set_text("map-words", &picture.summary);
             show_table(dom, "map-table", &picture.table);
@@ -253,18 +250,14 @@ impl Mapping {
         else {
             return;
         };
-        select.set_text_content(None);
         let names = Second::ALL.map(|second| words::second(statement, second));
-        for name in std::iter::once("none".to_owned()).chain(names) {
-            if let Some(option) = self.dom.make("option", &name) {
-                set(&option, "value", &name);
-                append(&select, &option);
-            }
-        }
+        let names = std::iter::once("none".to_owned()).chain(names);
         let chosen = self
             .second
             .and_then(|second| Second::ALL.iter().position(|one| *one == second));
-        select.set_selected_index(chosen.map_or(0, |place| place as i32 + 1));
+        let chosen = chosen.map_or(0, |place| place as i32 + 1);
+        self.dom
+            .set_choices(&select, names.map(|name| (name.clone(), name)), chosen);
     }
 }
 

@@ -74,12 +74,9 @@ impl Reversals {
         let Some(search) = &mut self.search else {
             return false;
         };
-        let _watch = Stopwatch::start(&self.dom, REVERSAL);
-        let clock = self.dom.window.performance();
-        let now = || clock.as_ref().map_or(0.0, web_sys::Performance::now);
-        let from = now();
+        let watch = Stopwatch::start(&self.dom, REVERSAL);
         // One fight at a time: some take as long as a slice.
-        while now() - from < SLICE {
+        while watch.elapsed() < SLICE {
             if !search.step() {
                 self.show();
                 return false;
@@ -117,15 +114,15 @@ impl Reversals {
         self.line = Some(line);
         self.show_table(&words::heads(&statement));
         self.mark(false);
+    }
+
+    fn mark(&self, working: bool) {
         self.mark_busy(working);
         let state = if working { "working" } else { "done" };
         self.dom.mark_root("data-reversal", Some(state));
     }
 
     fn mark_busy(&self, working: bool) {
-    }
-
-    fn mark(&self, working: bool) {
         let busy = if working { "true" } else { "false" };
         self.dom.set_attribute("reversal", "aria-busy", busy);
         self.dom.set_attribute("nearest", "aria-busy", busy);
@@ -141,10 +138,10 @@ impl Reversals {
             append(&table, &part);
             Some(part)
         };
-        caption.set_text_content(Some(words::CAPTION));
         let (Some(caption), Some(head), Some(body)) = (part("caption"), part("thead"), part("tbody")) else {
             return;
         };
+        caption.set_text_content(Some(words::CAPTION));
         if let Some(line) = self.dom.make("tr", "") {
             for text in heads {
                 self.cell(&line, "th", text, "");

@@ -1,6 +1,6 @@
 //! A rate entered as the per cent of the enemy that it takes per unit of time at the start.
 
-use crate::dom::{Dom, append_words};
+use crate::dom::Dom;
 use crate::form;
 use crate::unit_change::unit;
 use aftercount_core::pairs::Pairs;
@@ -64,9 +64,8 @@ impl Shares {
     pub(crate) fn show_waiting(&mut self) {
         if let Some((side, problem)) = self.waiting.take() {
             let id = format!("{}.share", side.letter());
-            if let Some(place) = self.dom.element(&format!("{id}.problem")) {
-                append_words(&self.dom, &place, &format!("{problem}."));
-            }
+            self.dom
+                .set_words(&format!("{id}.problem"), &format!("{problem}."));
             self.dom.set_shown(&format!("{id}.problem"), true);
             self.dom.set_attribute(&id, "aria-invalid", "true");
         }

@@ -16,6 +16,7 @@ pub(crate) const DRAW: &str = "aftercount.draw";
 pub(crate) struct Stopwatch {
     clock: Option<Performance>,
     name: &'static str,
+    began: f64,
 }
 
 impl Stopwatch {
@@ -27,8 +28,18 @@ impl Stopwatch {
             // A browser that keeps no marks measures nothing, and loses nothing.
             let _ = clock.mark(name);
         }
-        Stopwatch { clock, name }
+        let began = now(clock.as_ref());
+        Stopwatch { clock, name, began }
     }
+
+    /// How long it has been running, in milliseconds; 0 without a clock.
+    pub(crate) fn elapsed(&self) -> f64 {
+        now(self.clock.as_ref()) - self.began
+    }
+}
+
+fn now(clock: Option<&Performance>) -> f64 {
+    clock.map_or(0.0, Performance::now)
 }
 
 impl Drop for Stopwatch {

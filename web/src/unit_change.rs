@@ -1,6 +1,6 @@
 //! A changed unit of time: every number stands as it was and means something else, so the page offers to restate them.
 
-use crate::dom::{Dom, append_words};
+use crate::dom::Dom;
 use aftercount_core::converted::{carry_time, converted};
 use aftercount_core::keys::{Kind, find};
 use aftercount_core::pairs::Pairs;
@@ -69,10 +69,7 @@ impl UnitChange {
     }
 
     fn say(&self, words: &str) {
-        self.dom.set_text("unit.changed", "");
-        if let Some(place) = self.dom.element("unit.changed") {
-            append_words(&self.dom, &place, words);
-        }
+        self.dom.set_words("unit.changed", words);
     }
 }
 

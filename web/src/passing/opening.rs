@@ -114,10 +114,7 @@ fn take_up(page: &mut Page, text: &str) -> After {
 }
 
 fn say(dom: &Dom, why: &str) {
-    dom.set_text(SAID, "");
-    if let Some(said) = dom.element(SAID) {
-        crate::dom::append_words(dom, &said, why);
-    }
+    dom.set_words(SAID, why);
     dom.set_shown(SAID, !why.is_empty());
 }
 

@@ -1,7 +1,7 @@
 //! The trajectory as a table for spreadsheets: which times, and how it is written.
 
 use super::{offer_text, with_finding};
-use crate::dom::{Dom, append_words};
+use crate::dom::Dom;
 use crate::listen::After;
 use crate::page::Page;
 use aftercount_core::passing::table::{Request, Signs, table};
@@ -43,9 +43,7 @@ pub(super) fn clear_problem(dom: &Dom) {
 }
 
 fn say(dom: &Dom, why: &str) {
-    if let Some(problem) = dom.element(PROBLEM) {
-        append_words(dom, &problem, why);
-    }
+    dom.set_words(PROBLEM, why);
     dom.set_shown(PROBLEM, true);
 }
 
