@@ -8,6 +8,10 @@ declare const aftercount: {
   readonly version: string;
 };
 
+type AftercountBreaks = "x" | "y" | "both" | "neither";
+
+type AftercountEnded = "break" | "clock" | "limit" | "equilibrium" | "growth" | "withdrawn" | "unfinished";
+
 type AftercountMethod = "closed form" | "quadrature" | "integration";
 
 /** What every answer to a text that can be worked out has. */
@@ -26,13 +30,13 @@ interface AftercountWords {
 }
 
 interface AftercountOutcome extends AftercountWords {
-  /** The answers to numbers in question, as on the command line; only where the text has such. */
-  asked?: object[];
+  /** The answer to a number in question, or to two; only where the text has such. */
+  asked?: [AftercountAsked | AftercountMap];
   /** Who breaks first. */
-  breaks: "x" | "y" | "both" | "neither";
+  breaks: AftercountBreaks;
   /** When, in the text's unit of time; null if nobody breaks. */
   time: number | null;
-  ended: "break" | "clock" | "limit" | "equilibrium" | "growth" | "withdrawn" | "unfinished";
+  ended: AftercountEnded;
   /** Who would be left if no side broke and no clock ran. */
   to_the_last: "x" | "y" | "parity" | null;
   /** When a side that fades without ever reaching 0 falls below one. */
@@ -50,10 +54,88 @@ interface AftercountOutcome extends AftercountWords {
 
 /** Where a number in question has no value now there is an answer to the question, and no outcome: `breaks` tells. */
 interface AftercountQuestion extends AftercountWords {
-  asked: object[];
+  asked: [AftercountAsked | AftercountMap];
   breaks?: undefined;
   x?: undefined;
   y?: undefined;
+}
+
+/** The answer to one number in question. */
+interface AftercountAsked {
+  /** Which number: `x.start`, `y.join.1.time`. */
+  slot: string;
+  /** The whole story along the number, in order. */
+  outcomes: AftercountStretch[];
+  /** Every interval on which all conditions of `sothat` hold; only where the text has conditions. */
+  met?: AftercountInterval[];
+  /** Where they hold nowhere, the value that comes nearest. */
+  nearest?: AftercountNearest;
+  /** Only where looking was ended early, since each fight took so much work. */
+  cut_short?: true;
+}
+
+/** A stretch of values with the same outcome. */
+interface AftercountStretch {
+  from: number;
+  to: number;
+  breaks: AftercountBreaks;
+  ended: AftercountEnded;
+  /** The side whose enemy alone breaks, or that is left in the limit. */
+  prevails: "x" | "y" | null;
+}
+
+interface AftercountInterval {
+  from: number;
+  to: number;
+  /** Whether the conditions begin to hold there, or it is the edge of what was asked. */
+  from_is: "crossing" | "edge";
+  to_is: "crossing" | "edge";
+}
+
+interface AftercountNearest {
+  value: number;
+  /** Which condition is missed most, from 1. */
+  condition: number;
+  /** By how much, in the unit of that condition. */
+  short: number;
+}
+
+/** The answer to two numbers in question; points and values are of the first and of the second. */
+interface AftercountMap {
+  slots: [string, string];
+  /** Where they were looked at. */
+  from: [number, number];
+  to: [number, number];
+  /** The lines along which the outcome flips. */
+  flips: AftercountFlip[];
+  /** Only where looking was ended early, since each fight took so much work. */
+  cut_short?: true;
+  /** The edge of where all conditions of `sothat` hold; only where the text has conditions. */
+  met?: AftercountEdge[];
+  /** The part of the map on which they hold, from 0 to 1. */
+  met_share?: number;
+  /** Where they were found to hold nowhere, the place that comes nearest. */
+  nearest?: AftercountNearestPlace;
+}
+
+interface AftercountFlip {
+  /** Who breaks first on its two sides. */
+  between: [AftercountBreaks, AftercountBreaks];
+  /** In order along the line. */
+  points: [number, number][];
+}
+
+interface AftercountEdge {
+  /** In order along the line: the conditions hold on the left hand. */
+  points: [number, number][];
+}
+
+interface AftercountNearestPlace {
+  values: [number, number];
+  /** Which condition is missed most, from 1. */
+  condition: number;
+  /** By how much, in the unit of that condition. */
+  short: number;
 }
 
 interface AftercountSide {
