@@ -26,6 +26,19 @@ fn saved(browser: &Browser, press: &str, ending: &str) -> String {
     String::from_utf8(browser.downloaded(ending)).expect("UTF-8")
 }
 
+/// A message with these addresses in it, a sentence to each.
+fn message(addresses: &[&str]) -> String {
+    let sentences = addresses
+        .iter()
+        .map(|link| format!("Look at wiki/a.html#{link}\n"));
+    format!("Good morning,\n{}", sentences.collect::<String>())
+}
+
+/// The mark of a text, as the page says it.
+fn mark(link: &str) -> String {
+    text_mark(&Pairs::parse(link))
+}
+
 #[test]
 fn what_is_odd_about_what_was_opened_is_said() {
     let browser = Browser::opened(LINK);
@@ -34,7 +47,7 @@ fn what_is_odd_about_what_was_opened_is_said() {
     let other = changed(LINK, "x.start", "870");
     paste(&browser, &file.replace("x.start=850", "x.start=870"));
     assert_eq!(browser.settle(&other), native(&other));
-    let [names, has] = [LINK, &other].map(|link| text_mark(&Pairs::parse(link)));
+    let [names, has] = [LINK, &other].map(mark);
     browser.wait_text(
         "#opened-said",
         &format!("names the text mark {names}, and the text in it has {has}"),
@@ -43,10 +56,20 @@ fn what_is_odd_about_what_was_opened_is_said() {
     paste(&browser, &file);
     browser.settle(LINK);
     assert_eq!(browser.text("#opened-said"), "", "nothing is odd about it");
-    paste(&browser, &format!("Either a.html#{LINK}\nor b.html#{other}"));
+    paste(&browser, &message(&[LINK, &other]));
     browser.wait_text("#opened-said", "Another engagement stands there too");
     browser.write("x.start", "860");
     assert_eq!(browser.text("#opened-said"), "", "that was of another text");
+    // Without its end a text goes on into the message.
+    let cut = LINK
+        .replace("&v=1", "&y.name=Vessary")
+        .replace("&y.name=Vessary&", "&");
+    paste(&browser, &message(&[&format!("{cut} Regards, A. Person")]));
+    browser.wait_text(
+        "#opened-said",
+        "No v=1 ends this text, so y.name took in all that followed: “Vessary Regards, A. Person”.",
+    );
+    assert_eq!(browser.value("y.name"), "Vessary Regards, A. Person");
     // By mail.
     paste(
         &browser,
@@ -68,7 +91,7 @@ fn a_finding_without_its_text_is_known_by_the_mark() {
     browser.press("#copy-dialog [data-pass=close]", Key::Enter);
     let words = format!(
         "a finding of the text with the mark {}, and not that text",
-        text_mark(&Pairs::parse(LINK))
+        mark(LINK)
     );
     for text in [finding.as_str().expect("a text"), &table, &picture] {
         paste(&browser, "");

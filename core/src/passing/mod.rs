@@ -10,5 +10,6 @@ pub mod received;
 pub mod remarks;
 pub mod saved;
 pub mod table;
+mod taken_in;
 pub mod times;
 pub mod words;

@@ -33,7 +33,7 @@ const STOPS: &[char] = &['.', ',', ';', ':', '!'];
 /// Letters that are not seen, which some programs put into long words so that they can break.
 const UNSEEN: &[char] = &['\u{200b}', '\u{2060}', '\u{feff}', '\u{ad}'];
 /// Keys whose text may end in any mark.
-const FREE: &[&str] = &["title", "note", "marking", "counted", "x.name", "y.name"];
+pub(super) const FREE: &[&str] = &["title", "note", "marking", "counted", "x.name", "y.name"];
 
 /// The engagement in `text`.
 ///

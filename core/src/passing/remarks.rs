@@ -2,7 +2,7 @@
 
 use super::mailed::without_quoting;
 use super::received::{LONGEST, begins_with_key, received, without_entities};
-use super::saved;
+use super::{saved, taken_in};
 use crate::mark::{is_mark, text_mark};
 use crate::pairs::Pairs;
 use crate::statement::Statement;
@@ -24,7 +24,8 @@ pub fn beside(text: &str, opened: &Pairs) -> Option<String> {
         )
     });
     let another = holds_another(&text, &mark).then(|| ANOTHER.to_owned());
-    let remarks: Vec<String> = named.into_iter().chain(another).collect();
+    let taken_in = taken_in::taken_in(&text, opened);
+    let remarks: Vec<String> = named.into_iter().chain(another).chain(taken_in).collect();
     (!remarks.is_empty()).then(|| remarks.join(" "))
 }
 
