@@ -23,6 +23,7 @@ pub mod keys;
 pub mod laws;
 pub mod ledger;
 pub mod linear_system;
+pub mod list_part;
 pub mod mark;
 pub mod motion;
 mod nearest_double;

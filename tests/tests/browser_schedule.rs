@@ -220,3 +220,76 @@ fn continue_from_here_is_one_step_that_undo_takes_back() {
     assert_eq!(browser.value("x.lost"), "");
     browser.assert_clean();
 }
+
+/// Whatever is typed into a cell stays in it: a mark that parts the list there is wrong in that cell alone.
+#[test]
+fn a_comma_in_a_cell_stays_in_the_cell() {
+    let link = changed(LINK, "y.flow", "5@2/8");
+    let browser = Browser::opened(&link);
+    browser.script("document.getElementById('y.more').open = true;", vec![]);
+    let rows = || {
+        browser.script(
+            "return document.querySelectorAll('[id=\"y.join.body\"] tr').length;",
+            vec![],
+        )
+    };
+    for (key, id, typed, before, says) in [
+        (
+            "y.join",
+            "y.join.1.size",
+            "1,000",
+            "64",
+            "Row 1: 1,000@4: 1,000: write 1000, without marks for thousands.",
+        ),
+        (
+            "y.join",
+            "y.join.2.time",
+            "6,5",
+            "6",
+            "Row 2: 20@6,5: 6,5: write 6.5, with a point.",
+        ),
+        (
+            "y.join",
+            "y.join.1.size",
+            "64@4, 80@5",
+            "64",
+            "Row 1: 64@4, 80@5@4: 64@4, 80@5: write a number",
+        ),
+        (
+            "y.flow",
+            "y.flow.1.from",
+            "2/8",
+            "2",
+            "Row 1: 5@2/8/8: 2/8: write a number",
+        ),
+    ] {
+        write_cell(&browser, id, typed);
+        browser.leave();
+        browser.wait_text(&format!("[id='{key}.problem']"), says);
+        assert_eq!(cell(&browser, id), typed, "it stays as it was typed");
+        assert_eq!(rows(), 2, "no row came");
+        browser.wait_state("stale");
+        assert_eq!(
+            browser.text("#problem-list a"),
+            format!(
+                "Vessary: {}, row {}",
+                if key == "y.join" {
+                    "reserves"
+                } else {
+                    "steady reinforcement"
+                },
+                &id[7..8]
+            )
+        );
+        // The text carries it: whoever opens it sees the same.
+        let text = browser.link();
+        browser.open(&text);
+        browser.wait_text(&format!("[id='{key}.problem']"), says);
+        assert_eq!((browser.link(), cell(&browser, id).as_str()), (text, typed));
+        browser.script("document.getElementById('y.more').open = true;", vec![]);
+        write_cell(&browser, id, before);
+        assert_eq!(browser.settle(&link), native(&link));
+    }
+    browser.picture("comma-in-cell");
+    browser.assert_clean();
+}

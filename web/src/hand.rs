@@ -2,7 +2,7 @@
 //! they would cover the label, so that nothing moves when they come, and stand behind the field in the order of the keys.
 
 use crate::dom::{Dom, append, set};
-use crate::list_text::{List, items};
+use crate::list_text::List;
 use crate::lists::Cell;
 use aftercount_core::in_doubt::{Limits, asked, doubted};
 use aftercount_core::keys;
@@ -65,14 +65,7 @@ impl Place {
                 let default = keys::find(key).and_then(|row| row.default);
                 (pairs.get(key).unwrap_or_default().to_owned(), default)
             }
-            Place::Part(cell) => {
-                let all = pairs.get(&cell.key).unwrap_or_default();
-                let parts = List::of_key(&cell.key)
-                    .zip(items(all).get(cell.row).copied())
-                    .map(|(list, item)| list.split(item));
-                let part = parts.and_then(|parts| parts.get(cell.part).map(|part| part.trim().to_owned()));
-                (part.unwrap_or_default(), None)
-            }
+            Place::Part(cell) => (cell.text(pairs).unwrap_or_default(), None),
         }
     }
 

@@ -4,6 +4,7 @@
 use crate::dom::{Dom, append, set};
 use crate::form;
 use crate::list_text::{List, items, swapped, with_item, with_more, without_item};
+use aftercount_core::list_part;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::sides::Side;
 use web_sys::{Element, HtmlButtonElement, HtmlInputElement};
@@ -63,11 +64,19 @@ impl Cell {
         })
     }
 
-    /// The text of the list once this cell holds `text`.
+    /// What was typed into this cell; `None` where the text has none.
+    pub(crate) fn text(&self, pairs: &Pairs) -> Option<String> {
+        let list = List::of_key(&self.key)?;
+        let item = *items(pairs.get(&self.key)?).get(self.row)?;
+        let part = *list.split(item).get(self.part)?;
+        Some(list_part::typed(part.trim()).into_owned())
+    }
+
+    /// The text of the list once this cell holds `text`. Whatever that is, it stays in this cell.
     pub(crate) fn rewritten(&self, pairs: &Pairs, text: &str) -> Option<String> {
         let list = List::of_key(&self.key)?;
         let all = pairs.get(&self.key).unwrap_or_default();
-        let item = list.with_part(items(all).get(self.row)?, self.part, text);
+        let item = list.with_part(items(all).get(self.row)?, self.part, &list_part::written(text));
         Some(with_item(all, self.row, &item))
     }
 
@@ -203,6 +212,7 @@ fn fill_row(dom: &Dom, list: List, key: &str, row: usize, count: usize, item: &s
         let id = id(key, row, part);
         if let Some(input) = dom.typed::<HtmlInputElement>(&id) {
             // A blank typed at an end is no change to see, and must not move the caret.
+            let text = list_part::typed(text.trim());
             if input.value().trim() != text.trim() {
                 input.set_value(text.trim());
             }

@@ -4,6 +4,7 @@ use super::name::Name;
 use super::reader::Reader;
 use super::wrong::{of_separator, plain, read_quantity};
 use crate::keys::LARGEST;
+use crate::list_part::typed;
 use crate::problem::Problem;
 use crate::quantity::Quantity;
 use crate::terms::{Flow, Join};
@@ -71,7 +72,7 @@ impl<'a> Reader<'a> {
         if let Some(place) = self.place(key) {
             let problem = Problem {
                 item: Some(item),
-                ..Problem::at(&key.to_string(), found, problem)
+                ..Problem::at(&key.to_string(), &typed(found), problem)
             };
             self.problems.push((place, problem));
         }
@@ -96,7 +97,12 @@ impl<'a> Reader<'a> {
                 return Some(quantity);
             }
             Err(_) if text.trim().is_empty() => format!("has no {}: {}", part.name, part.form),
-            Err(problem) => of_mark(text).unwrap_or_else(|| format!("`{}`: {problem}", text.trim())),
+            Err(problem) => {
+                let typed = typed(text.trim());
+                // What is said of an escape would help nobody who has typed a comma.
+                let problem = read_quantity(&typed).err().unwrap_or(problem);
+                of_mark(text).unwrap_or_else(|| format!("`{typed}`: {problem}"))
+            }
         };
         self.report_item(key, item.0, item.1, problem);
         None
