@@ -84,6 +84,11 @@ impl Limits {
             high: LARGEST,
         }
     }
+
+    /// Whether a number is within them.
+    pub(crate) fn hold(self, value: f64) -> bool {
+        value >= self.low && value <= self.high && !(self.above && value == self.low)
+    }
 }
 
 /// A quarter to either side of a number, outwards to a round one; `None` where nothing is left of that.

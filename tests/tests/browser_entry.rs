@@ -297,3 +297,65 @@ fn the_focus_is_never_under_the_sentence() {
     }
     browser.assert_clean();
 }
+
+/// A rate of another law is another thing: what stands in the open entry is what was meant, so the rate is worked out for it.
+#[test]
+fn a_rate_that_was_entered_as_per_cent_follows_the_law() {
+    let browser = Browser::opened(LINK);
+    let share = || browser.script("return document.getElementById('x.share').value;", vec![]);
+    let kept = || browser.text("[id='x.rate.kept']");
+    let enter = "const e = document.getElementById('x.share'); e.value = arguments[0];
+                 e.dispatchEvent(new Event('input', {bubbles: true}));";
+    browser.click("[id='x.share.open']");
+    browser.script(enter, vec![json!("6")]);
+    let aimed = changed(LINK, "x.rate", "0.0464");
+    assert_eq!(browser.settle(&aimed), native(&aimed));
+    // 6 % of 464 by 0.0464 of each of 600; by area fire 0.06 of what is left by 600.
+    browser.choose("x.fire", "area");
+    let area = changed(&changed(&aimed, "x.fire", "area"), "x.rate", "0.0001");
+    assert_eq!(browser.settle(&area), native(&area));
+    assert_eq!(
+        (share(), browser.value("x.rate").as_str()),
+        (json!("6"), "0.0001")
+    );
+    assert_eq!(kept(), "", "it was written for this law");
+    // What the law needs is missing: what was meant stands, and the number is still that of the other law.
+    browser.choose("x.fire", "search");
+    browser.wait_text("#problem-list", "x.half");
+    assert_eq!(
+        (share(), browser.value("x.rate").as_str()),
+        (json!("6"), "0.0001")
+    );
+    assert!(kept().contains("its unit is not"));
+    browser.write("x.half", "464");
+    assert_eq!(
+        (share(), browser.value("x.rate").as_str()),
+        (json!("6"), "0.0928")
+    );
+    assert_eq!(kept(), "");
+    let search = changed(&changed(&area, "x.fire", "search"), "x.rate", "0.0928");
+    let search = changed(&search, "x.half", "464");
+    assert_eq!(browser.settle(&search), native(&search));
+    // One choice was one step.
+    browser.click("#undo");
+    browser.click("#undo");
+    browser.settle(&area);
+
+    // A number that was typed as a rate is kept, and the page says so, until another is written by whatever means.
+    browser.write("x.rate", "0.05");
+    browser.choose("x.fire", "aimed");
+    assert_eq!(browser.value("x.rate"), "0.05");
+    assert!(kept().contains("its unit is not"));
+    let again = changed(&changed(&area, "x.fire", "aimed"), "x.rate", "0.05");
+    assert_eq!(browser.settle(&again), native(&again));
+    browser.choose("unit", "d");
+    browser.click("[id='unit.convert']");
+    assert_eq!(browser.value("x.rate"), "1.2");
+    assert!(
+        kept().contains("its unit is not"),
+        "restated, and still of another law"
+    );
+    browser.script(enter, vec![json!("6")]);
+    assert_eq!(kept(), "");
+    browser.assert_clean();
+}

@@ -267,3 +267,49 @@ fn a_hidden_field_with_a_problem_comes_into_sight() {
     browser.wait_text("[id='x.half.problem']", "%25");
     browser.assert_clean();
 }
+
+/// A point before three digits may have been meant to mark thousands: how it is read is said, and it is no problem.
+#[test]
+fn a_point_before_three_digits_is_said_to_be_a_decimal_one() {
+    let browser = Browser::opened(LINK);
+    browser.write("x.start", "12.500");
+    let link = changed(LINK, "x.start", "12.500");
+    assert_eq!(browser.settle(&link), native(&link));
+    let words = "12.500 is read as 12.5: if 12500 is meant, write it without the point.";
+    browser.wait_text("[id='x.start.points']", words);
+    assert_eq!(browser.text("#problems"), "");
+    let field = "const field = document.getElementById('x.start');
+        return [field.getAttribute('aria-invalid'), field.getAttribute('aria-describedby').split(' ').includes('x.start.points')];";
+    assert_eq!(
+        browser.script(field, vec![]),
+        serde_json::json!([null, true]),
+        "it is told with the field"
+    );
+    browser.picture("point");
+    // It goes at once, and on the way to another number it does not come.
+    browser.write_on("x.start", "5");
+    assert_eq!(browser.text("[id='x.start.points']"), "");
+    // In a list by its row, in a phase beside its field; also as it was opened.
+    let opened = changed(LINK, "y.join", "64@4,1.200@6");
+    let opened = changed(&changed(&opened, "phase1.from", "2"), "phase1.x.rate", "1.025");
+    browser.open(&opened);
+    browser.settle(&opened);
+    assert!(
+        browser
+            .text("[id='y.join.points']")
+            .starts_with("Row 2: 1.200 is read as 1.2")
+    );
+    assert!(
+        browser
+            .text("[id='phase1.x.rate.points']")
+            .starts_with("1.025 is read as 1.025")
+    );
+    // More than all cannot be lost, so nobody has meant that.
+    browser.write("x.break", "1.000");
+    browser.leave();
+    assert_eq!(
+        browser.script("return document.getElementById('x.break.points');", vec![]),
+        serde_json::json!(null)
+    );
+    browser.assert_clean();
+}

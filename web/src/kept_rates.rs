@@ -8,9 +8,10 @@ use aftercount_core::sides::{Both, Side};
 
 const KEPT: &str = "Kept from another law of fire: the number is the same, its unit is not.";
 
-/// For each side, what its rate was measured in when it was written.
+/// For each side the text of its rate, and what it was measured in when it was written.
 pub(crate) struct KeptRates {
     dom: Dom,
+    texts: Both<String>,
     written_as: Both<Option<RateMeaning>>,
 }
 
@@ -18,6 +19,7 @@ impl KeptRates {
     pub(crate) fn new(dom: &Dom) -> KeptRates {
         KeptRates {
             dom: dom.clone(),
+            texts: Both::default(),
             written_as: Both::default(),
         }
     }
@@ -25,16 +27,27 @@ impl KeptRates {
     /// A whole text came in: whoever wrote it chose law and rate together.
     pub(crate) fn start(&mut self, pairs: &Pairs) {
         for side in Side::BOTH {
-            self.written_as[side] = meaning(pairs, side);
-            self.show(pairs, side);
+            self.written(pairs, side);
         }
+        self.follow(pairs);
     }
 
-    /// A field was typed in.
-    pub(crate) fn typed(&mut self, pairs: &Pairs, key: &str) {
+    /// The rate of a side was written for the law that it has now, also where its text is the same as before.
+    pub(crate) fn written(&mut self, pairs: &Pairs, side: Side) {
+        self.texts[side] = text(pairs, side).to_owned();
+        self.written_as[side] = meaning(pairs, side);
+    }
+
+    /// Both rates are about to be restated in another unit of time: a rate that was kept still is.
+    pub(crate) fn restated(&mut self, pairs: &Pairs) {
+        self.texts = Both::of(|side| text(pairs, side).to_owned());
+    }
+
+    /// Shows what was kept. Whoever wrote another rate, by whatever means, wrote it for the law as it stands.
+    pub(crate) fn follow(&mut self, pairs: &Pairs) {
         for side in Side::BOTH {
-            if key == format!("{}.rate", side.letter()) {
-                self.written_as[side] = meaning(pairs, side);
+            if self.texts[side] != text(pairs, side) {
+                self.written(pairs, side);
             }
             self.show(pairs, side);
         }
@@ -42,13 +55,17 @@ impl KeptRates {
 
     fn show(&self, pairs: &Pairs, side: Side) {
         let (now, then) = (meaning(pairs, side), self.written_as[side]);
-        let written = pairs.get(&format!("{}.rate", side.letter())).is_some();
+        let written = !self.texts[side].is_empty();
         let changed = written && now.is_some() && then.is_some() && now != then;
         let id = format!("{}.rate.kept", side.letter());
         // The field's description names this element, and would be read out with its words also while it is hidden.
         self.dom.set_text(&id, if changed { KEPT } else { "" });
         self.dom.set_shown(&id, changed);
     }
+}
+
+fn text(pairs: &Pairs, side: Side) -> &str {
+    pairs.get(&format!("{}.rate", side.letter())).unwrap_or_default()
 }
 
 /// What the side's rate is measured in; `None` where its law has none, or is not known.

@@ -27,6 +27,7 @@ mod paper;
 mod passing;
 mod phases;
 mod plates;
+mod points;
 mod problems;
 mod reading;
 mod reversal;

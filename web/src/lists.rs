@@ -182,7 +182,7 @@ fn new_row(dom: &Dom, list: List, key: &str, row: usize) -> Option<Element> {
             ("data-list", key),
             ("data-row", &place),
             ("data-part", &part.to_string()),
-            ("aria-describedby", &format!("{key}.problem")),
+            ("aria-describedby", &format!("{key}.points {key}.problem")),
         ]
         .map(|(name, value)| (name, value.to_owned()));
         for (name, value) in attributes {

@@ -25,6 +25,7 @@ use crate::paper::Paper;
 use crate::passing::Passing;
 use crate::phases::Phases;
 use crate::plates::Plates;
+use crate::points::Points;
 use crate::problems::{PATIENCE, Problems};
 use crate::reversal::Reversals;
 use crate::share::Shares;
@@ -62,6 +63,7 @@ pub(crate) struct Page {
     /// Whether `good` is of the text as it stands.
     current: bool,
     problems: Problems,
+    points: Points,
     kept_rates: KeptRates,
     hand: Hand,
     shares: Shares,
@@ -113,6 +115,7 @@ impl Page {
                 waiting: Vec::new(),
                 current: false,
                 problems: Problems::new(dom),
+                points: Points::new(dom),
                 kept_rates: KeptRates::new(dom),
                 hand: Hand::new(dom),
                 shares: Shares::new(dom),
@@ -248,6 +251,8 @@ impl Page {
         self.dom.mark_root("data-settled", None);
         self.show_problems.stop();
         self.waiting.clear();
+        self.points.changed(&self.pairs);
+        self.kept_rates.follow(&self.pairs);
         self.current = false;
         self.reverse_on.stop();
         self.reversals.stop();
@@ -261,10 +266,14 @@ impl Page {
                 }
                 self.ask_on();
             }
-            Err(problems) => self.work_out_bad(problems, cause),
+            Err(problems) => self.work_out_bad(problems),
         }
         let good = self.good.as_ref().filter(|_| self.current);
         self.shares.show(&self.pairs, good.map(|good| &good.statement));
+        match cause {
+            Cause::Typed => self.show_problems.start(PATIENCE),
+            Cause::Whole => self.show_waiting(),
+        }
     }
 
     fn work_out_good(&mut self, statement: Statement) {
@@ -302,7 +311,7 @@ impl Page {
         working::clear(&self.dom);
     }
 
-    fn work_out_bad(&mut self, mut problems: Vec<Problem>, cause: Cause) {
+    fn work_out_bad(&mut self, mut problems: Vec<Problem>) {
         if self.filling {
             problems.retain(|problem| problem.found.is_some());
         }
@@ -314,14 +323,15 @@ impl Page {
             self.clear_outcome();
             self.dom.mark_root("data-state", Some("empty"));
         }
-        match cause {
-            Cause::Typed => self.show_problems.start(PATIENCE),
-            Cause::Whole => self.show_waiting(),
-        }
     }
 
+    /// Shows what waits until typing has stopped.
     fn show_waiting(&mut self) {
         self.show_problems.stop();
+        self.points.show(&self.pairs);
+        if self.current {
+            return;
+        }
         let waiting = std::mem::take(&mut self.waiting);
         self.problems.show(&self.pairs, &waiting);
         if self.good.is_some() || self.asking.sentence().is_some() {

@@ -10,10 +10,15 @@ use aftercount_core::statement::Statement;
 use aftercount_core::words::entry;
 use web_sys::HtmlInputElement;
 
+/// What the rate of a law is worked out from beside the strengths, without the side's letter.
+const OF_THE_LAW: [&str; 4] = ["fire", "half", "p", "q"];
+
 /// The small entries beside both rates.
 pub(crate) struct Shares {
     dom: Dom,
     open: Both<bool>,
+    /// The number that was typed into an entry, and the rate that was written for it.
+    meant: Both<Option<(String, String)>>,
     /// What is wrong with an entry, and not shown yet.
     waiting: Option<(Side, String)>,
 }
@@ -23,12 +28,13 @@ impl Shares {
         Shares {
             dom: dom.clone(),
             open: Both::default(),
+            meant: Both::default(),
             waiting: None,
         }
     }
 
     /// The button beside a rate: discloses the entry, or closes it. The id of what then has the focus.
-    pub(crate) fn toggle(&mut self, side: Side, good: Option<&Statement>) -> String {
+    pub(crate) fn toggle(&mut self, pairs: &Pairs, side: Side, good: Option<&Statement>) -> String {
         self.open[side] = !self.open[side];
         let open = self.open[side];
         let id = |part: &str| format!("{}.share{part}", side.letter());
@@ -36,7 +42,7 @@ impl Shares {
         self.dom
             .set_attribute(&id(".open"), "aria-expanded", if open { "true" } else { "false" });
         self.settle(side);
-        self.fill(side, good);
+        self.fill(pairs, side, good);
         if open { id("") } else { id(".open") }
     }
 
@@ -45,19 +51,45 @@ impl Shares {
     /// rate stands that was not meant.
     pub(crate) fn typed(&mut self, pairs: &Pairs, side: Side, text: &str) -> String {
         self.settle(side);
+        self.meant[side] = None;
         let plain = text.trim().trim_end_matches('%').trim_end();
         if plain.is_empty() {
             return String::new();
         }
-        rate_of_per_cent(pairs, side, text).unwrap_or_else(|problem| {
+        let rate = rate_of_per_cent(pairs, side, text).unwrap_or_else(|problem| {
             self.waiting = Some((side, problem));
-            let is_number = aftercount_core::number::read(plain).is_ok();
-            if is_number {
-                String::new()
-            } else {
-                format!("{plain} %")
-            }
-        })
+            String::new()
+        });
+        if aftercount_core::number::read(plain).is_err() {
+            return format!("{plain} %");
+        }
+        self.meant[side] = Some((text.to_owned(), rate.clone()));
+        rate
+    }
+
+    /// The rate for what stands in an open entry, once the text of `key` has changed: where the law of fire did, since its
+    /// rate means something else then, or where no rate could be worked out before. `None` where the rate stays, also
+    /// because it was written by other means since.
+    pub(crate) fn anew(&mut self, pairs: &Pairs, side: Side, key: &str) -> Option<String> {
+        let of_the_law = key
+            .strip_prefix(side.letter())
+            .and_then(|rest| rest.strip_prefix('.'))
+            .is_some_and(|name| OF_THE_LAW.contains(&name));
+        let (text, old) = self.meant(pairs, side).filter(|_| self.open[side])?;
+        if !(of_the_law || old.is_empty()) {
+            return None;
+        }
+        let (text, rate) = (text.to_owned(), rate_of_per_cent(pairs, side, text).ok()?);
+        self.meant[side] = Some((text, rate.clone()));
+        self.settle(side);
+        Some(rate)
+    }
+
+    /// What was typed into an entry, and its rate, as long as that stands.
+    fn meant<'a>(&'a self, pairs: &Pairs, side: Side) -> Option<(&'a str, &'a str)> {
+        let rate = pairs.get(&format!("{}.rate", side.letter())).unwrap_or_default();
+        let (text, written) = self.meant[side].as_ref()?;
+        (written == rate).then_some((text.as_str(), written.as_str()))
     }
 
     /// Shows what waits.
@@ -80,15 +112,17 @@ impl Shares {
             self.dom.set_text(&label, &entry::per_cent(&enemy, unit));
             let focused = self.dom.document.active_element().map(|element| element.id());
             if focused.as_deref() != Some(&format!("{}.share", side.letter())) {
-                self.fill(side, good);
+                self.fill(pairs, side, good);
             }
         }
     }
 
-    fn fill(&self, side: Side, good: Option<&Statement>) {
+    /// What the rate takes; where that cannot be worked out now, what was typed and is still to be.
+    fn fill(&self, pairs: &Pairs, side: Side, good: Option<&Statement>) {
         let id = format!("{}.share", side.letter());
-        let words = good.filter(|_| self.open[side]);
-        let words = words.and_then(|statement| per_cent_of_rate(statement, side));
+        let words = good.map(|statement| per_cent_of_rate(statement, side).unwrap_or_default());
+        let typed = || self.meant(pairs, side).map(|(text, _)| text.to_owned());
+        let words = words.or_else(typed).filter(|_| self.open[side]);
         if let Some(input) = self.dom.typed::<HtmlInputElement>(&id) {
             input.set_value(words.as_deref().unwrap_or_default());
         }

@@ -10,6 +10,7 @@ pub mod goal;
 pub mod map;
 pub mod math;
 pub mod meaning;
+pub mod points;
 pub mod reading;
 pub mod reversal;
 pub mod sentence;

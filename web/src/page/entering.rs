@@ -24,7 +24,7 @@ impl Page {
             Some(before) => self.unit_change.changed(&before, &self.pairs),
             None => self.unit_change.typed(key),
         }
-        self.kept_rates.typed(&self.pairs, key);
+        self.rework_shares(key);
         self.phases.typed(key, text);
         self.changed(Cause::Typed);
     }
@@ -90,14 +90,16 @@ impl Page {
         };
         self.change_at_once(|pairs| pairs.set(&key, &text));
         form::fill(&self.dom, &self.pairs);
-        self.kept_rates.typed(&self.pairs, &key);
         After::GoTo(field)
     }
 
     /// The button beside a rate that discloses its entry as per cent.
     pub(crate) fn toggle_share(&mut self, side: Side) -> After {
         let good = self.good.as_ref().filter(|_| self.current);
-        After::GoTo(self.shares.toggle(side, good.map(|good| &good.statement)))
+        After::GoTo(
+            self.shares
+                .toggle(&self.pairs, side, good.map(|good| &good.statement)),
+        )
     }
 
     /// The per cent that a rate is to take at the start was typed: it writes the rate.
@@ -109,6 +111,17 @@ impl Page {
         self.show_share.start(PATIENCE);
     }
 
+    /// A rate that was entered as per cent is worked out anew where the law that it is for has changed.
+    fn rework_shares(&mut self, key: &str) {
+        for side in Side::BOTH {
+            if let Some(rate) = self.shares.anew(&self.pairs, side, key) {
+                self.pairs.set(&format!("{}.rate", side.letter()), &rate);
+                self.kept_rates.written(&self.pairs, side);
+                form::fill(&self.dom, &self.pairs);
+            }
+        }
+    }
+
     pub(super) fn show_share(&mut self) {
         self.show_share.stop();
         self.shares.show_waiting();
@@ -117,6 +130,7 @@ impl Page {
     /// Restates every rate and time in the unit that was chosen.
     pub(crate) fn convert_unit(&mut self) -> After {
         if let Some(restated) = self.unit_change.convert(&self.pairs) {
+            self.kept_rates.restated(&restated);
             self.change_at_once(|pairs| *pairs = restated);
             form::fill(&self.dom, &self.pairs);
             return After::GoTo("unit".into());
@@ -136,7 +150,9 @@ impl Page {
         self.law_fields.show_again(&self.pairs);
         self.phases.left(&self.pairs);
         self.show_share();
-        if !self.waiting.is_empty() {
+        if self.waiting.is_empty() {
+            self.points.show(&self.pairs);
+        } else {
             self.show_waiting();
         }
     }

@@ -38,6 +38,7 @@ impl Page {
         }
         let link = pairs.link();
         self.good = None;
+        self.kept_rates.start(&pairs);
         self.put_in_place(pairs);
         self.goes_back_to(Some(&link));
         self.close_entry();
@@ -57,6 +58,7 @@ impl Page {
                 for key in ["view", "paper"] {
                     pairs.set(key, self.pairs.get(key).unwrap_or_default());
                 }
+                self.kept_rates.start(&pairs);
             }
         }
         self.put_in_place(pairs);
@@ -70,7 +72,6 @@ impl Page {
         self.demo = false;
         self.pairs = pairs;
         form::fill(&self.dom, &self.pairs);
-        self.kept_rates.start(&self.pairs);
         self.open_what_holds_values();
         self.changed(Cause::Whole);
         self.close_entry();
