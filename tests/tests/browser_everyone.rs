@@ -340,6 +340,70 @@ fn on_a_small_screen_the_tables_of_answers_are_cards() {
     browser.assert_clean();
 }
 
+/// However long the sentence and large the text, its caution is read with it: the sentence rolls behind it.
+#[test]
+fn the_caution_is_never_covered_or_rolled_away() {
+    let browser = Browser::start();
+    let long = |link: &str| {
+        let link = changed(
+            link,
+            "x.name",
+            "Ondrel of the upper river and the northern crossing, east",
+        );
+        changed(
+            &link,
+            "y.name",
+            "Vessary and all that came with it over the hills, in time",
+        )
+    };
+    for (screen, height) in [
+        (Screen::SMALL, 640),
+        (Screen::SMALL, 480),
+        (Screen::DESK, 700),
+        (Screen::FRAME_UPRIGHT, 480),
+    ] {
+        let screen = Screen { height, ..screen };
+        browser.screen(screen);
+        let frame = screen.width == Screen::FRAME_UPRIGHT.width;
+        for (name, link) in [
+            ("demo", DEMO.to_owned()),
+            ("long", long(DEMO)),
+            ("asked", long(ASKED[0])),
+        ] {
+            let link = if frame {
+                changed(&link, "view", "frame")
+            } else {
+                link
+            };
+            browser.open(&link);
+            browser.settle(&link);
+            browser.text_size(2.0, false);
+            if !frame {
+                browser.script(
+                    "document.getElementById('y.break').scrollIntoView({block: 'center'});",
+                    vec![],
+                );
+            }
+            let script = "const caution = document.getElementById('short-caution'), said = document.getElementById('said');
+                const box = caution.getBoundingClientRect(), wrong = [];
+                if (box.top < 0 || box.bottom > innerHeight) wrong.push(`from ${box.top} to ${box.bottom} of ${innerHeight}`);
+                for (const part of [0.02, 0.5, 0.98]) for (const roll of [0, 40, 1e6]) {
+                  said.scrollTop = roll;
+                  const at = document.elementFromPoint(box.left + 8, box.top + part * box.height);
+                  if (at !== caution) wrong.push(`${part} of it under ${at && at.id} at ${roll}`);
+                }
+                said.scrollTop = 0;
+                const room = box.top - said.getBoundingClientRect().top;
+                if (room < parseFloat(getComputedStyle(document.getElementById('sentence')).lineHeight)) wrong.push(`${room} px for the sentence`);
+                return wrong;";
+            let name = format!("caution-{name}-{}-{height}", screen.width);
+            browser.picture(&name);
+            assert_eq!(browser.script(script, vec![]), serde_json::json!([]), "{name}");
+        }
+    }
+    browser.assert_clean();
+}
+
 /// Nothing moves by itself, so there is nothing to take out where a reader wants no movement.
 #[test]
 fn nothing_moves_by_itself() {

@@ -15,6 +15,11 @@ fn framed_link(browser: &Browser) -> String {
     fragment.as_str().expect("an address has a fragment").to_owned()
 }
 
+/// What can be seen and does nothing without the program. What is folded up needs none.
+const NEEDS_THE_PROGRAM: &str =
+    "return [...document.querySelectorAll('button, input, select, textarea, a, #text-mark')]
+    .filter((part) => part.checkVisibility()).map((part) => part.tagName + '#' + part.id);";
+
 /// The frames of the example.
 const FRAMES: u16 = 3;
 
@@ -125,6 +130,7 @@ fn without_scripts_the_page_says_so_with_the_caution() {
     assert!(shown.contains("Scripts are switched off"), "{shown}");
     assert!(shown.contains(CAUTION), "{shown}");
     assert_eq!(browser.shown().settled, None);
+    assert_eq!(browser.script(NEEDS_THE_PROGRAM, vec![]), json!([]));
     browser.assert_clean();
 }
 
@@ -148,6 +154,9 @@ fn a_frame_that_allows_no_scripts_says_so_with_the_caution() {
         shown.contains("Scripts are switched off") && shown.contains(CAUTION),
         "{shown}"
     );
+    let dead = browser.script(NEEDS_THE_PROGRAM, vec![]);
+    assert_eq!(dead, json!([]), "nothing is there to press in vain");
+    browser.picture("frame-no-scripts");
 }
 
 #[test]
@@ -157,5 +166,72 @@ fn without_webassembly_the_page_says_so_with_the_caution() {
     browser.open(LINK);
     browser.wait_text("#no-engine", "cannot run WebAssembly");
     assert!(browser.text("#no-engine").contains(CAUTION));
+    assert_eq!(browser.script(NEEDS_THE_PROGRAM, vec![]), json!([]));
     browser.picture("no-engine");
+}
+
+const ASKED: &str = "x.name=Ondrel&x.start=600?400..900&x.rate=0.04&x.break=0.3&y.name=Vessary&y.start=464&y.rate=0.05&\
+                     y.break=0.5&view=frame&v=1";
+
+/// A frame has no room for what is asked: it says the answer, or that there is a map, and where all of it is.
+#[test]
+fn a_frame_says_what_is_asked_and_where_it_is() {
+    let one = ASKED.to_owned();
+    let two = changed(ASKED, "y.start", "464?300..600");
+    let open = changed(&two, "x.start", "?400..900");
+    let map = "A map of Ondrel's strength at the start and Vessary's strength at the start is asked for: it is on the whole sheet.";
+    let browser = Browser::start();
+    for screen in [Screen::FRAME_UPRIGHT, Screen::FRAME_LYING] {
+        browser.screen(screen);
+        for (name, link, words, other) in [
+            ("one", &one, "#asked-brief", "#asked-map"),
+            ("two", &two, "#asked-map", "#asked-brief"),
+            ("open", &open, "#asked-map", "#asked-brief"),
+        ] {
+            browser.open(link);
+            browser.settle(link);
+            browser.picture(&format!("frame-asked-{name}-{}", screen.width));
+            let said = browser.text(words);
+            if name == "one" {
+                assert!(
+                    said.starts_with("In this model") && said.contains("strength at the start"),
+                    "{said}"
+                );
+            } else {
+                assert_eq!(said, map);
+            }
+            assert_eq!(browser.text(other), "");
+            let script = "const a = document.querySelector(arguments[0] + ' a');
+                return [a.target, decodeURIComponent(a.hash).includes('x.start=') && !a.hash.includes('view=')];";
+            assert_eq!(
+                browser.script(script, vec![words.into()]),
+                json!(["_blank", true])
+            );
+            let size = "const r = document.documentElement; return [r.scrollWidth, r.scrollHeight];";
+            assert_eq!(
+                browser.script(size, vec![]),
+                json!([screen.width, screen.height]),
+                "{name} at {screen:?}"
+            );
+            let caution = "const c = document.getElementById('short-caution').getBoundingClientRect();
+                return document.elementFromPoint(c.left + 5, c.bottom - 5).id;";
+            assert_eq!(
+                browser.script(caution, vec![]),
+                "short-caution",
+                "{name} at {screen:?}"
+            );
+        }
+    }
+    // On the sheet the answer leads to all of it, and the map stands there.
+    let sheet = changed(&two, "view", "");
+    browser.screen(Screen::DESK);
+    browser.open(&sheet);
+    browser.settle(&sheet);
+    assert_eq!(browser.text("#asked-map"), "");
+    browser.click("#asked-brief-words");
+    assert_eq!(
+        browser.script("return document.activeElement.id;", vec![]),
+        "takes-head"
+    );
+    browser.assert_clean();
 }

@@ -259,6 +259,7 @@ impl Page {
         match Statement::read(&self.pairs) {
             Ok(statement) => {
                 self.asking.begin(&self.pairs, &statement);
+                self.show_where_the_map_is(Some(&statement));
                 if statement.has_base() {
                     self.work_out_good(statement);
                 } else {
@@ -318,6 +319,7 @@ impl Page {
         self.law_fields.show(&self.pairs, &problems);
         self.waiting = problems;
         self.asking.stop();
+        self.show_where_the_map_is(None);
         if self.good.is_none() && self.asking.sentence().is_none() {
             self.asking.clear();
             self.clear_outcome();

@@ -6,9 +6,10 @@ use super::goal::{goals, short};
 use super::slot;
 use crate::asked::{Chart, FINEST, Miss, Second, Story, Worst};
 use crate::outcome::Outcome;
+use crate::pairs::Pairs;
 use crate::picture::Table;
 use crate::sides::Side;
-use crate::slots::Slot;
+use crate::slots::{Slot, slots};
 use crate::statement::Statement;
 
 /// What the map shows in one sentence. It begins "In this model", so that it stays true when it is copied alone.
@@ -40,6 +41,22 @@ pub fn of_shares(
         "In this model, with {one} and {other} in question: {}.",
         parts.join("; ")
     )
+}
+
+/// What stands in place of the map where there is no room for one, as in a frame; `None` unless two numbers are in question.
+///
+/// `pairs` are those that `statement` was read from.
+pub fn elsewhere(pairs: &Pairs, statement: &Statement) -> Option<String> {
+    let all = slots(pairs, statement);
+    let mut asked = all.iter().filter(|slot| slot.quantity.is_question());
+    let (one, other) = (asked.next()?, asked.next()?);
+    asked.next().is_none().then(|| {
+        format!(
+            "A map of {} and {} is asked for: it is on the whole sheet.",
+            slot::name(statement, one),
+            slot::name(statement, other)
+        )
+    })
 }
 
 /// "all that is wanted, that Ondrel prevails and at least 80 of Ondrel are left, holds on 31 % of the map".

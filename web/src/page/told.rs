@@ -1,10 +1,13 @@
 //! The text and what is read straight from it, whether it can be worked out or not.
 
 use super::Page;
+use crate::dom::set;
 use crate::outcome;
 use aftercount_core::mark::text_mark;
 use aftercount_core::passing::words::room;
 use aftercount_core::problem::seen;
+use aftercount_core::statement::Statement;
+use aftercount_core::words::map::elsewhere;
 
 impl Page {
     /// The text and what is read straight from it, whether it can be worked out or not.
@@ -55,8 +58,29 @@ impl Page {
         outcome::show_names(&self.dom, &self.pairs);
         let mut whole = self.pairs.clone();
         whole.set("view", "");
+        let sheet = format!("#{}", whole.link());
+        for link in ["open-sheet", "asked-map-words"] {
+            self.dom.set_attribute(link, "href", &sheet);
+        }
+        // A frame has the answer to a question, and the sheet all that belongs to it.
+        if let Some(link) = self.dom.element("asked-brief-words") {
+            if trimmed("view") == "frame" {
+                set(&link, "href", &sheet);
+                set(&link, "target", "_blank");
+            } else {
+                set(&link, "href", "#takes-head");
+                // Taking an attribute away cannot fail.
+                let _ = link.remove_attribute("target");
+            }
+        }
+    }
+
+    /// In a frame there is no room for a map: there it is said that one is asked for, and where it is.
+    pub(super) fn show_where_the_map_is(&self, statement: Option<&Statement>) {
+        let words = statement.and_then(|statement| elsewhere(&self.pairs, statement));
         self.dom
-            .set_attribute("open-sheet", "href", &format!("#{}", whole.link()));
+            .set_text("asked-map-words", words.as_deref().unwrap_or_default());
+        self.dom.set_shown("asked-map", words.is_some());
     }
 
     /// A value behind a closed panel would be one that nobody sees.
