@@ -22,7 +22,7 @@ static SHEET: LazyLock<String> = LazyLock::new(|| {
         include_str!("../../www/page/side.html"),
     )
 });
-const STYLE: &str = include_str!("../../www/page/style.css");
+const STYLE: &str = include_str!("../../www/page/style/colours.css");
 
 /// Keys that the page reads and that have no field: the frame is asked for by a link, losses have one choice as yet, and
 /// the version is written for one.

@@ -94,9 +94,9 @@ fn build(workspace: &Workspace) -> Result<Finished> {
     let sheet = read(&workspace.page_source("index.html"))?;
     let template = sides::with_sides(&sheet, &read(&workspace.page_source("side.html"))?);
     let template = tighten::page(&template)?;
-    let style = tighten::style(&read(&workspace.page_source("style.css"))?);
+    let style = tighten::style(&style(workspace)?);
     let boot = tighten::script("boot.js", &read(&workspace.page_source("boot.js"))?)?;
-    inline::check("style.css", &style)?;
+    inline::check("the style sheet", &style)?;
     inline::check("boot.js", &boot)?;
     inline::check("the glue", &bound.glue)?;
 
@@ -145,6 +145,20 @@ fn build(workspace: &Workspace) -> Result<Finished> {
     // Only once: the text above is free to contain the same letters.
     let page = filled.replacen("{{policy}}", &policy, 1);
     Ok(Finished { page, script })
+}
+
+/// The files of the style sheet, an idea each, in the order in which their rules outdo one another.
+const STYLES: [&str; 11] = [
+    "colours", "ground", "form", "outcome", "pictures", "takes", "working", "pass", "narrow", "frame",
+    "paper",
+];
+
+/// The style sheet as one.
+fn style(workspace: &Workspace) -> Result<String> {
+    let files = STYLES
+        .iter()
+        .map(|name| read(&workspace.page_source(&format!("style/{name}.css"))));
+    files.collect()
 }
 
 /// Writes everything, the page first, and says where it lies.

@@ -179,13 +179,14 @@ mod tests {
         page(include_str!("../page/index.html")).expect("the page");
         page(include_str!("../page/side.html")).expect("the block of a side");
         script("boot.js", include_str!("../page/boot.js")).expect("the boot script");
-        let css = include_str!("../page/style.css");
-        let tight = style(css);
+        let workspace = crate::workspace::Workspace::find().expect("a workspace");
+        let css = crate::style(&workspace).expect("the style sheet");
+        let tight = style(&css);
         assert_eq!(style(&tight), tight, "once is enough");
         for mark in ['{', '}', '"', '\''] {
             assert_eq!(
                 tight.matches(mark).count(),
-                without_comments(css).matches(mark).count(),
+                without_comments(&css).matches(mark).count(),
                 "{mark}"
             );
         }
