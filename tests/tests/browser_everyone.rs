@@ -270,6 +270,10 @@ fn a_finger_hits_what_it_means() {
             }
             return small;";
         assert_eq!(browser.script(script, vec![]), serde_json::json!([]));
+        // Where the letters of a field are smaller, a telephone enlarges the page for whoever comes to it.
+        let script = "return [...document.querySelectorAll('input:not([type=file]), select, textarea')]
+            .filter((field) => parseFloat(getComputedStyle(field).fontSize) < 16).map((field) => field.id);";
+        assert_eq!(browser.script(script, vec![]), serde_json::json!([]));
     }
     browser.assert_clean();
 }
