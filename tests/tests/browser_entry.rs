@@ -320,7 +320,8 @@ fn a_rate_that_was_entered_as_per_cent_follows_the_law() {
     );
     assert_eq!(kept(), "", "it was written for this law");
     // What the law needs is missing: what was meant stands, and the number is still that of the other law.
-    browser.choose("x.fire", "search");
+    // At once, and not by the laws between.
+    browser.choose_value("x.fire", "search");
     browser.wait_text("#problem-list", "x.half");
     assert_eq!(
         (share(), browser.value("x.rate").as_str()),

@@ -1,6 +1,8 @@
 //! What a picture of a schedule says of its own lines: from when on they hold, and where.
 
+use aftercount_core::asked::Chart;
 use aftercount_core::fight::{Effort, fight};
+use aftercount_core::outcome::Breaks;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::picture::{self, Picture, Role};
 use aftercount_core::sides::Side;
@@ -174,4 +176,38 @@ fn the_words_of_the_axes_stay_within_the_picture() {
             );
         }
     }
+}
+
+/// Words stood 32 px beside their place on the map, in a part in which the other side breaks.
+#[test]
+fn what_happens_on_a_map_is_told_where_it_does() {
+    let asked = "x.name=Tarn&x.start=900&x.rate=0.05?&x.break=0.35&x.support.area=0.01&x.join=150@3&y.name=Osk&\
+                 y.start=700?&y.fire=area&y.rate=0.0001&y.break=0.45&y.wastage=0.005&sothat=y.breaks,x.end:800..";
+    let pairs = Pairs::parse(asked);
+    let statement = Statement::read(&pairs).expect("it is one");
+    let mut chart = Chart::new(&pairs, &statement).expect("two numbers are in question");
+    while !chart.go_on(u32::MAX) {}
+    let map = picture::map(&statement, &chart, None).expect("there is something to show");
+    let mut told = 0;
+    for line in map.lines.iter().filter(|line| line.role == Role::Region) {
+        for (across, up) in &line.points {
+            let values = Values::from([("x.rate".into(), *across), ("y.start".into(), *up)]);
+            let outcome = fight(&statement.engagement(&values), Effort::Outcome).outcome;
+            let breaks = if line.label.starts_with("Tarn") {
+                Breaks::X
+            } else {
+                Breaks::Y
+            };
+            assert_eq!(outcome.breaks, breaks, "{}: {across}, {up}", line.label);
+            let wanted = breaks == Breaks::Y && outcome.y.end.is_some() && outcome.x.end >= Some(800.0);
+            assert_eq!(
+                line.label.ends_with(", as wanted"),
+                wanted,
+                "{}: {across}, {up}",
+                line.label
+            );
+            told += 1;
+        }
+    }
+    assert!(told > 5, "{told}");
 }

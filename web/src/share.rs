@@ -47,14 +47,21 @@ impl Shares {
     }
 
     /// What is to stand as the rate for an entry: the rate, as it is written; of an entry that is no number its own text as
-    /// per cent, which no rate is, and of one that cannot be turned into a rate nothing, and why waits to be shown. So no
-    /// rate stands that was not meant.
+    /// per cent, which no rate is, and of one that cannot be turned into a rate nothing, and why waits to be shown: so no
+    /// rate stands that was not meant. Where none could be turned into a rate, that which stands is kept.
     pub(crate) fn typed(&mut self, pairs: &Pairs, side: Side, text: &str) -> String {
         self.settle(side);
         self.meant[side] = None;
         let plain = text.trim().trim_end_matches('%').trim_end();
         if plain.is_empty() {
             return String::new();
+        }
+        let stands = pairs.get(&format!("{}.rate", side.letter())).unwrap_or_default();
+        if !stands.is_empty() && rate_of_per_cent(pairs, side, "1").is_err() {
+            self.waiting = rate_of_per_cent(pairs, side, text)
+                .err()
+                .map(|problem| (side, problem));
+            return stands.to_owned();
         }
         let rate = rate_of_per_cent(pairs, side, text).unwrap_or_else(|problem| {
             self.waiting = Some((side, problem));

@@ -3,10 +3,11 @@
 use std::path::Path;
 use std::process::{Command, Stdio};
 
-/// Opens the page in the browser that the system prefers, or does nothing where there is no display.
+/// Opens the page in the browser that the system prefers, or says that it does not where there is no display.
 pub(crate) fn show(page: &Path) {
     let Some((program, arguments)) = opener(std::env::consts::OS, |name| std::env::var_os(name).is_some())
     else {
+        println!("Open it in a browser: there is no display here to show it on.");
         return;
     };
     let started = Command::new(program)

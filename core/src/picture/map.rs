@@ -2,6 +2,7 @@
 
 use super::{Axis, Line, Picture, Role, Spot};
 use crate::asked::{Chart, FINEST, Second, Story};
+use crate::order::sort_by;
 use crate::outcome::Breaks;
 use crate::sides::Side;
 use crate::statement::Statement;
@@ -127,6 +128,12 @@ const STEPS: i32 = 16;
 const WIDER: i32 = 4;
 const ROOM: i32 = 2;
 
+/// Letters of a word in the middle of which there must be a step of room on each side.
+const LETTERS: i32 = 9;
+
+/// The places from which the words of a part take the one that is freest of lines and other words.
+const CHOICES: usize = 8;
+
 /// A place on the map, in steps across and up, with the number of its story and whether all that is wanted holds there.
 #[derive(Clone, Copy)]
 struct Place {
@@ -164,25 +171,30 @@ impl Place {
 fn regions(statement: &Statement, chart: &Chart) -> Vec<Line> {
     let steps = (0..=STEPS).flat_map(|up| (0..=STEPS).map(move |across| (across, up)));
     let places: Vec<Place> = steps.filter_map(|step| Place::of(chart, step)).collect();
-    let mut best: Vec<Place> = Vec::new();
-    for place in places.iter().map(|place| place.among(&places)) {
-        match best.iter_mut().find(|known| known.told == place.told) {
-            Some(known) if place.room > known.room => *known = place,
+    let mut roomy: Vec<Place> = places.iter().map(|place| place.among(&places)).collect();
+    sort_by(&mut roomy, |a, b| b.room.cmp(&a.room));
+    let mut lines: Vec<Line> = Vec::new();
+    for Place { step, told, room } in roomy {
+        let Some(story) = chart.stories().get(told.0) else {
+            continue;
+        };
+        let label = happens(statement, story) + if told.1 { ", as wanted" } else { "" };
+        let letters = label.chars().count() as i32;
+        if room < ROOM.max(letters / LETTERS) {
+            continue;
+        }
+        let [across, up] = chart.values([step.0, step.1].map(|step| f64::from(step) / f64::from(STEPS)));
+        match lines.iter_mut().find(|line| line.label == label) {
+            Some(line) if line.points.len() < CHOICES => line.points.push((across, up)),
             Some(_) => {}
-            None => best.push(place),
+            None => lines.push(Line {
+                role: Role::Region,
+                points: vec![(across, up)],
+                label,
+            }),
         }
     }
-    let line = |Place { step, told, .. }: Place| {
-        let story = chart.stories().get(told.0)?;
-        let [across, up] = chart.values([step.0, step.1].map(|step| f64::from(step) / f64::from(STEPS)));
-        Some(Line {
-            role: Role::Region,
-            points: vec![(across, up)],
-            label: happens(statement, story) + if told.1 { ", as wanted" } else { "" },
-        })
-    };
-    let roomy = best.into_iter().filter(|place| place.room >= ROOM);
-    roomy.filter_map(line).collect()
+    lines
 }
 
 /// Contours at round values, the longest of each named.

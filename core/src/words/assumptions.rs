@@ -207,7 +207,7 @@ impl Table<'_> {
             self.told
                 .extend(keys.filter(|key| key.starts_with(&stem)).map(String::from));
             let holds = Both::of(|side: Side| {
-                let words = self.changes(phase, side);
+                let words = changes(phase, side);
                 Assumed {
                     default: words.is_empty(),
                     words: if words.is_empty() {
@@ -227,36 +227,6 @@ impl Table<'_> {
                 holds,
             });
         }
-    }
-
-    fn changes(&self, phase: &Phase<Quantity>, side: Side) -> String {
-        let Changes {
-            law,
-            rate,
-            half,
-            p,
-            q,
-            wastage,
-            support_area,
-            support_aimed,
-        } = &phase.changes[side];
-        let fire = law.map(|law| format!("fire: {}", decapitalised(law.law().label)));
-        let changed = |label: &str, quantity: &Option<Quantity>| {
-            quantity
-                .as_ref()
-                .map(|quantity| format!("{label} {}", number(quantity)))
-        };
-        let all = [
-            fire,
-            changed("rate", rate),
-            changed("targets at half the search", half),
-            changed("exponent on the shooters", p),
-            changed("exponent on the targets", q),
-            changed("wastage", wastage),
-            changed("supporting arms at an area", support_area),
-            changed("supporting arms, aimed,", support_aimed),
-        ];
-        all.into_iter().flatten().collect::<Vec<_>>().join("; ")
     }
 
     fn about_the_whole(&mut self) {
@@ -317,6 +287,37 @@ impl Table<'_> {
             });
         }
     }
+}
+
+/// What changes of `side` as a phase begins, in words; empty where nothing does.
+pub(super) fn changes(phase: &Phase<Quantity>, side: Side) -> String {
+    let Changes {
+        law,
+        rate,
+        half,
+        p,
+        q,
+        wastage,
+        support_area,
+        support_aimed,
+    } = &phase.changes[side];
+    let fire = law.map(|law| format!("fire: {}", decapitalised(law.law().label)));
+    let changed = |label: &str, quantity: &Option<Quantity>| {
+        quantity
+            .as_ref()
+            .map(|quantity| format!("{label} {}", number(quantity)))
+    };
+    let all = [
+        fire,
+        changed("rate", rate),
+        changed("targets at half the search", half),
+        changed("exponent on the shooters", p),
+        changed("exponent on the targets", q),
+        changed("wastage", wastage),
+        changed("supporting arms at an area", support_area),
+        changed("supporting arms, aimed,", support_aimed),
+    ];
+    all.into_iter().flatten().collect::<Vec<_>>().join("; ")
 }
 
 /// A number, a number in doubt or a number in question, in words.

@@ -291,14 +291,18 @@ fn both(statement: &Statement, outcome: &Outcome, still: bool) -> Vec<Figure> {
     }
     if let Some(ratio) = outcome.loss_exchange_ratio {
         figure(
-            "Loss exchange ratio",
+            "Loss exchange ratio, by fire and support",
             exchange(names, ratio, ""),
             Some("exchange"),
         );
     }
     if let Some(ratio) = outcome.fractional_exchange_ratio {
         let words = exchange(names, ratio, "\u{202f}%");
-        figure("Fractional exchange ratio", words, Some("exchange.fraction"));
+        figure(
+            "Fractional exchange ratio, likewise",
+            words,
+            Some("exchange.fraction"),
+        );
     }
     let last = match outcome.to_the_last {
         Some(ToTheLast::X) => format!("{} would be left", names.x),

@@ -1,5 +1,6 @@
 //! What happens when, in words: the timeline under the picture of strength over time.
 
+use super::assumptions::changes;
 use super::format::{strength, three, with_unit};
 use crate::fight::Fight;
 use crate::outcome::{Breaks, Ended};
@@ -95,9 +96,12 @@ fn happenings(statement: &Statement, instant: &Instant, before: Option<&Instant>
             parts.push((what, String::new()));
         }
     }
-    for phase in &instant.phases {
-        parts.push((format!("phase {phase} begins"), format!("phase {phase}")));
-    }
+    parts.extend(instant.phases.iter().map(|number| phase(statement, *number)));
+    parts.extend(
+        before
+            .into_iter()
+            .flat_map(|before| of_range(statement, instant, before)),
+    );
     for side in Side::BOTH {
         let asked = instant.withdrawals[side];
         if asked > 0.0 {
@@ -115,6 +119,43 @@ fn happenings(statement: &Statement, instant: &Instant, before: Option<&Instant>
         }
     }
     parts
+}
+
+/// A phase that begins, and what changes with it.
+fn phase(statement: &Statement, number: u8) -> (String, String) {
+    let phase = statement.terms.phases.iter().find(|phase| phase.number == number);
+    let changes = phase.into_iter().flat_map(|phase| {
+        let words = Side::BOTH.map(|side| (&statement.names[side], changes(phase, side)));
+        words.into_iter().filter(|(_, words)| !words.is_empty())
+    });
+    let changes: Vec<String> = changes
+        .map(|(name, words)| format!("of {name}: {words}"))
+        .collect();
+    let what = match changes[..] {
+        [] => format!("phase {number} begins"),
+        _ => format!("phase {number} begins, {}", changes.join("; ")),
+    };
+    (what, format!("phase {number}"))
+}
+
+/// What the closing of the range does at an instant: a side's fire begins to reach, or the range closes no further.
+fn of_range(statement: &Statement, instant: &Instant, before: &Instant) -> Vec<(String, String)> {
+    let grows = |instant: &Instant, side: Side| {
+        let conditions = &instant.conditions;
+        conditions.growth[side].is_some() && conditions.fire[side].takes_effect()
+    };
+    let sides = |what: fn(bool, bool) -> bool| {
+        let is_so = move |side: &Side| what(grows(before, *side), grows(instant, *side));
+        Side::BOTH.into_iter().filter(is_so)
+    };
+    let reaching = sides(|before, now| now && !before);
+    let mut parts: Vec<String> = reaching
+        .map(|side| format!("the range is down to the reach of {}", statement.names[side]))
+        .collect();
+    if sides(|before, now| before && !now).next().is_some() {
+        parts.push("the range closes no further".into());
+    }
+    parts.into_iter().map(|what| (what, String::new())).collect()
 }
 
 /// The force ratio, and what each side loses per unit of time.
@@ -158,6 +199,29 @@ mod tests {
     use crate::fight::{Effort, fight};
     use crate::pairs::Pairs;
     use crate::statement::Values;
+
+    /// The moments of `link` after its start, each with what happens.
+    fn moments(link: &str) -> Vec<(f64, String)> {
+        let statement = Statement::read(&Pairs::parse(link)).expect("it is one");
+        let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+        let moments = timeline(&statement, &fight).into_iter().skip(1);
+        moments.map(|moment| (moment.time, moment.what)).collect()
+    }
+
+    /// The range met a reach, and a phase began, without a word of what that changed.
+    #[test]
+    fn what_changes_with_the_range_and_with_a_phase_is_told() {
+        let link = "x.name=Tarn&x.start=400&x.rate=0.02&x.reach=900&y.name=Osk&y.start=300&y.rate=0.01&range=1000&\
+                    range.closing=100&range.least=400&phase1.from=3&phase1.y.rate=0.02&phase1.y.wastage=0.01&until=8";
+        let found = moments(link);
+        let told = [
+            (1.0, "the range is down to the reach of Tarn"),
+            (3.0, "phase 1 begins, of Osk: rate 0.02; wastage 0.01"),
+            (6.0, "the range closes no further"),
+            (8.0, "the clock"),
+        ];
+        assert_eq!(found, told.map(|(time, what)| (time, what.to_owned())));
+    }
 
     /// A withdrawal at which the fight ends begins no stretch: it was said that nobody had gone.
     #[test]

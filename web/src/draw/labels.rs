@@ -209,13 +209,10 @@ impl Labels {
         self.set(pen, &line.label, Hand::italic(side_colour(pen, side)), &places)
     }
 
-    /// Words around a point of a map.
+    /// Words in a part of a map, at one of the places that lie within it: a little beside them is another part.
     fn region(&mut self, pen: &mut Pen<'_>, line: &Line) -> Drawn {
         let points = line.points.iter().map(|point| self.field.place(*point));
-        let heights = [0.0, -16.0, 16.0, -32.0, 32.0];
-        let places: Vec<_> = points
-            .flat_map(|(x, y)| heights.map(|height| ((x, y + height), HPos::Center, VPos::Center)))
-            .collect();
+        let places: Vec<_> = points.map(|at| (at, HPos::Center, VPos::Center)).collect();
         self.set(pen, &line.label, Hand::italic(pen.ink.ink), &places)
     }
 
