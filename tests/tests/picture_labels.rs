@@ -211,3 +211,25 @@ fn what_happens_on_a_map_is_told_where_it_does() {
     }
     assert!(told > 5, "{told}");
 }
+
+/// Letters as wide as DejaVu's left no room for the words of the last level: then its number stands there.
+#[test]
+fn a_level_without_room_for_words_has_its_number() {
+    struct Wide;
+    impl Measure for Wide {
+        fn width(&self, text: &str, family: &str, size: f64, italic: bool) -> f64 {
+            2.0 * UsualWidths.width(text, family, size, italic)
+        }
+    }
+    let (strength, _) = pictures(&format!("{PLAIN}&y.join=64@4,20@6"));
+    let mut svg = String::new();
+    {
+        let mut backend = Measured::new(SVGBackend::with_string(&mut svg, (360, 200)), Wide);
+        draw(&mut backend, 1.0, &Ink::light(), &strength).expect("it can be drawn");
+    }
+    assert!(svg.contains("274"), "{svg}");
+    assert!(
+        !svg.contains("274: Vessary breaks"),
+        "there was room after all: make it wider"
+    );
+}

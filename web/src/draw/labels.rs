@@ -205,8 +205,16 @@ impl Labels {
                 places.push(((x, y - 3.0), HPos::Left, VPos::Bottom));
                 places.push(((x, y + 3.0), HPos::Left, VPos::Top));
             }
+            places.push(((to.0 - 3.0, to.1 - 3.0), HPos::Right, VPos::Bottom));
+            places.push(((to.0 - 3.0, to.1 + 3.0), HPos::Right, VPos::Top));
         }
-        self.set(pen, &line.label, Hand::italic(side_colour(pen, side)), &places)
+        let hand = Hand::italic(side_colour(pen, side));
+        // Where there is no room for all its words, the number tells the level.
+        let (number, _) = line.label.split_once(": ").unwrap_or_default();
+        if !self.has_set(pen, &line.label, hand, &places)? && !number.is_empty() {
+            self.set(pen, number, hand, &places)?;
+        }
+        Ok(())
     }
 
     /// Words in a part of a map, at one of the places that lie within it: a little beside them is another part.
@@ -236,7 +244,19 @@ impl Labels {
         self.set(pen, &line.label, hand, &places)
     }
 
+    /// Sets words at the best of `places`.
     fn set(&mut self, pen: &mut Pen<'_>, text: &str, hand: Hand, places: &[(Point, HPos, VPos)]) -> Drawn {
+        self.has_set(pen, text, hand, places).map(drop)
+    }
+
+    /// The same; says whether there was room for them.
+    fn has_set(
+        &mut self,
+        pen: &mut Pen<'_>,
+        text: &str,
+        hand: Hand,
+        places: &[(Point, HPos, VPos)],
+    ) -> Drawn<bool> {
         let room = pen.size().0 - 6.0;
         let room = room.min((self.field.right - self.field.left) * 0.8);
         let text = pen.fitted(text, hand.at(HPos::Left, VPos::Top), room);
@@ -252,18 +272,19 @@ impl Labels {
             }
         }
         let Some((cost, at, set, extent)) = best else {
-            return Ok(());
+            return Ok(false);
         };
         // In a low picture there is no room for everything: the names of the sides stay, and words on words help nobody.
         if cost >= OTHER_WORDS && hand.italic {
-            return Ok(());
+            return Ok(false);
         }
         self.taken.push(extent);
         if cost >= 1.0 || self.on_ground {
-            pen.label_on_paper(&text, at, set)
+            pen.label_on_paper(&text, at, set)?;
         } else {
-            pen.label(&text, at, set)
+            pen.label(&text, at, set)?;
         }
+        Ok(true)
     }
 
     /// How much words in this box would cover.

@@ -7,7 +7,7 @@ use plotters_backend::BackendCoord;
 use std::fmt::Debug;
 
 /// What drawing gives back: in words where the backend refuses.
-pub type Drawn = Result<(), String>;
+pub type Drawn<T = ()> = Result<T, String>;
 
 /// The few things that a pen needs of a backend.
 pub(crate) trait Surface {
