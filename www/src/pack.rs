@@ -8,10 +8,12 @@ use lzma_rust2::{LzmaOptions, LzmaWriter};
 /// How hard it is tried, of 0 to 9.
 const HARDEST: u32 = 9;
 
-/// The bytes packed by LZMA with three bits of literal context and none of position, the same ones each time.
+/// The bytes packed by LZMA with four bits of literal context and none of position, the same ones each time.
 pub(crate) fn packed(bytes: &[u8]) -> Result<Vec<u8>> {
     let mut options = LzmaOptions::with_preset(HARDEST);
-    (options.lc, options.lp, options.pb) = (3, 0, 0);
+    (options.lc, options.lp, options.pb) = (4, 0, 0);
+    // Half a per cent less than the preset's, for seconds of the build.
+    (options.nice_len, options.depth_limit) = (LzmaOptions::NICE_LEN_MAX, 2_000);
     let mut writer = LzmaWriter::new_use_header(Vec::new(), &options, Some(bytes.len() as u64))?;
     writer.write_all(bytes)?;
     Ok(writer.finish()?)

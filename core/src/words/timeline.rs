@@ -123,39 +123,38 @@ fn happenings(statement: &Statement, instant: &Instant, before: Option<&Instant>
 
 /// A phase that begins, and what changes with it.
 fn phase(statement: &Statement, number: u8) -> (String, String) {
+    let mut what = format!("phase {number} begins");
     let phase = statement.terms.phases.iter().find(|phase| phase.number == number);
-    let changes = phase.into_iter().flat_map(|phase| {
-        let words = Side::BOTH.map(|side| (&statement.names[side], changes(phase, side)));
-        words.into_iter().filter(|(_, words)| !words.is_empty())
-    });
-    let changes: Vec<String> = changes
-        .map(|(name, words)| format!("of {name}: {words}"))
-        .collect();
-    let what = match changes[..] {
-        [] => format!("phase {number} begins"),
-        _ => format!("phase {number} begins, {}", changes.join("; ")),
-    };
+    for side in Side::BOTH {
+        let words = phase.map(|phase| changes(phase, side)).unwrap_or_default();
+        if !words.is_empty() {
+            what += &format!(", {}: {words}", statement.names[side]);
+        }
+    }
     (what, format!("phase {number}"))
 }
 
 /// What the closing of the range does at an instant: a side's fire begins to reach, or the range closes no further.
 fn of_range(statement: &Statement, instant: &Instant, before: &Instant) -> Vec<(String, String)> {
-    let grows = |instant: &Instant, side: Side| {
-        let conditions = &instant.conditions;
-        conditions.growth[side].is_some() && conditions.fire[side].takes_effect()
-    };
-    let sides = |what: fn(bool, bool) -> bool| {
-        let is_so = move |side: &Side| what(grows(before, *side), grows(instant, *side));
-        Side::BOTH.into_iter().filter(is_so)
-    };
-    let reaching = sides(|before, now| now && !before);
-    let mut parts: Vec<String> = reaching
-        .map(|side| format!("the range is down to the reach of {}", statement.names[side]))
-        .collect();
-    if sides(|before, now| before && !now).next().is_some() {
-        parts.push("the range closes no further".into());
+    let mut parts = Vec::new();
+    let mut closes = true;
+    for side in Side::BOTH {
+        let grows = |instant: &Instant| {
+            instant.conditions.growth[side].is_some() && instant.conditions.fire[side].takes_effect()
+        };
+        match (grows(before), grows(instant)) {
+            (false, true) => {
+                let what = format!("the range is down to the reach of {}", statement.names[side]);
+                parts.push((what, String::new()));
+            }
+            (true, false) => closes = false,
+            _ => {}
+        }
     }
-    parts.into_iter().map(|what| (what, String::new())).collect()
+    if !closes {
+        parts.push(("the range closes no further".into(), String::new()));
+    }
+    parts
 }
 
 /// The force ratio, and what each side loses per unit of time.
@@ -216,7 +215,7 @@ mod tests {
         let found = moments(link);
         let told = [
             (1.0, "the range is down to the reach of Tarn"),
-            (3.0, "phase 1 begins, of Osk: rate 0.02; wastage 0.01"),
+            (3.0, "phase 1 begins, Osk: rate 0.02; wastage 0.01"),
             (6.0, "the range closes no further"),
             (8.0, "the clock"),
         ];

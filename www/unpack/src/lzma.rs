@@ -1,11 +1,11 @@
 //! LZMA as I. Pavlov's specification describes it (LZMA SDK, `lzma-specification.txt`), for streams with a header that
-//! were packed with three bits of literal context and none of position.
+//! were packed with four bits of literal context and none of position.
 //!
 //! Every table has a power of two of entries and is read at an index cut to fit, so that no stream, however broken, can
 //! make it panic; what it gives then is not what was packed, and the browser refuses it as a program.
 
-/// What a header says of three bits of literal context and none of position.
-const PROPERTIES: u8 = 3;
+/// What a header says of four bits of literal context and none of position.
+const PROPERTIES: u8 = 4;
 
 /// The length of a header: the properties, the size of the window, the length of what was packed.
 const HEADER: usize = 13;
@@ -186,7 +186,7 @@ struct Unpacker<'a> {
     state: usize,
     /// The last four distances, less one, the latest first.
     distances: [usize; 4],
-    literal: [Chance; 8192],
+    literal: [Chance; 16384],
     is_match: ByState,
     is_known: ByState,
     is_older: [ByState; 3],
@@ -202,7 +202,7 @@ impl Unpacker<'_> {
             bits: Bits::new(stream),
             state: 0,
             distances: [0; 4],
-            literal: [EVEN; 8192],
+            literal: [EVEN; 16384],
             is_match: [EVEN; 16],
             is_known: [EVEN; 16],
             is_older: [[EVEN; 16]; 3],
@@ -241,7 +241,7 @@ impl Unpacker<'_> {
 
     /// A byte of its own, by the one before it; behind a repetition also by the one that would have come next there.
     fn byte(&mut self, before: u8, expected: u8) -> u8 {
-        let context = usize::from(before >> 5) * 0x300;
+        let context = usize::from(before >> 4) * 0x300;
         let (mut expected, mut symbol) = (usize::from(expected), 1);
         let mut as_expected = self.state >= 7;
         while symbol < 0x100 {
@@ -249,7 +249,7 @@ impl Unpacker<'_> {
             expected <<= 1;
             let table = if as_expected { 1 + bit } else { 0 };
             let place = context + (table << 8) + symbol;
-            let got = self.bits.bit(&mut self.literal[place & 8191]);
+            let got = self.bits.bit(&mut self.literal[place & 16383]);
             symbol = symbol << 1 | got;
             as_expected &= got == bit;
         }
