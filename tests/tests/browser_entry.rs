@@ -344,7 +344,7 @@ fn a_rate_that_was_entered_as_per_cent_follows_the_law() {
 
     // A number that was typed as a rate is kept, and the page says so, until another is written by whatever means.
     browser.write("x.rate", "0.05");
-    browser.choose("x.fire", "aimed");
+    browser.choose_value("x.fire", "aimed");
     assert_eq!(browser.value("x.rate"), "0.05");
     assert!(kept().contains("its unit is not"));
     let again = changed(&changed(&area, "x.fire", "aimed"), "x.rate", "0.05");
