@@ -123,6 +123,40 @@ fn next_to_a_tie_the_outcome_does_not_change_back_and_forth() {
     }
 }
 
+/// X fades, and what comes in of Y and wastes away tends to flow/wastage. A broken power of the last of X holds Y off that for
+/// longer than any course: it was said to grow without bound, or to tend to what it was then.
+#[test]
+fn what_comes_in_tends_to_what_it_tends_to_alone_where_its_enemy_fades() {
+    let y = "y.fire=power&y.p=1&y.wastage=0.05&y.flow=2@0/&y.start=30";
+    for (x, y_fire, wastage) in [
+        (
+            "x.fire=power&x.rate=0.05&x.p=0.5&x.q=1",
+            "y.rate=0.0004&y.q=1.5",
+            "",
+        ),
+        (
+            "x.fire=power&x.rate=0.05&x.p=0.5&x.q=1",
+            "y.rate=0.0004&y.q=2",
+            "",
+        ),
+        ("x.fire=power&x.rate=0.05&x.p=1&x.q=1", "y.rate=0.01&y.q=2", ""),
+        (
+            "x.fire=search&x.rate=0.05&x.half=20",
+            "y.rate=0.0004&y.q=1",
+            "&x.wastage=0.02",
+        ),
+    ] {
+        let link = format!("x.start=50&{x}{wastage}&{y}&{y_fire}");
+        let found = ended(&link);
+        assert_eq!(
+            (found.breaks, found.ended),
+            (Breaks::Neither, Ended::Equilibrium),
+            "{link}"
+        );
+        assert_eq!((found.x.end, found.y.end), (Some(0.0), Some(40.0)), "{link}");
+    }
+}
+
 /// A line that is below 0 since some were withdrawn rises with what flows in, and is met once it is above 0: 600 of
 /// 1000 were withdrawn, and 7 an hour come and are lost. It was missed, however far it rose.
 #[test]

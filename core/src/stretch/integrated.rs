@@ -17,6 +17,9 @@ const FADED: f64 = 1e-13;
 /// The part of the time so far in which a side is gone that has come to its last moment.
 const LAST_MOMENT: f64 = 1e-13;
 
+/// The part of what comes in and what is lost up to which the rest of the two is their rounding.
+const BALANCED: f64 = 1e-13;
+
 /// An integrated stretch.
 #[derive(Clone, Debug)]
 pub(super) struct Integrated {
@@ -190,10 +193,30 @@ impl Integrated {
     /// Where the integrator's course ends with one side gone: the strengths then, and how the other goes on.
     fn alone(&self) -> Option<(Both<f64>, LinearSystem)> {
         let left = self.course.end();
-        let gone = |side: Side| {
+        self.without(|side: Side| {
             left[side] <= LEAST.max(GONE * self.start[side]) && self.conditions.flow[side] == 0.0
-        };
-        Side::BOTH.into_iter().any(gone).then_some(())?;
+        })
+    }
+
+    /// Where a side fades for ever and its fire with it: what comes in of the other tends to what it tends to alone. A broken
+    /// power of the last few may hold it off that for longer than any course.
+    fn alone_in_the_end(&self) -> Option<(Both<f64>, LinearSystem)> {
+        self.without(|side: Side| {
+            let fire = &self.conditions.fire[side];
+            let fire_fades = !fire.takes_effect() || fire.shooters().exponent > 0.0;
+            self.has_faded(side) && fire_fades && self.conditions.flow[side.enemy()] > 0.0
+        })
+    }
+
+    /// Whether what is left of `side` at the end of the course is so little that it has not come to rest.
+    fn has_faded(&self, side: Side) -> bool {
+        self.conditions.flow[side] == 0.0 && self.course.end()[side] <= FADED * self.start[side]
+    }
+
+    /// The strengths at the end of the course without a side that is `gone`, and how the other goes on.
+    fn without(&self, gone: impl Fn(Side) -> bool) -> Option<(Both<f64>, LinearSystem)> {
+        let left = self.course.end();
+        Side::BOTH.into_iter().any(&gone).then_some(())?;
         let start = Both::of(|side| if gone(side) { 0.0 } else { left[side] });
         let system = self.conditions.without_fire().linear(start)?;
         Some((start, system))
@@ -201,15 +224,16 @@ impl Integrated {
 
     /// Whether `side` still grows at the end of the course.
     fn grows(&self, side: Side) -> bool {
-        let late = self.course.until();
+        let (late, left) = (self.course.until(), self.course.end());
         let slope = self.course.slopes_at(late)[side];
-        slope > 0.0 && slope * late > 1e-6 * self.course.end()[side]
+        let rests = balances(&self.conditions, side, left, slope);
+        slope > 0.0 && !rests && slope * late > 1e-6 * left[side]
     }
 
     /// Where it tends where it never ends.
     pub(super) fn endless(&self) -> TheEnd {
         let course = &self.course;
-        if let Some((start, system)) = self.alone() {
+        if let Some((start, system)) = self.alone().or_else(|| self.alone_in_the_end()) {
             let later = linear::endless(&self.conditions.without_fire(), start, &system);
             let losses = course.losses_at(course.until());
             return TheEnd {
@@ -222,8 +246,7 @@ impl Integrated {
         let end = Both::of(|side| {
             if self.grows(side) {
                 None
-            } else if self.conditions.flow[side] == 0.0 && left[side] <= FADED * self.start[side] {
-                // What is that little has not come to rest: it fades.
+            } else if self.has_faded(side) {
                 Some(0.0)
             } else {
                 Some(left[side])
@@ -260,13 +283,19 @@ fn has_settled(course: &Course, start: Both<f64>, conditions: &Conditions, lengt
         conditions.flow[side] == 0.0 && now[side] <= part * start[side] && !comes_to_nothing(side, conditions)
     };
     let rests = |side: Side| {
-        let lost = steady_losses(conditions, now, 1.0)[side].all;
         let slope = slopes[side].abs();
         let fades_out = endless && faded(side.enemy()) && slope * t <= 1e-13 * now[side];
         let still = slope == 0.0 || slope * length <= 1e-13 * now[side];
-        slope <= 1e-13 * (lost + conditions.flow[side]) || still || faded(side) || fades_out
+        balances(conditions, side, now, slope) || still || faded(side) || fades_out
     };
     rests(Side::X) && rests(Side::Y)
+}
+
+/// Whether what comes in of `side` and what it loses with the strengths `now` balance to rounding, where it changes by
+/// `slope` per unit of time.
+fn balances(conditions: &Conditions, side: Side, now: Both<f64>, slope: f64) -> bool {
+    let lost = conditions.losses_per_time(side, now).all;
+    slope <= BALANCED * (lost + conditions.flow[side])
 }
 
 /// Whether the losses of `side` do not vanish with it, so that it may be gone in finite time.
