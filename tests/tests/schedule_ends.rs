@@ -284,3 +284,28 @@ fn a_line_at_the_clock_is_reached_behind_a_cut() {
         }
     }
 }
+
+/// Nobody of X has been committed until its flow begins at 3 h, so that it cannot break: where Y came to nothing before, it was
+/// said to break with it.
+#[test]
+fn a_side_of_which_nobody_has_been_committed_does_not_break() {
+    let found = ended(
+        "x.start=0&x.fire=area&x.rate=0.04&x.support.area=1e9&x.flow=0.001@3/5&y.start=1e-9&y.fire=power&\
+         y.rate=1e-5&y.p=1&y.q=2&y.support.area=0.04&y.support.aimed=1e-20&\
+         y.flow=1e-300@1e-9/1e9,1e-5@735e-2/&range=1&range.closing=5177e-5&range.least=500&x.reach=500&\
+         x.reach.shape=2&phase1.from=25e-0&phase1.x.fire=logarithmic&phase1.x.rate=0.04&\
+         phase2.from=1266e-3&phase2.x.support.aimed=1e-5&phase3.from=5&phase3.x.fire=logarithmic&\
+         phase3.x.rate=0.05&phase4.from=1e-9&phase4.x.fire=area&phase4.x.rate=0",
+    );
+    assert_eq!(
+        (found.breaks, found.ended),
+        (Breaks::Y, Ended::Break),
+        "{found:?}"
+    );
+    assert_close(
+        found.time.expect("a time"),
+        1.266,
+        1e-12,
+        "as the support of X begins",
+    );
+}

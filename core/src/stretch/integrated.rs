@@ -92,8 +92,11 @@ impl Integrated {
         (self.course.stopped() == Stopped::Short && end < length && self.alone().is_none()).then_some(end)
     }
 
-    /// The first time up to `length` at which `side` is at its line.
+    /// The first time up to `length` at which `side` is at its line; `None` of a side with nobody there, and nobody to come.
     pub(super) fn first_reach(&self, side: Side, way: &WayDown, length: f64) -> Option<f64> {
+        if self.start[side] == 0.0 && self.conditions.flow[side] == 0.0 {
+            return None;
+        }
         let line = Line {
             at: f64::from(way.descent.to),
             rising: way.rising,
