@@ -309,3 +309,19 @@ fn a_side_of_which_nobody_has_been_committed_does_not_break() {
         "as the support of X begins",
     );
 }
+
+/// Y is gone at the moment at which its reinforcement begins: it was gone by then. The integrator ends a hair before, and took
+/// what was left up again and again, to no end.
+#[test]
+fn a_break_at_the_moment_at_which_something_begins_is_a_break() {
+    let found = ended(
+        "x.start=600&x.fire=power&x.rate=1e-20&x.p=1.5&x.q=0.9&x.support.aimed=50&y.start=100&y.fire=area&y.rate=1e-5\
+         &y.flow=5@2/6",
+    );
+    assert_eq!(
+        (found.breaks, found.ended),
+        (Breaks::Y, Ended::Break),
+        "{found:?}"
+    );
+    assert_close(found.time.expect("a time"), 2.0, 1e-15, "when it begins");
+}

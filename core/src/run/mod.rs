@@ -352,6 +352,8 @@ impl Run {
             let due = first.as_ref().map(|first| first.breaks);
             let comes = match first.filter(|first| span.is_on_time(at + first.time)) {
                 Some(first) => Comes::Break(first),
+                // What is due at its end comes to it, though the integrator may have ended a hair before.
+                None if due.is_some() && length.is_finite() => Comes::Through(length, stretch.at(length)),
                 None => Comes::through(stretch, length),
             };
             (due, comes)
