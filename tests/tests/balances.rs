@@ -157,6 +157,28 @@ fn what_comes_in_tends_to_what_it_tends_to_alone_where_its_enemy_fades() {
     }
 }
 
+/// What comes in of X keeps it alive where its losses vanish with it, as y·x^q does: at (0.05/(0.5·300))^10 here. It was said
+/// to break once it came down towards that faster than its digits could tell.
+#[test]
+fn a_side_that_comes_down_to_next_to_nothing_is_kept_alive_by_its_flow() {
+    let link = "x.start=600&x.fire=none&x.flow=0.05@0/&y.start=300&y.fire=power&y.p=1&y.q=0.1&y.rate=0.5";
+    let found = ended(link);
+    assert_eq!(
+        (found.breaks, found.ended),
+        (Breaks::Neither, Ended::Equilibrium),
+        "{found:?}"
+    );
+    let balance = (0.05_f64 / 150.0).powi(10);
+    assert!(off(found.x.end.expect("an end"), balance) < 1e-12, "{found:?}");
+    // More lost with nobody there than comes in, it breaks.
+    let found = ended(&format!("{link}&y.support.aimed=0.06"));
+    assert_eq!(
+        (found.breaks, found.ended),
+        (Breaks::X, Ended::Break),
+        "{found:?}"
+    );
+}
+
 /// A line that is below 0 since some were withdrawn rises with what flows in, and is met once it is above 0: 600 of
 /// 1000 were withdrawn, and 7 an hour come and are lost. It was missed, however far it rose.
 #[test]

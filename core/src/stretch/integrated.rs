@@ -110,36 +110,57 @@ impl Integrated {
     }
 
     /// The moment at which a side comes to 0 where its losses do not vanish with it: the integrator's steps shrink with
-    /// what is left of the time, and end a hair before. So near to it the enemy no longer changes, and what is left falls as
-    /// the power 1/(1 − q) of the time that is left.
+    /// what is left of the time, and end a hair before; with so few, the enemy no longer changes.
     fn last_moment(&self, side: Side, line: Line, length: f64) -> Option<f64> {
-        let end = self.course.until();
-        let enemy = side.enemy();
-        let fire = &self.conditions.fire[enemy];
-        let [first, _] = fire.per_target();
-        let steady = self.conditions.steadily_lost(side);
-        let comes = comes_to_nothing(side, &self.conditions);
-        let left = self.course.end();
-        let growth = self.conditions.growth_at(enemy, end);
-        let pace = self.conditions.losses_per_time(side, left);
-        // What is lost whatever the strength is lost down to the very last, which may be rounded to nobody.
-        let coming = (pace.fire * growth).max(steady);
-        let flow = self.conditions.flow[side];
-        let falls = (pace.all * growth).max(steady) - flow;
+        let (end, left) = (self.course.until(), self.course.end()[side]);
+        let rest = self.rest(side)?;
         // Of so few the powers have no digits: whatever they lose is all of them.
-        if self.start[side] <= LEAST && line.at > 0.0 && falls > 0.0 {
+        let few = self.start[side] <= LEAST;
+        if few && line.at > 0.0 {
             return Some(end);
         }
-        let order = if steady > 0.0 { 1.0 } else { 1.0 + first.exponent };
-        let is_next = left[side] <= LEAST || left[side] <= LAST_MOMENT * end * falls * order;
-        let goes_on = self.start[side] > LEAST && flow == 0.0 && pace.all <= 2.0 * coming;
-        let rest = if goes_on {
-            left[side] / (falls * order)
+        if end >= length || line.at != 0.0 || line.rising != 0.0 || !comes_to_nothing(side, &self.conditions)
+        {
+            return None;
+        }
+        let flow = self.conditions.flow[side];
+        let is_gone = flow == 0.0 && left <= LEAST.max(GONE * self.start[side]);
+        let time = if few || flow > 0.0 { end } else { end + rest };
+        let is_next = is_gone || left <= LEAST || rest <= LAST_MOMENT * end;
+        (is_next && time <= length + end * LAST_MOMENT).then_some(time.min(length))
+    }
+
+    /// How long what is left of `side` at the end of the course lasts; `None` where it does not come to nothing.
+    ///
+    /// With n left, n' = −c·n^q − w·n: u = n^(1−q) has u' = −(1−q)·(c + w·u), and comes to 0 after
+    /// ln(1 + w·u/c)/((1−q)·w), or u/((1−q)·c) where nothing wastes away. That is no hair where q is next to 1: a hundredth
+    /// power of the last digits is a good part of the whole. Losses that do not depend on n are those with q = 0.
+    fn rest(&self, side: Side) -> Option<f64> {
+        let enemy = side.enemy();
+        let (end, left) = (self.course.until(), self.course.end());
+        let fire = self.conditions.fire_on(side, left, end);
+        let [first, _] = self.conditions.fire[enemy].per_target();
+        let steady = self.conditions.steadily_lost(side);
+        let flow = self.conditions.flow[side];
+        // What comes in keeps a side alive, however few, unless as much is lost with nobody there.
+        let to_the_last = if first.exponent == 0.0 {
+            steady + fire
         } else {
-            0.0
+            steady
         };
-        (end < length && line.at == 0.0 && line.rising == 0.0 && comes && falls > 0.0 && is_next)
-            .then_some((end + rest).min(length))
+        if flow > 0.0 && to_the_last <= flow {
+            return None;
+        }
+        let falls = steady + fire - flow;
+        let order = if steady > 0.0 { 1.0 } else { 1.0 + first.exponent };
+        let part = self.conditions.part_lost(side);
+        let constant = left[side] / falls;
+        let rest = if part > 0.0 {
+            libm::log1p(part * constant) / part
+        } else {
+            constant
+        } / order;
+        (falls > 0.0 && rest.is_finite()).then_some(rest)
     }
 
     /// When a side comes to its line after the end of the integrator's course: alone, or since the line rises to it.
