@@ -179,6 +179,37 @@ fn a_side_that_comes_down_to_next_to_nothing_is_kept_alive_by_its_flow() {
     );
 }
 
+/// With an exponent next to 1 a strength is long on its way from the last digits of a double to nothing: with u = x^(1−q),
+/// u' = −(1−q)·(c + w·u) gives the time. Below the root of the least double the series had no terms, the steps ended there, and
+/// X was said to be left with nobody and not to break.
+#[test]
+fn an_exponent_next_to_one_breaks_in_its_time() {
+    let c = 0.005 * 30.0;
+    for q in [0.9, 0.95, 0.98, 0.99] {
+        for w in [0.0, 0.02] {
+            let link = format!(
+                "x.start=600&x.fire=none&x.wastage={w}&y.start=30&y.fire=power&y.p=1&y.q={q}&y.rate=0.005"
+            );
+            // A flow of next to nothing has it integrated in any case.
+            for link in [link.clone(), format!("{link}&y.flow=1e-30@0/")] {
+                let found = ended(&link);
+                let order = 1.0 - q;
+                let u = 600.0_f64.powf(order) / c;
+                let time = if w > 0.0 {
+                    (w * u).ln_1p() / (w * order)
+                } else {
+                    u / order
+                };
+                assert_eq!((found.breaks, found.ended), (Breaks::X, Ended::Break), "{link}");
+                assert!(
+                    off(found.time.expect("a time"), time) < 1e-11,
+                    "{link}: {found:?} {time}"
+                );
+            }
+        }
+    }
+}
+
 /// A line that is below 0 since some were withdrawn rises with what flows in, and is met once it is above 0: 600 of
 /// 1000 were withdrawn, and 7 an hour come and are lost. It was missed, however far it rose.
 #[test]

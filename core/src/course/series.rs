@@ -4,6 +4,7 @@
 //! *Interval Analysis*, 1966, ch. 11). A coefficient takes as many products as its order: where little time is asked for,
 //! the series stops as soon as its terms no longer count.
 
+use super::LEAST;
 use crate::conditions::{Conditions, Growth};
 use crate::laws::Power;
 use crate::sides::{Both, Side};
@@ -19,6 +20,9 @@ const LEAST_ORDER: usize = 4;
 
 /// A series in the time since its start, in a unit of its own.
 pub(crate) type Series = [f64; ORDER + 1];
+
+/// The square of fewer than this may have no digits.
+const FEW: f64 = 1e-100;
 
 const NOTHING: Series = [0.0; ORDER + 1];
 
@@ -389,13 +393,19 @@ impl Raised {
         } else if exponent == 2.0 {
             coefficient * product(base, base, n)
         } else {
-            let (whole, each) = (exponent * NUMBER[n], exponent + 1.0);
+            // The product of two of next to nothing is none: where they are that few, b₀ is divided by first.
+            let over = if (LEAST..FEW).contains(&base[0]) {
+                1.0 / base[0]
+            } else {
+                1.0
+            };
+            let (whole, each) = (exponent * NUMBER[n] * over, (exponent + 1.0) * over);
             let terms = NUMBER[..n].iter().zip(&self.series[..n]);
             let sum: f64 = terms
                 .zip(base[1..=n].iter().rev())
                 .map(|((k, term), base)| (whole - each * k) * term * base)
                 .sum();
-            sum / (NUMBER[n] * base[0])
+            sum / (NUMBER[n] * (base[0] * over))
         };
         self.series[n]
     }
