@@ -210,6 +210,16 @@ fn an_exponent_next_to_one_breaks_in_its_time() {
     }
 }
 
+/// X comes in from nobody on, x = 20·t, and its fire begins with the root of that: y = 100·exp(−0.02·√20·t^1.5/1.5). The first
+/// moment, which has no series, took the losses at its end for those all through it, and Y was off by 5e-10 ever after.
+#[test]
+fn what_fire_begins_with_is_good_to_rounding() {
+    let link =
+        "x.start=0&x.fire=power&x.p=0.5&x.q=1&x.rate=0.02&x.flow=20@0/&y.start=100&y.fire=none&until=5";
+    let left = ended(link).y.end.expect("an end");
+    assert!(off(left, 51.341_711_903_259_2) < 1e-14, "{left}");
+}
+
 /// A line that is below 0 since some were withdrawn rises with what flows in, and is met once it is above 0: 600 of
 /// 1000 were withdrawn, and 7 an hour come and are lost. It was missed, however far it rose.
 #[test]

@@ -2,9 +2,10 @@
 
 use super::LEAST;
 use crate::conditions::Conditions;
+use crate::quadrature::integrate;
 use crate::sides::{Both, Side};
 
-/// A first moment, to first order.
+/// A first moment: what is lost, integrated along what comes in without those losses.
 pub(crate) struct FirstMoment {
     /// How long it is.
     pub(crate) length: f64,
@@ -31,40 +32,48 @@ impl FirstMoment {
             return None;
         }
         let mut length = until.min(1.0);
-        loop {
-            let (moment, small) = FirstMoment::of(length, start, conditions);
-            if small || length < SHORTEST {
-                return Some(moment);
-            }
+        while length >= SHORTEST && !is_short(length, start, conditions) {
             length *= 0.125;
         }
+        let along = |side: Side| {
+            let pace = |t: f64, _| conditions.fire_on(side, grown(t, start, conditions), t);
+            integrate(length, pace).value
+        };
+        let fire = Both::of(along);
+        let grown = grown(length, start, conditions);
+        let lost = lost(length, start, conditions, fire);
+        Some(FirstMoment {
+            length,
+            strength: Both::of(|side| grown[side] - lost[side]),
+            fire,
+        })
     }
+}
 
-    /// The moment of this length, and whether it is short enough. The losses per unit of time at its end bound those along
-    /// it.
-    fn of(length: f64, start: Both<f64>, conditions: &Conditions) -> (FirstMoment, bool) {
-        let grown = Both::of(|side: Side| start[side] + conditions.flow[side] * length);
-        let fire = Both::of(|side: Side| {
-            let enemy = side.enemy();
-            let growth = conditions.growth[enemy].map_or(1.0, |growth| growth.until(length) / length);
-            conditions.fire[enemy].losses_per_time(grown[enemy], grown[side]) * growth * length
-        });
-        let lost = Both::of(|side: Side| {
-            let exposure = 0.5 * (start[side] + grown[side]) * length;
-            let besides = conditions.part_lost(side) * exposure + conditions.steadily_lost(side) * length;
-            fire[side] + besides
-        });
-        let small = Side::BOTH.iter().all(|side| lost[*side] <= PART * grown[*side]);
-        let strength = Both::of(|side| grown[side] - lost[side]);
-        (
-            FirstMoment {
-                length,
-                strength,
-                fire,
-            },
-            small,
-        )
-    }
+/// The strengths at the time `t` without any losses.
+fn grown(t: f64, start: Both<f64>, conditions: &Conditions) -> Both<f64> {
+    Both::of(|side| start[side] + conditions.flow[side] * t)
+}
+
+/// What each side has lost by the time `t`, of which so much by fire.
+fn lost(t: f64, start: Both<f64>, conditions: &Conditions, fire: Both<f64>) -> Both<f64> {
+    let grown = grown(t, start, conditions);
+    Both::of(|side: Side| {
+        let exposure = 0.5 * (start[side] + grown[side]) * t;
+        fire[side] + conditions.part_lost(side) * exposure + conditions.steadily_lost(side) * t
+    })
+}
+
+/// Whether next to nothing is lost by the time `t`: the losses per unit of time at its end bound those along it.
+fn is_short(t: f64, start: Both<f64>, conditions: &Conditions) -> bool {
+    let grown = grown(t, start, conditions);
+    let fire = Both::of(|side: Side| {
+        let enemy = side.enemy();
+        let growth = conditions.growth[enemy].map_or(t, |growth| growth.until(t));
+        conditions.fire[enemy].losses_per_time(grown[enemy], grown[side]) * growth
+    });
+    let lost = lost(t, start, conditions, fire);
+    Side::BOTH.iter().all(|side| lost[*side] <= PART * grown[*side])
 }
 
 /// Whether the fire of `side` has a series at the start.
