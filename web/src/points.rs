@@ -3,20 +3,19 @@
 use crate::dom::{Dom, append_words, set};
 use aftercount_core::pairs::Pairs;
 use aftercount_core::words::points::remark;
-use std::collections::BTreeMap;
 use web_sys::Element;
 
 /// The remarks that are shown, by their keys.
 pub(crate) struct Points {
     dom: Dom,
-    shown: BTreeMap<String, String>,
+    shown: Vec<(String, String)>,
 }
 
 impl Points {
     pub(crate) fn new(dom: &Dom) -> Points {
         Points {
             dom: dom.clone(),
-            shown: BTreeMap::new(),
+            shown: Vec::new(),
         }
     }
 
@@ -25,10 +24,11 @@ impl Points {
         let now = remarks(pairs);
         let before = std::mem::take(&mut self.shown);
         for (key, words) in before {
-            if now.get(&key) == Some(&words) {
-                self.shown.insert(key, words);
+            let remark = (key, words);
+            if now.contains(&remark) {
+                self.shown.push(remark);
             } else {
-                self.say(&key, "");
+                self.say(&remark.0, "");
             }
         }
     }
@@ -76,7 +76,8 @@ fn id(key: &str) -> String {
     format!("{key}.points")
 }
 
-fn remarks(pairs: &Pairs) -> BTreeMap<String, String> {
+/// A list, and no map: to collect one the standard library sorts, by kilobytes of the page.
+fn remarks(pairs: &Pairs) -> Vec<(String, String)> {
     let of = |(key, text)| Some((String::from(key), remark(key, text)?));
     pairs.iter().filter_map(of).collect()
 }
