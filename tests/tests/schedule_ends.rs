@@ -325,3 +325,16 @@ fn a_break_at_the_moment_at_which_something_begins_is_a_break() {
     );
     assert_close(found.time.expect("a time"), 2.0, 1e-15, "when it begins");
 }
+
+/// Where both fires grow from nothing, next to nothing else lost made the unit of the series longer than any number, and the
+/// core went on for ever.
+#[test]
+fn next_to_nothing_lost_while_fire_grows_from_nothing_is_worked_out() {
+    let link = "x.start=839&x.break=0.6&x.fire=power&x.p=0.79&x.q=0.76&x.rate=0.00090384&y.start=881&y.break=0.3&y.fire=search&\
+                y.half=143&y.rate=0.01448&range=2000&range.closing=100&range.least=100&x.reach=500&x.reach.shape=2&\
+                y.reach=500&y.reach.shape=2";
+    for lost in ["5e-324", "1e-310", "1e-300", "1e-20"] {
+        let found = outcome(&format!("{link}&y.support.area={lost}"));
+        assert_eq!(found["breaks"], "y", "{lost}: {found}");
+    }
+}

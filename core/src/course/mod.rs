@@ -53,6 +53,10 @@ struct Summed {
     exposure: f64,
 }
 
+/// So many times the way to go a unit is long at most: of one without bound there is no series, and in one that is far longer
+/// the powers of the time are lost.
+const MOST_WAYS: f64 = 1e10;
+
 /// One step: its series, and what had been summed when it began.
 #[derive(Clone, Debug, PartialEq)]
 struct Step {
@@ -218,7 +222,8 @@ impl Course {
     /// The series from where the sides stand, its unit, and how many of it the next step takes.
     fn series(&self, until: f64, tolerance: f64) -> (f64, Expansion, f64) {
         let at = self.until;
-        let (mut unit, most) = unit_of(self.now, at, &self.conditions);
+        let (unit, most) = unit_of(self.now, at, &self.conditions);
+        let mut unit = unit.min(MOST_WAYS * (until - at));
         loop {
             let short = ((until - at) / unit).min(most);
             let (series, is_short) = Expansion::new(self.now, at, &self.conditions, unit, short, tolerance);

@@ -33,7 +33,7 @@ pub(super) fn unit_of(now: Both<f64>, at: f64, conditions: &Conditions) -> (f64,
     let doubles = doubles(Side::X).max(doubles(Side::Y));
     let (x, y) = (shares(Side::X), shares(Side::Y));
     let (share, net) = (x.0.max(y.0).max(doubles), x.1.max(y.1).max(doubles));
-    if share > 0.0 {
+    if (1.0 / share).is_finite() {
         (1.0 / share, MOST_UNITS * (share / net).min(MOST_BALANCED))
     } else {
         (1.0, f64::INFINITY)
