@@ -56,17 +56,17 @@ impl Shares {
         if plain.is_empty() {
             return String::new();
         }
-        let stands = pairs.get(&format!("{}.rate", side.letter())).unwrap_or_default();
-        if !stands.is_empty() && rate_of_per_cent(pairs, side, "1").is_err() {
-            self.waiting = rate_of_per_cent(pairs, side, text)
-                .err()
-                .map(|problem| (side, problem));
-            return stands.to_owned();
-        }
-        let rate = rate_of_per_cent(pairs, side, text).unwrap_or_else(|problem| {
-            self.waiting = Some((side, problem));
-            String::new()
-        });
+        let rate = match rate_of_per_cent(pairs, side, text) {
+            Ok(rate) => rate,
+            Err(problem) => {
+                self.waiting = Some((side, problem));
+                let stands = pairs.get(&format!("{}.rate", side.letter())).unwrap_or_default();
+                if !stands.is_empty() && rate_of_per_cent(pairs, side, "1").is_err() {
+                    return stands.to_owned();
+                }
+                String::new()
+            }
+        };
         if aftercount_core::number::read(plain).is_err() {
             return format!("{plain} %");
         }

@@ -174,13 +174,13 @@ fn regions(statement: &Statement, chart: &Chart) -> Vec<Line> {
     let mut roomy: Vec<Place> = places.iter().map(|place| place.among(&places)).collect();
     sort_by(&mut roomy, |a, b| b.room.cmp(&a.room));
     let mut lines: Vec<Line> = Vec::new();
-    for Place { step, told, room } in roomy {
+    for Place { step, told, room } in roomy.into_iter().take_while(|place| place.room >= ROOM) {
         let Some(story) = chart.stories().get(told.0) else {
             continue;
         };
         let label = happens(statement, story) + if told.1 { ", as wanted" } else { "" };
         let letters = label.chars().count() as i32;
-        if room < ROOM.max(letters / LETTERS) {
+        if room < letters / LETTERS {
             continue;
         }
         let [across, up] = chart.values([step.0, step.1].map(|step| f64::from(step) / f64::from(STEPS)));
