@@ -327,14 +327,27 @@ fn a_break_at_the_moment_at_which_something_begins_is_a_break() {
 }
 
 /// Where both fires grow from nothing, next to nothing else lost made the unit of the series longer than any number, and the
-/// core went on for ever.
+/// core went on for ever. It is then the state equation's fight, by another method: only one term of the series in as many as
+/// the growth has orders is there, and what the last two say of the length of a step is nothing.
 #[test]
 fn next_to_nothing_lost_while_fire_grows_from_nothing_is_worked_out() {
-    let link = "x.start=839&x.break=0.6&x.fire=power&x.p=0.79&x.q=0.76&x.rate=0.00090384&y.start=881&y.break=0.3&y.fire=search&\
-                y.half=143&y.rate=0.01448&range=2000&range.closing=100&range.least=100&x.reach=500&x.reach.shape=2&\
-                y.reach=500&y.reach.shape=2";
-    for lost in ["5e-324", "1e-310", "1e-300", "1e-20"] {
-        let found = outcome(&format!("{link}&y.support.area={lost}"));
-        assert_eq!(found["breaks"], "y", "{lost}: {found}");
+    for shape in ["0.3", "1", "1.5", "2", "3", "4", "7", "9.5", "10"] {
+        let link = format!(
+            "x.start=839&x.break=0.6&x.fire=power&x.p=0.79&x.q=0.76&x.rate=0.00090384&y.start=881&y.break=0.3&y.fire=search&\
+             y.half=143&y.rate=0.01448&range=2000&range.closing=100&range.least=100&x.reach=500&x.reach.shape={shape}&\
+             y.reach=500&y.reach.shape={shape}"
+        );
+        let alone = ended(&link);
+        for lost in ["5e-324", "1e-310", "1e-300", "1e-20"] {
+            let found = ended(&format!("{link}&y.support.area={lost}"));
+            let what = format!("shape {shape}, {lost}");
+            assert_eq!(found.breaks, alone.breaks, "{what}");
+            assert_close(
+                found.time.expect("a time"),
+                alone.time.expect("a time"),
+                1e-14,
+                &what,
+            );
+        }
     }
 }

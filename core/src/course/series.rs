@@ -15,7 +15,7 @@ use crate::terms::Fire;
 /// Mathematics 14 (2005) 99–117).
 pub const ORDER: usize = 20;
 
-/// The least order: what begins slowly may have two terms of nothing before those that count.
+/// The least order: what begins slowly may have terms of nothing before those that count.
 const LEAST_ORDER: usize = 4;
 
 /// A series in the time since its start, in a unit of its own.
@@ -53,6 +53,8 @@ const SUMMED: Series = {
 pub(crate) struct Expansion {
     /// The last order that is there.
     pub(crate) order: usize,
+    /// Of so many orders in a row one has a term that says how the series goes on.
+    row: usize,
     /// The strengths.
     pub(crate) strength: Both<Series>,
     /// What each side has lost by fire.
@@ -69,6 +71,7 @@ impl Expansion {
         };
         Expansion {
             order: 1,
+            row: 1,
             strength: Both::of(|side| line(strength[side][0], strength[side][1])),
             fire: Both::of(|side| line(0.0, fire[side])),
         }
@@ -78,6 +81,7 @@ impl Expansion {
     pub(crate) fn constant(now: Both<f64>) -> Expansion {
         Expansion {
             order: ORDER,
+            row: 2,
             strength: Both::of(|side| {
                 let mut series = NOTHING;
                 series[0] = now[side];
@@ -89,8 +93,8 @@ impl Expansion {
 
     /// The series from the strengths `now` on, at the time `at` of the stretch, in time measured in `unit`.
     ///
-    /// It stops at the order whose last two terms are below the part `tolerance` of the strengths all through the time
-    /// `short`, in that unit; says whether it did.
+    /// It stops where a whole row of last terms is below the part `tolerance` of the strengths all through the time `short`,
+    /// in that unit; says whether it did.
     pub(crate) fn new(
         now: Both<f64>,
         at: f64,
@@ -99,11 +103,13 @@ impl Expansion {
         short: f64,
         tolerance: f64,
     ) -> (Expansion, bool) {
-        let mut found = Expansion::constant(now);
+        let mut found = Expansion {
+            row: row_of(conditions),
+            ..Expansion::constant(now)
+        };
         let mut fires = Both::of(|side: Side| FireSeries::new(conditions, side.enemy(), at, unit));
         let part = Both::of(|side| conditions.part_lost(side));
         let steady = Both::of(|side| conditions.flow[side] - conditions.steadily_lost(side));
-        let least = least_order(conditions);
         let (mut reach, mut small) = (1.0, 0);
         for n in 0..ORDER {
             let by_fire = Both::of(|side: Side| {
@@ -127,7 +133,7 @@ impl Expansion {
             } else {
                 0
             };
-            if small >= 2 && n + 1 >= least && short.is_finite() {
+            if small >= found.row && n + 1 >= LEAST_ORDER && short.is_finite() {
                 found.order = n + 1;
                 return (found, true);
             }
@@ -135,38 +141,50 @@ impl Expansion {
         (found, false)
     }
 
-    /// The longest step, in its own unit, whose last two terms are together about `tolerance` of the strengths.
+    /// The longest step, in its own unit, whose last terms are together about `tolerance` of the strengths.
+    ///
+    /// A term above the last two tells how fast the series falls, and so how small the last ones are where they are not
+    /// there.
     pub(crate) fn step_length(&self, tolerance: f64) -> f64 {
-        let reach = |order: usize| {
-            let part = |side: Side| {
-                let series = &self.strength[side];
-                if series[0] == 0.0 || series[order] == 0.0 {
-                    0.0
-                } else {
-                    (series[order] / series[0]).abs()
-                }
-            };
-            let part = part(Side::X).max(part(Side::Y));
-            if part > 0.0 {
-                libm::pow(tolerance / part, 1.0 / order as f64)
-            } else {
-                f64::INFINITY
-            }
-        };
+        let last = self.order;
+        let row = (last + 1).saturating_sub(self.row).max(1)..last - 1;
+        let falls = row.map(|order| self.reach(order, 1.0)).reduce(f64::min);
+        let further = falls.map_or(f64::INFINITY, |falls| {
+            falls * libm::pow(tolerance, 1.0 / NUMBER[last])
+        });
         // A side that begins with nothing is measured by what it comes to.
         let from_nothing = |side: Side| {
             let series = &self.strength[side];
-            let part = (series[self.order] / series[1]).abs();
+            let part = (series[last] / series[1]).abs();
             if series[0] == 0.0 && part.is_finite() && part > 0.0 {
-                libm::pow(tolerance / part, 1.0 / (self.order - 1) as f64)
+                libm::pow(tolerance / part, 1.0 / NUMBER[last - 1])
             } else {
                 f64::INFINITY
             }
         };
-        reach(self.order - 1)
-            .min(reach(self.order))
+        self.reach(last - 1, tolerance)
+            .min(self.reach(last, tolerance))
+            .min(further)
             .min(from_nothing(Side::X))
             .min(from_nothing(Side::Y))
+    }
+
+    /// The time in which the term of that order comes to the part `small` of the strengths.
+    fn reach(&self, order: usize, small: f64) -> f64 {
+        let part = |side: Side| {
+            let series = &self.strength[side];
+            if series[0] == 0.0 || series[order] == 0.0 {
+                0.0
+            } else {
+                (series[order] / series[0]).abs()
+            }
+        };
+        let part = part(Side::X).max(part(Side::Y));
+        if part > 0.0 {
+            libm::pow(small / part, 1.0 / NUMBER[order])
+        } else {
+            f64::INFINITY
+        }
     }
 
     /// The strengths at the time `t`.
@@ -241,13 +259,13 @@ impl Expansion {
     }
 }
 
-/// Fire that begins with nothing has no terms before the order of its growth.
-fn least_order(conditions: &Conditions) -> usize {
-    let begins = |side: Side| {
+/// Fire that begins with nothing has only one term in as many orders as its growth has, and one more.
+fn row_of(conditions: &Conditions) -> usize {
+    let row = |side: Side| {
         let power = conditions.growth[side].map_or(0.0, |growth| growth.power);
-        LEAST_ORDER + power.ceil() as usize
+        1 + power.ceil() as usize
     };
-    begins(Side::X).max(begins(Side::Y)).min(ORDER)
+    row(Side::X).max(row(Side::Y)).clamp(2, ORDER)
 }
 
 /// The series of the losses by one side's fire: rate × growth × S(shooters) × T(targets).
