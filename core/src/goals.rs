@@ -68,6 +68,26 @@ pub struct Short {
     pub by: f64,
     /// The same as a part of what is there, to compare with others.
     pub part: f64,
+    /// Where somebody must break in time and nobody ever does: the side nearest to its line, and `by` how far it is above.
+    pub unbroken: Option<Side>,
+}
+
+/// That nobody breaks misses a time by more than any break that comes too late.
+const NEVER: f64 = 1e12;
+
+impl Short {
+    /// The same of a break that must come within some time and does not come at all.
+    pub(crate) fn never(self) -> Short {
+        Short {
+            // What fades comes as near to its line as any.
+            part: if self.by > 0.0 {
+                NEVER * (1.0 + self.part)
+            } else {
+                f64::INFINITY
+            },
+            ..self
+        }
+    }
 }
 
 impl Bounds {
@@ -177,6 +197,7 @@ impl Goal {
         let strength = |side: Side, by: f64| Short {
             by,
             part: by / outcome.sides()[side].committed.max(f64::MIN_POSITIVE),
+            unbroken: None,
         };
         Some(match *self {
             Goal::Breaks(side) => strength(side, distances(engagement, outcome)[side]),
@@ -188,11 +209,26 @@ impl Goal {
                 bounds.off(outcome.sides()[side].end.unwrap_or(f64::INFINITY)),
             ),
             Goal::Lost(side, bounds) => strength(side, bounds.off(outcome.sides()[side].losses.all)),
-            Goal::Time(bounds) => {
-                let by = bounds.off(outcome.time.unwrap_or(f64::INFINITY));
-                let scale = bounds.high.or(bounds.low).unwrap_or(1.0).max(f64::MIN_POSITIVE);
-                Short { by, part: by / scale }
-            }
+            Goal::Time(bounds) => match outcome.time {
+                Some(time) => {
+                    let by = bounds.off(time);
+                    let scale = bounds.high.or(bounds.low).unwrap_or(1.0);
+                    Short {
+                        by,
+                        part: by / scale.max(f64::MIN_POSITIVE),
+                        unbroken: None,
+                    }
+                }
+                None => {
+                    let above = distances(engagement, outcome);
+                    let [x, y] = Side::BOTH.map(|side| Short {
+                        unbroken: Some(side),
+                        ..strength(side, above[side])
+                    });
+                    let nearer = if x.part <= y.part { x } else { y };
+                    nearer.never()
+                }
+            },
         })
     }
 }

@@ -125,9 +125,16 @@ fn the_types_name_every_part_of_the_answer_to_a_question() {
     let two = "x.rate=0.04&y.rate=0.05&x.start=600?&y.start=464?";
     let wanted = "&sothat=x.prevails,x.end:300..";
     let unmet = "&sothat=x.breaks,x.holds";
+    let unbroken = "&until=1e-4&sothat=time:..1e-5";
     let mut seen = BTreeSet::new();
     for text in [one, two] {
-        for sothat in ["", wanted, unmet] {
+        for sothat in ["", wanted, unmet, unbroken] {
+            // Of nobody the break would come in any time.
+            let text = if sothat == unbroken {
+                text.replace('?', "?400..700")
+            } else {
+                text.into()
+            };
             let text = format!("{text}{sothat}");
             for (name, part) in parts_of(&object(&text)["asked"][0]) {
                 let fields = fields(&types, name);

@@ -200,6 +200,42 @@ fn the_nearest_is_told_where_no_value_does() {
     );
 }
 
+/// Where nobody breaks by the clock, a break that must come within some time is missed by what the side nearest to its line
+/// is above it, or the one that is to break.
+#[test]
+fn the_nearest_of_a_time_at_which_nobody_breaks_is_told() {
+    let base = "y.start=400&x.rate=0.004&x.break=0.3&y.rate=0.005&y.break=0.3";
+    // Nobody has come or gone: the line is at 7 parts in 10 of the start.
+    let above_line = |start: &str, side: &str| {
+        let outcome = json(&format!("{base}&x.start={start}&until=10"));
+        let number = |name: &str| outcome[side][name].as_f64().expect("a number");
+        number("end") - 0.7 * number("start")
+    };
+    for (sothat, value, condition, side, unbroken) in [
+        ("time:..6", 200.0, 1, "x", "x".into()),
+        ("time:..6,x.prevails", 700.0, 2, "y", Value::Null),
+        ("y.holds,time:2..6", 200.0, 2, "x", "x".into()),
+    ] {
+        let asked = asked(&format!("{base}&x.start=?200..700&until=10&sothat={sothat}"));
+        assert_eq!(asked["met"].as_array().map(Vec::len), Some(0));
+        let nearest = &asked["nearest"];
+        assert_eq!(nearest["value"], value, "{sothat}: {nearest}");
+        assert_eq!(nearest["condition"], condition, "{sothat}: {nearest}");
+        assert_eq!(nearest["unbroken"], unbroken, "{sothat}: {nearest}");
+        let short = nearest["short"].as_f64().expect("a number");
+        let above = above_line(&value.to_string(), side);
+        assert!(apart(short, above) < 1e-9, "{sothat}: {nearest}, {above}");
+    }
+    // A break that comes too late is nearer than none.
+    let late = asked(&format!("{base}&x.start=?200..700&until=40&sothat=time:..6"));
+    assert!(late["nearest"].get("unbroken").is_none(), "{late}");
+    // Of what fades none is nearer than another.
+    let endless = asked(
+        "x.fire=area&x.rate=0.004&y.fire=area&y.rate=0.005&y.start=400&x.start=?200..700&sothat=time:..6",
+    );
+    assert!(endless.get("nearest").is_none(), "{endless}");
+}
+
 /// A base stays beside the answer; without one the answer stands alone, and no silent value in its place.
 #[test]
 fn the_outcome_of_the_number_now_stands_beside() {

@@ -98,6 +98,8 @@ interface AftercountNearest {
   condition: number;
   /** By how much, in the unit of that condition. */
   short: number;
+  /** Where somebody must break in time and nobody does: the side nearest to its line, `short` being how far it is above. */
+  unbroken?: "x" | "y";
 }
 
 /** The answer to two numbers in question; points and values are of the first and of the second. */
@@ -136,6 +138,8 @@ interface AftercountNearestPlace {
   condition: number;
   /** By how much, in the unit of that condition. */
   short: number;
+  /** Where somebody must break in time and nobody does: the side nearest to its line, `short` being how far it is above. */
+  unbroken?: "x" | "y";
 }
 
 interface AftercountSide {

@@ -191,8 +191,8 @@ impl Nearest {
             })
         });
         short
-            .filter(|nearest| nearest.worst.part.is_finite())
-            .min_by(|a, b| a.worst.part.total_cmp(&b.worst.part))
+            .filter(|nearest| nearest.worst.short.part.is_finite())
+            .min_by(|a, b| a.worst.short.part.total_cmp(&b.worst.short.part))
     }
 }
 
@@ -240,10 +240,9 @@ impl Serialize for Met {
 
 impl Serialize for Nearest {
     fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
-        let mut nearest = serializer.serialize_struct("Nearest", 3)?;
+        let mut nearest = serializer.serialize_struct("Nearest", 1 + self.worst.count())?;
         nearest.serialize_field("value", &self.value)?;
-        nearest.serialize_field("condition", &(self.worst.goal + 1))?;
-        nearest.serialize_field("short", &self.worst.by)?;
+        self.worst.write(&mut nearest)?;
         nearest.end()
     }
 }

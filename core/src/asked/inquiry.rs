@@ -166,7 +166,7 @@ impl Inquiry {
             Stage::Nearing(search) => match search.next() {
                 Some(value) => {
                     let sample = self.looks.at(value);
-                    search.take(value, sample.worst.map_or(0.0, |worst| worst.part));
+                    search.take(value, sample.worst.map_or(0.0, |worst| worst.short.part));
                 }
                 None => self.stage = Stage::Done,
             },
@@ -180,7 +180,7 @@ impl Inquiry {
         let depth = |sample: &Sample| {
             sample
                 .near
-                .min(sample.worst.map_or(f64::INFINITY, |worst| worst.part))
+                .min(sample.worst.map_or(f64::INFINITY, |worst| worst.short.part))
         };
         let mut dips: Vec<(f64, Lowest)> = sorted
             .windows(3)
@@ -221,7 +221,7 @@ impl Inquiry {
         } else {
             let depth = sample
                 .near
-                .min(sample.worst.map_or(f64::INFINITY, |worst| worst.part));
+                .min(sample.worst.map_or(f64::INFINITY, |worst| worst.short.part));
             dip.take(value, depth);
         }
     }
@@ -231,7 +231,7 @@ impl Inquiry {
             return Stage::Done;
         }
         let sorted = self.sorted();
-        let part = |sample: &Sample| sample.worst.map_or(f64::INFINITY, |worst| worst.part);
+        let part = |sample: &Sample| sample.worst.map_or(f64::INFINITY, |worst| worst.short.part);
         let Some(least) = (0..sorted.len()).min_by(|a, b| part(&sorted[*a]).total_cmp(&part(&sorted[*b])))
         else {
             return Stage::Done;

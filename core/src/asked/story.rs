@@ -1,6 +1,8 @@
 //! What is read of each outcome along a number in question.
 
-use crate::goals::{Goal, distances, prevails};
+use serde::ser::SerializeStruct;
+
+use crate::goals::{Goal, Short, distances, prevails};
 use crate::outcome::{Breaks, Ended, Outcome};
 use crate::sides::{Both, Side};
 use crate::terms::Engagement;
@@ -39,10 +41,25 @@ pub(super) struct Class {
 pub struct Worst {
     /// Its place among the conditions.
     pub goal: usize,
-    /// By how much it is not met, in its own unit.
-    pub by: f64,
-    /// The same as a part of what is there.
-    pub part: f64,
+    /// By how much it is not met.
+    pub short: Short,
+}
+
+impl Worst {
+    /// How many fields it has.
+    pub(super) fn count(&self) -> usize {
+        2 + usize::from(self.short.unbroken.is_some())
+    }
+
+    /// Its fields, in the answer that says what comes nearest.
+    pub(super) fn write<S: SerializeStruct>(&self, nearest: &mut S) -> Result<(), S::Error> {
+        nearest.serialize_field("condition", &(self.goal + 1))?;
+        nearest.serialize_field("short", &self.short.by)?;
+        if let Some(side) = self.short.unbroken {
+            nearest.serialize_field("unbroken", &side.letter())?;
+        }
+        Ok(())
+    }
 }
 
 /// An outcome with a value of the number in question.
@@ -107,13 +124,21 @@ impl Sample {
 
 /// The condition that is missed most; `None` where all are met.
 pub(super) fn worst(engagement: &Engagement, outcome: &Outcome, goals: &[Goal]) -> Option<Worst> {
-    let short = goals.iter().enumerate().filter_map(|(goal, one)| {
-        let short = one.short(engagement, outcome)?;
-        Some(Worst {
-            goal,
-            by: short.by,
-            part: short.part,
+    let missed = || {
+        goals.iter().enumerate().filter_map(|(goal, one)| {
+            let short = one.short(engagement, outcome)?;
+            Some(Worst { goal, short })
         })
-    });
-    short.max_by(|a, b| a.part.total_cmp(&b.part))
+    };
+    let by_part = |a: &Worst, b: &Worst| a.short.part.total_cmp(&b.short.part);
+    let worst = missed().max_by(by_part)?;
+    // Who is to break within a time may be said by another condition.
+    let named = |worst: &Worst| matches!(goals[worst.goal], Goal::Breaks(_) | Goal::Prevails(_));
+    match missed().filter(named).max_by(by_part) {
+        Some(named) if worst.short.unbroken.is_some() => Some(Worst {
+            short: named.short.never(),
+            ..named
+        }),
+        _ => Some(worst),
+    }
 }

@@ -92,9 +92,9 @@ fn within(bounds: Bounds) -> String {
 
 /// By how much the worst condition is not met: "leaves Ondrel 12 short", "leaves Vessary 31 above its break line".
 pub fn short(statement: &Statement, all: &[Goal], worst: &Worst) -> String {
-    let by = significant(worst.by, 3);
+    let by = significant(worst.short.by, 3);
     let name = |side: Side| &statement.names[side];
-    let above = |side: Side| match worst.by {
+    let above = |side: Side| match worst.short.by {
         0.0 => format!("brings {} to its break line and no further", name(side)),
         _ => format!("leaves {} {by} above its break line", name(side)),
     };
@@ -103,6 +103,9 @@ pub fn short(statement: &Statement, all: &[Goal], worst: &Worst) -> String {
         (_, None) => under,
         _ => format!("is {by} away"),
     };
+    if let Some(side) = worst.short.unbroken {
+        return above(side);
+    }
     match all.get(worst.goal) {
         Some(Goal::Breaks(side)) => above(*side),
         Some(Goal::Holds(side) | Goal::Prevails(side)) => above(side.enemy()),
@@ -117,7 +120,7 @@ pub fn short(statement: &Statement, all: &[Goal], worst: &Worst) -> String {
             format!("costs {} {by} too many", name(*side)),
         ),
         Some(Goal::Time(bounds)) => {
-            let by = time(worst.by, statement.unit);
+            let by = time(worst.short.by, statement.unit);
             missing(
                 *bounds,
                 format!("is over {by} too soon"),

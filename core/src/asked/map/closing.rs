@@ -33,7 +33,7 @@ impl Chart {
         let one_sided = kind == Kind::Met && first.class == last.class;
         let near = |point: &Point| match point.worst {
             _ if !one_sided => point.near,
-            Some(worst) => worst.part,
+            Some(worst) => worst.short.part,
             None => f64::NAN,
         };
         let (mut low, mut high) = (Nearing::from(0.0, near(&first)), Nearing::from(1.0, near(&last)));

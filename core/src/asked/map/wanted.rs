@@ -74,8 +74,8 @@ impl Chart {
                 continue;
             };
             let worst = point.worst?;
-            let nearer = least.is_none_or(|(_, least)| worst.part < least.part);
-            if nearer && worst.part.is_finite() {
+            let nearer = least.is_none_or(|(_, least)| worst.short.part < least.short.part);
+            if nearer && worst.short.part.is_finite() {
                 least = Some((at, worst));
             }
         }
@@ -88,10 +88,9 @@ impl Chart {
 
 impl Serialize for Miss {
     fn serialize<S: Serializer>(&self, serializer: S) -> Result<S::Ok, S::Error> {
-        let mut miss = serializer.serialize_struct("Miss", 3)?;
+        let mut miss = serializer.serialize_struct("Miss", 1 + self.worst.count())?;
         miss.serialize_field("values", &self.values)?;
-        miss.serialize_field("condition", &(self.worst.goal + 1))?;
-        miss.serialize_field("short", &self.worst.by)?;
+        self.worst.write(&mut miss)?;
         miss.end()
     }
 }
