@@ -32,8 +32,6 @@ pub struct Piece {
     pub start: Both<f64>,
     /// What holds along it.
     conditions: Conditions,
-    /// The fire of each side along it.
-    pub fire: Both<Fire<f64>>,
     /// What stays constant along it.
     pub equation: StateEquation,
     /// How the strengths move.
@@ -49,7 +47,7 @@ pub struct Piece {
     /// Whether the sides stand at parity to the rounding of the inputs, and so wear each other out together.
     parity: bool,
     /// Strength over time by the integrator, where the motion has no formula and the trajectory was asked for.
-    course: Option<Course>,
+    course: Option<Box<Course>>,
     work: Cell<Work>,
 }
 
@@ -68,9 +66,9 @@ impl Piece {
             growth: Both::default(),
             ..*conditions
         };
-        let fire = conditions.fire;
+        let fire = &conditions.fire;
         let (per_target, besides) = conditions.separated()?;
-        let equation = StateEquation::with(&fire, &per_target, &besides);
+        let equation = StateEquation::with(fire, &per_target, &besides);
         let origin = Both::of(|side| equation.origin(side, start[side].into()));
         let to_nothing = |side: Side| Descent::between(start[side], Double::from(0.0));
         let cost = Both::of(|side| equation.cost_from(side, &origin[side], to_nothing(side)));
@@ -83,13 +81,12 @@ impl Piece {
         let motion = if besides.x > 0.0 || besides.y > 0.0 {
             Motion::AlongOrbit
         } else {
-            Motion::new(start, &fire, &equation, ahead)
+            Motion::new(start, fire, &equation, ahead)
         };
         let work = Cell::default();
         Some(Box::new(Piece {
             start,
             conditions,
-            fire,
             equation,
             motion,
             per_target,
@@ -100,6 +97,11 @@ impl Piece {
             course: None,
             work,
         }))
+    }
+
+    /// The fire of each side along it.
+    pub fn fire(&self) -> &Both<Fire<f64>> {
+        &self.conditions.fire
     }
 
     /// The place on the orbit of this piece where `side` is left with `strength`, of what it had at the beginning.
@@ -241,7 +243,7 @@ impl Piece {
         let enemy = side.enemy();
         let steady = self.conditions.steadily_lost(side);
         let besides = self.conditions.part_lost(side) + if steady > 0.0 { steady / left[side] } else { 0.0 };
-        self.fire[enemy].share_per_time(left[enemy], left[side]) + besides
+        self.fire()[enemy].share_per_time(left[enemy], left[side]) + besides
     }
 
     /// The losses by the time `t`, when the piece is at `point`, by their causes; each summed on its own.
@@ -263,7 +265,7 @@ impl Piece {
                 });
                 integral.value
             };
-            let fire = &self.fire[enemy];
+            let fire = &self.fire()[enemy];
             let by_fire = if fire.takes_effect() {
                 summed(&|at| fire.losses_per_time(at[enemy], at[side]))
             } else {
@@ -288,7 +290,7 @@ impl Piece {
     fn losses_in_proportion(&self, side: Side, all: f64) -> Losses {
         let enemy = side.enemy();
         let (start, support) = (self.start[side], self.conditions.support[enemy]);
-        let by_fire = self.fire[enemy].losses_per_time(self.start[enemy], start);
+        let by_fire = self.fire()[enemy].losses_per_time(self.start[enemy], start);
         let support = support.area * start + support.aimed;
         let wastage = self.conditions.wastage[side] * start;
         let part = |rate: f64| all * (rate / (by_fire + support + wastage));
@@ -309,7 +311,7 @@ impl Piece {
             _ => false,
         };
         if sought {
-            self.course = Some(self.follow(until));
+            self.course = Some(Box::new(self.follow(until)));
         }
     }
 
@@ -333,7 +335,7 @@ impl Piece {
         let other = faded.enemy();
         let moves = course.slopes_at(end)[other].abs() * (t - end);
         if moves > RESTS * left[other] {
-            let fire = &self.fire[faded];
+            let fire = &self.fire()[faded];
             let counts = fire.takes_effect() && fire.shooters().exponent != 0.0;
             let steady = if fire.takes_effect() { fire.rate } else { 0.0 } + self.besides[other];
             (!counts).then_some(())?;

@@ -124,7 +124,7 @@ fn ways(engagement: &Engagement) -> Option<(f64, f64, f64)> {
     // The integrator is told when to stop, which it would have to find out.
     let horizon = 1.01 * by_quadrature();
     let by_integrator = || {
-        Course::follow(piece.start, &piece.fire, horizon, f64::EPSILON)
+        Course::follow(piece.start, piece.fire(), horizon, f64::EPSILON)
             .time_to(loser, f64::from(line))
             .unwrap_or(f64::NAN)
     };

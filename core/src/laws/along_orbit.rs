@@ -83,7 +83,7 @@ impl AlongOrbit<'_> {
     pub fn summed(&self, point: &OrbitPoint, rate_of: impl Fn(Both<f64>) -> f64) -> Integral {
         let stretch = self.stretch(&self.last_with_digits(point));
         let (rate, besides) = self.losses(stretch.along);
-        let shooters = self.piece.fire[stretch.along.enemy()].shooters();
+        let shooters = self.piece.fire()[stretch.along.enemy()].shooters();
         self.along(&stretch, |own, fallen, above| {
             let other = stretch.other_at(fallen, above);
             let mut strengths = Both { x: own, y: own };
@@ -149,7 +149,7 @@ impl AlongOrbit<'_> {
         let other = along.enemy();
         let order = Both::of(|side| f64::from(self.piece.equation.terms[side][0].order));
         let scale = Both::of(|side| f64::from(self.piece.equation.terms[side][0].weight) / order[side]);
-        let fire = &self.piece.fire[other];
+        let fire = &self.piece.fire()[other];
         let per_target = fire.per_target()[0];
         // other = (scale ratio · along^order)^(1/order of the other), taken to the exponent of its fire.
         let shooters = fire.shooters().exponent / order[other];
@@ -298,7 +298,7 @@ impl Stretch<'_> {
         };
         let (own, others) = (summands(along), summands(other));
         let from_start = others.first().is_some_and(|term| term.order < 0.0);
-        let shooters = piece.fire[other].shooters();
+        let shooters = piece.fire()[other].shooters();
         Stretch {
             piece,
             along,

@@ -99,7 +99,7 @@ impl Slopes<'_> {
             }
             // 1/T of the side that is searched for is 1 + half/n.
             Part::Half if on != self.side => {
-                let exponent = self.piece.fire[on].shooters().exponent - 1.0;
+                let exponent = self.piece.fire()[on].shooters().exponent - 1.0;
                 let shooters = Power {
                     coefficient: rate,
                     exponent,
@@ -145,7 +145,7 @@ impl Slopes<'_> {
 
     /// √b·x + √a·y falls as e^(−√(ab)·t).
     fn square(&self, left: &Both<f64>, rate: &Both<f64>) -> Option<f64> {
-        let aimed = |side: Side| self.piece.fire[side].shooters().exponent == 1.0;
+        let aimed = |side: Side| self.piece.fire()[side].shooters().exponent == 1.0;
         let root = Both::of(|side| libm::sqrt(rate[side]));
         let grows = self.rate();
         let part = Both::of(|side| grows[side] / (2.0 * rate[side]));
@@ -197,7 +197,7 @@ impl Slopes<'_> {
     fn alone(&self, target: Side, left: &Both<f64>, rate: &Both<f64>) -> f64 {
         let (start, grows, from) = (self.start(), self.rate(), &self.piece.start);
         let enemy = target.enemy();
-        let shooters = self.piece.fire[enemy].shooters();
+        let shooters = self.piece.fire()[enemy].shooters();
         let steady = rate[enemy] * shooters.at(from[enemy]);
         let moved = |strength: f64, slope: f64| {
             let powers = self.piece.per_target[target].iter();

@@ -262,9 +262,8 @@ impl Run {
                 },
                 None => span,
             };
-            let (stretch, due, comes) = self.solve(&here, at, conditions, &ways);
-            if let Some(side) = stretch.doomed() {
-                self.stretches.push(stretch);
+            let (due, comes) = self.solve(&here, at, conditions, &ways);
+            if let Some(side) = self.stretches.last().and_then(Stretch::doomed) {
                 self.finish(Breaks::only(side), Ended::Break, at);
                 return true;
             }
@@ -277,30 +276,31 @@ impl Run {
                 // A side with nobody left may have somebody the next moment, and none the one after: it is not asked for
                 // ever whether it is gone.
                 Comes::Break(_) => {
-                    let comes = Comes::through(&stretch, span.until - at);
-                    return self.run_out(stretch, &conditions, comes, span.until);
+                    let stretch = self.stretches.last();
+                    let through = stretch.map(|stretch| Comes::through(stretch, span.until - at));
+                    return through.is_none_or(|comes| self.run_out(&conditions, comes, at, span.until));
                 }
                 Comes::Through(length, standing) if surfaces.is_some() => {
                     at += length;
-                    self.close(stretch, &conditions, &standing, length, at);
+                    self.close(&conditions, &standing, length, at);
                     continue;
                 }
                 Comes::Cut(length, standing) => {
                     // The integrator goes on in a stretch of its own, as long as it gets anywhere.
                     self.cuts += 1;
                     at += length;
-                    self.close(stretch, &conditions, &standing, length, at);
+                    self.close(&conditions, &standing, length, at);
                     if length == 0.0 || self.cuts > MOST_CUTS {
                         self.finish(Breaks::Neither, Ended::Unfinished, at);
                         return true;
                     }
                     continue;
                 }
-                comes => return self.run_out(stretch, &conditions, comes, span.until),
+                comes => return self.run_out(&conditions, comes, at, span.until),
             };
             rounds += 1;
             at += first.time;
-            self.close(stretch, &conditions, &first.standing, first.time, at);
+            self.close(&conditions, &first.standing, first.time, at);
             let broken = Both::of(|side| breaks(Some(first.breaks), side));
             if let Some(breaks) = Breaks::of(broken) {
                 self.finish(breaks, Ended::Break, at);
@@ -327,16 +327,16 @@ impl Run {
         }
     }
 
-    /// The stretch from the time `at` on, who is due to break in it, on time or a hair later, and what comes of it.
+    /// Enters the stretch from the time `at` on; says who is due to break in it, on time or a hair later, and what comes of it.
     ///
     /// Where extremes have cost a formula its digits, which the books tell, the stretch is integrated.
     fn solve(
-        &self,
+        &mut self,
         span: &Span,
         at: f64,
         conditions: Conditions,
         ways: &Both<WayDown>,
-    ) -> (Stretch, Option<Breaks>, Comes) {
+    ) -> (Option<Breaks>, Comes) {
         let length = span.until - at;
         // Below 0 a line does not count: the way there is to nothing.
         let level = Both::of(|side| {
@@ -361,17 +361,18 @@ impl Run {
         let (after, tolerance) = (span.after, self.tolerance);
         let mut stretch = Stretch::new(at, length, self.left, conditions, &level, after, tolerance);
         stretch.ledger = self.ledger;
-        let (due, comes) = what_comes(&stretch);
-        if stretch.method() == Method::Integration || comes.keeps_books(&stretch) {
-            return (stretch, due, comes);
+        let mut found = what_comes(&stretch);
+        if stretch.method() != Method::Integration && !found.1.keeps_books(&stretch) {
+            stretch = stretch.integrated(length, after, tolerance);
+            found = what_comes(&stretch);
         }
-        let stretch = stretch.integrated(length, after, tolerance);
-        let (due, comes) = what_comes(&stretch);
-        (stretch, due, comes)
+        self.stretches.push(stretch);
+        found
     }
 
-    /// Enters a stretch in which nobody breaks, up to `until` or for ever; says whether the fight is over.
-    fn run_out(&mut self, stretch: Stretch, conditions: &Conditions, comes: Comes, until: f64) -> bool {
+    /// Ends the last stretch, which begins at `from` and in which nobody breaks, at `until` or never; says whether the fight is
+    /// over.
+    fn run_out(&mut self, conditions: &Conditions, comes: Comes, from: f64, until: f64) -> bool {
         match comes {
             Comes::Forever(TheEnd { ended, end, losses }) => {
                 for side in Side::BOTH {
@@ -380,32 +381,24 @@ impl Run {
                         self.ledger[side].join(f64::INFINITY);
                     }
                 }
-                self.stretches.push(stretch);
                 (self.ended, self.end) = (ended, end);
                 true
             }
             Comes::Break(FirstBreak { standing, .. })
             | Comes::Cut(_, standing)
             | Comes::Through(_, standing) => {
-                let length = until - stretch.from;
-                self.close(stretch, conditions, &standing, length, until);
+                self.close(conditions, &standing, until - from, until);
                 false
             }
         }
     }
 
-    /// Ends a stretch after `length`, at the time `to`, and enters what it has done into the ledgers.
-    fn close(
-        &mut self,
-        mut stretch: Stretch,
-        conditions: &Conditions,
-        standing: &Standing,
-        length: f64,
-        to: f64,
-    ) {
+    /// Ends the last stretch after `length`, at the time `to`, and enters what it has done into the ledgers.
+    fn close(&mut self, conditions: &Conditions, standing: &Standing, length: f64, to: f64) {
         self.book(conditions, length, standing);
-        stretch.to = Some(to);
-        self.stretches.push(stretch);
+        if let Some(stretch) = self.stretches.last_mut() {
+            stretch.to = Some(to);
+        }
     }
 
     /// Enters what a stretch has done into the ledgers.

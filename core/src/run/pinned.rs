@@ -51,7 +51,7 @@ impl Run {
             .min(span.until)
             .min(at + self.too_weak(span, side, &alone, ways, (conditions.flow[side] - steady) / fire));
         let until_then = Span { until, ..*span };
-        let (mut stretch, _, comes) = self.solve(&until_then, at, alone, ways);
+        let (_, comes) = self.solve(&until_then, at, alone, ways);
         let broken = match &comes {
             Comes::Break(first) => Some(first.breaks),
             _ => None,
@@ -62,8 +62,10 @@ impl Run {
         };
         let part = |pace: f64| conditions.flow[side] * (pace / (fire + steady));
         let lost = Losses::of(part(fire), part(steady), 0.0);
-        stretch.lost_as_it_comes[side] = lost;
-        self.run_out(stretch, &alone, comes, end);
+        if let Some(stretch) = self.stretches.last_mut() {
+            stretch.lost_as_it_comes[side] = lost;
+        }
+        self.run_out(&alone, comes, at, end);
         self.ledger[side].pass(&lost.over(end - at));
         match broken {
             Some(broken) if ways[side.enemy()].sunk == 0.0 => self.finish(broken, Ended::Break, end),

@@ -22,7 +22,7 @@ pub(super) fn formula(piece: &Piece, point: &OrbitPoint, loser: Side) -> Math {
 
 /// ln((√b·x₀ + √a·y₀)/(√b·x + √a·y))/√(ab), with the strengths raised to the exponents of the shooters.
 fn square(piece: &Piece, point: &OrbitPoint) -> Math {
-    let exponent = Both::of(|side| piece.fire[side].shooters().exponent);
+    let exponent = Both::of(|side| piece.fire()[side].shooters().exponent);
     // With exponents other than 1 the raised strengths obey the square law at rates times the enemy's exponent.
     let rate = Both::of(|side: Side| {
         let rate = number(piece.equation.rate[side]);
@@ -112,7 +112,7 @@ fn ambush(piece: &Piece, motion: &Ambush, point: &OrbitPoint) -> Math {
 /// ∫ dn/T(n) over a steady s.
 fn alone(piece: &Piece, point: &OrbitPoint, target: Side) -> Math {
     let shooter = target.enemy();
-    let fire = &piece.fire[shooter];
+    let fire = &piece.fire()[shooter];
     let steady = match fire.shooters().exponent {
         0.0 => number(fire.rate),
         exponent => times(&[number(fire.rate), power(&number(piece.start[shooter]), exponent)]),
@@ -149,7 +149,7 @@ fn whole(term: Power, from: f64, to: f64) -> Math {
 fn along_orbit(piece: &Piece, point: &OrbitPoint, loser: Side) -> Math {
     let winner = loser.enemy();
     let names = Both { x: "x", y: "y" };
-    let fire = &piece.fire[winner];
+    let fire = &piece.fire()[winner];
     let mut factors = vec![number(fire.rate)];
     let shooters = fire.shooters().exponent;
     if shooters != 0.0 {

@@ -75,7 +75,7 @@ impl<'a> Writer<'a> {
         let piece = plain_piece(&engagement)?;
         // A phase from the beginning may have another fire.
         for side in Side::BOTH {
-            engagement.sides[side].fire = piece.fire[side];
+            engagement.sides[side].fire = piece.fire()[side];
         }
         Some(Writer {
             statement,
