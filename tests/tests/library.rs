@@ -112,7 +112,7 @@ fn closed_form_quadrature_and_integration_agree() {
         for strength in on_the_way(piece.start[side], end) {
             let point = piece.point_with(side, strength.into());
             let time = piece.time_to(&point);
-            let course = Course::follow(piece.start, &piece.fire, time * 1.001, f64::EPSILON);
+            let course = Course::follow(piece.start, piece.fire(), time * 1.001, f64::EPSILON);
             let followed = course.time_to(side, strength).unwrap_or(f64::NAN);
             let mut times = vec![("integration", followed)];
             if both_fire {
@@ -155,7 +155,7 @@ fn a_finite_end_of_both_is_the_integrators_too() {
         let time = outcome.time.expect("in finite time");
         let strength = 1e-6 * piece.start.x;
         let point = piece.point_with(Side::X, strength.into());
-        let course = Course::follow(piece.start, &piece.fire, time, f64::EPSILON);
+        let course = Course::follow(piece.start, piece.fire(), time, f64::EPSILON);
         let followed = course.time_to(Side::X, strength).expect("on the way");
         tables::assert_close(
             followed,

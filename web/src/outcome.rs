@@ -257,7 +257,7 @@ fn show_figures(dom: &Dom, figures: &Figures) {
         build.row_in(&body);
         build.cell("th", &row.label, &[("scope", "row")]);
         for side in Side::BOTH {
-            let attributes = [("data-side", figures.names[side].as_str())];
+            let attributes = [("data-side", &*figures.names[side])];
             build.figure(&row.values[side], row.lines[side], &attributes);
         }
     }

@@ -113,7 +113,7 @@ fn curves(statement: &Statement, seen: &[&Sample], side: Side) -> Vec<Line> {
     let width = |line: &Line| line.points[line.points.len() - 1].0 - line.points[0].0;
     let widest = (0..lines.len()).max_by(|a, b| width(&lines[*a]).total_cmp(&width(&lines[*b])));
     if let Some(widest) = widest {
-        lines[widest].label = statement.names[side].clone();
+        lines[widest].label = statement.names[side].to_string();
     }
     lines
 }

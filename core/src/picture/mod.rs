@@ -16,7 +16,8 @@ pub use map::{Ground, Tone, map};
 pub use orbit::{orbit, orbit_on};
 pub use strength::{strength, strength_on};
 
-use crate::sides::{Both, Side};
+use crate::sides::Side;
+use crate::statement::Names;
 
 /// What a line stands for.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
@@ -104,7 +105,7 @@ pub struct Picture {
     /// The same as a table.
     pub table: Table,
     /// The names of the sides, for labels.
-    pub names: Both<String>,
+    pub names: Names,
     /// How every place comes out, on a map.
     pub ground: Option<Ground>,
 }

@@ -28,7 +28,7 @@ fn on_axes(statement: &Statement, fight: &Fight, axes: Option<&Axes>) -> Option<
     let shown = trajectory.shown;
     let own = || Axes {
         across: Axis::new(format!("time ({})", statement.unit.symbol()), shown * 1.06, 6),
-        up: Axis::new(statement.counted.clone(), highest(trajectory) * 1.08, 5),
+        up: Axis::new(statement.counted.to_string(), highest(trajectory) * 1.08, 5),
     };
     let Axes { across, up } = axes.cloned().unwrap_or_else(own);
 
@@ -43,7 +43,7 @@ fn on_axes(statement: &Statement, fight: &Fight, axes: Option<&Axes>) -> Option<
         lines.push(Line {
             role: Role::Strength(side),
             points,
-            label: statement.names[side].clone(),
+            label: statement.names[side].to_string(),
         });
     }
     let spots = match trajectory.end {

@@ -18,11 +18,15 @@ use crate::quantity::Quantity;
 use crate::sides::Both;
 use crate::terms::{Engagement, Terms};
 use reader::Reader;
+use std::borrow::Cow;
 use std::collections::BTreeMap;
 use wrong::whole_problem;
 
 /// Numbers for slots, in place of those of the statement.
 pub type Values = BTreeMap<String, f64>;
+
+/// What the sides are called; most links leave it at the names that everybody's have.
+pub type Names = Both<Cow<'static, str>>;
 
 /// What a link says, in order.
 #[derive(Clone, Debug, PartialEq)]
@@ -36,9 +40,9 @@ pub struct Statement {
     /// The unit of time.
     pub unit: TimeUnit,
     /// What strength counts, in the plural.
-    pub counted: String,
+    pub counted: Cow<'static, str>,
     /// What the sides are called.
-    pub names: Both<String>,
+    pub names: Names,
     /// Its quantities.
     pub terms: Terms<Quantity>,
     /// What its questions are asked for; empty where they are asked for the whole story.

@@ -7,6 +7,7 @@ use crate::order::sort_by;
 use crate::pairs::{Pairs, trimmed};
 use crate::problem::{Problem, is_hidden};
 use crate::quantity::Quantity;
+use std::borrow::Cow;
 
 /// Collects what the pairs say, and their problems by place.
 pub(super) struct Reader<'a> {
@@ -118,9 +119,13 @@ impl<'a> Reader<'a> {
     }
 
     /// The text of a key with its outer blanks gone, and its place; `None` where it is empty, absent, or already in
-    /// trouble.
+    /// trouble. Most keys are absent, which is seen at once.
+    #[inline(always)]
     pub(super) fn text(&self, name: Name) -> Option<(usize, &'a str)> {
-        let place = self.place(name)?;
+        self.place(name).and_then(|place| self.text_at(place))
+    }
+
+    fn text_at(&self, place: usize) -> Option<(usize, &'a str)> {
         let text = trimmed(self.pairs.text_at(place));
         (!text.is_empty() && self.is_decoded(place)).then_some((place, text))
     }
@@ -155,10 +160,10 @@ impl<'a> Reader<'a> {
     }
 
     /// A free text, or `default` where none is given.
-    pub(super) fn text_or(&mut self, key: Name, default: &str) -> String {
+    pub(super) fn text_or(&mut self, key: Name, default: &'static str) -> Cow<'static, str> {
         match self.free_text(key) {
             text if text.is_empty() => default.into(),
-            text => text,
+            text => text.into(),
         }
     }
 
@@ -179,8 +184,13 @@ impl<'a> Reader<'a> {
     }
 
     /// A quantity within its key's limits; `None` where it is absent or in trouble.
+    #[inline]
     pub(super) fn quantity(&mut self, key: Name) -> Option<Quantity> {
         let (_, text) = self.text(key)?;
+        self.quantity_of(key, text)
+    }
+
+    fn quantity_of(&mut self, key: Name, text: &str) -> Option<Quantity> {
         match read_quantity(text).and_then(|quantity| within_limits(key.row(), quantity)) {
             Ok(quantity @ Quantity::Number(_)) => Some(quantity),
             Ok(quantity @ Quantity::Question { .. }) => {

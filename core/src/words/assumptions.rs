@@ -9,7 +9,7 @@ use crate::pairs::Pairs;
 use crate::problem::seen;
 use crate::quantity::Quantity;
 use crate::sides::{Both, Side};
-use crate::statement::{Statement, TimeUnit};
+use crate::statement::{Names, Statement, TimeUnit};
 use crate::terms::{Changes, Flow, Join, Phase};
 use std::collections::BTreeSet;
 
@@ -40,7 +40,7 @@ pub struct Row<T> {
 #[derive(Clone, Debug, PartialEq)]
 pub struct Assumptions {
     /// What the sides are called, for the heads.
-    pub names: Both<String>,
+    pub names: Names,
     /// What is stated of each side.
     pub sides: Vec<Row<Both<Assumed>>>,
     /// What is stated of the whole.

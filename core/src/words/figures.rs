@@ -6,7 +6,7 @@ use crate::fight::{break_line, plain_piece};
 use crate::outcome::{Breaks, Ended, Method, Outcome, ToTheLast};
 use crate::schedule::any_fire;
 use crate::sides::{Both, Side};
-use crate::statement::{Statement, TimeUnit, Values};
+use crate::statement::{Names, Statement, TimeUnit, Values};
 use crate::terms::Engagement;
 
 /// A figure of each side.
@@ -35,7 +35,7 @@ pub struct Figure {
 #[derive(Clone, Debug, PartialEq)]
 pub struct Figures {
     /// The names of the sides, which head the columns.
-    pub names: Both<String>,
+    pub names: Names,
     /// A figure of each side a row.
     pub rows: Vec<Row>,
     /// What concerns both.
@@ -268,7 +268,7 @@ fn both(statement: &Statement, outcome: &Outcome, still: bool) -> Vec<Figure> {
         Breaks::Both => "both, at the same moment".into(),
         Breaks::Neither => "neither".into(),
     };
-    figure("Breaks first", first, Some("breaks"));
+    figure("Breaks first", first.into_owned(), Some("breaks"));
     if let Some(time) = outcome.time {
         figure("Time of the break", format!("{} {unit}", six(time)), Some("time"));
     } else if let Some(clock) = outcome.pieces.last().and_then(|piece| piece.to) {
@@ -320,7 +320,7 @@ fn both(statement: &Statement, outcome: &Outcome, still: bool) -> Vec<Figure> {
 }
 
 /// A ratio of Y's losses to X's in words, the larger side first: "Ondrel loses 1.01 for each 1 of Vessary".
-fn exchange(names: &Both<String>, ratio: f64, unit: &str) -> String {
+fn exchange(names: &Names, ratio: f64, unit: &str) -> String {
     if ratio > 1.0 {
         format!(
             "{} loses {}{unit} for each 1{unit} of {}",

@@ -95,7 +95,7 @@ pub fn unit(statement: &Statement, unit: Unit) -> String {
     let symbol = statement.unit.symbol();
     match unit {
         Unit::Time => symbol.into(),
-        Unit::Strength | Unit::EnemyStrength => statement.counted.clone(),
+        Unit::Strength | Unit::EnemyStrength => statement.counted.to_string(),
         Unit::StrengthPerTime
         | Unit::EnemyPerTime
         | Unit::FractionPerTime
