@@ -135,10 +135,10 @@ fn meaning(statement: &Statement) -> Vec<(String, String)> {
         ("note".to_owned(), statement.note.clone()),
         ("marking".to_owned(), statement.marking.clone()),
         ("unit".to_owned(), statement.unit.symbol().to_owned()),
-        ("counted".to_owned(), statement.counted.clone()),
+        ("counted".to_owned(), statement.counted.to_string()),
     ];
     for side in Side::BOTH {
-        found.push((format!("{}.name", side.letter()), statement.names[side].clone()));
+        found.push((format!("{}.name", side.letter()), statement.names[side].to_string()));
         let law = statement.terms.sides[side].fire.law.law();
         found.push((format!("{}.fire", side.letter()), law.word.to_owned()));
     }
