@@ -81,6 +81,7 @@ fn hint(text: &str) -> String {
         })
         .or_else(|| instead(text.replace(char::is_whitespace, ""), "without blanks"))
         .or_else(|| per_cent(text))
+        .or_else(|| instead(without_letters(text)?, "without letters among its digits"))
         .or_else(|| with_unit(text))
         .unwrap_or_else(|| "write a number, such as 600 or 0.04".into())
 }
@@ -122,6 +123,13 @@ fn per_cent(text: &str) -> Option<String> {
 /// A hundredth of `value`, which is written `text`, in the digits that a hundredth of the text has: 0.7 gives 0.007.
 pub(crate) fn hundredth(text: &str, value: f64) -> f64 {
     plain(&format!("{text}e-2")).unwrap_or(value / 100.0)
+}
+
+/// `6oo` and `1l0` with the digits that their letters look like; none where no digit stands among them.
+fn without_letters(text: &str) -> Option<String> {
+    let digits = text.replace(['o', 'O'], "0").replace(['l', 'I'], "1");
+    text.contains(|letter: char| letter.is_ascii_digit())
+        .then_some(digits)
 }
 
 /// A number with letters behind it, `4h`.
@@ -180,6 +188,13 @@ mod tests {
             ("30 %", "write 0.3, without the per-cent sign"),
             ("0.7%", "write 0.007, without the per-cent sign"),
             ("1e999%", "write a number"),
+            ("6oo", "write 600, without letters among its digits"),
+            ("6O0", "write 600, without letters"),
+            ("l00", "write 100, without letters"),
+            ("-1I.o4", "write -11.04, without letters"),
+            ("lo", "write a number"),
+            ("6oz", "write 6 alone, without a unit"),
+            ("4 l", "write 4 alone, without a unit"),
             ("4 h", "write 4 alone, without a unit"),
             ("NaN", "write a number"),
             ("inf", "write a number"),
