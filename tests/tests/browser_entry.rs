@@ -356,6 +356,33 @@ fn a_rate_that_was_entered_as_per_cent_follows_the_law() {
         kept().contains("its unit is not"),
         "restated, and still of another law"
     );
+    // Undo and Redo go over texts that were shown: what was true of each is true again.
+    let daily = browser.link();
+    for (button, text, is_kept) in [
+        ("#undo", "d", true),
+        ("#undo", "h", true),
+        ("#undo", "area", false),
+        ("#redo", "aimed", true),
+        ("#redo", "d", true),
+        ("#redo", "1.2", true),
+    ] {
+        let before = browser.link();
+        browser.click(button);
+        let moved = format!(
+            "return document.getElementById('text').value !== {};",
+            json!(before)
+        );
+        browser.wait(&format!("{button} to {text}"), &moved);
+        let fields = ["unit", "x.fire", "x.rate"].map(|name| browser.value(name));
+        assert!(fields.iter().any(|field| field == text), "{fields:?}");
+        assert_eq!(kept().contains("its unit is not"), is_kept, "{button} to {text}");
+    }
+    assert_eq!(browser.link(), daily);
+    // Who opens the same text has a whole from somebody who chose law and rate together.
+    browser.reload();
+    browser.settle_on_any();
+    assert_eq!(kept(), "");
+    browser.click("[id='x.share.open']");
     browser.script(enter, vec![json!("6")]);
     assert_eq!(kept(), "");
     browser.assert_clean();

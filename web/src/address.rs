@@ -9,6 +9,7 @@
 //! Beside each entry stands the text as it was received, so that what was changed since is known after a reload too.
 
 use crate::dom::Dom;
+use crate::kept_rates::WrittenAs;
 use crate::pace::Pace;
 use js_sys::Array;
 use std::rc::Rc;
@@ -38,6 +39,8 @@ struct Entry {
     text: Option<String>,
     /// What was received, where its text goes back to that.
     received: Option<Rc<str>>,
+    /// What its rates were written as, where this page has shown it.
+    written_as: Option<WrittenAs>,
 }
 
 /// What a step through the history needs.
@@ -98,6 +101,11 @@ impl Address {
         self.unwritten = entry.text.clone();
     }
 
+    /// What the rates of the current entry were written as, where that is known.
+    pub(crate) fn written_as(&mut self) -> &mut Option<WrittenAs> {
+        &mut self.entries[self.at].written_as
+    }
+
     /// A text that the user has just changed.
     pub(crate) fn edited(&mut self, text: String) {
         if !self.open {
@@ -106,6 +114,7 @@ impl Address {
             self.entries.push(Entry {
                 text: Some(text.clone()),
                 received: self.entries[self.at].received.clone(),
+                written_as: None,
             });
             self.at += 1;
             if !self.framed && self.push(&text) {
@@ -167,10 +176,8 @@ impl Address {
                 let length = self.entries.len().max(at + 1);
                 self.entries.resize(length, Entry::default());
                 self.at = at;
-                self.entries[at] = Entry {
-                    text: Some(text),
-                    received,
-                };
+                let entry = &mut self.entries[at];
+                (entry.text, entry.received) = (Some(text), received);
             }
             // A fragment written by hand makes an entry of its own.
             None => {

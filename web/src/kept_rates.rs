@@ -8,11 +8,14 @@ use aftercount_core::sides::{Both, Side};
 
 const KEPT: &str = "Kept from another law of fire: the number is the same, its unit is not.";
 
-/// For each side the text of its rate, and what it was measured in when it was written.
+/// What the rate of each side was measured in when it was written.
+pub(crate) type WrittenAs = Both<Option<RateMeaning>>;
+
+/// For each side the text of its rate, and what it was written as.
 pub(crate) struct KeptRates {
     dom: Dom,
     texts: Both<String>,
-    written_as: Both<Option<RateMeaning>>,
+    written_as: WrittenAs,
 }
 
 impl KeptRates {
@@ -30,6 +33,17 @@ impl KeptRates {
             self.written(pairs, side);
         }
         self.follow(pairs);
+    }
+
+    /// A text comes back that was shown before: its rates are what they were then.
+    pub(crate) fn come_back(&mut self, pairs: &Pairs, written_as: WrittenAs) {
+        self.restated(pairs);
+        self.written_as = written_as;
+    }
+
+    /// What the rates were written as.
+    pub(crate) fn written_as(&self) -> WrittenAs {
+        self.written_as
     }
 
     /// The rate of a side was written for the law that it has now, also where its text is the same as before.

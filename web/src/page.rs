@@ -169,9 +169,9 @@ impl Page {
         let rest = good.and_then(|good| good.continued(&self.pairs, self.plates.time(good)));
         if let Some(rest) = rest {
             self.plates.forget_reading();
+            self.kept_rates.start(&rest);
             self.change_at_once(|pairs| *pairs = rest);
             form::fill(&self.dom, &self.pairs);
-            self.kept_rates.start(&self.pairs);
             self.open_what_holds_values();
             self.goes_back_to(None);
         }
@@ -222,8 +222,12 @@ impl Page {
         self.filling = is_blank(&self.pairs);
         form::fill(&self.dom, &self.pairs);
         self.open_what_holds_values();
-        self.kept_rates.start(&self.pairs);
+        match *self.address.written_as() {
+            Some(written_as) => self.kept_rates.come_back(&self.pairs, written_as),
+            None => self.kept_rates.start(&self.pairs),
+        }
         self.work_out(Cause::Whole);
+        *self.address.written_as() = Some(self.kept_rates.written_as());
     }
 
     fn changed(&mut self, cause: Cause) {
@@ -233,6 +237,7 @@ impl Page {
         self.address.edited(link);
         self.write_later();
         self.work_out(cause);
+        *self.address.written_as() = Some(self.kept_rates.written_as());
         self.speak.start(QUIET);
     }
 
