@@ -6,7 +6,7 @@ use aftercount_core::reversal::Reversal;
 use aftercount_core::statement::Statement;
 use aftercount_core::words::reversal::nearest;
 use aftercount_tests::browser::{Browser, Key, Screen, changed, native};
-use serde_json::Value;
+use serde_json::{Value, json};
 
 const LINK: &str = "x.name=Ondrel&x.start=600&x.rate=0.04&x.break=0.3&y.name=Vessary&y.start=400&y.rate=0.06&y.break=0.39\
 &y.join=64@4&v=1";
@@ -119,6 +119,27 @@ fn a_search_that_is_left_off_is_not_said_to_go_on() {
     let left = "return [...document.querySelectorAll('#nearest, #reversal, #reversal-working')]
                   .every((part) => part.ariaBusy !== 'true' && !part.textContent.includes('eing worked out'));";
     assert_eq!(browser.script(left, vec![]), true);
+    browser.assert_clean();
+}
+
+/// Where the search had only begun when the text became wrong, the table was of an older text than the figures.
+#[test]
+fn no_table_is_of_another_text_than_the_figures() {
+    let browser = Browser::opened(LINK);
+    wait_for_reversal(&browser);
+    let rows = || {
+        browser.script(
+            "return document.querySelectorAll('#reversal-table tbody tr').length;",
+            vec![],
+        )
+    };
+    assert!(rows().as_u64() > Some(8));
+    let at_once = "const e = document.getElementsByName('x.start')[0];
+        for (const text of arguments[0]) { e.value = text; e.dispatchEvent(new Event('input', {bubbles: true})); }";
+    browser.script(at_once, vec![json!(["60x"])]);
+    assert!(rows().as_u64() > Some(8), "it is that of the figures still");
+    browser.script(at_once, vec![json!(["610", "610x"])]);
+    assert_eq!(rows(), 0);
     browser.assert_clean();
 }
 

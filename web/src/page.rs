@@ -260,7 +260,7 @@ impl Page {
         self.kept_rates.follow(&self.pairs);
         self.current = false;
         self.reverse_on.stop();
-        self.reversals.stop();
+        let left_off = self.reversals.stop();
         match Statement::read(&self.pairs) {
             Ok(statement) => {
                 self.asking.begin(&self.pairs, &statement);
@@ -272,7 +272,13 @@ impl Page {
                 }
                 self.ask_on();
             }
-            Err(problems) => self.work_out_bad(problems),
+            Err(problems) => {
+                self.work_out_bad(problems);
+                if left_off {
+                    // It is of an older text than the figures.
+                    self.dom.set_text("reversal-table", "");
+                }
+            }
         }
         let good = self.good.as_ref().filter(|_| self.current);
         self.shares.show(&self.pairs, good.map(|good| &good.statement));

@@ -46,10 +46,10 @@ impl Reversals {
         self.dom.set_shown("reversal", true);
     }
 
-    /// Leaves off: the text has changed to one that cannot be worked out.
-    pub(crate) fn stop(&mut self) {
-        if self.search.take().is_some() {
-            // What was being worked out does not come any more.
+    /// Leaves off, since the text has changed; whether something was being worked out, which does not come any more.
+    pub(crate) fn stop(&mut self) -> bool {
+        let left_off = self.search.take().is_some();
+        if left_off {
             self.dom.set_text("nearest", "");
             self.dom.set_text("reversal-working", "");
         }
@@ -57,6 +57,7 @@ impl Reversals {
         self.line = None;
         self.mark_busy(false);
         self.dom.mark_root("data-reversal", None);
+        left_off
     }
 
     /// Takes it off the page.
