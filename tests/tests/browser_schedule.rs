@@ -85,6 +85,32 @@ fn rows_are_added_moved_and_removed_by_keyboard() {
     browser.assert_clean();
 }
 
+/// What is typed next takes the place of what a new row begins with.
+#[test]
+fn the_first_field_of_what_is_added_is_chosen_whole() {
+    let browser = Browser::opened(LINK);
+    browser.script("document.getElementById('y.more').open = true;", vec![]);
+    for (button, field, begins) in [
+        ("y.join.add", "y.join.3.size", "0"),
+        ("y.flow.add", "y.flow.1.rate", "0"),
+        ("add-phase", "phase1.from", "1"),
+    ] {
+        browser.press("#reading", Key::Home);
+        browser.click(&format!("[id='{button}']"));
+        browser.settle_on_any();
+        assert_eq!(
+            (focused(&browser).as_str(), cell(&browser, field).as_str()),
+            (field, begins)
+        );
+        let chosen =
+            "const e = document.activeElement; return e.value.slice(e.selectionStart, e.selectionEnd);";
+        assert_eq!(browser.script(chosen, vec![]), begins);
+        browser.type_at(&format!("[id='{field}']"), "7");
+        assert_eq!(cell(&browser, field), "7");
+    }
+    browser.assert_clean();
+}
+
 #[test]
 fn every_item_with_a_problem_is_marked_and_stays_as_typed() {
     let browser = Browser::start();
