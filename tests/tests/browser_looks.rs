@@ -25,6 +25,7 @@ const SCREENS: [Screen; 4] = [
 fn nothing_sticks_out_sideways() {
     let browser = Browser::start();
     let long = changed(LINK, "x.name", &"Unbreakable".repeat(5));
+    let long = changed(&long, "marking", &"EXERCISE – invented figures; ".repeat(2));
     for screen in SCREENS {
         browser.screen(screen);
         for (paper, link) in [("light", LINK), ("dark", LINK), ("light", long.as_str())] {
@@ -44,6 +45,13 @@ fn nothing_sticks_out_sideways() {
                 return [Math.max(0, document.documentElement.scrollWidth - innerWidth), ...over.slice(0, 5).map((e) => e.tagName + '#' + e.id + '.' + e.className)];";
             let width = browser.script(script, vec![]);
             assert_eq!(width, json!([0]), "at {screen:?} with {name}");
+            let lines =
+                "return new Set([...document.querySelectorAll('.top button')].map((e) => e.offsetTop)).size;";
+            let lines = browser.script(lines, vec![]);
+            assert!(
+                screen.width < 1280 || lines == 1,
+                "the buttons at the top stand in {lines} lines at {screen:?}"
+            );
         }
     }
     browser.assert_clean();
