@@ -3,6 +3,10 @@
 use aftercount_core::caution;
 use aftercount_core::mark::text_mark;
 use aftercount_core::pairs::Pairs;
+use aftercount_core::reversal::Reversal;
+use aftercount_core::statement::Statement;
+use aftercount_core::words::format::plain;
+use aftercount_core::words::reversal::{ON_PAPER, rows};
 use aftercount_tests::browser::{Browser, Engine, Paper, changed, native_sentence, wiki_url};
 use serde_json::json;
 
@@ -57,6 +61,13 @@ fn the_sheet_is_on_paper_whole() {
         let pages = browser.print(&format!("paper-{name}"), size);
         assert!((4..=6).contains(&pages.len()), "{} pages on {name}", pages.len());
         assert_every_page(&pages, &dark);
+        let feet = browser.heights_of(&format!("paper-{name}"), "Text");
+        assert_eq!(feet.len(), pages.len());
+        let foot = (size.height - 2.5) / 2.54 * 72.0;
+        assert!(
+            feet.iter().all(|height| *height == feet[0] && *height > foot),
+            "also on the last page it stands at the foot: {feet:?}"
+        );
         let today = browser.script(
             "return new Date().toLocaleDateString('en-GB', {day: 'numeric', month: 'long', year: 'numeric'});",
             vec![],
@@ -81,6 +92,8 @@ fn the_sheet_is_on_paper_whole() {
             "Vessary (combatants)",
             "274: Vessary breaks",
             "64 join Vessary",
+            // What would reverse it.
+            "What would reverse it",
             // The working, and the caution in full.
             "It is solved by the state equation",
             "The organisation's doctrine, the law and qualified judgement decide.",
@@ -94,6 +107,8 @@ fn the_sheet_is_on_paper_whole() {
             "Undo",
             "add a reserve",
             "Continue from",
+            "put in",
+            "Write ? behind a number",
         ] {
             assert!(!bare(&all).contains(&bare(part)), "{part} is of no use on paper");
         }
@@ -106,6 +121,43 @@ fn the_sheet_is_on_paper_whole() {
         vec![],
     );
     assert_eq!(state, json!([false, false, false]));
+    browser.assert_clean();
+}
+
+/// The nearest reversals, whether anything is asked or not, and how many stand behind them.
+#[test]
+fn what_would_reverse_it_is_always_on_paper() {
+    let browser = Browser::start();
+    for asked in ["464", "464?400..900"] {
+        let link = changed(LINK, "y.start", asked);
+        let pairs = Pairs::parse(&link);
+        let statement = Statement::read(&pairs).expect("it is an engagement");
+        let all = rows(&statement, &Reversal::new(&pairs, &statement).finished());
+        let (near, behind) = all.split_at(ON_PAPER);
+        browser.open(&link);
+        browser.settle(&link);
+        let paper = browser.print("reversals-a4", Paper::A4).join(" ");
+        for row in near {
+            let (value, change) = (plain(&row.value), plain(&row.change));
+            let line = format!(
+                "{} {} {} {value} {change} {}",
+                row.name,
+                row.slot.name,
+                plain(&row.now),
+                row.then
+            );
+            assert_has(&plain(&paper), &line);
+        }
+        let left = behind.iter().filter(|row| row.put.is_some()).count();
+        assert!(left > 1 && left < behind.len(), "{left}");
+        assert_has(
+            &paper,
+            &format!("{left} more numbers that do it stand on the sheet"),
+        );
+        for row in behind {
+            assert!(!bare(&paper).contains(&bare(&format!("{} {}", row.name, row.slot.name))));
+        }
+    }
     browser.assert_clean();
 }
 

@@ -28,7 +28,7 @@ const WIDEST: i32 = 600;
 /// The paper, and what was opened for it alone.
 pub(crate) struct Paper {
     dom: Dom,
-    /// The pictures, while they are on the page.
+    /// The pictures and the foot, while they are on the page.
     drawn: Vec<Element>,
     opened: bool,
 }
@@ -85,17 +85,16 @@ impl Paper {
         }
     }
 
-    /// On paper the timeline stands below the pictures and not among them: where it goes on for pages, Firefox would leave
-    /// out their foot within the grid that holds the pictures.
+    /// On paper the timeline stands below the part of the pictures and not among them: it may go on for pages, and they stay on
+    /// one.
     fn set_timeline_apart(&self, apart: bool) -> Option<()> {
         let (timeline, plate) = (
             self.dom.element("timeline-part")?,
             self.dom.element("strength-plate")?,
         );
         let moved = if apart {
-            plate
-                .parent_element()?
-                .insert_adjacent_element("afterend", &timeline)
+            let part = plate.closest(".part").ok()??;
+            part.insert_adjacent_element("afterend", &timeline)
         } else {
             let table = plate.query_selector(".as-table").ok()??;
             table.insert_adjacent_element("beforebegin", &timeline)
@@ -104,7 +103,7 @@ impl Paper {
     }
 
     /// What stands at the top and the foot of every page.
-    fn margins(&self, text: &Pairs, worked_out: &Pairs) {
+    fn margins(&mut self, text: &Pairs, worked_out: &Pairs) {
         let written = |key: &str| seen(text.get(key).unwrap_or_default().trim());
         let now = js_sys::Date::new_0();
         let today = date(now.get_full_year(), now.get_month() + 1, now.get_date());
@@ -126,6 +125,16 @@ impl Paper {
         ] {
             self.dom.set_text(id, &words);
         }
+        self.foot();
+    }
+
+    /// A copy of the foot, which the style sheet fixes to the foot of every page.
+    fn foot(&mut self) -> Option<()> {
+        let foot = self.dom.element("paper-foot")?;
+        let copy = foot.clone_node_with_deep(true).ok()?.dyn_into::<Element>().ok()?;
+        append(&foot.parent_element()?, &copy);
+        self.drawn.push(copy);
+        Some(())
     }
 
     fn table(&self, assumed: &Assumptions) -> Option<()> {

@@ -113,6 +113,7 @@ impl Reversals {
         self.dom.set_text("reversal-working", "");
         self.rows = words::rows(&statement, &search);
         self.line = Some(line);
+        self.dom.set_text("reversal-behind", &words::behind(&self.rows));
         self.show_table(&words::heads(&statement));
         self.mark(false);
     }
@@ -139,10 +140,9 @@ impl Reversals {
             append(&table, &part);
             Some(part)
         };
-        let (Some(caption), Some(head), Some(body)) = (part("caption"), part("thead"), part("tbody")) else {
+        let (Some(head), Some(body)) = (part("thead"), part("tbody")) else {
             return;
         };
-        caption.set_text_content(Some(words::CAPTION));
         if let Some(line) = self.dom.make("tr", "") {
             for text in heads {
                 self.cell(&line, "th", text, "");
@@ -160,6 +160,9 @@ impl Reversals {
     fn row(&self, heads: &[String], place: usize, row: &Row) -> Option<Element> {
         let line = self.dom.make("tr", "")?;
         set(&line, "data-slot", &row.slot.name);
+        if row.put.is_some() && place < words::ON_PAPER {
+            set(&line, "class", "near");
+        }
         let name = self.cell(&line, "th", &row.name, "")?;
         set(&name, "scope", "row");
         if let Some(key) = self.dom.make("code", &row.slot.name) {

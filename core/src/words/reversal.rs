@@ -19,9 +19,6 @@ first. The smallest change stands first: strengths, rates and lengths by per cen
 fractions and exponents by themselves; what is 0 now has no per cent, and comes behind them. The columns at the right say by \
 how many per cent what is left, and the time, change for 1 per cent of the number.";
 
-/// The caption of the table.
-pub const CAPTION: &str = "What would reverse the outcome, each number changed alone";
-
 /// A row of the table.
 #[derive(Clone, Debug, PartialEq)]
 pub struct Row {
@@ -96,6 +93,20 @@ pub fn nearest(statement: &Statement, reversal: &Reversal) -> String {
 pub fn rows(statement: &Statement, reversal: &Reversal) -> Vec<Row> {
     let entries = reversal.entries().into_iter();
     entries.map(|entry| row(statement, entry)).collect()
+}
+
+/// So many rows stand on paper.
+pub const ON_PAPER: usize = 8;
+
+/// Below the rows on paper: what stands behind them.
+pub fn behind(rows: &[Row]) -> String {
+    let reverse = rows.iter().filter(|row| row.put.is_some()).count();
+    let others = match reverse.saturating_sub(ON_PAPER) {
+        0 => "no value of any other number was found to do it".into(),
+        1 => "1 more number that does it stands on the sheet".into(),
+        more => format!("{more} more numbers that do it stand on the sheet"),
+    };
+    format!("The smallest change stands first; {others}.")
 }
 
 /// How closely was looked.
@@ -260,5 +271,24 @@ mod tests {
         assert_eq!(text, "447.2");
         let last = rows.last().expect("rows");
         assert_eq!((&last.value[..], &last.put), ("no value does", &None));
+    }
+
+    #[test]
+    fn paper_says_what_stands_behind_its_rows() {
+        let (statement, reversal) = found(DEMO);
+        let mut rows = rows(&statement, &reversal);
+        let reverse = rows.iter().filter(|row| row.put.is_some()).count();
+        assert_eq!(reverse, ON_PAPER + 4);
+        for (rows_left, said) in [
+            (reverse + 3, "4 more numbers that do it stand on the sheet"),
+            (ON_PAPER + 1, "1 more number that does it stands on the sheet"),
+            (ON_PAPER, "no value of any other number was found to do it"),
+        ] {
+            rows.truncate(rows_left);
+            assert_eq!(
+                behind(&rows),
+                format!("The smallest change stands first; {said}.")
+            );
+        }
     }
 }

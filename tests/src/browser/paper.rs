@@ -55,20 +55,24 @@ impl Browser {
             .collect()
     }
 
+    /// How far a word stands below the top of each page of a document that [`Browser::print`] left, in points: where it stands
+    /// first; pages without it are left out.
+    pub fn heights_of(&self, name: &str, word: &str) -> Vec<f64> {
+        let boxes = boxes(name);
+        let pages = boxes.split("<page").skip(1);
+        let tail = format!(">{word}</word>");
+        pages
+            .filter_map(|page| Some(edge(page.lines().find(|line| line.ends_with(&tail))?, "yMin")))
+            .collect()
+    }
+
     /// Every word of a document that [`Browser::print`] left lies at least a centimetre from each edge of its page.
     ///
     /// # Panics
     /// Where one does not: it would be cut off by a printer, or has been.
     #[track_caller]
     pub fn assert_within_margins(&self, name: &str, paper: Paper) {
-        let path = files::screen(name).with_extension("pdf");
-        let read = Command::new("pdftotext")
-            .arg("-bbox")
-            .arg(&path)
-            .arg("-")
-            .output();
-        let read = read.expect("pdftotext is installed (Debian: poppler-utils)");
-        let boxes = String::from_utf8_lossy(&read.stdout).into_owned();
+        let boxes = boxes(name);
         // Points of a document are 72 to the inch.
         let margin = 72.0 / 2.54;
         let (right, foot) = ((paper.width - 1.0) * margin, (paper.height - 0.8) * margin);
@@ -77,13 +81,7 @@ impl Browser {
             .filter(|line| line.trim_start().starts_with("<word"));
         let mut count = 0;
         for word in words {
-            let edge = |side: &str| -> f64 {
-                let (_, rest) = word
-                    .split_once(&format!("{side}=\""))
-                    .expect("a box has four sides");
-                let digits = rest.split('"').next().unwrap_or_default();
-                digits.parse().expect("a number of points")
-            };
+            let edge = |side: &str| edge(word, side);
             assert!(
                 edge("xMin") >= margin
                     && edge("yMin") >= margin
@@ -95,6 +93,29 @@ impl Browser {
         }
         assert!(count > 50, "{name} has {count} words");
     }
+}
+
+/// The words of a document with their places, as `pdftotext` tells them.
+#[track_caller]
+fn boxes(name: &str) -> String {
+    let path = files::screen(name).with_extension("pdf");
+    let read = Command::new("pdftotext")
+        .arg("-bbox")
+        .arg(&path)
+        .arg("-")
+        .output();
+    let read = read.expect("pdftotext is installed (Debian: poppler-utils)");
+    String::from_utf8_lossy(&read.stdout).into_owned()
+}
+
+/// An edge of such a word.
+#[track_caller]
+fn edge(word: &str, side: &str) -> f64 {
+    let (_, rest) = word
+        .split_once(&format!("{side}=\""))
+        .expect("a box has four sides");
+    let digits = rest.split('"').next().unwrap_or_default();
+    digits.parse().expect("a number of points")
 }
 
 /// The text with letters that a font joins as letters of their own: what Firefox prints says which form it took.
