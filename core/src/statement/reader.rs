@@ -119,8 +119,9 @@ impl<'a> Reader<'a> {
     }
 
     /// The text of a key with its outer blanks gone, and its place; `None` where it is empty, absent, or already in
-    /// trouble. Most keys are absent, which is seen at once.
-    #[inline(always)]
+    /// trouble.
+    // Most keys are absent, which is to be seen at once; in the page its size counts more.
+    #[cfg_attr(not(target_family = "wasm"), inline(always))]
     pub(super) fn text(&self, name: Name) -> Option<(usize, &'a str)> {
         self.place(name).and_then(|place| self.text_at(place))
     }
