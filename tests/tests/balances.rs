@@ -179,6 +179,29 @@ fn a_side_that_comes_down_to_next_to_nothing_is_kept_alive_by_its_flow() {
     );
 }
 
+/// The same however little comes in: what is left of X has no digits in a double, and it was said to break after 0.53 h. Y
+/// wastes away by e^(−0.1·t), and is down to a tenth after ln 10/0.1.
+#[test]
+fn next_to_nothing_that_flows_in_keeps_a_side_alive() {
+    for flow in ["5e-324", "1e-300", "1e-285", "1e-241", "1e-239", "1e-20"] {
+        for fire in [
+            "area&y.rate=5",
+            "power&y.p=0.4&y.q=2.5&y.rate=8",
+            "power&y.p=2&y.q=1&y.rate=1e-3",
+        ] {
+            let link = format!(
+                "x.start=400&x.fire=none&x.flow={flow}@0/&y.start=300&y.fire={fire}&y.wastage=0.1&y.break=0.9"
+            );
+            let found = ended(&link);
+            assert_eq!(found.breaks, Breaks::Y, "{link}: {found:?}");
+            assert!(
+                off(found.time.expect("a time"), 23.025850929940457) < 1e-13,
+                "{link}: {found:?}"
+            );
+        }
+    }
+}
+
 /// With an exponent next to 1 a strength is long on its way from the last digits of a double to nothing: with u = x^(1−q),
 /// u' = −(1−q)·(c + w·u) gives the time. Below the root of the least double the series had no terms, the steps ended there, and
 /// X was said to be left with nobody and not to break.

@@ -20,6 +20,9 @@ const LAST_MOMENT: f64 = 1e-13;
 /// The part of what comes in and what is lost up to which the rest of the two is their rounding.
 const BALANCED: f64 = 1e-13;
 
+/// Where fewer than so many come per unit of time, and whoever comes is lost, a double has no digits of those who are there.
+const FEWEST: f64 = 1e-240;
+
 /// An integrated stretch.
 #[derive(Clone, Debug)]
 pub(super) struct Integrated {
@@ -41,6 +44,7 @@ impl Integrated {
         after: After,
         tolerance: f64,
     ) -> Integrated {
+        let conditions = &kept_alive(conditions, ways);
         let enough = |course: &Course| {
             let t = course.until();
             let now = course.end();
@@ -328,6 +332,21 @@ fn comes_to_nothing(side: Side, conditions: &Conditions) -> bool {
     let [first, second] = fire.per_target();
     let vanishes = second.coefficient > 0.0 || first.exponent <= -1.0 || !fire.takes_effect();
     !vanishes || conditions.steadily_lost(side) > 0.0
+}
+
+/// The conditions, but that of a side which has to be lost to the last, and to which some come, no fewer than [`FEWEST`] come:
+/// they keep it alive however few they are, and make no difference else.
+fn kept_alive(conditions: &Conditions, ways: &Both<WayDown>) -> Conditions {
+    let flow = Both::of(|side| {
+        let flow = conditions.flow[side];
+        let to_the_last = ways[side].descent.to == 0.0 && ways[side].rising == 0.0;
+        if flow > 0.0 && to_the_last {
+            flow.max(FEWEST)
+        } else {
+            flow
+        }
+    });
+    Conditions { flow, ..*conditions }
 }
 
 /// What is lost in the time `t` at steady strengths and full rates.
