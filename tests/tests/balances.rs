@@ -202,6 +202,24 @@ fn next_to_nothing_that_flows_in_keeps_a_side_alive() {
     }
 }
 
+/// Under the root of the targets it comes down as a square to (1e-50/6000)², and was said to break where it was rounded to
+/// nobody.
+#[test]
+fn who_is_rounded_to_nobody_and_kept_alive_does_not_break() {
+    for flow in ["1e-50", "1e-100"] {
+        let found = ended(&format!(
+            "x.start=400&x.fire=none&x.flow={flow}@0/&y.start=300&y.fire=power&y.p=1&y.q=0.5&y.rate=20&y.wastage=0.1&\
+             y.break=0.9"
+        ));
+        assert_eq!(found.breaks, Breaks::Y, "{flow}: {found:?}");
+        let end = (flow.parse::<f64>().expect("a number") / 600.0).powi(2);
+        assert!(
+            off(found.x.end.expect("an end"), end) < 1e-10,
+            "{flow}: {found:?}"
+        );
+    }
+}
+
 /// With an exponent next to 1 a strength is long on its way from the last digits of a double to nothing: with u = x^(1−q),
 /// u' = −(1−q)·(c + w·u) gives the time. Below the root of the least double the series had no terms, the steps ended there, and
 /// X was said to be left with nobody and not to break.

@@ -93,18 +93,29 @@ impl Integrated {
     /// Where it went no further although more of `length` was left, and how matters go on is not known.
     pub(super) fn cut_short(&self, length: f64) -> Option<f64> {
         let end = self.course.until();
-        (self.course.stopped() == Stopped::Short && end < length && self.alone().is_none()).then_some(end)
+        let is_cut = match self.course.stopped() {
+            Stopped::Short => true,
+            // Who is down to less than a double holds, and is kept alive, is not gone.
+            Stopped::Gone => Side::BOTH
+                .into_iter()
+                .any(|side| self.course.end()[side] == 0.0 && is_kept_alive(side, &self.conditions)),
+            _ => false,
+        };
+        (is_cut && end < length && self.alone().is_none()).then_some(end)
     }
 
-    /// The first time up to `length` at which `side` is at its line; `None` of a side with nobody there, and nobody to come.
+    /// The first time up to `length` at which `side` is at its line; `None` of a side with nobody there, and nobody to come,
+    /// and of one that is kept alive.
     pub(super) fn first_reach(&self, side: Side, way: &WayDown, length: f64) -> Option<f64> {
-        if self.start[side] == 0.0 && self.conditions.flow[side] == 0.0 {
-            return None;
-        }
         let line = Line {
             at: f64::from(way.descent.to),
             rising: way.rising,
         };
+        let nobody = self.start[side] == 0.0 && self.conditions.flow[side] == 0.0;
+        let to_the_last = line.at == 0.0 && line.rising == 0.0;
+        if nobody || to_the_last && is_kept_alive(side, &self.conditions) {
+            return None;
+        }
         let time = self
             .course
             .first_reach(side, line)
@@ -332,6 +343,14 @@ fn comes_to_nothing(side: Side, conditions: &Conditions) -> bool {
     let [first, second] = fire.per_target();
     let vanishes = second.coefficient > 0.0 || first.exponent <= -1.0 || !fire.takes_effect();
     !vanishes || conditions.steadily_lost(side) > 0.0
+}
+
+/// Whether what comes in of `side` keeps it alive, however few: its losses vanish with it, but for less than comes in.
+fn is_kept_alive(side: Side, conditions: &Conditions) -> bool {
+    let fire = &conditions.fire[side.enemy()];
+    let [first, second] = fire.per_target();
+    let vanishes = !fire.takes_effect() || second.coefficient > 0.0 || first.exponent < 0.0;
+    vanishes && conditions.flow[side] > conditions.steadily_lost(side)
 }
 
 /// The conditions, but that of a side which has to be lost to the last, and to which some come, no fewer than [`FEWEST`] come:
