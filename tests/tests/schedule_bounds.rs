@@ -34,6 +34,43 @@ fn no_fight_takes_more_than_the_bound() {
     assert!(most.0 <= MOST_EVALUATIONS, "{most:?}");
 }
 
+/// Two sides that each come in and are lost at the same pace as the range closes next to never: neither is in a balance with the
+/// other slow, and each of 130 stretches takes as many steps as its length has units. All of them took 1,117,020 evaluations.
+#[test]
+fn many_long_stretches_keep_the_bound_together() {
+    let at = |n: usize| 2000 * n;
+    let flows = |first: usize| {
+        let items = (0..19).map(|n| format!("0.01@{}/{}", at(first + 4 * n), at(first + 4 * n + 1)));
+        format!("200@0/,{}", items.collect::<Vec<_>>().join(","))
+    };
+    let joins = |first: usize| {
+        let items = (0..20).map(|n| format!("0.001@{}", at(first + 2 * n)));
+        items.collect::<Vec<_>>().join(",")
+    };
+    let side = |k: &str, reach: &str, first: usize, second: usize| {
+        format!(
+            "{k}.start=100&{k}.fire=search&{k}.half=50&{k}.rate=1&{k}.wastage=1&{k}.reach={reach}&{k}.flow={}&{k}.join={}&",
+            flows(first),
+            joins(second)
+        )
+    };
+    let phases: String = (1..=9)
+        .map(|n| format!("&phase{n}.from={}&phase{n}.x.wastage=1.{n}", at(116 + n)))
+        .collect();
+    let link = format!(
+        "{}{}range=1e6&range.closing=0.001{phases}",
+        side("x", "2e6", 1, 77),
+        side("y", "3e6", 3, 78)
+    );
+    let statement = Statement::read(&Pairs::parse(&link)).expect("no problem");
+    let Fight { outcome, work, .. } = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+    println!("{work:?}, {} pieces", outcome.pieces.len());
+    assert_eq!(outcome.ended, Ended::Unfinished);
+    assert!(outcome.pieces.len() > 10);
+    assert!(work.evaluations() <= MOST_EVALUATIONS, "{work:?}");
+    assert_eq!(wrong_with_all(&outcome), None);
+}
+
 /// What is wrong with the books of a side, if anything is.
 fn wrong_with(side: &SideOutcome) -> Option<String> {
     let SideOutcome {

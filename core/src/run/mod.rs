@@ -22,6 +22,10 @@ const MOST_ROUNDS: u32 = 4;
 /// How often in a fight an integration that is not at its end is taken up again.
 const MOST_CUTS: u32 = 16;
 
+/// With more evaluations behind it no further stretch is begun. With the last stretch of it, and the whole once more to see who
+/// is left in the end, a fight keeps to [`crate::fight::MOST_EVALUATIONS`].
+const MOST_BEFORE_A_STRETCH: u32 = 220_000;
+
 /// The time between two instants, or from the last one on.
 #[derive(Clone, Copy)]
 struct Span {
@@ -78,6 +82,8 @@ pub(crate) struct Run {
     verdict: bool,
     /// How many stretches were cut short.
     cuts: u32,
+    /// What looks took whose stretches are not kept.
+    looks: Work,
     /// The part of the strengths to which each step of an integration keeps its error.
     tolerance: f64,
 }
@@ -142,6 +148,7 @@ impl Run {
             time: None,
             verdict: false,
             cuts: 0,
+            looks: Work::default(),
             tolerance,
         }
     }
@@ -151,7 +158,7 @@ impl Run {
         self.stretches
             .iter()
             .map(Stretch::work)
-            .fold(Work::default(), Work::and)
+            .fold(self.looks, Work::and)
     }
 
     /// Goes through the instants from the one at `first` on.
@@ -238,6 +245,10 @@ impl Run {
         let since = self.instants[place].time;
         let (mut at, mut rounds) = (from, 0);
         loop {
+            if self.work().evaluations() > MOST_BEFORE_A_STRETCH {
+                self.finish(Breaks::Neither, Ended::Unfinished, at);
+                return true;
+            }
             let conditions = self.instants[place].conditions.later(at - since);
             let ways = Both::of(|side| {
                 self.ledger[side].way_down(self.left[side], self.break_point[side], conditions.flow[side])

@@ -47,9 +47,8 @@ impl Run {
         let mut alone = *conditions;
         alone.flow[side] = 0.0;
         let breaks = at + ways[side].sunk / ways[side].rising;
-        let until = breaks
-            .min(span.until)
-            .min(at + self.too_weak(span, side, &alone, ways, (conditions.flow[side] - steady) / fire));
+        let weak = self.too_weak(span, side, &alone, ways, (conditions.flow[side] - steady) / fire);
+        let until = breaks.min(span.until).min(at + weak);
         let until_then = Span { until, ..*span };
         let (_, comes) = self.solve(&until_then, at, alone, ways);
         let broken = match &comes {
@@ -79,7 +78,14 @@ impl Run {
 
     /// How long it takes until the enemy of `side`, going on alone, is down to where his fire is the part `part` of what it
     /// is now; infinite where he never is.
-    fn too_weak(&self, span: &Span, side: Side, alone: &Conditions, ways: &Both<WayDown>, part: f64) -> f64 {
+    fn too_weak(
+        &mut self,
+        span: &Span,
+        side: Side,
+        alone: &Conditions,
+        ways: &Both<WayDown>,
+        part: f64,
+    ) -> f64 {
         let enemy = side.enemy();
         let exponent = alone.fire[enemy].shooters().exponent;
         if part <= 0.0 || exponent == 0.0 {
@@ -87,8 +93,9 @@ impl Run {
         }
         let strength = self.left[enemy] * libm::pow(part, 1.0 / exponent) * (1.0 - PINNED);
         let (until, after, tolerance) = (span.until, After::More, self.tolerance);
-        Stretch::new(0.0, until, self.left, *alone, ways, after, tolerance)
-            .time_to_strength(enemy, strength)
-            .unwrap_or(f64::INFINITY)
+        let look = Stretch::new(0.0, until, self.left, *alone, ways, after, tolerance);
+        let time = look.time_to_strength(enemy, strength);
+        self.looks = self.looks.and(look.work());
+        time.unwrap_or(f64::INFINITY)
     }
 }
