@@ -24,14 +24,15 @@ pub fn sentence(statement: &Statement, outcome: &Outcome) -> String {
                 time(clock, statement.unit)
             )
         }
-        (Breaks::Neither, Ended::Equilibrium) if changes(outcome) => {
+        (Breaks::Neither, Ended::Equilibrium) if loses(outcome) => {
             "neither side breaks: what comes in and what is lost come to balance".into()
         }
         (Breaks::Neither, Ended::Equilibrium) => {
-            return format!(
-                "In this model nothing changes: neither {}'s fire nor {}'s has any effect.",
-                names.x, names.y
-            );
+            let why = format!("neither {}'s fire nor {}'s has any effect", names.x, names.y);
+            if !moves(outcome) {
+                return format!("In this model nothing changes: {why}.");
+            }
+            format!("nothing is lost: {why}")
         }
         (Breaks::Neither, Ended::Unfinished) => {
             let known = outcome.pieces.last().and_then(|piece| piece.to).unwrap_or(0.0);
@@ -69,11 +70,16 @@ fn left(statement: &Statement, outcome: &Outcome, side: Side) -> String {
     }
 }
 
-/// Whether anything was lost or came in.
-fn changes(outcome: &Outcome) -> bool {
-    outcome.sides().x.losses.all > 0.0
-        || outcome.sides().y.losses.all > 0.0
-        || outcome.x.joined + outcome.y.joined > 0.0
+/// Whether anything was lost.
+fn loses(outcome: &Outcome) -> bool {
+    outcome.x.losses.all + outcome.y.losses.all > 0.0
+}
+
+/// Whether anybody came in or was withdrawn.
+fn moves(outcome: &Outcome) -> bool {
+    [&outcome.x, &outcome.y]
+        .iter()
+        .any(|side| side.joined + side.withdrawn > 0.0)
 }
 
 /// Whether the side fights to the last: its break point is 1.
@@ -144,4 +150,41 @@ fn endless(statement: &Statement, outcome: &Outcome) -> String {
         strength(outcome.sides()[loser.enemy()].end.unwrap_or(f64::INFINITY)),
         below(&names[loser])
     )
+}
+
+#[cfg(test)]
+mod tests {
+    use crate::answer::{Answer, answer};
+    use crate::pairs::Pairs;
+    use crate::statement::Statement;
+
+    /// Where nothing is lost it is still said who came and who was withdrawn: "nothing changes" it was.
+    #[test]
+    fn who_comes_or_goes_without_losses_is_told() {
+        let none = "neither Side X's fire nor Side Y's has any effect";
+        let sides = "x.start=600&x.fire=none&y.start=400&y.fire=none";
+        for (more, words) in [
+            ("", format!("In this model nothing changes: {none}.")),
+            (
+                "&y.join=-100@2",
+                format!(
+                    "In this model nothing is lost: {none}; left: Side X 600 of 600, Side Y 300 of 400 (100 withdrawn)."
+                ),
+            ),
+            (
+                "&x.join=64@2",
+                format!("In this model nothing is lost: {none}; left: Side X 664 of 664, Side Y 400 of 400."),
+            ),
+        ] {
+            let link = format!("{sides}{more}");
+            let Answer::Outcome { outcome, .. } = answer(&link) else {
+                panic!("{link}")
+            };
+            let statement = Statement::read(&Pairs::parse(&link)).expect("no problem");
+            assert_eq!(
+                super::sentence(&statement, &outcome).replace('\u{a0}', " "),
+                words
+            );
+        }
+    }
 }

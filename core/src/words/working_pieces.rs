@@ -6,7 +6,7 @@ use super::math::*;
 use super::timeline::timeline;
 use super::times;
 use super::working::{WorkingLine, area};
-use crate::conditions::Conditions;
+use crate::conditions::{Conditions, Growth};
 use crate::fight::{Effort, fight};
 use crate::linear_system::{LinearSystem, Part};
 use crate::motion::Motion;
@@ -226,14 +226,24 @@ fn state_equation(piece: &Piece, stretch: &Stretch) -> Option<Math> {
     Some(equal(&[cost(Side::X)?, cost(Side::Y)?]))
 }
 
-/// How long the stretch is, from the strengths at both its ends, where it ends with a break at full rates.
+/// How long the stretch is, from the strengths at both its ends; where its rates grow together, how long it would be at full
+/// rates.
 fn time_formula(piece: &Piece, stretch: &Stretch) -> Option<Vec<WorkingLine>> {
     let length = stretch.to? - stretch.from;
-    let plain = stretch.conditions.are_plain() && stretch.conditions.shared_growth() == Some(None);
-    if !plain || piece.motion == Motion::Still {
+    if !stretch.conditions.are_plain() || piece.motion == Motion::Still {
         return None;
     }
-    let point = piece.point_at(length);
+    let growth = stretch.conditions.shared_growth()?;
+    let full = growth.map_or(length, |growth| growth.until(length));
+    let rescaled = growth.map(|growth| {
+        let words = "Its rates grow alike; the growth summed over t, which is its time at full rates, is";
+        line(
+            "",
+            words,
+            Some(equal(&[letter("T"), summed(&growth, length), number(full)])),
+        )
+    });
+    let point = piece.point_at(full);
     let loser = if point.fallen.x / stretch.start.x > point.fallen.y / stretch.start.y {
         Side::X
     } else {
@@ -245,9 +255,29 @@ fn time_formula(piece: &Piece, stretch: &Stretch) -> Option<Vec<WorkingLine>> {
     let time = line(
         "",
         "From its first strengths to its last, which come next, it takes",
-        Some(equal(&[letter("t"), formula, number(length)])),
+        Some(equal(&[
+            letter(if growth.is_some() { "T" } else { "t" }),
+            formula,
+            number(full),
+        ])),
     );
-    Some(constant.into_iter().chain([time]).collect())
+    Some(rescaled.into_iter().chain(constant).chain([time]).collect())
+}
+
+/// ∫(v + s·t)^μ dt = ((v + s·t)^(μ+1) − v^(μ+1))/((μ+1)·s), the growth summed over the time `length`.
+fn summed(growth: &Growth, length: f64) -> Math {
+    let order = growth.power + 1.0;
+    let grown = times(&[number(growth.slope), number(length)]);
+    let sum = if growth.value > 0.0 {
+        let value = number(growth.value);
+        minus(
+            &power(&plus(&[value.clone(), grown]), order),
+            &power(&value, order),
+        )
+    } else {
+        power(&grown, order)
+    };
+    over(&sum, &times(&[number(order), number(growth.slope)]))
 }
 
 /// The eigenvalues of a linear system, and its strengths as sums of exponentials.
@@ -379,6 +409,34 @@ mod tests {
         );
         let left = place("After that there are: x = 400, y = 264");
         assert!(hands.is_some() && hands < joins && joins < left, "{texts:#?}");
+    }
+
+    /// Where both fires grow alike the time runs by their growth: there was no formula. At half the range, 0.05·t of the reach
+    /// closed in t, x and y at the same rates come down by exp(−0.1·T) from 100 each, to the half after T = 10·ln 2.
+    #[test]
+    fn a_stretch_whose_fires_grow_alike_has_its_formula() {
+        let texts = texts(
+            "x.start=100&x.rate=0.1&x.break=0.5&y.start=100&y.rate=0.1&y.break=0.5&range=10&range.closing=1&\
+             x.reach=20&y.reach=20",
+        );
+        let at = |start: &str| {
+            texts
+                .iter()
+                .position(|line| line.starts_with(start))
+                .unwrap_or_else(|| panic!("{texts:#?}"))
+        };
+        let (full, takes) = (at("Its rates grow alike"), at("From its first strengths"));
+        // 0.5·t + 0.025·t² = 10·ln 2: t = −10 + √(100 + 400·ln 2).
+        assert!(
+            texts[full].ends_with("T = ((0.5 + 0.05·9.42315)² − 0.5²)/(2·0.05) = 6.93147"),
+            "{}",
+            texts[full]
+        );
+        assert!(
+            full < takes && texts[takes].ends_with("= 6.93147"),
+            "{}",
+            texts[takes]
+        );
     }
 
     /// A linear stretch shows its strengths in time also where an eigenvalue is 0 or both agree: they had no formula.
