@@ -138,7 +138,10 @@ fn meaning(statement: &Statement) -> Vec<(String, String)> {
         ("counted".to_owned(), statement.counted.to_string()),
     ];
     for side in Side::BOTH {
-        found.push((format!("{}.name", side.letter()), statement.names[side].to_string()));
+        found.push((
+            format!("{}.name", side.letter()),
+            statement.names[side].to_string(),
+        ));
         let law = statement.terms.sides[side].fire.law.law();
         found.push((format!("{}.fire", side.letter()), law.word.to_owned()));
     }
