@@ -93,12 +93,11 @@ impl Integrated {
     /// Where it went no further although more of `length` was left, and how matters go on is not known.
     pub(super) fn cut_short(&self, length: f64) -> Option<f64> {
         let end = self.course.until();
+        // Who is down to less than a double holds, and is kept alive, is not gone.
+        let rounded = |side: Side| self.course.end()[side] == 0.0 && is_kept_alive(side, &self.conditions);
         let is_cut = match self.course.stopped() {
             Stopped::Short => true,
-            // Who is down to less than a double holds, and is kept alive, is not gone.
-            Stopped::Gone => Side::BOTH
-                .into_iter()
-                .any(|side| self.course.end()[side] == 0.0 && is_kept_alive(side, &self.conditions)),
+            Stopped::Gone => rounded(Side::X) || rounded(Side::Y),
             _ => false,
         };
         (is_cut && end < length && self.alone().is_none()).then_some(end)

@@ -28,11 +28,10 @@ pub fn sentence(statement: &Statement, outcome: &Outcome) -> String {
             "neither side breaks: what comes in and what is lost come to balance".into()
         }
         (Breaks::Neither, Ended::Equilibrium) => {
-            let why = format!("neither {}'s fire nor {}'s has any effect", names.x, names.y);
-            if !moves(outcome) {
-                return format!("In this model nothing changes: {why}.");
-            }
-            format!("nothing is lost: {why}")
+            format!(
+                "nothing is lost: neither {}'s fire nor {}'s has any effect",
+                names.x, names.y
+            )
         }
         (Breaks::Neither, Ended::Unfinished) => {
             let known = outcome.pieces.last().and_then(|piece| piece.to).unwrap_or(0.0);
@@ -73,13 +72,6 @@ fn left(statement: &Statement, outcome: &Outcome, side: Side) -> String {
 /// Whether anything was lost.
 fn loses(outcome: &Outcome) -> bool {
     outcome.x.losses.all + outcome.y.losses.all > 0.0
-}
-
-/// Whether anybody came in or was withdrawn.
-fn moves(outcome: &Outcome) -> bool {
-    [&outcome.x, &outcome.y]
-        .iter()
-        .any(|side| side.joined + side.withdrawn > 0.0)
 }
 
 /// Whether the side fights to the last: its break point is 1.
@@ -158,13 +150,16 @@ mod tests {
     use crate::pairs::Pairs;
     use crate::statement::Statement;
 
-    /// Where nothing is lost it is still said who came and who was withdrawn: "nothing changes" it was.
+    /// Where nothing is lost it is still said who came and who was withdrawn: it was said that nothing changes.
     #[test]
     fn who_comes_or_goes_without_losses_is_told() {
         let none = "neither Side X's fire nor Side Y's has any effect";
         let sides = "x.start=600&x.fire=none&y.start=400&y.fire=none";
         for (more, words) in [
-            ("", format!("In this model nothing changes: {none}.")),
+            (
+                "",
+                format!("In this model nothing is lost: {none}; left: Side X 600 of 600, Side Y 400 of 400."),
+            ),
             (
                 "&y.join=-100@2",
                 format!(
