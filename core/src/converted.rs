@@ -2,9 +2,9 @@
 
 use crate::decimal::multiplied;
 use crate::keys::{self, Unit};
+use crate::order::sort_by;
 use crate::pairs::Pairs;
 use crate::statement::{Statement, TimeUnit};
-use std::collections::BTreeSet;
 
 /// What of a key's text changes with the unit of time.
 #[derive(Clone, Copy, PartialEq, Eq)]
@@ -40,16 +40,16 @@ struct Change {
 pub fn converted(pairs: &Pairs, from: TimeUnit, to: TimeUnit) -> Result<Pairs, Vec<String>> {
     let change = Change::between(from, to);
     let mut result = pairs.clone();
-    let mut refused = BTreeSet::new();
+    let mut refused = Vec::new();
     for (key, text) in pairs.iter().filter(|(_, text)| !text.trim().is_empty()) {
         if has_own_unit(key) {
-            refused.insert(key.to_owned());
+            refused.push(key.to_owned());
         }
         match change.of(carries(key), text) {
             Some(new) if new != text => result.set(key, &new),
             Some(_) => {}
             None => {
-                refused.insert(key.to_owned());
+                refused.push(key.to_owned());
             }
         }
     }
@@ -58,7 +58,9 @@ pub fn converted(pairs: &Pairs, from: TimeUnit, to: TimeUnit) -> Result<Pairs, V
     if refused.is_empty() {
         Ok(result)
     } else {
-        Err(refused.into_iter().collect())
+        sort_by(&mut refused, String::cmp);
+        refused.dedup();
+        Err(refused)
     }
 }
 
@@ -72,11 +74,13 @@ pub fn carry_time(pairs: &Pairs) -> bool {
 
 /// Keys that are in trouble after a change and were not before.
 fn new_troubles(before: &Pairs, after: &Pairs) -> Vec<String> {
-    let troubles = |pairs: &Pairs| -> BTreeSet<String> {
+    let troubles = |pairs: &Pairs| -> Vec<String> {
         let problems = Statement::read(pairs).err().unwrap_or_default();
         problems.into_iter().filter_map(|problem| problem.key).collect()
     };
-    troubles(after).difference(&troubles(before)).cloned().collect()
+    let (old, mut new) = (troubles(before), troubles(after));
+    new.retain(|key| !old.contains(key));
+    new
 }
 
 /// Whether a key gives a variant a unit of its own: what the variant leaves as it is would change its meaning.

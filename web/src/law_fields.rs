@@ -7,7 +7,6 @@ use aftercount_core::laws::FireLaw;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::problem::Problem;
 use aftercount_core::sides::Side;
-use std::collections::BTreeSet;
 
 /// The most letters of a law's words that a list on a small screen has room for.
 const ROOM: usize = 36;
@@ -15,14 +14,14 @@ const ROOM: usize = 36;
 /// The fields, and which of them have a problem.
 pub(crate) struct LawFields {
     dom: Dom,
-    troubled: BTreeSet<String>,
+    troubled: Vec<String>,
 }
 
 impl LawFields {
     pub(crate) fn new(dom: &Dom) -> LawFields {
         LawFields {
             dom: dom.clone(),
-            troubled: BTreeSet::new(),
+            troubled: Vec::new(),
         }
     }
 

@@ -11,7 +11,6 @@ use aftercount_core::pairs::Pairs;
 use aftercount_core::sides::Side;
 use aftercount_core::statement::TimeUnit;
 use aftercount_core::words::meaning;
-use std::collections::BTreeSet;
 use web_sys::{Element, HtmlElement, HtmlInputElement, HtmlSelectElement};
 
 /// The most phases of a link.
@@ -23,7 +22,7 @@ pub(crate) struct Phases {
     /// The phases and their changes, and the names in their words.
     built: Option<(Vec<Shown>, [String; 2])>,
     /// Keys whose field was just emptied: it stays as long as somebody is in it.
-    emptied: BTreeSet<String>,
+    emptied: Vec<String>,
 }
 
 /// A phase: its number and the keys that it changes, `x.rate`.
@@ -107,7 +106,7 @@ impl Phases {
         Phases {
             dom: dom.clone(),
             built: None,
-            emptied: BTreeSet::new(),
+            emptied: Vec::new(),
         }
     }
 
@@ -155,7 +154,7 @@ impl Phases {
     /// A field was typed in.
     pub(crate) fn typed(&mut self, key: &str, text: &str) {
         if is_phase_key(key) && text.is_empty() {
-            self.emptied.insert(key.to_owned());
+            self.emptied.push(key.to_owned());
         }
     }
 

@@ -8,7 +8,6 @@ use aftercount_core::keys;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::problem::{Problem, seen};
 use aftercount_core::words::entry;
-use std::collections::BTreeSet;
 use web_sys::Element;
 
 /// How long a problem waits while somebody is typing, in milliseconds: `0.` on the way to `0.04` is none.
@@ -18,7 +17,7 @@ pub(crate) const PATIENCE: i32 = 600;
 pub(crate) struct Problems {
     dom: Dom,
     /// The keys whose fields are marked.
-    marked: BTreeSet<String>,
+    marked: Vec<String>,
     /// The cells of tables that are marked.
     marked_cells: Vec<String>,
     /// What a screen reader is told of them.
@@ -29,7 +28,7 @@ impl Problems {
     pub(crate) fn new(dom: &Dom) -> Problems {
         Problems {
             dom: dom.clone(),
-            marked: BTreeSet::new(),
+            marked: Vec::new(),
             marked_cells: Vec::new(),
             aloud: String::new(),
         }
@@ -110,7 +109,7 @@ impl Problems {
         self.dom.set_shown(&id, true);
         self.dom.set_attribute(key, "aria-invalid", "true");
         self.dom.set_text(&format!("{key}.echo"), "");
-        self.marked.insert(key.to_owned());
+        self.marked.push(key.to_owned());
     }
 
     /// A line of the list: a link to the field where there is one, and a way to put right what no field can.

@@ -11,7 +11,6 @@ use crate::quantity::Quantity;
 use crate::sides::{Both, Side};
 use crate::statement::{Names, Statement, TimeUnit};
 use crate::terms::{Changes, Flow, Join, Phase};
-use std::collections::BTreeSet;
 
 /// The digits that a number is written with: all that somebody types.
 const DIGITS: usize = 15;
@@ -53,7 +52,7 @@ pub fn assumptions(pairs: &Pairs, statement: &Statement) -> Assumptions {
     let mut table = Table {
         pairs,
         statement,
-        told: BTreeSet::new(),
+        told: Vec::new(),
         sides: Vec::new(),
         whole: Vec::new(),
     };
@@ -73,7 +72,7 @@ struct Table<'a> {
     pairs: &'a Pairs,
     statement: &'a Statement,
     /// The keys that have been told.
-    told: BTreeSet<String>,
+    told: Vec<String>,
     sides: Vec<Row<Both<Assumed>>>,
     whole: Vec<Row<Assumed>>,
 }
@@ -89,7 +88,7 @@ impl Table<'_> {
         let holds = Both::of(|side: Side| {
             let key = format!("{}.{name}", side.letter());
             let default = !self.stands(&key);
-            self.told.insert(key);
+            self.told.push(key);
             Assumed {
                 words: words(side),
                 default,
@@ -119,7 +118,7 @@ impl Table<'_> {
     fn one(&mut self, name: &str, words: impl Into<String>) {
         let label = keys::find(name).map_or(name, |row| row.label);
         let default = !self.stands(name);
-        self.told.insert(name.into());
+        self.told.push(name.into());
         self.whole.push(Row {
             label: label.into(),
             key: name.into(),
@@ -259,7 +258,7 @@ impl Table<'_> {
             .pairs
             .iter()
             .filter(|(key, text)| {
-                !text.trim().is_empty() && !shown.contains(key) && !self.told.contains(*key)
+                !text.trim().is_empty() && !shown.contains(key) && !self.told.iter().any(|told| told == key)
             })
             .map(|(key, text)| (key.to_owned(), seen(text.trim())))
             .collect();
@@ -397,6 +396,7 @@ fn decapitalised(words: &str) -> String {
 mod tests {
     use super::*;
     use crate::words::format::plain;
+    use std::collections::BTreeSet;
 
     fn of(link: &str) -> Assumptions {
         let pairs = Pairs::parse(link);
