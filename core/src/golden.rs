@@ -1,4 +1,4 @@
-//! The golden bits: one hash of 500 answers, which must be the same on every machine and in the page.
+//! The golden bits: one hash of 500 answers, which must be the same on every machine; the page must give the same answers.
 
 use crate::answer::answer;
 use crate::mark::fnv1a;

@@ -1,6 +1,6 @@
 //! The golden bits: 500 answers, to their last digit, on every machine.
 //!
-//! The page computes the same hash in a browser. A change that is meant changes `reference/golden.txt`, and says why.
+//! That the page gives the same 500 is a browser test. A change that is meant changes `reference/golden.txt`, and says why.
 
 use aftercount_core::answer::answer;
 use aftercount_core::golden;
