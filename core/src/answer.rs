@@ -8,7 +8,7 @@ use crate::outcome::Outcome;
 use crate::pairs::Pairs;
 use crate::problem::Problem;
 use crate::reversal::{Entry, Reversal};
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 use crate::words::working::{WorkingLine, working};
 use serde::ser::{Serialize, SerializeStruct, Serializer};
 
@@ -66,7 +66,7 @@ pub fn answer_with(link: &str, besides: Besides) -> Answer {
 
 /// The outcome with the numbers as they are now.
 fn worked_out(pairs: &Pairs, statement: &Statement, besides: Besides) -> Answer {
-    let outcome = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
+    let outcome = fight(&statement.engagement(), Effort::Outcome).outcome;
     let lines = || {
         working(statement, &outcome)
             .iter()

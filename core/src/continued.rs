@@ -6,7 +6,7 @@ use crate::mark::text_mark;
 use crate::pairs::Pairs;
 use crate::schedule::instants;
 use crate::sides::{Both, Side};
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 use crate::terms::Engagement;
 use crate::trajectory::Trajectory;
 use crate::words::format::{plain, with_unit};
@@ -16,7 +16,7 @@ use crate::words::format::{plain, with_unit};
 ///
 /// `pairs` are those that `statement` was read from, and `trajectory` is its fight's; `t` is from 0 to the end.
 pub fn continued(pairs: &Pairs, statement: &Statement, trajectory: &Trajectory, t: f64) -> Pairs {
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     let left = trajectory.strengths_at(t);
     let stretch = trajectory
         .stretches
@@ -145,7 +145,7 @@ mod tests {
         let on = |link: &str, t: f64| {
             let pairs = Pairs::parse(link);
             let statement = Statement::read(&pairs).expect(link);
-            let whole = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+            let whole = fight(&statement.engagement(), Effort::Trajectory);
             let text = continued(
                 &pairs,
                 &statement,
@@ -193,13 +193,13 @@ mod tests {
         for link in links {
             let pairs = Pairs::parse(link);
             let statement = Statement::read(&pairs).expect(link);
-            let whole = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+            let whole = fight(&statement.engagement(), Effort::Trajectory);
             let trajectory = whole.trajectory.as_ref().expect("was asked for");
             for t in [0.0, 2.5, 3.0, 4.0, 4.5, 6.5] {
                 let text = continued(&pairs, &statement, trajectory, t);
                 let rest =
                     Statement::read(&text).unwrap_or_else(|problems| panic!("{link} at {t}: {problems:?}"));
-                let rest = fight(&rest.engagement(&Values::new()), Effort::Outcome).outcome;
+                let rest = fight(&rest.engagement(), Effort::Outcome).outcome;
                 assert_eq!(
                     rest.breaks,
                     whole.outcome.breaks,
@@ -230,14 +230,14 @@ mod tests {
         let link = "x.start=100&x.break=0.5&x.fire=none&x.join=-100@0&x.flow=10@1/&y.start=300&y.rate=0.1";
         let pairs = Pairs::parse(link);
         let statement = Statement::read(&pairs).expect(link);
-        let whole = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+        let whole = fight(&statement.engagement(), Effort::Trajectory);
         let trajectory = whole.trajectory.as_ref().expect("was asked for");
         let ends = whole.outcome.time.expect("x breaks");
         assert!((ends - 11.0).abs() <= 1e-12 * ends, "{ends}");
         assert_eq!(trajectory.losses_per_time(6.0).x, 10.0);
         let text = continued(&pairs, &statement, trajectory, 6.0);
         let rest = Statement::read(&text).unwrap_or_else(|problems| panic!("{problems:?}"));
-        let rest = fight(&rest.engagement(&Values::new()), Effort::Outcome).outcome;
+        let rest = fight(&rest.engagement(), Effort::Outcome).outcome;
         let time = rest.time.unwrap_or(f64::NAN) + 6.0;
         assert!(
             (time - ends).abs() <= 1e-12 * ends,

@@ -11,7 +11,7 @@ mod tests {
     use crate::fight::{Effort, fight};
     use crate::outcome::Breaks;
     use crate::pairs::Pairs;
-    use crate::statement::{Statement, Values};
+    use crate::statement::Statement;
 
     #[test]
     fn the_reserve_decides_and_an_hour_later_would_not() {
@@ -19,7 +19,7 @@ mod tests {
             let mut pairs = Pairs::parse(DEMO);
             pairs.set("y.join", join);
             let statement = Statement::read(&pairs).expect(join);
-            let engagement = statement.engagement(&Values::new());
+            let engagement = statement.engagement();
             let losses = engagement.sides.y.fire.rate * engagement.sides.y.start;
             assert_eq!(losses, engagement.sides.x.fire.rate * engagement.sides.x.start);
             fight(&engagement, Effort::Outcome).outcome.breaks

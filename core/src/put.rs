@@ -76,9 +76,9 @@ mod tests {
             let mut changed = pairs.clone();
             put(&mut changed, &slot, "0.75");
             let read = Statement::read(&changed);
-            let expected = statement.engagement(&Values::from([(slot.name.clone(), 0.75)]));
+            let expected = statement.engagement_with(&Values::from([(slot.name.clone(), 0.75)]));
             match read {
-                Ok(read) => assert_eq!(read.engagement(&Values::new()), expected, "{}", slot.name),
+                Ok(read) => assert_eq!(read.engagement(), expected, "{}", slot.name),
                 // A flow that would end before it begins.
                 Err(_) => assert!(!slot.limits.hold(0.75), "{}", slot.name),
             }

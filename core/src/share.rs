@@ -11,7 +11,7 @@ use crate::pairs::Pairs;
 use crate::problem::Problem;
 use crate::schedule::instants;
 use crate::sides::{Both, Side};
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 use crate::terms::Engagement;
 
 /// The significant digits that a rate is written with: those of a per cent that somebody types, and some to spare.
@@ -49,7 +49,7 @@ impl AtStart {
 /// The per cent of the enemy that `side`'s fire takes per unit of time at the start, as it would be typed; `None` where
 /// nobody is there, or nothing is lost.
 pub fn per_cent_of_rate(statement: &Statement, side: Side) -> Option<String> {
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     let start = AtStart::of(&engagement, side);
     let share = start.losses / start.strengths[side.enemy()];
     (share > 0.0 && share.is_finite()).then(|| rounded(100.0 * share))
@@ -72,7 +72,7 @@ pub fn rate_of_per_cent(pairs: &Pairs, side: Side, per_cent: &str) -> Result<Str
     if !statement.has_base() {
         return Err("it rests on a number in question that has no value now".into());
     }
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     let (name, enemy) = (&statement.names[side], &statement.names[side.enemy()]);
     if engagement.sides[side].fire.law == FireLaw::None {
         return Err(format!("{name} has no fire, so there is no rate to write"));

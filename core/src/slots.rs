@@ -441,9 +441,9 @@ mod tests {
         let slots = slots(&pairs, &statement);
         assert_eq!(slots.len(), count);
         for slot in slots {
-            let mut changed = statement.engagement(&Values::new());
+            let mut changed = statement.engagement();
             changed.put(slot.place, 12.5);
-            let named = statement.engagement(&Values::from([(slot.name.clone(), 12.5)]));
+            let named = statement.engagement_with(&Values::from([(slot.name.clone(), 12.5)]));
             assert_eq!(changed, named, "{}", slot.name);
             let value = slot.value().expect("all are plain");
             assert!(slot.limits.hold(value), "{}", slot.name);

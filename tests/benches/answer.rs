@@ -3,7 +3,7 @@
 use aftercount_core::answer::answer;
 use aftercount_core::fight::{Effort, fight};
 use aftercount_core::pairs::Pairs;
-use aftercount_core::statement::{Statement, Values};
+use aftercount_core::statement::Statement;
 use criterion::{Criterion, criterion_group, criterion_main};
 use std::hint::black_box;
 
@@ -100,7 +100,7 @@ fn trajectories(criterion: &mut Criterion) {
         .filter(|(name, _)| ["aimed/aimed", "power/power", "search/search"].contains(name))
     {
         let statement = Statement::read(&Pairs::parse(link)).expect("a good link");
-        let engagement = statement.engagement(&Values::new());
+        let engagement = statement.engagement();
         group.bench_function(*name, |bencher| {
             bencher.iter(|| {
                 let trajectory = fight(black_box(&engagement), Effort::Trajectory)

@@ -13,7 +13,7 @@ use aftercount_core::laws::along_orbit::AlongOrbit;
 use aftercount_core::outcome::{Breaks, Method};
 use aftercount_core::pairs::Pairs;
 use aftercount_core::sides::Side;
-use aftercount_core::statement::{Statement, Values};
+use aftercount_core::statement::Statement;
 use aftercount_core::terms::Engagement;
 use aftercount_tests::ugly;
 use serde_json::{Value, json};
@@ -73,7 +73,7 @@ fn slowest() {
         let Ok(statement) = Statement::read(&Pairs::parse(&line)) else {
             continue;
         };
-        let engagement = statement.engagement(&Values::new());
+        let engagement = statement.engagement();
         let start = Instant::now();
         let work = fight(&engagement, Effort::Outcome).work;
         found.push((start.elapsed().as_micros(), work.evaluations(), line));
@@ -97,7 +97,7 @@ fn times(name: &str, link: &str) -> Value {
     let mut found = json!({"name": name, "whole": whole, "outcome": outcome});
     let engagement = Statement::read(&Pairs::parse(link))
         .unwrap_or_else(|why| panic!("{link}: {why:?}"))
-        .engagement(&Values::new());
+        .engagement();
     if let Some((quadrature, integrator, apart)) = ways(&engagement) {
         found["quadrature"] = json!(quadrature);
         found["integrator"] = json!(integrator);

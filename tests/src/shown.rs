@@ -31,7 +31,7 @@ pub fn read(link: &str) -> (Pairs, Statement) {
 /// The outcome with a number changed, by the name of its slot.
 pub fn outcome_with(statement: &Statement, slot: &str, value: f64) -> Outcome {
     let values = Values::from([(slot.to_owned(), value)]);
-    fight(&statement.engagement(&values), Effort::Outcome).outcome
+    fight(&statement.engagement_with(&values), Effort::Outcome).outcome
 }
 
 /// Works `link` out.
@@ -40,7 +40,7 @@ pub fn outcome_with(statement: &Statement, slot: &str, value: f64) -> Outcome {
 /// Where it cannot be worked out.
 pub fn worked(link: &str) -> Worked {
     let (_, statement) = read(link);
-    let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+    let fight = fight(&statement.engagement(), Effort::Trajectory);
     let strength = picture::strength(&statement, &fight).expect("a trajectory was asked for");
     let orbit = picture::orbit(&statement, &fight).expect("a trajectory was asked for");
     Worked {

@@ -5,14 +5,14 @@ use aftercount_core::answer::{Answer, answer};
 use aftercount_core::fight::{Effort, Fight, fight, fight_to};
 use aftercount_core::outcome::{Breaks, Ended, Outcome, SideOutcome};
 use aftercount_core::pairs::Pairs;
-use aftercount_core::statement::{Statement, Values};
+use aftercount_core::statement::Statement;
 use aftercount_core::terms::Engagement;
 use aftercount_tests::{tables, ugly};
 
 fn engagement(link: &str) -> Engagement {
     Statement::read(&Pairs::parse(link))
         .unwrap_or_else(|why| panic!("{link}: {why:?}"))
-        .engagement(&Values::new())
+        .engagement()
 }
 
 fn ended(link: &str) -> Outcome {

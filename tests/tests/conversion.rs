@@ -5,7 +5,7 @@ use aftercount_core::fight::{Effort, fight};
 use aftercount_core::golden;
 use aftercount_core::outcome::Outcome;
 use aftercount_core::pairs::Pairs;
-use aftercount_core::statement::{Statement, TimeUnit, Values};
+use aftercount_core::statement::{Statement, TimeUnit};
 use proptest::prelude::*;
 
 const UNITS: [TimeUnit; 5] = [
@@ -18,7 +18,7 @@ const UNITS: [TimeUnit; 5] = [
 
 fn outcome(pairs: &Pairs) -> Outcome {
     let statement = Statement::read(pairs).unwrap_or_else(|why| panic!("{}: {why:?}", pairs.link()));
-    fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome
+    fight(&statement.engagement(), Effort::Outcome).outcome
 }
 
 /// How far two numbers are apart, in parts of `scale`; none at all where both are missing.

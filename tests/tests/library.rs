@@ -12,7 +12,7 @@ use aftercount_core::outcome::{Breaks, Ended, Method};
 use aftercount_core::pairs::Pairs;
 use aftercount_core::piece::Piece;
 use aftercount_core::sides::{Both, Side};
-use aftercount_core::statement::{Statement, Values};
+use aftercount_core::statement::Statement;
 use aftercount_core::terms::Engagement;
 use aftercount_tests::tables::{self, relative_error};
 
@@ -74,7 +74,7 @@ fn library() -> Vec<Problem> {
         let statement = statement.unwrap_or_else(|why| panic!("{}: {why:?}", row.text("name")));
         Problem {
             name: row.text("name").to_owned(),
-            engagement: statement.engagement(&Values::new()),
+            engagement: statement.engagement(),
         }
     };
     rows.into_iter().map(problem).collect()

@@ -17,7 +17,7 @@ const PLAIN: &str =
 
 fn pictures(link: &str) -> (Picture, Picture) {
     let statement = Statement::read(&Pairs::parse(link)).unwrap_or_else(|why| panic!("{link}: {why:?}"));
-    let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+    let fight = fight(&statement.engagement(), Effort::Trajectory);
     let strength = picture::strength(&statement, &fight).expect("a trajectory was asked for");
     let orbit = picture::orbit(&statement, &fight).expect("a trajectory was asked for");
     (strength, orbit)
@@ -192,7 +192,7 @@ fn what_happens_on_a_map_is_told_where_it_does() {
     for line in map.lines.iter().filter(|line| line.role == Role::Region) {
         for (across, up) in &line.points {
             let values = Values::from([("x.rate".into(), *across), ("y.start".into(), *up)]);
-            let outcome = fight(&statement.engagement(&values), Effort::Outcome).outcome;
+            let outcome = fight(&statement.engagement_with(&values), Effort::Outcome).outcome;
             let breaks = if line.label.starts_with("Tarn") {
                 Breaks::X
             } else {

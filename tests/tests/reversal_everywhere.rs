@@ -4,7 +4,6 @@ use aftercount_core::fight::{Effort, fight};
 use aftercount_core::keys::Unit;
 use aftercount_core::outcome::{Breaks, Ended, Outcome, ToTheLast};
 use aftercount_core::reversal::{Kind, Reversal};
-use aftercount_core::statement::Values;
 use aftercount_tests::shown::{outcome_with, read};
 use std::fmt::Write;
 use std::thread;
@@ -183,7 +182,7 @@ fn check(number: u64, tally: &mut Tally) {
     let link = &engagement(number)[..];
     let (pairs, statement) = read(link);
     let search = Reversal::new(&pairs, &statement).only(|slot| slot.written || number.is_multiple_of(8));
-    let base = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
+    let base = fight(&statement.engagement(), Effort::Outcome).outcome;
     let mut dice = Dice(0x1234_5678_9abc_def1);
     for entry in search.finished().into_entries() {
         tally.entries += 1;

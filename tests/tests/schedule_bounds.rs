@@ -3,7 +3,7 @@
 use aftercount_core::fight::{Effort, Fight, MOST_EVALUATIONS, fight};
 use aftercount_core::outcome::{Ended, Outcome, SideOutcome};
 use aftercount_core::pairs::Pairs;
-use aftercount_core::statement::{Statement, Values};
+use aftercount_core::statement::Statement;
 use aftercount_tests::ugly;
 
 /// How many ugly schedules are drawn; some of them are refused.
@@ -14,7 +14,7 @@ fn fights() -> impl Iterator<Item = (String, Fight)> {
     let links = ugly::extremes().into_iter().chain((0..DRAWN).map(ugly::link));
     links.filter_map(|link| {
         let statement = Statement::read(&Pairs::parse(&link)).ok()?;
-        let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+        let fight = fight(&statement.engagement(), Effort::Trajectory);
         Some((link, fight))
     })
 }
@@ -63,7 +63,7 @@ fn many_long_stretches_keep_the_bound_together() {
         side("y", "3e6", 3, 78)
     );
     let statement = Statement::read(&Pairs::parse(&link)).expect("no problem");
-    let Fight { outcome, work, .. } = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+    let Fight { outcome, work, .. } = fight(&statement.engagement(), Effort::Trajectory);
     println!("{work:?}, {} pieces", outcome.pieces.len());
     assert_eq!(outcome.ended, Ended::Unfinished);
     assert!(outcome.pieces.len() > 10);

@@ -2,7 +2,7 @@
 
 use aftercount_core::outcome::{Breaks, Ended, Outcome, ToTheLast};
 use aftercount_core::pairs::Pairs;
-use aftercount_core::statement::{Statement, Values};
+use aftercount_core::statement::Statement;
 use aftercount_core::words::figures::figures;
 use aftercount_core::words::sentence::sentence;
 use aftercount_tests::tables::{assert_close, outcome};
@@ -12,7 +12,7 @@ fn statement(link: &str) -> Statement {
 }
 
 fn ended(link: &str) -> Outcome {
-    let engagement = statement(link).engagement(&Values::new());
+    let engagement = statement(link).engagement();
     aftercount_core::fight::fight(&engagement, aftercount_core::fight::Effort::Outcome).outcome
 }
 

@@ -4,7 +4,7 @@ use aftercount_core::continued::continued;
 use aftercount_core::fight::{Effort, Fight, fight};
 use aftercount_core::outcome::{Breaks, Ended, Outcome, SideOutcome};
 use aftercount_core::pairs::Pairs;
-use aftercount_core::statement::{Statement, Values};
+use aftercount_core::statement::Statement;
 use aftercount_tests::tables::{self, Row, assert_close, number, outcome};
 
 fn statement(pairs: &Pairs) -> Statement {
@@ -12,7 +12,7 @@ fn statement(pairs: &Pairs) -> Statement {
 }
 
 fn solved(pairs: &Pairs) -> Fight {
-    fight(&statement(pairs).engagement(&Values::new()), Effort::Trajectory)
+    fight(&statement(pairs).engagement(), Effort::Trajectory)
 }
 
 fn ended(link: &str) -> Outcome {
@@ -243,7 +243,7 @@ fn what_goes_on_ends_as_the_whole() {
     for row in schedules_without_ties() {
         let pairs = Pairs::parse(row.text("link"));
         let statement = statement(&pairs);
-        let whole = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+        let whole = fight(&statement.engagement(), Effort::Trajectory);
         let trajectory = whole.trajectory.expect("was asked for");
         let Some(ends) = trajectory.ends().filter(|ends| *ends > 0.0) else {
             continue;
@@ -398,7 +398,7 @@ fn the_work_done_is_that_committed() {
     assert!(rows.len() >= 40, "{} rows", rows.len());
     let took = |row: &Row| {
         let statement = statement(&Pairs::parse(row.text("link")));
-        let work = fight(&statement.engagement(&Values::new()), Effort::Outcome).work;
+        let work = fight(&statement.engagement(), Effort::Outcome).work;
         format!("{}\t{}\t{}", row.text("link"), work.evaluations, work.steps)
     };
     let found: Vec<String> = rows.iter().map(took).collect();

@@ -11,7 +11,7 @@ use aftercount_core::outcome::Breaks;
 use aftercount_core::pairs::Pairs;
 use aftercount_core::picture::{self, Picture, Role, Table};
 use aftercount_core::sides::{Both, Side};
-use aftercount_core::statement::{Statement, TimeUnit, Values};
+use aftercount_core::statement::{Statement, TimeUnit};
 use aftercount_core::words::decided::decided;
 use aftercount_core::words::figures::{Figures, figures};
 use aftercount_core::words::{meaning, reading, sentence};
@@ -28,7 +28,7 @@ pub(crate) struct Good {
 impl Good {
     /// Works a statement out; its pictures are held to axes where something is dragged on them.
     pub(crate) fn new(statement: Statement, held: Option<&HeldAxes>) -> Good {
-        let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+        let fight = fight(&statement.engagement(), Effort::Trajectory);
         let (strength, orbit) = match held {
             Some(held) => (
                 picture::strength_on(&statement, &fight, &held.strength),

@@ -4,12 +4,12 @@ use aftercount_core::caution;
 use aftercount_core::fight::{Effort, fight};
 use aftercount_core::pairs::Pairs;
 use aftercount_core::picture::{self, Picture};
-use aftercount_core::statement::{Statement, Values};
+use aftercount_core::statement::Statement;
 use aftercount_web::draw::{Around, Ink, UsualWidths, svg};
 
 fn pictures(link: &str) -> [Picture; 2] {
     let statement = Statement::read(&Pairs::parse(link)).unwrap_or_else(|why| panic!("{link}: {why:?}"));
-    let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+    let fight = fight(&statement.engagement(), Effort::Trajectory);
     let of = |picture: Option<Picture>| picture.expect("the trajectory was asked for");
     [
         of(picture::strength(&statement, &fight)),

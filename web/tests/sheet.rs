@@ -5,7 +5,7 @@ use aftercount_core::golden;
 use aftercount_core::keys::{KEYS, Kind, Place};
 use aftercount_core::laws::FireLaw;
 use aftercount_core::pairs::Pairs;
-use aftercount_core::statement::{Statement, Values};
+use aftercount_core::statement::Statement;
 use aftercount_core::words::math::Math;
 use aftercount_core::words::working::working;
 use aftercount_core::{caution, words};
@@ -122,7 +122,7 @@ fn formulas_are_markup_of_the_core_alone() {
             pairs.set(key, hostile);
         }
         let statement = Statement::read(&pairs).unwrap_or_else(|why| panic!("{number}: {why:?}"));
-        let outcome = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
+        let outcome = fight(&statement.engagement(), Effort::Outcome).outcome;
         let lines = working(&statement, &outcome);
         assert!(lines.iter().any(|line| line.words.contains(hostile)));
         for mathml in lines

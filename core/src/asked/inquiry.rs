@@ -12,7 +12,7 @@ use crate::goals::Goal;
 use crate::order::sort_by;
 use crate::pairs::Pairs;
 use crate::slots::{Slot, slots};
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 
 /// Even steps, and as many even ratios, at which a number in question is looked at first.
 pub const STEPS: u32 = 240;
@@ -70,7 +70,7 @@ impl Inquiry {
         let (slot, None) = (asked.next()?, asked.next()) else {
             return None;
         };
-        let engagement = statement.engagement(&Values::new());
+        let engagement = statement.engagement();
         let (span, why) = span(&slot, &engagement);
         let mut besides: Vec<f64> = slot.value().into_iter().collect();
         if slot.is_time() {

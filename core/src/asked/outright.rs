@@ -152,7 +152,7 @@ mod tests {
     use crate::fight::{Effort, fight};
     use crate::outcome::Breaks;
     use crate::pairs::Pairs;
-    use crate::statement::{Statement, Values};
+    use crate::statement::Statement;
 
     /// A hair to one side of it one side breaks, a hair to the other the other, for every pairing and every number that has
     /// a formula.
@@ -177,7 +177,7 @@ mod tests {
                 let statement = Statement::read(&Pairs::parse(&link)).expect(&link);
                 for part in parts {
                     let place = Place::Side(Side::X, part);
-                    let mut engagement = statement.engagement(&Values::new());
+                    let mut engagement = statement.engagement();
                     let Some(at) = outright(&engagement, place) else {
                         continue;
                     };

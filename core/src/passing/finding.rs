@@ -95,13 +95,12 @@ pub fn escaped(text: &str) -> String {
 pub(super) mod tests {
     use super::*;
     use crate::fight::{Effort, Fight, fight};
-    use crate::statement::Values;
 
     /// A text, worked out.
     pub(crate) fn worked_out(link: &str) -> (Pairs, Statement, Fight) {
         let pairs = Pairs::parse(link);
         let statement = Statement::read(&pairs).unwrap_or_else(|problems| panic!("{link}: {problems:?}"));
-        let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+        let fight = fight(&statement.engagement(), Effort::Trajectory);
         (pairs, statement, fight)
     }
 

@@ -4,7 +4,7 @@ use crate::fight::{Effort, fight};
 use crate::mark::text_mark;
 use crate::pairs::Pairs;
 use crate::problem::seen;
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 use crate::words::sentence::sentence;
 
 /// What is said in place of an outcome where a number in question has no value now.
@@ -36,7 +36,7 @@ impl Kept {
     pub fn outcome(&self) -> String {
         match Statement::read(&Pairs::parse(&self.text)) {
             Ok(statement) if statement.has_base() => {
-                let fight = fight(&statement.engagement(&Values::new()), Effort::Outcome);
+                let fight = fight(&statement.engagement(), Effort::Outcome);
                 sentence(&statement, &fight.outcome)
             }
             Ok(_) => NO_VALUE.into(),

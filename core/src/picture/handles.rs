@@ -7,7 +7,7 @@ use crate::number;
 use crate::quantity::Quantity;
 use crate::sides::Side;
 use crate::slots::{Part, Place};
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 use crate::words::format::{NO_BREAK, per_cent, six, strength};
 
 /// What is taken hold of.
@@ -68,7 +68,7 @@ pub fn handles(statement: &Statement, fight: &Fight) -> Vec<Handle> {
 fn handle(statement: &Statement, fight: &Fight, grip: Grip) -> Option<Handle> {
     let at = place(statement, fight, grip)?;
     let names = &statement.names;
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     let (label, value) = match grip {
         Grip::Start => (
             format!(
@@ -114,7 +114,7 @@ fn handle(statement: &Statement, fight: &Fight, grip: Grip) -> Option<Handle> {
 
 /// Where a handle stands; `None` where its numbers are not plain, or it would stand beyond the end.
 fn place(statement: &Statement, fight: &Fight, grip: Grip) -> Option<(f64, f64)> {
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     let stated = &statement.terms.sides;
     let plain = |quantity: &Quantity| matches!(quantity, Quantity::Number(_));
     match grip {
@@ -165,7 +165,7 @@ pub fn dragged(
     to: (f64, f64),
     axes: &Axes,
 ) -> Vec<(Place, String)> {
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     let (across, up) = (step(&axes.across), step(&axes.up));
     match grip {
         Grip::Start => vec![
@@ -214,7 +214,7 @@ pub fn nudged(
     let up = match grip {
         // A step of the break point itself: in the units of the picture it may be less than one of those.
         Grip::Line(side) => {
-            let committed = statement.engagement(&Values::new()).committed_at_start(side);
+            let committed = statement.engagement().committed_at_start(side);
             decade(step(&axes.up) / committed) * committed
         }
         _ => step(&axes.up),
@@ -264,7 +264,7 @@ mod tests {
 
     fn demo() -> (Statement, Fight) {
         let statement = Statement::read(&Pairs::parse(DEMO)).expect("the demo reads");
-        let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+        let fight = fight(&statement.engagement(), Effort::Trajectory);
         (statement, fight)
     }
 
@@ -323,7 +323,7 @@ mod tests {
     fn what_is_in_question_is_not_dragged() {
         let pairs = Pairs::parse(&DEMO.replace("x.start=600", "x.start=600?"));
         let statement = Statement::read(&pairs).expect("it reads");
-        let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+        let fight = fight(&statement.engagement(), Effort::Trajectory);
         let grips: Vec<Grip> = handles(&statement, &fight)
             .iter()
             .map(|handle| handle.grip)

@@ -7,7 +7,7 @@ use crate::outcome::{Breaks, Ended, ToTheLast};
 use crate::piece::Piece;
 use crate::schedule::any_fire;
 use crate::sides::{Both, Side};
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 use crate::stretch::Stretch;
 use crate::trajectory::Trajectory;
 use crate::words::format::{six, strength as in_words, with_unit};
@@ -154,7 +154,7 @@ fn fight_path(trajectory: &Trajectory, end: Both<f64>, points: usize) -> Vec<(f6
 
 /// Upright and level lines at the strengths at which the sides break in the end, which is said where they have moved.
 fn break_lines(statement: &Statement, trajectory: &Trajectory, corner: Both<f64>) -> Vec<Line> {
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     let line = |side: Side| {
         let at_end = |stretch: &Stretch| {
             let end = stretch.to.unwrap_or(trajectory.shown.max(stretch.from));
@@ -254,7 +254,7 @@ fn summary(
             in_words(at.y)
         )
     };
-    let fires = any_fire(&statement.engagement(&Values::new()));
+    let fires = any_fire(&statement.engagement());
     let last = if has_parity {
         match fight.outcome.to_the_last {
             Some(ToTheLast::X) => format!(

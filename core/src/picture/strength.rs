@@ -5,7 +5,7 @@ use crate::fight::{Fight, break_line as break_line_at_start};
 use crate::order::sort_by;
 use crate::outcome::{Breaks, Ended};
 use crate::sides::{Both, Side};
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 use crate::trajectory::Trajectory;
 use crate::words::format::{six, strength as in_words, time, with_unit};
 use crate::words::sentence::breaks;
@@ -123,7 +123,7 @@ fn break_lines(
         }
     }
     if points.is_empty() {
-        let line = f64::from(break_line_at_start(&statement.engagement(&Values::new()), side));
+        let line = f64::from(break_line_at_start(&statement.engagement(), side));
         points.extend((line > 0.0).then_some((0.0, line)));
     }
     points.extend(points.last().map(|last| (right, last.1)));

@@ -158,7 +158,7 @@ mod tests {
     use crate::fight::fight;
     use crate::pairs::Pairs;
     use crate::slots::slots;
-    use crate::statement::{Statement, Values};
+    use crate::statement::Statement;
 
     /// Numbers from 0 to 1, the same on every run (Knuth's linear congruential generator MMIX).
     struct Drawn(u64);
@@ -218,7 +218,7 @@ mod tests {
             let link = drawn.link();
             let pairs = Pairs::parse(&link);
             let statement = Statement::read(&pairs).expect(&link);
-            let mut engagement = statement.engagement(&Values::new());
+            let mut engagement = statement.engagement();
             let outcome = fight(&engagement, Effort::Ending).outcome;
             for slot in slots(&pairs, &statement) {
                 let now = slot.value().unwrap_or(0.0);

@@ -27,7 +27,7 @@ use crate::outcome::{Breaks, Outcome};
 use crate::pairs::Pairs;
 use crate::sides::Side;
 use crate::slots::{Slot, slots};
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 use crate::terms::Engagement;
 use aim::{Aim, Standing, gives_way, lead};
 use measure::Measure;
@@ -137,7 +137,7 @@ const FURTHER: f64 = 0.02;
 impl Reversal {
     /// A search at its beginning; `pairs` are those that `statement` was read from.
     pub fn new(pairs: &Pairs, statement: &Statement) -> Reversal {
-        let engagement = statement.engagement(&Values::new());
+        let engagement = statement.engagement();
         let fight = fight(&engagement, Effort::Ending);
         let mut tally = Tally::default();
         tally.count(&fight);

@@ -70,17 +70,20 @@ impl Statement {
         }
     }
 
-    /// The engagement in plain numbers: those of `values` in their slots, the statement's own in the others.
+    /// The engagement in plain numbers.
     ///
     /// An interval counts as its likeliest or middle value until intervals are worked out, and a number that is asked for
     /// and has no value now as 0: what is worked out of it then is for its question alone, see [`Statement::has_base`].
-    pub fn engagement(&self, values: &Values) -> Engagement {
-        let own = Quantity::now_or_zero;
-        if values.is_empty() {
-            return self.terms.map_unnamed(own);
-        }
-        self.terms
-            .map(|slot, quantity| values.get(slot).copied().unwrap_or_else(|| own(quantity)))
+    pub fn engagement(&self) -> Engagement {
+        self.terms.map_unnamed(Quantity::now_or_zero)
+    }
+
+    /// The same, with those of `values` in their slots.
+    pub fn engagement_with(&self, values: &Values) -> Engagement {
+        self.terms.map(|slot, quantity| {
+            let value = values.get(slot).copied();
+            value.unwrap_or_else(|| quantity.now_or_zero())
+        })
     }
 
     /// Whether every number has a value now, so that there is an outcome beside the answers to its questions.

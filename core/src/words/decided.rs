@@ -4,7 +4,7 @@ use super::format::{strength, three};
 use crate::fight::{Effort, fight};
 use crate::outcome::{Breaks, Ended, Outcome};
 use crate::sides::Side;
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 use crate::terms::{Engagement, Join};
 
 /// What a reserve did or failed to do: "Vessary's reserve of 64 came 0.4 h too late" where 0.4 h earlier the outcome is
@@ -15,7 +15,7 @@ pub fn decided(statement: &Statement, outcome: &Outcome) -> Option<String> {
         Breaks::Y => Side::Y,
         Breaks::Both | Breaks::Neither => return None,
     };
-    let engagement = &statement.engagement(&Values::new());
+    let engagement = &statement.engagement();
     let reserves = |side: Side| {
         let joins = engagement.sides[side].joins.iter().enumerate();
         joins
@@ -166,7 +166,7 @@ mod tests {
 
     fn said(link: &str) -> String {
         let statement = Statement::read(&Pairs::parse(link)).expect(link);
-        let outcome = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
+        let outcome = fight(&statement.engagement(), Effort::Outcome).outcome;
         let text = decided(&statement, &outcome).expect("a reserve decided");
         text.replace('\u{a0}', " ")
     }

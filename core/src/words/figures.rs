@@ -6,7 +6,7 @@ use crate::fight::{break_line, plain_piece};
 use crate::outcome::{Breaks, Ended, Method, Outcome, ToTheLast};
 use crate::schedule::any_fire;
 use crate::sides::{Both, Side};
-use crate::statement::{Names, Statement, TimeUnit, Values};
+use crate::statement::{Names, Statement, TimeUnit};
 use crate::terms::Engagement;
 
 /// A figure of each side.
@@ -46,7 +46,7 @@ pub struct Figures {
 pub fn figures(statement: &Statement, outcome: &Outcome) -> Figures {
     let sides = outcome.sides();
     let counted = &statement.counted;
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     let row = |label: String, value: &dyn Fn(Side) -> String| Row {
         label,
         values: Both::of(value),
@@ -251,7 +251,7 @@ fn is_still(engagement: &Engagement, outcome: &Outcome) -> bool {
 }
 
 fn both(statement: &Statement, outcome: &Outcome, still: bool) -> Vec<Figure> {
-    let fires = any_fire(&statement.engagement(&Values::new()));
+    let fires = any_fire(&statement.engagement());
     let unit = statement.unit.symbol();
     let names = &statement.names;
     let mut lines = Vec::new();
@@ -380,7 +380,7 @@ mod tests {
             let Ok(statement) = Statement::read(&Pairs::parse(&link)) else {
                 panic!("{link}");
             };
-            let outcome = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
+            let outcome = fight(&statement.engagement(), Effort::Outcome).outcome;
             let lines = working(&statement, &outcome);
             let found = figures(&statement, &outcome);
             let rows = found.rows.iter().flat_map(|row| [row.lines.x, row.lines.y]);

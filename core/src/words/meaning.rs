@@ -6,12 +6,12 @@ use crate::laws::{FireLaw, RateMeaning};
 use crate::share::AtStart;
 use crate::sides::{Both, Side};
 use crate::state::StateEquation;
-use crate::statement::{Statement, TimeUnit, Values};
+use crate::statement::{Statement, TimeUnit};
 
 /// What `side`'s rate means: "Each of Ondrel's combatants puts 0.04 of Vessary's out of the fight per h, one every 25 h.
 /// At the start: 24 per h, 6.0 % of Vessary."
 pub fn rate(statement: &Statement, side: Side) -> String {
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     let (name, enemy) = (&statement.names[side], &statement.names[side.enemy()]);
     let (counted, unit) = (&statement.counted, statement.unit.symbol());
     let fire = engagement.sides[side].fire;
@@ -56,7 +56,7 @@ pub fn rate(statement: &Statement, side: Side) -> String {
 
 /// What `side`'s fire does at the start: "At the start: 24 per h, 6.0 % of Vessary."
 fn at_start(statement: &Statement, side: Side) -> String {
-    let start = AtStart::of(&statement.engagement(&Values::new()), side);
+    let start = AtStart::of(&statement.engagement(), side);
     let (unit, enemy) = (statement.unit.symbol(), &statement.names[side.enemy()]);
     let absent = [side, side.enemy()]
         .into_iter()
@@ -76,7 +76,7 @@ fn at_start(statement: &Statement, side: Side) -> String {
 
 /// What `side`'s break point means: "Breaks at 30 % lost: 420 left of 600."
 pub fn break_point(statement: &Statement, side: Side) -> String {
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     let point = engagement.sides[side].break_point;
     if point == 1.0 {
         return "Fights to the last.".into();
@@ -139,7 +139,7 @@ pub fn parameter_unit(key: &str, name: &str, enemy: &str, unit: TimeUnit) -> Str
 
 /// A warning where more of `side` makes it easier to break, since the enemy's fire feeds on its number; `None` elsewhere.
 pub fn more_hurts(statement: &Statement, side: Side) -> Option<String> {
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     let equation = StateEquation::of(&Both::of(|side| engagement.sides[side].fire));
     equation.more_hurts(side).then(|| {
         let (name, enemy) = (&statement.names[side], &statement.names[side.enemy()]);

@@ -3,7 +3,7 @@
 use super::format::{strength, time};
 use crate::outcome::{Breaks, Ended, Outcome, ToTheLast};
 use crate::sides::Side;
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 
 /// The outcome in words. It begins "In this model", so that it stays true when it is copied alone.
 pub fn sentence(statement: &Statement, outcome: &Outcome) -> String {
@@ -76,7 +76,7 @@ fn loses(outcome: &Outcome) -> bool {
 
 /// Whether the side fights to the last: its break point is 1.
 fn to_the_last(statement: &Statement, side: Side) -> bool {
-    statement.engagement(&Values::new()).sides[side].break_point == 1.0
+    statement.engagement().sides[side].break_point == 1.0
 }
 
 fn broken(statement: &Statement, outcome: &Outcome, side: Side) -> String {

@@ -197,12 +197,11 @@ mod tests {
     use super::*;
     use crate::fight::{Effort, fight};
     use crate::pairs::Pairs;
-    use crate::statement::Values;
 
     /// The moments of `link` after its start, each with what happens.
     fn moments(link: &str) -> Vec<(f64, String)> {
         let statement = Statement::read(&Pairs::parse(link)).expect("it is one");
-        let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+        let fight = fight(&statement.engagement(), Effort::Trajectory);
         let moments = timeline(&statement, &fight).into_iter().skip(1);
         moments.map(|moment| (moment.time, moment.what)).collect()
     }
@@ -236,7 +235,7 @@ mod tests {
         ] {
             let link = format!("{sides}&{later}");
             let statement = Statement::read(&Pairs::parse(&link)).expect("it is one");
-            let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+            let fight = fight(&statement.engagement(), Effort::Trajectory);
             let moments = timeline(&statement, &fight);
             let at_five = moments.iter().find(|moment| moment.time == 5.0);
             assert_eq!(at_five.map(|moment| moment.what.as_str()), Some(words), "{link}");

@@ -13,7 +13,7 @@ use crate::motion::Motion;
 use crate::outcome::{Method, Outcome};
 use crate::piece::Piece;
 use crate::sides::{Both, Side};
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 use crate::stretch::Stretch;
 use crate::trajectory::Trajectory;
 
@@ -21,7 +21,7 @@ const NAMES: Both<&str> = Both { x: "x", y: "y" };
 
 /// The lines of the working, stretch by stretch.
 pub(super) fn lines(statement: &Statement, outcome: &Outcome) -> Vec<WorkingLine> {
-    let fight = fight(&statement.engagement(&Values::new()), Effort::Trajectory);
+    let fight = fight(&statement.engagement(), Effort::Trajectory);
     let mut lines = vec![line("letters", letters(statement), None)];
     let Some(trajectory) = &fight.trajectory else {
         return lines;
@@ -164,7 +164,7 @@ fn equation(conditions: &Conditions, side: Side) -> Math {
 
 /// How far each side is from its break line.
 fn ways(statement: &Statement, stretch: &Stretch) -> Vec<WorkingLine> {
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     let way = |side: Side| {
         let ledger = &stretch.ledger[side];
         let break_point = engagement.sides[side].break_point;
@@ -373,7 +373,7 @@ mod tests {
 
     fn texts(link: &str) -> Vec<String> {
         let statement = Statement::read(&Pairs::parse(link)).expect(link);
-        let outcome = fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome;
+        let outcome = fight(&statement.engagement(), Effort::Outcome).outcome;
         let lines = lines(&statement, &outcome);
         let texts = lines.iter().map(WorkingLine::text);
         texts.map(|text| text.replace('\u{a0}', " ")).collect()

@@ -5,7 +5,7 @@ use aftercount_core::fight::{Effort, fight};
 use aftercount_core::mark::text_mark;
 use aftercount_core::outcome::Outcome;
 use aftercount_core::pairs::Pairs;
-use aftercount_core::statement::{Statement, Values};
+use aftercount_core::statement::Statement;
 use aftercount_core::words::sentence::sentence;
 
 use super::Shown;
@@ -58,7 +58,7 @@ pub fn native_sentence(link: &str) -> String {
         Statement::read(&Pairs::parse(link)).unwrap_or_else(|problems| panic!("{link:?}: {problems:?}"));
     sentence(
         &statement,
-        &fight(&statement.engagement(&Values::new()), Effort::Outcome).outcome,
+        &fight(&statement.engagement(), Effort::Outcome).outcome,
     )
 }
 

@@ -7,7 +7,7 @@ use aftercount_core::outcome::{Breaks, Ended, Outcome, SideOutcome};
 use aftercount_core::pairs::{LONGEST_LINK, Pairs};
 use aftercount_core::problem::{Problem, is_hidden};
 use aftercount_core::sides::Side;
-use aftercount_core::statement::{Statement, Values};
+use aftercount_core::statement::Statement;
 use aftercount_core::trajectory::Trajectory;
 use aftercount_core::words::decided::decided;
 use aftercount_core::words::figures::figures;
@@ -200,7 +200,7 @@ fn adds_up(side: &SideOutcome) -> bool {
 fn worked_out(pairs: &Pairs, outcome: &Outcome, depth: Depth) -> Result<(Work, Option<Work>), String> {
     let statement =
         Statement::read(pairs).map_err(|problems| format!("answered, then refused: {problems:?}"))?;
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     let again = fight(&engagement, Effort::Outcome);
     // As text, since what is no number is not equal to itself.
     let (one, other) = (format!("{outcome:?}"), format!("{:?}", again.outcome));

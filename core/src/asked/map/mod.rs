@@ -26,7 +26,7 @@ use crate::order::sort_by;
 use crate::outcome::Outcome;
 use crate::pairs::Pairs;
 use crate::slots::{Slot, slots};
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 use lattice::{At, BASE, Lattice};
 use line::{Edge, Traced, ends};
 use point::{ASIDE, Point, is_tie};
@@ -96,7 +96,7 @@ impl Chart {
             .filter(|slot| slot.quantity.is_question())
             .collect();
         let slots: [Slot; 2] = asked.try_into().ok()?;
-        let engagement = statement.engagement(&Values::new());
+        let engagement = statement.engagement();
         let looked = [span(&slots[0], &engagement), span(&slots[1], &engagement)];
         let mut places = lattice::coarsest();
         places.reverse();

@@ -12,7 +12,7 @@ use crate::motion::Motion;
 use crate::outcome::{Breaks, Ended, Outcome};
 use crate::piece::Piece;
 use crate::sides::{Both, Side};
-use crate::statement::{Statement, Values};
+use crate::statement::Statement;
 use crate::terms::Engagement;
 
 /// One line of the working.
@@ -55,7 +55,7 @@ const LETTERS: Both<Letters> = Both {
 
 /// The working of `outcome`, which is that of `statement`.
 pub fn working(statement: &Statement, outcome: &Outcome) -> Vec<WorkingLine> {
-    let engagement = statement.engagement(&Values::new());
+    let engagement = statement.engagement();
     match Writer::new(statement, engagement, outcome) {
         Some(writer) => writer.lines(),
         None => super::working_pieces::lines(statement, outcome),
