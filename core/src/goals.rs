@@ -73,7 +73,7 @@ pub struct Short {
 }
 
 /// That nobody breaks misses a time by more than any break that comes too late.
-const NEVER: f64 = 1e12;
+const NEVER: f64 = 1e100;
 
 impl Short {
     /// The same of a break that must come within some time and does not come at all.
