@@ -84,6 +84,9 @@ impl Screen {
     };
 }
 
+/// Dots that a picture of Firefox may be high, less one.
+const MOST_DOTS: f64 = 65536.0;
+
 /// Sets what Firefox takes the system to prefer, by its own settings.
 const PREFER: &str = "const [feature, value] = arguments, set = (name, number) => Services.prefs.setIntPref(name, number);
     if (feature === 'prefers-color-scheme')
@@ -292,7 +295,14 @@ impl Browser {
             }
             Engine::Firefox => {
                 let window = self.run("the window", self.client().window());
-                let shot = json!({"context": String::from(window), "origin": "document"});
+                // A page with more dots than it takes at once is taken as far as it is in view.
+                let dots = self.script(
+                    "return document.documentElement.scrollHeight * devicePixelRatio;",
+                    vec![],
+                );
+                let whole = dots.as_f64().is_some_and(|dots| dots < MOST_DOTS);
+                let origin = if whole { "document" } else { "viewport" };
+                let shot = json!({"context": String::from(window), "origin": origin});
                 let taken = self.call("browsingContext.captureScreenshot", shot);
                 let name = format!("firefox-{name}");
                 files::write_picture(&name, taken["data"].as_str().expect("a picture in base64"));

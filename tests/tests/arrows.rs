@@ -238,6 +238,7 @@ fn the_types_of_the_interface_are_those_of_an_answer() {
         "x.start=600?&x.rate=1&y.start=400&y.rate=1&sothat=x.breaks,x.holds",
         "x.start=600?&x.rate=1&y.start=400?&y.rate=1&sothat=y.breaks,x.breaks",
         "x.start=600?&x.rate=1&y.start=400?&y.rate=1&sothat=y.breaks",
+        "x.start=600?500..700&x.rate=1e-3&y.start=400&y.rate=1e-3&until=1&sothat=time:..0.5",
     ] {
         let answer = aftercount_tests::tables::answer(link);
         let mut open = vec![&answer];
