@@ -27,7 +27,7 @@ pub enum Effort {
 
 /// No fight takes more evaluations of functions than this ([`Work::evaluations`]), whatever its numbers: where one would,
 /// its outcome says how far it was worked out.
-pub const MOST_EVALUATIONS: u32 = 500_000;
+pub const MOST_EVALUATIONS: u32 = 600_000;
 
 /// The loosest tolerance of an integration: with less than three digits a step it would not know who breaks.
 const LOOSEST: f64 = 1e-3;

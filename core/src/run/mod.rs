@@ -22,8 +22,8 @@ const MOST_ROUNDS: u32 = 4;
 /// How often in a fight an integration that is not at its end is taken up again.
 const MOST_CUTS: u32 = 16;
 
-/// With more evaluations behind it no further stretch is begun. With the last stretch of it, and the whole once more to see who
-/// is left in the end, a fight keeps to [`crate::fight::MOST_EVALUATIONS`].
+/// With more evaluations behind it no further stretch is begun. With a look and a stretch more of some 27,000 each, and the
+/// whole once more to see who is left in the end, a fight keeps to [`crate::fight::MOST_EVALUATIONS`].
 const MOST_BEFORE_A_STRETCH: u32 = 220_000;
 
 /// The time between two instants, or from the last one on.
