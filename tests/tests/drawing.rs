@@ -2,9 +2,11 @@
 //!
 //! The same code draws the page's canvas, so what holds here holds there.
 
+use aftercount_core::asked::Chart;
 use aftercount_core::pairs::Pairs;
-use aftercount_core::picture::{Picture, Role};
+use aftercount_core::picture::{self, Picture, Role};
 use aftercount_core::sides::Side;
+use aftercount_core::statement::Statement;
 use aftercount_tests::shown::{links, worked};
 use aftercount_web::draw::{Ink, Layout, Measured, UsualWidths, draw, reading_on_strength};
 use plotters::prelude::{DrawingBackend, RGBColor, SVGBackend};
@@ -313,4 +315,22 @@ fn the_start_of_an_orbit_has_its_mark() {
     let worked = worked(PLAIN);
     let (_, svg) = drawn(&worked.orbit, 480, 400, 1);
     assert!(shapes(&svg).iter().any(|shape| shape.name == "circle"));
+}
+
+/// The points of a region are where its words may stand: they were joined by a dashed line across the map.
+#[test]
+fn no_line_joins_the_places_of_a_regions_words() {
+    let pairs = Pairs::parse("x.start=600?&x.rate=0.04&x.break=0.3&y.start=400&y.rate=0.06?&y.break=0.4");
+    let statement = Statement::read(&pairs).expect("it is one");
+    let mut chart = Chart::new(&pairs, &statement).expect("two numbers are in question");
+    while !chart.go_on(u32::MAX) {}
+    let with = picture::map(&statement, &chart, None).expect("there is something to show");
+    let mut without = with.clone();
+    without.lines.retain(|line| line.role != Role::Region);
+    assert!(without.lines.len() < with.lines.len());
+    let lines = |picture: &Picture| {
+        let shapes = shapes(&drawn(picture, 640, 480, 1).1);
+        shapes.iter().filter(|shape| shape.name == "polyline").count()
+    };
+    assert_eq!(lines(&with), lines(&without));
 }

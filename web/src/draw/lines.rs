@@ -26,7 +26,8 @@ const SMALL_MARK: f64 = 3.0;
 
 /// Every line, the background first, then the marks.
 pub(crate) fn draw(pen: &mut Pen<'_>, field: &Layout, picture: &Picture) -> Drawn {
-    for line in &picture.lines {
+    // The points of a region are places for its words.
+    for line in picture.lines.iter().filter(|line| line.role != Role::Region) {
         let points: Vec<Point> = line.points.iter().map(|point| field.place(*point)).collect();
         let (colour, width, dash) = hand(pen, line.role);
         pen.line(&points, colour, width, dash)?;
