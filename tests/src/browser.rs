@@ -84,8 +84,8 @@ impl Screen {
     };
 }
 
-/// Dots that a picture of Firefox may be high, less one.
-const MOST_DOTS: f64 = 65536.0;
+/// A page of fewer dots in height Firefox takes whole, also where it still grows: it takes 65,535.
+const MOST_DOTS: f64 = 30_000.0;
 
 /// Sets what Firefox takes the system to prefer, by its own settings.
 const PREFER: &str = "const [feature, value] = arguments, set = (name, number) => Services.prefs.setIntPref(name, number);
