@@ -177,21 +177,14 @@ impl Inquiry {
     /// Brackets in which the outcome comes near to another and away again, without getting there at the points seen.
     fn dips(&self) -> Vec<Lowest> {
         let sorted = self.sorted();
-        let depth = |sample: &Sample| {
-            sample
-                .near
-                .min(sample.worst.map_or(f64::INFINITY, |worst| worst.short.part))
-        };
         let mut dips: Vec<(f64, Lowest)> = sorted
             .windows(3)
             .filter(|three| three[0].class() == three[1].class() && three[1].class() == three[2].class())
-            .filter(|three| depth(&three[1]) < depth(&three[0]) && depth(&three[1]) <= depth(&three[2]))
-            .filter(|three| depth(&three[1]) < NEAR)
+            .filter(|three| three[1].depth() < three[0].depth() && three[1].depth() <= three[2].depth())
+            .filter(|three| three[1].depth() < NEAR)
             .map(|three| {
-                (
-                    depth(&three[1]),
-                    Lowest::between(three[0].value, three[2].value, DIP),
-                )
+                let dip = Lowest::between(three[0].value, three[2].value, DIP);
+                (three[1].depth(), dip)
             })
             .collect();
         sort_by(&mut dips, |a, b| a.0.total_cmp(&b.0));
@@ -219,10 +212,7 @@ impl Inquiry {
             dips.pop();
             self.scan.found(low, value, high, sample.class());
         } else {
-            let depth = sample
-                .near
-                .min(sample.worst.map_or(f64::INFINITY, |worst| worst.short.part));
-            dip.take(value, depth);
+            dip.take(value, sample.depth());
         }
     }
 
@@ -231,9 +221,8 @@ impl Inquiry {
             return Stage::Done;
         }
         let sorted = self.sorted();
-        let part = |sample: &Sample| sample.worst.map_or(f64::INFINITY, |worst| worst.short.part);
-        let Some(least) = (0..sorted.len()).min_by(|a, b| part(&sorted[*a]).total_cmp(&part(&sorted[*b])))
-        else {
+        let missed = |at: &usize| sorted[*at].missed();
+        let Some(least) = (0..sorted.len()).min_by(|a, b| missed(a).total_cmp(&missed(b))) else {
             return Stage::Done;
         };
         let low = sorted[least.saturating_sub(1)].value;

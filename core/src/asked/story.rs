@@ -105,6 +105,16 @@ impl Sample {
         }
     }
 
+    /// How far it misses its conditions, the worst of them; infinite where there are none that it misses.
+    pub(super) fn missed(&self) -> f64 {
+        self.worst.map_or(f64::INFINITY, |worst| worst.short.part)
+    }
+
+    /// How far it is from another class: from another story, or from meeting its conditions.
+    pub(super) fn depth(&self) -> f64 {
+        self.near.min(self.missed())
+    }
+
     pub(super) fn class(&self) -> Class {
         Class {
             story: self.story,
