@@ -51,8 +51,11 @@ fn hint(text: &str) -> String {
             None
         }
     };
-    thousands(text)
-        .and_then(|plain| instead(plain, "without marks for thousands"))
+    let plainly = "without marks for thousands";
+    let with_point = "with a point and without marks for thousands";
+    [(None, plainly), (Some('.'), plainly), (Some(','), with_point)]
+        .into_iter()
+        .find_map(|(point, why)| instead(thousands(text, point)?, why))
         .or_else(|| {
             one(text, ',')
                 .then(|| instead(text.replace(',', "."), "with a point"))
@@ -82,6 +85,7 @@ fn hint(text: &str) -> String {
         .or_else(|| instead(text.replace(char::is_whitespace, ""), "without blanks"))
         .or_else(|| per_cent(text))
         .or_else(|| instead(without_letters(text)?, "without letters among its digits"))
+        .or_else(|| without_power(text))
         .or_else(|| with_unit(text))
         .unwrap_or_else(|| "write a number, such as 600 or 0.04".into())
 }
@@ -90,22 +94,27 @@ fn one(text: &str, mark: char) -> bool {
     text.matches(mark).count() == 1
 }
 
-/// `1,000` and `1'000` without their marks, where every group but the first has three digits.
-fn thousands(text: &str) -> Option<String> {
-    for mark in [',', '\'', '\u{2019}', '_', '.', ' ', '\u{a0}', '\u{202f}'] {
-        let (body, fraction) = match text.split_once('.') {
-            Some((body, fraction)) if mark != '.' => (body, Some(fraction)),
-            _ => (text, None),
-        };
+/// `1,000` and `1'000` without their marks, where every group but the first has three digits, with the decimals behind
+/// `point`.
+fn thousands(text: &str, point: Option<char>) -> Option<String> {
+    let (body, fraction) = match point {
+        Some(point) => text.split_once(point)?,
+        None => (text, ""),
+    };
+    for mark in [',', '.', '\'', '\u{2019}', '_', ' ', '\u{a0}', '\u{202f}'] {
         let groups: Vec<&str> = body.trim_start_matches('-').split(mark).collect();
         let first = groups[0];
-        let grouped = groups.len() > 1 + usize::from(mark == '.')
+        let grouped = groups.len() > 1
             && (1..=3).contains(&first.len())
             && !first.starts_with('0')
             && groups[1..].iter().all(|group| group.len() == 3);
         if grouped {
             let plain = body.replace(mark, "");
-            return Some(fraction.map_or(plain.clone(), |fraction| format!("{plain}.{fraction}")));
+            return Some(if point.is_some() {
+                format!("{plain}.{fraction}")
+            } else {
+                plain
+            });
         }
     }
     None
@@ -130,6 +139,13 @@ fn without_letters(text: &str) -> Option<String> {
     let digits = text.replace(['o', 'O'], "0").replace(['l', 'I'], "1");
     text.contains(|letter: char| letter.is_ascii_digit())
         .then_some(digits)
+}
+
+/// `4e` and `4e-`, before their power of ten.
+fn without_power(text: &str) -> Option<String> {
+    let number = text.trim_end_matches('-').strip_suffix(['e', 'E'])?;
+    is_number(&format!("{number}e3"))
+        .then(|| format!("write {number} alone, or a power of ten behind the e, as in {number}e3"))
 }
 
 /// A number with letters behind it, `4h`.
@@ -179,6 +195,18 @@ mod tests {
             ("1,000.5", "write 1000.5, without marks for thousands"),
             ("1.000.000", "write 1000000, without marks for thousands"),
             ("1 000", "write 1000, without marks for thousands"),
+            (
+                "1.200,5",
+                "write 1200.5, with a point and without marks for thousands",
+            ),
+            (
+                "-1 000 000,25",
+                "write -1000000.25, with a point and without marks",
+            ),
+            ("1.000.000,5", "write 1000000.5, with a point and without marks"),
+            ("1,000,000", "write 1000000, without marks for thousands"),
+            ("1.20,5", "write a number"),
+            ("12,000.5,5", "write a number"),
             ("0,04", "write 0.04, with a point"),
             ("5.", "write 5, without the point at the end"),
             (".5", "write 0.5, with a 0 before the point"),
@@ -195,6 +223,9 @@ mod tests {
             ("lo", "write a number"),
             ("6oz", "write 6 alone, without a unit"),
             ("4 l", "write 4 alone, without a unit"),
+            ("4e", "write 4 alone, or a power of ten behind the e, as in 4e3"),
+            ("0.04E-", "write 0.04 alone, or a power of ten behind the e"),
+            ("1e5e", "write 1e5 alone, without a unit"),
             ("4 h", "write 4 alone, without a unit"),
             ("NaN", "write a number"),
             ("inf", "write a number"),
