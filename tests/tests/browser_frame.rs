@@ -116,6 +116,41 @@ fn a_frame_is_whole_without_scrolling() {
     browser.assert_clean();
 }
 
+/// Where text is larger than a frame has room for, the frame rolls as a whole, and nothing lies over anything else.
+#[test]
+fn large_text_and_long_names_roll_a_frame_and_cover_nothing() {
+    let browser = Browser::start();
+    let link = format!("{}&view=frame", LINK.trim_end_matches("&v=1"));
+    let name = |word: &str| [word; 10].join(" ")[..60].to_owned();
+    let long = changed(
+        &changed(&link, "x.name", &name("Ondrel")),
+        "y.name",
+        &name("Vessary"),
+    );
+    for screen in [Screen::FRAME_UPRIGHT, Screen::FRAME_LYING] {
+        for (link, times) in [(&long, 1.0), (&link, 2.0), (&long, 2.0)] {
+            browser.screen(screen);
+            browser.open(link);
+            browser.settle(link);
+            browser.text_size(times, false);
+            browser.picture(&format!("frame-rolled-{}-{times}", screen.width));
+            let script = "
+                const parts = ['.top', '#said', '#nearest', '.read', '#strength', '#foot']
+                    .map((part) => [part, document.querySelector(part).getBoundingClientRect()]);
+                return parts.slice(1).map(([part, box], above) => [part, box.height > 0 && box.top >= parts[above][1].bottom - 1])
+                    .filter(([, below]) => !below);";
+            let what = format!("at {screen:?}, text {times} times as large");
+            assert_eq!(browser.script(script, vec![]), json!([]), "{what}");
+            let tall = browser.script(
+                "return document.getElementById('strength').clientHeight >= 100;",
+                vec![],
+            );
+            assert_eq!(tall, true, "the picture {what}");
+        }
+    }
+    browser.assert_clean();
+}
+
 #[test]
 fn without_scripts_the_page_says_so_with_the_caution() {
     if is_skipped("only Chromium switches scripts off for one page") {
