@@ -378,8 +378,11 @@ fn a_rate_that_was_entered_as_per_cent_follows_the_law() {
         assert_eq!(kept().contains("its unit is not"), is_kept, "{button} to {text}");
     }
     assert_eq!(browser.link(), daily);
-    // Who opens the same text has a whole from somebody who chose law and rate together.
     browser.reload();
+    browser.settle_on_any();
+    assert!(kept().contains("its unit is not"), "a reload forgets nothing");
+    // Who opens the same text has a whole from somebody who chose law and rate together.
+    browser.open(&daily);
     browser.settle_on_any();
     assert_eq!(kept(), "");
     browser.click("[id='x.share.open']");

@@ -6,10 +6,11 @@
 //! word, and some refuse them in a sandbox: so every write is looked at, and where one failed the page goes on with its
 //! own list of entries.
 //!
-//! Beside each entry stands the text as it was received, so that what was changed since is known after a reload too.
+//! Beside each entry stands the text as it was received, and what its rates were written as, so that what was changed
+//! since, and which rates are from another law, is known after a reload too.
 
 use crate::dom::Dom;
-use crate::kept_rates::WrittenAs;
+use crate::kept_rates::{self, WrittenAs};
 use crate::pace::Pace;
 use js_sys::Array;
 use std::rc::Rc;
@@ -58,9 +59,9 @@ impl Address {
     pub(crate) fn new(dom: &Dom) -> Address {
         let known = history(dom).and_then(|history| state(&history));
         let fresh = known.is_none();
-        let (at, received) = known.unwrap_or_default();
-        let mut entries = vec![Entry::default(); at + 1];
-        entries[at].received = received;
+        let (at, entry) = known.unwrap_or_default();
+        let mut entries = vec![Entry::default(); at];
+        entries.push(entry);
         Address {
             dom: dom.clone(),
             framed: dom.is_framed(),
@@ -78,6 +79,9 @@ impl Address {
     /// trapped, the last keystrokes are still to be written. An empty one is that of the demo, which nobody sent.
     pub(crate) fn begin(&mut self, text: String, behind: bool) {
         self.unwritten = Some(text.clone()).filter(|_| behind);
+        if behind {
+            self.entries[self.at].written_as = None;
+        }
         if self.fresh && !behind && !text.is_empty() {
             self.entries[self.at].received = Some(text.as_str().into());
         }
@@ -107,14 +111,14 @@ impl Address {
     }
 
     /// A text that the user has just changed.
-    pub(crate) fn edited(&mut self, text: String) {
+    pub(crate) fn edited(&mut self, text: String, written_as: WrittenAs) {
         if !self.open {
             self.open = true;
             self.entries.truncate(self.at + 1);
             self.entries.push(Entry {
                 text: Some(text.clone()),
                 received: self.entries[self.at].received.clone(),
-                written_as: None,
+                written_as: Some(written_as),
             });
             self.at += 1;
             if !self.framed && self.push(&text) {
@@ -122,7 +126,8 @@ impl Address {
                 return;
             }
         }
-        self.entries[self.at].text = Some(text.clone());
+        let entry = &mut self.entries[self.at];
+        (entry.text, entry.written_as) = (Some(text.clone()), Some(written_as));
         self.unwritten = Some(text);
         if self.pace.wait(self.now()) <= 0.0 {
             self.write();
@@ -172,12 +177,14 @@ impl Address {
         self.unwritten = None;
         self.open = false;
         match history(&self.dom).and_then(|history| state(&history)) {
-            Some((at, received)) => {
+            Some((at, entry)) => {
                 let length = self.entries.len().max(at + 1);
                 self.entries.resize(length, Entry::default());
                 self.at = at;
-                let entry = &mut self.entries[at];
-                (entry.text, entry.received) = (Some(text), received);
+                self.entries[at] = Entry {
+                    text: Some(text),
+                    ..entry
+                };
             }
             // A fragment written by hand makes an entry of its own.
             None => {
@@ -266,10 +273,12 @@ impl Address {
             .is_none_or(|(_, text)| fragment.strip_prefix('#').unwrap_or_default() == text)
     }
 
-    /// What stands beside the current entry in the browser's own history: its number, and what was received.
+    /// What stands beside the current entry in the browser's own history: its number, what was received, and what its
+    /// rates were written as.
     fn state(&self) -> JsValue {
         let received = self.received_text().map_or(JsValue::NULL, JsValue::from_str);
-        Array::of2(&JsValue::from(self.at as f64), &received).into()
+        let written_as = self.entries[self.at].written_as.map_or(0, kept_rates::number);
+        Array::of3(&JsValue::from(self.at), &received, &JsValue::from(written_as)).into()
     }
 
     fn now(&self) -> f64 {
@@ -281,12 +290,21 @@ fn history(dom: &Dom) -> Option<History> {
     dom.window.history().ok()
 }
 
-/// Our own number of the current entry, and what was received.
-fn state(history: &History) -> Option<(usize, Option<Rc<str>>)> {
+/// Our own number of the current entry, and what stands beside it.
+fn state(history: &History) -> Option<(usize, Entry)> {
     let state: Array = history.state().ok()?.dyn_into().ok()?;
-    let number = state.get(0).as_f64()?;
-    let received = state.get(1).as_string().map(Rc::from);
     // A page that someone else wrote may keep a state of its own here.
-    let ours = (0.0..10_000.0).contains(&number) && number.fract() == 0.0;
-    ours.then_some((number as usize, received))
+    let number = |place| {
+        let number = state.get(place).as_f64()?;
+        let ours = (0.0..10_000.0).contains(&number) && number.fract() == 0.0;
+        ours.then_some(number as usize)
+    };
+    let entry = Entry {
+        text: None,
+        received: state.get(1).as_string().map(Rc::from),
+        written_as: number(2)
+            .filter(|written_as| *written_as > 0)
+            .map(kept_rates::of_number),
+    };
+    Some((number(0)?, entry))
 }

@@ -11,6 +11,35 @@ const KEPT: &str = "Kept from another law of fire: the number is the same, its u
 /// What the rate of each side was measured in when it was written.
 pub(crate) type WrittenAs = Both<Option<RateMeaning>>;
 
+/// What rates are measured in, in the order in which a number stands for them.
+const MEANINGS: [RateMeaning; 5] = [
+    RateMeaning::TargetsPerShooter,
+    RateMeaning::FractionPerShooter,
+    RateMeaning::Fraction,
+    RateMeaning::TargetsPerShooterInPlenty,
+    RateMeaning::PerPowers,
+];
+
+/// The number of what both rates were written as, for the browser's history; 0 for none in particular.
+pub(crate) fn number(written_as: WrittenAs) -> usize {
+    let place = |meaning| MEANINGS.iter().position(|known| *known == meaning);
+    let number = |side| {
+        let place: Option<usize> = written_as[side].and_then(place);
+        place.map_or(0, |place| place + 1)
+    };
+    number(Side::X) * (MEANINGS.len() + 1) + number(Side::Y)
+}
+
+/// What a [`number`] stands for, whoever wrote it.
+pub(crate) fn of_number(number: usize) -> WrittenAs {
+    let meaning = |number: usize| MEANINGS.get(number.wrapping_sub(1)).copied();
+    let all = MEANINGS.len() + 1;
+    Both {
+        x: meaning(number / all),
+        y: meaning(number % all),
+    }
+}
+
 /// For each side the text of its rate, and what it was written as.
 pub(crate) struct KeptRates {
     dom: Dom,
@@ -39,6 +68,7 @@ impl KeptRates {
     pub(crate) fn come_back(&mut self, pairs: &Pairs, written_as: WrittenAs) {
         self.restated(pairs);
         self.written_as = written_as;
+        self.follow(pairs);
     }
 
     /// What the rates were written as.

@@ -234,10 +234,10 @@ impl Page {
         let link = self.pairs.link();
         // Before all that may stop the program: a fresh start goes on from here.
         crate::copy::keep(&self.dom, &link);
-        self.address.edited(link);
+        self.kept_rates.follow(&self.pairs);
+        self.address.edited(link, self.kept_rates.written_as());
         self.write_later();
         self.work_out(cause);
-        *self.address.written_as() = Some(self.kept_rates.written_as());
         self.speak.start(QUIET);
     }
 
@@ -257,7 +257,6 @@ impl Page {
         self.show_problems.stop();
         self.waiting.clear();
         self.points.changed(&self.pairs);
-        self.kept_rates.follow(&self.pairs);
         self.current = false;
         self.reverse_on.stop();
         let left_off = self.reversals.stop();
