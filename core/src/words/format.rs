@@ -9,6 +9,9 @@ pub const NARROW: char = '\u{202f}';
 /// The space between a number and its unit, which does not break a line either.
 pub const NO_BREAK: char = '\u{a0}';
 
+/// The minus of numbers that are read: a hyphen is shorter than the plus. What programs read keeps the hyphen.
+pub const MINUS: char = '−';
+
 /// A number to so many significant digits, without zeros at the end, thousands set apart.
 ///
 /// Beyond a billion billion and below a millionth it is written with a power of ten.
@@ -18,6 +21,9 @@ pub fn significant(value: f64, digits: usize) -> String {
     }
     if !value.is_finite() {
         return "without bound".into();
+    }
+    if value < 0.0 {
+        return format!("{MINUS}{}", significant(-value, digits));
     }
     let scientific = format!("{value:.*e}", digits - 1);
     let Some((mantissa, exponent)) = scientific.split_once('e') else {
@@ -192,6 +198,11 @@ mod tests {
         assert_eq!(amount(12345.678), "12\u{202f}345.7");
         assert_eq!(three(1.5e-9), "1.5 × 10⁻⁹");
         assert_eq!(three(0.0), "0");
+        assert_eq!(three(-0.0), "0");
+        assert_eq!(six(-216.6), "−216.6");
+        assert_eq!(six(-200000.0), "−200\u{202f}000");
+        assert_eq!(strength(-2000.0), "−2000");
+        assert_eq!(three(-1.5e-9), "−1.5 × 10⁻⁹");
         assert_eq!(strength(9.951), "10");
         assert_eq!(strength(419.7), "420");
         assert_eq!(strength(9.5), "9.5");

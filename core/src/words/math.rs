@@ -44,14 +44,14 @@ impl Math {
 
 /// A number to six significant digits.
 pub fn number(value: f64) -> Math {
-    let written = plain(&six(value)).replace('-', "−");
+    let written = plain(&six(value));
     let negative = value < 0.0;
     let mathml = match written.split_once(" × 10") {
         // A power of ten is written with its exponent raised by the markup.
         Some((mantissa, _)) => {
             let exponent = format!("{value:.5e}")
                 .split_once('e')
-                .map(|(_, e)| e.to_owned())
+                .map(|(_, e)| e.replace('-', "−"))
                 .unwrap_or_default();
             format!("<mn>{mantissa}</mn><mo>·</mo><msup><mn>10</mn><mn>{exponent}</mn></msup>")
         }
@@ -98,9 +98,15 @@ pub fn equal(parts: &[Math]) -> Math {
 
 /// Two statements side by side.
 pub fn beside(first: &Math, second: &Math) -> Math {
+    // A bracket grows with what it holds, and would reach down to the comma.
+    let room = if first.mathml.ends_with("<mo>)</mo>") {
+        " lspace=\"0.2em\""
+    } else {
+        ""
+    };
     Math {
         mathml: format!(
-            "{}<mo>,</mo><mspace width=\"1em\"/>{}",
+            "{}<mo{room}>,</mo><mspace width=\"1em\"/>{}",
             first.mathml, second.mathml
         ),
         text: format!("{}, {}", first.text, second.text),
@@ -260,5 +266,19 @@ mod tests {
         );
         assert_eq!(root(&over(&letter("a"), &letter("b"))).text, "√(a/b)");
         assert_eq!(number(1.5e-9).text, "1.5 × 10⁻⁹");
+        assert!(number(1.5e-9).mathml.ends_with("<mn>−9</mn></msup>"));
+        assert_eq!(power(&letter("x"), -0.5).text, "x^(−0.5)");
+    }
+
+    #[test]
+    fn a_comma_keeps_off_a_bracket() {
+        let faded = function("exp", &over(&letter("t"), &number(2.0)));
+        let comma = |first: &Math| {
+            let mathml = beside(first, &letter("y")).mathml;
+            let from = mathml.rfind("<mo").expect("a comma");
+            mathml[from..].split_once("</mo>").expect("its end").0.to_owned()
+        };
+        assert_eq!(comma(&letter("x")), "<mo>,");
+        assert_eq!(comma(&faded), "<mo lspace=\"0.2em\">,");
     }
 }
