@@ -251,6 +251,28 @@ fn what_is_wanted_of_two_numbers_is_marked_and_read() {
 }
 
 /// Three questions are a problem beside the last of them.
+/// A legend names what is in its picture, and no more.
+#[test]
+fn a_legend_names_what_is_there() {
+    let one = changed(LINK, "x.start", "600?400..900");
+    let two = changed(&one, "y.start", "400?300..500");
+    let browser = Browser::start();
+    for (asked, wanted, key, shown) in [
+        (&one, "x.prevails", "met-key", true),
+        (&one, "x.end:2000..", "met-key", false),
+        (&two, "x.prevails", "map-key-met", true),
+        (&two, "x.end:2000..", "map-key-met", false),
+        (&two, "x.prevails", "map-key-flip", true),
+        (&changed(&two, "y.rate", "9"), "x.prevails", "map-key-flip", false),
+    ] {
+        let link = changed(asked, "sothat", wanted);
+        browser.open(&link);
+        browser.settle(&link);
+        assert_eq!(is_shown(&browser, key), shown, "{key} of {link}");
+    }
+    browser.assert_clean();
+}
+
 #[test]
 fn a_third_question_is_refused_in_place() {
     let link = changed(&changed(LINK, "x.start", "600?"), "y.start", "400?");

@@ -2,6 +2,7 @@
 
 use aftercount_core::answer::answer;
 use aftercount_core::asked::{Chart, FINEST, Second};
+use aftercount_core::picture::{self, Role};
 use aftercount_core::statement::Statement;
 use aftercount_core::words;
 use aftercount_tests::shown::read;
@@ -266,6 +267,15 @@ fn what_is_wanted_is_said_in_words() {
             .is_some_and(|short| short > 600.0)
     );
     assert_eq!(none["nearest"]["condition"], 1);
+    // What the legend is made of.
+    let marked = |wanted: &str| {
+        let (statement, chart) = chart(&format!("{base}&sothat={wanted}"));
+        let map = picture::map(&statement, &chart, None).expect("there is a map");
+        (map.has(Role::Flip), map.has(Role::Wanted), chart.met_share())
+    };
+    assert_eq!(marked("x.end:1000.."), (true, false, Some(0.0)));
+    assert_eq!(marked("x.end:0.."), (true, false, Some(1.0)));
+    assert!(marked("x.prevails").1);
     let (statement, mut chart) = chart(&format!("{base}&sothat=x.end:250.."));
     let mut read = |values: [f64; 2]| {
         let outcome = chart.outcome(values);

@@ -8,7 +8,7 @@ use crate::outcome::show_table;
 use crate::stopwatch::{ASKING, Stopwatch};
 use aftercount_core::asked::{Asked, Inquiry, Putting};
 use aftercount_core::pairs::Pairs;
-use aftercount_core::picture::{self, Picture};
+use aftercount_core::picture::{self, Picture, Role};
 use aftercount_core::put::put;
 use aftercount_core::sides::Side;
 use aftercount_core::statement::Statement;
@@ -78,7 +78,6 @@ impl Asking {
             let id = format!("asked.{}.who", side.letter());
             self.dom.set_text(&id, &statement.names[side]);
         }
-        self.dom.set_shown("met-key", !statement.so_that.is_empty());
     }
 
     /// Takes the answer off the page.
@@ -199,6 +198,7 @@ impl Asking {
         if let Some(picture) = &self.picture {
             dom.set_text("asked-words", &picture.summary);
             show_table(dom, "asked-table", &picture.table);
+            dom.set_shown("met-key", picture.has(Role::Met));
         }
         self.show_puttings(pairs, statement, answer);
     }

@@ -7,7 +7,7 @@ use crate::draw::{self, Ink, Layout};
 use crate::outcome::show_table;
 use aftercount_core::asked::{Chart, Second, near_text};
 use aftercount_core::pairs::Pairs;
-use aftercount_core::picture::{self, Picture, Tone};
+use aftercount_core::picture::{self, Picture, Role, Tone};
 use aftercount_core::put::put;
 use aftercount_core::sides::Side;
 use aftercount_core::statement::Statement;
@@ -135,8 +135,10 @@ impl Mapping {
                 let there = picture.ground.as_ref().is_some_and(|ground| ground.has(tone));
                 dom.set_shown(id, there);
             }
+            dom.set_shown("map-key-flip", picture.has(Role::Flip));
+            // All over the map it has no edge.
             let wanted = chart.met_share().is_some_and(|share| share > 0.0);
-            dom.set_shown("map-key-met", wanted);
+            dom.set_shown("map-key-met", wanted || picture.has(Role::Wanted));
         }
         for side in Side::BOTH {
             let id = format!("map.{}.who", side.letter());

@@ -110,6 +110,13 @@ pub struct Picture {
     pub ground: Option<Ground>,
 }
 
+impl Picture {
+    /// Whether a line of it stands for this.
+    pub fn has(&self, role: Role) -> bool {
+        self.lines.iter().any(|line| line.role == role)
+    }
+}
+
 /// How many points a curve is drawn through.
 const POINTS: usize = 320;
 

@@ -68,7 +68,7 @@ pub(crate) fn layout(pen: &Pen<'_>, picture: &Picture) -> Layout {
 
 /// Whether one side stands against the other, instead of both over time.
 pub(crate) fn is_orbit(picture: &Picture) -> bool {
-    picture.lines.iter().any(|line| line.role == Role::Fight)
+    picture.has(Role::Fight)
 }
 
 /// The hairlines, the ticks and their numbers, and what is measured.
