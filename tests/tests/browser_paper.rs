@@ -330,6 +330,108 @@ fn a_map_is_printed_with_its_sentence() {
     browser.assert_clean();
 }
 
+/// Who prints at once after a change prints all of it: what decided it, the map, and what is wrong. No moment lies between the
+/// change and the printer's look here.
+#[test]
+fn what_is_printed_at_once_is_up_to_date() {
+    let browser = Browser::opened(LINK);
+    let at_once = |key: &str, text: &str, read: &str| {
+        let script = format!(
+            "const field = document.getElementById(arguments[0]); field.value = arguments[1];
+             field.dispatchEvent(new Event('input', {{bubbles: true}})); dispatchEvent(new Event('beforeprint'));
+             const read = {read}; dispatchEvent(new Event('afterprint')); return read;"
+        );
+        browser.script(&script, vec![key.into(), text.into()])
+    };
+    let of = |id: &str| format!("document.getElementById('{id}').innerText");
+    let decided = at_once("x.rate", "0.042", &of("decided"));
+    browser.settle(&changed(LINK, "x.rate", "0.042"));
+    browser.wait(
+        "what decided it",
+        "return document.getElementById('decided').innerText;",
+    );
+    assert_eq!(decided, browser.text("#decided"));
+    let asked = changed(&changed(LINK, "x.rate", "0.042"), "x.start", "600?400..900");
+    let asked = changed(&asked, "y.start", "464?400..900");
+    browser.open(&changed(&asked, "y.rate", "0.06"));
+    browser.settle_on_any();
+    let sentence = at_once("y.rate", "0.05", &of("map-sentence"));
+    browser.settle(&asked);
+    assert_eq!(sentence, browser.text("#map-sentence"));
+    let state = at_once("y.rate", "0,05", "document.documentElement.dataset.state");
+    assert_eq!(state, "stale");
+    browser.assert_clean();
+}
+
+/// The program has not begun yet, or never does: the paper says that it holds nothing.
+#[test]
+fn a_page_without_its_program_is_printed_as_such() {
+    const NOTHING: &str = "Nothing was worked out.";
+    let browser = Browser::start();
+    browser.before_each_page("WebAssembly.compile = () => new Promise(() => {});");
+    browser.open(LINK);
+    let seen = "return document.getElementById('unbegun').checkVisibility();";
+    assert_eq!(
+        browser.script(seen, vec![]),
+        false,
+        "on the screen it is still to come"
+    );
+    let pages = browser.print("begun-a4", Paper::A4);
+    assert_eq!(pages.len(), 1);
+    assert_has(&pages[0], NOTHING);
+    assert_has(&pages[0], "qualified judgement decide");
+    let browser = Browser::opened(LINK);
+    browser.settle(LINK);
+    let all = browser.print("not-begun-a4", Paper::A4).join(" ");
+    assert!(!bare(&all).contains(&bare(NOTHING)));
+    browser.assert_clean();
+}
+
+/// Long sums of exponentials are set as small as the paper wants: Chromium would shrink all pages for one that is not.
+#[test]
+fn a_formula_that_is_wider_than_the_paper_is_fitted() {
+    let link = "x.start=850&x.rate=0.03&y.start=620&y.rate=0.01&x.wastage=0.01&y.support.aimed=3&x.break=0.3&y.break=0.3&\
+                y.flow=3@2/9&until=20&v=1";
+    let browser = Browser::opened(link);
+    browser.settle(link);
+    let widths = browser.script(
+        "dispatchEvent(new Event('beforeprint'));
+         const widths = [...document.querySelectorAll('.formula')].map((holder) =>
+           [parseFloat(holder.style.getPropertyValue('--letters')) * parseFloat(getComputedStyle(holder.firstChild).fontSize),
+            holder.firstChild.getBoundingClientRect().width, holder.scrollWidth, holder.clientWidth]);
+         dispatchEvent(new Event('afterprint')); return widths;",
+        vec![],
+    );
+    let widths: Vec<[f64; 4]> = serde_json::from_value(widths).expect("four widths a formula");
+    let rolled = widths.iter().filter(|[_, _, whole, strip]| whole > strip).count();
+    assert!(rolled >= 2, "{widths:?}");
+    for [told, shown, whole, strip] in widths {
+        let wide = if whole > strip { whole } else { shown };
+        assert!((told - wide).abs() < 1.0, "{told} told, {wide} wide");
+    }
+    browser.assert_clean();
+}
+
+/// Also in a font that is not made for mathematics: a foot stands lower than its letter, and a bar keeps off its digits.
+#[test]
+fn formulas_are_set_apart() {
+    let link = "x.start=600&x.rate=0.08&y.start=464&y.rate=0.03&v=1";
+    let browser = Browser::opened(link);
+    browser.settle(link);
+    let off = browser.script(
+        "document.getElementById('working-details').open = true;
+         const box = (part) => { const range = document.createRange(); range.selectNodeContents(part); return range.getBoundingClientRect(); };
+         const all = (name) => [...document.querySelectorAll(name)];
+         return [all('msub').map(({children: [letter, foot]}) => box(foot).bottom - box(letter).bottom),
+                 all('msqrt').map((root) => box(root.firstChild).top - root.getBoundingClientRect().top)];",
+        vec![],
+    );
+    let [feet, bars]: [Vec<f64>; 2] = serde_json::from_value(off).expect("two lists of lengths");
+    assert!(feet.len() > 5 && feet.iter().all(|off| *off > 0.5), "{feet:?}");
+    assert!(bars.len() > 5 && bars.iter().all(|off| *off > 1.2), "{bars:?}");
+    browser.assert_clean();
+}
+
 #[test]
 fn the_button_opens_the_way_to_the_printer() {
     let browser = Browser::opened(LINK);

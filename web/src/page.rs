@@ -373,6 +373,7 @@ impl Page {
 
     /// Says what decided the engagement, once nobody is waiting for the pictures.
     fn decide_now(&mut self) {
+        self.decide.stop();
         let decided = self
             .good
             .as_ref()

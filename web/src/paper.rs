@@ -198,7 +198,12 @@ impl Paper {
                 .parent_element()
                 .and_then(|holder| holder.dyn_into::<HtmlElement>().ok());
             if let (Some(letter), Some(holder)) = (letter.filter(|letter| *letter > 0.0), holder) {
-                let letters = math.get_bounding_client_rect().width() / letter;
+                // A formula that is rolled is as wide as its strip, in Chromium.
+                let width = match holder.scroll_width() {
+                    rolled if rolled > holder.client_width() => f64::from(rolled),
+                    _ => math.get_bounding_client_rect().width(),
+                };
+                let letters = width / letter;
                 // Where it is refused the formula keeps its size.
                 let _ = holder.style().set_property("--letters", &letters.to_string());
             }

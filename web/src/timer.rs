@@ -35,6 +35,11 @@ impl Timer {
             .ok();
     }
 
+    /// Whether its action is still to come, where the action stops it.
+    pub(crate) fn is_running(&self) -> bool {
+        self.running.is_some()
+    }
+
     /// Stops it where it runs.
     pub(crate) fn stop(&mut self) {
         if let Some(running) = self.running.take() {

@@ -8,8 +8,9 @@ use crate::stopwatch::{DRAW, Stopwatch};
 use aftercount_core::mark::text_mark;
 use aftercount_core::statement::Statement;
 
-/// So many slices of the search for what reverses the outcome a printer waits for.
+/// So many slices of the search for what reverses the outcome a printer waits for, and of the work at a question.
 const SLICES_ON_PAPER: u32 = 60;
+const SLICES_OF_A_QUESTION: u32 = 240;
 
 impl Page {
     /// A key on the reading line; whether it was one of its keys.
@@ -62,12 +63,7 @@ impl Page {
 
     /// The printer is about to look.
     pub(crate) fn put_on_paper(&mut self) {
-        // What would reverse the outcome belongs on it, where it can be found while the printer waits.
-        for _ in 0..SLICES_ON_PAPER {
-            if !self.reversals.go_on() {
-                break;
-            }
-        }
+        self.bring_up_to_date();
         // Beside a problem it is the last text that could be worked out, as on the screen.
         let stated = [Some(&self.pairs), self.good_pairs.as_ref()]
             .into_iter()
@@ -83,6 +79,25 @@ impl Page {
         ];
         let stated = stated.as_ref().map(|(pairs, statement)| (*pairs, statement));
         self.paper.fill(&self.pairs, stated, &pictures);
+    }
+
+    /// What would come within the next moments belongs on paper, where it can be found while the printer waits.
+    fn bring_up_to_date(&mut self) {
+        if self.show_problems.is_running() {
+            self.show_waiting();
+        }
+        for _ in 0..SLICES_OF_A_QUESTION {
+            if self.asking.is_done() {
+                break;
+            }
+            self.ask_on();
+        }
+        for _ in 0..SLICES_ON_PAPER {
+            if !self.reversals.go_on() {
+                break;
+            }
+        }
+        self.decide_now();
     }
 
     /// The printer has looked.
