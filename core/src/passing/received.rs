@@ -44,6 +44,10 @@ pub fn received(text: &str) -> Result<Pairs, &'static str> {
     if text.len() > LONGEST {
         return Err(TOO_LONG);
     }
+    // No text has it, and most pictures do.
+    if text.contains('\0') {
+        return Err(NOTHING);
+    }
     let text = mailed::without_quoting(text);
     let text: String = text.chars().filter(|letter| !UNSEEN.contains(letter)).collect();
     let mut lines: Vec<&str> = text.lines().map(unquoted).collect();
@@ -206,7 +210,7 @@ fn without_escaped_hash(text: &str) -> &str {
 }
 
 /// Where the version ends, if it is the last of the pairs, as the writer puts it.
-fn version_end(text: &str) -> Option<usize> {
+pub(super) fn version_end(text: &str) -> Option<usize> {
     text.match_indices("v=1").find_map(|(at, version)| {
         let end = at + version.len();
         let begins = at == 0 || text[..at].ends_with(['&', '#', '?', ';']);
@@ -385,6 +389,8 @@ mod tests {
             "<p>title</p>",
             "%3D",
             "=",
+            // What a browser makes of a picture.
+            "\u{fffd}PNG\r\n\u{1a}\n\0\0\0\rIHDR\u{fffd}&x.start=\u{fffd}G&v=\u{fffd}",
         ] {
             assert_eq!(received(text), Err(NOTHING), "{text:?}");
         }

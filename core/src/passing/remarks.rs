@@ -1,7 +1,7 @@
 //! What is said beside what was opened, or in place of it.
 
 use super::mailed::without_quoting;
-use super::received::{LONGEST, begins_with_key, received, without_entities};
+use super::received::{LONGEST, begins_with_key, received, version_end, without_entities};
 use super::{saved, taken_in};
 use crate::mark::{is_mark, text_mark};
 use crate::pairs::Pairs;
@@ -40,14 +40,20 @@ pub fn in_place_of(text: &str) -> Option<String> {
     ))
 }
 
-/// Whether an address in `text` holds another engagement than the one with this mark, and one that is sound.
+/// Whether an address in `text`, or what stands behind the end of an engagement, holds another than the one with this
+/// mark, and one that is sound.
 fn holds_another(text: &str, mark: &str) -> bool {
     let text = without_entities(text);
     let places = text.match_indices('#').take(MOST);
-    let mut tails = places
+    let addresses = places
         .map(|(at, _)| &text[at..])
         .filter(|tail| begins_with_key(tail));
-    tails.any(|tail| {
+    let mut rest = text.as_str();
+    let ends = std::iter::from_fn(|| {
+        rest = &rest[version_end(rest)?..];
+        Some(rest)
+    });
+    addresses.chain(ends.take(MOST)).any(|tail| {
         let tail = tail.split(['"', '<', '“', '”']).next().unwrap_or_default();
         received(tail).is_ok_and(|other| text_mark(&other) != mark && Statement::read(&other).is_ok())
     })
@@ -100,6 +106,23 @@ mod tests {
         assert_eq!(said(&edited.replace('=', "=3D")), Some(words));
         // A text that only speaks of a mark is no such file.
         assert_eq!(said(&format!("Text mark: {names}\n\n{OTHER}")), None);
+    }
+
+    #[test]
+    fn another_text_in_the_message_is_told() {
+        for both in [
+            format!("Old one:\n{OTHER}\n\nNew one:\n{LINK}"),
+            format!("first {LINK} and second {OTHER}."),
+            format!("> {LINK}\n\n{LINK}\n{LINK}\n{OTHER}"),
+        ] {
+            assert_eq!(said(&both).as_deref(), Some(ANOTHER), "{both}");
+        }
+        for alone in [
+            format!("{LINK}\n\n{LINK} again, and x.start=5"),
+            LINK.replace("x.start=600", "v=1&x.start=600"),
+        ] {
+            assert_eq!(said(&alone), None, "{alone}");
+        }
     }
 
     #[test]
