@@ -53,6 +53,14 @@ impl Problem {
             _ => format!("{}.", seen(&self.problem)),
         }
     }
+
+    /// The line away from the field, with its key where the words do not name it: "`x.start`: `1,000`: write 1000, …".
+    pub fn line_with_key(&self) -> String {
+        match &self.key {
+            Some(key) if self.found.is_some() => format!("`{}`: {}", seen(key), self.line()),
+            _ => self.line(),
+        }
+    }
 }
 
 /// A text with every control and direction character written out as ‹U+202E›: shown as it is, it would turn the words

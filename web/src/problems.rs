@@ -75,6 +75,10 @@ impl Problems {
             self.list(pairs, problem, last_of_key);
         }
         if let Some(first) = problems.first() {
+            if let Some(why) = self.dom.element("nothing-why") {
+                why.set_text_content(None);
+                append_words(&self.dom, &why, &first.line_with_key());
+            }
             let field = first.key.as_deref().filter(|key| self.has_field(key));
             let field = field.map(|key| whereabouts(pairs, key, first.item).0);
             self.aloud = entry::problems_aloud(&field.unwrap_or_default(), &first.line(), problems.len() - 1);

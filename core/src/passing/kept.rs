@@ -3,7 +3,7 @@
 use crate::fight::{Effort, fight};
 use crate::mark::text_mark;
 use crate::pairs::Pairs;
-use crate::problem::seen;
+use crate::problem::{Problem, seen};
 use crate::statement::Statement;
 use crate::words::sentence::sentence;
 
@@ -40,12 +40,7 @@ impl Kept {
                 sentence(&statement, &fight.outcome)
             }
             Ok(_) => NO_VALUE.into(),
-            Err(problems) => problems
-                .first()
-                .map_or(String::new(), |problem| match &problem.key {
-                    Some(key) if problem.found.is_some() => format!("`{}`: {}", seen(key), problem.line()),
-                    _ => problem.line(),
-                }),
+            Err(problems) => problems.first().map_or(String::new(), Problem::line_with_key),
         }
     }
 }
