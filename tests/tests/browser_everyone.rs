@@ -211,6 +211,31 @@ fn text_twice_as_large_has_room() {
     assert!(found.is_empty(), "{}", found.join("\n"));
 }
 
+/// Where somebody has set letters so large that sentence and caution would fill the screen, neither hides the other.
+#[test]
+fn letters_set_twice_as_large_leave_the_sentence_whole() {
+    let browser = Browser::start();
+    let framed = changed(DEMO, "view", "frame");
+    for (screen, link) in [
+        (Screen::SMALL, DEMO),
+        (Screen::FRAME_UPRIGHT, &framed),
+        (Screen::FRAME_LYING, &framed),
+    ] {
+        browser.screen(screen);
+        browser.text_size(2.0, true);
+        browser.open(link);
+        browser.settle(link);
+        let script = "const said = document.getElementById('said');
+            const caution = document.getElementById('short-caution').getBoundingClientRect();
+            const sentence = document.getElementById('sentence').getBoundingClientRect();
+            return [getComputedStyle(document.documentElement).fontSize, said.scrollHeight <= said.clientHeight,
+                    sentence.bottom <= caution.top + 1];";
+        let whole = browser.script(script, vec![]);
+        assert_eq!(whole, serde_json::json!(["32px", true, true]), "at {screen:?}");
+    }
+    browser.assert_clean();
+}
+
 /// The words of the chosen law are read whole, in the list or under it, whatever the size of the screen and the text.
 #[test]
 fn the_words_of_a_law_have_room() {
