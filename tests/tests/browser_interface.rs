@@ -164,7 +164,7 @@ fn the_example_shows_what_it_is_told() {
     browser.click("#work");
     let shown = browser.text("#problems");
     assert!(
-        shown.contains("x.start: write 1000, without marks for thousands"),
+        shown.contains("x.start: 1,000: write 1000, without marks for thousands"),
         "{shown}"
     );
     assert!(!shown.contains('`'), "{shown}");

@@ -4,9 +4,10 @@
   const at = (id) => document.getElementById(id);
 
   // Text, never markup: a name may hold anything. What stands between grave accents is code.
-  function line({ key, problem }) {
+  function line({ key, found, problem }) {
     const item = document.createElement("li");
-    (key ? "`" + key + "`: " + problem : problem).split("`").forEach((part, place) => {
+    const parts = [key, found].filter((part) => part).map((part) => "`" + part.replaceAll("`", "'") + "`");
+    parts.concat(problem).join(": ").split("`").forEach((part, place) => {
       const piece = document.createElement(place % 2 ? "code" : "span");
       piece.textContent = part;
       item.append(piece);
@@ -26,8 +27,8 @@
     at("figures").hidden = !answer.x;
     for (const side of ["x", "y"]) {
       const left = answer[side];
-      const figures = left ? [left.start, left.losses.all, left.end].map(shown) : ["", "", ""];
-      at(side).querySelectorAll("td").forEach((cell, place) => { cell.textContent = figures[place]; });
+      const figures = left ? [left.start, left.joined, left.withdrawn, left.losses.all, left.end].map(shown) : [];
+      at(side).querySelectorAll("td").forEach((cell, place) => { cell.textContent = figures[place] || ""; });
     }
   }
 
