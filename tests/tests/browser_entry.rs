@@ -150,6 +150,10 @@ fn the_buttons_are_reached_by_keys() {
     browser.script("document.getElementById('x.start').focus();", vec![]);
     browser.leave();
     assert_eq!(focus(&browser), "hand.ask");
+    let name = "return document.activeElement.getAttribute('aria-label');";
+    let name = browser.script(name, vec![]);
+    let name = name.as_str().expect("it has a name").to_owned();
+    assert!(name.starts_with("ask: Ondrel: Strength at the start. "), "{name}");
     browser.press("[id='hand.ask']", Key::Right);
     assert_eq!(focus(&browser), "hand.in-doubt");
     browser.press("[id='hand.in-doubt']", Key::Left);

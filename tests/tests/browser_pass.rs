@@ -256,6 +256,9 @@ fn what_is_kept_is_listed_opened_and_forgotten() {
     browser.settle(OTHER);
     browser.press("#keep", Key::Enter);
     browser.wait_text("#kept li:first-child", "without a title");
+    browser.press("#keep", Key::Enter);
+    let count = "return document.querySelectorAll('#kept li').length;";
+    assert_eq!(browser.script(count, vec![]), 2, "the same text is kept once");
     browser.picture("kept");
     browser.press("#kept li:nth-child(2) [data-take-up]", Key::Enter);
     assert_eq!(browser.settle(LINK), native(LINK));

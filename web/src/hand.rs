@@ -262,6 +262,7 @@ fn spoken(dom: &Dom, field: &Element) -> String {
         let parts: Vec<String> = names
             .split_whitespace()
             .filter_map(|id| words(dom.element(id)))
+            .map(|words| words.trim_end_matches(':').to_owned())
             .collect();
         return parts.join(": ");
     }

@@ -43,6 +43,8 @@ impl Keeping {
             text: text.into(),
         };
         let words = format!("Kept: {}", new.words());
+        // The same text is kept once, as of now.
+        list.retain(|kept| kept.text != text);
         list.insert(0, new);
         match storage.set_item(PLACE, &kept::written(&list)) {
             Ok(()) => self.say(&words),

@@ -17,7 +17,7 @@ use aftercount_core::passing::{json, saved};
 use downloads::Downloads;
 use keeping::Keeping;
 use wasm_bindgen::JsCast;
-use web_sys::{Element, HtmlDialogElement, HtmlTextAreaElement};
+use web_sys::{Element, HtmlDialogElement, HtmlInputElement, HtmlTextAreaElement};
 
 /// What the page remembers of it.
 pub(crate) struct Passing {
@@ -96,8 +96,16 @@ pub(crate) fn chosen(element: &Element) -> After {
 
 /// Something else is asked for. Not when its field is left, which a click does: the page would move under it.
 pub(crate) fn asked_anew(page: &mut Page, element: &Element) {
-    if element.id().starts_with("table-") {
+    let id = element.id();
+    if id.starts_with("table-") {
         sheet_table::clear_problem(page.dom());
+    }
+    // Whoever writes times means them.
+    let means = [("table-step", "table-every"), ("table-list", "table-at")];
+    if let Some((_, choice)) = means.iter().find(|(field, _)| *field == id)
+        && let Some(choice) = page.dom().typed::<HtmlInputElement>(choice)
+    {
+        choice.set_checked(true);
     }
 }
 
