@@ -97,9 +97,12 @@ fn one(text: &str, mark: char) -> bool {
 /// `1,000` and `1'000` without their marks, where every group but the first has three digits, with the decimals behind
 /// `point`.
 fn thousands(text: &str, point: Option<char>) -> Option<String> {
-    let (body, fraction) = match point {
-        Some(point) => text.split_once(point)?,
-        None => (text, ""),
+    let (body, decimals) = match point {
+        Some(point) => {
+            let (body, digits) = text.split_once(point)?;
+            (body, format!(".{digits}"))
+        }
+        None => (text, String::new()),
     };
     for mark in [',', '.', '\'', '\u{2019}', '_', ' ', '\u{a0}', '\u{202f}'] {
         let groups: Vec<&str> = body.trim_start_matches('-').split(mark).collect();
@@ -109,12 +112,7 @@ fn thousands(text: &str, point: Option<char>) -> Option<String> {
             && !first.starts_with('0')
             && groups[1..].iter().all(|group| group.len() == 3);
         if grouped {
-            let plain = body.replace(mark, "");
-            return Some(if point.is_some() {
-                format!("{plain}.{fraction}")
-            } else {
-                plain
-            });
+            return Some(body.replace(mark, "") + &decimals);
         }
     }
     None
@@ -141,9 +139,9 @@ fn without_letters(text: &str) -> Option<String> {
         .then_some(digits)
 }
 
-/// `4e` and `4e-`, before their power of ten.
+/// `4e`, `4e-` and `4e+`, before their power of ten.
 fn without_power(text: &str) -> Option<String> {
-    let number = text.trim_end_matches('-').strip_suffix(['e', 'E'])?;
+    let number = text.trim_end_matches(['-', '+']).strip_suffix(['e', 'E'])?;
     is_number(&format!("{number}e3"))
         .then(|| format!("write {number} alone, or a power of ten behind the e, as in {number}e3"))
 }
@@ -224,6 +222,7 @@ mod tests {
             ("6oz", "write 6 alone, without a unit"),
             ("4 l", "write 4 alone, without a unit"),
             ("4e", "write 4 alone, or a power of ten behind the e, as in 4e3"),
+            ("4e+", "write 4 alone, or a power of ten behind the e"),
             ("0.04E-", "write 0.04 alone, or a power of ten behind the e"),
             ("1e5e", "write 1e5 alone, without a unit"),
             ("4 h", "write 4 alone, without a unit"),

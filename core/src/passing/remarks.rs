@@ -192,6 +192,8 @@ mod tests {
             "Text mark: ",
             "=3D",
             "x.start=3D",
+            "x.start=6&v=1 ",
+            "#x.start=6&v=1\n",
         ] {
             let text = piece.repeat(LONGEST / 8 / piece.len());
             // Whatever it says, it says it.
