@@ -22,12 +22,12 @@ const MEANINGS: [RateMeaning; 5] = [
 
 /// The number of what both rates were written as, for the browser's history; 0 for none in particular.
 pub(crate) fn number(written_as: WrittenAs) -> usize {
-    let place = |meaning| MEANINGS.iter().position(|known| *known == meaning);
-    let number = |side| {
-        let place: Option<usize> = written_as[side].and_then(place);
+    let place = |side: Side| {
+        let meaning = written_as[side];
+        let place = MEANINGS.iter().position(|known| Some(*known) == meaning);
         place.map_or(0, |place| place + 1)
     };
-    number(Side::X) * (MEANINGS.len() + 1) + number(Side::Y)
+    place(Side::X) * (MEANINGS.len() + 1) + place(Side::Y)
 }
 
 /// What a [`number`] stands for, whoever wrote it.
@@ -116,4 +116,24 @@ fn text(pairs: &Pairs, side: Side) -> &str {
 fn meaning(pairs: &Pairs, side: Side) -> Option<RateMeaning> {
     let rate = law_of(pairs, side)?.law().rate;
     (rate != RateMeaning::NoRate).then_some(rate)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use aftercount_core::laws::FireLaw;
+
+    #[test]
+    fn a_number_stands_for_every_pair_of_meanings() {
+        let meanings =
+            FireLaw::ALL.map(|law| Some(law.law().rate).filter(|rate| *rate != RateMeaning::NoRate));
+        for x in meanings {
+            for y in meanings {
+                let written_as = Both { x, y };
+                assert_eq!(of_number(number(written_as)), written_as);
+            }
+        }
+        // Another page may have written any.
+        assert_eq!(of_number(9_999).x, None);
+    }
 }
