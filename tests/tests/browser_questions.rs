@@ -250,7 +250,6 @@ fn what_is_wanted_of_two_numbers_is_marked_and_read() {
     browser.assert_clean();
 }
 
-/// Three questions are a problem beside the last of them.
 /// A legend names what is in its picture, and no more.
 #[test]
 fn a_legend_names_what_is_there() {
@@ -273,6 +272,7 @@ fn a_legend_names_what_is_there() {
     browser.assert_clean();
 }
 
+/// Three questions are a problem beside the last of them.
 #[test]
 fn a_third_question_is_refused_in_place() {
     let link = changed(&changed(LINK, "x.start", "600?"), "y.start", "400?");

@@ -116,16 +116,12 @@ pub(crate) fn show(dom: &Dom, good: &Good) {
         show_table(dom, &format!("{name}-table"), &picture.table);
     }
     // A key to what is not there would send the eye searching.
-    let lines = || {
-        good.strength
-            .iter()
-            .chain(&good.orbit)
-            .flat_map(|picture| &picture.lines)
-    };
-    dom.set_shown("parity-key", lines().any(|line| line.role == Role::Parity));
+    let pictures = || good.strength.iter().chain(&good.orbit);
+    dom.set_shown("parity-key", pictures().any(|picture| picture.has(Role::Parity)));
+    let mut lines = pictures().flat_map(|picture| &picture.lines);
     dom.set_shown(
         "break-key",
-        lines().any(|line| matches!(line.role, Role::BreakLine(_))),
+        lines.any(|line| matches!(line.role, Role::BreakLine(_))),
     );
     show_attributes(dom, good);
 }

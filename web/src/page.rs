@@ -234,6 +234,7 @@ impl Page {
         let link = self.pairs.link();
         // Before all that may stop the program: a fresh start goes on from here.
         crate::copy::keep(&self.dom, &link);
+        // Before the entry is written: beside it stands what the rates were written as.
         self.kept_rates.follow(&self.pairs);
         self.address.edited(link, self.kept_rates.written_as());
         self.write_later();

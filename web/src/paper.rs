@@ -198,7 +198,7 @@ impl Paper {
                 .parent_element()
                 .and_then(|holder| holder.dyn_into::<HtmlElement>().ok());
             if let (Some(letter), Some(holder)) = (letter.filter(|letter| *letter > 0.0), holder) {
-                // A formula that is rolled is as wide as its strip, in Chromium.
+                // Chromium gives the box of a formula that rolls the width of its strip, not its own.
                 let width = match holder.scroll_width() {
                     rolled if rolled > holder.client_width() => f64::from(rolled),
                     _ => math.get_bounding_client_rect().width(),

@@ -35,7 +35,7 @@ impl Timer {
             .ok();
     }
 
-    /// Whether its action is still to come, where the action stops it.
+    /// Whether it was started and not stopped. A timer does not see its time come: its action must call [`Timer::stop`].
     pub(crate) fn is_running(&self) -> bool {
         self.running.is_some()
     }

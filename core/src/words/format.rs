@@ -9,7 +9,8 @@ pub const NARROW: char = '\u{202f}';
 /// The space between a number and its unit, which does not break a line either.
 pub const NO_BREAK: char = '\u{a0}';
 
-/// The minus of numbers that are read: a hyphen is shorter than the plus. What programs read keeps the hyphen.
+/// The minus of numbers that people read, as wide as the plus. What programs read (tables, JSON, links) is written
+/// elsewhere, with the hyphen.
 pub const MINUS: char = '−';
 
 /// A number to so many significant digits, without zeros at the end, thousands set apart.

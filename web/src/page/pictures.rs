@@ -8,9 +8,11 @@ use crate::stopwatch::{DRAW, Stopwatch};
 use aftercount_core::mark::text_mark;
 use aftercount_core::statement::Statement;
 
-/// So many slices of the search for what reverses the outcome a printer waits for, and of the work at a question.
-const SLICES_ON_PAPER: u32 = 60;
-const SLICES_OF_A_QUESTION: u32 = 240;
+/// The most slices of the search for what reverses the outcome that a printer waits for: half a second.
+const REVERSAL_SLICES_ON_PAPER: u32 = 60;
+
+/// The most slices of the work at a question that it waits for: three seconds.
+const QUESTION_SLICES_ON_PAPER: u32 = 240;
 
 impl Page {
     /// A key on the reading line; whether it was one of its keys.
@@ -86,13 +88,13 @@ impl Page {
         if self.show_problems.is_running() {
             self.show_waiting();
         }
-        for _ in 0..SLICES_OF_A_QUESTION {
+        for _ in 0..QUESTION_SLICES_ON_PAPER {
             if self.asking.is_done() {
                 break;
             }
             self.ask_on();
         }
-        for _ in 0..SLICES_ON_PAPER {
+        for _ in 0..REVERSAL_SLICES_ON_PAPER {
             if !self.reversals.go_on() {
                 break;
             }
