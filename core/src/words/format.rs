@@ -11,7 +11,7 @@ pub const NO_BREAK: char = '\u{a0}';
 
 /// The minus of numbers that people read, as wide as the plus. What programs read (tables, JSON, links) is written
 /// elsewhere, with the hyphen.
-pub const MINUS: char = '−';
+pub const MINUS: &str = "−";
 
 /// A number to so many significant digits, without zeros at the end, thousands set apart.
 ///

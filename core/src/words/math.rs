@@ -1,6 +1,6 @@
 //! Formulas that are written twice at once: as MathML for the page and as plain text to copy.
 
-use super::format::{plain, six};
+use super::format::{MINUS, plain, six};
 
 /// A formula, or a part of one.
 #[derive(Clone, Debug, PartialEq)]
@@ -51,7 +51,7 @@ pub fn number(value: f64) -> Math {
         Some((mantissa, _)) => {
             let exponent = format!("{value:.5e}")
                 .split_once('e')
-                .map(|(_, e)| e.replace('-', "−"))
+                .map(|(_, e)| e.replace('-', MINUS))
                 .unwrap_or_default();
             format!("<mn>{mantissa}</mn><mo>·</mo><msup><mn>10</mn><mn>{exponent}</mn></msup>")
         }

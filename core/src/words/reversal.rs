@@ -1,6 +1,6 @@
 //! What would reverse the outcome, in words: the line under the sentence, and the table.
 
-use super::format::{NARROW, NO_BREAK, per_cent, significant, three};
+use super::format::{MINUS, NARROW, NO_BREAK, per_cent, significant, three};
 use super::{sentence::breaks, slot};
 use crate::keys::Unit;
 use crate::number;
@@ -182,7 +182,7 @@ fn by(statement: &Statement, entry: &Entry, change: &Change) -> String {
 fn signed(amount: &str, value: f64) -> String {
     let sign = match value {
         value if value > 0.0 => "+",
-        value if value < 0.0 => "−",
+        value if value < 0.0 => MINUS,
         _ => "",
     };
     format!("{sign}{amount}")

@@ -1,7 +1,7 @@
 //! What happens when, in words: the timeline under the picture of strength over time.
 
 use super::assumptions::changes;
-use super::format::{strength, three, with_unit};
+use super::format::{MINUS, strength, three, with_unit};
 use crate::fight::Fight;
 use crate::outcome::{Breaks, Ended};
 use crate::schedule::Instant;
@@ -114,7 +114,7 @@ fn happenings(statement: &Statement, instant: &Instant, before: Option<&Instant>
             };
             parts.push((
                 format!("{} leave {name}{short}", strength(there)),
-                format!("−{}", strength(there)),
+                format!("{MINUS}{}", strength(there)),
             ));
         }
     }
