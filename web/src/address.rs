@@ -112,22 +112,23 @@ impl Address {
 
     /// A text that the user has just changed.
     pub(crate) fn edited(&mut self, text: String, written_as: WrittenAs) {
-        if !self.open {
+        let entry = Entry {
+            text: Some(text.clone()),
+            received: self.entries[self.at].received.clone(),
+            written_as: Some(written_as),
+        };
+        if self.open {
+            self.entries[self.at] = entry;
+        } else {
             self.open = true;
             self.entries.truncate(self.at + 1);
-            self.entries.push(Entry {
-                text: Some(text.clone()),
-                received: self.entries[self.at].received.clone(),
-                written_as: Some(written_as),
-            });
+            self.entries.push(entry);
             self.at += 1;
             if !self.framed && self.push(&text) {
                 self.unwritten = None;
                 return;
             }
         }
-        let entry = &mut self.entries[self.at];
-        (entry.text, entry.written_as) = (Some(text.clone()), Some(written_as));
         self.unwritten = Some(text);
         if self.pace.wait(self.now()) <= 0.0 {
             self.write();
